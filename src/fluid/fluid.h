@@ -1,0 +1,166 @@
+/* The property interface: every equation of state behind one small table of functions.
+ *
+ * A method gives either the residual Helmholtz energy as a function of (T, V, n), or compressibility and fugacity
+ * coefficients as functions of (T, p, n). The layers above never call these functions; they call fluid/phase.h,
+ * which turns either form into phase properties.
+ *
+ * Ownership: a struct fluid lives in the arena given to fluid_create, never changes afterwards and may be shared
+ * between threads. A struct fluid_at_t is memory the caller provides (fluid_at_t_create, or any block of
+ * fluid_at_t_size bytes), one for each thread; setting a temperature allocates nothing.
+ */
+#ifndef TAREWRIGHT_FLUID_FLUID_H
+#define TAREWRIGHT_FLUID_FLUID_H
+
+#include "base/arena.h"
+#include "fluid/spec.h"
+
+#include <stdbool.h>
+#include <stddef.h>
+
+enum branch { BRANCH_VAPOUR, BRANCH_LIQUID, BRANCH_STABLE };
+
+enum answer {
+    ANSWER_OK,
+    ANSWER_NO_SUCH_ROOT, /* the branch asked for has no root at this T, p */
+    ANSWER_OUT_OF_RANGE, /* the method has no meaning there (V below the smallest volume, T <= 0) */
+    ANSWER_CANNOT,       /* the method does not answer this question at all */
+    ANSWER_FAILED        /* an iteration did not converge, or a value was not finite */
+};
+
+enum capability { CAN_LIQUID = 1, CAN_MIXTURE = 2, CAN_CALORIC = 4 };
+
+/* What may be asked of a (T, V, n) method, as a set of bits. The value itself and F_V always come. */
+enum helmholtz_want {
+    WANT_F_VV = 1,
+    WANT_F_N = 2,
+    WANT_F_VN = 4,
+    WANT_F_NN = 8,
+    WANT_F_T = 16, /* F_T and F_TV */
+    WANT_F_TT = 32,
+    WANT_F_TN = 64
+};
+
+/* F = A^residual(T, V, n) / (R T), in mol, against the ideal gas at the same T, V, n, and its derivatives
+ * (Michelsen and Mollerup, Thermodynamic Models, 2nd ed., chapter 2). The arrays are the caller's; one that is
+ * wanted must not be NULL, one that is not wanted may be. */
+struct helmholtz {
+    double F;        /* mol */
+    double F_V;      /* mol/m3 */
+    double F_VV;     /* mol/m6 */
+    double F_T;      /* mol/K */
+    double F_TV;     /* mol/(K m3) */
+    double F_TT;     /* mol/K2 */
+    double *F_n;     /* [count], 1 */
+    double *F_Vn;    /* [count], 1/m3 */
+    double *F_Tn;    /* [count], 1/K */
+    double *F_nn;    /* [count * count], 1/mol */
+};
+
+/* What a (T, p, n) method gives for one branch. */
+struct explicit_phase {
+    double Z;
+    double *ln_phi;     /* [count] */
+    double *dln_phi_dn; /* [count * count], 1/mol at constant T, p; NULL: not asked for */
+};
+
+struct critical_point {
+    double temperature; /* K */
+    double pressure;    /* Pa */
+    double molar_volume; /* m3/mol */
+};
+
+/* First values for a pure fluid's saturation; all greater than zero. */
+struct saturation_start {
+    double pressure;                      /* Pa */
+    double vapour_volume, liquid_volume;  /* m3/mol */
+};
+
+/* Where a state lies relative to a method's published range. */
+enum range_side { RANGE_INSIDE, RANGE_TOO_COLD, RANGE_TOO_HOT, RANGE_TOO_HIGH_PRESSURE };
+
+struct range_note {
+    enum range_side side;
+    double limit; /* K or Pa: the limit that was passed */
+};
+
+/* Why a fluid could not be created. */
+enum fluid_lack {
+    LACK_NOTHING,
+    LACK_METHOD,          /* no method of that name */
+    LACK_MIXTURE,         /* the method is for pure gases */
+    LACK_CRITICAL_POINT,  /* `component` has no critical temperature or pressure */
+    LACK_ACENTRIC,        /* `component` has no acentric factor */
+    LACK_EQUATION         /* `component` has no reference equation */
+};
+
+struct fluid_lack_report {
+    enum fluid_lack lack;
+    size_t component; /* index into the spec */
+};
+
+struct fluid;
+struct fluid_at_t;
+
+enum fluid_form { FLUID_FROM_TV, FLUID_FROM_TP };
+
+/* One method. A member that a form does not have is NULL. */
+struct fluid_ops {
+    const char *name; /* the deck's word for it */
+    const char *title; /* the published name, for listings */
+    enum fluid_form form;
+    unsigned capabilities;
+
+    struct fluid *(*create)(const struct fluid_spec *spec, struct arena *arena, struct fluid_lack_report *lack);
+    size_t (*at_t_size)(const struct fluid *fluid);
+    /* Everything that depends on T alone; `at_t->fluid` and `at_t->temperature` are already set. */
+    enum answer (*set_t)(struct fluid_at_t *at_t);
+
+    enum answer (*tv)(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want,
+                      struct helmholtz *out);
+    enum answer (*tp)(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
+                      struct explicit_phase *out);
+
+    /* The volume (m3, for all of n) of the root on `branch` at `pressure`; BRANCH_STABLE: the one of lower Gibbs
+     * energy. *roots is the number of mechanically stable roots found (1 or 2). NULL: phase.c solves for it. */
+    enum answer (*volume)(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
+                          double *volume, int *roots);
+    /* No state of the method has a volume at or below this (m3, for all of n). */
+    double (*smallest_volume)(const struct fluid_at_t *at_t, const double n[]);
+    struct range_note (*range)(const struct fluid *fluid, double temperature, double pressure);
+    /* Pure fluids only. */
+    enum answer (*critical)(const struct fluid *fluid, struct critical_point *out);
+    enum answer (*saturation_start)(const struct fluid_at_t *at_t, struct saturation_start *out);
+};
+
+/* The common head of every method's fluid; a method's own struct has it as first member. */
+struct fluid {
+    const struct fluid_ops *ops;
+    const struct fluid_spec *spec;
+    size_t count;
+    double gas_constant; /* J/(mol K), the method's own */
+};
+
+/* The common head of every method's state at one temperature. */
+struct fluid_at_t {
+    const struct fluid *fluid;
+    double temperature; /* K */
+};
+
+/* All methods, in the order of the table in methods.c; NULL-terminated. */
+const struct fluid_ops *const *fluid_methods(void);
+
+/* The method of that name, or NULL. */
+const struct fluid_ops *fluid_method(const char *name);
+
+/* A fluid of `spec` by the method named, or NULL with the reason in *lack. `spec` must outlive it. */
+const struct fluid *fluid_create(const char *method, const struct fluid_spec *spec, struct arena *arena,
+                                 struct fluid_lack_report *lack);
+
+/* Bytes a fluid_at_t of this fluid takes, and one taken from an arena. */
+size_t fluid_at_t_size(const struct fluid *fluid);
+struct fluid_at_t *fluid_at_t_create(const struct fluid *fluid, struct arena *arena);
+
+/* Sets the temperature (K, greater than zero and finite); must be called before any property is asked for. */
+enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature);
+
+#endif
