@@ -1,0 +1,272 @@
+/* The case tree: what a deck means. Typed, in SI, each value knowing where it came from.
+ *
+ * Ownership: everything lives in the run's arena and is read-only after elaboration.
+ */
+#ifndef TAREWRIGHT_CASE_CASE_H
+#define TAREWRIGHT_CASE_CASE_H
+
+#include "base/arena.h"
+#include "base/shown.h"
+#include "deck/deck.h"
+#include "fluid/spec.h"
+
+#include <stdbool.h>
+#include <stddef.h>
+
+struct case_source {
+    const char *key;
+    const char *citation;
+    bool is_unverified; /* entered from memory */
+};
+
+enum origin_kind { ORIGIN_DECK, ORIGIN_LIBRARY, ORIGIN_DEFAULT };
+
+struct origin {
+    enum origin_kind kind;
+    struct location at;
+    const char *written;              /* as in the deck, "50.2 L" */
+    const struct case_source *source; /* NULL: given in this deck (or a default) */
+};
+
+/* A value that may be absent, in SI. Ratings are gauge: Pa above 101 325 Pa. */
+struct quantity {
+    bool given;
+    double value;
+    double uncertainty; /* expanded, k = 2; 0 where none was given */
+    struct origin origin;
+    const struct quantity *overridden; /* the earlier value this one replaced, or NULL */
+};
+
+enum hazard {
+    HAZARD_FLAMMABLE = 1,
+    HAZARD_OXIDISING = 2,
+    HAZARD_TOXIC = 4,
+    HAZARD_CORROSIVE = 8,
+    HAZARD_PYROPHORIC = 16,
+    HAZARD_DECOMPOSES = 32,
+    HAZARD_POLYMERISES = 64,
+    HAZARD_DISSOLVED = 128
+};
+
+struct case_component {
+    const char *name;
+    const char *title;   /* NULL: none */
+    const char *formula; /* NULL: none */
+    const char *cas;     /* NULL: none */
+    unsigned un_number;  /* 0: none */
+    struct quantity molar_mass, critical_temperature, critical_pressure, critical_density, acentric;
+    struct quantity triple_temperature, triple_pressure, boiling_temperature, dipole;
+    unsigned hazards;   /* set of enum hazard */
+    const char *refuse; /* the reason why no charge is computed; NULL: none */
+    struct location refuse_at;
+    const struct case_source *equation_source; /* NULL where it has no reference equation */
+    struct pure_spec spec;
+};
+
+/* What is filled. A pure gas has one component with fraction 1. */
+struct case_fluid {
+    const char *name;
+    size_t count;
+    const struct case_component *const *components;
+    const double *fractions; /* mole fractions, [count] */
+    double molar_mass;       /* kg/mol, of the whole */
+    struct fluid_spec spec;
+};
+
+struct case_rating {
+    const char *name; /* "test-pressure", or the fitting's text */
+    struct quantity pressure;
+};
+
+struct case_vessel {
+    const char *name;
+    struct location at;
+    struct quantity water_capacity, tare;
+    struct quantity test_pressure, working_pressure, service_pressure; /* gauge */
+    size_t fitting_count;
+    const struct case_rating *fittings;
+};
+
+/* Arithmetic over numbers and symbols that only a filled vessel gives a value to. */
+enum formula_kind { FORMULA_NUMBER, FORMULA_SYMBOL, FORMULA_NEGATE, FORMULA_ADD, FORMULA_SUBTRACT, FORMULA_MULTIPLY,
+                    FORMULA_DIVIDE };
+
+enum case_symbol {
+    SYMBOL_PRESSURE,         /* of the contents; Pa absolute */
+    SYMBOL_VAPOUR_PRESSURE,  /* Pa absolute */
+    SYMBOL_DENSITY,          /* mass over water capacity, kg/m3 */
+    SYMBOL_LIQUID_DENSITY,   /* kg/m3 */
+    SYMBOL_LIQUID_VOLUME,    /* fraction of the water capacity */
+    SYMBOL_FILLING_RATIO,
+    SYMBOL_TEST_PRESSURE,    /* gauge, of the vessel */
+    SYMBOL_WORKING_PRESSURE,
+    SYMBOL_SERVICE_PRESSURE,
+    SYMBOLS
+};
+
+struct formula {
+    enum formula_kind kind;
+    double number; /* SI; a gauge number as Pa above 101 325 Pa */
+    enum case_symbol symbol;
+    const struct formula *left, *right;
+};
+
+const char *case_symbol_name(enum case_symbol symbol); /* the deck's word */
+
+/* The value of a formula; `value_of` gives each symbol's. A division by zero gives NaN. */
+double formula_value(const struct formula *formula, double (*value_of)(void *context, enum case_symbol symbol),
+                     void *context);
+bool formula_mentions(const struct formula *formula, enum case_symbol symbol);
+
+enum predicate_kind { PREDICATE_COMPARE, PREDICATE_ONE_PHASE, PREDICATE_NO_LIQUID, PREDICATE_NO_SOLID };
+
+struct predicate {
+    enum predicate_kind kind;
+    double from, to;         /* K; equal for `at` */
+    bool has_temperature;    /* false only for requirements that hold at every swept temperature */
+    enum case_symbol quantity;
+    enum relation relation;
+    const struct formula *bound;
+    bool bound_is_gauge;     /* the bound is Pa above `gauge_zero`; else absolute or no pressure */
+    double gauge_zero;       /* Pa, 101 325 unless stated */
+    bool unless_listed;
+    const char *written;     /* "at 65 degC pressure <= test-pressure" */
+    struct location at;
+    struct shown_unit temperature_unit; /* as written */
+};
+
+enum filling_class { CLASS_NONE, CLASS_COMPRESSED, CLASS_HIGH_PRESSURE_LIQUEFIED, CLASS_LOW_PRESSURE_LIQUEFIED };
+
+struct case_rule {
+    const char *name;
+    const char *title, *clause, *edition; /* NULL: none */
+    const struct case_source *source;     /* NULL: none */
+    enum filling_class meant_for;
+    double round_to; /* filling ratios are rounded down to a multiple of this; 0.01 by default */
+    size_t predicate_count;
+    const struct predicate *predicates;
+    struct origin origin;
+};
+
+struct listed_row {
+    double test_pressure;         /* gauge, Pa */
+    struct optional filling_ratio;
+    struct optional working_pressure; /* gauge, Pa */
+    struct origin origin;
+};
+
+struct case_entry {
+    const char *name;  /* "UN 1978" */
+    const char *title, *class_code, *letters; /* NULL: none */
+    const struct case_component *component;   /* NULL: a group or a mixture */
+    struct optional lc50;    /* fraction, as 760 ppm = 760e-6 */
+    bool is_never_exceeded;  /* letter o */
+    size_t row_count;
+    const struct listed_row *rows; /* by rising test pressure */
+    size_t limit_count;
+    const struct predicate *limits;
+    struct origin origin;
+};
+
+enum fill_kind { FILL_PRESSURE, FILL_MASS, FILL_RATIO, FILL_DENSITY, FILL_MOLES, FILL_VOLUME };
+
+struct case_charge {
+    const char *name;
+    const struct case_fluid *fluid;
+    const struct case_vessel *vessel;
+    enum fill_kind kind;
+    struct quantity amount;      /* absolute Pa, kg, 1, kg/m3, mol or m3 by kind */
+    double temperature, pressure; /* K, Pa absolute: the state of FILL_PRESSURE (temperature) and FILL_VOLUME (both) */
+    struct origin origin;
+};
+
+enum governing { GOVERN_LEAD, GOVERN_STRICTEST };
+
+struct case_methods {
+    size_t count;              /* lead first, then beside, then show */
+    const char *const *names;
+    size_t may_govern;         /* the first so many are lead and beside */
+    enum governing govern;
+    const char *reason;        /* why this lead, in words */
+    struct location at;
+};
+
+/* Swept values of one quantity. */
+struct case_sweep {
+    bool given;
+    size_t count;
+    const double *values; /* SI: K, Pa absolute, or mol/m3 */
+    bool is_mass_density; /* a density sweep written per mass: values are kg/m3 */
+    struct shown_unit shown;
+    struct origin origin;
+};
+
+enum sheet_kind { SHEET_PERMISSIBLE_CHARGE, SHEET_SETTLED_PRESSURE, SHEET_SATURATION, SHEET_FUGACITY, SHEET_KINDS };
+
+enum listed_policy { LISTED_GOVERNS, LISTED_CHECK_GOVERNS, LISTED_COMPARE };
+
+/* Units for results, chosen by the deck or by default (bara, barg, degC, kg/L, kg, m3, L). */
+struct display_units {
+    struct shown_unit temperature, pressure, gauge, density, mass, gas_volume, volume;
+};
+
+struct case_sheet {
+    enum sheet_kind kind;
+    const char *title; /* NULL: none */
+    struct location at;
+    const struct case_fluid *fluid;
+    const struct case_vessel *vessel; /* NULL where the sheet needs none */
+    const struct case_charge *charge; /* NULL where the sheet needs none */
+    struct case_methods methods;
+    struct display_units units;
+    struct case_sweep temperatures, pressures, densities;
+    size_t rule_count;
+    const struct case_rule *const *rules;
+    size_t requirement_count;
+    const struct predicate *requirements;
+    size_t quote_count;
+    const double *quotes; /* K: temperatures the pressure is quoted at */
+    bool show_iteration;
+    struct optional iteration_at; /* K */
+    enum listed_policy listed;
+    const char *assessed;  /* NULL: none */
+    const char *table_csv; /* NULL: none */
+    size_t entry_count;    /* entries of the fluid that are in use */
+    const struct case_entry *const *entries;
+    size_t note_count;
+    const char *const *notes;
+};
+
+/* One line of the listing's inputs: a value as written, in SI, with its place. */
+struct case_input {
+    const char *group; /* "vessel fifty" */
+    const char *name;  /* "water-capacity" */
+    const char *si;    /* "0.0502 m3" */
+    struct origin origin;
+};
+
+struct case_tree {
+    const struct deck *deck;
+    const char *title, *number, *revision; /* NULL: none */
+    size_t note_count;
+    const char *const *notes;
+    double ambient_pressure; /* Pa */
+    size_t sheet_count;
+    const struct case_sheet *sheets;
+    size_t component_count; /* those the sheets use */
+    const struct case_component *const *components;
+    size_t input_count;
+    const struct case_input *inputs; /* of the root deck's own blocks, in its order */
+    size_t source_count;             /* sources that values in use name */
+    const struct case_source *const *sources;
+};
+
+/* The case a deck describes, or NULL when there were errors (all of them are in the diagnostics). Only what the sheets
+ * need is built. */
+const struct case_tree *case_elaborate(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics);
+
+/* One library or deck component by name, for showing; NULL when there is none. */
+const struct case_component *case_find_component(const struct deck *deck, const char *name, struct arena *arena,
+                                                 struct diagnostics *diagnostics);
+
+#endif

@@ -1,0 +1,37 @@
+/* Source text and places in it.
+ *
+ * Ownership: files and their texts live in the run's arena. A location is a plain value that points at its file.
+ */
+#ifndef TAREWRIGHT_DECK_SOURCE_H
+#define TAREWRIGHT_DECK_SOURCE_H
+
+#include <stdbool.h>
+#include <stddef.h>
+#include <stdint.h>
+
+struct source_file {
+    const char *name;   /* as shown to the reader: the path as given, or the path below the library folder */
+    const char *path;   /* as opened */
+    const char *text;   /* NUL-terminated; may hold NULs before `length` */
+    size_t length;
+    const char *sha256; /* 64 hexadecimal digits */
+    bool is_library;
+    bool is_used;       /* a value or block of it went into the case tree; set by elaboration */
+    const uint32_t *line_starts; /* byte offset of each line */
+    size_t line_count;
+};
+
+/* Bytes begin..end (end not included) of a file; file NULL: nowhere in particular. */
+struct location {
+    const struct source_file *file;
+    uint32_t begin, end;
+};
+
+/* Line and byte column of a location's begin, both from 1; 0 when it is nowhere. */
+size_t location_line(struct location at);
+size_t location_column(struct location at);
+
+/* From the begin of the first to the end of the second (same file). */
+struct location location_span(struct location first, struct location last);
+
+#endif
