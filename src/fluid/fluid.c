@@ -1,0 +1,40 @@
+/* What is common to all property methods: choosing one, and setting a temperature. */
+#include "fluid/fluid.h"
+
+#include <math.h>
+
+const struct fluid *fluid_create(const char *method, const struct fluid_spec *spec, struct arena *arena,
+                                 struct fluid_lack_report *lack)
+{
+    *lack = (struct fluid_lack_report){.lack = LACK_NOTHING};
+    const struct fluid_ops *ops = fluid_method(method);
+    if (ops == NULL) {
+        lack->lack = LACK_METHOD;
+        return NULL;
+    }
+    if (spec->count > 1 && (ops->capabilities & CAN_MIXTURE) == 0) {
+        lack->lack = LACK_MIXTURE;
+        return NULL;
+    }
+    return ops->create(spec, arena, lack);
+}
+
+size_t fluid_at_t_size(const struct fluid *fluid)
+{
+    return fluid->ops->at_t_size(fluid);
+}
+
+struct fluid_at_t *fluid_at_t_create(const struct fluid *fluid, struct arena *arena)
+{
+    return arena_alloc(arena, fluid_at_t_size(fluid), 1);
+}
+
+enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature)
+{
+    if (!(temperature > 0.0) || !isfinite(temperature)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    at_t->fluid = fluid;
+    at_t->temperature = temperature;
+    return fluid->ops->set_t(at_t);
+}

@@ -1,0 +1,28 @@
+/* The table of property methods: adding a method is one file and one row here. */
+#include "fluid/fluid.h"
+#include "fluid/methods_internal.h"
+
+#include <string.h>
+
+static const struct fluid_ops *const METHODS[] = {
+    &ideal_gas_ops,
+    &peng_robinson_ops,
+    &soave_redlich_kwong_ops,
+    &reference_ops,
+    NULL,
+};
+
+const struct fluid_ops *const *fluid_methods(void)
+{
+    return METHODS;
+}
+
+const struct fluid_ops *fluid_method(const char *name)
+{
+    for (const struct fluid_ops *const *method = METHODS; *method != NULL; method++) {
+        if (strcmp((*method)->name, name) == 0) {
+            return *method;
+        }
+    }
+    return NULL;
+}

@@ -1,0 +1,12 @@
+/* The property methods' tables, each defined in its family's file; methods.c lists them. */
+#ifndef TAREWRIGHT_FLUID_METHODS_INTERNAL_H
+#define TAREWRIGHT_FLUID_METHODS_INTERNAL_H
+
+#include "fluid/fluid.h"
+
+extern const struct fluid_ops ideal_gas_ops;
+extern const struct fluid_ops peng_robinson_ops;
+extern const struct fluid_ops soave_redlich_kwong_ops;
+extern const struct fluid_ops reference_ops;
+
+#endif
