@@ -1,0 +1,69 @@
+/* What the files of src/filling share: one sheet at work, with a fluid ready for each method.
+ *
+ * Ownership: a sheet_run lives in the run's arena for the time its sheet is answered.
+ */
+#ifndef TAREWRIGHT_FILLING_SHEET_H
+#define TAREWRIGHT_FILLING_SHEET_H
+
+#include "case/case.h"
+#include "equilibrium/closed_vessel.h"
+#include "equilibrium/saturation.h"
+#include "fluid/fluid.h"
+#include "result/result.h"
+
+/* One method at work on the sheet's fluid. `fluid` is NULL when the method cannot serve it (`lack` says why). */
+struct method_run {
+    const char *name;
+    const struct fluid *fluid;
+    struct fluid_at_t *at_t;     /* workspace; its temperature changes with every question */
+    struct fluid_lack_report lack;
+    bool has_critical;
+    struct critical_point critical;
+    bool may_govern;
+};
+
+struct sheet_run {
+    struct arena *arena;
+    const struct case_tree *tree;
+    const struct case_sheet *sheet;
+    struct result *result;
+    struct result_sheet *out;
+    size_t number; /* of the sheet, from 1 */
+    size_t method_count;
+    struct method_run *methods; /* lead first */
+};
+
+/* The looks of a sheet: SI unit, the sheet's display unit and the digits its table deserves. */
+struct look look_temperature(const struct sheet_run *run);
+struct look look_pressure(const struct sheet_run *run); /* absolute */
+struct look look_gauge(const struct sheet_run *run);    /* of an absolute SI value: the offset makes it gauge */
+struct look look_density(const struct sheet_run *run);
+struct look look_mass(const struct sheet_run *run);
+struct look look_ratio(int decimals);                   /* dimensionless */
+struct look look_percent(int decimals);                 /* SI fraction shown in % */
+struct look look_molar_density(void);
+struct look look_amount(void);                          /* mol */
+struct look look_volume(const struct sheet_run *run);   /* of vessels */
+struct look look_gas_volume(const struct sheet_run *run);
+
+/* Warns once a sheet and method where (T, p) lies outside the method's published range; true when inside. */
+bool warn_outside_range(const struct sheet_run *run, const struct method_run *method, double temperature,
+                        double pressure);
+
+/* The contents of the sheet's vessel with `mass` kg at `temperature` by one method. */
+enum answer contents_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
+                        struct vessel_contents *out);
+
+/* A charge's mass in kg, by the lead method where it was given by pressure or by volume. */
+enum answer charge_mass(const struct sheet_run *run, const struct case_charge *charge, double *mass);
+
+/* Density of water at 15 degC in kg/m3, the base of filling ratios. */
+#define WATER_DENSITY_15C 999.1
+
+/* One file for each kind. */
+void answer_permissible_charge(struct sheet_run *run);
+void answer_settled_pressure(struct sheet_run *run);
+void answer_saturation(struct sheet_run *run);
+void answer_fugacity(struct sheet_run *run);
+
+#endif
