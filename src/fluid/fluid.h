@@ -100,6 +100,7 @@ struct fluid_lack_report {
 
 struct fluid;
 struct fluid_at_t;
+struct explanation;
 
 enum fluid_form { FLUID_FROM_TV, FLUID_FROM_TP };
 
@@ -130,6 +131,9 @@ struct fluid_ops {
     /* Pure fluids only. */
     enum answer (*critical)(const struct fluid *fluid, struct critical_point *out);
     enum answer (*saturation_start)(const struct fluid_at_t *at_t, struct saturation_start *out);
+    /* Pure fluids only: the numbers behind the pressure of one phase (fluid/explanation.h). NULL: not explained. */
+    enum answer (*explain)(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
+                           struct explanation *out);
 };
 
 /* The common head of every method's fluid; a method's own struct has it as first member. */

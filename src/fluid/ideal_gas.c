@@ -1,5 +1,6 @@
 /* The ideal gas: no residual Helmholtz energy at all. It is the limit every other method is tested against, and the
  * usual substitute whose error the listings show. */
+#include "fluid/explanation.h"
 #include "fluid/methods_internal.h"
 
 #include <string.h>
@@ -81,6 +82,23 @@ static struct range_note range(const struct fluid *fluid, double temperature, do
     return (struct range_note){.side = RANGE_INSIDE};
 }
 
+static enum answer explain(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
+                           struct explanation *out)
+{
+    const double R = at_t->fluid->gas_constant, T = at_t->temperature, v = molar_volume;
+    if (!(v > 0.0)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    explanation_add(out, (struct explained_value){"R", "gas constant", NULL, "J/mol/K", 0, R});
+    explanation_add(out, (struct explained_value){"T", "temperature", NULL, "K", 0, T});
+    explanation_add(out, (struct explained_value){"v", "molar volume", NULL, "m3/mol", 0, v});
+    explanation_add(out, (struct explained_value){"p", "pressure", "R * T / v", "Pa", 0, R * T / v});
+    if (with_fugacity) {
+        explanation_add(out, (struct explained_value){"ln_phi", "ln fugacity coefficient", "0", "1", 0, 0.0});
+    }
+    return ANSWER_OK;
+}
+
 const struct fluid_ops ideal_gas_ops = {
     .name = "ideal-gas",
     .title = "ideal gas",
@@ -93,4 +111,5 @@ const struct fluid_ops ideal_gas_ops = {
     .volume = volume_at,
     .smallest_volume = smallest_volume,
     .range = range,
+    .explain = explain,
 };
