@@ -25,7 +25,7 @@ struct phase {
     double volume;        /* m3, for all of n */
     double amount;        /* mol, the sum of n */
     double Z;             /* p V / (n R T) */
-    double dp_dv;         /* Pa/m3 at constant T, n; negative where mechanically stable */
+    double dp_dv;         /* Pa/m3 at constant T, n; negative where mechanically stable; 0 from a (T, p) method */
     double dp_dt;         /* Pa/K at constant V, n */
     enum branch branch;   /* the branch the root was taken from (phase_tp), else BRANCH_STABLE */
     int roots;            /* mechanically stable roots found at this T, p (phase_tp); 0 after phase_tv */
@@ -40,12 +40,14 @@ struct phase {
     double *scratch;      /* [count * (count + 4)], needed for DT, DN and mixtures' DP and DP_DN; else may be NULL */
 };
 
-/* The phase on `branch` at pressure (Pa). BRANCH_STABLE takes the root of lower Gibbs energy. */
+/* The phase on `branch` at pressure (Pa). BRANCH_STABLE takes the root of lower Gibbs energy. A branch ends where
+ * dp/dV first vanishes: ANSWER_NO_SUCH_ROOT beyond. On an isotherm where it never does, both branches are the same. */
 enum answer phase_tp(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
                      unsigned want, struct phase *out);
 
-/* The phase at volume (m3); its pressure may be negative (inside a spinodal). With PHASE_LN_PHI and a pressure that
- * is not positive the answer is ANSWER_OUT_OF_RANGE; PHASE_LN_F answers there too. */
+/* The phase at volume (m3); its pressure may be negative (inside a spinodal). With PHASE_LN_PHI, PHASE_DLN_PHI_DP or
+ * PHASE_RESIDUAL and a pressure that is not positive the answer is ANSWER_OUT_OF_RANGE; PHASE_LN_F answers there too.
+ * ANSWER_CANNOT from a (T, p) method. */
 enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want, struct phase *out);
 
 /* A memory-free home for a pure fluid's arrays: phase_of_pure points a struct phase at it. */
