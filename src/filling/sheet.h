@@ -46,6 +46,12 @@ struct look look_amount(void);                          /* mol */
 struct look look_volume(const struct sheet_run *run);   /* of vessels */
 struct look look_gas_volume(const struct sheet_run *run);
 
+/* The same look with that many significant digits, for tables that span decades. */
+struct look look_significant(struct look look, int digits);
+
+/* "62.00 degC": a number with its unit within a sentence. */
+const char *shown_text(const struct sheet_run *run, struct look look, double si);
+
 /* Warns once a sheet and method where (T, p) lies outside the method's published range; true when inside. */
 bool warn_outside_range(const struct sheet_run *run, const struct method_run *method, double temperature,
                         double pressure);

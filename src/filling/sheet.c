@@ -1,0 +1,235 @@
+/* What the sheets share: how numbers are shown, warnings of range, contents of the vessel, mass of a charge. */
+#include "filling/sheet.h"
+
+#include <math.h>
+#include <stdio.h>
+#include <stdlib.h>
+#include <string.h>
+
+/* The last place shown, in SI: what an equation of state and a plant's instruments can stand for. */
+#define PRESSURE_PLACE   1e3  /* Pa */
+#define DENSITY_PLACE    1e-2 /* kg/m3 */
+#define MASS_PLACE       1e-3 /* kg */
+#define VOLUME_PLACE     1e-5 /* m3, of vessels */
+#define GAS_VOLUME_PLACE 1e-3 /* m3 */
+
+enum { TEMPERATURE_DECIMALS = 2, AMOUNT_DECIMALS = 2, MOST_DECIMALS = 12 };
+
+/* ---- looks ----------------------------------------------------------------------------------------------------- */
+
+/* Decimals that reach `place` in a unit of that factor. */
+static struct look look_to(const char *si_unit, struct shown_unit shown, double place)
+{
+    const double decimals = ceil(log10(shown.factor / place) - 1e-9);
+    return (struct look){si_unit, shown, decimals > 0.0 ? (int)fmin(decimals, MOST_DECIMALS) : 0};
+}
+
+struct look look_temperature(const struct sheet_run *run)
+{
+    return (struct look){"K", run->sheet->units.temperature, TEMPERATURE_DECIMALS};
+}
+
+struct look look_pressure(const struct sheet_run *run)
+{
+    return look_to("Pa", run->sheet->units.pressure, PRESSURE_PLACE);
+}
+
+struct look look_gauge(const struct sheet_run *run)
+{
+    return look_to("Pa", run->sheet->units.gauge, PRESSURE_PLACE);
+}
+
+struct look look_density(const struct sheet_run *run)
+{
+    return look_to("kg/m3", run->sheet->units.density, DENSITY_PLACE);
+}
+
+struct look look_mass(const struct sheet_run *run)
+{
+    return look_to("kg", run->sheet->units.mass, MASS_PLACE);
+}
+
+struct look look_volume(const struct sheet_run *run)
+{
+    return look_to("m3", run->sheet->units.volume, VOLUME_PLACE);
+}
+
+struct look look_gas_volume(const struct sheet_run *run)
+{
+    return look_to("m3", run->sheet->units.gas_volume, GAS_VOLUME_PLACE);
+}
+
+struct look look_ratio(int decimals)
+{
+    return (struct look){"1", {"1", 1.0, 0.0}, decimals};
+}
+
+struct look look_percent(int decimals)
+{
+    return (struct look){"1", {"%", 0.01, 0.0}, decimals};
+}
+
+struct look look_molar_density(void)
+{
+    return (struct look){"mol/m3", {"mol/m3", 1.0, 0.0}, 2};
+}
+
+struct look look_amount(void)
+{
+    return (struct look){"mol", {"mol", 1.0, 0.0}, AMOUNT_DECIMALS};
+}
+
+struct look look_significant(struct look look, int digits)
+{
+    look.decimals = -digits;
+    return look;
+}
+
+/* ---- numbers within sentences ---------------------------------------------------------------------------------- */
+
+const char *shown_text(const struct sheet_run *run, struct look look, double si)
+{
+    const double shown = look_shown(&look, si);
+    if (look.decimals >= 0) {
+        return arena_format(run->arena, "%.*f %s", look.decimals, shown, look.shown.symbol);
+    }
+    return arena_format(run->arena, "%.*g %s", -look.decimals, shown, look.shown.symbol);
+}
+
+static const char *limit_text(const struct sheet_run *run, struct look look, double si)
+{
+    return arena_format(run->arena, "%.7g %s", look_shown(&look, si), look.shown.symbol);
+}
+
+/* ---- published ranges ------------------------------------------------------------------------------------------ */
+
+static bool is_warned(const struct sheet_run *run, const char *opening)
+{
+    for (size_t i = 0; i < run->result->warnings.count; i++) {
+        const struct warning *known = &run->result->warnings.items[i];
+        if (known->code == CODE_W300 && known->sheet == run->number &&
+            strncmp(known->text, opening, strlen(opening)) == 0) {
+            return true;
+        }
+    }
+    return false;
+}
+
+bool warn_outside_range(const struct sheet_run *run, const struct method_run *method, double temperature,
+                        double pressure)
+{
+    const struct range_note note = method->fluid->ops->range(method->fluid, temperature, pressure);
+    if (note.side == RANGE_INSIDE) {
+        return true;
+    }
+    const bool is_pressure = note.side == RANGE_TOO_HIGH_PRESSURE;
+    const struct look look = is_pressure ? look_pressure(run) : look_temperature(run);
+    const char *opening = arena_format(run->arena, "%s, %s: %s the published limit of %s", run->sheet->fluid->name,
+                                       method->name, note.side == RANGE_TOO_COLD ? "below" : "above",
+                                       limit_text(run, look, note.limit));
+    if (!is_warned(run, opening)) {
+        result_warn(run->result, CODE_W300, location_line(run->sheet->at), run->number, "%s, first at %s", opening,
+                    shown_text(run, look, is_pressure ? pressure : temperature));
+    }
+    return false;
+}
+
+/* ---- the vessel and its charge --------------------------------------------------------------------------------- */
+
+enum answer contents_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
+                        struct vessel_contents *out)
+{
+    if (method->fluid == NULL || run->sheet->vessel == NULL) {
+        return ANSWER_CANNOT;
+    }
+    const enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    const double amount = mass / run->sheet->fluid->molar_mass;
+    return closed_vessel_at_tv(method->at_t, run->sheet->vessel->water_capacity.value, amount, out);
+}
+
+/* Molar volume of the lead method's stable phase. */
+static enum answer stable_molar_volume(const struct sheet_run *run, double temperature, double pressure,
+                                       double *molar_volume, enum branch *branch)
+{
+    struct method_run *lead = &run->methods[0];
+    if (lead->fluid == NULL) {
+        return ANSWER_CANNOT;
+    }
+    const double one = 1.0;
+    struct phase phase = {0};
+    enum answer answer = fluid_set_t(lead->at_t, lead->fluid, temperature);
+    if (answer == ANSWER_OK) {
+        answer = stable_phase_tp(lead->at_t, pressure, &one, 0, &phase);
+    }
+    if (answer == ANSWER_OK) {
+        warn_outside_range(run, lead, temperature, pressure);
+        *molar_volume = phase.volume;
+        *branch = phase.branch;
+    }
+    return answer;
+}
+
+static enum answer mass_by_pressure(const struct sheet_run *run, const struct case_charge *charge, double *mass)
+{
+    double molar_volume;
+    enum branch branch;
+    const enum answer answer =
+        stable_molar_volume(run, charge->temperature, charge->amount.value, &molar_volume, &branch);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    *mass = charge->vessel->water_capacity.value / molar_volume * charge->fluid->molar_mass;
+    if (branch == BRANCH_LIQUID) {
+        result_warn(run->result, CODE_W304, location_line(charge->origin.at), run->number,
+                    "charge %s: at %s and %s %s is a liquid, and the vessel is taken as full of it", charge->name,
+                    shown_text(run, look_pressure(run), charge->amount.value),
+                    shown_text(run, look_temperature(run), charge->temperature), charge->fluid->name);
+    }
+    return ANSWER_OK;
+}
+
+static enum answer mass_by_volume(const struct sheet_run *run, const struct case_charge *charge, double *mass)
+{
+    double molar_volume;
+    enum branch branch;
+    const enum answer answer =
+        stable_molar_volume(run, charge->temperature, charge->pressure, &molar_volume, &branch);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    *mass = charge->amount.value / molar_volume * charge->fluid->molar_mass;
+    if (branch == BRANCH_LIQUID) {
+        result_warn(run->result, CODE_W305, location_line(charge->origin.at), run->number,
+                    "charge %s: at %s and %s %s is a liquid; its volume is taken as liquid volume", charge->name,
+                    shown_text(run, look_pressure(run), charge->pressure),
+                    shown_text(run, look_temperature(run), charge->temperature), charge->fluid->name);
+    }
+    return ANSWER_OK;
+}
+
+enum answer charge_mass(const struct sheet_run *run, const struct case_charge *charge, double *mass)
+{
+    const double amount = charge->amount.value;
+    switch (charge->kind) {
+    case FILL_PRESSURE:
+        return mass_by_pressure(run, charge, mass);
+    case FILL_VOLUME:
+        return mass_by_volume(run, charge, mass);
+    case FILL_MASS:
+        *mass = amount;
+        return ANSWER_OK;
+    case FILL_RATIO:
+        *mass = amount * WATER_DENSITY_15C * charge->vessel->water_capacity.value;
+        return ANSWER_OK;
+    case FILL_DENSITY:
+        *mass = amount * charge->vessel->water_capacity.value;
+        return ANSWER_OK;
+    case FILL_MOLES:
+        *mass = amount * charge->fluid->molar_mass;
+        return ANSWER_OK;
+    }
+    return ANSWER_CANNOT;
+}
