@@ -2,6 +2,8 @@
  *
  * A deck is a list of statements. A statement is a word, items, and perhaps a block of statements. What a word means,
  * which items it takes and in which block is the business of elaboration (src/case).
+ * A condition may begin with `at`, `from`, `no`, `one`, and a rule's source with `ref`: such a statement's word is that
+ * marker, and its first item is the marker's item (`at 65 degC ...`: word "at", items ITEM_AT ...).
  *
  * Ownership: all nodes live in the run's arena.
  */
@@ -48,6 +50,7 @@ enum item_kind {
     ITEM_NO,         /* value, a name: `no liquid` */
     ITEM_ONE,        /* value, a name: `one phase` */
     ITEM_REST,       /* the word `rest` */
+    ITEM_FOR,        /* value, a name: `use "equations/argon" for argon` */
     ITEM_KINDS
 };
 

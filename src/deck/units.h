@@ -13,7 +13,7 @@
 
 /* Exponents of the base units. */
 struct dimension {
-    signed char kg, m, s, K, mol;
+    signed char kg, m, s, K, mol, A;
 };
 
 /* What a number stands for beyond its dimension. */
@@ -50,15 +50,16 @@ bool dimension_equal(struct dimension a, struct dimension b);
  * base units into the arena. */
 const char *dimension_name(struct dimension dimension, struct arena *arena);
 
-#define DIMENSION_NONE ((struct dimension){0, 0, 0, 0, 0})
-#define DIMENSION_TEMPERATURE ((struct dimension){0, 0, 0, 1, 0})
-#define DIMENSION_PRESSURE ((struct dimension){1, -1, -2, 0, 0})
-#define DIMENSION_VOLUME ((struct dimension){0, 3, 0, 0, 0})
-#define DIMENSION_MASS ((struct dimension){1, 0, 0, 0, 0})
-#define DIMENSION_AMOUNT ((struct dimension){0, 0, 0, 0, 1})
-#define DIMENSION_DENSITY ((struct dimension){1, -3, 0, 0, 0})
-#define DIMENSION_MOLAR_DENSITY ((struct dimension){0, -3, 0, 0, 1})
-#define DIMENSION_MOLAR_MASS ((struct dimension){1, 0, 0, 0, -1})
-#define DIMENSION_MOLAR_HEAT ((struct dimension){1, 2, -2, -1, -1})
+#define DIMENSION_NONE ((struct dimension){0, 0, 0, 0, 0, 0})
+#define DIMENSION_TEMPERATURE ((struct dimension){0, 0, 0, 1, 0, 0})
+#define DIMENSION_PRESSURE ((struct dimension){1, -1, -2, 0, 0, 0})
+#define DIMENSION_VOLUME ((struct dimension){0, 3, 0, 0, 0, 0})
+#define DIMENSION_MASS ((struct dimension){1, 0, 0, 0, 0, 0})
+#define DIMENSION_AMOUNT ((struct dimension){0, 0, 0, 0, 1, 0})
+#define DIMENSION_DENSITY ((struct dimension){1, -3, 0, 0, 0, 0})
+#define DIMENSION_MOLAR_DENSITY ((struct dimension){0, -3, 0, 0, 1, 0})
+#define DIMENSION_MOLAR_MASS ((struct dimension){1, 0, 0, 0, -1, 0})
+#define DIMENSION_MOLAR_HEAT ((struct dimension){1, 2, -2, -1, -1, 0})
+#define DIMENSION_DIPOLE ((struct dimension){0, 1, 1, 0, 0, 1})
 
 #endif
