@@ -57,14 +57,43 @@ static double total(const double n[], size_t count)
     return sum;
 }
 
-static enum answer all_finite(const double values[], size_t count)
+static bool all_finite(const double values[], size_t count)
 {
     for (size_t i = 0; i < count; i++) {
         if (!isfinite(values[i])) {
-            return ANSWER_FAILED;
+            return false;
         }
     }
-    return ANSWER_OK;
+    return true;
+}
+
+/* ANSWER_OK only if everything that was wanted is a number. */
+static enum answer check_phase(const struct phase *out, size_t count, unsigned want)
+{
+    bool is_good = isfinite(out->pressure) && isfinite(out->Z) && isfinite(out->dp_dv);
+    if (want & PHASE_LN_PHI) {
+        is_good = is_good && all_finite(out->ln_phi, count);
+    }
+    if (want & PHASE_LN_F) {
+        is_good = is_good && all_finite(out->ln_f_over_x, count);
+    }
+    if (want & PHASE_DLN_PHI_DP) {
+        is_good = is_good && all_finite(out->dln_phi_dp, count);
+    }
+    if (want & PHASE_DLN_PHI_DT) {
+        is_good = is_good && isfinite(out->dp_dt) && all_finite(out->dln_phi_dt, count);
+    }
+    if (want & PHASE_DLN_PHI_DN) {
+        is_good = is_good && all_finite(out->dln_phi_dn, count * count);
+    }
+    if (want & PHASE_DP_DN) {
+        is_good = is_good && all_finite(out->dp_dn, count);
+    }
+    if (want & PHASE_RESIDUAL) {
+        is_good = is_good && isfinite(out->dp_dt) && isfinite(out->residual_enthalpy_rt) &&
+                  isfinite(out->residual_entropy_r) && isfinite(out->residual_heat_capacity_r);
+    }
+    return is_good ? ANSWER_OK : ANSWER_FAILED;
 }
 
 /* ---- methods explicit in T, V, n ------------------------------------------------------------------------------- */
@@ -135,34 +164,6 @@ static void set_residuals(const struct helmholtz *F, double gas_constant, struct
     out->residual_entropy_r = (-T * F->F_T - F->F) / n + log(out->Z);
     const double cv_r = -T * (T * F->F_TT + 2.0 * F->F_T) / n;
     out->residual_heat_capacity_r = cv_r - T * out->dp_dt * out->dp_dt / (out->dp_dv * n * R) - 1.0;
-}
-
-static enum answer check_phase(const struct phase *out, size_t count, unsigned want)
-{
-    const double scalars[] = {out->pressure, out->Z, out->dp_dv};
-    enum answer answer = all_finite(scalars, 3);
-    const struct {
-        unsigned bit;
-        const double *values;
-        size_t count;
-    } arrays[] = {
-        {PHASE_LN_PHI, out->ln_phi, count},
-        {PHASE_LN_F, out->ln_f_over_x, count},
-        {PHASE_DLN_PHI_DP, out->dln_phi_dp, count},
-        {PHASE_DLN_PHI_DT, out->dln_phi_dt, count},
-        {PHASE_DLN_PHI_DN, out->dln_phi_dn, count * count},
-        {PHASE_DP_DN, out->dp_dn, count},
-        {PHASE_DLN_PHI_DT | PHASE_RESIDUAL, &out->dp_dt, 1},
-        {PHASE_RESIDUAL, &out->residual_enthalpy_rt, 1},
-        {PHASE_RESIDUAL, &out->residual_entropy_r, 1},
-        {PHASE_RESIDUAL, &out->residual_heat_capacity_r, 1},
-    };
-    for (size_t k = 0; answer == ANSWER_OK && k < sizeof arrays / sizeof *arrays; k++) {
-        if (want & arrays[k].bit) {
-            answer = all_finite(arrays[k].values, arrays[k].count);
-        }
-    }
-    return answer;
 }
 
 /* The phase at `volume`. With `pressure` not NULL the pressure is the one the volume was solved for, to its last
