@@ -15,6 +15,7 @@
 struct cubic_equation {
     const struct cubic_form *form;
     double (*slope)(double acentric);
+    const char *slope_formula; /* the same for readers */
 };
 
 struct cubic_component {
@@ -364,6 +365,21 @@ static enum answer saturation_start(const struct fluid_at_t *at_t, struct satura
     return ANSWER_OK;
 }
 
+struct cubic_parameters cubic_parameters_at(const struct fluid_at_t *at_t)
+{
+    const struct cubic_fluid *cubic = fluid_of(at_t);
+    const struct cubic_component *component = &cubic->component[0];
+    const double R = at_t->fluid->gas_constant;
+    return (struct cubic_parameters){
+        .form = cubic->equation->form,
+        .slope_formula = cubic->equation->slope_formula,
+        .a_critical = component->a_critical * R,
+        .a = ((const struct cubic_at_t *)at_t)->pair[0] * R * at_t->temperature,
+        .b = component->b,
+        .m = component->m,
+    };
+}
+
 /* ---- the equations --------------------------------------------------------------------------------------------- */
 
 #define SQUARE_ROOT_OF_2 1.41421356237309505
@@ -407,8 +423,16 @@ static double soave_slope(double acentric)
     return 0.480 + acentric * (1.574 - 0.176 * acentric);
 }
 
-static const struct cubic_equation PENG_ROBINSON = {&PENG_ROBINSON_FORM, peng_robinson_slope};
-static const struct cubic_equation SOAVE_REDLICH_KWONG = {&REDLICH_KWONG_FORM, soave_slope};
+static const struct cubic_equation PENG_ROBINSON = {
+    &PENG_ROBINSON_FORM,
+    peng_robinson_slope,
+    "0.37464 + 1.54226 * omega - 0.26992 * omega ^ 2",
+};
+static const struct cubic_equation SOAVE_REDLICH_KWONG = {
+    &REDLICH_KWONG_FORM,
+    soave_slope,
+    "0.480 + 1.574 * omega - 0.176 * omega ^ 2",
+};
 
 static struct fluid *create_peng_robinson(const struct fluid_spec *spec, struct arena *arena,
                                           struct fluid_lack_report *lack)
@@ -426,7 +450,7 @@ static struct fluid *create_soave_redlich_kwong(const struct fluid_spec *spec, s
 #define CUBIC_OPS                                                                                                      \
     .form = FLUID_FROM_TV, .capabilities = CAN_LIQUID | CAN_MIXTURE | CAN_CALORIC, .at_t_size = at_t_size,             \
     .set_t = set_t, .tv = tv, .volume = volume_at, .smallest_volume = covolume, .range = range,                        \
-    .critical = critical, .saturation_start = saturation_start
+    .critical = critical, .saturation_start = saturation_start, .explain = cubic_explain
 
 const struct fluid_ops peng_robinson_ops = {
     .name = "peng-robinson",

@@ -10,6 +10,7 @@
 #ifndef TAREWRIGHT_FLUID_CUBIC_INTERNAL_H
 #define TAREWRIGHT_FLUID_CUBIC_INTERNAL_H
 
+#include "fluid/explanation.h"
 #include "fluid/fluid.h"
 
 enum { CUBIC_FIT_TERMS = 9 };
@@ -47,5 +48,20 @@ enum answer cubic_packing(const struct cubic_form *form, double theta, double pi
 /* First values of the packings of vapour and liquid at equilibrium, for theta above the critical one: relative to the
  * distance from the critical point, to 2e-5 (liquid) and 4e-3 (vapour) for theta up to 33 times the critical one. */
 void cubic_saturation_guess(const struct cubic_form *form, double theta, double *vapour, double *liquid);
+
+/* A pure fluid's parameters at the temperature set, with the equation's own wording for what tells it apart. */
+struct cubic_parameters {
+    const struct cubic_form *form;
+    const char *slope_formula;           /* m of omega, in the manner of fluid/explanation.h */
+    double a_critical, a;                /* J m3/mol2 */
+    double b;                            /* m3/mol */
+    double m;
+};
+
+struct cubic_parameters cubic_parameters_at(const struct fluid_at_t *at_t);
+
+/* struct fluid_ops' explain. */
+enum answer cubic_explain(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
+                          struct explanation *out);
 
 #endif

@@ -89,12 +89,12 @@ static enum answer explain(const struct fluid_at_t *at_t, double molar_volume, b
     if (!(v > 0.0)) {
         return ANSWER_OUT_OF_RANGE;
     }
-    explanation_add(out, (struct explained_value){"R", "gas constant", NULL, "J/mol/K", 0, R});
-    explanation_add(out, (struct explained_value){"T", "temperature", NULL, "K", 0, T});
-    explanation_add(out, (struct explained_value){"v", "molar volume", NULL, "m3/mol", 0, v});
-    explanation_add(out, (struct explained_value){"p", "pressure", "R * T / v", "Pa", 0, R * T / v});
+    explanation_add(out, (struct explained_value){"R", "gas constant", NULL, "J/mol/K", 0, R, false});
+    explanation_add(out, (struct explained_value){"T", "temperature", NULL, "K", 0, T, false});
+    explanation_add(out, (struct explained_value){"v", "molar volume", NULL, "m3/mol", 0, v, false});
+    explanation_add(out, (struct explained_value){"p", "pressure", "R * T / v", "Pa", 0, R * T / v, false});
     if (with_fugacity) {
-        explanation_add(out, (struct explained_value){"ln_phi", "ln fugacity coefficient", "0", "1", 0, 0.0});
+        explanation_add(out, (struct explained_value){"ln_phi", "ln fugacity coefficient", "0", "1", 0, 0.0, false});
     }
     return ANSWER_OK;
 }
