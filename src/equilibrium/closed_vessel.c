@@ -43,6 +43,15 @@ static void two_phases(double volume, double amount, struct vessel_contents *out
     out->liquid_fraction = out->liquid_amount * v_L / volume;
 }
 
+/* Within 1e-7 or so of the critical temperature the two phases cannot be told apart, and the vessel is taken to hold
+ * one: the pressure is then wrong by less than rounding, as the unstable loop's height shrinks with (1 - T/Tc)^1.5. */
+static bool is_beside_critical(const struct fluid_at_t *at_t)
+{
+    struct critical_point critical;
+    return at_t->fluid->ops->critical(at_t->fluid, &critical) == ANSWER_OK &&
+           at_t->temperature > SATURATION_HIGHEST_REDUCED_TEMPERATURE * critical.temperature;
+}
+
 enum answer closed_vessel_at_tv(const struct fluid_at_t *at_t, double volume, double amount,
                                 struct vessel_contents *out)
 {
@@ -54,7 +63,7 @@ enum answer closed_vessel_at_tv(const struct fluid_at_t *at_t, double volume, do
     if (answer == ANSWER_CANNOT) {
         return at_t->fluid->count == 1 ? single_phase(at_t, volume, amount, VESSEL_GAS, out) : ANSWER_CANNOT;
     }
-    if (answer == ANSWER_NO_SUCH_ROOT) {
+    if (answer == ANSWER_NO_SUCH_ROOT || (answer == ANSWER_FAILED && is_beside_critical(at_t))) {
         return single_phase(at_t, volume, amount, VESSEL_SUPERCRITICAL, out);
     }
     if (answer != ANSWER_OK) {

@@ -29,8 +29,9 @@ enum { MOST_STEPS = 60, MOST_RETREATS = 40, MOST_BISECTIONS = 200, MOST_TEMPERAT
 #define LARGEST_STEP 0.4
 /* Pressures searched when the first values fail: down to exp(-600) of the critical one. */
 #define LEAST_LN_REDUCED_PRESSURE (-600.0)
-/* Relative error in the pressure accepted by saturation_at_p: rounding in ln f_L is a few parts in 1e14. */
-#define PRESSURE_TOLERANCE 1e-12
+/* Relative error in the pressure accepted by saturation_at_p. Far below the critical point rounding in a long
+ * equation's ln f_L reaches 1e-12, and Newton's steps end well below this wherever they can. */
+#define PRESSURE_TOLERANCE 1e-11
 
 static const double ONE_MOLE[] = {1.0};
 
@@ -294,8 +295,8 @@ enum answer saturation_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, 
     for (int count = 0; count < MOST_TEMPERATURES && high - low > 2.0 * DBL_EPSILON * high; count++) {
         if (fluid_set_t(at_t, fluid, T) != ANSWER_OK || saturation_at_t(at_t, out) != ANSWER_OK ||
             saturation_slope(at_t, out, &slope) != ANSWER_OK) {
-            /* Only the last stretch below the critical temperature should fail: go back from there. */
-            high = T;
+            /* Too close to the critical temperature, or colder than the equation has a liquid for. */
+            *(T > SATURATION_HIGHEST_REDUCED_TEMPERATURE * critical.temperature ? &high : &low) = T;
             T = 0.5 * (low + high);
             continue;
         }
@@ -354,10 +355,6 @@ enum answer saturation_passes(const struct fluid_at_t *at_t, double start, size_
 
 /* ---- the stable phase ------------------------------------------------------------------------------------------ */
 
-/* Closer to the critical temperature than saturation is promised, a state that cannot be placed by it is taken as the
- * root of lower Gibbs energy. */
-#define SATURATION_HIGHEST_REDUCED_TEMPERATURE 0.9999
-
 static enum answer stable_branch(const struct fluid_at_t *at_t, double pressure, enum branch *branch)
 {
     const struct fluid *fluid = at_t->fluid;
@@ -380,6 +377,7 @@ static enum answer stable_branch(const struct fluid_at_t *at_t, double pressure,
         *branch = pressure < saturation.pressure ? BRANCH_VAPOUR : BRANCH_LIQUID;
         return ANSWER_OK;
     }
+    /* Closer to the critical temperature a state that saturation cannot place is the root of lower Gibbs energy. */
     return at_t->temperature > SATURATION_HIGHEST_REDUCED_TEMPERATURE * critical.temperature ? ANSWER_OK : solved;
 }
 

@@ -19,6 +19,8 @@ struct saturation {
 /* Largest |ln fV - ln fL|, and smallest rhoL/rhoV - 1, of a saturation that is reported. */
 #define SATURATION_LN_F_TOLERANCE 1e-10
 #define SATURATION_LEAST_CONTRAST 1e-3
+/* To this T / Tc saturation is promised. Beyond it is found as far as the contrast allows, to about 1 - 1e-7. */
+#define SATURATION_HIGHEST_REDUCED_TEMPERATURE 0.9999
 
 /* Saturation of the pure fluid at the temperature set. ANSWER_NO_SUCH_ROOT at or above the critical temperature;
  * ANSWER_CANNOT where the method has no liquid; ANSWER_FAILED rather than a value that misses the tolerances. */
