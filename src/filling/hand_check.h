@@ -8,6 +8,7 @@
 #define TAREWRIGHT_FILLING_HAND_CHECK_H
 
 #include "filling/sheet.h"
+#include "fluid/explanation.h"
 
 /* Mass, amount of substance and molar volume of `mass` kg in the sheet's vessel: n = m / M, v = V / n. */
 void hand_check_amount(const struct sheet_run *run, struct hand_check *check, double mass);
@@ -33,5 +34,9 @@ void hand_check_ratio(const struct sheet_run *run, struct hand_check *check, dou
 /* Pressure (Pa absolute) against a gauge bound (Pa above `gauge_zero`): p - zero, bound, and the margin. */
 void hand_check_gauge(const struct sheet_run *run, struct hand_check *check, double pressure, double gauge_zero,
                       double bound);
+
+/* Any named numbers, each with its formula and the numbers put in: for checks that a sheet puts together itself
+ * (explanation_add fills them in). */
+void hand_check_numbers(const struct sheet_run *run, struct hand_check *check, const struct explanation *numbers);
 
 #endif

@@ -1,9 +1,8 @@
 /* What the sheets share: how numbers are shown, warnings of range, contents of the vessel, mass of a charge. */
 #include "filling/sheet.h"
 
+#include <float.h>
 #include <math.h>
-#include <stdio.h>
-#include <stdlib.h>
 #include <string.h>
 
 /* The last place shown, in SI: what an equation of state and a plant's instruments can stand for. */
@@ -232,4 +231,13 @@ enum answer charge_mass(const struct sheet_run *run, const struct case_charge *c
         return ANSWER_OK;
     }
     return ANSWER_CANNOT;
+}
+
+double ratio_rounded_down(double ratio, double step)
+{
+    /* A step such as 0.01 is taken as 1 / 100, so that 76 of them are the double nearest to 0.76. */
+    const double multiples = floor(ratio / step * (1.0 + 4.0 * DBL_EPSILON));
+    const double parts = round(1.0 / step);
+    const bool is_part = step < 1.0 && fabs(parts * step - 1.0) <= 4.0 * DBL_EPSILON;
+    return is_part ? multiples / parts : multiples * step;
 }

@@ -66,6 +66,9 @@ enum answer charge_mass(const struct sheet_run *run, const struct case_charge *c
 /* Density of water at 15 degC in kg/m3, the base of filling ratios. */
 #define WATER_DENSITY_15C 999.1
 
+/* The largest multiple of `step` that is not above `ratio` (a ratio within rounding of a multiple is that multiple). */
+double ratio_rounded_down(double ratio, double step);
+
 /* One file for each kind. */
 void answer_permissible_charge(struct sheet_run *run);
 void answer_settled_pressure(struct sheet_run *run);
