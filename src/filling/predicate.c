@@ -1,0 +1,314 @@
+#include "filling/predicate_internal.h"
+#include "filling/search.h"
+
+#include <float.h>
+#include <math.h>
+
+/* Values of `=` that agree to this part of the bound are equal. */
+#define EQUAL_TOLERANCE 1e-9
+
+#define RANGE_STEP 0.5         /* K: features narrower than this may be missed */
+#define RANGE_TOLERANCE 0.0005 /* K: half of the 1 mK promised */
+
+double vessel_symbol(const struct case_vessel *vessel, enum case_symbol symbol)
+{
+    const struct quantity *rating = NULL;
+    if (symbol == SYMBOL_TEST_PRESSURE) {
+        rating = &vessel->test_pressure;
+    } else if (symbol == SYMBOL_WORKING_PRESSURE) {
+        rating = &vessel->working_pressure;
+    } else if (symbol == SYMBOL_SERVICE_PRESSURE) {
+        rating = &vessel->service_pressure;
+    }
+    return rating != NULL && rating->given ? rating->value : (double)NAN;
+}
+
+/* ---- values of the symbols --------------------------------------------------------------------------------------- */
+
+struct symbols {
+    const struct sheet_run *run;
+    double mass;
+    const struct vessel_contents *contents; /* NULL: none needed */
+};
+
+static double contents_symbol(const struct symbols *symbols, enum case_symbol symbol)
+{
+    const struct vessel_contents *contents = symbols->contents;
+    if (contents == NULL) {
+        return (double)NAN;
+    }
+    if (symbol == SYMBOL_PRESSURE) {
+        return contents->pressure;
+    }
+    if (symbol == SYMBOL_VAPOUR_PRESSURE) {
+        return contents->has_saturation ? contents->saturation.pressure : (double)NAN;
+    }
+    if (symbol == SYMBOL_LIQUID_VOLUME) {
+        return contents->liquid_fraction;
+    }
+    return contents->liquid_molar_volume > 0.0 ? symbols->run->sheet->fluid->molar_mass / contents->liquid_molar_volume
+                                               : (double)NAN;
+}
+
+static double symbol_value(void *context, enum case_symbol symbol)
+{
+    const struct symbols *symbols = context;
+    const struct case_vessel *vessel = symbols->run->sheet->vessel;
+    const double density = symbols->mass / vessel->water_capacity.value;
+    switch (symbol) {
+    case SYMBOL_DENSITY:
+        return density;
+    case SYMBOL_FILLING_RATIO:
+        return density / WATER_DENSITY_15C;
+    case SYMBOL_TEST_PRESSURE:
+    case SYMBOL_WORKING_PRESSURE:
+    case SYMBOL_SERVICE_PRESSURE:
+        return vessel_symbol(vessel, symbol);
+    case SYMBOL_PRESSURE:
+    case SYMBOL_VAPOUR_PRESSURE:
+    case SYMBOL_LIQUID_DENSITY:
+    case SYMBOL_LIQUID_VOLUME:
+        return contents_symbol(symbols, symbol);
+    case SYMBOLS:
+        break;
+    }
+    return (double)NAN;
+}
+
+static bool mentions(const struct predicate *predicate, enum case_symbol symbol)
+{
+    return predicate->quantity == symbol || formula_mentions(predicate->bound, symbol);
+}
+
+static bool needs_contents(const struct predicate *predicate)
+{
+    return mentions(predicate, SYMBOL_PRESSURE) || mentions(predicate, SYMBOL_VAPOUR_PRESSURE) ||
+           mentions(predicate, SYMBOL_LIQUID_DENSITY) || mentions(predicate, SYMBOL_LIQUID_VOLUME);
+}
+
+/* ---- the kinds of predicate -------------------------------------------------------------------------------------- */
+
+static struct predicate_finding undecided(enum answer answer, double temperature, const char *words)
+{
+    return (struct predicate_finding){.answer = answer, .worst_temperature = temperature, .words = words};
+}
+
+static void decide(struct predicate_finding *finding, bool holds, double distance, const char *words, double *score)
+{
+    finding->holds = holds;
+    finding->words = words;
+    *score = holds ? fabs(distance) : -fmax(fabs(distance), DBL_MIN);
+}
+
+static void compare(struct predicate_finding *finding, const struct predicate *predicate, double value, double bound,
+                    double *score)
+{
+    const double above = value - (bound + (predicate->bound_is_gauge ? predicate->gauge_zero : 0.0));
+    bool holds = false;
+    switch (predicate->relation) {
+    case RELATION_LESS:
+        holds = above < 0.0;
+        finding->margin = -above;
+        break;
+    case RELATION_AT_MOST:
+        holds = above <= 0.0;
+        finding->margin = -above;
+        break;
+    case RELATION_EQUAL:
+        holds = fabs(above) <= EQUAL_TOLERANCE * fabs(bound);
+        finding->margin = -fabs(above);
+        break;
+    case RELATION_AT_LEAST:
+        holds = above >= 0.0;
+        finding->margin = above;
+        break;
+    case RELATION_GREATER:
+        holds = above > 0.0;
+        finding->margin = above;
+        break;
+    }
+    finding->has_margin = true;
+    decide(finding, holds, finding->margin, NULL, score);
+}
+
+/* A rule on the liquid's density speaks of the liquid beside vapour: none present, it is met; nothing else present,
+ * it is failed. True when that settled it. */
+static bool settle_liquid_density(struct predicate_finding *finding, double molar_volume, double *score)
+{
+    const struct vessel_contents *contents = &finding->worst;
+    if (contents->state == VESSEL_TWO_PHASE) {
+        return false;
+    }
+    if (contents->state == VESSEL_LIQUID_FULL) {
+        decide(finding, false, log(contents->saturation.liquid_volume / molar_volume), "liquid-full", score);
+        return true;
+    }
+    decide(finding, true, (double)INFINITY, "no liquid present", score);
+    return true;
+}
+
+static struct predicate_finding compare_at(const struct sheet_run *run, const struct predicate *predicate, double mass,
+                                           struct predicate_finding finding, double *score)
+{
+    const struct vessel_contents *contents = &finding.worst;
+    if (finding.has_contents && contents->state == VESSEL_GAS &&
+        (mentions(predicate, SYMBOL_LIQUID_DENSITY) || mentions(predicate, SYMBOL_LIQUID_VOLUME) ||
+         mentions(predicate, SYMBOL_VAPOUR_PRESSURE))) {
+        return undecided(ANSWER_CANNOT, finding.worst_temperature, "this method knows no liquid");
+    }
+    if (mentions(predicate, SYMBOL_VAPOUR_PRESSURE) && !contents->has_saturation) {
+        return undecided(ANSWER_CANNOT, finding.worst_temperature,
+                         "not applicable: above the critical temperature there is no vapour pressure");
+    }
+    if (mentions(predicate, SYMBOL_LIQUID_DENSITY) &&
+        settle_liquid_density(&finding, run->sheet->vessel->water_capacity.value * run->sheet->fluid->molar_mass / mass,
+                              score)) {
+        return finding;
+    }
+    struct symbols symbols = {run, mass, finding.has_contents ? contents : NULL};
+    const double value = symbol_value(&symbols, predicate->quantity);
+    const double bound = formula_value(predicate->bound, symbol_value, &symbols);
+    if (!isfinite(value) || !isfinite(bound)) {
+        return undecided(ANSWER_FAILED, finding.worst_temperature,
+                         isfinite(value) ? "the bound has no value here" : "the quantity has no value here");
+    }
+    compare(&finding, predicate, value, bound, score);
+    return finding;
+}
+
+/* `no liquid` asks whether any density up to the vessel's would condense: for a pure gas, whether its density is above
+ * the dew density. `one phase` asks about the vessel's own density alone. */
+static struct predicate_finding phases_at(enum predicate_kind kind, double molar_volume,
+                                          struct predicate_finding finding, double *score)
+{
+    const struct saturation *saturation = &finding.worst.saturation;
+    switch (finding.worst.state) {
+    case VESSEL_GAS:
+        return undecided(ANSWER_CANNOT, finding.worst_temperature, "this method knows no liquid");
+    case VESSEL_SUPERCRITICAL:
+        decide(&finding, true, (double)INFINITY, "above the critical temperature", score);
+        break;
+    case VESSEL_VAPOUR:
+        decide(&finding, true, log(molar_volume / saturation->vapour_volume), "vapour", score);
+        break;
+    case VESSEL_TWO_PHASE: {
+        const double below_dew = log(saturation->vapour_volume / molar_volume);
+        const double above_bubble = log(molar_volume / saturation->liquid_volume);
+        decide(&finding, false, kind == PREDICATE_ONE_PHASE ? fmin(below_dew, above_bubble) : below_dew,
+               "vapour + liquid", score);
+        break;
+    }
+    case VESSEL_LIQUID_FULL:
+        decide(&finding, kind == PREDICATE_ONE_PHASE,
+               kind == PREDICATE_ONE_PHASE ? log(saturation->liquid_volume / molar_volume)
+                                           : log(saturation->vapour_volume / molar_volume),
+               "liquid-full", score);
+        break;
+    }
+    return finding;
+}
+
+/* No method here has a solid: the triple point alone decides, and below it nothing can be said. */
+static struct predicate_finding no_solid_at(const struct sheet_run *run, double temperature, double *score)
+{
+    struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
+    double distance = (double)INFINITY;
+    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
+        const struct quantity *triple = &run->sheet->fluid->components[i]->triple_temperature;
+        if (!triple->given) {
+            return undecided(ANSWER_CANNOT, temperature, "the triple temperature is not given");
+        }
+        if (temperature < triple->value) {
+            return undecided(ANSWER_CANNOT, temperature, "below the triple point, where no method here has a solid");
+        }
+        distance = fmin(distance, temperature - triple->value);
+    }
+    decide(&finding, true, distance, "above the triple point", score);
+    return finding;
+}
+
+/* ---- one temperature --------------------------------------------------------------------------------------------- */
+
+/* More gas than the method's densest state: no pressure holds it, so every question about the contents is failed. */
+static bool is_overfull(const struct sheet_run *run, const struct method_run *method, double mass, double temperature)
+{
+    if (fluid_set_t(method->at_t, method->fluid, temperature) != ANSWER_OK) {
+        return false;
+    }
+    const double n[] = {mass / run->sheet->fluid->molar_mass};
+    return method->fluid->count == 1 && run->sheet->vessel->water_capacity.value <= phase_smallest_volume(method->at_t, n);
+}
+
+static struct predicate_finding find_contents(const struct sheet_run *run, struct method_run *method, double mass,
+                                              double temperature, double *score)
+{
+    struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
+    const enum answer answer = contents_at(run, method, mass, temperature, &finding.worst);
+    if (answer == ANSWER_OK) {
+        finding.has_contents = true;
+    } else if (answer == ANSWER_OUT_OF_RANGE && is_overfull(run, method, mass, temperature)) {
+        decide(&finding, false, (double)INFINITY, "denser than any state the method knows", score);
+    } else {
+        return undecided(answer, temperature, "the method gave no answer");
+    }
+    return finding;
+}
+
+struct predicate_finding predicate_at(const struct sheet_run *run, struct method_run *method,
+                                      const struct predicate *predicate, double mass, double temperature, double *score)
+{
+    *score = 0.0;
+    if (predicate->kind == PREDICATE_NO_SOLID) {
+        return no_solid_at(run, temperature, score);
+    }
+    struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
+    if (predicate->kind != PREDICATE_COMPARE || needs_contents(predicate)) {
+        finding = find_contents(run, method, mass, temperature, score);
+        if (finding.answer != ANSWER_OK || !finding.has_contents) {
+            return finding;
+        }
+    }
+    if (predicate->kind == PREDICATE_COMPARE) {
+        return compare_at(run, predicate, mass, finding, score);
+    }
+    return phases_at(predicate->kind, run->sheet->vessel->water_capacity.value * run->sheet->fluid->molar_mass / mass,
+                     finding, score);
+}
+
+/* ---- a range of temperatures ------------------------------------------------------------------------------------- */
+
+struct range_search {
+    const struct sheet_run *run;
+    struct method_run *method;
+    const struct predicate *predicate;
+    double mass;
+    struct predicate_finding undecided; /* the one that ended the search */
+};
+
+static enum answer score_at_temperature(void *context, double temperature, double *score)
+{
+    struct range_search *search = context;
+    const struct predicate_finding finding =
+        predicate_at(search->run, search->method, search->predicate, search->mass, temperature, score);
+    if (finding.answer != ANSWER_OK) {
+        search->undecided = finding;
+    }
+    return finding.answer;
+}
+
+struct predicate_finding predicate_check(const struct sheet_run *run, struct method_run *method,
+                                         const struct predicate *predicate, double mass)
+{
+    double worst = predicate->from, score;
+    if (predicate->to > predicate->from) {
+        struct range_search search = {.run = run, .method = method, .predicate = predicate, .mass = mass};
+        const struct search_function function = {score_at_temperature, &search};
+        const enum answer answer =
+            search_least(&function, predicate->from, predicate->to, RANGE_STEP, RANGE_TOLERANCE, &worst, &score);
+        if (answer != ANSWER_OK) {
+            return search.undecided.answer != ANSWER_OK ? search.undecided
+                                                        : undecided(answer, worst, "the worst temperature was not found");
+        }
+    }
+    return predicate_at(run, method, predicate, mass, worst, &score);
+}
