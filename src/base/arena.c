@@ -114,14 +114,19 @@ void *arena_try(struct arena *arena, size_t count, size_t size)
     return taken;
 }
 
+void arena_give_up(struct arena *arena)
+{
+    if (!arena->exhausted) {
+        abort();
+    }
+    longjmp(*arena->exhausted, 1);
+}
+
 void *arena_alloc(struct arena *arena, size_t count, size_t size)
 {
     void *taken = arena_try(arena, count, size);
     if (!taken) {
-        if (!arena->exhausted) {
-            abort();
-        }
-        longjmp(*arena->exhausted, 1);
+        arena_give_up(arena);
     }
     return taken;
 }

@@ -36,6 +36,9 @@ void *arena_alloc(struct arena *arena, size_t count, size_t size);
 /* As arena_alloc, but NULL when memory runs out. */
 void *arena_try(struct arena *arena, size_t count, size_t size);
 
+/* What arena_alloc does when memory runs out, for those who used arena_try and have given back what they held. */
+_Noreturn void arena_give_up(struct arena *arena);
+
 /* A copy of `length` bytes of `text` with a closing NUL. */
 char *arena_copy_text(struct arena *arena, const char *text, size_t length);
 
