@@ -37,7 +37,8 @@ struct unit {
 };
 
 /* The unit written as `symbol` ("bar", "kg/L", "J/mol/K"); composed ones are parsed: atoms joined by '.' and '/', each
- * perhaps with an integer power ("m3", "s-2"). False when it is not known. */
+ * perhaps with an integer power ("m3", "s-2"). False when it is not known. A composed unit's shown.symbol is the pointer
+ * passed in, an atom's the table's. Gauge, absolute and point units do not compose. */
 bool unit_find(const char *symbol, size_t length, struct unit *out);
 
 /* All atoms of the table, for help and for "did you mean". */
