@@ -11,10 +11,14 @@
 /* The listing: plain text, at most 100 columns (a longer word of the deck's own is wrapped). */
 void report_listing(const struct result *result, struct text *out);
 
+/* The parts of one sheet as the listing draws them, without a heading. */
+void report_sheet_parts(const struct result_sheet *sheet, struct text *out);
+
 /* The same tree as JSON, SI, 17 significant digits, a closing newline. False when memory ran out. */
 bool report_json(const struct result *result, struct text *out);
 
-/* One table as comma-separated values: a header row of `name [unit]`, units as shown, 17 significant digits. */
+/* One table as comma-separated values: a header row of `name [unit]`, units as shown, full precision (the shortest text
+ * that reads back as the same number); empty cells are empty fields. */
 void report_csv(const struct table *table, struct text *out);
 
 #endif
