@@ -33,6 +33,10 @@ struct sheet_run {
     struct method_run *methods; /* lead first */
 };
 
+/* A method ready for a fluid, or with `lack` set. Ideal gas is never allowed to govern, whatever `may_govern` says. */
+struct method_run method_run_create(const struct case_fluid *fluid, const char *method, bool may_govern,
+                                    struct arena *arena);
+
 /* The looks of a sheet: SI unit, the sheet's display unit and the digits its table deserves. */
 struct look look_temperature(const struct sheet_run *run);
 struct look look_pressure(const struct sheet_run *run); /* absolute */
@@ -68,6 +72,9 @@ enum answer charge_mass(const struct sheet_run *run, const struct case_charge *c
 
 /* The largest multiple of `step` that is not above `ratio` (a ratio within rounding of a multiple is that multiple). */
 double ratio_rounded_down(double ratio, double step);
+
+/* The zero of gauge ratings, Pa. */
+#define STANDARD_ATMOSPHERE 101325.0
 
 /* One file for each kind. */
 void answer_permissible_charge(struct sheet_run *run);
