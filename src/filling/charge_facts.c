@@ -1,0 +1,90 @@
+#include "filling/charge_facts.h"
+
+#include "filling/classify.h"
+#include "filling/sensitivities.h"
+
+#define STATED_TEMPERATURE 288.15 /* K: gas volumes and settled pressures are stated at 15 degC */
+#define STATED_PRESSURE    1e5    /* Pa */
+
+bool gas_volume_of(const struct sheet_run *run, struct method_run *method, double mass, double *volume)
+{
+    const double one_mole[] = {1.0};
+    struct phase phase = {0};
+    if (method->fluid == NULL || fluid_set_t(method->at_t, method->fluid, STATED_TEMPERATURE) != ANSWER_OK ||
+        stable_phase_tp(method->at_t, STATED_PRESSURE, one_mole, 0, &phase) != ANSWER_OK ||
+        phase.branch == BRANCH_LIQUID) {
+        return false;
+    }
+    *volume = mass / run->sheet->fluid->molar_mass * phase.volume;
+    return true;
+}
+
+static void add_gas_volume(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    double volume;
+    if (gas_volume_of(run, method, mass, &volume)) {
+        struct fact *fact = sheet_add_fact(run->result, run->out, "gas-volume", volume, look_gas_volume(run));
+        fact->method = method->name;
+        fact->remark = "at 15 degC and 1 bara";
+    }
+}
+
+void add_charge_facts(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    struct result *result = run->result;
+    const struct case_vessel *vessel = run->sheet->vessel;
+    const double density = mass / vessel->water_capacity.value;
+    sheet_add_fact(result, run->out, "mass", mass, look_mass(run));
+    sheet_add_fact(result, run->out, "amount", mass / run->sheet->fluid->molar_mass, look_amount());
+    add_gas_volume(run, method, mass);
+    sheet_add_fact(result, run->out, "density", density, look_density(run));
+    sheet_add_fact(result, run->out, "filling-ratio", density / WATER_DENSITY_15C, look_ratio(4));
+    if (vessel->tare.given) {
+        sheet_add_fact(result, run->out, "gross-weight", vessel->tare.value + mass, look_mass(run))->remark =
+            "tare and charge";
+    }
+    sheet_add_words(result, run->out, "class", class_words(classify_charge(run, method, mass)))->method = method->name;
+}
+
+struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    const struct liquid_end_found found = find_liquid_end(run, method, mass);
+    struct result *result = run->result;
+    switch (found.end) {
+    case LIQUID_END_FULL:
+        sheet_add_fact(result, run->out, "liquid-full-temperature", found.temperature, look_temperature(run))->method =
+            method->name;
+        break;
+    case LIQUID_END_DRY:
+        sheet_add_fact(result, run->out, "last-liquid-temperature", found.temperature, look_temperature(run))->method =
+            method->name;
+        break;
+    case LIQUID_END_CRITICAL:
+        sheet_add_fact(result, run->out, "last-liquid-temperature", found.temperature, look_temperature(run))->method =
+            method->name;
+        break;
+    case LIQUID_END_BELOW:
+        sheet_add_words(result, run->out, "last-liquid-temperature",
+                        arena_format(run->arena, "one phase down to %s",
+                                     shown_text(run, look_temperature(run), found.temperature)))
+            ->method = method->name;
+        break;
+    case LIQUID_END_UNKNOWN:
+        break;
+    }
+    return found;
+}
+
+struct fill_point fill_point_of(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    const struct case_charge *charge = run->sheet->charge;
+    if (charge != NULL && charge->kind == FILL_PRESSURE) {
+        return (struct fill_point){true, charge->temperature, charge->amount.value};
+    }
+    struct vessel_contents contents;
+    if (contents_at(run, method, mass, STATED_TEMPERATURE, &contents) != ANSWER_OK ||
+        contents.state == VESSEL_TWO_PHASE || contents.state == VESSEL_LIQUID_FULL) {
+        return (struct fill_point){.is_known = false};
+    }
+    return (struct fill_point){true, STATED_TEMPERATURE, contents.pressure};
+}

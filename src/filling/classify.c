@@ -1,0 +1,43 @@
+#include "filling/classify.h"
+
+#define COLD_TEMPERATURE          223.15 /* K, -50 degC */
+#define HIGHEST_HIGH_PRESSURE_TC  338.15 /* K, 65 degC */
+
+enum filling_class classify_gas(const struct case_component *component)
+{
+    if (!component->critical_temperature.given) {
+        return CLASS_NONE;
+    }
+    const double Tc = component->critical_temperature.value;
+    if (Tc <= COLD_TEMPERATURE) {
+        return CLASS_COMPRESSED;
+    }
+    return Tc <= HIGHEST_HIGH_PRESSURE_TC ? CLASS_HIGH_PRESSURE_LIQUEFIED : CLASS_LOW_PRESSURE_LIQUEFIED;
+}
+
+/* Saturation below the triple point is that of the undercooled liquid: a gas not condensed by that is not condensed. */
+enum filling_class classify_charge(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    const enum filling_class by_gas = classify_gas(run->sheet->fluid->components[0]);
+    struct vessel_contents contents;
+    if (by_gas == CLASS_NONE || by_gas == CLASS_COMPRESSED ||
+        contents_at(run, method, mass, COLD_TEMPERATURE, &contents) != ANSWER_OK) {
+        return by_gas;
+    }
+    return contents.state == VESSEL_VAPOUR ? CLASS_COMPRESSED : by_gas;
+}
+
+const char *class_words(enum filling_class of)
+{
+    switch (of) {
+    case CLASS_COMPRESSED:
+        return "compressed gas";
+    case CLASS_HIGH_PRESSURE_LIQUEFIED:
+        return "high-pressure liquefied gas";
+    case CLASS_LOW_PRESSURE_LIQUEFIED:
+        return "low-pressure liquefied gas";
+    case CLASS_NONE:
+        break;
+    }
+    return "not known";
+}

@@ -1,0 +1,114 @@
+#include "filling/contents_table.h"
+
+#include "filling/requirement.h"
+
+#include <math.h>
+#include <stdlib.h>
+
+/* Temperatures nearer to each other than this (K) are one row: the table shows hundredths. */
+#define SAME_TEMPERATURE 0.005
+
+const char *contents_words(const struct vessel_contents *contents)
+{
+    switch (contents->state) {
+    case VESSEL_VAPOUR:
+        return "vapour";
+    case VESSEL_TWO_PHASE:
+        return "vapour + liquid";
+    case VESSEL_LIQUID_FULL:
+        return "liquid-full";
+    case VESSEL_SUPERCRITICAL:
+        return "one phase, above critical";
+    case VESSEL_GAS:
+        return "gas";
+    }
+    return "";
+}
+
+enum contents_column { COLUMN_TEMPERATURE, COLUMN_PRESSURE, COLUMN_GAUGE, COLUMN_STATE, COLUMN_LIQUID, COLUMN_ULLAGE,
+                       COLUMN_MARGIN };
+
+struct table *contents_table_begin(const struct sheet_run *run, const char *title, const char *method)
+{
+    struct table *table = sheet_add_table(run->result, run->out, title, method);
+    table_add_column(run->result, table, "temperature", look_temperature(run));
+    table_add_column(run->result, table, "pressure", look_pressure(run));
+    table_add_column(run->result, table, "gauge-pressure", look_gauge(run));
+    table_add_word_column(run->result, table, "state");
+    table_add_column(run->result, table, "liquid-volume", look_percent(1));
+    table_add_column(run->result, table, "ullage", look_percent(1));
+    if (run->sheet->vessel->test_pressure.given) {
+        table_add_column(run->result, table, "margin", look_pressure_difference(run));
+    }
+    return table;
+}
+
+void warn_below_triple(const struct sheet_run *run, double temperature)
+{
+    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
+        const struct case_component *component = run->sheet->fluid->components[i];
+        if (component->triple_temperature.given && temperature < component->triple_temperature.value) {
+            result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,
+                        "below the triple point of %s, %s, a solid may form, which no method here knows",
+                        component->name,
+                        shown_text(run, look_temperature(run), component->triple_temperature.value));
+        }
+    }
+}
+
+static void fill_row(const struct sheet_run *run, struct table *table, struct cell *row,
+                     const struct vessel_contents *contents, bool is_inside)
+{
+    cell_set(&row[COLUMN_PRESSURE], contents->pressure);
+    cell_set(&row[COLUMN_GAUGE], contents->pressure);
+    row[COLUMN_PRESSURE].is_outside_range = row[COLUMN_GAUGE].is_outside_range = !is_inside;
+    cell_set_text(&row[COLUMN_STATE], contents_words(contents));
+    if (contents->has_saturation) {
+        cell_set(&row[COLUMN_LIQUID], contents->liquid_fraction);
+        cell_set(&row[COLUMN_ULLAGE], 1.0 - contents->liquid_fraction);
+    }
+    if (table->column_count > COLUMN_MARGIN) {
+        cell_set(&row[COLUMN_MARGIN],
+                 run->sheet->vessel->test_pressure.value - (contents->pressure - STANDARD_ATMOSPHERE));
+    }
+}
+
+enum answer contents_table_row(const struct sheet_run *run, struct table *table, struct method_run *method, double mass,
+                               double temperature)
+{
+    struct cell *row = table_add_row(run->result, table);
+    cell_set(&row[COLUMN_TEMPERATURE], temperature);
+    warn_below_triple(run, temperature);
+    struct vessel_contents contents;
+    const enum answer answer = contents_at(run, method, mass, temperature, &contents);
+    if (answer != ANSWER_OK) {
+        cell_set_text(&row[COLUMN_STATE], "no answer");
+        result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number,
+                    "%s, %s: no answer for the contents at %s", run->sheet->fluid->name, method->name,
+                    shown_text(run, look_temperature(run), temperature));
+        return answer;
+    }
+    fill_row(run, table, row, &contents, warn_outside_range(run, method, temperature, contents.pressure));
+    return ANSWER_OK;
+}
+
+static int by_value(const void *left, const void *right)
+{
+    const double a = *(const double *)left, b = *(const double *)right;
+    return (a > b) - (a < b);
+}
+
+size_t sorted_temperatures(double temperatures[], size_t count)
+{
+    if (count == 0) {
+        return 0;
+    }
+    qsort(temperatures, count, sizeof *temperatures, by_value);
+    size_t kept = 1;
+    for (size_t i = 1; i < count; i++) {
+        if (temperatures[i] - temperatures[kept - 1] >= SAME_TEMPERATURE) {
+            temperatures[kept++] = temperatures[i];
+        }
+    }
+    return kept;
+}
