@@ -8,7 +8,7 @@
 #include <string.h>
 
 /* Columns of a line, and where the meaning of a short line stands. */
-enum { LINE_COLUMNS = 88, MEANING_COLUMN = 50, NUMBER_DIGITS = 10, ALL_DIGITS = 15 };
+enum { LINE_COLUMNS = 88, MEANING_COLUMN = 40, NUMBER_DIGITS = 10, ALL_DIGITS = 15 };
 
 /* ---- writing numbers and formulas ------------------------------------------------------------------------------ */
 
@@ -40,6 +40,13 @@ static bool is_name_part(char c)
     return isalnum((unsigned char)c) != 0 || c == '_';
 }
 
+/* A negative number keeps its sign in parentheses, unless it stands alone in a function's. */
+static void add_number(struct text *text, const char *number, char after)
+{
+    const bool stands_alone = text->length > 0 && text->bytes[text->length - 1] == '(' && after == ')';
+    text_format(text, number[0] == '-' && !stands_alone ? "(%s)" : "%s", number);
+}
+
 /* The formula of value `index` with every symbol replaced by its number. Every symbol names an earlier value. */
 static const char *with_numbers(struct arena *arena, const struct explanation *numbers, size_t index)
 {
@@ -53,8 +60,7 @@ static const char *with_numbers(struct arena *arena, const struct explanation *n
             }
             const struct explained_value *value = find(numbers, index, at, length);
             if (value != NULL) {
-                const char *number = number_text(arena, value);
-                text_format(&text, number[0] == '-' ? "(%s)" : "%s", number);
+                add_number(&text, number_text(arena, value), at[length]);
                 at += length;
                 continue;
             }
@@ -106,7 +112,7 @@ static void add_given(const struct sheet_run *run, struct hand_check *check, con
     const char *line = arena_format(arena, "%s = %s", value->symbol, value_with_unit(arena, value));
     const char *meaning = value->meaning;
     if (value->terms != 0) {
-        meaning = arena_format(arena, "sum of %zu %s", value->terms, value->meaning);
+        meaning = arena_format(arena, "%zu %s", value->terms, value->meaning);
     }
     add_wrapped(run, check, with_meaning(arena, line, meaning), 2);
 }

@@ -206,13 +206,13 @@ static void add_line_table(const struct sheet_run *run, const struct method_run 
     add_line_columns(run, table, is_lead);
     for (size_t i = 0; i < sweep->count; i++) {
         struct cell *row = table_add_row(run->result, table);
-        cell_set(&row[by_pressure(run) ? LINE_PRESSURE : LINE_TEMPERATURE], sweep->values[i]);
         if (points[i].answer == ANSWER_OK) {
             fill_line_row(run, &points[i], row);
             if (!is_lead && lead[i].answer == ANSWER_OK) {
                 cell_set(&row[LINE_DEVIATION], deviation_of(run, &points[i], &lead[i]));
             }
         }
+        cell_set(&row[by_pressure(run) ? LINE_PRESSURE : LINE_TEMPERATURE], sweep->values[i]);
         cell_set_text(&row[table->column_count - 1], state_words(run, method, sweep->values[i], &points[i]));
     }
 }

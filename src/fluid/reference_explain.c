@@ -116,15 +116,13 @@ struct group_words {
 };
 
 static const struct group_words WORDS[GROUPS] = {
-    [GROUP_POLYNOMIAL] = {"A_pol", "polynomial terms of alphar", "D_pol",
-                          "polynomial terms of delta dalphar/ddelta"},
-    [GROUP_EXPONENTIAL] = {"A_exp", "exponential terms of alphar", "D_exp",
-                           "exponential terms of delta dalphar/ddelta"},
-    [GROUP_GAUSSIAN] = {"A_gau", "Gaussian terms of alphar", "D_gau", "Gaussian terms of delta dalphar/ddelta"},
-    [GROUP_DOUBLE] = {"A_dbl", "double exponential terms of alphar", "D_dbl",
-                      "double exponential terms of delta dalphar/ddelta"},
-    [GROUP_CRITICAL] = {"A_crit", "near-critical terms of alphar", "D_crit",
-                        "near-critical terms of delta dalphar/ddelta"},
+    [GROUP_POLYNOMIAL] = {"A_pol", "polynomial terms, alphar", "D_pol", "polynomial terms, delta dalphar/ddelta"},
+    [GROUP_EXPONENTIAL] = {"A_exp", "exponential terms, alphar", "D_exp", "exponential terms, delta dalphar/ddelta"},
+    [GROUP_GAUSSIAN] = {"A_gau", "Gaussian terms, alphar", "D_gau", "Gaussian terms, delta dalphar/ddelta"},
+    [GROUP_DOUBLE] = {"A_dbl", "double exponential terms, alphar", "D_dbl",
+                      "double exponential terms, delta dalphar/ddelta"},
+    [GROUP_CRITICAL] = {"A_crit", "near-critical terms, alphar", "D_crit",
+                        "near-critical terms, delta dalphar/ddelta"},
 };
 
 static void add(struct explanation *out, const char *symbol, const char *meaning, const char *formula,
