@@ -35,6 +35,12 @@ static const struct {
      -0.22772016828777888, 0.43805694770780326},
     {4, 457.0, 1.1e-3, 4186410.2990383413, {-0.027291136892850286, -0.22680900550777304, 0.093557770515971203},
      -0.35380895846874989, 0.81006074538360996},
+    /* So hot that 1 + m (1 - sqrt(T / Tc)) is negative for some and positive for others. */
+    {2, 1700.0, 3.1e-4, 69651502.060808395,
+     {0.11861239486387413, 0.12882185714444804, 0.13409915045438903, 0.26120495364340818, 0.33547399421501176},
+     0.13809691975493941, 0.11765387908291994},
+    {4, 1900.0, 2.7e-4, 98260356.943403698, {0.17832669687014425, 0.49759238955012309, 0.15515926028551324},
+     0.28117863556971315, -0.00027936604328141788},
 };
 
 static void values_agree_with_an_independent_evaluation(void **state)
@@ -51,7 +57,7 @@ static void values_agree_with_an_independent_evaluation(void **state)
         assert_int_equal(phase_tv(at_t, EVALUATED[k].volume, sample->n, WANTS, phase), ANSWER_OK);
         assert_close(phase->pressure, EVALUATED[k].pressure, 1e-12, what);
         assert_close(phase->residual_enthalpy_rt, EVALUATED[k].enthalpy_rt, 1e-12, what);
-        assert_close(phase->residual_heat_capacity_r, EVALUATED[k].heat_capacity_r, 1e-11, what);
+        assert_near(phase->residual_heat_capacity_r, EVALUATED[k].heat_capacity_r, 1e-11, what);
         for (size_t i = 0; i < sample->count; i++) {
             assert_near(phase->ln_phi[i], EVALUATED[k].ln_phi[i], 1e-12, what);
         }

@@ -308,6 +308,22 @@ static void there_is_no_saturation_at_or_above_the_critical_point(void **state)
     arena_free(arena);
 }
 
+/* The phases of a state this close differ by less than the least contrast: a failure, not a guess. */
+static void phases_too_alike_are_not_reported(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    for (size_t k = 0; k < COUNT(METHODS); k++) {
+        const struct fluid *fluid = sample_pure(METHODS[k], &SAMPLE_SUBSTANCE[PROPANE], arena);
+        for (double distance = 1e-9; distance > 1e-14; distance *= 0.1) {
+            struct saturation found;
+            struct fluid_at_t *at_t = sample_at_t(fluid, critical_temperature(fluid) * (1.0 - distance), arena);
+            assert_int_equal(saturation_at_t(at_t, &found), ANSWER_FAILED);
+        }
+    }
+    arena_free(arena);
+}
+
 static void a_method_without_liquid_and_a_mixture_cannot_answer(void **state)
 {
     (void)state;
@@ -340,6 +356,7 @@ int main(void)
         cmocka_unit_test(the_classical_iteration_ends_at_the_same_pressure),
         cmocka_unit_test(the_classical_iteration_says_when_a_root_is_lost),
         cmocka_unit_test(there_is_no_saturation_at_or_above_the_critical_point),
+        cmocka_unit_test(phases_too_alike_are_not_reported),
         cmocka_unit_test(a_method_without_liquid_and_a_mixture_cannot_answer),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

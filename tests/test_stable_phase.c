@@ -81,6 +81,19 @@ static void above_the_critical_temperature_there_is_no_branch(void **state)
     arena_free(arena);
 }
 
+static void above_the_critical_pressure_a_cold_fluid_is_liquid(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    const double n[] = {1.0};
+    for (size_t k = 0; k < COUNT(METHODS); k++) {
+        struct phase phase = {.ln_phi = NULL};
+        assert_int_equal(stable_phase_tp(propane_at(METHODS[k], 301.0, arena), 7.1e6, n, 0, &phase), ANSWER_OK);
+        assert_int_equal(phase.branch, BRANCH_LIQUID);
+    }
+    arena_free(arena);
+}
+
 static void it_answers_right_up_to_the_critical_temperature(void **state)
 {
     (void)state;
@@ -122,6 +135,7 @@ int main(void)
         cmocka_unit_test(saturation_divides_vapour_from_liquid),
         cmocka_unit_test(no_other_root_has_a_lower_fugacity),
         cmocka_unit_test(above_the_critical_temperature_there_is_no_branch),
+        cmocka_unit_test(above_the_critical_pressure_a_cold_fluid_is_liquid),
         cmocka_unit_test(it_answers_right_up_to_the_critical_temperature),
         cmocka_unit_test(without_a_liquid_the_phase_is_vapour),
     };

@@ -44,7 +44,7 @@ static void two_phases(double volume, double amount, struct vessel_contents *out
 }
 
 /* Within 1e-7 or so of the critical temperature the two phases cannot be told apart, and the vessel is taken to hold
- * one: the pressure is then wrong by less than rounding, as the unstable loop's height shrinks with (1 - T/Tc)^1.5. */
+ * one. Its pressure is then wrong by parts in 1e10: the unstable loop's height shrinks with (1 - T/Tc)^1.5. */
 static bool is_beside_critical(const struct fluid_at_t *at_t)
 {
     struct critical_point critical;
