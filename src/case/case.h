@@ -123,12 +123,14 @@ enum predicate_kind { PREDICATE_COMPARE, PREDICATE_ONE_PHASE, PREDICATE_NO_LIQUI
 struct predicate {
     enum predicate_kind kind;
     double from, to;         /* K; equal for `at` */
-    bool has_temperature;    /* false only for requirements that hold at every swept temperature */
+    bool has_temperature;    /* false for a requirement that holds at every swept temperature, and for a quantity that
+                                does not depend on it (filling-ratio, density) */
     enum case_symbol quantity;
     enum relation relation;
     const struct formula *bound;
     bool bound_is_gauge;     /* the bound is Pa above `gauge_zero`; else absolute or no pressure */
     double gauge_zero;       /* Pa, 101 325 unless stated */
+    bool states_gauge_zero;  /* the predicate or its rule states it */
     bool unless_listed;
     const char *written;     /* "at 65 degC pressure <= test-pressure" */
     struct location at;

@@ -1,0 +1,339 @@
+/* Components: constants of a pure substance, added up from the library's blocks and then the deck's own. */
+#include "case/case_internal.h"
+
+#include <string.h>
+
+static const struct quantity_form CRITICAL_PRESSURE = {.measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE,
+                                                       .least = 0.0, .is_least_open = true, .most = 1e9};
+/* Quantum gases go down to about -0.5; the longest molecules of interest stay below 2. */
+static const struct quantity_form ACENTRIC = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
+                                              .least = -0.5, .most = 2.0};
+
+static const struct quantity_form UN_NUMBER = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
+                                               .least = 1.0, .most = 9999.0, .because = "four digits"};
+
+static void read_formula_text(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    const char *text = read_text(e, statement, "a formula in quotes");
+    component->formula = text != NULL ? text : component->formula;
+}
+
+static void read_title(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    const char *text = read_text(e, statement, "a title in quotes");
+    component->title = text != NULL ? text : component->title;
+}
+
+/* Digits, two digits, one check digit: the sum of the digits, each times its place from the right, modulo ten. */
+static bool is_cas_number(const char *text)
+{
+    const size_t length = strlen(text);
+    if (length < 7 || length > 12 || text[length - 2] != '-' || text[length - 5] != '-') {
+        return false;
+    }
+    int sum = 0;
+    int place = 0;
+    for (size_t i = length - 1; i-- > 0;) {
+        if (text[i] == '-') {
+            if (i != length - 2 && i != length - 5) {
+                return false;
+            }
+            continue;
+        }
+        if (text[i] < '0' || text[i] > '9') {
+            return false;
+        }
+        sum += ++place * (text[i] - '0');
+    }
+    return sum % 10 == text[length - 1] - '0';
+}
+
+static void read_cas(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    const char *text = read_text(e, statement, "a CAS number in quotes");
+    if (text == NULL) {
+        return;
+    }
+    if (!is_cas_number(text)) {
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E213, statement->items->at, "'%s' is no CAS number: its form or check digit is wrong",
+                     shortened(e, text));
+        diagnostic_hint(e->out, said, "as in: cas \"124-38-9\"");
+        return;
+    }
+    component->cas = text;
+}
+
+static void read_un_number(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    struct reading reading = read_items(e, statement);
+    const struct item *item = take_item(&reading, ITEM_EXPRESSION);
+    if (item == NULL) {
+        report_missing(&reading, "a number");
+        return;
+    }
+    double number;
+    if (!read_value(e, &UN_NUMBER, "un-number", item->value, &number) || !finish_items(&reading)) {
+        return;
+    }
+    const unsigned whole = (unsigned)number;
+    if ((double)whole < number) {
+        diagnose(e->out, CODE_E213, item->at, "a UN number is a whole number");
+        return;
+    }
+    component->un_number = whole;
+}
+
+static unsigned hazard_of(enum vocabulary_word word)
+{
+    static const struct {
+        enum vocabulary_word word;
+        enum hazard hazard;
+    } hazards[] = {
+        {WORD_HAZARD_FLAMMABLE, HAZARD_FLAMMABLE},     {WORD_HAZARD_OXIDISING, HAZARD_OXIDISING},
+        {WORD_HAZARD_TOXIC, HAZARD_TOXIC},             {WORD_HAZARD_CORROSIVE, HAZARD_CORROSIVE},
+        {WORD_HAZARD_PYROPHORIC, HAZARD_PYROPHORIC},   {WORD_HAZARD_DECOMPOSES, HAZARD_DECOMPOSES},
+        {WORD_HAZARD_POLYMERISES, HAZARD_POLYMERISES}, {WORD_HAZARD_DISSOLVED, HAZARD_DISSOLVED},
+    };
+    for (size_t i = 0; i < sizeof hazards / sizeof *hazards; i++) {
+        if (hazards[i].word == word) {
+            return hazards[i].hazard;
+        }
+    }
+    return 0;
+}
+
+/* Hazards of a later block replace the earlier ones, as every other value does. */
+static void read_hazard(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    struct reading reading = read_items(e, statement);
+    unsigned hazards = 0;
+    do {
+        const struct vocabulary_row *row = take_choice(&reading, BLOCK_HAZARD, "a hazard");
+        if (row == NULL) {
+            return;
+        }
+        hazards |= hazard_of(row->id);
+    } while (reading.item != NULL);
+    component->hazards = hazards;
+}
+
+static void read_refuse(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct case_component *component = target;
+    const char *text = read_text(e, statement, "a reason in quotes");
+    if (text != NULL) {
+        component->refuse = text;
+        component->refuse_at = statement->at;
+    }
+}
+
+/* Mass density as a second way to write the critical density: kept as written until the molar mass is known. */
+static const struct quantity_form CRITICAL_MASS_DENSITY = {.measure = MEASURE_DENSITY, .reading = READ_NUMBER,
+                                                           .least = 0.0, .is_least_open = true, .most = 1e5};
+
+struct component_target {
+    struct case_component component; /* first, so that the rows' offsets serve both */
+    struct quantity critical_mass_density;
+};
+
+static void read_critical_density(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct component_target *into = target;
+    struct reading reading = read_items(e, statement);
+    struct value value;
+    if (reading.item == NULL || reading.item->kind != ITEM_EXPRESSION) {
+        report_missing(&reading, "a density");
+        return;
+    }
+    if (!value_of(e, reading.item->value, &value)) {
+        return;
+    }
+    const bool is_mass = dimension_equal(value.dimension, DIMENSION_DENSITY);
+    struct quantity *to = is_mass ? &into->critical_mass_density : &into->component.critical_density;
+    struct quantity *other = is_mass ? &into->component.critical_density : &into->critical_mass_density;
+    const struct quantity_form *form = is_mass ? &CRITICAL_MASS_DENSITY : &FORM_MOLAR_DENSITY;
+    if (take_quantity(&reading, form, "critical-density", to) && finish_items(&reading)) {
+        if (other->given) {
+            struct quantity *before = arena_alloc(e->arena, 1, sizeof *before);
+            *before = *other;
+            to->overridden = before;
+        }
+        other->given = false;
+    }
+}
+
+#define QUANTITY(word, form, member) READ_QUANTITY(WORD_COMPONENT_##word, form, struct case_component, member)
+
+static const struct block_row ROWS[] = {
+    READ_ONCE(WORD_COMPONENT_FORMULA, read_formula_text),
+    READ_ONCE(WORD_COMPONENT_TITLE, read_title),
+    READ_ONCE(WORD_COMPONENT_CAS, read_cas),
+    READ_ONCE(WORD_COMPONENT_UN_NUMBER, read_un_number),
+    READ_ONCE(WORD_COMPONENT_HAZARD, read_hazard),
+    READ_ONCE(WORD_COMPONENT_REFUSE, read_refuse),
+    READ_ONCE(WORD_COMPONENT_CRITICAL_DENSITY, read_critical_density),
+    QUANTITY(MOLAR_MASS, NULL, molar_mass),
+    QUANTITY(CRITICAL_TEMPERATURE, NULL, critical_temperature),
+    QUANTITY(CRITICAL_PRESSURE, &CRITICAL_PRESSURE, critical_pressure),
+    QUANTITY(ACENTRIC, &ACENTRIC, acentric),
+    QUANTITY(TRIPLE_TEMPERATURE, NULL, triple_temperature),
+    QUANTITY(TRIPLE_PRESSURE, NULL, triple_pressure),
+    QUANTITY(BOILING_TEMPERATURE, NULL, boiling_temperature),
+    QUANTITY(DIPOLE, NULL, dipole),
+};
+
+static const struct block_form COMPONENT = BLOCK_FORM(BLOCK_COMPONENT, ROWS);
+
+static struct optional optional_of(const struct quantity *quantity)
+{
+    return (struct optional){.given = quantity->given, .value = quantity->value};
+}
+
+/* The plain parameters the methods see. */
+static struct pure_spec spec_of(const struct case_component *component, const struct reference_spec *reference)
+{
+    return (struct pure_spec){
+        .name = component->name,
+        .molar_mass = component->molar_mass.value,
+        .critical_temperature = optional_of(&component->critical_temperature),
+        .critical_pressure = optional_of(&component->critical_pressure),
+        .critical_density = optional_of(&component->critical_density),
+        .acentric = optional_of(&component->acentric),
+        .triple_temperature = optional_of(&component->triple_temperature),
+        .reference = reference,
+    };
+}
+
+/* Blocks of the library first, so that the deck's own word counts wherever it stands. */
+static void read_blocks(struct elaboration *e, const struct named *named, struct component_target *target)
+{
+    const char *group = arena_format(e->arena, "component %s", named->name);
+    for (int own = 0; own < 2; own++) {
+        for (size_t i = 0; i < named->count; i++) {
+            const struct statement *block = named->items[i];
+            if (block->at.file->is_library == (own == 0) && require_block(e, block)) {
+                mark_file_used(e, block->at);
+                read_block(e, &COMPONENT, group, block, target);
+            }
+        }
+    }
+}
+
+static void settle_critical_density(struct component_target *target)
+{
+    const struct quantity *mass_density = &target->critical_mass_density;
+    if (mass_density->given && target->component.molar_mass.given) {
+        struct quantity *molar = &target->component.critical_density;
+        *molar = *mass_density;
+        molar->value /= target->component.molar_mass.value;
+        molar->uncertainty /= target->component.molar_mass.value;
+    }
+}
+
+/* A triple point above the critical one is a slip in one of the two. */
+static void check_order(struct elaboration *e, const struct case_component *component)
+{
+    const struct quantity *triple = &component->triple_temperature;
+    const struct quantity *critical = &component->critical_temperature;
+    if (triple->given && critical->given && !(triple->value < critical->value)) {
+        struct diagnostic *said = diagnose(e->out, CODE_E209, triple->origin.at,
+                                           "the triple temperature %s is not below the critical temperature %s",
+                                           triple->origin.written, critical->origin.written);
+        said->note = "the critical temperature";
+        said->note_at = critical->origin.at;
+    }
+}
+
+static const struct reference_spec *equation_of(struct elaboration *e, struct case_component *component)
+{
+    struct named *equation = names_find(&e->tables[NAMES_EQUATION], component->name);
+    if (equation == NULL) {
+        return NULL;
+    }
+    struct reference_spec *reference = arena_alloc(e->arena, 1, sizeof *reference);
+    const struct case_source *source;
+    if (!build_equation(e, equation, reference, &source)) {
+        return NULL;
+    }
+    component->equation_source = source;
+    return reference;
+}
+
+const struct case_component *build_component(struct elaboration *e, struct named *named)
+{
+    if (named->state != NOT_BUILT) {
+        return named->built;
+    }
+    const size_t before = trouble_so_far(e);
+    struct component_target *target = arena_alloc(e->arena, 1, sizeof *target);
+    target->component.name = named->name;
+    read_blocks(e, named, target);
+    settle_critical_density(target);
+    check_order(e, &target->component);
+    target->component.spec = spec_of(&target->component, equation_of(e, &target->component));
+    named->state = trouble_so_far(e) == before ? BUILT : FAILED;
+    named->built = named->state == BUILT ? &target->component : NULL;
+    return named->built;
+}
+
+const struct case_component *component_of_name(struct elaboration *e, const struct expression *name)
+{
+    struct named *named = named_of_item(e, NAMES_COMPONENT, name, "component");
+    if (named == NULL) {
+        return NULL;
+    }
+    const struct case_component *component = build_component(e, named);
+    if (component == NULL) {
+        return NULL;
+    }
+    if (!component->molar_mass.given) {
+        struct diagnostic *said = diagnose(e->out, CODE_E214, named->at, "component '%s' is used but has no molar-mass",
+                                           shortened(e, named->name));
+        said->note = "used here";
+        said->note_at = name->at;
+        return NULL;
+    }
+    return component;
+}
+
+static const struct case_fluid *make_fluid(struct elaboration *e, const struct case_component *component)
+{
+    struct case_fluid *fluid = arena_alloc(e->arena, 1, sizeof *fluid);
+    const struct case_component **components = arena_alloc(e->arena, 1, sizeof(const struct case_component *));
+    const struct pure_spec **pure = arena_alloc(e->arena, 1, sizeof(const struct pure_spec *));
+    double *fractions = arena_alloc(e->arena, 1, sizeof *fractions);
+    components[0] = component;
+    pure[0] = &component->spec;
+    fractions[0] = 1.0;
+    *fluid = (struct case_fluid){
+        .name = component->name,
+        .count = 1,
+        .components = components,
+        .fractions = fractions,
+        .molar_mass = component->molar_mass.value,
+        .spec = {.count = 1, .pure = pure},
+    };
+    if (!e->is_checking) {
+        *ARENA_APPEND(e->arena, &e->components) = component;
+    }
+    return fluid;
+}
+
+const struct case_fluid *fluid_of_name(struct elaboration *e, const struct expression *name)
+{
+    const struct case_component *component = component_of_name(e, name);
+    if (component == NULL) {
+        return NULL;
+    }
+    struct named *named = names_find(&e->tables[NAMES_COMPONENT], component->name);
+    if (named->fluid == NULL) {
+        named->fluid = make_fluid(e, component);
+    }
+    return named->fluid;
+}

@@ -1,0 +1,251 @@
+/* Which property methods answer a sheet, and why: the sheet's own words, the methods block, or the default. */
+#include "case/case_internal.h"
+
+#include <string.h>
+
+struct choice {
+    const struct vocabulary_row *method;
+    struct location at;
+};
+
+struct choice_list {
+    struct choice *items;
+    size_t count, capacity;
+};
+
+struct methods_block {
+    struct location at;
+    struct choice_list lead, beside, show;
+    enum governing govern;
+};
+
+static bool report_twice(struct elaboration *e, const struct choice *first, struct location at)
+{
+    struct diagnostic *said = diagnose(e->out, CODE_E207, at, "the method '%s' is named twice", first->method->word);
+    said->note = "first named here";
+    said->note_at = first->at;
+    return false;
+}
+
+static bool is_new(struct elaboration *e, const struct choice_list *list, const struct choice *choice)
+{
+    for (size_t i = 0; i < list->count; i++) {
+        if (list->items[i].method == choice->method) {
+            return report_twice(e, &list->items[i], choice->at);
+        }
+    }
+    return true;
+}
+
+/* The rest of the statement as names of methods, added to the list. False after a message. */
+static bool take_methods(struct reading *reading, struct choice_list *list)
+{
+    do {
+        const struct item *item = reading->item;
+        const struct vocabulary_row *method = take_choice(reading, BLOCK_METHOD, "a method");
+        if (method == NULL) {
+            return false;
+        }
+        const struct choice choice = {.method = method, .at = item->at};
+        if (!is_new(reading->e, list, &choice)) {
+            return false;
+        }
+        *ARENA_APPEND(reading->e->arena, list) = choice;
+    } while (reading->item != NULL);
+    return true;
+}
+
+static void read_lead(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct methods_block *block = target;
+    struct reading reading = read_items(e, statement);
+    if (take_methods(&reading, &block->lead) && block->lead.count > 1) {
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E204, block->lead.items[1].at, "one method leads, this is a second");
+        diagnostic_hint(e->out, said, "name it after 'beside' or 'show'");
+    }
+}
+
+static void read_beside(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct methods_block *block = target;
+    struct reading reading = read_items(e, statement);
+    take_methods(&reading, &block->beside);
+}
+
+static void read_show(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct methods_block *block = target;
+    struct reading reading = read_items(e, statement);
+    take_methods(&reading, &block->show);
+}
+
+static void read_govern(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct methods_block *block = target;
+    struct reading reading = read_items(e, statement);
+    const struct vocabulary_row *row = take_choice(&reading, BLOCK_GOVERN, "'lead' or 'strictest'");
+    if (row != NULL && finish_items(&reading)) {
+        block->govern = row->id == WORD_GOVERN_STRICTEST ? GOVERN_STRICTEST : GOVERN_LEAD;
+    }
+}
+
+static const struct block_row ROWS[] = {
+    READ_ONCE(WORD_METHODS_LEAD, read_lead),
+    READ_EACH(WORD_METHODS_BESIDE, read_beside),
+    READ_EACH(WORD_METHODS_SHOW, read_show),
+    READ_ONCE(WORD_METHODS_GOVERN, read_govern),
+};
+static const struct block_form METHODS = BLOCK_FORM(BLOCK_METHODS, ROWS);
+
+/* A method stands in one of the three places only. */
+static void check_places(struct elaboration *e, const struct methods_block *block)
+{
+    for (size_t i = 0; i < block->beside.count; i++) {
+        is_new(e, &block->lead, &block->beside.items[i]);
+    }
+    for (size_t i = 0; i < block->show.count; i++) {
+        if (is_new(e, &block->lead, &block->show.items[i])) {
+            is_new(e, &block->beside, &block->show.items[i]);
+        }
+    }
+}
+
+void read_methods_block(struct elaboration *e)
+{
+    const struct statement *statement = e->methods_statement;
+    if (statement == NULL) {
+        return;
+    }
+    struct reading reading = read_items(e, statement);
+    if (!finish_items(&reading) || !require_block(e, statement)) {
+        return;
+    }
+    struct methods_block *block = arena_alloc(e->arena, 1, sizeof *block);
+    block->at = statement->at;
+    read_block(e, &METHODS, "methods", statement, block);
+    check_places(e, block);
+    mark_file_used(e, statement->at);
+    e->methods = block;
+}
+
+/* What a method needs of a component and does not find; NULL: nothing. */
+static const char *lack_of(enum vocabulary_word method, const struct case_component *component)
+{
+    if (method == WORD_METHOD_REFERENCE) {
+        return component->spec.reference == NULL ? "a published reference equation" : NULL;
+    }
+    if (method != WORD_METHOD_PENG_ROBINSON && method != WORD_METHOD_SOAVE_REDLICH_KWONG) {
+        return NULL;
+    }
+    return !component->critical_temperature.given ? "a critical-temperature"
+           : !component->critical_pressure.given  ? "a critical-pressure"
+           : !component->acentric.given           ? "an acentric factor"
+                                                  : NULL;
+}
+
+/* True when every component has what the method needs; else says what is missing, at `at`. */
+static bool check_data(struct elaboration *e, const struct choice *choice, const struct case_fluid *fluid)
+{
+    for (size_t i = 0; i < fluid->count; i++) {
+        const struct case_component *component = fluid->components[i];
+        const char *lack = lack_of(choice->method->id, component);
+        if (lack == NULL) {
+            continue;
+        }
+        struct diagnostic *said = diagnose(e->out, CODE_E220, choice->at, "%s needs %s of '%s', and there is none",
+                                           choice->method->word, lack, shortened(e, component->name));
+        diagnostic_hint(e->out, said,
+                        choice->method->id == WORD_METHOD_REFERENCE
+                            ? "name another method for this gas, as in 'methods peng-robinson' in the sheet"
+                            : "give it in a component block, or name another method");
+        return false;
+    }
+    return true;
+}
+
+static bool add_choices(struct elaboration *e, const struct choice_list *from, const struct case_fluid *fluid,
+                        struct choice_list *to)
+{
+    bool is_good = true;
+    for (size_t i = 0; i < from->count; i++) {
+        is_good = check_data(e, &from->items[i], fluid) && is_good;
+        *ARENA_APPEND(e->arena, to) = from->items[i];
+    }
+    return is_good;
+}
+
+/* The reference equation where there is one for a pure gas, else Peng and Robinson's. */
+static struct choice default_lead(const struct case_fluid *fluid, struct location at)
+{
+    const bool has_equation = fluid->count == 1 && fluid->components[0]->spec.reference != NULL;
+    const enum vocabulary_word word = has_equation ? WORD_METHOD_REFERENCE : WORD_METHOD_PENG_ROBINSON;
+    return (struct choice){.method = &vocabulary_rows()[word], .at = at};
+}
+
+static const char *default_reason(struct elaboration *e, const struct case_fluid *fluid, const struct choice *lead)
+{
+    const char *asked = e->methods == NULL ? "no methods block" : "the methods block names no lead";
+    return lead->method->id == WORD_METHOD_REFERENCE
+               ? arena_format(e->arena, "%s: the published reference equation of %s leads", asked, fluid->name)
+               : arena_format(e->arena, "%s, and no reference equation of %s is known: peng-robinson leads", asked,
+                              fluid->name);
+}
+
+static void fill_methods(struct elaboration *e, const struct choice_list *choices, size_t may_govern,
+                         struct case_methods *out)
+{
+    const char **names = arena_alloc(e->arena, choices->count, sizeof *names);
+    for (size_t i = 0; i < choices->count; i++) {
+        names[i] = choices->items[i].method->word;
+    }
+    out->count = choices->count;
+    out->names = names;
+    out->may_govern = may_govern;
+    out->govern = e->methods == NULL ? GOVERN_LEAD : e->methods->govern;
+}
+
+static bool choose_own(struct elaboration *e, const struct statement *own, const struct case_fluid *fluid,
+                       struct case_methods *out)
+{
+    struct choice_list written = {.items = NULL};
+    struct choice_list choices = {.items = NULL};
+    struct reading reading = read_items(e, own);
+    if (!take_methods(&reading, &written) || !add_choices(e, &written, fluid, &choices)) {
+        return false;
+    }
+    out->reason = "named in the sheet";
+    out->at = own->at;
+    fill_methods(e, &choices, choices.count, out);
+    return true;
+}
+
+bool choose_methods(struct elaboration *e, const struct statement *own, const struct case_fluid *fluid,
+                    struct location at, struct case_methods *out)
+{
+    if (own != NULL) {
+        return choose_own(e, own, fluid, out);
+    }
+    const struct methods_block *block = e->methods;
+    struct choice_list choices = {.items = NULL};
+    bool is_good = true;
+    if (block != NULL && block->lead.count != 0) {
+        out->reason = "named in the methods block";
+        out->at = block->at;
+        is_good = add_choices(e, &block->lead, fluid, &choices);
+    } else {
+        const struct choice lead = default_lead(fluid, at);
+        out->reason = default_reason(e, fluid, &lead);
+        out->at = at;
+        is_good = check_data(e, &lead, fluid);
+        *ARENA_APPEND(e->arena, &choices) = lead;
+    }
+    size_t may_govern = choices.count;
+    if (block != NULL) {
+        is_good = add_choices(e, &block->beside, fluid, &choices) && is_good;
+        may_govern = choices.count;
+        is_good = add_choices(e, &block->show, fluid, &choices) && is_good;
+    }
+    fill_methods(e, &choices, may_govern, out);
+    return is_good;
+}
