@@ -3,9 +3,9 @@
  *   p = rho R T (1 + delta dalphar/ddelta),  F = n alphar(tau, delta),  tau = T_r / T,  delta = n / (V rho_r)
  *
  * with the terms in reference_residual.c, roots in reference_roots.c, the saturation table in reference_table.c. */
-#include "fluid/reference_internal.h"
 #include "fluid/methods_internal.h"
 #include "fluid/reference_explain.h"
+#include "fluid/reference_internal.h"
 
 #include <math.h>
 
@@ -29,7 +29,7 @@ size_t reference_at_t_bytes(const struct reference *reference)
 
 void reference_set_temperature(struct reference_at_t *at_t, const struct reference *reference, double temperature)
 {
-    at_t->head = (struct fluid_at_t){.fluid = &reference->head, .temperature = temperature};
+    *at_t = (struct reference_at_t){.head = {.fluid = &reference->head, .temperature = temperature}};
     residual_set_tau((struct residual_at_t *)(void *)(at_t + 1), reference->residual,
                      reference->equation->reducing_temperature / temperature);
 }
@@ -38,8 +38,8 @@ struct reference_spot reference_spot_at(const struct reference_at_t *at_t, doubl
 {
     const struct reference *reference = reference_of(at_t);
     struct residual_sums sums;
-    residual_by_density(reference_residual_at(at_t), reference->residual, density / reference->equation->reducing_density,
-                        &sums);
+    residual_by_density(reference_residual_at(at_t), reference->residual,
+                        density / reference->equation->reducing_density, &sums);
     return (struct reference_spot){
         .density = density,
         .pressure = density * reference->head.gas_constant * at_t->head.temperature * (1.0 + sums.d),
@@ -75,7 +75,10 @@ static size_t at_t_size(const struct fluid *fluid)
 
 static enum answer set_t(struct fluid_at_t *at_t)
 {
-    reference_set_temperature((struct reference_at_t *)(void *)at_t, fluid_of(at_t->fluid), at_t->temperature);
+    struct reference_at_t *state = (struct reference_at_t *)(void *)at_t;
+    const struct reference *reference = fluid_of(at_t->fluid);
+    reference_set_temperature(state, reference, at_t->temperature);
+    state->largest_density = reference_largest_density(reference, at_t->temperature);
     return ANSWER_OK;
 }
 
@@ -132,7 +135,7 @@ static enum answer tv(const struct fluid_at_t *at_t, double volume, const double
 
 static double smallest_volume(const struct fluid_at_t *at_t, const double n[])
 {
-    return n[0] / reference_largest_density(fluid_of(at_t->fluid), at_t->temperature);
+    return n[0] / at_t_of(at_t)->largest_density;
 }
 
 static struct range_note range(const struct fluid *fluid, double temperature, double pressure)

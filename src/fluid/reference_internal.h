@@ -12,7 +12,7 @@ struct saturation_node {
 };
 
 #define SATURATION_NODES 48 /* beside the critical point */
-#define DENSITY_NODES 64
+#define DENSITY_NODES    40
 
 /* Found once for each fluid: the saturation line at equal steps of s = sqrt(1 - T/Tc), which is straight where an
  * analytic equation is near its critical point, and the largest density the equation can be used to. */
@@ -35,6 +35,7 @@ struct reference {
 /* The coefficients of the residual terms follow behind it in the same block. */
 struct reference_at_t {
     struct fluid_at_t head;
+    double largest_density; /* mol/m3; not set while the table is being filled */
 };
 
 static inline const struct reference *reference_of(const struct reference_at_t *at_t)

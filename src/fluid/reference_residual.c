@@ -3,7 +3,7 @@
 #include <math.h>
 
 /* Integer powers of delta up to this one come from a table; all others by exp(d ln delta). */
-#define TABLE_POWERS 32
+#define TABLE_POWERS  32
 #define GENERAL_POWER TABLE_POWERS
 
 /* A nonanalytic term damped by more than exp(-this) is below 1e-26 and left out. */
@@ -14,10 +14,10 @@ enum envelope_kind { ENVELOPE_NONE, ENVELOPE_EXPONENTIAL, ENVELOPE_GAUSSIAN };
 
 struct envelope {
     enum envelope_kind kind;
-    double strength;  /* g, or eta */
-    double l;         /* EXPONENTIAL: exp(-g delta^l) */
+    double strength; /* g, or eta */
+    double l;        /* EXPONENTIAL: exp(-g delta^l) */
     unsigned l_slot;
-    double epsilon;   /* GAUSSIAN: exp(-eta (delta - epsilon)^2) */
+    double epsilon; /* GAUSSIAN: exp(-eta (delta - epsilon)^2) */
     size_t first_entry, end_entry;
 };
 
@@ -125,8 +125,8 @@ static struct parts take_apart(const struct residual_term *term)
         break;
     case RESIDUAL_INVERSE_GAUSSIAN:
         parts.envelope = gaussian_envelope(term);
-        parts.factor = (struct factor){
-            .kind = FACTOR_INVERSE_GAUSSIAN, .beta = term->beta, .gamma = term->gamma, .b = term->b};
+        parts.factor =
+            (struct factor){.kind = FACTOR_INVERSE_GAUSSIAN, .beta = term->beta, .gamma = term->gamma, .b = term->b};
         break;
     case RESIDUAL_DOUBLE_EXPONENTIAL:
         parts.envelope = exponential_envelope(term->gd, term->ld);
@@ -184,8 +184,14 @@ static size_t factor_index(struct residual *residual, const struct factor *facto
 static void add_nonanalytic(struct residual *residual, const struct residual_term *term)
 {
     struct nonanalytic *out = &residual->nonanalytic[residual->nonanalytic_count];
-    *out = (struct nonanalytic){.n = term->n, .a = term->a, .b = term->b, .A = term->A, .B = term->B, .C = term->C,
-                                .E = term->E, .m = 0.5 / term->beta};
+    *out = (struct nonanalytic){.n = term->n,
+                                .a = term->a,
+                                .b = term->b,
+                                .A = term->A,
+                                .B = term->B,
+                                .C = term->C,
+                                .E = term->E,
+                                .m = 0.5 / term->beta};
     const double twice_a = 2.0 * term->a;
     out->twice_a = twice_a >= 1.0 && twice_a < TABLE_POWERS && twice_a == floor(twice_a) ? (unsigned)twice_a : 0;
     if (residual->nonanalytic_count > 0) {
@@ -216,7 +222,9 @@ static size_t place_terms(struct residual *residual, const struct reference_spec
         }
         const struct parts parts = take_apart(&spec->residual[i]);
         placed[count++] = (struct placed){
-            .term = {.n = parts.n, .t = parts.t, .power = power_index(residual, parts.t),
+            .term = {.n = parts.n,
+                     .t = parts.t,
+                     .power = power_index(residual, parts.t),
                      .factor = factor_index(residual, &parts.factor)},
             .envelope = envelope_index(residual, &parts.envelope),
             .d = parts.d,

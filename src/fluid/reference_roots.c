@@ -10,17 +10,17 @@
 
 /* Relative step at which the density stepped to is the answer; the steps shrink at least quadratically. */
 #define DENSITY_TOLERANCE 1e-9
-#define MOST_PASSES 100
+#define MOST_PASSES       100
 /* A bracket this narrow that holds no root has none. */
 #define NARROWEST_BRACKET 1e-12
 /* Largest relative step beyond the saturated density. */
 #define METASTABLE_STEP 0.1
 /* The same for a vapour below this part of the critical density, where no loop is narrower. */
 #define DILUTE_STEP 1.0
-#define DILUTE 0.005
+#define DILUTE      0.005
 /* Starting value of the slope of the bulk modulus in pressure, for a liquid and for a gas. */
 #define LIQUID_STIFFENING 8.0
-#define GAS_STIFFENING 1.0
+#define GAS_STIFFENING    1.0
 /* Nearer to saturation than this, the Gibbs energies decide which root is the stable one. */
 #define SATURATION_MARGIN 1e-4
 
@@ -52,8 +52,9 @@ static double step_from(const struct reference_spot *spot, double RT, double pre
 /* The slope of the bulk modulus between two densities; `usual` where they tell nothing. */
 static double stiffening(const struct reference_spot *a, const struct reference_spot *b, double RT, double usual)
 {
-    const double m = (a->density * a->stiffness - b->density * b->stiffness) * RT / (a->pressure - b->pressure);
-    return fabs(m) < 40.0 ? m : usual;
+    const double rise = a->pressure - b->pressure;
+    const double m = (a->density * a->stiffness - b->density * b->stiffness) * RT / (fabs(rise) > 0.0 ? rise : 1.0);
+    return fabs(m) < 40.0 && fabs(rise) > 0.0 ? m : usual;
 }
 
 static double middle(const struct search *search)
@@ -71,8 +72,8 @@ static double limited(const struct search *search, double density, double next)
         const double step = density < search->dilute ? DILUTE_STEP : METASTABLE_STEP;
         next = fmin(next, fmin(fmax(density, search->saturated) * (1.0 + step), 0.5 * (density + search->high)));
     } else if (search->side == SIDE_LIQUID && next < search->saturated) {
-        next = fmax(next, fmax(fmin(density, search->saturated) * (1.0 - METASTABLE_STEP),
-                               0.5 * (density + search->low)));
+        next =
+            fmax(next, fmax(fmin(density, search->saturated) * (1.0 - METASTABLE_STEP), 0.5 * (density + search->low)));
     }
     return next;
 }
@@ -166,7 +167,9 @@ static enum answer find_root(struct search *search, double density, double usual
 static struct search search_at(const struct reference_at_t *at_t, enum side side, double pressure)
 {
     const struct reference *reference = reference_of(at_t);
-    return (struct search){.at_t = at_t, .side = side, .pressure = pressure,
+    return (struct search){.at_t = at_t,
+                           .side = side,
+                           .pressure = pressure,
                            .far_is_seen = side == SIDE_SINGLE,
                            .RT = reference->head.gas_constant * at_t->head.temperature};
 }
@@ -195,7 +198,7 @@ static enum answer liquid_root(const struct reference_at_t *at_t, const struct r
 {
     struct search search = search_at(at_t, SIDE_LIQUID, pressure);
     search.low = reference_of(at_t)->equation->critical_density;
-    search.high = reference_largest_density(reference_of(at_t), at_t->head.temperature);
+    search.high = at_t->largest_density;
     search.high_is_wall = true;
     search.saturated = pair->liquid_density;
     double start = pair->liquid_density;
@@ -239,7 +242,7 @@ static enum answer single_root(const struct reference_at_t *at_t, double pressur
 {
     const struct reference *reference = reference_of(at_t);
     struct search search = search_at(at_t, SIDE_SINGLE, pressure);
-    search.high = reference_largest_density(reference, at_t->head.temperature);
+    search.high = at_t->largest_density;
     search.high_is_wall = true;
     const double start = cubic_start(reference, at_t->head.temperature, pressure);
     const double dense = start / reference->equation->critical_density;
@@ -303,6 +306,8 @@ enum answer reference_volume(const struct fluid_at_t *head, double pressure, con
             break;
         }
     }
-    *volume = n[0] / density;
+    if (answer == ANSWER_OK) {
+        *volume = n[0] / density;
+    }
     return answer;
 }

@@ -14,9 +14,9 @@
 /* Relative change of a density at which a pair is good enough for a starting value. */
 #define PAIR_TOLERANCE 1e-9
 /* The largest pressure answered is this multiple of the published limit, and at least the second figure (Pa). */
-#define PRESSURE_MARGIN 2.0
-#define LEAST_LARGEST_PRESSURE 1e8
-#define DENSITY_PASSES 400
+#define PRESSURE_MARGIN        2.0
+#define LEAST_LARGEST_PRESSURE 1e9
+#define DENSITY_PASSES         400
 /* A fall of dp/drho to this part of its largest value is more than a wiggle near the critical density. */
 #define SOFTENING 0.9
 
@@ -73,10 +73,10 @@ static struct saturation_node node_of_pair(const struct reference_spec *equation
 /* A fit of the spec at a temperature; 0 where it has none or no value there. */
 static double fit_at(const struct saturation_guess *guess, double temperature)
 {
-    const double theta = 1.0 - temperature / guess->reducing_temperature;
-    if (guess->form == GUESS_NONE || !(theta > 0.0)) {
+    if (guess->form == GUESS_NONE || !(temperature < guess->reducing_temperature)) {
         return 0.0;
     }
+    const double theta = 1.0 - temperature / guess->reducing_temperature;
     double sum = 0.0;
     for (size_t i = 0; i < guess->count; i++) {
         sum += guess->terms[i][0] * pow(theta, guess->terms[i][1]);
@@ -143,12 +143,15 @@ static bool solve_pair(const struct reference_at_t *at_t, struct reference_pair 
         const double f1 = (L.pressure - V.pressure) / RT;
         const double f2 = y + L.log_activity - x - V.log_activity;
         const double determinant = L.stiffness * K_V - K_L * V.stiffness;
+        if (!(V.stiffness > 0.0) || !(L.stiffness > 0.0) || !(determinant < 0.0)) {
+            return false; /* off the stable sides, or the same density on both */
+        }
         const double dy = (f1 * V.stiffness - f2 * K_V) / determinant;
         const double dx = (f1 * L.stiffness - f2 * K_L) / determinant;
-        if (!isfinite(dx) || !isfinite(dy) || !(V.stiffness > 0.0) || !(L.stiffness > 0.0)) {
+        if (!isfinite(dx) || !isfinite(dy)) {
             return false;
         }
-        const double cut = fmin(1.0, fmin(1.0 / fabs(dx), 0.1 / fabs(dy)));
+        const double cut = 1.0 / fmax(1.0, fmax(fabs(dx), 10.0 * fabs(dy)));
         x += cut * dx;
         y += cut * dy;
         if (fabs(dx) < PAIR_TOLERANCE && fabs(dy) < PAIR_TOLERANCE) {
