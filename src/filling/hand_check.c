@@ -124,9 +124,8 @@ static void add_worked(const struct sheet_run *run, struct hand_check *check, co
     const struct explained_value *value = &numbers->values[index];
     const char *substituted = with_numbers(arena, numbers, index);
     const char *result = value_with_unit(arena, value);
-    const char *line =
-        with_meaning(arena, arena_format(arena, "%s = %s = %s = %s", value->symbol, value->formula, substituted, result),
-                     value->meaning);
+    const char *chain = arena_format(arena, "%s = %s = %s = %s", value->symbol, value->formula, substituted, result);
+    const char *line = with_meaning(arena, chain, value->meaning);
     if (strlen(line) <= LINE_COLUMNS) {
         hand_check_line(run->result, check, "%s", line);
         return;

@@ -1,0 +1,484 @@
+/* The sections of a result that tell its making: inputs, data used, sources, methods. */
+#include "filling/data_used.h"
+
+#include "base/text.h"
+
+#include <string.h>
+
+/* ---- inputs ---------------------------------------------------------------------------------------------------- */
+
+static const char *place_words(const struct case_tree *tree, const struct origin *origin, struct arena *arena)
+{
+    if (origin->kind == ORIGIN_DEFAULT || origin->at.file == NULL) {
+        return "default";
+    }
+    const size_t line = location_line(origin->at);
+    if (origin->at.file == tree->deck->root) {
+        return arena_format(arena, "line %zu", line);
+    }
+    return arena_format(arena, "%s, line %zu", origin->at.file->name, line);
+}
+
+void tell_inputs(const struct case_tree *tree, struct result *result)
+{
+    for (size_t i = 0; i < tree->input_count; i++) {
+        const struct case_input *input = &tree->inputs[i];
+        *ARENA_APPEND(result->arena, &result->inputs) = (struct input_row){
+            .group = input->group,
+            .name = input->name,
+            .written = input->origin.written,
+            .si = input->si,
+            .from = place_words(tree, &input->origin, result->arena),
+        };
+    }
+}
+
+/* ---- who uses what --------------------------------------------------------------------------------------------- */
+
+static bool contains(const struct case_fluid *fluid, const struct case_component *component)
+{
+    for (size_t i = 0; i < fluid->count; i++) {
+        if (fluid->components[i] == component) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static bool uses_equation(const struct pooled_method *pooled)
+{
+    return strcmp(pooled->run.name, "reference") == 0;
+}
+
+/* Methods that take a component's critical constants and acentric factor: all but these two. */
+static bool uses_corresponding_states(const struct pooled_method *pooled)
+{
+    return !uses_equation(pooled) && strcmp(pooled->run.name, "ideal-gas") != 0;
+}
+
+static bool any_method(const struct method_pool *pool, const struct case_component *component,
+                       bool (*uses)(const struct pooled_method *pooled))
+{
+    for (size_t i = 0; i < pool->count; i++) {
+        const struct pooled_method *pooled = &pool->items[i];
+        if (pooled->run.fluid != NULL && contains(pooled->fluid, component) && uses(pooled)) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static bool any_sheet(const struct case_tree *tree, enum sheet_kind kind)
+{
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        if (tree->sheets[i].kind == kind) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* ---- components ------------------------------------------------------------------------------------------------ */
+
+/* Where the rows of one component or entry go. */
+struct telling {
+    const struct case_tree *tree;
+    struct result *result;
+    const char *group;
+};
+
+static struct data_row *add_row(const struct telling *telling, const char *name, const char *value)
+{
+    struct data_row *row = ARENA_APPEND(telling->result->arena, &telling->result->data);
+    *row = (struct data_row){.group = telling->group, .name = name, .value = value};
+    return row;
+}
+
+static const char *source_words(const struct telling *telling, const struct origin *origin)
+{
+    if (origin->source != NULL) {
+        return origin->source->key;
+    }
+    switch (origin->kind) {
+    case ORIGIN_DECK:
+        return arena_format(telling->result->arena, "given in this deck, %s",
+                            place_words(telling->tree, origin, telling->result->arena));
+    case ORIGIN_LIBRARY:
+        return place_words(telling->tree, origin, telling->result->arena);
+    case ORIGIN_DEFAULT:
+        break;
+    }
+    return "default";
+}
+
+static const char *value_words(const struct quantity *quantity, const char *si_unit, struct arena *arena)
+{
+    if (quantity->origin.written != NULL) {
+        return quantity->origin.written;
+    }
+    return arena_format(arena, "%.10g%s%s", quantity->value, *si_unit ? " " : "", si_unit);
+}
+
+/* "replaces 369.9 K (lemmon-2009)", back to the first value; and the mark of a value entered from memory. */
+static const char *remark_words(const struct telling *telling, const struct quantity *quantity, const char *si_unit)
+{
+    struct text text = {.arena = telling->result->arena};
+    if (quantity->origin.source != NULL && quantity->origin.source->is_unverified) {
+        text_format(&text, "unverified");
+    }
+    for (const struct quantity *old = quantity->overridden; old != NULL; old = old->overridden) {
+        text_format(&text, "%sreplaces %s (%s)", text.length == 0 ? "" : "; ",
+                    value_words(old, si_unit, telling->result->arena), source_words(telling, &old->origin));
+    }
+    return text.bytes;
+}
+
+static void warn_unverified(const struct telling *telling, const char *what, const struct case_source *source)
+{
+    if (source != NULL && source->is_unverified) {
+        result_warn(telling->result, CODE_W301, 0, 0, "%s: %s is unverified, entered from memory as of %s",
+                    telling->group, what, source->key);
+    }
+}
+
+static void tell_quantity(const struct telling *telling, const char *name, const struct quantity *quantity,
+                          const char *si_unit, bool is_used)
+{
+    const bool is_of_interest = is_used || quantity->origin.kind == ORIGIN_DECK || quantity->overridden != NULL;
+    if (!quantity->given || !is_of_interest) {
+        return;
+    }
+    const char *value = value_words(quantity, si_unit, telling->result->arena);
+    struct data_row *row = add_row(telling, name, value);
+    row->source = source_words(telling, &quantity->origin);
+    row->remark = remark_words(telling, quantity, si_unit);
+    if (is_used) {
+        warn_unverified(telling, arena_format(telling->result->arena, "%s %s", name, value), quantity->origin.source);
+    }
+}
+
+static void tell_hazards(const struct telling *telling, unsigned hazards)
+{
+    static const struct {
+        enum hazard hazard;
+        const char *word;
+    } words[] = {
+        {HAZARD_FLAMMABLE, "flammable"},   {HAZARD_OXIDISING, "oxidising"},   {HAZARD_TOXIC, "toxic"},
+        {HAZARD_CORROSIVE, "corrosive"},   {HAZARD_PYROPHORIC, "pyrophoric"}, {HAZARD_DECOMPOSES, "decomposes"},
+        {HAZARD_POLYMERISES, "polymerises"}, {HAZARD_DISSOLVED, "dissolved"},
+    };
+    struct text text = {.arena = telling->result->arena};
+    for (size_t i = 0; i < sizeof words / sizeof *words; i++) {
+        if (hazards & words[i].hazard) {
+            text_format(&text, "%s%s", text.length == 0 ? "" : ", ", words[i].word);
+        }
+    }
+    if (text.length != 0) {
+        add_row(telling, "hazards", text.bytes);
+    }
+}
+
+static void tell_identity(const struct telling *telling, const struct case_component *component)
+{
+    if (component->formula != NULL) {
+        add_row(telling, "formula", component->formula);
+    }
+    if (component->cas != NULL) {
+        add_row(telling, "cas", component->cas);
+    }
+    if (component->un_number != 0) {
+        add_row(telling, "un-number", arena_format(telling->result->arena, "%u", component->un_number));
+    }
+    tell_hazards(telling, component->hazards);
+}
+
+static const char *equation_range(const struct reference_spec *equation, struct arena *arena)
+{
+    return arena_format(arena, "%.6g to %.6g K, to %.6g MPa", equation->smallest_temperature,
+                        equation->largest_temperature, equation->largest_pressure / 1e6);
+}
+
+static void tell_equation(const struct telling *telling, const struct case_component *component)
+{
+    const struct reference_spec *equation = component->spec.reference;
+    if (equation == NULL) {
+        return;
+    }
+    struct arena *arena = telling->result->arena;
+    const char *value = arena_format(arena, "%zu terms, %s", equation->residual_count, equation_range(equation, arena));
+    struct data_row *row = add_row(telling, "reference-equation", value);
+    const struct case_source *source = component->equation_source;
+    row->source = source == NULL ? "given in this deck" : source->key;
+    row->remark = source != NULL && source->is_unverified ? "unverified" : NULL;
+    warn_unverified(telling, row->name, source);
+}
+
+static void tell_component(const struct case_tree *tree, const struct method_pool *pool,
+                           const struct case_component *component, struct result *result)
+{
+    const struct telling telling = {tree, result, component->name};
+    const bool corresponding = any_method(pool, component, uses_corresponding_states);
+    tell_identity(&telling, component);
+    tell_quantity(&telling, "molar-mass", &component->molar_mass, "kg/mol", true);
+    tell_quantity(&telling, "critical-temperature", &component->critical_temperature, "K", corresponding);
+    tell_quantity(&telling, "critical-pressure", &component->critical_pressure, "Pa", corresponding);
+    tell_quantity(&telling, "critical-density", &component->critical_density, "mol/m3", false);
+    tell_quantity(&telling, "acentric", &component->acentric, "", corresponding);
+    tell_quantity(&telling, "triple-temperature", &component->triple_temperature, "K",
+                  any_sheet(tree, SHEET_SATURATION));
+    tell_quantity(&telling, "triple-pressure", &component->triple_pressure, "Pa", false);
+    tell_quantity(&telling, "boiling-temperature", &component->boiling_temperature, "K", false);
+    tell_quantity(&telling, "dipole", &component->dipole, "C m", false);
+    if (any_method(pool, component, uses_equation)) {
+        tell_equation(&telling, component);
+    }
+}
+
+/* ---- entries and rules ----------------------------------------------------------------------------------------- */
+
+static const char *gauge_words(const struct case_tree *tree, double gauge, struct arena *arena)
+{
+    const struct shown_unit unit = tree->sheets[0].units.gauge;
+    return arena_format(arena, "%.6g %s", gauge / unit.factor, unit.symbol);
+}
+
+static void tell_listed_row(const struct telling *telling, const struct listed_row *listed)
+{
+    struct arena *arena = telling->result->arena;
+    struct text value = {.arena = arena};
+    if (listed->filling_ratio.given) {
+        text_format(&value, "filling-ratio %.6g", listed->filling_ratio.value);
+    }
+    if (listed->working_pressure.given) {
+        text_format(&value, "%sworking-pressure %s", value.length == 0 ? "" : ", ",
+                    gauge_words(telling->tree, listed->working_pressure.value, arena));
+    }
+    const char *name =
+        arena_format(arena, "listed-fill %s", gauge_words(telling->tree, listed->test_pressure, arena));
+    struct data_row *row = add_row(telling, name, value.bytes);
+    row->source = source_words(telling, &listed->origin);
+    row->remark = listed->origin.source != NULL && listed->origin.source->is_unverified ? "unverified" : NULL;
+    warn_unverified(telling, name, listed->origin.source);
+}
+
+static void tell_entry(const struct case_tree *tree, const struct case_entry *entry, struct result *result)
+{
+    const struct telling telling = {tree, result, arena_format(result->arena, "entry %s", entry->name)};
+    if (entry->title != NULL) {
+        add_row(&telling, "title", entry->title);
+    }
+    if (entry->class_code != NULL) {
+        add_row(&telling, "class-code", entry->class_code);
+    }
+    if (entry->letters != NULL) {
+        add_row(&telling, "letters", entry->letters);
+    }
+    if (entry->lc50.given) {
+        add_row(&telling, "lc50", arena_format(result->arena, "%.6g ppm", entry->lc50.value * 1e6));
+    }
+    for (size_t i = 0; i < entry->row_count; i++) {
+        tell_listed_row(&telling, &entry->rows[i]);
+    }
+    for (size_t i = 0; i < entry->limit_count; i++) {
+        add_row(&telling, "limit", entry->limits[i].written);
+    }
+}
+
+static void tell_rule(const struct case_tree *tree, const struct case_rule *rule, struct result *result)
+{
+    const struct telling telling = {tree, result, arena_format(result->arena, "rule %s", rule->name)};
+    const char *source = rule->source != NULL ? rule->source->key : source_words(&telling, &rule->origin);
+    const struct {
+        const char *name, *text;
+    } words[] = {{"title", rule->title}, {"clause", rule->clause}, {"edition", rule->edition}};
+    for (size_t i = 0; i < sizeof words / sizeof *words; i++) {
+        if (words[i].text != NULL) {
+            add_row(&telling, words[i].name, words[i].text)->source = source;
+        }
+    }
+    for (size_t i = 0; i < rule->predicate_count; i++) {
+        add_row(&telling, "criterion", rule->predicates[i].written)->source = source;
+    }
+    warn_unverified(&telling, "the rule's text", rule->source);
+}
+
+/* Things that several sheets use are told once. */
+struct told {
+    size_t count, capacity;
+    const void **items;
+};
+
+static bool is_first_time(struct told *told, const void *thing, struct arena *arena)
+{
+    for (size_t i = 0; i < told->count; i++) {
+        if (told->items[i] == thing) {
+            return false;
+        }
+    }
+    *ARENA_APPEND(arena, told) = thing;
+    return true;
+}
+
+static void tell_entries_and_rules(const struct case_tree *tree, struct result *result)
+{
+    struct told told = {0};
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        const struct case_sheet *sheet = &tree->sheets[i];
+        for (size_t k = 0; k < sheet->entry_count; k++) {
+            if (is_first_time(&told, sheet->entries[k], result->arena)) {
+                tell_entry(tree, sheet->entries[k], result);
+            }
+        }
+    }
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        const struct case_sheet *sheet = &tree->sheets[i];
+        for (size_t k = 0; k < sheet->rule_count; k++) {
+            if (is_first_time(&told, sheet->rules[k], result->arena)) {
+                tell_rule(tree, sheet->rules[k], result);
+            }
+        }
+    }
+}
+
+void tell_data(const struct case_tree *tree, const struct method_pool *pool, struct result *result)
+{
+    for (size_t i = 0; i < tree->component_count; i++) {
+        tell_component(tree, pool, tree->components[i], result);
+    }
+    tell_entries_and_rules(tree, result);
+    for (size_t i = 0; i < tree->source_count; i++) {
+        const struct case_source *source = tree->sources[i];
+        *ARENA_APPEND(result->arena, &result->sources) =
+            (struct source_row){source->key, source->citation, source->is_unverified};
+    }
+}
+
+/* ---- methods --------------------------------------------------------------------------------------------------- */
+
+/* What is said of a method whatever the fluid. */
+struct method_words {
+    const char *name, *citation, *range;
+};
+
+static const struct method_words METHOD_WORDS[] = {
+    {"ideal-gas", "p v = R T", "the limit of low pressure; shown for comparison, never governs"},
+    {"peng-robinson", "D.-Y. Peng, D. B. Robinson, Ind. Eng. Chem. Fundam. 15 (1976) 59",
+     "no published limits; liquid densities are off by several per cent"},
+    {"soave-redlich-kwong", "G. Soave, Chem. Eng. Sci. 27 (1972) 1197",
+     "no published limits; liquid densities are off by ten per cent and more"},
+};
+
+static const struct method_words *words_of(const char *name)
+{
+    for (size_t i = 0; i < sizeof METHOD_WORDS / sizeof *METHOD_WORDS; i++) {
+        if (strcmp(METHOD_WORDS[i].name, name) == 0) {
+            return &METHOD_WORDS[i];
+        }
+    }
+    return NULL;
+}
+
+static const char *reference_parameters(const struct case_component *component, struct arena *arena)
+{
+    const struct reference_spec *equation = component->spec.reference;
+    return arena_format(arena,
+                        "%s: %zu terms as in the component's equation block; reducing temperature %.10g K, reducing "
+                        "density %.10g mol/m3, R = %.10g J/(mol K)",
+                        component->name, equation->residual_count, equation->reducing_temperature,
+                        equation->reducing_density, equation->gas_constant);
+}
+
+static const char *corresponding_parameters(const struct pooled_method *pooled, struct arena *arena)
+{
+    struct text text = {.arena = arena};
+    for (size_t i = 0; i < pooled->fluid->count; i++) {
+        const struct case_component *component = pooled->fluid->components[i];
+        text_format(&text, "%s: critical temperature %s, critical pressure %s, acentric factor %s; ", component->name,
+                    value_words(&component->critical_temperature, "K", arena),
+                    value_words(&component->critical_pressure, "Pa", arena),
+                    value_words(&component->acentric, "", arena));
+    }
+    text_format(&text, "R = %.15g J/(mol K)", pooled->run.fluid->gas_constant);
+    return text.bytes;
+}
+
+static const char *parameters_of(const struct pooled_method *pooled, struct arena *arena)
+{
+    if (uses_equation(pooled)) {
+        return reference_parameters(pooled->fluid->components[0], arena);
+    }
+    if (uses_corresponding_states(pooled)) {
+        return corresponding_parameters(pooled, arena);
+    }
+    return arena_format(arena, "%s: R = %.15g J/(mol K)", pooled->fluid->name, pooled->run.fluid->gas_constant);
+}
+
+static const char *title_of(const struct pooled_method *pooled, struct arena *arena)
+{
+    const struct method_words *words = words_of(pooled->run.name);
+    const char *citation = words == NULL ? NULL : words->citation;
+    if (uses_equation(pooled) && pooled->fluid->components[0]->equation_source != NULL) {
+        citation = pooled->fluid->components[0]->equation_source->citation;
+    }
+    const char *title = pooled->run.fluid->ops->title;
+    return citation == NULL ? title : arena_format(arena, "%s: %s", title, citation);
+}
+
+static const char *range_of(const struct pooled_method *pooled, struct arena *arena)
+{
+    const struct method_words *words = words_of(pooled->run.name);
+    if (uses_equation(pooled)) {
+        return equation_range(pooled->fluid->components[0]->spec.reference, arena);
+    }
+    return words == NULL ? NULL : words->range;
+}
+
+static const char *role_words(const struct pooled_method *pooled, struct arena *arena)
+{
+    switch (pooled->role) {
+    case ROLE_LEADS:
+        return pooled->reason == NULL ? "leads" : arena_format(arena, "leads: %s", pooled->reason);
+    case ROLE_BESIDE:
+        return "stands beside the lead";
+    case ROLE_SHOWN:
+        break;
+    }
+    return "shown for comparison, never governs";
+}
+
+void tell_methods(const struct method_pool *pool, struct result *result)
+{
+    for (size_t i = 0; i < pool->count; i++) {
+        const struct pooled_method *pooled = &pool->items[i];
+        struct method_row *row = ARENA_APPEND(result->arena, &result->methods);
+        *row = (struct method_row){.name = pooled->run.name};
+        if (pooled->run.fluid == NULL) {
+            row->reason = arena_format(result->arena, "no answer: %s",
+                                       lack_words(pooled->fluid, &pooled->run.lack, result->arena));
+            continue;
+        }
+        row->title = title_of(pooled, result->arena);
+        row->parameters = parameters_of(pooled, result->arena);
+        row->range = range_of(pooled, result->arena);
+        row->reason = role_words(pooled, result->arena);
+    }
+}
+
+const char *lack_words(const struct case_fluid *fluid, const struct fluid_lack_report *lack, struct arena *arena)
+{
+    const char *component = lack->component < fluid->count ? fluid->components[lack->component]->name : fluid->name;
+    switch (lack->lack) {
+    case LACK_CRITICAL_POINT:
+        return arena_format(arena, "no critical temperature or pressure is given for %s", component);
+    case LACK_ACENTRIC:
+        return arena_format(arena, "no acentric factor is given for %s", component);
+    case LACK_EQUATION:
+        return arena_format(arena, "no reference equation is given for %s", component);
+    case LACK_MIXTURE:
+        return "it serves pure gases only";
+    case LACK_METHOD:
+    case LACK_NOTHING:
+        break;
+    }
+    return "it is not known";
+}
