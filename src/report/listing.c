@@ -46,7 +46,7 @@ void report_listing(const struct result *result, struct text *out)
     listing_cautions(result, out);
 }
 
-void report_sheet_parts(const struct result_sheet *sheet, struct text *out)
+void report_data(const struct result *result, struct text *out)
 {
-    listing_parts(sheet, 0, out);
+    listing_values(result, out);
 }

@@ -78,9 +78,8 @@ static void draw_sources(const struct result *result, struct text *out)
     grid_draw(grid, SECTION_INDENT, out);
 }
 
-void listing_data(const struct result *result, struct text *out)
+void listing_values(const struct result *result, struct text *out)
 {
-    page_section(out, SECTION_DATA, "Data used");
     if (result->data.count == 0 && result->sources.count == 0) {
         page_paragraph(out, SECTION_INDENT, "none");
     }
@@ -93,6 +92,12 @@ void listing_data(const struct result *result, struct text *out)
         }
         draw_sources(result, out);
     }
+}
+
+void listing_data(const struct result *result, struct text *out)
+{
+    page_section(out, SECTION_DATA, "Data used");
+    listing_values(result, out);
 }
 
 static void add_method_words(struct grid *grid, const char *lead, const char *words)

@@ -26,10 +26,11 @@ void listing_head(const struct result *result, struct text *out);
 void listing_deck(const struct result *result, struct text *out);
 void listing_inputs(const struct result *result, struct text *out);
 void listing_data(const struct result *result, struct text *out);
+/* The data section without its heading. */
+void listing_values(const struct result *result, struct text *out);
 void listing_methods(const struct result *result, struct text *out);
 void listing_sheet(const struct result *result, const struct result_sheet *sheet, size_t section, struct text *out);
-/* The parts of a sheet without its head. `warnings` is the section with the warnings, 0 where there is none. */
-void listing_parts(const struct result_sheet *sheet, size_t warnings, struct text *out);
+/* `warnings` is the number of the section with the warnings. */
 void listing_table(const struct table *table, size_t warnings, struct text *out);
 void listing_requirements(const struct result *result, struct text *out);
 void listing_warnings(const struct result *result, struct text *out);

@@ -81,7 +81,7 @@ static bool is_empty(const struct sheet_part *part)
     return part->kind == PART_FACTS && part->facts.count == 0 && !part->title;
 }
 
-void listing_parts(const struct result_sheet *sheet, size_t warnings, struct text *out)
+static void draw_parts(const struct result_sheet *sheet, size_t warnings, struct text *out)
 {
     const struct sheet_part *previous = NULL;
     for (const struct sheet_part *part = sheet->first_part; part; part = part->next) {
@@ -130,5 +130,5 @@ void listing_sheet(const struct result *result, const struct result_sheet *sheet
         page_paragraph(out, SECTION_INDENT, names.bytes);
         page_blank(out);
     }
-    listing_parts(sheet, section_of_warnings(result), out);
+    draw_parts(sheet, section_of_warnings(result), out);
 }

@@ -74,9 +74,9 @@ void listing_table(const struct table *table, size_t warnings, struct text *out)
         grid_draw(grid_of_table(table, out->arena), PART_INDENT, out);
     }
     if (has_outside_range(table)) {
-        const char *where = warnings == 0 ? "" : arena_format(out->arena, ", see section %zu", warnings);
         page_paragraph(out, PART_INDENT,
-                       arena_format(out->arena, "%s outside the method's published range%s", OUTSIDE_MARK, where));
+                       arena_format(out->arena, "%s outside the method's published range, see section %zu", OUTSIDE_MARK,
+                                    warnings));
     }
     if (table->csv) {
         page_paragraph(out, PART_INDENT, arena_format(out->arena, "also written to %s", table->csv));

@@ -11,8 +11,8 @@
 /* The listing: plain text, at most 100 columns (a longer word of the deck's own is wrapped). */
 void report_listing(const struct result *result, struct text *out);
 
-/* The parts of one sheet as the listing draws them, without a heading. */
-void report_sheet_parts(const struct result_sheet *sheet, struct text *out);
+/* The data and the sources of a result, as the listing draws them, without a heading. */
+void report_data(const struct result *result, struct text *out);
 
 /* The same tree as JSON, SI, 17 significant digits, a closing newline. False when memory ran out. */
 bool report_json(const struct result *result, struct text *out);
