@@ -7,9 +7,13 @@
 /* Blanks between columns; the least columns that words are wrapped to, a head is, and what stands beside a lead is. */
 enum { WIDEST_GAP = 3, NARROWEST_GAP = 2, NARROWEST_WORDS = 24, NARROWEST_HEAD = 8, NARROWEST_SPAN = 20 };
 
+/* A grid drawn in blocks repeats at most so many columns. */
+enum { MOST_REPEATED = 3 };
+
 struct layout {
     const struct grid *grid;
     size_t indent, gap;
+    size_t lead;          /* so many first columns are repeated in every block */
     size_t *limit;        /* [column_count]: what words are wrapped to */
     size_t *words;        /* [column_count]: columns the widest words take */
     size_t *left, *width; /* [column_count]: columns before the point; the whole column, 0 for one that is not drawn */
@@ -38,10 +42,10 @@ static size_t larger(size_t a, size_t b)
     return a > b ? a : b;
 }
 
-/* Columns of a number before its point, or before its power of ten. */
+/* Columns of a number before its point, or before what else follows its first digits. */
 static size_t columns_before_point(const char *number)
 {
-    return text_columns(number, strcspn(number, ".e"));
+    return strspn(number, "+-0123456789");
 }
 
 static size_t longest_piece(const char *name)
@@ -110,15 +114,19 @@ static void measure(struct layout *layout, size_t c)
     measure_head(layout, c);
 }
 
-/* Sets where columns first..end begin, behind the first column; the columns taken in all. */
+/* Whether column `c` is drawn in the block of columns first..end. */
+static bool is_in_block(const struct layout *layout, size_t c, size_t first, size_t end)
+{
+    return layout->width[c] != 0 && (c < layout->lead || (c >= first && c < end));
+}
+
+/* Sets where the columns of a block begin; the columns taken in all. */
 static size_t place_columns(struct layout *layout, size_t first, size_t end)
 {
-    layout->start[0] = 0;
-    size_t reach = layout->width[0];
-    for (size_t c = first; c < end; c++) {
-        if (layout->width[c] != 0) {
-            const size_t gap = layout->grid->columns[c].is_close ? 1 : layout->gap;
-            layout->start[c] = reach == 0 ? 0 : reach + gap;
+    size_t reach = 0;
+    for (size_t c = 0; c < end; c++) {
+        if (is_in_block(layout, c, first, end)) {
+            layout->start[c] = reach == 0 ? 0 : reach + layout->gap;
             reach = layout->start[c] + layout->width[c];
         }
     }
@@ -161,7 +169,44 @@ static bool tighten(struct layout *layout, size_t excess)
     return true;
 }
 
-/* Finds widths and a gap at which the whole grid fits the page; or else the narrowest words. */
+static bool is_same_text(const char *a, const char *b)
+{
+    return a == b || (a && b && strcmp(a, b) == 0);
+}
+
+static bool is_row_told_apart(const struct grid *grid, size_t row, size_t columns)
+{
+    for (size_t r = 0; r < row; r++) {
+        size_t same = 0;
+        while (same < columns && is_same_text(grid->rows[r].cells[same].text, grid->rows[row].cells[same].text)) {
+            same++;
+        }
+        if (same == columns) {
+            return false;
+        }
+    }
+    return true;
+}
+
+/* How many first columns tell all rows apart, when that is few columns of no more than half the page; else one. */
+static size_t telling_columns(const struct layout *layout)
+{
+    const struct grid *grid = layout->grid;
+    size_t taken = 0;
+    for (size_t columns = 1; columns <= MOST_REPEATED && columns < grid->column_count; columns++) {
+        taken += layout->width[columns - 1] + layout->gap;
+        size_t row = 0;
+        while (row < grid->row_count && is_row_told_apart(grid, row, columns)) {
+            row++;
+        }
+        if (row == grid->row_count) {
+            return taken <= PAGE_WIDTH / 2 ? columns : 1;
+        }
+    }
+    return 1;
+}
+
+/* Finds widths and a gap at which the whole grid fits the page; or else the narrowest words and what to repeat. */
 static void fit(struct layout *layout)
 {
     const size_t room = PAGE_WIDTH - layout->indent;
@@ -170,6 +215,7 @@ static void fit(struct layout *layout)
         measure(layout, c);
     }
     layout->gap = WIDEST_GAP;
+    layout->lead = 1;
     size_t reach;
     do {
         reach = place_columns(layout, 1, layout->grid->column_count);
@@ -177,7 +223,10 @@ static void fit(struct layout *layout)
     if (reach > room) {
         layout->gap = NARROWEST_GAP;
         reach = place_columns(layout, 1, layout->grid->column_count);
-        layout->gap = reach > room ? WIDEST_GAP : NARROWEST_GAP;
+    }
+    if (reach > room) {
+        layout->gap = WIDEST_GAP;
+        layout->lead = telling_columns(layout);
     }
 }
 
@@ -212,12 +261,6 @@ static void put_head(struct text *line, const struct layout *layout, size_t c, c
     const size_t columns = page_columns(words);
     const bool is_right = layout->grid->columns[c].align == GRID_NUMBERS && columns < layout->width[c];
     put(line, layout, layout->start[c] + (is_right ? layout->width[c] - columns : 0), words);
-}
-
-/* The column numbers of a block, in order: the first, then first..end. */
-static bool is_in_block(const struct layout *layout, size_t c, size_t first, size_t end)
-{
-    return layout->width[c] != 0 && (c == 0 || (c >= first && c < end));
 }
 
 static void draw_heads(const struct layout *layout, size_t first, size_t end, struct text *out)
@@ -363,10 +406,10 @@ void grid_draw(const struct grid *grid, size_t indent, struct text *out)
     layout.width = arena_alloc(grid->arena, grid->column_count, sizeof *layout.width);
     layout.start = arena_alloc(grid->arena, grid->column_count, sizeof *layout.start);
     fit(&layout);
-    size_t first = 1;
+    size_t first = layout.lead;
     do {
         const size_t end = block_end(&layout, first);
-        if (first > 1) {
+        if (first > layout.lead) {
             page_blank(out);
         }
         draw_block(&layout, first, end, end >= grid->column_count, out);

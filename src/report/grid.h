@@ -1,7 +1,7 @@
 /* Columns of text: numbers aligned on their decimal point, words on the left, everything kept on the page.
  *
  * A grid too wide for the page first wraps its widest words more tightly, then is drawn as several blocks that repeat its first
- * column. Ownership: a grid lives in its arena; texts are kept by pointer and must be clean (page_clean).
+ * columns, as many as tell the rows apart. Ownership: a grid lives in its arena; texts are kept by pointer and must be clean (page_clean).
  */
 #ifndef TAREWRIGHT_REPORT_GRID_H
 #define TAREWRIGHT_REPORT_GRID_H
@@ -17,13 +17,13 @@ struct grid_column {
     const char *name; /* NULL: no head */
     const char *unit; /* NULL: none */
     enum grid_align align;
-    bool is_close; /* stands one blank behind the column before it, as a unit behind its number */
 };
 
 struct grid_cell {
     const char *text; /* NULL: nothing */
-    bool is_number;   /* aligned on the point in a column of numbers; other texts are set to its right edge */
-    const char *mark; /* set directly behind the number; NULL: none */
+    bool is_number;   /* begins with digits, aligned on their point in a column of numbers; other texts are set to its
+                         right edge */
+    const char *mark; /* set directly behind the text; NULL: none */
 };
 
 struct grid_row {

@@ -1,6 +1,10 @@
 #include "report/listing_internal.h"
 
+#include "report/number.h"
+#include "report/page.h"
 #include "report/report.h"
+
+#include <string.h>
 
 size_t section_of_sheet(size_t sheet)
 {
@@ -28,6 +32,16 @@ const char *counted(struct arena *arena, size_t count, const char *noun)
         return arena_format(arena, "no %ss", noun);
     }
     return arena_format(arena, "%zu %s%s", count, noun, count == 1 ? "" : "s");
+}
+
+struct grid_cell number_cell(struct arena *arena, const struct look *look, const char *shown)
+{
+    if (strcmp(shown, PAGE_DASH) == 0) {
+        return (struct grid_cell){.text = shown};
+    }
+    const char *unit = number_unit(look);
+    const bool is_plain = strcmp(unit, "1") == 0;
+    return (struct grid_cell){.text = is_plain ? shown : arena_format(arena, "%s %s", shown, unit), .is_number = true};
 }
 
 void report_listing(const struct result *result, struct text *out)

@@ -1,4 +1,3 @@
-#include "report/grid.h"
 #include "report/listing_internal.h"
 #include "report/page.h"
 

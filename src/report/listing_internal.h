@@ -6,6 +6,7 @@
 #define TAREWRIGHT_REPORT_LISTING_INTERNAL_H
 
 #include "base/text.h"
+#include "report/grid.h"
 #include "result/result.h"
 
 /* Sections are numbered through: deck, inputs, data, methods, one for each sheet, requirements, warnings, cautions. */
@@ -20,6 +21,9 @@ enum { SECTION_INDENT = 3, PART_INDENT = 5 };
 
 /* "1 warning", "3 warnings", "no warnings" */
 const char *counted(struct arena *arena, size_t count, const char *noun);
+
+/* A number as shown, with its unit behind it unless it is a plain one; a dash stands alone. */
+struct grid_cell number_cell(struct arena *arena, const struct look *look, const char *shown);
 
 /* Document block and verdict. */
 void listing_head(const struct result *result, struct text *out);

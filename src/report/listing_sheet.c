@@ -1,11 +1,10 @@
-#include "report/grid.h"
 #include "report/listing_internal.h"
 #include "report/number.h"
 #include "report/page.h"
 
 #include <string.h>
 
-enum fact_column { FACT_NAME, FACT_VALUE, FACT_UNIT, FACT_METHOD, FACT_REMARK, FACT_COLUMNS };
+enum fact_column { FACT_NAME, FACT_VALUE, FACT_METHOD, FACT_REMARK, FACT_COLUMNS };
 
 static void add_fact(struct grid *grid, const struct fact *fact)
 {
@@ -23,9 +22,7 @@ static void add_fact(struct grid *grid, const struct fact *fact)
         row->span = behind ? arena_format(grid->arena, "%s   (%s)", fact->text, behind) : fact->text;
         return;
     }
-    row->cells[FACT_VALUE] = (struct grid_cell){number_shown(grid->arena, &fact->look, fact->value), true, NULL};
-    row->cells[FACT_VALUE].is_number = strcmp(row->cells[FACT_VALUE].text, PAGE_DASH) != 0;
-    row->cells[FACT_UNIT].text = number_unit(&fact->look);
+    row->cells[FACT_VALUE] = number_cell(grid->arena, &fact->look, number_shown(grid->arena, &fact->look, fact->value));
     row->cells[FACT_METHOD].text = fact->method;
     row->cells[FACT_REMARK].text = remark.bytes ? page_clean(grid->arena, remark.bytes) : NULL;
 }
@@ -39,7 +36,6 @@ static void draw_facts(const struct sheet_part *part, struct text *out)
     }
     struct grid *grid = grid_create(out->arena, FACT_COLUMNS);
     grid->columns[FACT_VALUE].align = GRID_NUMBERS;
-    grid->columns[FACT_UNIT].is_close = true;
     for (size_t i = 0; i < part->facts.count; i++) {
         add_fact(grid, &part->facts.items[i]);
     }

@@ -1,4 +1,3 @@
-#include "report/grid.h"
 #include "report/listing_internal.h"
 #include "report/number.h"
 #include "report/page.h"
@@ -8,9 +7,7 @@ enum requirement_column {
     REQUIREMENT_TEXT,
     REQUIREMENT_STATE,
     REQUIREMENT_MARGIN,
-    REQUIREMENT_UNIT,
     REQUIREMENT_WORST,
-    REQUIREMENT_WORST_UNIT,
     REQUIREMENT_METHOD,
     REQUIREMENT_WHERE,
     REQUIREMENT_COLUMNS
@@ -32,14 +29,12 @@ static const char *state_words(enum requirement_state state)
 static void set_numbers(struct grid *grid, struct grid_row *row, const struct requirement *one)
 {
     if (one->has_margin) {
-        row->cells[REQUIREMENT_MARGIN] =
-            (struct grid_cell){number_shown_difference(grid->arena, &one->look, one->margin), true, NULL};
-        row->cells[REQUIREMENT_UNIT].text = number_unit(&one->look);
+        const char *margin = number_shown_difference(grid->arena, &one->look, one->margin);
+        row->cells[REQUIREMENT_MARGIN] = number_cell(grid->arena, &one->look, margin);
     }
     if (one->has_worst_temperature) {
-        row->cells[REQUIREMENT_WORST] =
-            (struct grid_cell){number_shown(grid->arena, &one->temperature_look, one->worst_temperature), true, NULL};
-        row->cells[REQUIREMENT_WORST_UNIT].text = number_unit(&one->temperature_look);
+        const char *worst = number_shown(grid->arena, &one->temperature_look, one->worst_temperature);
+        row->cells[REQUIREMENT_WORST] = number_cell(grid->arena, &one->temperature_look, worst);
     }
 }
 
@@ -72,8 +67,6 @@ static void name_columns(struct grid *grid)
     }
     grid->columns[REQUIREMENT_MARGIN].align = GRID_NUMBERS;
     grid->columns[REQUIREMENT_WORST].align = GRID_NUMBERS;
-    grid->columns[REQUIREMENT_UNIT].is_close = true;
-    grid->columns[REQUIREMENT_WORST_UNIT].is_close = true;
 }
 
 void listing_requirements(const struct result *result, struct text *out)
