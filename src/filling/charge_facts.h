@@ -13,11 +13,12 @@ bool gas_volume_of(const struct sheet_run *run, struct method_run *method, doubl
  * the method given. */
 void add_charge_facts(const struct sheet_run *run, struct method_run *method, double mass);
 
-/* liquid-full-temperature, last-liquid-temperature or words in their place; nothing where the method knows no liquid. */
+/* liquid-full-temperature, last-liquid-temperature or words in their place; nothing where the method knows no
+ * liquid. */
 struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct method_run *method, double mass);
 
-/* The state of the vessel at the fill: the charge's own where it was given by pressure, else, for contents that are a gas
- * at 15 degC, the settled pressure there. */
+/* The state of the vessel at the fill: the charge's own where it was given by pressure, else, for contents that are a
+ * gas at 15 degC, the settled pressure there. */
 struct fill_point fill_point_of(const struct sheet_run *run, struct method_run *method, double mass);
 
 #endif

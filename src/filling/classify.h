@@ -5,10 +5,10 @@
 
 #include "filling/sheet.h"
 
-/* ADR/RID 2025, 2.2.2.1.2: compressed when wholly gas at -50 degC as filled; else liquefied, at high pressure when the
- * critical temperature is up to 65 degC and at low pressure above. `mass` kg in the sheet's vessel, by one method; where
- * the method says nothing about -50 degC (no liquid, below its range) the critical temperature alone decides.
- * CLASS_NONE when that is not known either. */
+/* ADR/RID 2025, 2.2.2.1.2: compressed when wholly gas at -50 degC as filled; else liquefied, at high pressure when
+ * the critical temperature is up to 65 degC and at low pressure above. `mass` kg in the sheet's vessel, by one
+ * method; where the method says nothing about -50 degC (no liquid, below its range) the critical temperature alone
+ * decides. CLASS_NONE when that is not known either. */
 enum filling_class classify_charge(const struct sheet_run *run, struct method_run *method, double mass);
 
 /* By the critical temperature alone, as for a vessel full enough to hold liquid. */

@@ -51,7 +51,7 @@ void warn_below_triple(const struct sheet_run *run, double temperature)
             result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,
                         "below the triple point of %s, %s, a solid may form, which no method here knows",
                         component->name,
-                        shown_text(run, look_temperature(run), component->triple_temperature.value));
+                        temperature_words(run, component->triple_temperature.value));
         }
     }
 }
@@ -85,7 +85,7 @@ enum answer contents_table_row(const struct sheet_run *run, struct table *table,
         cell_set_text(&row[COLUMN_STATE], "no answer");
         result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number,
                     "%s, %s: no answer for the contents at %s", run->sheet->fluid->name, method->name,
-                    shown_text(run, look_temperature(run), temperature));
+                    temperature_words(run, temperature));
         return answer;
     }
     fill_row(run, table, row, &contents, warn_outside_range(run, method, temperature, contents.pressure));

@@ -6,7 +6,8 @@
 
 #define HOTTEST 473.15 /* K: no filled vessel is asked about above 200 degC */
 #define COLDEST 20.0   /* K: for gases whose triple point and method say nothing */
-#define STEP 25.0      /* K, of the walk up to a pressure: at given volume a pressure all but always rises with temperature */
+/* K, of the walk up to a pressure: at given volume a pressure all but always rises with temperature. */
+#define STEP 25.0
 #define TEMPERATURE_TOLERANCE 1e-7 /* K */
 #define NEAR_CRITICAL 0.9999 /* of the critical temperature: saturation is promised up to here */
 

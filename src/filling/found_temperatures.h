@@ -1,7 +1,7 @@
 /* Temperatures at which a filled vessel changes: liquid-full, last liquid gone, a pressure reached.
  *
- * Nothing is allocated. `method->at_t` is used as workspace. Searched from the method's lowest temperature or the triple
- * point, whichever is higher, to the method's highest or 200 degC.
+ * Nothing is allocated. `method->at_t` is used as workspace. Searched from the method's lowest temperature or the
+ * triple point, whichever is higher, to the method's highest or 200 degC.
  */
 #ifndef TAREWRIGHT_FILLING_FOUND_TEMPERATURES_H
 #define TAREWRIGHT_FILLING_FOUND_TEMPERATURES_H

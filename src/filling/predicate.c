@@ -236,7 +236,8 @@ static bool is_overfull(const struct sheet_run *run, const struct method_run *me
         return false;
     }
     const double n[] = {mass / run->sheet->fluid->molar_mass};
-    return method->fluid->count == 1 && run->sheet->vessel->water_capacity.value <= phase_smallest_volume(method->at_t, n);
+    return method->fluid->count == 1 &&
+           run->sheet->vessel->water_capacity.value <= phase_smallest_volume(method->at_t, n);
 }
 
 static struct predicate_finding find_contents(const struct sheet_run *run, struct method_run *method, double mass,
@@ -305,9 +306,11 @@ struct predicate_finding predicate_check(const struct sheet_run *run, struct met
         const struct search_function function = {score_at_temperature, &search};
         const enum answer answer =
             search_least(&function, predicate->from, predicate->to, RANGE_STEP, RANGE_TOLERANCE, &worst, &score);
+        if (search.undecided.answer != ANSWER_OK) {
+            return search.undecided;
+        }
         if (answer != ANSWER_OK) {
-            return search.undecided.answer != ANSWER_OK ? search.undecided
-                                                        : undecided(answer, worst, "the worst temperature was not found");
+            return undecided(answer, worst, "the worst temperature was not found");
         }
     }
     return predicate_at(run, method, predicate, mass, worst, &score);

@@ -26,9 +26,9 @@ struct predicate_finding {
 struct predicate_finding predicate_check(const struct sheet_run *run, struct method_run *method,
                                          const struct predicate *predicate, double mass);
 
-/* The largest mass (kg) such that it and every smaller one meets the predicate, by one method: located to 1e-10 relative,
- * on the side that meets it; 0 when no mass does. *is_unlimited when no mass up to `most` breaks it (*mass is `most`).
- * answer: ANSWER_OK, or why it is undecided (at_limit->words may say more). */
+/* The largest mass (kg) such that it and every smaller one meets the predicate, by one method: located to 1e-10,
+ * relative, on the side that meets it; 0 when no mass does. *is_unlimited when no mass up to `most` breaks it (*mass
+ * is `most`). answer: ANSWER_OK, or why it is undecided (at_limit->words may say more). */
 enum answer predicate_largest_mass(const struct sheet_run *run, struct method_run *method,
                                    const struct predicate *predicate, double most, double *mass, bool *is_unlimited,
                                    struct predicate_finding *at_limit);

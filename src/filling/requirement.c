@@ -43,6 +43,13 @@ struct look look_predicate_margin(const struct sheet_run *run, const struct pred
     return look_pressure_difference(run);
 }
 
+const char *temperature_words(const struct sheet_run *run, double temperature)
+{
+    const struct look look = look_temperature(run);
+    const double shown = round(look_shown(&look, temperature) * 100.0) / 100.0;
+    return arena_format(run->arena, "%.6g %s", shown, look.shown.symbol);
+}
+
 const char *margin_words(const struct sheet_run *run, const struct predicate *predicate,
                          const struct predicate_finding *finding)
 {

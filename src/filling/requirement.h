@@ -11,7 +11,10 @@ struct look look_pressure_difference(const struct sheet_run *run);
 /* The look of a predicate's margin. */
 struct look look_predicate_margin(const struct sheet_run *run, const struct predicate *predicate);
 
-/* "at 65 degC": the predicate's quantity at the temperature found, for sentences. */
+/* "65 degC": a temperature for sentences, without closing zeros. */
+const char *temperature_words(const struct sheet_run *run, double temperature);
+
+/* "by 3.36 bar", or what was found where there is no margin: how a predicate was met or missed. */
 const char *margin_words(const struct sheet_run *run, const struct predicate *predicate,
                          const struct predicate_finding *finding);
 
@@ -19,8 +22,8 @@ const char *margin_words(const struct sheet_run *run, const struct predicate *pr
 struct requirement *add_requirement(const struct sheet_run *run, const struct method_run *method, const char *text,
                                     const struct predicate *predicate, const struct predicate_finding *finding);
 
-/* Checks the predicate for `mass` kg and adds it: by the lead method or, where the strictest governs, by the method that
- * finds it worst. A predicate without a temperature is checked from `from` to `to`. `text` NULL: as written. */
+/* Checks the predicate for `mass` kg and adds it: by the lead method or, where the strictest governs, by the method
+ * that finds it worst. A predicate without a temperature is checked from `from` to `to`. `text` NULL: as written. */
 struct requirement *require_predicate(struct sheet_run *run, const char *text, const struct predicate *predicate,
                                       double mass, double from, double to);
 

@@ -65,14 +65,14 @@ static void add_rise(const struct sheet_run *run, const struct method_run *metho
 {
     struct fact *fact = sheet_add_fact(run->result, run->out, name, rise, look);
     fact->method = method->name;
-    fact->remark = arena_format(run->arena, "at %s", shown_text(run, look_temperature(run), temperature));
+    fact->remark = arena_format(run->arena, "at %s", temperature_words(run, temperature));
 }
 
 void add_sensitivities(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
                        const struct fill_point *fill)
 {
     double rise;
-    sheet_begin_facts(run->result, run->out, "rise of the settled pressure for 1 K more, 1 % more charge, 1 bar more fill");
+    sheet_begin_facts(run->result, run->out, "rise of the settled pressure for 1 K, 1 % of charge, 1 bar of fill more");
     if (rise_per_kelvin(run, method, mass, temperature, &rise)) {
         add_rise(run, method, "rise-per-kelvin", rise, look_rise_per_kelvin(run), temperature);
     }

@@ -11,8 +11,8 @@ struct fill_point {
     double temperature, pressure; /* K, Pa absolute */
 };
 
-/* Rises of the settled pressure of `mass` kg at `temperature`, in Pa: each the pressure with the one thing changed by the
- * whole step named, less the pressure without. False where the method had no answer. */
+/* Rises of the settled pressure of `mass` kg at `temperature`, in Pa: each the pressure with the one thing changed
+ * by the whole step named, less the pressure without. False where the method had no answer. */
 bool rise_per_kelvin(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
                      double *rise);
 bool rise_per_percent(const struct sheet_run *run, struct method_run *method, double mass, double temperature,

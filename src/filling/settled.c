@@ -94,7 +94,7 @@ static void add_reached(const struct settled *settled, struct method_run *method
         const bool is_cold = temperature < hottest(settled);
         sheet_add_words(run->result, run->out, name,
                         arena_format(run->arena, is_cold ? "above it from %s on" : "not reached up to %s",
-                                     shown_text(run, look_temperature(run), temperature)))
+                                     temperature_words(run, temperature)))
             ->method = method->name;
     }
 }
@@ -119,8 +119,8 @@ static void warn_if_liquid_full(const struct settled *settled, const struct meth
         result_warn(run->result, CODE_W330, location_line(run->sheet->at), run->number,
                     "%s, %s: liquid-full from %s on, below the hottest temperature asked about, %s",
                     run->sheet->fluid->name, method->name,
-                    shown_text(run, look_temperature(run), found.temperature),
-                    shown_text(run, look_temperature(run), hottest(settled)));
+                    temperature_words(run, found.temperature),
+                    temperature_words(run, hottest(settled)));
     }
 }
 
@@ -186,7 +186,7 @@ static void add_hand_check(const struct settled *settled)
     }
     struct hand_check *check = sheet_add_hand_check(
         run->result, run->out,
-        arena_format(run->arena, "settled pressure at %s, %s", shown_text(run, look_temperature(run), temperature),
+        arena_format(run->arena, "settled pressure at %s, %s", temperature_words(run, temperature),
                      lead->name));
     hand_check_amount(run, check, settled->mass);
     hand_check_contents(run, check, lead, settled->mass, &contents);

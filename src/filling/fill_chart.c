@@ -1,0 +1,52 @@
+/* The fill chart: what the gauge should read while the vessel is filled, for each gas temperature. */
+#include "filling/permissible_internal.h"
+
+#include "filling/contents_table.h"
+
+enum chart_column { CHART_TEMPERATURE, CHART_READING, CHART_STATE };
+
+/* A gauge reads above the air around it, which need not be the standard atmosphere of the ratings. */
+static struct look look_reading(const struct sheet_run *run)
+{
+    struct look look = look_gauge(run);
+    look.shown.offset += run->tree->ambient_pressure - STANDARD_ATMOSPHERE;
+    return look;
+}
+
+static void add_row(const struct sheet_run *run, struct table *table, struct method_run *method, double mass,
+                    double temperature)
+{
+    struct cell *row = table_add_row(run->result, table);
+    cell_set(&row[CHART_TEMPERATURE], temperature);
+    struct vessel_contents contents;
+    if (contents_at(run, method, mass, temperature, &contents) != ANSWER_OK) {
+        cell_set_text(&row[CHART_STATE], "no answer");
+        return;
+    }
+    cell_set(&row[CHART_READING], contents.pressure);
+    row[CHART_READING].is_outside_range = !warn_outside_range(run, method, temperature, contents.pressure);
+    cell_set_text(&row[CHART_STATE], contents_words(&contents));
+}
+
+void tell_fill_chart(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct case_sweep *sweep = &run->sheet->temperatures;
+    if (!sweep->given) {
+        return;
+    }
+    struct method_run *method = governing_method(sheet);
+    struct table *table = sheet_add_table(run->result, run->out, "fill chart: gauge reading of the permitted charge",
+                                          method->name);
+    table->csv = run->sheet->table_csv;
+    table_add_column(run->result, table, "temperature", look_temperature(run));
+    table_add_column(run->result, table, "gauge-reading", look_reading(run));
+    table_add_word_column(run->result, table, "state");
+    for (size_t i = 0; i < sweep->count; i++) {
+        warn_below_triple(run, sweep->values[i]);
+        add_row(run, table, method, sheet->mass, sweep->values[i]);
+    }
+    sheet_add_note(run->result, run->out,
+                   "gas temperature, not wall temperature; readings above an ambient pressure of %s",
+                   shown_text(run, look_pressure(run), run->tree->ambient_pressure));
+}

@@ -1,0 +1,297 @@
+/* Listed rows: which row of the gas's entry applies to the vessel, what it replaces, and how it compares with the
+ * computation it stands for. */
+#include "filling/permissible_internal.h"
+
+#include "filling/contents_table.h"
+#include "filling/found_temperatures.h"
+#include "filling/requirement.h"
+
+#include <math.h>
+
+#define SETTLED_TEMPERATURE 288.15 /* K: where listed working pressures are stated */
+/* Test pressures that agree to this part are the same: a row in psi and a vessel in bar. */
+#define SAME_PRESSURE 1e-9
+/* Ratios that differ by less than this are shown as equal. */
+#define SAME_RATIO 5e-5
+
+/* ---- the choice -------------------------------------------------------------------------------------------------- */
+
+static bool is_liquefied(enum filling_class of)
+{
+    return of == CLASS_HIGH_PRESSURE_LIQUEFIED || of == CLASS_LOW_PRESSURE_LIQUEFIED;
+}
+
+/* A filling ratio stands for a criterion on liquefied gases, a working pressure for one on compressed gases. */
+static bool implements(const struct listed_row *row, const struct criterion *criterion)
+{
+    if (criterion->kind != CRITERION_RULE || !criterion->predicate->unless_listed) {
+        return false;
+    }
+    return row->filling_ratio.given ? criterion->meant_for != CLASS_COMPRESSED
+                                    : row->working_pressure.given && !is_liquefied(criterion->meant_for);
+}
+
+static bool implements_any(const struct permissible *sheet, const struct listed_row *row)
+{
+    for (size_t i = 0; i < sheet->criterion_count; i++) {
+        if (implements(row, &sheet->criteria[i])) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* Among rows of one test pressure the smaller ratio. */
+static bool replaces_choice(const struct listed_row *row, const struct listed_row *chosen)
+{
+    if (chosen == NULL || row->test_pressure > chosen->test_pressure) {
+        return true;
+    }
+    return row->test_pressure >= chosen->test_pressure && row->filling_ratio.given &&
+           row->filling_ratio.value < chosen->filling_ratio.value;
+}
+
+static void choose_row(struct permissible *sheet, const struct case_entry *entry)
+{
+    const struct quantity *test = &sheet->run->sheet->vessel->test_pressure;
+    struct listed_choice choice = {.entry = entry};
+    const struct listed_row *lowest = NULL;
+    for (size_t i = 0; i < entry->row_count; i++) {
+        const struct listed_row *row = &entry->rows[i];
+        if (!implements_any(sheet, row)) {
+            continue;
+        }
+        lowest = lowest == NULL || row->test_pressure < lowest->test_pressure ? row : lowest;
+        if (test->given && row->test_pressure <= test->value * (1.0 + SAME_PRESSURE) &&
+            replaces_choice(row, choice.row)) {
+            choice.row = row;
+        }
+    }
+    choice.lowest = lowest;
+    if (lowest != NULL && (sheet->listed.entry == NULL || (sheet->listed.row == NULL && choice.row != NULL))) {
+        sheet->listed = choice;
+    }
+}
+
+static const struct predicate *row_predicate(const struct permissible *sheet, const struct listed_row *row)
+{
+    struct arena *arena = sheet->run->arena;
+    struct formula *bound = arena_alloc(arena, 1, sizeof *bound);
+    struct predicate *predicate = arena_alloc(arena, 1, sizeof *predicate);
+    bound->kind = FORMULA_NUMBER;
+    bound->number = row->filling_ratio.given ? row->filling_ratio.value : row->working_pressure.value;
+    *predicate = (struct predicate){
+        .kind = PREDICATE_COMPARE,
+        .from = SETTLED_TEMPERATURE,
+        .to = SETTLED_TEMPERATURE,
+        .has_temperature = true,
+        .quantity = row->filling_ratio.given ? SYMBOL_FILLING_RATIO : SYMBOL_PRESSURE,
+        .relation = RELATION_AT_MOST,
+        .bound = bound,
+        .bound_is_gauge = !row->filling_ratio.given,
+        .gauge_zero = STANDARD_ATMOSPHERE,
+        .at = row->origin.at,
+        .temperature_unit = {"degC", 1.0, 273.15},
+    };
+    predicate->written =
+        row->filling_ratio.given
+            ? arena_format(arena, "filling-ratio <= %g", row->filling_ratio.value)
+            : arena_format(arena, "at 15 degC pressure <= %s",
+                           shown_text(sheet->run, look_gauge(sheet->run), bound->number + STANDARD_ATMOSPHERE));
+    return predicate;
+}
+
+void apply_listed_row(struct permissible *sheet)
+{
+    const struct case_sheet *asked = sheet->run->sheet;
+    for (size_t i = 0; i < asked->entry_count; i++) {
+        choose_row(sheet, asked->entries[i]);
+    }
+    struct listed_choice *listed = &sheet->listed;
+    if (listed->entry == NULL) {
+        return;
+    }
+    const struct listed_row *row = listed->row;
+    if (row == NULL && listed->entry->is_never_exceeded) {
+        row = listed->lowest;
+    }
+    if (row == NULL) {
+        return;
+    }
+    listed->predicate = row_predicate(sheet, row);
+    listed->has_ratio = row->filling_ratio.given;
+    listed->filling_ratio = row->filling_ratio.value;
+    for (size_t i = 0; i < sheet->criterion_count && listed->row != NULL && asked->listed == LISTED_GOVERNS; i++) {
+        sheet->criteria[i].is_replaced = implements(row, &sheet->criteria[i]);
+    }
+}
+
+const char *listed_words(const struct permissible *sheet)
+{
+    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+    return arena_format(sheet->run->arena, "%s, %.6g %s", sheet->listed.entry->name,
+                        (row->test_pressure + STANDARD_ATMOSPHERE - sheet->run->sheet->units.gauge.offset) /
+                            sheet->run->sheet->units.gauge.factor,
+                        sheet->run->sheet->units.gauge.symbol);
+}
+
+/* ---- the comparison ---------------------------------------------------------------------------------------------- */
+
+/* The method whose numbers the row is held against: the one that governs, else the lead. */
+static struct method_limits *basis_of(const struct permissible *sheet)
+{
+    return &sheet->by_method[sheet->governing.given ? sheet->governing.index : 0];
+}
+
+static void add_missed(const struct permissible *sheet, struct method_run *method, double mass)
+{
+    const struct sheet_run *run = sheet->run;
+    for (size_t i = 0; i < sheet->criterion_count; i++) {
+        const struct criterion *criterion = &sheet->criteria[i];
+        if (criterion->kind == CRITERION_LISTED) {
+            continue;
+        }
+        const struct predicate_finding finding = predicate_check(run, method, criterion->predicate, mass);
+        if (finding.answer == ANSWER_OK && !finding.holds) {
+            sheet_add_note(run->result, run->out, "the listed row misses '%s' %s at %s (%s)",
+                           criterion->predicate->written, margin_words(run, criterion->predicate, &finding),
+                           temperature_words(run, finding.worst_temperature), method->name);
+        }
+    }
+}
+
+/* The hottest temperature any rule speaks of: where a listed charge is looked at. */
+static double hottest_ruled(const struct permissible *sheet)
+{
+    double hottest = SETTLED_TEMPERATURE;
+    for (size_t i = 0; i < sheet->criterion_count; i++) {
+        hottest = fmax(hottest, sheet->criteria[i].predicate->to);
+    }
+    return hottest;
+}
+
+static void add_listed_pressure(const struct permissible *sheet, struct method_run *method, double mass)
+{
+    const struct sheet_run *run = sheet->run;
+    const double temperature = hottest_ruled(sheet);
+    struct vessel_contents contents;
+    if (contents_at(run, method, mass, temperature, &contents) == ANSWER_OK) {
+        struct fact *fact =
+            sheet_add_fact(run->result, run->out, "listed-pressure", contents.pressure, look_pressure(run));
+        fact->method = method->name;
+        fact->remark = arena_format(run->arena, "settled, at %s", temperature_words(run, temperature));
+    }
+    const struct liquid_end_found found = find_liquid_end(run, method, mass);
+    if (found.end == LIQUID_END_FULL) {
+        sheet_add_fact(run->result, run->out, "listed-liquid-full-temperature", found.temperature,
+                       look_temperature(run))
+            ->method = method->name;
+    }
+}
+
+static void warn_of_difference(const struct permissible *sheet, double computed)
+{
+    const struct sheet_run *run = sheet->run;
+    const double listed = sheet->listed.filling_ratio;
+    const size_t line = location_line(run->sheet->at);
+    if (listed > computed + SAME_RATIO) {
+        result_warn(run->result, CODE_W320, line, run->number,
+                    "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.1f %%",
+                    listed_words(sheet), listed, computed, listed - computed, 100.0 * (listed / computed - 1.0));
+    } else if (listed < computed - SAME_RATIO && run->sheet->listed == LISTED_GOVERNS) {
+        result_warn(run->result, CODE_W321, line, run->number,
+                    "%s: listed filling ratio %g is below the computed limit %.4f by %.4f, %.1f %%: the row governs",
+                    listed_words(sheet), listed, computed, computed - listed, 100.0 * (1.0 - listed / computed));
+    }
+}
+
+static void tell_ratio_row(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct method_limits *basis = basis_of(sheet);
+    const double mass = mass_of_ratio(run, sheet->listed.filling_ratio);
+    struct fact *fact = sheet_add_fact(run->result, run->out, "listed-filling-ratio", sheet->listed.filling_ratio,
+                                       look_ratio(4));
+    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+    fact->source = row->origin.source == NULL ? NULL : row->origin.source->key;
+    sheet_add_fact(run->result, run->out, "listed-mass", mass, look_mass(run));
+    if (basis->method == NULL) {
+        return;
+    }
+    if (basis->replaced.given) {
+        const double computed = ratio_of_mass(run, basis->limits[basis->replaced.index].mass);
+        sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4))->method =
+            basis->method->name;
+        fact = sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed,
+                              look_ratio(4));
+        fact->remark = "listed less computed";
+        warn_of_difference(sheet, computed);
+    }
+    add_listed_pressure(sheet, basis->method, mass);
+    add_missed(sheet, basis->method, mass);
+}
+
+/* A listed working pressure beside the settled pressure that the criterion it stands for would allow. */
+static void tell_pressure_row(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct method_limits *basis = basis_of(sheet);
+    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+    sheet_add_fact(run->result, run->out, "listed-working-pressure", row->working_pressure.value + STANDARD_ATMOSPHERE,
+                   look_gauge(run))
+        ->source = row->origin.source == NULL ? NULL : row->origin.source->key;
+    struct vessel_contents contents;
+    if (basis->method != NULL && basis->replaced.given &&
+        contents_at(run, basis->method, basis->limits[basis->replaced.index].mass, SETTLED_TEMPERATURE, &contents) ==
+            ANSWER_OK) {
+        struct fact *fact = sheet_add_fact(run->result, run->out, "computed-working-pressure", contents.pressure,
+                                           look_gauge(run));
+        fact->method = basis->method->name;
+        fact->remark = "allowed by the criterion the row stands for";
+    }
+}
+
+static void tell_missing_row(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct quantity *test = &run->sheet->vessel->test_pressure;
+    const char *vessel = test->given ? shown_text(run, look_gauge(run), test->value + STANDARD_ATMOSPHERE) : "none";
+    result_warn(run->result, CODE_W322, location_line(run->sheet->at), run->number,
+                "%s: the lowest listed test pressure is %s, the vessel's %s: no row applies%s",
+                sheet->listed.entry->name,
+                shown_text(run, look_gauge(run), sheet->listed.lowest->test_pressure + STANDARD_ATMOSPHERE), vessel,
+                sheet->listed.predicate == NULL ? ", the computed criterion stands alone"
+                                                : "; by letter o the lowest row is not exceeded");
+}
+
+/* Letter o is told where it is what keeps the computation from allowing more. */
+static void tell_letter_o(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    if (sheet->listed.entry->is_never_exceeded && run->sheet->listed == LISTED_COMPARE) {
+        result_warn(run->result, CODE_W331, location_line(run->sheet->at), run->number,
+                    "%s has letter o: its row binds although the sheet only compares", sheet->listed.entry->name);
+    }
+}
+
+void tell_listed_row(struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    if (sheet->listed.entry == NULL) {
+        return;
+    }
+    if (sheet->listed.row == NULL) {
+        tell_missing_row(sheet);
+    }
+    if (sheet->listed.predicate == NULL) {
+        return;
+    }
+    sheet_begin_facts(run->result, run->out, "listed row beside the computation");
+    sheet_add_words(run->result, run->out, "listed-row", listed_words(sheet));
+    if (sheet->listed.has_ratio) {
+        tell_ratio_row(sheet);
+    } else {
+        tell_pressure_row(sheet);
+    }
+    tell_letter_o(sheet);
+}
