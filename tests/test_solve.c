@@ -148,6 +148,18 @@ static void data_stand_with_their_sources(void **state)
     assert_int_equal(warnings_of(result, CODE_W301), 0);
 }
 
+static void only_sources_that_something_cites_are_told(void **state)
+{
+    struct solved *solved = *state;
+    const struct case_source idle = {.key = "poling-2001", .citation = "a handbook"};
+    const struct case_source *const sources[] = {&idle, &SMALL_CASE_SOURCE};
+    solved->small.tree.sources = sources;
+    solved->small.tree.source_count = 2;
+    const struct result *result = solve(solved);
+    assert_int_equal(result->sources.count, 1);
+    assert_string_equal(result->sources.items[0].key, "lemmon-2009");
+}
+
 static void only_data_that_a_method_uses_are_told(void **state)
 {
     struct solved *solved = *state;
@@ -251,6 +263,7 @@ int main(void)
         TEST(inputs_carry_the_line_they_came_from),
         TEST(every_method_is_made_ready_and_told_once),
         TEST(data_stand_with_their_sources),
+        TEST(only_sources_that_something_cites_are_told),
         TEST(only_data_that_a_method_uses_are_told),
         TEST(a_value_that_replaces_another_shows_both),
         TEST(a_value_from_memory_is_marked_and_warned_of_where_it_is_used),

@@ -340,17 +340,52 @@ static void tell_entries_and_rules(const struct case_tree *tree, struct result *
     }
 }
 
+static bool is_cited_in_data(const struct result *result, const char *key)
+{
+    for (size_t i = 0; i < result->data.count; i++) {
+        const struct data_row *row = &result->data.items[i];
+        if ((row->source != NULL && strcmp(row->source, key) == 0) ||
+            (row->remark != NULL && strstr(row->remark, key) != NULL)) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static bool is_cited_in_sheets(const struct result *result, const char *key)
+{
+    for (const struct result_sheet *sheet = result->first_sheet; sheet; sheet = sheet->next) {
+        for (const struct sheet_part *part = sheet->first_part; part; part = part->next) {
+            for (size_t i = 0; i < part->facts.count; i++) {
+                const char *source = part->facts.items[i].source;
+                if (source != NULL && strcmp(source, key) == 0) {
+                    return true;
+                }
+            }
+        }
+    }
+    return false;
+}
+
+/* A source that nothing told here cites would only puzzle a reader. */
+static void tell_sources(const struct case_tree *tree, struct result *result)
+{
+    for (size_t i = 0; i < tree->source_count; i++) {
+        const struct case_source *source = tree->sources[i];
+        if (is_cited_in_data(result, source->key) || is_cited_in_sheets(result, source->key)) {
+            *ARENA_APPEND(result->arena, &result->sources) =
+                (struct source_row){source->key, source->citation, source->is_unverified};
+        }
+    }
+}
+
 void tell_data(const struct case_tree *tree, const struct method_pool *pool, struct result *result)
 {
     for (size_t i = 0; i < tree->component_count; i++) {
         tell_component(tree, pool, tree->components[i], result);
     }
     tell_entries_and_rules(tree, result);
-    for (size_t i = 0; i < tree->source_count; i++) {
-        const struct case_source *source = tree->sources[i];
-        *ARENA_APPEND(result->arena, &result->sources) =
-            (struct source_row){source->key, source->citation, source->is_unverified};
-    }
+    tell_sources(tree, result);
 }
 
 /* ---- methods --------------------------------------------------------------------------------------------------- */
