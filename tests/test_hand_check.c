@@ -191,6 +191,9 @@ static void the_margin_to_a_rating_is_redone(void **state)
     hand_check_gauge(&small.run, check, 23.37e5, 1e5, 22.5e5);
     redo(check, 1e-9, "margin");
     assert_close(printed(check, "margin"), 0.13e5, 1e-9, "22.5 - (23.37 - 1) bar");
+    struct hand_check *at_bound = sheet_add_hand_check(small.run.result, small.run.out, "margin");
+    hand_check_gauge(&small.run, at_bound, 20101324.9988, 101325.0, 200e5);
+    redo(at_bound, 0.0, "at the bound but for a few units of the search's tolerance");
     small_case_tear_down(&small);
 }
 

@@ -474,7 +474,7 @@ static const char *role_words(const struct pooled_method *pooled, struct arena *
     case ROLE_LEADS:
         return pooled->reason == NULL ? "leads" : arena_format(arena, "leads: %s", pooled->reason);
     case ROLE_BESIDE:
-        return "stands beside the lead";
+        return pooled->run.may_govern ? "stands beside the lead" : "stands beside the lead, never governs";
     case ROLE_SHOWN:
         break;
     }

@@ -102,6 +102,9 @@ static const char *value_with_unit(struct arena *arena, const struct explained_v
 
 static const char *with_meaning(struct arena *arena, const char *line, const char *meaning)
 {
+    if (*meaning == '\0') {
+        return line;
+    }
     const int gap = MEANING_COLUMN - (int)strlen(line);
     return arena_format(arena, "%s%*s%s", line, gap > 3 ? gap : 3, "", meaning);
 }
@@ -294,14 +297,18 @@ void hand_check_ratio(const struct sheet_run *run, struct hand_check *check, dou
     hand_check_numbers(run, check, &numbers);
 }
 
+/* Pressures of a check are compared to this: far below any gauge, and so that the printed digits give the margin. */
+#define SHOWN_PRESSURE_PLACE 1e-2 /* Pa */
+
 void hand_check_gauge(const struct sheet_run *run, struct hand_check *check, double pressure, double gauge_zero,
                       double bound)
 {
+    const double p = round(pressure / SHOWN_PRESSURE_PLACE) * SHOWN_PRESSURE_PLACE;
     struct explanation numbers = {.count = 0};
-    put(&numbers, "p", "pressure, absolute", NULL, "Pa", pressure);
+    put(&numbers, "p", "pressure, absolute", NULL, "Pa", p);
     put(&numbers, "p_0", "zero of the gauge", NULL, "Pa", gauge_zero);
-    put(&numbers, "p_g", "pressure, gauge", "p - p_0", "Pa", pressure - gauge_zero);
+    put(&numbers, "p_g", "pressure, gauge", "p - p_0", "Pa", p - gauge_zero);
     put(&numbers, "p_r", "bound, gauge", NULL, "Pa", bound);
-    put(&numbers, "margin", "", "p_r - p_g", "Pa", bound - (pressure - gauge_zero));
+    put(&numbers, "margin", "", "p_r - p_g", "Pa", bound - (p - gauge_zero));
     hand_check_numbers(run, check, &numbers);
 }
