@@ -210,6 +210,41 @@ static void without_fits_an_equation_finds_its_own_saturation(void **state)
     close_gas(&gas);
 }
 
+/* UN class limits are judged at -50 degC; this equation is published from 273 K on. */
+static void a_little_below_its_range_an_equation_still_answers(void **state)
+{
+    (void)state;
+    struct subject gas;
+    struct saturation saturation;
+    open_gas(&gas, "cyclopropane");
+    set_temperature(&gas, 223.15);
+    assert_int_equal(saturation_at_t(gas.at_t, &saturation), ANSWER_OK);
+    assert_close(saturation.pressure, 37519.3176117, 1e-10, "independent 30-digit evaluation of the same equation");
+    set_temperature(&gas, 20.0);
+    double density = 0.0;
+    assert_true(density_at(&gas, 1e5, BRANCH_LIQUID, &density) != ANSWER_OK);
+    close_gas(&gas);
+}
+
+static void an_equation_without_a_liquid_fails_below_its_critical_temperature(void **state)
+{
+    (void)state;
+    struct reference_spec empty = *reference_gas("propane")->equation;
+    struct saturation_start start;
+    struct subject gas;
+    double density = 0.0;
+    empty.residual_count = 0;
+    open_equation(&gas, "no terms", &empty, 0.044);
+    set_temperature(&gas, 300.0);
+    assert_int_equal(density_at(&gas, 1e5, BRANCH_VAPOUR, &density), ANSWER_FAILED);
+    assert_int_equal(gas.fluid->ops->saturation_start(gas.at_t, &start), ANSWER_FAILED);
+    set_temperature(&gas, 400.0);
+    assert_int_equal(gas.fluid->ops->saturation_start(gas.at_t, &start), ANSWER_NO_SUCH_ROOT);
+    assert_int_equal(density_at(&gas, 1e5, BRANCH_VAPOUR, &density), ANSWER_OK);
+    assert_close(density, 1e5 / (8.314472 * 400.0), 1e-14, "without terms the gas is ideal");
+    close_gas(&gas);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -219,6 +254,8 @@ int main(void)
         cmocka_unit_test(what_has_no_meaning_is_out_of_range),
         cmocka_unit_test(starting_values_lie_on_the_right_sides_up_to_the_critical_point),
         cmocka_unit_test(without_fits_an_equation_finds_its_own_saturation),
+        cmocka_unit_test(a_little_below_its_range_an_equation_still_answers),
+        cmocka_unit_test(an_equation_without_a_liquid_fails_below_its_critical_temperature),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

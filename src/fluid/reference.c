@@ -168,7 +168,9 @@ static enum answer saturation_start(const struct fluid_at_t *at_t, struct satura
         return ANSWER_NO_SUCH_ROOT;
     }
     struct reference_pair pair;
-    reference_pair_at(reference, at_t->temperature, &pair);
+    if (!reference_pair_at(reference, at_t->temperature, &pair)) {
+        return ANSWER_FAILED;
+    }
     *out = (struct saturation_start){pair.pressure, 1.0 / pair.vapour_density, 1.0 / pair.liquid_density};
     return ANSWER_OK;
 }

@@ -72,8 +72,9 @@ void reference_set_temperature(struct reference_at_t *at_t, const struct referen
 /* Fills reference->table; `at_t` is a workspace. */
 void reference_fill_table(struct reference *reference, struct reference_at_t *at_t);
 
-/* The saturated pair below the critical temperature, interpolated in the table to about 1e-6. */
-void reference_pair_at(const struct reference *reference, double temperature, struct reference_pair *out);
+/* The saturated pair below the critical temperature, interpolated in the table to about 1e-6. False where so far
+ * below the coldest node that the prolonged line has lost its meaning. */
+bool reference_pair_at(const struct reference *reference, double temperature, struct reference_pair *out);
 
 /* The largest density (mol/m3) the equation is used to at this temperature. */
 double reference_largest_density(const struct reference *reference, double temperature);

@@ -293,7 +293,9 @@ enum answer reference_volume(const struct fluid_at_t *head, double pressure, con
         answer = single_root(at_t, pressure, &density);
     } else {
         struct reference_pair pair;
-        reference_pair_at(reference, head->temperature, &pair);
+        if (!reference_pair_at(reference, head->temperature, &pair)) {
+            return ANSWER_FAILED;
+        }
         switch (branch) {
         case BRANCH_VAPOUR:
             answer = vapour_root(at_t, &pair, pressure, &density);

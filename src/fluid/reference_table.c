@@ -8,9 +8,11 @@
 
 #include <math.h>
 
-/* The table reaches this part of the smallest temperature, for starting values a little outside the range. */
-#define BELOW_RANGE 0.95
-#define PAIR_PASSES 60
+/* The table reaches this part of the smallest temperature, and this part of the critical one if that is colder: a
+ * liquefied gas is classed by its state at -50 degC, where some equations that end at 273 K must be extrapolated. */
+#define BELOW_RANGE    0.95
+#define BELOW_CRITICAL 0.5
+#define PAIR_PASSES    60
 /* Relative change of a density at which a pair is good enough for a starting value. */
 #define PAIR_TOLERANCE 1e-9
 /* The largest pressure answered is this multiple of the published limit, and at least the second figure (Pa). */
@@ -203,12 +205,16 @@ static bool fill_node(struct reference *reference, struct reference_at_t *at_t, 
     return solved;
 }
 
+static double coldest_temperature(const struct reference_spec *equation)
+{
+    return fmin(BELOW_RANGE * equation->smallest_temperature, BELOW_CRITICAL * equation->critical_temperature);
+}
+
 static void fill_saturation(struct reference *reference, struct reference_at_t *at_t)
 {
     struct reference_table *table = &reference->table;
     const struct reference_spec *equation = reference->equation;
-    const double coldest = BELOW_RANGE * equation->smallest_temperature / equation->critical_temperature;
-    table->step = sqrt(1.0 - coldest) / SATURATION_NODES;
+    table->step = sqrt(1.0 - coldest_temperature(equation) / equation->critical_temperature) / SATURATION_NODES;
     table->nodes[0] = (struct saturation_node){.liquid = 1.0};
     table->count = 1;
     while (table->count <= SATURATION_NODES && fill_node(reference, at_t, table->count)) {
@@ -216,19 +222,26 @@ static void fill_saturation(struct reference *reference, struct reference_at_t *
     }
 }
 
-void reference_pair_at(const struct reference *reference, double temperature, struct reference_pair *out)
+bool reference_pair_at(const struct reference *reference, double temperature, struct reference_pair *out)
 {
     const struct reference_table *table = &reference->table;
+    if (table->count < 4) {
+        return false; /* an equation without a saturation line */
+    }
     const double reduced = temperature / reference->equation->critical_temperature;
     const double x = sqrt(fmax(0.0, 1.0 - reduced)) / table->step;
     const double last = (double)(table->count - 1);
-    /* The four nodes around x, or the last four. */
+    /* The four nodes around x; past the last node the line through the last two. */
     const double first = fmax(0.0, fmin(floor(x) - 1.0, last - 3.0));
-    double weights[4];
-    cubic_weights(x - first, weights);
+    double weights[4] = {0.0, 0.0, last - x, x - last + 1.0};
+    if (x <= last) {
+        cubic_weights(x - first, weights);
+    }
     const struct saturation_node node = weighted(&table->nodes[(size_t)first], weights);
     *out = pair_of_node(reference->equation, &node, reduced);
     out->inside = x <= last;
+    return out->pressure > 0.0 && out->vapour_density > 0.0 && out->liquid_density > out->vapour_density &&
+           isfinite(out->liquid_density);
 }
 
 /* Upward in steps of a fortieth until the pressure reaches `most`. Where dp/drho falls first, the equation has left
@@ -257,7 +270,7 @@ static void fill_densities(struct reference *reference, struct reference_at_t *a
     struct reference_table *table = &reference->table;
     const struct reference_spec *equation = reference->equation;
     const double most = fmax(PRESSURE_MARGIN * equation->largest_pressure, LEAST_LARGEST_PRESSURE);
-    table->first_log = log(BELOW_RANGE * equation->smallest_temperature);
+    table->first_log = log(coldest_temperature(equation));
     table->log_step = (log(equation->largest_temperature) - table->first_log) / (DENSITY_NODES - 1);
     for (size_t i = 0; i < DENSITY_NODES; i++) {
         const double temperature = exp(table->first_log + table->log_step * (double)i);
@@ -265,8 +278,7 @@ static void fill_densities(struct reference *reference, struct reference_at_t *a
         reference_set_temperature(at_t, reference, temperature);
         if (temperature < equation->critical_temperature) {
             struct reference_pair pair;
-            reference_pair_at(reference, temperature, &pair);
-            start = fmax(start, pair.liquid_density);
+            start = reference_pair_at(reference, temperature, &pair) ? fmax(start, pair.liquid_density) : start;
         }
         table->largest_density[i] = walk_to_largest(at_t, start, most);
     }
@@ -288,6 +300,7 @@ void reference_fill_table(struct reference *reference, struct reference_at_t *at
     fill_densities(reference, at_t);
     /* Acentric factor of the equation itself, -log10(psat(0.7 Tc)/pc) - 1. */
     struct reference_pair pair;
-    reference_pair_at(reference, 0.7 * reference->equation->critical_temperature, &pair);
-    reference->acentric = -log10(pair.pressure / reference->equation->critical_pressure) - 1.0;
+    if (reference_pair_at(reference, 0.7 * reference->equation->critical_temperature, &pair)) {
+        reference->acentric = -log10(pair.pressure / reference->equation->critical_pressure) - 1.0;
+    }
 }
