@@ -212,7 +212,7 @@ static int compare_inputs(const void *left, const void *right)
     const struct case_input *a = left;
     const struct case_input *b = right;
     if (a->origin.at.file != b->origin.at.file) {
-        return strcmp(a->origin.at.file->name, b->origin.at.file->name);
+        return a->origin.at.file->order < b->origin.at.file->order ? -1 : 1;
     }
     if (a->origin.at.begin != b->origin.at.begin) {
         return a->origin.at.begin < b->origin.at.begin ? -1 : 1;
