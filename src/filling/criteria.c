@@ -4,6 +4,8 @@
 #include "filling/classify.h"
 #include "filling/requirement.h"
 
+#include <math.h>
+
 /* Ratios limited by a rating are rounded as the rules do by default. */
 #define DEFAULT_ROUNDING 0.01
 
@@ -66,6 +68,15 @@ static void add_ratings(struct permissible *sheet)
     for (size_t i = 0; i < count; i++) {
         add_criterion(sheet, CRITERION_RATING, "vessel", &ratings[i], sheet->is_by_ratio ? DEFAULT_ROUNDING : 0.0);
     }
+}
+
+double hottest_ruled(const struct permissible *sheet)
+{
+    double hottest = sheet->criteria[0].predicate->to;
+    for (size_t i = 1; i < sheet->criterion_count; i++) {
+        hottest = fmax(hottest, sheet->criteria[i].predicate->to);
+    }
+    return hottest;
 }
 
 void collect_criteria(struct permissible *sheet)

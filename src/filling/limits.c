@@ -101,6 +101,9 @@ static void rank_limits(const struct permissible *sheet, struct method_limits *o
         if (criterion->kind != CRITERION_LISTED) {
             take_least(&of->computed, of->limits, i);
         }
+        if (criterion->kind == CRITERION_RULE) {
+            take_least(&of->ruled, of->limits, i);
+        }
         if (criterion->predicate->unless_listed) {
             take_least(&of->replaced, of->limits, i);
         }

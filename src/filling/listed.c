@@ -6,8 +6,6 @@
 #include "filling/found_temperatures.h"
 #include "filling/requirement.h"
 
-#include <math.h>
-
 #define SETTLED_TEMPERATURE 288.15 /* K: where listed working pressures are stated */
 /* Test pressures that agree to this part are the same: a row in psi and a vessel in bar. */
 #define SAME_PRESSURE 1e-9
@@ -143,7 +141,8 @@ static struct method_limits *basis_of(const struct permissible *sheet)
     return &sheet->by_method[sheet->governing.given ? sheet->governing.index : 0];
 }
 
-static void add_missed(const struct permissible *sheet, struct method_run *method, double mass)
+/* What the listed charge does to each computed criterion: this explains a row that differs from the computation. */
+static void add_findings(const struct permissible *sheet, struct method_run *method, double mass)
 {
     const struct sheet_run *run = sheet->run;
     for (size_t i = 0; i < sheet->criterion_count; i++) {
@@ -152,22 +151,13 @@ static void add_missed(const struct permissible *sheet, struct method_run *metho
             continue;
         }
         const struct predicate_finding finding = predicate_check(run, method, criterion->predicate, mass);
-        if (finding.answer == ANSWER_OK && !finding.holds) {
-            sheet_add_note(run->result, run->out, "the listed row misses '%s' %s at %s (%s)",
-                           criterion->predicate->written, margin_words(run, criterion->predicate, &finding),
-                           temperature_words(run, finding.worst_temperature), method->name);
+        if (finding.answer == ANSWER_OK) {
+            sheet_add_note(run->result, run->out, "filled to the row, '%s' is %s at %s: %s (%s)",
+                           criterion->predicate->written, finding.holds ? "met" : "missed",
+                           temperature_words(run, finding.worst_temperature),
+                           margin_words(run, criterion->predicate, &finding), method->name);
         }
     }
-}
-
-/* The hottest temperature any rule speaks of: where a listed charge is looked at. */
-static double hottest_ruled(const struct permissible *sheet)
-{
-    double hottest = SETTLED_TEMPERATURE;
-    for (size_t i = 0; i < sheet->criterion_count; i++) {
-        hottest = fmax(hottest, sheet->criteria[i].predicate->to);
-    }
-    return hottest;
 }
 
 static void add_listed_pressure(const struct permissible *sheet, struct method_run *method, double mass)
@@ -218,17 +208,18 @@ static void tell_ratio_row(const struct permissible *sheet)
     if (basis->method == NULL) {
         return;
     }
-    if (basis->replaced.given) {
-        const double computed = ratio_of_mass(run, basis->limits[basis->replaced.index].mass);
-        sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4))->method =
-            basis->method->name;
+    if (basis->ruled.given) {
+        const double computed = ratio_of_mass(run, basis->limits[basis->ruled.index].mass);
+        fact = sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4));
+        fact->method = basis->method->name;
+        fact->remark = "least of the rules' criteria, unrounded";
         fact = sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed,
                               look_ratio(4));
         fact->remark = "listed less computed";
         warn_of_difference(sheet, computed);
     }
     add_listed_pressure(sheet, basis->method, mass);
-    add_missed(sheet, basis->method, mass);
+    add_findings(sheet, basis->method, mass);
 }
 
 /* A listed working pressure beside the settled pressure that the criterion it stands for would allow. */

@@ -15,8 +15,33 @@ static const double DEFAULT_QUOTES[] = {288.15, 323.15, 338.15};
 
 #define SETTLED_TEMPERATURE 288.15 /* K */
 
-/* Headlines stand on the first page: a deck with more sheets than this has its charges in them. */
+/* Headlines stand on the first page: a deck with more charges than this has them in its sheets. */
 enum { MOST_HEADLINES = 4 };
+
+/* ---- headlines --------------------------------------------------------------------------------------------------- */
+
+static size_t charges_asked(const struct case_tree *tree)
+{
+    size_t count = 0;
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        count += tree->sheets[i].kind == SHEET_PERMISSIBLE_CHARGE;
+    }
+    return count;
+}
+
+static void add_headline(const struct sheet_run *run, const char *text)
+{
+    struct line_list *lines = &run->result->headlines;
+    const size_t asked = charges_asked(run->tree);
+    if (asked == 1) {
+        line_list_add(run->result, lines, "%s", text);
+    } else if (asked <= MOST_HEADLINES) {
+        line_list_add(run->result, lines, "%s: %s", run->sheet->title == NULL ? run->sheet->fluid->name
+                                                                             : run->sheet->title, text);
+    } else if (lines->count == 0) {
+        line_list_add(run->result, lines, "%zu charges asked for: one in each sheet", asked);
+    }
+}
 
 /* ---- gases that get no charge ------------------------------------------------------------------------------------ */
 
@@ -67,8 +92,7 @@ static void tell_no_charge(const struct sheet_run *run, enum requirement_state s
     requirement->state = state;
     requirement->reason = reason;
     requirement->line = location_line(run->sheet->at);
-    line_list_add(run->result, &run->result->headlines, "sheet %zu, %s: no permitted charge", run->number,
-                  run->sheet->fluid->name);
+    add_headline(run, "no permitted charge");
 }
 
 /* True when the sheet ends here. An assessment is quoted, never judged. */
@@ -136,8 +160,8 @@ static void tell_nothing_allowed(const struct permissible *sheet)
         limit->mass > 0.0
             ? arena_format(run->arena, "the limit of '%s', filling ratio %.6f, rounds down to nothing by steps of %g",
                            criterion->predicate->written, ratio_of_mass(run, limit->mass), criterion->round_to)
-            : arena_format(run->arena, "'%s' is missed %s at %s whatever the charge", criterion->predicate->written,
-                           found, temperature_words(run, limit->finding.worst_temperature));
+            : arena_format(run->arena, "'%s' is missed at %s whatever the charge: %s", criterion->predicate->written,
+                           temperature_words(run, limit->finding.worst_temperature), found);
     tell_no_charge(run, REQUIREMENT_NOT_MET, reason);
 }
 
@@ -225,8 +249,6 @@ static const char *governed_in_words(const struct permissible *sheet)
 static void tell_headline(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
-    const bool is_alone = run->tree->sheet_count == 1;
-    const char *where = is_alone ? "" : arena_format(run->arena, "sheet %zu: ", run->number);
     const char *opening = is_indicative(sheet) ? "indicative, not for filling: charge" : "permitted charge";
     const char *amount = arena_format(run->arena, "filling ratio %.4g", ratio_of_mass(run, sheet->mass));
     struct vessel_contents contents;
@@ -234,10 +256,8 @@ static void tell_headline(const struct permissible *sheet)
                                    ANSWER_OK) {
         amount = arena_format(run->arena, "%s at 15 degC", shown_text(run, look_gauge(run), contents.pressure));
     }
-    if (run->result->headlines.count < MOST_HEADLINES) {
-        line_list_add(run->result, &run->result->headlines, "%s%s %s, %s, governed by %s", where, opening,
-                      shown_text(run, look_mass(run), sheet->mass), amount, governed_in_words(sheet));
-    }
+    add_headline(run, arena_format(run->arena, "%s %s, %s, governed by %s", opening,
+                                   shown_text(run, look_mass(run), sheet->mass), amount, governed_in_words(sheet)));
 }
 
 /* ---- pressures of the permitted charge --------------------------------------------------------------------------- */
@@ -267,19 +287,6 @@ static void tell_pressures(const struct permissible *sheet)
     }
 }
 
-/* The temperature at which the charge's pressure matters most: that of the limit, or of the hottest criterion. */
-static double decisive_temperature(const struct permissible *sheet)
-{
-    if (governing_criterion(sheet)->kind != CRITERION_LISTED) {
-        return governing_limit(sheet)->finding.worst_temperature;
-    }
-    double hottest = SETTLED_TEMPERATURE;
-    for (size_t i = 0; i < sheet->criterion_count; i++) {
-        hottest = fmax(hottest, sheet->criteria[i].predicate->to);
-    }
-    return hottest;
-}
-
 /* ---- requirements ------------------------------------------------------------------------------------------------ */
 
 static const char *requirement_words(const struct permissible *sheet, const struct criterion *criterion)
@@ -297,10 +304,8 @@ static void tell_replaced(const struct permissible *sheet, struct requirement *r
     const struct sheet_run *run = sheet->run;
     const char *computed = "no answer";
     if (finding->answer == ANSWER_OK) {
-        computed = arena_format(run->arena, "%s %s", finding->holds ? "met" : "not met",
-                                finding->has_margin || !finding->holds
-                                    ? margin_words(run, criterion->predicate, finding)
-                                    : "");
+        computed = arena_format(run->arena, "%s, %s", finding->holds ? "met" : "not met",
+                                margin_words(run, criterion->predicate, finding));
     }
     requirement->state = REQUIREMENT_MET;
     requirement->reason =
@@ -379,7 +384,7 @@ static void check_listed(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
     struct method_run *method = governing_method(sheet);
-    const double temperature = decisive_temperature(sheet);
+    const double temperature = hottest_ruled(sheet);
     struct vessel_contents contents;
     struct hand_check *check =
         sheet_add_hand_check(run->result, run->out,
@@ -420,7 +425,7 @@ void answer_permissible_charge(struct sheet_run *run)
     tell_headline(&sheet);
     tell_pressures(&sheet);
     const struct fill_point fill = fill_point_of(run, governing_method(&sheet), sheet.mass);
-    add_sensitivities(run, governing_method(&sheet), sheet.mass, decisive_temperature(&sheet), &fill);
+    add_sensitivities(run, governing_method(&sheet), sheet.mass, hottest_ruled(&sheet), &fill);
     tell_fill_chart(&sheet);
     tell_requirements(&sheet);
     if (governing_criterion(&sheet)->kind == CRITERION_LISTED) {

@@ -44,6 +44,7 @@ struct method_limits {
     struct criterion_limit *limits; /* [criterion_count] */
     struct choice permitted;        /* the least of those that bind */
     struct choice computed;         /* the least of the computed ones, replaced ones too */
+    struct choice ruled;            /* the least of the rules' own, replaced ones too */
     struct choice replaced;         /* the least of those a listed row replaces, or would */
     bool is_decided;                /* every criterion that binds had an answer */
     struct choice undecided;        /* the first that had none */
@@ -78,6 +79,9 @@ void collect_criteria(struct permissible *sheet);
 
 /* Chooses the row and adds it to the criteria; marks what it replaces. */
 void apply_listed_row(struct permissible *sheet);
+
+/* The hottest temperature any criterion speaks of, K: where a charge's pressure matters most. */
+double hottest_ruled(const struct permissible *sheet);
 
 /* "UN 1013, 250 barg". */
 const char *listed_words(const struct permissible *sheet);

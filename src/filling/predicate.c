@@ -173,6 +173,9 @@ static struct predicate_finding compare_at(const struct sheet_run *run, const st
                          isfinite(value) ? "the bound has no value here" : "the quantity has no value here");
     }
     compare(&finding, predicate, value, bound, score);
+    if (!finding.holds && predicate->quantity == SYMBOL_LIQUID_VOLUME && contents->state == VESSEL_LIQUID_FULL) {
+        finding.words = "liquid-full";
+    }
     return finding;
 }
 

@@ -53,11 +53,20 @@ const char *temperature_words(const struct sheet_run *run, double temperature)
 const char *margin_words(const struct sheet_run *run, const struct predicate *predicate,
                          const struct predicate_finding *finding)
 {
+    if (finding->words != NULL) {
+        return finding->words;
+    }
     if (!finding->has_margin) {
-        return finding->words == NULL ? "not met" : finding->words;
+        return "no margin to tell";
     }
     return arena_format(run->arena, "by %s",
                         shown_text(run, look_predicate_margin(run, predicate), fabs(finding->margin)));
+}
+
+size_t deck_line(const struct sheet_run *run, struct location at)
+{
+    const bool is_own = run->tree->deck != NULL && at.file == run->tree->deck->root;
+    return location_line(is_own ? at : run->sheet->at);
 }
 
 /* ---- requirements ------------------------------------------------------------------------------------------------ */
@@ -82,7 +91,7 @@ struct requirement *add_requirement(const struct sheet_run *run, const struct me
     requirement->has_worst_temperature = true;
     requirement->worst_temperature = finding->worst_temperature;
     requirement->temperature_look = look_temperature(run);
-    requirement->line = location_line(predicate->at);
+    requirement->line = deck_line(run, predicate->at);
     requirement->method = method->name;
     return requirement;
 }

@@ -31,6 +31,9 @@ struct requirement *require_predicate(struct sheet_run *run, const char *text, c
  * pressure and against each fitting. Predicates in the run's arena; *count is their number. */
 const struct predicate *rating_predicates(const struct sheet_run *run, size_t *count);
 
+/* The line of a place in the deck itself; for one in a library or another used file, the line of the sheet. */
+size_t deck_line(const struct sheet_run *run, struct location at);
+
 /* May the method's numbers govern? Never an ideal gas, and only lead and beside methods. */
 bool method_governs(const struct method_run *method);
 

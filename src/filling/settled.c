@@ -1,6 +1,7 @@
 /* The settled-pressure sheet: pressure, phases and level of a charge over temperature, the temperatures at which it
  * changes, and what 1 K, 1 % and 1 bar of fill do to it. */
 #include "filling/charge_facts.h"
+#include "filling/classify.h"
 #include "filling/contents_table.h"
 #include "filling/hand_check.h"
 #include "filling/requirement.h"
@@ -111,11 +112,14 @@ static const struct case_rating *weakest_fitting(const struct case_vessel *vesse
     return weakest;
 }
 
-static void warn_if_liquid_full(const struct settled *settled, const struct method_run *method,
+/* A gas with a critical temperature above the hot day is liquid there, and a vessel full of liquid is about to burst;
+ * one with a lower critical temperature goes liquid-full in ordinary use on its way to one dense phase. */
+static void warn_if_liquid_full(const struct settled *settled, struct method_run *method,
                                 struct liquid_end_found found)
 {
     const struct sheet_run *run = settled->run;
-    if (found.end == LIQUID_END_FULL && found.temperature <= hottest(settled)) {
+    const bool stays_liquid = classify_charge(run, method, settled->mass) == CLASS_LOW_PRESSURE_LIQUEFIED;
+    if (stays_liquid && found.end == LIQUID_END_FULL && found.temperature <= hottest(settled)) {
         result_warn(run->result, CODE_W330, location_line(run->sheet->at), run->number,
                     "%s, %s: liquid-full from %s on, below the hottest temperature asked about, %s",
                     run->sheet->fluid->name, method->name,
@@ -134,7 +138,10 @@ static void add_found(const struct settled *settled)
         if (method->fluid == NULL) {
             continue;
         }
-        warn_if_liquid_full(settled, method, add_liquid_end(run, method, settled->mass));
+        const struct liquid_end_found found = add_liquid_end(run, method, settled->mass);
+        if (m == 0) {
+            warn_if_liquid_full(settled, method, found);
+        }
         if (vessel->working_pressure.given) {
             add_reached(settled, method, "working-pressure-temperature", vessel->working_pressure.value);
         }
