@@ -184,7 +184,7 @@ static const char *no_answer_words(const struct sheet_run *run, const struct met
                                    const struct spot *spot, double second)
 {
     if (spot->answer == ANSWER_OUT_OF_RANGE) {
-        return "no such state";
+        return "beyond the densities of the method";
     }
     result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number, "%s, %s: no state found at %s, %s",
                 run->sheet->fluid->name, method->name, shown_text(run, look_temperature(run), spot->temperature),
