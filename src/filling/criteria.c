@@ -35,15 +35,26 @@ static bool fills_by_ratio(const struct case_sheet *sheet)
     return !has_compressed && classify_gas(sheet->fluid->components[0]) != CLASS_COMPRESSED;
 }
 
+static bool has_listed_criterion(const struct case_rule *rule)
+{
+    for (size_t i = 0; i < rule->predicate_count; i++) {
+        if (rule->predicates[i].unless_listed) {
+            return true;
+        }
+    }
+    return false;
+}
+
 static void add_rules(struct permissible *sheet)
 {
     const struct case_sheet *asked = sheet->run->sheet;
     for (size_t i = 0; i < asked->rule_count; i++) {
         const struct case_rule *rule = asked->rules[i];
         for (size_t j = 0; j < rule->predicate_count; j++) {
-            add_criterion(sheet, CRITERION_RULE, rule->name, &rule->predicates[j],
-                          sheet->is_by_ratio ? rule->round_to : 0.0)
-                ->meant_for = rule->meant_for;
+            struct criterion *criterion = add_criterion(sheet, CRITERION_RULE, rule->name, &rule->predicates[j],
+                                                        sheet->is_by_ratio ? rule->round_to : 0.0);
+            criterion->meant_for = rule->meant_for;
+            criterion->is_of_listed_rule = has_listed_criterion(rule);
         }
     }
 }

@@ -101,7 +101,7 @@ static void rank_limits(const struct permissible *sheet, struct method_limits *o
         if (criterion->kind != CRITERION_LISTED) {
             take_least(&of->computed, of->limits, i);
         }
-        if (criterion->kind == CRITERION_RULE) {
+        if (criterion->is_of_listed_rule) {
             take_least(&of->ruled, of->limits, i);
         }
         if (criterion->predicate->unless_listed) {
@@ -206,8 +206,21 @@ bool is_cubic(const struct method_run *method)
     return false;
 }
 
+/* Whether a method better than a cubic allows the charge as well: then the cubic does not stand alone. */
+static bool is_supported(const struct permissible *sheet)
+{
+    for (size_t m = 0; m < sheet->run->method_count; m++) {
+        const struct method_limits *of = &sheet->by_method[m];
+        if (may_govern(of) && of->is_within_range && !is_cubic(of->method) &&
+            of->limits[of->permitted.index].rounded >= sheet->mass) {
+            return true;
+        }
+    }
+    return false;
+}
+
 bool is_indicative(const struct permissible *sheet)
 {
     return sheet->governing.given && sheet->is_by_ratio && is_cubic(governing_method(sheet)) &&
-           governing_criterion(sheet)->kind != CRITERION_LISTED;
+           governing_criterion(sheet)->kind != CRITERION_LISTED && !is_supported(sheet);
 }

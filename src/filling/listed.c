@@ -147,7 +147,7 @@ static void add_findings(const struct permissible *sheet, struct method_run *met
     const struct sheet_run *run = sheet->run;
     for (size_t i = 0; i < sheet->criterion_count; i++) {
         const struct criterion *criterion = &sheet->criteria[i];
-        if (criterion->kind == CRITERION_LISTED) {
+        if (!criterion->is_of_listed_rule) {
             continue;
         }
         const struct predicate_finding finding = predicate_check(run, method, criterion->predicate, mass);
@@ -188,7 +188,8 @@ static void warn_of_difference(const struct permissible *sheet, double computed)
         result_warn(run->result, CODE_W320, line, run->number,
                     "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.1f %%",
                     listed_words(sheet), listed, computed, listed - computed, 100.0 * (listed / computed - 1.0));
-    } else if (listed < computed - SAME_RATIO && run->sheet->listed == LISTED_GOVERNS) {
+    } else if (listed < computed - SAME_RATIO && sheet->governing.given &&
+               governing_criterion(sheet)->kind == CRITERION_LISTED) {
         result_warn(run->result, CODE_W321, line, run->number,
                     "%s: listed filling ratio %g is below the computed limit %.4f by %.4f, %.1f %%: the row governs",
                     listed_words(sheet), listed, computed, computed - listed, 100.0 * (1.0 - listed / computed));

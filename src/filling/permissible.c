@@ -246,11 +246,19 @@ static const char *governed_in_words(const struct permissible *sheet)
                         governing_method(sheet)->name);
 }
 
+/* Two decimals as the tables have, more where the ratio has more. */
+static const char *ratio_words(const struct sheet_run *run, double ratio)
+{
+    const double hundredths = ratio * 100.0;
+    return arena_format(run->arena, fabs(hundredths - round(hundredths)) < 1e-6 ? "%.2f" : "%.4f", ratio);
+}
+
 static void tell_headline(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
     const char *opening = is_indicative(sheet) ? "indicative, not for filling: charge" : "permitted charge";
-    const char *amount = arena_format(run->arena, "filling ratio %.4g", ratio_of_mass(run, sheet->mass));
+    const char *amount =
+        arena_format(run->arena, "filling ratio %s", ratio_words(run, ratio_of_mass(run, sheet->mass)));
     struct vessel_contents contents;
     if (!sheet->is_by_ratio && contents_at(run, governing_method(sheet), sheet->mass, SETTLED_TEMPERATURE, &contents) ==
                                    ANSWER_OK) {

@@ -18,6 +18,7 @@ struct criterion {
     enum criterion_kind kind;
     const char *name; /* of the rule or the entry; "vessel" */
     enum filling_class meant_for; /* of the rule */
+    bool is_of_listed_rule; /* its rule has a criterion that listed rows replace: rows are held against all of it */
     const struct predicate *predicate;
     double round_to;  /* filling ratios are rounded down to a multiple of this; 0: not rounded */
     bool is_replaced; /* by the listed row: computed and shown, but does not bind */
@@ -44,7 +45,7 @@ struct method_limits {
     struct criterion_limit *limits; /* [criterion_count] */
     struct choice permitted;        /* the least of those that bind */
     struct choice computed;         /* the least of the computed ones, replaced ones too */
-    struct choice ruled;            /* the least of the rules' own, replaced ones too */
+    struct choice ruled;            /* the least of the rules that listed rows stand for, replaced ones too */
     struct choice replaced;         /* the least of those a listed row replaces, or would */
     bool is_decided;                /* every criterion that binds had an answer */
     struct choice undecided;        /* the first that had none */

@@ -207,8 +207,8 @@ static void add_hand_check(const struct settled *settled)
 static void tell_no_mass(struct sheet_run *run, enum answer answer)
 {
     sheet_add_note(run->result, run->out, "the mass of charge %s was not found: %s", run->sheet->charge->name,
-                   answer == ANSWER_CANNOT ? "the lead method does not answer this question"
-                                           : "the lead method has no such state");
+                   answer == ANSWER_CANNOT || answer == ANSWER_OK ? "the lead method does not serve this gas"
+                                                                  : "the lead method has no such state");
     result_warn(run->result, CODE_W303, location_line(run->sheet->charge->origin.at), run->number,
                 "charge %s: no mass by %s", run->sheet->charge->name, run->methods[0].name);
     run->result->is_undecided = true;
