@@ -106,6 +106,7 @@ struct elaboration {
     struct component_list components;
     struct name_table table_files; /* of the CSV tables, so that no two go into one */
     const char *group;  /* whose values are being read, as "vessel fifty" */
+    enum vocabulary_block block; /* what is being read */
     size_t silent;      /* failures that need no message of their own */
     bool is_checking;   /* reading blocks no sheet uses: nothing counts as used */
 };
@@ -145,7 +146,7 @@ bool take_word(struct reading *reading, const char *word);
 /* The next item's name as a word of `block`; `what` as in "a method". NULL after a message: no name, or none of these. */
 const struct vocabulary_row *take_choice(struct reading *reading, enum vocabulary_block block, const char *what);
 const struct vocabulary_row *choice_of_name(struct elaboration *e, enum vocabulary_block block,
-                                            const struct expression *name, const char *what);
+                                            const struct expression *name);
 
 /* A quoted text that is not empty; NULL after a message. */
 const char *take_text(struct reading *reading, const char *what);

@@ -445,6 +445,7 @@ static struct elaboration *begin(const struct deck *deck, struct arena *arena, s
     e->tree->deck = deck;
     e->tree->ambient_pressure = STANDARD_ATMOSPHERE;
     e->units = default_units();
+    e->block = BLOCK_FILE;
     index_deck(e);
     evaluate_lets(e);
     return e;

@@ -106,13 +106,18 @@ static bool read_coefficient(struct elaboration *e, const struct column *column,
     return read_value(e, &forms[column->range], column->name, expression, number);
 }
 
-static void hint_columns(struct elaboration *e, struct diagnostic *said, const struct term_kind *kind)
+static void report_columns(struct elaboration *e, const struct term_kind *kind, struct location at, bool is_surplus)
 {
     struct text list = {.arena = e->arena};
     for (size_t i = 0; i < kind->count; i++) {
         text_format(&list, " %s", kind->columns[i].name);
     }
-    diagnostic_hint(e->out, said, "this kind has the columns: term%s", list.bytes);
+    const char *numbers = kind->required == kind->count
+                              ? arena_format(e->arena, "%zu", kind->count)
+                              : arena_format(e->arena, "%zu or %zu", kind->required, kind->count);
+    struct diagnostic *said = diagnose(e->out, CODE_E215, at, "a row of this kind has %s numbers%s", numbers,
+                                       is_surplus ? ", this is one more" : "");
+    diagnostic_hint(e->out, said, "its columns: term%s", list.bytes);
 }
 
 /* One `term` row into the struct at `into`, by the kind's columns. False after a message. */
@@ -128,10 +133,7 @@ static bool read_term(struct elaboration *e, const struct term_kind *kind, const
         memcpy((char *)into + kind->columns[count].offset, &number, sizeof number);
     }
     if (count < kind->required || reading.item != NULL) {
-        struct diagnostic *said = diagnose(e->out, CODE_E215, reading.item == NULL ? statement->at : reading.item->at,
-                                           "a row of this kind takes %zu numbers%s", kind->required,
-                                           reading.item == NULL ? "" : ", this is one more");
-        hint_columns(e, said, kind);
+        report_columns(e, kind, reading.item == NULL ? statement->at : reading.item->at, reading.item != NULL);
         return false;
     }
     return true;

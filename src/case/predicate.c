@@ -205,8 +205,7 @@ static bool settle_comparison(struct elaboration *e, const struct parts *parts, 
 static bool settle_phase(struct elaboration *e, const struct item *condition, struct predicate *out)
 {
     const bool is_one = condition->kind == ITEM_ONE;
-    const struct vocabulary_row *row =
-        choice_of_name(e, is_one ? BLOCK_ONE : BLOCK_NO, condition->value, is_one ? "what there is one of" : "a phase");
+    const struct vocabulary_row *row = choice_of_name(e, is_one ? BLOCK_ONE : BLOCK_NO, condition->value);
     if (row == NULL) {
         return false;
     }

@@ -49,7 +49,7 @@ bool take_word(struct reading *reading, const char *word)
 }
 
 const struct vocabulary_row *choice_of_name(struct elaboration *e, enum vocabulary_block block,
-                                            const struct expression *name, const char *what)
+                                            const struct expression *name)
 {
     const struct vocabulary_row *row = vocabulary_find(block, name->name);
     if (row != NULL) {
@@ -58,7 +58,8 @@ const struct vocabulary_row *choice_of_name(struct elaboration *e, enum vocabula
     const char *known[VOCABULARY_MOST];
     const size_t count = vocabulary_words(block, known, VOCABULARY_MOST);
     struct diagnostic *said =
-        diagnose(e->out, CODE_E213, name->at, "'%s' is not known as %s", shortened(e, name->name), what);
+        diagnose(e->out, CODE_E213, name->at, "'%s' has no place %s", shortened(e, name->name),
+                 vocabulary_block_title(block));
     hint_words(e, said, known, count);
     suggest(e, said, name->name, known, count);
     return NULL;
@@ -71,7 +72,7 @@ const struct vocabulary_row *take_choice(struct reading *reading, enum vocabular
         report_missing(reading, what);
         return NULL;
     }
-    return choice_of_name(reading->e, block, name, what);
+    return choice_of_name(reading->e, block, name);
 }
 
 const char *take_text(struct reading *reading, const char *what)
@@ -88,11 +89,12 @@ const char *take_text(struct reading *reading, const char *what)
     return item->text;
 }
 
-/* How the statement is written, from the vocabulary: its first row that has an example. */
+/* How the statement is written, from the vocabulary's row in the block at hand. */
 static void hint_form(struct elaboration *e, struct diagnostic *said, const struct statement *statement)
 {
-    const struct vocabulary_row *row = vocabulary_next(statement->word, NULL);
-    if (row != NULL && row->example != NULL) {
+    const struct vocabulary_row *row = vocabulary_find(e->block, statement->word);
+    row = row == NULL ? vocabulary_next(statement->word, NULL) : row;
+    if (row != NULL) {
         diagnostic_hint(e->out, said, "as in: %s", row->example);
     }
 }
@@ -171,19 +173,31 @@ static const struct block_row *find_row(const struct block_form *form, enum voca
     return NULL;
 }
 
-/* A word that the block does not take: misspelled, or at home elsewhere. */
+/* Where a word is at home: the first few of its blocks. */
+static const char *homes_of(struct elaboration *e, const char *word)
+{
+    enum { HOMES_MOST = 3 };
+    struct text list = {.arena = e->arena};
+    size_t count = 0;
+    for (const struct vocabulary_row *row = NULL; count < HOMES_MOST && (row = vocabulary_next(word, row)) != NULL; count++) {
+        text_format(&list, "%s%s", count == 0 ? "" : ", ", vocabulary_block_title(row->block));
+    }
+    return count == 0 ? NULL : list.bytes;
+}
+
+/* A word that the block does not take: at home elsewhere, or misspelled. */
 void report_word(struct elaboration *e, enum vocabulary_block block, const struct statement *statement)
 {
-    const char *known[VOCABULARY_MOST];
-    const size_t count = vocabulary_words(block, known, VOCABULARY_MOST);
-    const struct vocabulary_row *elsewhere = vocabulary_next(statement->word, NULL);
-    struct diagnostic *said =
-        diagnose(e->out, elsewhere == NULL ? CODE_E201 : CODE_E202, statement->word_at, "'%s' has no place %s",
-                 shortened(e, statement->word), vocabulary_block_title(block));
-    if (elsewhere != NULL) {
-        diagnostic_hint(e->out, said, "it stands %s", vocabulary_block_title(elsewhere->block));
+    const char *homes = homes_of(e, statement->word);
+    struct diagnostic *said = diagnose(e->out, homes == NULL ? CODE_E201 : CODE_E202, statement->word_at,
+                                       "'%s' has no place %s", shortened(e, statement->word),
+                                       vocabulary_block_title(block));
+    if (homes != NULL) {
+        diagnostic_hint(e->out, said, "it stands %s", homes);
+        return;
     }
-    suggest(e, said, statement->word, known, count);
+    const char *known[VOCABULARY_MOST];
+    suggest(e, said, statement->word, known, vocabulary_words(block, known, VOCABULARY_MOST));
 }
 
 static void read_quantity_row(struct elaboration *e, const struct block_row *row,
@@ -254,10 +268,13 @@ void read_block(struct elaboration *e, const struct block_form *form, const char
                 void *target)
 {
     const struct statement *seen[BLOCK_ROWS_MOST] = {NULL};
-    const char *outer = e->group;
+    const char *outer_group = e->group;
+    const enum vocabulary_block outer_block = e->block;
     e->group = group;
+    e->block = form->block;
     for (const struct statement *at = owner->block; at != NULL; at = at->next) {
         read_statement(e, form, at, seen, target);
     }
-    e->group = outer;
+    e->group = outer_group;
+    e->block = outer_block;
 }

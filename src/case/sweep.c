@@ -50,8 +50,9 @@ static bool lay_steps(struct elaboration *e, struct swept *swept, const struct i
 {
     if (!(fabs(step) > 0.0) || (to - from) * step < 0.0) {
         struct diagnostic *said =
-            diagnose(e->out, CODE_E221, by->at, "a step of '%s' never leads from '%s' to the end of the sweep",
-                     written_at(e, by->value->at, QUOTED_MOST), si_number(e->arena, from));
+            diagnose(e->out, CODE_E221, by->at, "a step of '%s' never leads from %s to %s",
+                     written_at(e, by->value->at, QUOTED_MOST), si_text(e, swept->form, from),
+                     si_text(e, swept->form, to));
         diagnostic_hint(e->out, said,
                         fabs(step) > 0.0 ? "turn the sign of the step, or exchange the ends" : "give a step other than 0");
         return false;

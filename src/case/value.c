@@ -31,7 +31,7 @@ const struct quantity_form FORM_FRACTION = {.measure = MEASURE_NUMBER, .reading 
 static const struct quantity_form FORM_NUMBER = {.reading = READ_NUMBER, .least = -1e9, .most = 1e9};
 static const struct quantity_form FORM_MOLAR_MASS = {.measure = MEASURE_MOLAR_MASS, .reading = READ_NUMBER,
                                                      .least = 0.001, .most = 1.0,
-                                                     .because = "from atomic hydrogen to 1 kg/mol"};
+                                                     .because = "atomic hydrogen has 1.008 g/mol"};
 static const struct quantity_form FORM_MOLAR_HEAT = {.measure = MEASURE_MOLAR_HEAT, .reading = READ_NUMBER,
                                                      .least = 8.3, .most = 8.33, .because = "a molar gas constant"};
 static const struct quantity_form FORM_DIPOLE = {.measure = MEASURE_DIPOLE, .reading = READ_NUMBER,
@@ -103,6 +103,24 @@ static const char *quoted(struct elaboration *e, const struct expression *expres
     return written_at(e, expression->at, QUOTED_MOST);
 }
 
+/* A unit that a writer might use; NULL for plain numbers. */
+static const char *usual_unit(const struct quantity_form *form)
+{
+    static const char *const units[MEASURES] = {
+        [MEASURE_PRESSURE] = "bara",          [MEASURE_GAUGE] = "barg",          [MEASURE_TEMPERATURE] = "degC",
+        [MEASURE_VOLUME] = "L",               [MEASURE_MASS] = "kg",             [MEASURE_AMOUNT] = "mol",
+        [MEASURE_DENSITY] = "kg/L",           [MEASURE_MOLAR_DENSITY] = "mol/L", [MEASURE_MOLAR_MASS] = "g/mol",
+        [MEASURE_MOLAR_HEAT] = "J/mol/K",     [MEASURE_DIPOLE] = "D",
+    };
+    if (form->reading == READ_RATING) {
+        return units[MEASURE_GAUGE];
+    }
+    if (form->reading == READ_DIFFERENCE && form->measure == MEASURE_TEMPERATURE) {
+        return "K";
+    }
+    return form->reading == READ_DIFFERENCE && form->measure == MEASURE_PRESSURE ? "bar" : units[form->measure];
+}
+
 static bool report_dimension(struct elaboration *e, const struct quantity_form *form, const char *name,
                              const struct expression *expression, const struct value *value)
 {
@@ -114,9 +132,9 @@ static bool report_dimension(struct elaboration *e, const struct quantity_form *
                                : dimension_name(measure_dimension(form->measure), e->arena);
     struct diagnostic *said = diagnose(e->out, CODE_E208, expression->at, "%s: expected %s, found %s: '%s'", name,
                                        expected, found, quoted(e, expression));
-    const char *unit = base_unit(measure_dimension(form->measure), e->arena);
-    if (*unit != '\0') {
-        diagnostic_hint(e->out, said, "write it with a unit of that kind, such as %s", unit);
+    const char *unit = usual_unit(form);
+    if (unit != NULL) {
+        diagnostic_hint(e->out, said, "write it in %s, say", unit);
     }
     return false;
 }
@@ -126,9 +144,8 @@ static bool report_rating(struct elaboration *e, const char *name, const struct 
 {
     struct diagnostic *said =
         diagnose(e->out, CODE_E210, expression->at,
-                 "%s must be a gauge pressure: '%s' could mean %s barg (read as gauge) or %s barg (read as absolute)", name,
-                 quoted(e, expression), si_number(e->arena, si / 1e5),
-                 si_number(e->arena, (si - STANDARD_ATMOSPHERE) / 1e5));
+                 "%s must be a gauge pressure: '%s' could mean %.7g barg (read as gauge) or %.7g barg (read as absolute)",
+                 name, quoted(e, expression), si / 1e5, (si - STANDARD_ATMOSPHERE) / 1e5);
     diagnostic_hint(e->out, said, "ratings are stamped as gauge: write it in barg, psig, kPag or MPag");
     return false;
 }
@@ -163,10 +180,15 @@ static bool check_range(struct elaboration *e, const struct quantity_form *form,
         return true;
     }
     const char *unit = base_unit(measure_dimension(form->measure), e->arena);
-    struct diagnostic *said = diagnose(
-        e->out, CODE_E209, expression->at, "%s cannot be '%s', which is %s%s%s%s", name, quoted(e, expression),
-        si_number(e->arena, si), *unit == '\0' ? "" : " ", unit,
-        form->reading == READ_RATING ? " gauge" : form->reading == READ_ABSOLUTE ? " abs" : "");
+    const bool is_bare = *unit == '\0' && expression->kind == EXPRESSION_NUMBER && expression->unit == NULL;
+    const char *in_si = is_bare ? ""
+                                : arena_format(e->arena, ", which is %s%s%s%s", si_number(e->arena, si),
+                                               *unit == '\0' ? "" : " ", unit,
+                                               form->reading == READ_RATING     ? " gauge"
+                                               : form->reading == READ_ABSOLUTE ? " abs"
+                                                                                : "");
+    struct diagnostic *said = diagnose(e->out, CODE_E209, expression->at, "%s cannot be '%s'%s", name,
+                                       quoted(e, expression), in_si);
     diagnostic_hint(e->out, said, "allowed: %s%s%s%s", range_text(e, form), form->because == NULL ? "" : " (",
                     form->because == NULL ? "" : form->because, form->because == NULL ? "" : ")");
     return false;
