@@ -29,7 +29,7 @@ static double function(const char **at)
             return functions[i].call(atom(at));
         }
     }
-    return NAN;
+    return (double)NAN;
 }
 
 /* A number, a function of a parenthesis, or a parenthesis; a sign binds to the number it stands before. */
@@ -44,7 +44,7 @@ static double atom(const char **at)
         const double value = sum(at);
         skip(at);
         if (**at != ')') {
-            return NAN;
+            return (double)NAN;
         }
         (*at)++;
         return value;
@@ -52,7 +52,7 @@ static double atom(const char **at)
     char *end;
     const double value = strtod(*at, &end);
     if (end == *at) {
-        return NAN;
+        return (double)NAN;
     }
     *at = end;
     return value;
