@@ -2,8 +2,9 @@
 #include "support/elaborated.h"
 
 #define VESSEL "vessel v { water-capacity 50.2 L; test-pressure 250 barg }\n"
-#define SHEET_OF(charge) "use \"small\"\n" VESSEL "charge c { fluid carbon-dioxide; vessel v; " charge " }\n"             \
-                         "sheet settled-pressure { charge c; sweep temperature 15 degC }\n"
+#define SHEET_OF(charge)                                                                 \
+    "use \"small\"\n" VESSEL "charge c { fluid carbon-dioxide; vessel v; " charge " }\n" \
+    "sheet settled-pressure { charge c; sweep temperature 15 degC }\n"
 
 static const struct case_vessel *vessel_of(const struct elaborated *it)
 {
@@ -100,8 +101,8 @@ static void each_form_of_charge_is_read(void **state)
 static void a_gauge_reading_counts_from_the_ambient_pressure_and_a_rating_does_not(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well("case \"high plant\" { ambient-pressure 0.8 bara }\n" SHEET_OF(
-        "fill 100 barg at 15 degC"));
+    struct elaborated it =
+        elaborate_well("case \"high plant\" { ambient-pressure 0.8 bara }\n" SHEET_OF("fill 100 barg at 15 degC"));
     assert_close(it.tree->ambient_pressure, 0.8e5, 1e-15, "as written");
     assert_close(it.tree->sheets[0].charge->amount.value, 100.8e5, 1e-14, "100 bar above 0.8 bar");
     assert_close(vessel_of(&it)->test_pressure.value, 250e5, 1e-15, "a rating stays gauge");
@@ -263,8 +264,8 @@ static void the_decks_own_definition_replaces_the_librarys(void **state)
 static void hazards_and_refusals_are_kept(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well("component carbon-dioxide { hazard toxic, decomposes; refuse \"not here\" }\n" SHEET_OF(
-        "mass 1 kg"));
+    struct elaborated it = elaborate_well(
+        "component carbon-dioxide { hazard toxic, decomposes; refuse \"not here\" }\n" SHEET_OF("mass 1 kg"));
     const struct case_component *gas = it.tree->components[0];
     assert_int_equal(gas->hazards, HAZARD_TOXIC | HAZARD_DECOMPOSES);
     assert_string_equal(gas->refuse, "not here");
@@ -285,14 +286,15 @@ static void inputs_are_echoed_in_the_order_of_the_text(void **state)
         {"vessel v", "test-pressure", "250 barg", "25 101 325 Pa abs", 4},
         {"charge c", "fill", "150 barg", "15 097 000 Pa abs", 5},
         {"charge c", "fill temperature", "at 15 degC", "288.15 K", 5},
-        {"sheet 1 settled-pressure", "sweep temperature", "sweep temperature from 0 degC to 60 degC by 20 K",
+        {"sheet 1 settled-pressure", "sweep temperature", "from 0 degC to 60 degC by 20 K",
          "273.15 K to 333.15 K, 4 values", 6},
         {"sheet 1 settled-pressure", "require", "at hot pressure <= 240 barg", "338.15 K; 24 101 325 Pa abs", 7},
     };
-    struct elaborated it = elaborate_well("case \"echo\" { ambient-pressure 0.97 bara }\nlet hot = 65 degC\nuse \"small\"\n" VESSEL
-                                          "charge c { fluid carbon-dioxide; vessel v; fill 150 barg at 15 degC }\n"
-                                          "sheet settled-pressure { charge c; sweep temperature from 0 degC to 60 degC by 20 K\n"
-                                          "  require at hot pressure <= 240 barg }\n");
+    struct elaborated it =
+        elaborate_well("case \"echo\" { ambient-pressure 0.97 bara }\nlet hot = 65 degC\nuse \"small\"\n" VESSEL
+                       "charge c { fluid carbon-dioxide; vessel v; fill 150 barg at 15 degC }\n"
+                       "sheet settled-pressure { charge c; sweep temperature from 0 degC to 60 degC by 20 K\n"
+                       "  require at hot pressure <= 240 barg }\n");
     assert_int_equal(it.tree->input_count, sizeof rows / sizeof *rows);
     for (size_t i = 0; i < it.tree->input_count; i++) {
         const struct case_input *input = &it.tree->inputs[i];
@@ -308,8 +310,9 @@ static void inputs_are_echoed_in_the_order_of_the_text(void **state)
 static void the_case_block_names_the_document(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well("case \"a title\" { number \"SG-1\"; revision \"B\"; note \"one\"; note \"two\"\n"
-                                          "  units psig, degF, lb, psia, ft3, kg/m3 }\n" SHEET_OF("mass 1 kg"));
+    struct elaborated it =
+        elaborate_well("case \"a title\" { number \"SG-1\"; revision \"B\"; note \"one\"; note \"two\"\n"
+                       "  units psig, degF, lb, psia, ft3, kg/m3 }\n" SHEET_OF("mass 1 kg"));
     assert_string_equal(it.tree->title, "a title");
     assert_string_equal(it.tree->number, "SG-1");
     assert_string_equal(it.tree->revision, "B");

@@ -176,8 +176,8 @@ static void shuffle_words(const char *from, char *to, size_t capacity, uint32_t 
         const size_t word = strcspn(from, " \n{};") + 1;
         const uint32_t chance = next_random(random) % 120;
         const size_t taken = from[word - 1] == '\0' ? word - 1 : word;
-        static const char *const odd[] = {" -1 ", " 1e300 K ", " (1, 2, 3) ", " \"\" ", " at ", " no liquid ", " <= ",
-                                          " pressure ", " 5 degC ", " x - 1 kg ", " , "};
+        static const char *const odd[] = {" -1 ", " 1e300 K ",  " (1, 2, 3) ", " \"\" ",     " at ", " no liquid ",
+                                          " <= ", " pressure ", " 5 degC ",    " x - 1 kg ", " , "};
         if (chance == 0) {
             length += (size_t)snprintf(to + length, capacity - length, "%s", odd[next_random(random) % 11]);
         }
@@ -211,9 +211,18 @@ static void each_word_of_the_vocabulary_is_at_home_in_some_reader(void **state)
 {
     (void)state;
     /* A statement of every word in every top-level block: each is read or refused with a message. */
-    static const char *const heads[] = {"vessel b", "charge b", "component b", "equation b", "rule b", "entry \"b\"",
-                                        "case \"b\"", "methods", "sheet permissible-charge", "sheet settled-pressure",
-                                        "sheet saturation", "sheet fugacity"};
+    static const char *const heads[] = {"vessel b",
+                                        "charge b",
+                                        "component b",
+                                        "equation b",
+                                        "rule b",
+                                        "entry \"b\"",
+                                        "case \"b\"",
+                                        "methods",
+                                        "sheet permissible-charge",
+                                        "sheet settled-pressure",
+                                        "sheet saturation",
+                                        "sheet fugacity"};
     const struct vocabulary_row *rows = vocabulary_rows();
     for (size_t i = 0; i < sizeof heads / sizeof *heads; i++) {
         for (size_t j = 0; j < WORDS; j++) {

@@ -1,7 +1,7 @@
 /* Elaboration of sheets: methods, sweeps, rules, requirements and their formulas, listed entries. */
 #include "support/elaborated.h"
 
-#define VESSEL "vessel v { water-capacity 50.2 L; test-pressure 250 barg; working-pressure 150 barg }\n"
+#define VESSEL           "vessel v { water-capacity 50.2 L; test-pressure 250 barg; working-pressure 150 barg }\n"
 #define SATURATION(rest) "use \"small\"\nsheet saturation { fluid carbon-dioxide; sweep temperature 280 K; " rest " }\n"
 
 static const struct case_sheet *first_sheet(const struct elaborated *it)
@@ -36,8 +36,9 @@ static void peng_robinson_leads_by_default_where_there_is_none(void **state)
 static void the_methods_block_orders_lead_beside_and_show(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well("methods { show ideal-gas; beside soave-redlich-kwong, peng-robinson; lead reference\n"
-                                          "  govern strictest }\n" SATURATION(""));
+    struct elaborated it =
+        elaborate_well("methods { show ideal-gas; beside soave-redlich-kwong, peng-robinson; lead reference\n"
+                       "  govern strictest }\n" SATURATION(""));
     const struct case_methods *methods = &first_sheet(&it)->methods;
     const char *const names[] = {"reference", "soave-redlich-kwong", "peng-robinson", "ideal-gas"};
     assert_int_equal(methods->count, 4);
@@ -65,10 +66,12 @@ static void a_sheets_methods_stand_instead_of_the_blocks(void **state)
 static void a_method_without_its_data_is_refused(void **state)
 {
     (void)state;
-    assert_refused("use \"small\"\nsheet saturation { fluid argon; sweep temperature 100 K; methods reference }\n", CODE_E220);
-    assert_refused("use \"small\"\nsheet saturation { fluid vapid; sweep temperature 100 K }\n", CODE_E220);
-    assert_refused("use \"small\"\nmethods { lead reference }\nsheet saturation { fluid argon; sweep temperature 100 K }\n",
+    assert_refused("use \"small\"\nsheet saturation { fluid argon; sweep temperature 100 K; methods reference }\n",
                    CODE_E220);
+    assert_refused("use \"small\"\nsheet saturation { fluid vapid; sweep temperature 100 K }\n", CODE_E220);
+    assert_refused(
+        "use \"small\"\nmethods { lead reference }\nsheet saturation { fluid argon; sweep temperature 100 K }\n",
+        CODE_E220);
 }
 
 /* ---- Sweeps ---- */
@@ -109,7 +112,8 @@ static void a_sweep_is_laid_out_in_si(void **state)
 static void a_density_sweep_is_per_mass_or_per_amount_as_written(void **state)
 {
     (void)state;
-    static const char head[] = "use \"small\"\nsheet fugacity { fluid carbon-dioxide; sweep temperature 350 K; sweep density ";
+    static const char head[] =
+        "use \"small\"\nsheet fugacity { fluid carbon-dioxide; sweep temperature 350 K; sweep density ";
     char text[500];
     snprintf(text, sizeof text, "%s from 0.1 kg/L to 0.3 kg/L by 100 kg/m3 }\n", head);
     struct elaborated mass = elaborate_well(text);
@@ -155,9 +159,11 @@ static void the_iteration_is_shown_on_request(void **state)
 static double symbol_value(void *context, enum case_symbol symbol)
 {
     (void)context;
-    static const double values[SYMBOLS] = {
-        [SYMBOL_TEST_PRESSURE] = 300e5, [SYMBOL_WORKING_PRESSURE] = 200e5, [SYMBOL_SERVICE_PRESSURE] = 0.0,
-        [SYMBOL_LIQUID_DENSITY] = 700.0, [SYMBOL_DENSITY] = 650.0};
+    static const double values[SYMBOLS] = {[SYMBOL_TEST_PRESSURE] = 300e5,
+                                           [SYMBOL_WORKING_PRESSURE] = 200e5,
+                                           [SYMBOL_SERVICE_PRESSURE] = 0.0,
+                                           [SYMBOL_LIQUID_DENSITY] = 700.0,
+                                           [SYMBOL_DENSITY] = 650.0};
     return values[symbol];
 }
 
@@ -186,12 +192,14 @@ static void a_bound_is_arithmetic_over_numbers_and_the_vessels_ratings(void **st
         {"at 15 degC pressure <= test-pressure", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 300e5, "the rating"},
         {"at 15 degC pressure < 2 / 3 * test-pressure", SYMBOL_PRESSURE, RELATION_LESS, true, 200e5,
          "2/3 of 300 bar, scaled as gauge"},
-        {"at 15 degC pressure <= test-pressure - margin", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 290e5, "300 - 10 bar"},
-        {"at 15 degC pressure <= (test-pressure - working-pressure) / 2", SYMBOL_PRESSURE, RELATION_AT_MOST, false, 50e5,
-         "the difference of two gauge pressures is plain"},
+        {"at 15 degC pressure <= test-pressure - margin", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 290e5,
+         "300 - 10 bar"},
+        {"at 15 degC pressure <= (test-pressure - working-pressure) / 2", SYMBOL_PRESSURE, RELATION_AT_MOST, false,
+         50e5, "the difference of two gauge pressures is plain"},
         {"at 15 degC pressure <= 2 * gauge", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 80e5, "2 x 40 barg, as gauge"},
         {"at 15 degC pressure <= 55 bara", SYMBOL_PRESSURE, RELATION_AT_MOST, false, 55e5, "as written"},
-        {"at 15 degC pressure >= 55 bar", SYMBOL_PRESSURE, RELATION_AT_LEAST, false, 55e5, "a plain pressure is absolute"},
+        {"at 15 degC pressure >= 55 bar", SYMBOL_PRESSURE, RELATION_AT_LEAST, false, 55e5,
+         "a plain pressure is absolute"},
         {"at 15 degC pressure <= -(0 - 1) * test-pressure", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 300e5, "-(-1)"},
         {"at 50 degC density <= 0.95 * liquid-density", SYMBOL_DENSITY, RELATION_AT_MOST, false, 665.0, "0.95 x 700"},
         {"at 60 degC liquid-volume < 100 %", SYMBOL_LIQUID_VOLUME, RELATION_LESS, false, 1.0, "100/100"},
@@ -268,15 +276,15 @@ static void the_zero_of_gauges_can_be_stated(void **state)
 static void a_rule_is_read_with_its_clause_and_conditions(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well("use \"small\"\n" VESSEL
-                                          "source plant \"works rule 7\"\n"
-                                          "rule own { title \"t\"; clause \"7\"; edition \"2\"; ref plant; class compressed; round 0.005\n"
-                                          "  gauge-zero 1 bara\n"
-                                          "  at 65 degC pressure <= test-pressure\n"
-                                          "  at 60 degC pressure <= test-pressure gauge-zero 1.01 bara\n"
-                                          "  from -20 degC to 50 degC no liquid\n"
-                                          "  filling-ratio <= 0.7 }\n"
-                                          "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules own }\n");
+    struct elaborated it =
+        elaborate_well("use \"small\"\n" VESSEL "source plant \"works rule 7\"\n"
+                       "rule own { title \"t\"; clause \"7\"; edition \"2\"; ref plant; class compressed; round 0.005\n"
+                       "  gauge-zero 1 bara\n"
+                       "  at 65 degC pressure <= test-pressure\n"
+                       "  at 60 degC pressure <= test-pressure gauge-zero 1.01 bara\n"
+                       "  from -20 degC to 50 degC no liquid\n"
+                       "  filling-ratio <= 0.7 }\n"
+                       "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules own }\n");
     const struct case_rule *rule = first_sheet(&it)->rules[0];
     assert_string_equal(rule->title, "t");
     assert_string_equal(rule->clause, "7");
@@ -320,12 +328,12 @@ static void a_library_rule_brings_its_source_and_its_default_rounding(void **sta
 static void entries_for_the_fluid_are_attached_with_rows_by_rising_pressure(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well(
-        "use \"small\"\n" VESSEL
-        "entry \"own\" { fluid carbon-dioxide; lc50 760 ppm; letters \"k, o\"; listed-fill 100 barg working-pressure 30 barg\n"
-        "  limit at 70 degC vapour-pressure <= 26 bara }\n"
-        "entry \"other\" { fluid argon; listed-fill 100 barg filling-ratio 0.5 }\n"
-        "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure }\n");
+    struct elaborated it =
+        elaborate_well("use \"small\"\n" VESSEL "entry \"own\" { fluid carbon-dioxide; lc50 760 ppm; letters \"k, o\"; "
+                                                "listed-fill 100 barg working-pressure 30 barg\n"
+                       "  limit at 70 degC vapour-pressure <= 26 bara }\n"
+                       "entry \"other\" { fluid argon; listed-fill 100 barg filling-ratio 0.5 }\n"
+                       "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure }\n");
     const struct case_sheet *sheet = first_sheet(&it);
     assert_int_equal(sheet->entry_count, 2);
     const struct case_entry *listed = sheet->entries[0];

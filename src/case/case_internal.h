@@ -38,8 +38,8 @@ struct named {
     const struct statement **items;
     size_t count, capacity;
     enum build_state state;
-    const void *built; /* once state is BUILT: what its kind is built into */
-    bool is_in_use;    /* of a source: a value in use names it */
+    const void *built;                /* once state is BUILT: what its kind is built into */
+    bool is_in_use;                   /* of a source: a value in use names it */
     const struct case_fluid *fluid;   /* of a component, once a sheet or charge asked for it */
     const struct entry_list *entries; /* of a component, once a sheet asked for them */
     struct named *next_in_bucket;
@@ -105,17 +105,18 @@ struct elaboration {
     struct source_list sources;
     struct component_list components;
     struct name_table table_files; /* of the CSV tables, so that no two go into one */
-    const char *group;  /* whose values are being read, as "vessel fifty" */
-    enum vocabulary_block block; /* what is being read */
-    size_t silent;      /* failures that need no message of their own */
-    bool is_checking;   /* reading blocks no sheet uses: nothing counts as used */
+    const char *group;             /* whose values are being read, as "vessel fifty" */
+    enum vocabulary_block block;   /* what is being read */
+    size_t silent;                 /* failures that need no message of their own */
+    bool is_checking;              /* reading blocks no sheet uses: nothing counts as used */
 };
 
 /* A number that grows with every failure, told or silent: a block was read well when it did not change. */
 size_t trouble_so_far(const struct elaboration *e);
 
 /* The definition an item names, or NULL after "unknown ... did you mean". `what` as in "vessel". */
-struct named *named_of_item(struct elaboration *e, enum name_kind kind, const struct expression *name, const char *what);
+struct named *named_of_item(struct elaboration *e, enum name_kind kind, const struct expression *name,
+                            const char *what);
 
 /* Adds "did you mean ..." where one of the known words is near. */
 void suggest(struct elaboration *e, struct diagnostic *said, const char *word, const char *const *known, size_t count);
@@ -143,7 +144,8 @@ const struct expression *take_name(struct reading *reading);
 /* The next item if it is that very name. */
 bool take_word(struct reading *reading, const char *word);
 
-/* The next item's name as a word of `block`; `what` as in "a method". NULL after a message: no name, or none of these. */
+/* The next item's name as a word of `block`; `what` as in "a method". NULL after a message: no name, or none of these.
+ */
 const struct vocabulary_row *take_choice(struct reading *reading, enum vocabulary_block block, const char *what);
 const struct vocabulary_row *choice_of_name(struct elaboration *e, enum vocabulary_block block,
                                             const struct expression *name);
@@ -177,10 +179,22 @@ struct block_form {
     void (*read_other)(struct elaboration *e, const struct statement *statement, void *target);
 };
 
-#define BLOCK_FORM(block, rows) {block, rows, sizeof(rows) / sizeof *(rows), BLOCKS, NULL}
-#define READ_ONCE(word, read) {word, false, read, NULL, 0}
-#define READ_EACH(word, read) {word, true, read, NULL, 0}
-#define READ_QUANTITY(word, form, type, member) {word, false, NULL, form, offsetof(type, member)}
+#define BLOCK_FORM(block, rows)                                  \
+    {                                                            \
+        block, rows, sizeof(rows) / sizeof *(rows), BLOCKS, NULL \
+    }
+#define READ_ONCE(word, read)      \
+    {                              \
+        word, false, read, NULL, 0 \
+    }
+#define READ_EACH(word, read)     \
+    {                             \
+        word, true, read, NULL, 0 \
+    }
+#define READ_QUANTITY(word, form, type, member)         \
+    {                                                   \
+        word, false, NULL, form, offsetof(type, member) \
+    }
 
 /* At most this many words in one kind of block. */
 enum { BLOCK_ROWS_MOST = 40 };
@@ -193,7 +207,8 @@ void read_block(struct elaboration *e, const struct block_form *form, const char
 /* The statement that begins with `word` in a block, or NULL. */
 const struct statement *find_statement(const struct statement *block, const char *word);
 
-/* A statement that is a word and one quoted text: the text, or NULL after a message. `what` as in "a title in quotes". */
+/* A statement that is a word and one quoted text: the text, or NULL after a message. `what` as in "a title in quotes".
+ */
 const char *read_text(struct elaboration *e, const struct statement *statement, const char *what);
 
 /* Says that a statement's word has no place in a block. */
@@ -221,8 +236,8 @@ enum value_reading {
 struct quantity_form {
     enum measure measure;
     enum value_reading reading;
-    double least, most; /* SI, as read */
-    bool is_least_open; /* `least` itself is not allowed */
+    double least, most;  /* SI, as read */
+    bool is_least_open;  /* `least` itself is not allowed */
     const char *because; /* where the range comes from; NULL: nature */
 };
 

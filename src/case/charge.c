@@ -34,8 +34,10 @@ static bool take_state(struct reading *reading, struct fill *fill)
         return false;
     }
     const struct origin origin = origin_of(e, at->at);
-    add_input(e, "volume stated", arena_format(e->arena, "%s, %s", si_text(e, &FORM_TEMPERATURE, fill->temperature),
-                                               si_text(e, &FORM_PRESSURE, fill->pressure)), &origin);
+    add_input(e, "volume stated",
+              arena_format(e->arena, "%s, %s", si_text(e, &FORM_TEMPERATURE, fill->temperature),
+                           si_text(e, &FORM_PRESSURE, fill->pressure)),
+              &origin);
     return true;
 }
 
@@ -44,9 +46,11 @@ static const struct {
     enum fill_kind kind;
     const struct quantity_form *form;
 } FILLS[] = {
-    {WORD_CHARGE_FILL, FILL_PRESSURE, &FORM_PRESSURE},   {WORD_CHARGE_MASS, FILL_MASS, &FORM_MASS},
+    {WORD_CHARGE_FILL, FILL_PRESSURE, &FORM_PRESSURE},
+    {WORD_CHARGE_MASS, FILL_MASS, &FORM_MASS},
     {WORD_CHARGE_FILLING_RATIO, FILL_RATIO, &FORM_FILLING_RATIO},
-    {WORD_CHARGE_DENSITY, FILL_DENSITY, &FORM_DENSITY},  {WORD_CHARGE_MOLES, FILL_MOLES, &FORM_AMOUNT},
+    {WORD_CHARGE_DENSITY, FILL_DENSITY, &FORM_DENSITY},
+    {WORD_CHARGE_MOLES, FILL_MOLES, &FORM_AMOUNT},
     {WORD_CHARGE_VOLUME, FILL_VOLUME, &FORM_VOLUME},
 };
 

@@ -3,14 +3,14 @@
 
 #include <string.h>
 
-static const struct quantity_form CRITICAL_PRESSURE = {.measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE,
-                                                       .least = 0.0, .is_least_open = true, .most = 1e9};
+static const struct quantity_form CRITICAL_PRESSURE = {
+    .measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE, .least = 0.0, .is_least_open = true, .most = 1e9};
 /* Quantum gases go down to about -0.5; the longest molecules of interest stay below 2. */
-static const struct quantity_form ACENTRIC = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
-                                              .least = -0.5, .most = 2.0};
+static const struct quantity_form ACENTRIC = {
+    .measure = MEASURE_NUMBER, .reading = READ_NUMBER, .least = -0.5, .most = 2.0};
 
-static const struct quantity_form UN_NUMBER = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
-                                               .least = 1.0, .most = 9999.0, .because = "four digits"};
+static const struct quantity_form UN_NUMBER = {
+    .measure = MEASURE_NUMBER, .reading = READ_NUMBER, .least = 1.0, .most = 9999.0, .because = "four digits"};
 
 static void read_formula_text(struct elaboration *e, const struct statement *statement, void *target)
 {
@@ -94,10 +94,14 @@ static unsigned hazard_of(enum vocabulary_word word)
         enum vocabulary_word word;
         enum hazard hazard;
     } hazards[] = {
-        {WORD_HAZARD_FLAMMABLE, HAZARD_FLAMMABLE},     {WORD_HAZARD_OXIDISING, HAZARD_OXIDISING},
-        {WORD_HAZARD_TOXIC, HAZARD_TOXIC},             {WORD_HAZARD_CORROSIVE, HAZARD_CORROSIVE},
-        {WORD_HAZARD_PYROPHORIC, HAZARD_PYROPHORIC},   {WORD_HAZARD_DECOMPOSES, HAZARD_DECOMPOSES},
-        {WORD_HAZARD_POLYMERISES, HAZARD_POLYMERISES}, {WORD_HAZARD_DISSOLVED, HAZARD_DISSOLVED},
+        {WORD_HAZARD_FLAMMABLE, HAZARD_FLAMMABLE},
+        {WORD_HAZARD_OXIDISING, HAZARD_OXIDISING},
+        {WORD_HAZARD_TOXIC, HAZARD_TOXIC},
+        {WORD_HAZARD_CORROSIVE, HAZARD_CORROSIVE},
+        {WORD_HAZARD_PYROPHORIC, HAZARD_PYROPHORIC},
+        {WORD_HAZARD_DECOMPOSES, HAZARD_DECOMPOSES},
+        {WORD_HAZARD_POLYMERISES, HAZARD_POLYMERISES},
+        {WORD_HAZARD_DISSOLVED, HAZARD_DISSOLVED},
     };
     for (size_t i = 0; i < sizeof hazards / sizeof *hazards; i++) {
         if (hazards[i].word == word) {
@@ -134,8 +138,8 @@ static void read_refuse(struct elaboration *e, const struct statement *statement
 }
 
 /* Mass density as a second way to write the critical density: kept as written until the molar mass is known. */
-static const struct quantity_form CRITICAL_MASS_DENSITY = {.measure = MEASURE_DENSITY, .reading = READ_NUMBER,
-                                                           .least = 0.0, .is_least_open = true, .most = 1e5};
+static const struct quantity_form CRITICAL_MASS_DENSITY = {
+    .measure = MEASURE_DENSITY, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e5};
 
 struct component_target {
     struct case_component component; /* first, so that the rows' offsets serve both */

@@ -1,4 +1,5 @@
-/* Elaboration: finds what a deck defines, builds what its sheets ask for, then checks the rest of the user's own text. */
+/* Elaboration: finds what a deck defines, builds what its sheets ask for, then checks the rest of the user's own text.
+ */
 #include "case/case_internal.h"
 
 #include <string.h>
@@ -41,7 +42,8 @@ static void define(struct elaboration *e, enum name_kind kind, const char *name,
 }
 
 /* `vessel fifty { ... }`: the name, and no more items. */
-static void define_named(struct elaboration *e, enum name_kind kind, const char *what, const struct statement *statement)
+static void define_named(struct elaboration *e, enum name_kind kind, const char *what,
+                         const struct statement *statement)
 {
     struct reading reading = read_items(e, statement);
     const struct expression *name = take_name(&reading);
@@ -94,8 +96,8 @@ static void keep_only(struct elaboration *e, const struct statement **kept, cons
         *kept = statement;
         return;
     }
-    struct diagnostic *said = diagnose(e->out, CODE_E206, statement->word_at, "a deck has one '%s' block, this is a second",
-                                       statement->word);
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E206, statement->word_at, "a deck has one '%s' block, this is a second", statement->word);
     said->note = "the first";
     said->note_at = (*kept)->word_at;
 }
@@ -344,10 +346,8 @@ static void read_case_units(struct elaboration *e, const struct statement *state
 }
 
 static const struct block_row CASE_ROWS[] = {
-    READ_ONCE(WORD_CASE_NUMBER, read_number),
-    READ_ONCE(WORD_CASE_REVISION, read_revision),
-    READ_EACH(WORD_CASE_NOTE, read_note),
-    READ_ONCE(WORD_CASE_AMBIENT_PRESSURE, read_ambient_pressure),
+    READ_ONCE(WORD_CASE_NUMBER, read_number),    READ_ONCE(WORD_CASE_REVISION, read_revision),
+    READ_EACH(WORD_CASE_NOTE, read_note),        READ_ONCE(WORD_CASE_AMBIENT_PRESSURE, read_ambient_pressure),
     READ_ONCE(WORD_CASE_UNITS, read_case_units),
 };
 static const struct block_form CASE = BLOCK_FORM(BLOCK_CASE, CASE_ROWS);

@@ -80,8 +80,8 @@ static bool take_listed_value(struct reading *reading, struct listed_row *row)
         report_missing(reading, "a value");
         return false;
     }
-    into->given = read_value(reading->e, is_ratio ? &FORM_FILLING_RATIO : &FORM_RATING, word->word, item->value,
-                             &into->value);
+    into->given =
+        read_value(reading->e, is_ratio ? &FORM_FILLING_RATIO : &FORM_RATING, word->word, item->value, &into->value);
     return into->given;
 }
 
@@ -96,8 +96,8 @@ static void read_listed_fill(struct elaboration *e, const struct statement *stat
         return;
     }
     if (!read_value(e, &FORM_RATING, "the test pressure of a listed row", pressure->value, &row.test_pressure) ||
-        !take_listed_value(&reading, &row) || !take_reference(&reading, &row.origin.source) || !finish_items(&reading) ||
-        !forbid_block(e, statement)) {
+        !take_listed_value(&reading, &row) || !take_reference(&reading, &row.origin.source) ||
+        !finish_items(&reading) || !forbid_block(e, statement)) {
         return;
     }
     struct row_list *list = &into->rows;
@@ -124,12 +124,9 @@ static void read_limit(struct elaboration *e, const struct statement *statement,
 }
 
 static const struct block_row ROWS[] = {
-    READ_ONCE(WORD_ENTRY_TITLE, read_title),
-    READ_ONCE(WORD_ENTRY_FLUID, read_fluid),
-    READ_ONCE(WORD_ENTRY_CLASS_CODE, read_class_code),
-    READ_ONCE(WORD_ENTRY_LC50, read_lc50),
-    READ_ONCE(WORD_ENTRY_LETTERS, read_letters),
-    READ_EACH(WORD_ENTRY_LISTED_FILL, read_listed_fill),
+    READ_ONCE(WORD_ENTRY_TITLE, read_title),           READ_ONCE(WORD_ENTRY_FLUID, read_fluid),
+    READ_ONCE(WORD_ENTRY_CLASS_CODE, read_class_code), READ_ONCE(WORD_ENTRY_LC50, read_lc50),
+    READ_ONCE(WORD_ENTRY_LETTERS, read_letters),       READ_EACH(WORD_ENTRY_LISTED_FILL, read_listed_fill),
     READ_EACH(WORD_ENTRY_LIMIT, read_limit),
 };
 static const struct block_form ENTRY = BLOCK_FORM(BLOCK_ENTRY, ROWS);

@@ -22,23 +22,35 @@ struct term_kind {
     struct column columns[COLUMNS_MOST];
 };
 
-#define R(member, range) {#member, range, offsetof(struct residual_term, member)}
+#define R(member, range)                                       \
+    {                                                          \
+#member, range, offsetof(struct residual_term, member) \
+    }
 #define N_T_D R(n, ANY), R(t, ANY), R(d, NOT_NEGATIVE)
-#define BELL R(eta, ANY), R(epsilon, ANY), R(beta, ANY), R(gamma, ANY)
+#define BELL  R(eta, ANY), R(epsilon, ANY), R(beta, ANY), R(gamma, ANY)
 
 static const struct term_kind RESIDUALS[] = {
     {WORD_RESIDUAL_POWER, RESIDUAL_POWER, 3, 4, {N_T_D, R(l, NOT_NEGATIVE)}},
     {WORD_RESIDUAL_EXPONENTIAL, RESIDUAL_EXPONENTIAL, 5, 5, {N_T_D, R(l, NOT_NEGATIVE), R(g, ANY)}},
     {WORD_RESIDUAL_GAUSSIAN, RESIDUAL_GAUSSIAN, 7, 7, {N_T_D, BELL}},
     {WORD_RESIDUAL_INVERSE_GAUSSIAN, RESIDUAL_INVERSE_GAUSSIAN, 8, 8, {N_T_D, BELL, R(b, POSITIVE)}},
-    {WORD_RESIDUAL_DOUBLE_EXPONENTIAL, RESIDUAL_DOUBLE_EXPONENTIAL, 7, 7,
+    {WORD_RESIDUAL_DOUBLE_EXPONENTIAL,
+     RESIDUAL_DOUBLE_EXPONENTIAL,
+     7,
+     7,
      {N_T_D, R(gd, ANY), R(ld, NOT_NEGATIVE), R(gt, ANY), R(lt, NOT_NEGATIVE)}},
-    {WORD_RESIDUAL_NONANALYTIC, RESIDUAL_NONANALYTIC, 8, 8,
+    {WORD_RESIDUAL_NONANALYTIC,
+     RESIDUAL_NONANALYTIC,
+     8,
+     8,
      {R(n, ANY), R(a, POSITIVE), R(b, POSITIVE), R(beta, POSITIVE), R(A, ANY), R(B, NOT_NEGATIVE), R(C, NOT_NEGATIVE),
       R(E, NOT_NEGATIVE)}},
 };
 
-#define I(member, range) {#member, range, offsetof(struct ideal_term, member)}
+#define I(member, range)                                    \
+    {                                                       \
+#member, range, offsetof(struct ideal_term, member) \
+    }
 
 static const struct term_kind IDEALS[] = {
     {WORD_IDEAL_LEAD, IDEAL_LEAD, 2, 2, {I(a, ANY), I(b, ANY)}},
@@ -121,11 +133,13 @@ static void report_columns(struct elaboration *e, const struct term_kind *kind, 
 }
 
 /* One `term` row into the struct at `into`, by the kind's columns. False after a message. */
-static bool read_term(struct elaboration *e, const struct term_kind *kind, const struct statement *statement, void *into)
+static bool read_term(struct elaboration *e, const struct term_kind *kind, const struct statement *statement,
+                      void *into)
 {
     struct reading reading = read_items(e, statement);
     size_t count = 0;
-    for (const struct item *item; count < kind->count && (item = take_item(&reading, ITEM_EXPRESSION)) != NULL; count++) {
+    for (const struct item *item; count < kind->count && (item = take_item(&reading, ITEM_EXPRESSION)) != NULL;
+         count++) {
         double number;
         if (!read_coefficient(e, &kind->columns[count], item->value, &number)) {
             return false;
@@ -192,8 +206,8 @@ static void read_terms(struct elaboration *e, const struct statement *statement,
 static void read_residual(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct equation *equation = target;
-    read_terms(e, statement, BLOCK_RESIDUAL, (struct terms){.add = add_residual, .list = &equation->residual}, RESIDUALS,
-               sizeof RESIDUALS / sizeof *RESIDUALS);
+    read_terms(e, statement, BLOCK_RESIDUAL, (struct terms){.add = add_residual, .list = &equation->residual},
+               RESIDUALS, sizeof RESIDUALS / sizeof *RESIDUALS);
 }
 
 static void read_ideal(struct elaboration *e, const struct statement *statement, void *target)
@@ -256,7 +270,8 @@ static void read_guess(struct elaboration *e, const struct statement *statement,
     struct equation *equation = target;
     struct reading reading = read_items(e, statement);
     const struct vocabulary_row *what = take_choice(&reading, BLOCK_GUESSED, "a quantity to guess");
-    const struct vocabulary_row *form = what == NULL ? NULL : take_choice(&reading, BLOCK_FORM, "the form of the guess");
+    const struct vocabulary_row *form =
+        what == NULL ? NULL : take_choice(&reading, BLOCK_FORM, "the form of the guess");
     if (form == NULL || !finish_items(&reading) || !require_block(e, statement)) {
         return;
     }

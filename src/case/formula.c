@@ -148,7 +148,9 @@ struct value value_kind_of(enum case_symbol symbol)
 {
     return (struct value){
         .dimension = dimension_of(symbol),
-        .sort = symbol_is_gauge(symbol) ? SORT_GAUGE : symbol_is_pressure(symbol) ? SORT_ABSOLUTE : SORT_PLAIN,
+        .sort = symbol_is_gauge(symbol)      ? SORT_GAUGE
+                : symbol_is_pressure(symbol) ? SORT_ABSOLUTE
+                                             : SORT_PLAIN,
     };
 }
 
@@ -159,7 +161,8 @@ static struct formula *new_formula(struct elaboration *e, enum formula_kind kind
     return formula;
 }
 
-static const struct formula *number_formula(struct elaboration *e, const struct expression *expression, struct value *kind)
+static const struct formula *number_formula(struct elaboration *e, const struct expression *expression,
+                                            struct value *kind)
 {
     if (!value_of(e, expression, kind)) {
         return NULL;
@@ -176,8 +179,8 @@ static const struct formula *symbol_formula(struct elaboration *e, const struct 
     const struct vocabulary_row *row = vocabulary_find(BLOCK_SYMBOL, name->name);
     const struct named *let = names_find(&e->tables[NAMES_LET], name->name);
     if (let != NULL && !name->at.file->is_library) {
-        struct diagnostic *said = diagnose(e->out, CODE_E217, name->at,
-                                           "'%s' could be the vessel's or the value the deck gives that name", row->word);
+        struct diagnostic *said = diagnose(
+            e->out, CODE_E217, name->at, "'%s' could be the vessel's or the value the deck gives that name", row->word);
         diagnostic_hint(e->out, said, "give the value another name");
         said->note = "the value";
         said->note_at = let->at;
@@ -210,7 +213,8 @@ static const char *misfit_of_sum(bool is_sum, const struct value *left, const st
     }
     *kind = (struct value){.dimension = left->dimension};
     kind->sort = has_points ? SORT_PLAIN : left->sort != SORT_PLAIN ? left->sort : right->sort;
-    return !is_sum && right->sort != SORT_PLAIN && !has_points ? "a difference less a gauge or absolute pressure" : NULL;
+    return !is_sum && right->sort != SORT_PLAIN && !has_points ? "a difference less a gauge or absolute pressure"
+                                                               : NULL;
 }
 
 static struct dimension product(struct dimension left, struct dimension right, int power)

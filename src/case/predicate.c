@@ -1,4 +1,5 @@
-/* Predicates: `[at T | from T to T] quantity relation bound`, `one phase`, `no liquid`, `no solid`, in any order of parts. */
+/* Predicates: `[at T | from T to T] quantity relation bound`, `one phase`, `no liquid`, `no solid`, in any order of
+ * parts. */
 #include "case/case_internal.h"
 
 /* A predicate while its parts are found. */
@@ -176,7 +177,8 @@ static bool check_bound(struct elaboration *e, const struct expression *written,
 {
     const struct quantity_form *form = form_of_bound(predicate);
     const char *name = case_symbol_name(predicate->quantity);
-    if (predicate->bound->kind == FORMULA_NUMBER || !dimension_equal(kind->dimension, measure_dimension(form->measure))) {
+    if (predicate->bound->kind == FORMULA_NUMBER ||
+        !dimension_equal(kind->dimension, measure_dimension(form->measure))) {
         double ignored;
         return convert_value(e, form, name, written, kind, &ignored);
     }
@@ -209,9 +211,7 @@ static bool settle_phase(struct elaboration *e, const struct item *condition, st
     if (row == NULL) {
         return false;
     }
-    out->kind = is_one                          ? PREDICATE_ONE_PHASE
-                : row->id == WORD_NO_LIQUID ? PREDICATE_NO_LIQUID
-                                                : PREDICATE_NO_SOLID;
+    out->kind = is_one ? PREDICATE_ONE_PHASE : row->id == WORD_NO_LIQUID ? PREDICATE_NO_LIQUID : PREDICATE_NO_SOLID;
     return true;
 }
 
@@ -222,14 +222,16 @@ static bool settle_gauge_zero(struct elaboration *e, const struct parts *parts, 
         return true;
     }
     if (!out->bound_is_gauge) {
-        diagnose(e->out, CODE_E219, parts->gauge_zero->at, "gauge-zero has no meaning here: the bound is not a gauge pressure");
+        diagnose(e->out, CODE_E219, parts->gauge_zero->at,
+                 "gauge-zero has no meaning here: the bound is not a gauge pressure");
         return false;
     }
     out->states_gauge_zero = true;
     return read_air_pressure(e, parts->gauge_zero, "gauge-zero", &out->gauge_zero);
 }
 
-/* True when the condition holds at every temperature or none: a ratio and a density of a closed vessel do not change. */
+/* True when the condition holds at every temperature or none: a ratio and a density of a closed vessel do not change.
+ */
 bool predicate_needs_temperature(const struct predicate *predicate)
 {
     return !(predicate->kind == PREDICATE_COMPARE &&

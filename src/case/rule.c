@@ -51,8 +51,8 @@ static void read_class(struct elaboration *e, const struct statement *statement,
 
 static void read_round(struct elaboration *e, const struct statement *statement, void *target)
 {
-    static const struct quantity_form form = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
-                                              .least = 1e-6, .most = 0.5};
+    static const struct quantity_form form = {
+        .measure = MEASURE_NUMBER, .reading = READ_NUMBER, .least = 1e-6, .most = 0.5};
     struct rule_target *into = target;
     struct reading reading = read_items(e, statement);
     struct quantity round = {.given = false};
@@ -115,7 +115,8 @@ static const struct block_row ROWS[] = {
     READ_EACH(WORD_RULE_NO, read_condition),
     READ_EACH(WORD_RULE_ONE, read_condition),
 };
-static const struct block_form RULE = {BLOCK_RULE, ROWS, sizeof ROWS / sizeof *ROWS, BLOCK_QUANTITY, read_bare_condition};
+static const struct block_form RULE = {BLOCK_RULE, ROWS, sizeof ROWS / sizeof *ROWS, BLOCK_QUANTITY,
+                                       read_bare_condition};
 
 /* The rule's gauge zero holds for each of its conditions that states none itself. */
 static void apply_gauge_zero(struct rule_target *target)

@@ -93,8 +93,7 @@ static void read_table(struct elaboration *e, const struct statement *statement,
     }
     const struct location at = statement->items->at;
     if (!is_file_name(name)) {
-        struct diagnostic *said =
-            diagnose(e->out, CODE_E213, at, "'%s' is not a plain file name", shortened(e, name));
+        struct diagnostic *said = diagnose(e->out, CODE_E213, at, "'%s' is not a plain file name", shortened(e, name));
         diagnostic_hint(e->out, said, "a table is written beside the listing, as in: table \"bench-lot.csv\"");
         return;
     }
@@ -354,7 +353,8 @@ static bool check_complete(struct elaboration *e, const struct sheet_target *tar
         return target->rules.count != 0 || report_lack(e, sheet, "rules", "rules liquefied-high-pressure");
     case SHEET_SATURATION:
         if (sheet->densities.given || (sheet->temperatures.given && sheet->pressures.given)) {
-            diagnose(e->out, CODE_E222, target->sweep->at, "a saturation sheet sweeps temperature or pressure, one of them");
+            diagnose(e->out, CODE_E222, target->sweep->at,
+                     "a saturation sheet sweeps temperature or pressure, one of them");
             return false;
         }
         return sheet->temperatures.given || sheet->pressures.given ||
@@ -440,7 +440,8 @@ static void check_temperatures(struct elaboration *e, const struct sheet_target 
 static void check_lead(struct elaboration *e, const struct case_sheet *sheet)
 {
     const char *never = vocabulary_rows()[WORD_METHOD_IDEAL_GAS].word;
-    if (sheet->kind == SHEET_PERMISSIBLE_CHARGE && sheet->methods.count != 0 && strcmp(sheet->methods.names[0], never) == 0) {
+    if (sheet->kind == SHEET_PERMISSIBLE_CHARGE && sheet->methods.count != 0 &&
+        strcmp(sheet->methods.names[0], never) == 0) {
         struct diagnostic *said =
             diagnose(e->out, CODE_E224, sheet->methods.at, "%s never governs a charge, so it cannot lead here", never);
         diagnostic_hint(e->out, said, "lead with reference or peng-robinson");

@@ -57,9 +57,8 @@ const struct vocabulary_row *choice_of_name(struct elaboration *e, enum vocabula
     }
     const char *known[VOCABULARY_MOST];
     const size_t count = vocabulary_words(block, known, VOCABULARY_MOST);
-    struct diagnostic *said =
-        diagnose(e->out, CODE_E213, name->at, "'%s' has no place %s", shortened(e, name->name),
-                 vocabulary_block_title(block));
+    struct diagnostic *said = diagnose(e->out, CODE_E213, name->at, "'%s' has no place %s", shortened(e, name->name),
+                                       vocabulary_block_title(block));
     hint_words(e, said, known, count);
     suggest(e, said, name->name, known, count);
     return NULL;
@@ -112,11 +111,10 @@ void report_missing(struct reading *reading, const char *what)
 {
     struct elaboration *e = reading->e;
     const struct location at = place_of_missing(reading);
-    struct diagnostic *said =
-        reading->item == NULL
-            ? diagnose(e->out, CODE_E203, at, "%s is missing after '%s'", what,
-                       written_at(e, reading->of->at, QUOTED_MOST))
-            : diagnose(e->out, CODE_E203, at, "%s is needed here, not '%s'", what, written_at(e, at, QUOTED_MOST));
+    struct diagnostic *said = reading->item == NULL ? diagnose(e->out, CODE_E203, at, "%s is missing after '%s'", what,
+                                                               written_at(e, reading->of->at, QUOTED_MOST))
+                                                    : diagnose(e->out, CODE_E203, at, "%s is needed here, not '%s'",
+                                                               what, written_at(e, at, QUOTED_MOST));
     hint_form(e, said, reading->of);
 }
 
@@ -137,8 +135,8 @@ bool require_block(struct elaboration *e, const struct statement *statement)
     if (statement->has_block) {
         return true;
     }
-    struct diagnostic *said = diagnose(e->out, CODE_E212, statement->at, "'%s' needs a block in braces",
-                                       shortened(e, statement->word));
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E212, statement->at, "'%s' needs a block in braces", shortened(e, statement->word));
     hint_form(e, said, statement);
     return false;
 }
@@ -149,8 +147,7 @@ bool forbid_block(struct elaboration *e, const struct statement *statement)
         return true;
     }
     struct diagnostic *said =
-        diagnose(e->out, CODE_E212, statement->block_at, "'%s' takes no block",
-                 shortened(e, statement->word));
+        diagnose(e->out, CODE_E212, statement->block_at, "'%s' takes no block", shortened(e, statement->word));
     hint_form(e, said, statement);
     return false;
 }
@@ -179,7 +176,8 @@ static const char *homes_of(struct elaboration *e, const char *word)
     enum { HOMES_MOST = 3 };
     struct text list = {.arena = e->arena};
     size_t count = 0;
-    for (const struct vocabulary_row *row = NULL; count < HOMES_MOST && (row = vocabulary_next(word, row)) != NULL; count++) {
+    for (const struct vocabulary_row *row = NULL; count < HOMES_MOST && (row = vocabulary_next(word, row)) != NULL;
+         count++) {
         text_format(&list, "%s%s", count == 0 ? "" : ", ", vocabulary_block_title(row->block));
     }
     return count == 0 ? NULL : list.bytes;
@@ -189,9 +187,9 @@ static const char *homes_of(struct elaboration *e, const char *word)
 void report_word(struct elaboration *e, enum vocabulary_block block, const struct statement *statement)
 {
     const char *homes = homes_of(e, statement->word);
-    struct diagnostic *said = diagnose(e->out, homes == NULL ? CODE_E201 : CODE_E202, statement->word_at,
-                                       "'%s' has no place %s", shortened(e, statement->word),
-                                       vocabulary_block_title(block));
+    struct diagnostic *said =
+        diagnose(e->out, homes == NULL ? CODE_E201 : CODE_E202, statement->word_at, "'%s' has no place %s",
+                 shortened(e, statement->word), vocabulary_block_title(block));
     if (homes != NULL) {
         diagnostic_hint(e->out, said, "it stands %s", homes);
         return;
@@ -200,8 +198,8 @@ void report_word(struct elaboration *e, enum vocabulary_block block, const struc
     suggest(e, said, statement->word, known, vocabulary_words(block, known, VOCABULARY_MOST));
 }
 
-static void read_quantity_row(struct elaboration *e, const struct block_row *row,
-                              const struct vocabulary_row *word, const struct statement *statement, void *target)
+static void read_quantity_row(struct elaboration *e, const struct block_row *row, const struct vocabulary_row *word,
+                              const struct statement *statement, void *target)
 {
     struct reading reading = read_items(e, statement);
     struct quantity *into = (struct quantity *)(void *)((char *)target + row->offset);

@@ -25,8 +25,8 @@ static const struct item *expect(struct reading *reading, enum item_kind kind, c
 
 static bool report_count(struct elaboration *e, struct location at, double count)
 {
-    diagnose(e->out, CODE_E222, at, "the sweep has %s values: at most %s are allowed", si_number(e->arena, floor(count)),
-             si_number(e->arena, SWEEP_MOST));
+    diagnose(e->out, CODE_E222, at, "the sweep has %s values: at most %s are allowed",
+             si_number(e->arena, floor(count)), si_number(e->arena, SWEEP_MOST));
     return false;
 }
 
@@ -49,12 +49,12 @@ static bool lay_steps(struct elaboration *e, struct swept *swept, const struct i
                       double step)
 {
     if (!(fabs(step) > 0.0) || (to - from) * step < 0.0) {
-        struct diagnostic *said =
-            diagnose(e->out, CODE_E221, by->at, "a step of '%s' never leads from %s to %s",
-                     written_at(e, by->value->at, QUOTED_MOST), si_text(e, swept->form, from),
-                     si_text(e, swept->form, to));
+        struct diagnostic *said = diagnose(e->out, CODE_E221, by->at, "a step of '%s' never leads from %s to %s",
+                                           written_at(e, by->value->at, QUOTED_MOST), si_text(e, swept->form, from),
+                                           si_text(e, swept->form, to));
         diagnostic_hint(e->out, said,
-                        fabs(step) > 0.0 ? "turn the sign of the step, or exchange the ends" : "give a step other than 0");
+                        fabs(step) > 0.0 ? "turn the sign of the step, or exchange the ends"
+                                         : "give a step other than 0");
         return false;
     }
     /* A grid that misses the end by rounding only still meets it. */
@@ -70,8 +70,10 @@ static bool lay_steps(struct elaboration *e, struct swept *swept, const struct i
 static bool take_step(struct reading *reading, struct swept *swept, double from, double to)
 {
     const struct item *by = take_item(reading, ITEM_BY);
-    const struct quantity_form form = {.measure = swept->form->measure, .reading = READ_DIFFERENCE,
-                                       .least = -swept->form->most, .most = swept->form->most};
+    const struct quantity_form form = {.measure = swept->form->measure,
+                                       .reading = READ_DIFFERENCE,
+                                       .least = -swept->form->most,
+                                       .most = swept->form->most};
     double step;
     return read_value(reading->e, &form, "the step of the sweep", by->value, &step) &&
            lay_steps(reading->e, swept, by, from, to, step);
@@ -203,14 +205,13 @@ bool read_sweep(struct elaboration *e, const struct statement *statement, struct
     }
     struct case_sweep *into = place_of(what->id, temperatures, pressures, densities);
     if (into->given) {
-        struct diagnostic *said =
-            diagnose(e->out, CODE_E207, statement->word_at, "the %s is swept twice", what->word);
+        struct diagnostic *said = diagnose(e->out, CODE_E207, statement->word_at, "the %s is swept twice", what->word);
         said->note = "first swept here";
         said->note_at = into->origin.at;
         return false;
     }
     struct swept swept = {.name = what->word, .at = statement->at};
-    into->origin = origin_of(e, statement->at);
+    into->origin = origin_of(e, reading.item == NULL ? statement->at : location_span(reading.item->at, statement->at));
     if (!settle_quantity(e, what->id, &reading, &swept)) {
         return false;
     }

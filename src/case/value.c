@@ -5,37 +5,43 @@
 #include <string.h>
 
 /* Upper ends are far beyond any cylinder: they catch slipped units and keep absurd numbers out of the solvers. */
-const struct quantity_form FORM_TEMPERATURE = {.measure = MEASURE_TEMPERATURE, .reading = READ_TEMPERATURE,
-                                               .least = 0.0, .is_least_open = true, .most = 5000.0};
-const struct quantity_form FORM_PRESSURE = {.measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE,
-                                            .least = 0.0, .is_least_open = true, .most = 1e10};
-const struct quantity_form FORM_RATING = {.measure = MEASURE_PRESSURE, .reading = READ_RATING,
-                                          .least = 0.0, .is_least_open = true, .most = 1e9};
-const struct quantity_form FORM_DENSITY = {.measure = MEASURE_DENSITY, .reading = READ_NUMBER,
-                                           .least = 0.0, .is_least_open = true, .most = 1e5};
-const struct quantity_form FORM_MOLAR_DENSITY = {.measure = MEASURE_MOLAR_DENSITY, .reading = READ_NUMBER,
-                                                 .least = 0.0, .is_least_open = true, .most = 1e6};
-const struct quantity_form FORM_VOLUME = {.measure = MEASURE_VOLUME, .reading = READ_NUMBER,
-                                          .least = 0.0, .is_least_open = true, .most = 1e7};
-const struct quantity_form FORM_MASS = {.measure = MEASURE_MASS, .reading = READ_NUMBER,
-                                        .least = 0.0, .is_least_open = true, .most = 1e7};
-const struct quantity_form FORM_AMOUNT = {.measure = MEASURE_AMOUNT, .reading = READ_NUMBER,
-                                          .least = 0.0, .is_least_open = true, .most = 1e9};
+const struct quantity_form FORM_TEMPERATURE = {
+    .measure = MEASURE_TEMPERATURE, .reading = READ_TEMPERATURE, .least = 0.0, .is_least_open = true, .most = 5000.0};
+const struct quantity_form FORM_PRESSURE = {
+    .measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE, .least = 0.0, .is_least_open = true, .most = 1e10};
+const struct quantity_form FORM_RATING = {
+    .measure = MEASURE_PRESSURE, .reading = READ_RATING, .least = 0.0, .is_least_open = true, .most = 1e9};
+const struct quantity_form FORM_DENSITY = {
+    .measure = MEASURE_DENSITY, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e5};
+const struct quantity_form FORM_MOLAR_DENSITY = {
+    .measure = MEASURE_MOLAR_DENSITY, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e6};
+const struct quantity_form FORM_VOLUME = {
+    .measure = MEASURE_VOLUME, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e7};
+const struct quantity_form FORM_MASS = {
+    .measure = MEASURE_MASS, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e7};
+const struct quantity_form FORM_AMOUNT = {
+    .measure = MEASURE_AMOUNT, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e9};
 /* No liquefied gas reaches five times the density of water. */
-const struct quantity_form FORM_FILLING_RATIO = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
-                                                 .least = 0.0, .is_least_open = true, .most = 5.0};
-const struct quantity_form FORM_FRACTION = {.measure = MEASURE_NUMBER, .reading = READ_NUMBER,
-                                            .least = 0.0, .most = 1.0};
+const struct quantity_form FORM_FILLING_RATIO = {
+    .measure = MEASURE_NUMBER, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 5.0};
+const struct quantity_form FORM_FRACTION = {
+    .measure = MEASURE_NUMBER, .reading = READ_NUMBER, .least = 0.0, .most = 1.0};
 
-/* The most general reading of each measure. Numbers may be anything; a word with a narrower range says so in its row. */
+/* The most general reading of each measure. Numbers may be anything; a word with a narrower range says so in its row.
+ */
 static const struct quantity_form FORM_NUMBER = {.reading = READ_NUMBER, .least = -1e9, .most = 1e9};
-static const struct quantity_form FORM_MOLAR_MASS = {.measure = MEASURE_MOLAR_MASS, .reading = READ_NUMBER,
-                                                     .least = 0.001, .most = 1.0,
+static const struct quantity_form FORM_MOLAR_MASS = {.measure = MEASURE_MOLAR_MASS,
+                                                     .reading = READ_NUMBER,
+                                                     .least = 0.001,
+                                                     .most = 1.0,
                                                      .because = "atomic hydrogen has 1.008 g/mol"};
-static const struct quantity_form FORM_MOLAR_HEAT = {.measure = MEASURE_MOLAR_HEAT, .reading = READ_NUMBER,
-                                                     .least = 8.3, .most = 8.33, .because = "a molar gas constant"};
-static const struct quantity_form FORM_DIPOLE = {.measure = MEASURE_DIPOLE, .reading = READ_NUMBER,
-                                                 .least = 0.0, .most = 1e-28};
+static const struct quantity_form FORM_MOLAR_HEAT = {.measure = MEASURE_MOLAR_HEAT,
+                                                     .reading = READ_NUMBER,
+                                                     .least = 8.3,
+                                                     .most = 8.33,
+                                                     .because = "a molar gas constant"};
+static const struct quantity_form FORM_DIPOLE = {
+    .measure = MEASURE_DIPOLE, .reading = READ_NUMBER, .least = 0.0, .most = 1e-28};
 
 const struct quantity_form *form_of_measure(enum measure measure)
 {
@@ -107,10 +113,12 @@ static const char *quoted(struct elaboration *e, const struct expression *expres
 static const char *usual_unit(const struct quantity_form *form)
 {
     static const char *const units[MEASURES] = {
-        [MEASURE_PRESSURE] = "bara",          [MEASURE_GAUGE] = "barg",          [MEASURE_TEMPERATURE] = "degC",
-        [MEASURE_VOLUME] = "L",               [MEASURE_MASS] = "kg",             [MEASURE_AMOUNT] = "mol",
-        [MEASURE_DENSITY] = "kg/L",           [MEASURE_MOLAR_DENSITY] = "mol/L", [MEASURE_MOLAR_MASS] = "g/mol",
-        [MEASURE_MOLAR_HEAT] = "J/mol/K",     [MEASURE_DIPOLE] = "D",
+        [MEASURE_PRESSURE] = "bara",    [MEASURE_GAUGE] = "barg",
+        [MEASURE_TEMPERATURE] = "degC", [MEASURE_VOLUME] = "L",
+        [MEASURE_MASS] = "kg",          [MEASURE_AMOUNT] = "mol",
+        [MEASURE_DENSITY] = "kg/L",     [MEASURE_MOLAR_DENSITY] = "mol/L",
+        [MEASURE_MOLAR_MASS] = "g/mol", [MEASURE_MOLAR_HEAT] = "J/mol/K",
+        [MEASURE_DIPOLE] = "D",
     };
     if (form->reading == READ_RATING) {
         return units[MEASURE_GAUGE];
@@ -124,9 +132,8 @@ static const char *usual_unit(const struct quantity_form *form)
 static bool report_dimension(struct elaboration *e, const struct quantity_form *form, const char *name,
                              const struct expression *expression, const struct value *value)
 {
-    const char *found = dimension_equal(value->dimension, DIMENSION_NONE)
-                            ? "a plain number"
-                            : dimension_name(value->dimension, e->arena);
+    const char *found = dimension_equal(value->dimension, DIMENSION_NONE) ? "a plain number"
+                                                                          : dimension_name(value->dimension, e->arena);
     const char *expected = dimension_equal(measure_dimension(form->measure), DIMENSION_NONE)
                                ? "a plain number"
                                : dimension_name(measure_dimension(form->measure), e->arena);
@@ -142,10 +149,10 @@ static bool report_dimension(struct elaboration *e, const struct quantity_form *
 /* A rating in a unit that does not say gauge: both readings, so that the writer can choose. */
 static bool report_rating(struct elaboration *e, const char *name, const struct expression *expression, double si)
 {
-    struct diagnostic *said =
-        diagnose(e->out, CODE_E210, expression->at,
-                 "%s must be a gauge pressure: '%s' could mean %.7g barg (read as gauge) or %.7g barg (read as absolute)",
-                 name, quoted(e, expression), si / 1e5, (si - STANDARD_ATMOSPHERE) / 1e5);
+    struct diagnostic *said = diagnose(
+        e->out, CODE_E210, expression->at,
+        "%s must be a gauge pressure: '%s' could mean %.7g barg (read as gauge) or %.7g barg (read as absolute)", name,
+        quoted(e, expression), si / 1e5, (si - STANDARD_ATMOSPHERE) / 1e5);
     diagnostic_hint(e->out, said, "ratings are stamped as gauge: write it in barg, psig, kPag or MPag");
     return false;
 }
@@ -154,11 +161,12 @@ static bool report_point(struct elaboration *e, const char *name, const struct e
                          enum value_sort sort)
 {
     const bool is_temperature = sort == SORT_TEMPERATURE_POINT;
-    struct diagnostic *said =
-        diagnose(e->out, CODE_E211, expression->at, "%s: a difference is needed, '%s' is %s", name,
-                 quoted(e, expression), is_temperature ? "a point of a temperature scale" : "a gauge or absolute pressure");
-    diagnostic_hint(e->out, said, is_temperature ? "write the difference in K, as in 'by 5 K'"
-                                                 : "write the difference in a plain unit, as in '5 bar'");
+    struct diagnostic *said = diagnose(
+        e->out, CODE_E211, expression->at, "%s: a difference is needed, '%s' is %s", name, quoted(e, expression),
+        is_temperature ? "a point of a temperature scale" : "a gauge or absolute pressure");
+    diagnostic_hint(e->out, said,
+                    is_temperature ? "write the difference in K, as in 'by 5 K'"
+                                   : "write the difference in a plain unit, as in '5 bar'");
     return false;
 }
 
@@ -181,14 +189,14 @@ static bool check_range(struct elaboration *e, const struct quantity_form *form,
     }
     const char *unit = base_unit(measure_dimension(form->measure), e->arena);
     const bool is_bare = *unit == '\0' && expression->kind == EXPRESSION_NUMBER && expression->unit == NULL;
-    const char *in_si = is_bare ? ""
-                                : arena_format(e->arena, ", which is %s%s%s%s", si_number(e->arena, si),
-                                               *unit == '\0' ? "" : " ", unit,
-                                               form->reading == READ_RATING     ? " gauge"
-                                               : form->reading == READ_ABSOLUTE ? " abs"
-                                                                                : "");
-    struct diagnostic *said = diagnose(e->out, CODE_E209, expression->at, "%s cannot be '%s'%s", name,
-                                       quoted(e, expression), in_si);
+    const char *in_si =
+        is_bare ? ""
+                : arena_format(e->arena, ", which is %s%s%s%s", si_number(e->arena, si), *unit == '\0' ? "" : " ", unit,
+                               form->reading == READ_RATING     ? " gauge"
+                               : form->reading == READ_ABSOLUTE ? " abs"
+                                                                : "");
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E209, expression->at, "%s cannot be '%s'%s", name, quoted(e, expression), in_si);
     diagnostic_hint(e->out, said, "allowed: %s%s%s%s", range_text(e, form), form->because == NULL ? "" : " (",
                     form->because == NULL ? "" : form->because, form->because == NULL ? "" : ")");
     return false;
@@ -238,16 +246,19 @@ bool read_value(struct elaboration *e, const struct quantity_form *form, const c
 
 bool read_air_pressure(struct elaboration *e, const struct expression *expression, const char *name, double *pressure)
 {
-    static const struct quantity_form form = {.measure = MEASURE_PRESSURE, .reading = READ_ABSOLUTE,
-                                              .least = 3e4, .most = 1.2e5, .because = "an air pressure"};
+    static const struct quantity_form form = {.measure = MEASURE_PRESSURE,
+                                              .reading = READ_ABSOLUTE,
+                                              .least = 3e4,
+                                              .most = 1.2e5,
+                                              .because = "an air pressure"};
     struct value value;
     if (!value_of(e, expression, &value)) {
         return false;
     }
     if (value.sort == SORT_GAUGE) {
-        struct diagnostic *said = diagnose(e->out, CODE_E211, expression->at,
-                                           "%s: '%s' is a gauge pressure, but the zero of gauges is absolute", name,
-                                           quoted(e, expression));
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E211, expression->at,
+                     "%s: '%s' is a gauge pressure, but the zero of gauges is absolute", name, quoted(e, expression));
         diagnostic_hint(e->out, said, "as in: %s 1 bara", name);
         return false;
     }

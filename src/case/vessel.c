@@ -2,9 +2,12 @@
 #include "case/case_internal.h"
 
 /* The clause fixes the least test pressure of any receptacle it covers. */
-static const struct quantity_form TEST_PRESSURE = {.measure = MEASURE_PRESSURE, .reading = READ_RATING,
-                                                   .least = 1e6, .most = 1e9,
-                                                   .because = "least test pressure 10 bar, UN Model Regulations P200 (4)"};
+static const struct quantity_form TEST_PRESSURE = {.measure = MEASURE_PRESSURE,
+                                                   .reading = READ_RATING,
+                                                   .least = 1e6,
+                                                   .most = 1e9,
+                                                   .because =
+                                                       "least test pressure 10 bar, UN Model Regulations P200 (4)"};
 
 struct rating_list {
     struct case_rating *items;
@@ -51,9 +54,9 @@ static void check_ratings(struct elaboration *e, const struct case_vessel *vesse
     if (!working->given || !test->given || working->value <= test->value) {
         return;
     }
-    struct diagnostic *said = diagnose(e->out, CODE_E209, working->origin.at,
-                                       "the working pressure '%s' is above the test pressure '%s'",
-                                       working->origin.written, test->origin.written);
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E209, working->origin.at, "the working pressure '%s' is above the test pressure '%s'",
+                 working->origin.written, test->origin.written);
     said->note = "the test pressure";
     said->note_at = test->origin.at;
 }
@@ -72,8 +75,8 @@ const struct case_vessel *build_vessel(struct elaboration *e, struct named *name
         read_block(e, &VESSEL, arena_format(e->arena, "vessel %s", named->name), block, target);
     }
     if (trouble_so_far(e) == before && !target->vessel.water_capacity.given) {
-        struct diagnostic *said = diagnose(e->out, CODE_E214, named->at, "vessel '%s' has no water-capacity",
-                                           shortened(e, named->name));
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E214, named->at, "vessel '%s' has no water-capacity", shortened(e, named->name));
         diagnostic_hint(e->out, said, "as in: water-capacity 50.2 L");
     }
     check_ratings(e, &target->vessel);

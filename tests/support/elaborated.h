@@ -61,9 +61,9 @@ struct elaborated {
 
 static inline bool elaborated_read(void *context, struct arena *arena, const char *path, char **text, size_t *length)
 {
-    const char *found = strcmp(path, "job.deck") == 0          ? (const char *)context
+    const char *found = strcmp(path, "job.deck") == 0         ? (const char *)context
                         : strcmp(path, "lib/small.deck") == 0 ? SMALL_LIBRARY
-                                                               : NULL;
+                                                              : NULL;
     if (found == NULL) {
         errno = ENOENT;
         return false;
