@@ -250,6 +250,20 @@ static void a_later_block_overrides_only_what_it_names(void **state)
     elaborated_end(&it);
 }
 
+static void a_critical_density_overridden_in_another_unit_stays_per_amount(void **state)
+{
+    (void)state;
+    struct elaborated it =
+        elaborate_well("component carbon-dioxide { critical-density 470 kg/m3 }\n"
+                       "component carbon-dioxide { critical-density 10.5 mol/L }\n" SHEET_OF("mass 1 kg"));
+    const struct quantity *density = &it.tree->components[0]->critical_density;
+    assert_close(density->value, 10500.0, 1e-15, "10.5 mol over 1 dm3");
+    assert_close(density->overridden->value, 470.0 / 0.0440098, 1e-14, "470 kg/m3 over the library's molar mass");
+    assert_close(density->overridden->overridden->value, 467.6 / 0.0440098, 1e-14, "the library's");
+    elaborated_end(&it);
+    assert_refused("component x { critical-density 470 kg/m3 }\n", CODE_E214);
+}
+
 static void the_decks_own_definition_replaces_the_librarys(void **state)
 {
     (void)state;
@@ -374,6 +388,7 @@ int main(void)
         cmocka_unit_test(only_what_a_sheet_names_is_built),
         cmocka_unit_test(the_users_own_unused_blocks_are_checked_all_the_same),
         cmocka_unit_test(a_later_block_overrides_only_what_it_names),
+        cmocka_unit_test(a_critical_density_overridden_in_another_unit_stays_per_amount),
         cmocka_unit_test(the_decks_own_definition_replaces_the_librarys),
         cmocka_unit_test(hazards_and_refusals_are_kept),
         cmocka_unit_test(inputs_are_echoed_in_the_order_of_the_text),

@@ -139,6 +139,7 @@ static void swept_gauge_pressures_count_from_the_ambient_pressure(void **state)
     assert_close(sweep->values[0], 1e5, 1e-15, "0 barg at 1 bara");
     assert_close(sweep->values[2], 21e5, 1e-15, "20 barg at 1 bara");
     assert_string_equal(sweep->shown.symbol, "barg");
+    assert_close(sweep->shown.offset, 1e5, 1e-15, "readings count from the ambient pressure");
     elaborated_end(&it);
 }
 
@@ -330,7 +331,7 @@ static void entries_for_the_fluid_are_attached_with_rows_by_rising_pressure(void
     (void)state;
     struct elaborated it =
         elaborate_well("use \"small\"\n" VESSEL "entry \"own\" { fluid carbon-dioxide; lc50 760 ppm; letters \"k, o\"; "
-                                                "listed-fill 100 barg working-pressure 30 barg\n"
+                       "listed-fill 100 barg working-pressure 30 barg\n"
                        "  limit at 70 degC vapour-pressure <= 26 bara }\n"
                        "entry \"other\" { fluid argon; listed-fill 100 barg filling-ratio 0.5 }\n"
                        "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure }\n");

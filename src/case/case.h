@@ -199,7 +199,7 @@ struct case_sweep {
     size_t count;
     const double *values; /* SI: K, Pa absolute, or mol/m3 */
     bool is_mass_density; /* a density sweep written per mass: values are kg/m3 */
-    struct shown_unit shown;
+    struct shown_unit shown; /* as first written; a gauge unit's offset is the ambient pressure */
     struct origin origin;
 };
 
@@ -207,7 +207,8 @@ enum sheet_kind { SHEET_PERMISSIBLE_CHARGE, SHEET_SETTLED_PRESSURE, SHEET_SATURA
 
 enum listed_policy { LISTED_GOVERNS, LISTED_CHECK_GOVERNS, LISTED_COMPARE };
 
-/* Units for results, chosen by the deck or by default (bara, barg, degC, kg/L, kg, m3, L). */
+/* Units for results, chosen by the deck or by default (bara, barg, degC, kg/L, kg, m3, L). The gauge unit is for
+ * absolute values: its offset is 101 325 Pa. */
 struct display_units {
     struct shown_unit temperature, pressure, gauge, density, mass, gas_volume, volume;
 };
@@ -239,7 +240,8 @@ struct case_sheet {
     const char *const *notes;
 };
 
-/* One line of the listing's inputs: a value as written, in SI, with its place. */
+/* One line of the listing's inputs: a value as written, in SI, with its place. The place may be in any of the user's own
+ * files, of which the root is one. */
 struct case_input {
     const char *group; /* "vessel fifty" */
     const char *name;  /* "water-capacity" */
@@ -258,7 +260,7 @@ struct case_tree {
     size_t component_count; /* those the sheets use */
     const struct case_component *const *components;
     size_t input_count;
-    const struct case_input *inputs; /* of the root deck's own blocks, in its order */
+    const struct case_input *inputs; /* of the user's own blocks, file by file in the order of the text */
     size_t source_count;             /* sources that values in use name */
     const struct case_source *const *sources;
 };

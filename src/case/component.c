@@ -137,39 +137,17 @@ static void read_refuse(struct elaboration *e, const struct statement *statement
     }
 }
 
-/* Mass density as a second way to write the critical density: kept as written until the molar mass is known. */
-static const struct quantity_form CRITICAL_MASS_DENSITY = {
-    .measure = MEASURE_DENSITY, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e5};
-
 struct component_target {
     struct case_component component; /* first, so that the rows' offsets serve both */
-    struct quantity critical_mass_density;
+    struct statement_list critical_densities;
 };
 
-static void read_critical_density(struct elaboration *e, const struct statement *statement, void *target)
+/* A critical density may be per mass, which takes the molar mass, perhaps of a later block: kept for the end. */
+static void keep_critical_density(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct component_target *into = target;
-    struct reading reading = read_items(e, statement);
-    struct value value;
-    if (reading.item == NULL || reading.item->kind != ITEM_EXPRESSION) {
-        report_missing(&reading, "a density");
-        return;
-    }
-    if (!value_of(e, reading.item->value, &value)) {
-        return;
-    }
-    const bool is_mass = dimension_equal(value.dimension, DIMENSION_DENSITY);
-    struct quantity *to = is_mass ? &into->critical_mass_density : &into->component.critical_density;
-    struct quantity *other = is_mass ? &into->component.critical_density : &into->critical_mass_density;
-    const struct quantity_form *form = is_mass ? &CRITICAL_MASS_DENSITY : &FORM_MOLAR_DENSITY;
-    if (take_quantity(&reading, form, "critical-density", to) && finish_items(&reading)) {
-        if (other->given) {
-            struct quantity *before = arena_alloc(e->arena, 1, sizeof *before);
-            *before = *other;
-            to->overridden = before;
-        }
-        other->given = false;
-    }
+    struct statement_list *list = &into->critical_densities;
+    *ARENA_APPEND(e->arena, list) = statement;
 }
 
 #define QUANTITY(word, form, member) READ_QUANTITY(WORD_COMPONENT_##word, form, struct case_component, member)
@@ -181,7 +159,7 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_COMPONENT_UN_NUMBER, read_un_number),
     READ_ONCE(WORD_COMPONENT_HAZARD, read_hazard),
     READ_ONCE(WORD_COMPONENT_REFUSE, read_refuse),
-    READ_ONCE(WORD_COMPONENT_CRITICAL_DENSITY, read_critical_density),
+    READ_ONCE(WORD_COMPONENT_CRITICAL_DENSITY, keep_critical_density),
     QUANTITY(MOLAR_MASS, NULL, molar_mass),
     QUANTITY(CRITICAL_TEMPERATURE, NULL, critical_temperature),
     QUANTITY(CRITICAL_PRESSURE, &CRITICAL_PRESSURE, critical_pressure),
@@ -215,9 +193,9 @@ static struct pure_spec spec_of(const struct case_component *component, const st
 }
 
 /* Blocks of the library first, so that the deck's own word counts wherever it stands. */
-static void read_blocks(struct elaboration *e, const struct named *named, struct component_target *target)
+static void read_blocks(struct elaboration *e, const struct named *named, const char *group,
+                        struct component_target *target)
 {
-    const char *group = arena_format(e->arena, "component %s", named->name);
     for (int own = 0; own < 2; own++) {
         for (size_t i = 0; i < named->count; i++) {
             const struct statement *block = named->items[i];
@@ -229,14 +207,42 @@ static void read_blocks(struct elaboration *e, const struct named *named, struct
     }
 }
 
-static void settle_critical_density(struct component_target *target)
+/* True when the statement's value is mass per volume; false also when it has none, which its reading then reports. */
+static bool is_mass_density(struct elaboration *e, const struct statement *statement)
 {
-    const struct quantity *mass_density = &target->critical_mass_density;
-    if (mass_density->given && target->component.molar_mass.given) {
-        struct quantity *molar = &target->component.critical_density;
-        *molar = *mass_density;
-        molar->value /= target->component.molar_mass.value;
-        molar->uncertainty /= target->component.molar_mass.value;
+    const struct item *item = statement->items;
+    struct value value;
+    return item != NULL && item->kind == ITEM_EXPRESSION && value_of(e, item->value, &value) &&
+           dimension_equal(value.dimension, DIMENSION_DENSITY);
+}
+
+static void read_critical_density(struct elaboration *e, const struct statement *statement,
+                                  struct case_component *component)
+{
+    struct reading reading = read_items(e, statement);
+    const bool is_mass = is_mass_density(e, statement);
+    const struct quantity *molar_mass = &component->molar_mass;
+    if (is_mass && !molar_mass->given) {
+        diagnose(e->out, CODE_E214, statement->at, "a critical-density per mass needs the component's molar-mass");
+        return;
+    }
+    struct quantity *into = &component->critical_density;
+    const struct quantity_form *form = is_mass ? &FORM_DENSITY : &FORM_MOLAR_DENSITY;
+    if (!forbid_block(e, statement) || !take_quantity(&reading, form, statement->word, into)) {
+        return;
+    }
+    finish_items(&reading);
+    if (is_mass) {
+        into->value /= molar_mass->value;
+        into->uncertainty /= molar_mass->value;
+    }
+}
+
+static void settle_critical_density(struct elaboration *e, struct component_target *target, const char *group)
+{
+    e->group = group;
+    for (size_t i = 0; i < target->critical_densities.count; i++) {
+        read_critical_density(e, target->critical_densities.items[i], &target->component);
     }
 }
 
@@ -277,8 +283,11 @@ const struct case_component *build_component(struct elaboration *e, struct named
     const size_t before = trouble_so_far(e);
     struct component_target *target = arena_alloc(e->arena, 1, sizeof *target);
     target->component.name = named->name;
-    read_blocks(e, named, target);
-    settle_critical_density(target);
+    const char *group = arena_format(e->arena, "component %s", named->name);
+    const char *outer = e->group;
+    read_blocks(e, named, group, target);
+    settle_critical_density(e, target, group);
+    e->group = outer;
     check_order(e, &target->component);
     target->component.spec = spec_of(&target->component, equation_of(e, &target->component));
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;

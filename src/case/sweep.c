@@ -100,6 +100,16 @@ static bool take_parts(struct reading *reading, struct swept *swept, double from
     return true;
 }
 
+/* The unit as written; a gauge one counts from the ambient pressure, since swept pressures are kept absolute. */
+static void note_unit(struct elaboration *e, const struct expression *written, struct swept *swept)
+{
+    struct value value;
+    swept->sweep.shown = unit_written(e, written, swept->sweep.shown);
+    if (value_of(e, written, &value) && value.sort == SORT_GAUGE) {
+        swept->sweep.shown.offset = e->tree->ambient_pressure;
+    }
+}
+
 static bool take_range(struct reading *reading, struct swept *swept)
 {
     struct elaboration *e = reading->e;
@@ -114,7 +124,7 @@ static bool take_range(struct reading *reading, struct swept *swept)
     if (!read_value(e, swept->form, swept->name, last->value, &to) || !is_from) {
         return false;
     }
-    swept->sweep.shown = unit_written(e, first->value, swept->sweep.shown);
+    note_unit(e, first->value, swept);
     return reading->item != NULL && reading->item->kind == ITEM_BY ? take_step(reading, swept, from, to)
                                                                    : take_parts(reading, swept, from, to);
 }
@@ -134,7 +144,7 @@ static bool take_list(struct reading *reading, struct swept *swept)
             return false;
         }
         if (numbers.count == 1) {
-            swept->sweep.shown = unit_written(e, item->value, swept->sweep.shown);
+            note_unit(e, item->value, swept);
         }
     } while (reading->item != NULL && numbers.count < SWEEP_MOST);
     swept->sweep.values = numbers.items;

@@ -47,16 +47,15 @@ static const struct block_row ROWS[] = {
 static const struct block_form VESSEL = BLOCK_FORM(BLOCK_VESSEL, ROWS);
 
 /* A vessel is worked below the pressure it was tested at. */
-static void check_ratings(struct elaboration *e, const struct case_vessel *vessel)
+static void check_below_test(struct elaboration *e, const char *name, const struct quantity *rating,
+                             const struct quantity *test)
 {
-    const struct quantity *working = &vessel->working_pressure;
-    const struct quantity *test = &vessel->test_pressure;
-    if (!working->given || !test->given || working->value <= test->value) {
+    if (!rating->given || !test->given || rating->value <= test->value) {
         return;
     }
     struct diagnostic *said =
-        diagnose(e->out, CODE_E209, working->origin.at, "the working pressure '%s' is above the test pressure '%s'",
-                 working->origin.written, test->origin.written);
+        diagnose(e->out, CODE_E209, rating->origin.at, "the %s '%s' is above the test-pressure '%s'", name,
+                 rating->origin.written, test->origin.written);
     said->note = "the test pressure";
     said->note_at = test->origin.at;
 }
@@ -79,7 +78,9 @@ const struct case_vessel *build_vessel(struct elaboration *e, struct named *name
             diagnose(e->out, CODE_E214, named->at, "vessel '%s' has no water-capacity", shortened(e, named->name));
         diagnostic_hint(e->out, said, "as in: water-capacity 50.2 L");
     }
-    check_ratings(e, &target->vessel);
+    const struct quantity *test = &target->vessel.test_pressure;
+    check_below_test(e, "working-pressure", &target->vessel.working_pressure, test);
+    check_below_test(e, "service-pressure", &target->vessel.service_pressure, test);
     target->vessel.fitting_count = target->fittings.count;
     target->vessel.fittings = target->fittings.items;
     mark_file_used(e, block->at);
