@@ -300,7 +300,7 @@ static bool take_uncertainty(struct reading *reading, const struct quantity_form
     }
     *last = item->at;
     const struct item *next = reading->item;
-    const bool is_relative = take_word(reading, "relative");
+    const bool is_relative = take_word(reading, vocabulary_rows()[WORD_SPREAD_RELATIVE].word);
     if (is_relative) {
         *last = next->at;
     }
