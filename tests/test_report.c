@@ -117,6 +117,10 @@ static void wrapping_breaks_at_blanks_and_cuts_only_longer_words(void **state)
     for (size_t i = 0; i < lines.count; i++) {
         assert_string_equal(lines.items[i], expected[i]);
     }
+    const struct page_lines unit = page_wrap(*state, "charge at most 65 degC", 18, false);
+    assert_string_equal(unit.items[0], "charge at most");
+    assert_string_equal(unit.items[1], "65 degC");
+    assert_string_equal(page_wrap(*state, "65 degC", 5, false).items[0], "65");
     const struct page_lines head = page_wrap(*state, "liquid-volume", 8, true);
     assert_int_equal(head.count, 2);
     assert_string_equal(head.items[0], "liquid-");

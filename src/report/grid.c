@@ -7,6 +7,9 @@
 /* Blanks between columns; the least columns that words are wrapped to, a head is, and what stands beside a lead is. */
 enum { WIDEST_GAP = 3, NARROWEST_GAP = 2, NARROWEST_WORDS = 24, NARROWEST_HEAD = 8, NARROWEST_SPAN = 20 };
 
+/* Words wrapped to fewer columns than this are worth a narrower gap. */
+enum { TIGHT_WORDS = 36 };
+
 /* A grid drawn in blocks repeats at most so many columns. */
 enum { MOST_REPEATED = 3 };
 
@@ -206,25 +209,40 @@ static size_t telling_columns(const struct layout *layout)
     return 1;
 }
 
-/* Finds widths and a gap at which the whole grid fits the page; or else the narrowest words and what to repeat. */
-static void fit(struct layout *layout)
+/* Wraps words as loosely as the whole grid fits the page with that gap; false when it does not fit at all. */
+static bool fits_with_gap(struct layout *layout, size_t gap)
 {
     const size_t room = PAGE_WIDTH - layout->indent;
     for (size_t c = 0; c < layout->grid->column_count; c++) {
         layout->limit[c] = room;
         measure(layout, c);
     }
-    layout->gap = WIDEST_GAP;
+    layout->gap = gap;
     layout->lead = 1;
     size_t reach;
     do {
         reach = place_columns(layout, 1, layout->grid->column_count);
     } while (reach > room && tighten(layout, reach - room));
-    if (reach > room) {
-        layout->gap = NARROWEST_GAP;
-        reach = place_columns(layout, 1, layout->grid->column_count);
+    return reach <= room;
+}
+
+static bool has_tight_words(const struct layout *layout)
+{
+    for (size_t c = 0; c < layout->grid->column_count; c++) {
+        if (layout->limit[c] < TIGHT_WORDS) {
+            return true;
+        }
     }
-    if (reach > room) {
+    return false;
+}
+
+/* Finds widths and a gap at which the whole grid fits the page; or else the narrowest words and what to repeat. */
+static void fit(struct layout *layout)
+{
+    if (fits_with_gap(layout, WIDEST_GAP) && !has_tight_words(layout)) {
+        return;
+    }
+    if (!fits_with_gap(layout, NARROWEST_GAP)) {
         layout->gap = WIDEST_GAP;
         layout->lead = telling_columns(layout);
     }

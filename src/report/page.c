@@ -2,6 +2,9 @@
 
 #include <string.h>
 
+/* A word behind a number is taken for its unit up to so many columns. */
+enum { LONGEST_UNIT = 5 };
+
 /* Bytes of the UTF-8 sequence at `text`, or 0 when it is broken, overlong or a control character. */
 static size_t sequence_length(const unsigned char *text)
 {
@@ -65,23 +68,41 @@ static size_t word_columns(const char *text, size_t begin)
     return text_columns(text + begin, strcspn(text + begin, " "));
 }
 
-/* Where to end a line: after the last word that fits; in the middle of a word that fits on no line. */
+/* True at the blank between a number and what is most likely its unit. */
+static bool is_before_unit(const char *text, size_t blank)
+{
+    const char before = blank > 0 ? text[blank - 1] : ' ';
+    const char after = text[blank + 1];
+    const bool is_word = after == '%' || (after >= 'A' && after <= 'Z') || (after >= 'a' && after <= 'z');
+    return before >= '0' && before <= '9' && is_word && word_columns(text, blank + 1) <= LONGEST_UNIT;
+}
+
+/* Where to end a line: after the last word that fits, but not between a number and its unit where there is another
+ * place; in the middle of a word that fits on no line. */
 static size_t line_bytes(const char *text, size_t width, bool at_hyphens)
 {
     const size_t fitting = bytes_of_columns(text, width);
-    if (text[fitting] == '\0' || text[fitting] == ' ') {
+    if (text[fitting] == '\0') {
         return fitting;
     }
     const size_t leading = strspn(text, " ");
+    size_t second_best = 0;
     for (size_t end = fitting; end > leading; end--) {
-        if (at_hyphens && text[end - 1] == '-' && end > 1) {
+        if (at_hyphens && text[end - 1] == '-' && end > 1 && text[fitting] != ' ') {
             return end;
         }
-        if (text[end] == ' ') {
-            return word_columns(text, end + 1) > width ? fitting : end;
+        if (text[end] != ' ') {
+            continue;
         }
+        if (word_columns(text, end + 1) > width) {
+            return fitting;
+        }
+        if (!is_before_unit(text, end)) {
+            return end;
+        }
+        second_best = second_best > end ? second_best : end;
     }
-    return fitting;
+    return second_best > 0 ? second_best : fitting;
 }
 
 static size_t without_trailing_blanks(const char *text, size_t length)
