@@ -146,7 +146,10 @@ static bool take_list(struct reading *reading, struct swept *swept)
         if (numbers.count == 1) {
             note_unit(e, item->value, swept);
         }
-    } while (reading->item != NULL && numbers.count < SWEEP_MOST);
+    } while (reading->item != NULL);
+    if (numbers.count > SWEEP_MOST) {
+        return report_count(e, swept->at, (double)numbers.count);
+    }
     swept->sweep.values = numbers.items;
     swept->sweep.count = numbers.count;
     return true;
