@@ -40,7 +40,8 @@ static void list_rows(struct bench *bench, double at_190, double at_250)
     struct filled_vessel *it = bench->it;
     bench->rows[0] = (struct listed_row){.test_pressure = 190.0 * BAR, .filling_ratio = {true, at_190}};
     bench->rows[1] = (struct listed_row){.test_pressure = 250.0 * BAR, .filling_ratio = {true, at_250}};
-    it->entry = (struct case_entry){.name = "UN 1013", .component = &it->component, .row_count = 2, .rows = bench->rows};
+    it->entry = (struct case_entry){.name = "UN 1013", .component = &it->component, .row_count = 2,
+                                    .rows = bench->rows};
     it->entries[0] = &it->entry;
     it->sheet.entry_count = 1;
     it->sheet.entries = it->entries;
@@ -544,8 +545,8 @@ static const struct result *run_text(const char *text, struct arena *arena)
 }
 
 #define REGULATIONS                                                                                                    \
-    "case \"limits\" { number \"T\" }\nuse \"gases\"\nuse \"rules/model-regulations\"\nuse \"entries/adr-2025\"\n"        \
-    "methods { lead reference }\n"
+    "case \"limits\" { number \"T\" }\nuse \"gases\"\nuse \"rules/model-regulations\"\n"                                \
+    "use \"entries/adr-2025\"\nmethods { lead reference }\n"
 
 /* Largest filling ratios with p(65 degC) at the test pressure, and the low-pressure criterion at 50 degC, computed with
  * the short equations of Span and Wagner (2003) and Lemmon and Span (2006): trade notes, 6.1. Two equations for one gas

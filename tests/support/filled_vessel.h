@@ -59,7 +59,8 @@ static inline struct filled_vessel *filled_vessel_create(void)
     it->fluid = (struct case_fluid){.name = "carbon-dioxide", .count = 1, .components = it->components,
                                     .fractions = it->fractions, .molar_mass = 0.0440098,
                                     .spec = {.count = 1, .pure = it->pure}};
-    it->vessel = (struct case_vessel){.name = "fifty", .water_capacity = given(0.0502), .test_pressure = given(250.0 * BAR)};
+    it->vessel = (struct case_vessel){.name = "fifty", .water_capacity = given(0.0502),
+                                      .test_pressure = given(250.0 * BAR)};
     it->sheet = (struct case_sheet){
         .kind = SHEET_PERMISSIBLE_CHARGE, .fluid = &it->fluid, .vessel = &it->vessel,
         .units = {.temperature = {"degC", 1.0, CELSIUS}, .pressure = {"bara", BAR, 0.0},
