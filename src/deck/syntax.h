@@ -26,10 +26,10 @@ enum expression_kind {
 
 struct expression {
     enum expression_kind kind;
-    struct location at;
+    unsigned depth;          /* operations inside one another below this one; bounded, so that recursion is safe */
+    struct location at;      /* with the unit, and with parentheses around the whole */
     double number;
     const char *unit;        /* NULL: no unit written */
-    struct location unit_at;
     const char *name;        /* EXPRESSION_NAME */
     const struct expression *left, *right;
 };

@@ -153,6 +153,13 @@ const char *unit_definition(const struct unit *row)
     return definitions[row - rows];
 }
 
+bool dimension_multiply(struct dimension a, struct dimension b, int power, struct dimension *out)
+{
+    *out = a;
+    raise_exponents(out, b, power);
+    return is_bounded(*out);
+}
+
 bool dimension_equal(struct dimension a, struct dimension b)
 {
     return a.kg == b.kg && a.m == b.m && a.s == b.s && a.K == b.K && a.mol == b.mol && a.A == b.A;

@@ -37,8 +37,8 @@ struct unit {
 };
 
 /* The unit written as `symbol` ("bar", "kg/L", "J/mol/K"); composed ones are parsed: atoms joined by '.' and '/', each
- * perhaps with an integer power ("m3", "s-2"). False when it is not known. A composed unit's shown.symbol is the pointer
- * passed in, an atom's the table's. Gauge, absolute and point units do not compose. */
+ * perhaps with an integer power ("m3", "s-2"). False when it is not known. A composed unit's shown.symbol is the
+ * pointer passed in, an atom's the table's. Gauge, absolute and point units do not compose. */
 bool unit_find(const char *symbol, size_t length, struct unit *out);
 
 /* All atoms of the table, for help and for "did you mean". */
@@ -46,6 +46,9 @@ const struct unit *unit_rows(size_t *count);
 const char *unit_definition(const struct unit *row); /* the definition behind the factor, as "0.45359237 kg, exact" */
 
 bool dimension_equal(struct dimension a, struct dimension b);
+
+/* The dimension of a times b to the given power (1 or -1); false when an exponent gets beyond what makes sense. */
+bool dimension_multiply(struct dimension a, struct dimension b, int power, struct dimension *out);
 
 /* A name for a dimension ("pressure", "temperature", "amount per volume"), never NULL: unnamed ones are spelled out in
  * base units into the arena. */

@@ -41,7 +41,8 @@ const struct vocabulary_row *vocabulary_find(enum vocabulary_block block, const 
 {
     const struct vocabulary_row *found = find_own(block, word);
     for (size_t i = 0; i < 2 && !found && block < BLOCKS; i++) {
-        found = find_own(blocks[block].also[i], word);
+        const enum vocabulary_block also = blocks[block].also[i];
+        found = also == block ? NULL : find_own(also, word);
     }
     return found;
 }
