@@ -100,6 +100,21 @@ static void a_liquefied_gas_gets_its_ratio_rounded_down_and_the_mass_follows(voi
     }
 }
 
+/* A limit that is a multiple of the step is found from a hair below it and must not lose a step. */
+static void a_ratio_that_is_a_multiple_of_the_step_keeps_it(void **state)
+{
+    (void)state;
+    static const double ratios[] = {0.68, 0.57, 0.29, 0.07};
+    for (size_t i = 0; i < sizeof ratios / sizeof *ratios; i++) {
+        struct bench *bench = set_up_bench();
+        bench->predicates[0] = compared(288.15, 288.15, SYMBOL_FILLING_RATIO, RELATION_AT_MOST,
+                                        formula_number(bench->it, ratios[i]));
+        filled_vessel_method(bench->it, "peng-robinson");
+        assert_close(fact_value(answer(bench), "filling-ratio"), ratios[i], 1e-14, "the ratio of the rule");
+        tear_down_bench(bench);
+    }
+}
+
 static void a_compressed_gas_is_filled_to_a_pressure_and_not_rounded(void **state)
 {
     (void)state;
@@ -270,6 +285,25 @@ static void a_row_replaces_only_the_criterion_marked_for_it(void **state)
     tear_down_bench(bench);
 }
 
+static void of_two_entries_the_smaller_ratio_applies(void **state)
+{
+    (void)state;
+    for (int first = 0; first <= 1; first++) {
+        struct bench *bench = set_up_bench();
+        list_rows(bench, 0.61, 0.72);
+        const struct listed_row other_row = {.test_pressure = 230.0 * BAR, .filling_ratio = {true, 0.69}};
+        const struct case_entry other = {.name = "UN 1014", .row_count = 1, .rows = &other_row};
+        const struct case_entry *entries[2];
+        entries[first] = &bench->it->entry;
+        entries[1 - first] = &other;
+        bench->it->sheet.entries = entries;
+        bench->it->sheet.entry_count = 2;
+        filled_vessel_method(bench->it, "peng-robinson");
+        assert_close(fact_value(answer(bench), "filling-ratio"), 0.69, 1e-14, "the smaller of 0.72 and 0.69");
+        tear_down_bench(bench);
+    }
+}
+
 static void a_listed_working_pressure_stands_for_the_criterion_of_compressed_gases(void **state)
 {
     (void)state;
@@ -283,6 +317,7 @@ static void a_listed_working_pressure_stands_for_the_criterion_of_compressed_gas
     assert_close(peng_robinson_pressure(fact_value(sheet, "mass"), 288.15), 30.0 * BAR + GAUGE_ZERO, 1e-9,
                  "the listed working pressure at 15 degC");
     assert_close(fact_value(sheet, "listed-working-pressure"), 30.0 * BAR + GAUGE_ZERO, 1e-15, "as listed");
+    assert_close(fact_value(sheet, "settled-gauge-pressure"), 30.0 * BAR + GAUGE_ZERO, 1e-9, "what governs");
     tear_down_bench(bench);
 }
 
@@ -545,7 +580,7 @@ static const struct result *run_text(const char *text, struct arena *arena)
 }
 
 #define REGULATIONS                                                                                                    \
-    "case \"limits\" { number \"T\" }\nuse \"gases\"\nuse \"rules/model-regulations\"\n"                                \
+    "case \"limits\" { number \"T\" }\nuse \"gases\"\nuse \"rules/model-regulations\"\n" \
     "use \"entries/adr-2025\"\nmethods { lead reference }\n"
 
 /* Largest filling ratios with p(65 degC) at the test pressure, and the low-pressure criterion at 50 degC, computed with
@@ -617,6 +652,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(a_liquefied_gas_gets_its_ratio_rounded_down_and_the_mass_follows),
+        cmocka_unit_test(a_ratio_that_is_a_multiple_of_the_step_keeps_it),
         cmocka_unit_test(a_compressed_gas_is_filled_to_a_pressure_and_not_rounded),
         cmocka_unit_test(gross_weight_is_tare_and_charge),
         cmocka_unit_test(the_gas_volume_is_real_at_15_degc_and_1_bar),
@@ -625,6 +661,7 @@ int main(void)
         cmocka_unit_test(a_listed_row_acts_as_the_sheet_asks),
         cmocka_unit_test(a_replaced_criterion_is_met_by_the_row_with_the_computation_beside_it),
         cmocka_unit_test(a_row_replaces_only_the_criterion_marked_for_it),
+        cmocka_unit_test(of_two_entries_the_smaller_ratio_applies),
         cmocka_unit_test(a_listed_working_pressure_stands_for_the_criterion_of_compressed_gases),
         cmocka_unit_test(the_strictest_is_the_method_with_the_smallest_mass),
         cmocka_unit_test(a_shown_method_never_governs),

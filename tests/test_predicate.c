@@ -198,7 +198,9 @@ static void a_rating_the_vessel_lacks_leaves_the_rule_undecided(void **state)
     struct method_run *ideal = filled_vessel_method(it, "ideal-gas");
     const struct predicate rule = compared(288.15, 288.15, SYMBOL_PRESSURE, RELATION_AT_MOST,
                                            formula_share(it, 1.0, SYMBOL_WORKING_PRESSURE));
-    assert_int_equal(predicate_check(&it->run, ideal, &rule, 3.0).answer, ANSWER_FAILED);
+    const struct predicate_finding finding = predicate_check(&it->run, ideal, &rule, 3.0);
+    assert_int_equal(finding.answer, ANSWER_CANNOT);
+    assert_string_equal(finding.words, "the vessel lacks the rating named");
     arena_free(it->arena);
 }
 
@@ -440,6 +442,24 @@ static void a_worst_temperature_between_the_ends_is_located_to_a_millikelvin(voi
     arena_free(it->arena);
 }
 
+static void liquid_full_just_below_the_critical_temperature_is_seen(void **state)
+{
+    (void)state;
+    struct filled_vessel *it = filled_vessel_create();
+    struct method_run *method = filled_vessel_method(it, "peng-robinson");
+    const struct predicate level =
+        compared(280.0, 320.0, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
+    assert_int_equal(fluid_set_t(method->at_t, method->fluid, 0.99985 * 304.1282), ANSWER_OK);
+    struct saturation saturation;
+    assert_int_equal(saturation_at_t(method->at_t, &saturation), ANSWER_OK);
+    /* Liquid-full from 0.99985 Tc on: 0.05 K, between two steps of the search. */
+    const double mass = 0.0502 * 0.0440098 / saturation.liquid_volume;
+    const struct predicate_finding finding = predicate_check(&it->run, method, &level, mass);
+    assert_int_equal(finding.answer, ANSWER_OK);
+    assert_false(finding.holds);
+    arena_free(it->arena);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -464,6 +484,7 @@ int main(void)
         cmocka_unit_test(the_limits_of_the_phase_rules_are_the_saturated_densities),
         cmocka_unit_test(a_largest_mass_is_met_and_a_little_more_is_not),
         cmocka_unit_test(a_worst_temperature_between_the_ends_is_located_to_a_millikelvin),
+        cmocka_unit_test(liquid_full_just_below_the_critical_temperature_is_seen),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -49,6 +49,19 @@ static bool replaces_choice(const struct listed_row *row, const struct listed_ro
            row->filling_ratio.value < chosen->filling_ratio.value;
 }
 
+/* Of several entries one with a row that applies, and of several rows the smaller ratio. */
+static bool is_better_entry(const struct listed_choice *choice, const struct listed_choice *chosen)
+{
+    if (chosen->entry == NULL) {
+        return true;
+    }
+    if (choice->row == NULL || chosen->row == NULL) {
+        return choice->row != NULL;
+    }
+    return choice->row->filling_ratio.given && chosen->row->filling_ratio.given &&
+           choice->row->filling_ratio.value < chosen->row->filling_ratio.value;
+}
+
 static void choose_row(struct permissible *sheet, const struct case_entry *entry)
 {
     const struct quantity *test = &sheet->run->sheet->vessel->test_pressure;
@@ -66,7 +79,7 @@ static void choose_row(struct permissible *sheet, const struct case_entry *entry
         }
     }
     choice.lowest = lowest;
-    if (lowest != NULL && (sheet->listed.entry == NULL || (sheet->listed.row == NULL && choice.row != NULL))) {
+    if (lowest != NULL && is_better_entry(&choice, &sheet->listed)) {
         sheet->listed = choice;
     }
 }

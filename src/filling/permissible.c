@@ -203,6 +203,21 @@ static void warn_if_indicative(const struct permissible *sheet)
     }
 }
 
+/* What a compressed gas is filled to. */
+static void add_settled_pressure(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    struct method_run *method = governing_method(sheet);
+    struct vessel_contents contents;
+    if (!sheet->is_by_ratio &&
+        contents_at(run, method, sheet->mass, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
+        struct fact *fact = sheet_add_fact(run->result, run->out, "settled-gauge-pressure", contents.pressure,
+                                           look_gauge(run));
+        fact->method = method->name;
+        fact->remark = "at 15 degC";
+    }
+}
+
 static void tell_charge(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
@@ -220,6 +235,7 @@ static void tell_charge(const struct permissible *sheet)
         fact->method = method->name;
         fact->remark = "of the computed limit";
     }
+    add_settled_pressure(sheet);
     sheet_add_words(run->result, run->out, "governed-by", governed_by(sheet, criterion, limit));
     sheet_add_words(run->result, run->out, "governing-criterion", sheet->criteria[criterion].predicate->written);
     if (sheet->criteria[criterion].kind != CRITERION_LISTED) {

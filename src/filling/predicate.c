@@ -86,6 +86,17 @@ static bool needs_contents(const struct predicate *predicate)
            mentions(predicate, SYMBOL_LIQUID_DENSITY) || mentions(predicate, SYMBOL_LIQUID_VOLUME);
 }
 
+static bool lacks_rating(const struct case_vessel *vessel, const struct formula *bound)
+{
+    static const enum case_symbol ratings[] = {SYMBOL_TEST_PRESSURE, SYMBOL_WORKING_PRESSURE, SYMBOL_SERVICE_PRESSURE};
+    for (size_t i = 0; i < sizeof ratings / sizeof *ratings; i++) {
+        if (formula_mentions(bound, ratings[i]) && isnan(vessel_symbol(vessel, ratings[i]))) {
+            return true;
+        }
+    }
+    return false;
+}
+
 /* ---- the kinds of predicate -------------------------------------------------------------------------------------- */
 
 static struct predicate_finding undecided(enum answer answer, double temperature, const char *words)
@@ -168,6 +179,9 @@ static struct predicate_finding compare_at(const struct sheet_run *run, const st
     struct symbols symbols = {run, mass, finding.has_contents ? contents : NULL};
     const double value = symbol_value(&symbols, predicate->quantity);
     const double bound = formula_value(predicate->bound, symbol_value, &symbols);
+    if (lacks_rating(run->sheet->vessel, predicate->bound)) {
+        return undecided(ANSWER_CANNOT, finding.worst_temperature, "the vessel lacks the rating named");
+    }
     if (!isfinite(value) || !isfinite(bound)) {
         return undecided(ANSWER_FAILED, finding.worst_temperature,
                          isfinite(value) ? "the bound has no value here" : "the quantity has no value here");
