@@ -509,6 +509,8 @@ const char *lack_words(const struct case_fluid *fluid, const struct fluid_lack_r
         return arena_format(arena, "no acentric factor is given for %s", component);
     case LACK_EQUATION:
         return arena_format(arena, "no reference equation is given for %s", component);
+    case LACK_PARAMETERS:
+        return arena_format(arena, "no parameters of this method are given for %s", component);
     case LACK_MIXTURE:
         return "it serves pure gases only";
     case LACK_METHOD:

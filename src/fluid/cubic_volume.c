@@ -38,7 +38,7 @@ double cubic_reduced_pressure_slope(const struct cubic_form *form, double theta,
 double cubic_ln_reduced_fugacity(const struct cubic_form *form, double theta, double y)
 {
     const double span = form->delta1 - form->delta2;
-    const double attraction = log1p(span * y / (1.0 + form->delta2 * y)) / span;
+    const double attraction = span > 0.0 ? log1p(span * y / (1.0 + form->delta2 * y)) / span : y;
     const double Z_less_1 = y / (1.0 - y) - theta * y / ((1.0 + form->delta1 * y) * (1.0 + form->delta2 * y));
     return log(y / (1.0 - y)) - theta * attraction + Z_less_1;
 }

@@ -38,3 +38,12 @@ enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, doub
     at_t->temperature = temperature;
     return fluid->ops->set_t(at_t);
 }
+
+enum answer fluid_pair(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out)
+{
+    const struct fluid *fluid = at_t->fluid;
+    if (fluid->ops->pair == NULL || i >= fluid->count || j >= fluid->count || i == j) {
+        return ANSWER_CANNOT;
+    }
+    return fluid->ops->pair(at_t, i, j, out);
+}

@@ -90,12 +90,20 @@ enum fluid_lack {
     LACK_MIXTURE,         /* the method is for pure gases */
     LACK_CRITICAL_POINT,  /* `component` has no critical temperature or pressure */
     LACK_ACENTRIC,        /* `component` has no acentric factor */
-    LACK_EQUATION         /* `component` has no reference equation */
+    LACK_EQUATION,        /* `component` has no reference equation */
+    LACK_PARAMETERS       /* `component` has no parameters of this method's own */
 };
 
 struct fluid_lack_report {
     enum fluid_lack lack;
     size_t component; /* index into the spec */
+};
+
+/* The interaction a method uses for a pair, and where it has it from. */
+struct pair_parameter {
+    enum pair_origin origin;
+    double kij; /* 1, at the temperature set */
+    double lij; /* 1 */
 };
 
 struct fluid;
@@ -121,6 +129,10 @@ struct fluid_ops {
     enum answer (*tp)(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
                       struct explicit_phase *out);
 
+    /* `volume` and then `tv` there, for a method that does better with both at once; NULL: one after the other. */
+    enum answer (*volume_and_tv)(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
+                                 unsigned want, double *volume, int *roots, struct helmholtz *out);
+
     /* The volume (m3, for all of n) of the root on `branch` at `pressure`; BRANCH_STABLE: the one of lower Gibbs
      * energy. *roots is the number of mechanically stable roots found (1 or 2). NULL: phase.c solves for it. */
     enum answer (*volume)(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
@@ -131,6 +143,8 @@ struct fluid_ops {
     /* Pure fluids only. */
     enum answer (*critical)(const struct fluid *fluid, struct critical_point *out);
     enum answer (*saturation_start)(const struct fluid_at_t *at_t, struct saturation_start *out);
+    /* The interaction of components i and j. NULL: the method has no such parameters. */
+    enum answer (*pair)(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
     /* Pure fluids only: the numbers behind the pressure of one phase (fluid/explanation.h). NULL: not explained. */
     enum answer (*explain)(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
                            struct explanation *out);
@@ -166,5 +180,8 @@ struct fluid_at_t *fluid_at_t_create(const struct fluid *fluid, struct arena *ar
 
 /* Sets the temperature (K, greater than zero and finite); must be called before any property is asked for. */
 enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature);
+
+/* The interaction used for two different components of a mixture; ANSWER_CANNOT where the method has none. */
+enum answer fluid_pair(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
 
 #endif

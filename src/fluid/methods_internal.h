@@ -5,8 +5,15 @@
 #include "fluid/fluid.h"
 
 extern const struct fluid_ops ideal_gas_ops;
-extern const struct fluid_ops peng_robinson_ops;
+extern const struct fluid_ops van_der_waals_ops;
+extern const struct fluid_ops redlich_kwong_ops;
 extern const struct fluid_ops soave_redlich_kwong_ops;
+extern const struct fluid_ops peng_robinson_ops;
+extern const struct fluid_ops peng_robinson_1978_ops;
+extern const struct fluid_ops peng_robinson_twu_ops;
+extern const struct fluid_ops translated_peng_robinson_ops;
+extern const struct fluid_ops translated_redlich_kwong_ops;
+extern const struct fluid_ops quantum_peng_robinson_ops;
 extern const struct fluid_ops reference_ops;
 
 #endif

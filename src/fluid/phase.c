@@ -57,14 +57,14 @@ static double total(const double n[], size_t count)
     return sum;
 }
 
+/* Zero times a number is zero, times anything else it is not: one test for them all. */
 static bool all_finite(const double values[], size_t count)
 {
+    double sum = 0.0;
     for (size_t i = 0; i < count; i++) {
-        if (!isfinite(values[i])) {
-            return false;
-        }
+        sum += 0.0 * values[i];
     }
-    return true;
+    return isfinite(sum);
 }
 
 /* ANSWER_OK only if everything that was wanted is a number. */
@@ -123,7 +123,7 @@ static unsigned helmholtz_want_of(unsigned want)
  * volume, not from ln phi + ln p, so that it also exists where the pressure is not positive. */
 static void set_fugacities(const double *F_n, size_t count, double RT, unsigned want, struct phase *out)
 {
-    const double ln_ideal_pressure = log(out->amount * RT / out->volume);
+    const double ln_ideal_pressure = want & PHASE_LN_F ? log(out->amount * RT / out->volume) : 0.0;
     const double ln_Z = want & PHASE_LN_PHI ? log(out->Z) : 0.0;
     for (size_t i = 0; i < count; i++) {
         const double F_i = F_n[i];
@@ -166,46 +166,46 @@ static void set_residuals(const struct helmholtz *F, double gas_constant, struct
     out->residual_heat_capacity_r = cv_r - T * out->dp_dt * out->dp_dt / (out->dp_dv * n * R) - 1.0;
 }
 
-/* The phase at `volume`. With `pressure` not NULL the pressure is the one the volume was solved for, to its last
- * digit, rather than what rounding in a stiff liquid makes of it. */
-static enum answer phase_at_volume(const struct fluid_at_t *at_t, double volume, const double *pressure,
-                                   const double n[], unsigned want, struct phase *out)
+/* Where tv puts the arrays of F: in place of what will be made from them. */
+static struct helmholtz arrays_for(const struct fluid *fluid, unsigned want, const struct phase *out, double *single)
+{
+    return (struct helmholtz){
+        .F_n = want & PHASE_LN_PHI ? out->ln_phi : out->ln_f_over_x,
+        /* A pure fluid's dp/dn needs no scratch. */
+        .F_Vn = want & PHASE_DP_DN ? out->dp_dn : fluid->count == 1 ? single : out->scratch,
+        .F_Tn = out->dln_phi_dt,
+        .F_nn = out->dln_phi_dn,
+    };
+}
+
+/* The phase from what tv said at `volume`. With `pressure` not NULL the pressure is the one the volume was solved for,
+ * to its last digit, rather than what rounding in a stiff liquid makes of it. */
+static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, const double *pressure,
+                                 const double n[], const struct helmholtz *F, unsigned want, struct phase *out)
 {
     const struct fluid *fluid = at_t->fluid;
     const size_t count = fluid->count;
     const double RT = fluid->gas_constant * at_t->temperature;
-    double single; /* a pure fluid's dp/dn needs no scratch */
-    double *dp_dn = want & PHASE_DP_DN ? out->dp_dn : count == 1 ? &single : out->scratch;
-    struct helmholtz F = {
-        .F_n = want & PHASE_LN_PHI ? out->ln_phi : out->ln_f_over_x,
-        .F_Vn = dp_dn,
-        .F_Tn = out->dln_phi_dt,
-        .F_nn = out->dln_phi_dn,
-    };
-    const enum answer answer = fluid->ops->tv(at_t, volume, n, helmholtz_want_of(want), &F);
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
     out->temperature = at_t->temperature;
     out->volume = volume;
     out->amount = total(n, count);
-    out->pressure = pressure != NULL ? *pressure : RT * (out->amount / volume - F.F_V);
+    out->pressure = pressure != NULL ? *pressure : RT * (out->amount / volume - F->F_V);
     out->Z = out->pressure * volume / (out->amount * RT);
-    out->dp_dv = -RT * (out->amount / (volume * volume) + F.F_VV);
+    out->dp_dv = -RT * (out->amount / (volume * volume) + F->F_VV);
     if (want & (PHASE_LN_PHI | PHASE_DLN_PHI_DP | PHASE_RESIDUAL) && !(out->pressure > 0.0)) {
         return isfinite(out->pressure) ? ANSWER_OUT_OF_RANGE : ANSWER_FAILED;
     }
     if (want & (PHASE_DLN_PHI_DT | PHASE_RESIDUAL)) {
-        out->dp_dt = fluid->gas_constant * (out->amount / volume - F.F_V - at_t->temperature * F.F_TV);
+        out->dp_dt = fluid->gas_constant * (out->amount / volume - F->F_V - at_t->temperature * F->F_TV);
     }
     if (want & (PHASE_LN_PHI | PHASE_LN_F)) {
-        set_fugacities(F.F_n, count, RT, want, out);
+        set_fugacities(F->F_n, count, RT, want, out);
     }
     if (want & (PHASE_DLN_PHI_DP | PHASE_DLN_PHI_DT | PHASE_DLN_PHI_DN | PHASE_DP_DN)) {
-        set_derivatives(dp_dn, count, RT, want, out);
+        set_derivatives(F->F_Vn, count, RT, want, out);
     }
     if (want & PHASE_RESIDUAL) {
-        set_residuals(&F, fluid->gas_constant, out);
+        set_residuals(F, fluid->gas_constant, out);
     }
     return check_phase(out, count, want);
 }
@@ -255,13 +255,21 @@ enum answer phase_tp(const struct fluid_at_t *at_t, double pressure, const doubl
     if (ops->form == FLUID_FROM_TP) {
         return phase_from_tp(at_t, pressure, n, branch, want, out);
     }
-    double volume;
-    const enum answer answer = ops->volume(at_t, pressure, n, branch, &volume, &out->roots);
+    double volume, single;
+    struct helmholtz F = arrays_for(at_t->fluid, want, out, &single);
+    const unsigned needed = helmholtz_want_of(want);
+    enum answer answer;
+    if (ops->volume_and_tv != NULL) {
+        answer = ops->volume_and_tv(at_t, pressure, n, branch, needed, &volume, &out->roots, &F);
+    } else {
+        answer = ops->volume(at_t, pressure, n, branch, &volume, &out->roots);
+        answer = answer != ANSWER_OK ? answer : ops->tv(at_t, volume, n, needed, &F);
+    }
     if (answer != ANSWER_OK) {
         return answer;
     }
     out->branch = branch;
-    return phase_at_volume(at_t, volume, &pressure, n, want, out);
+    return phase_from_tv(at_t, volume, &pressure, n, &F, want, out);
 }
 
 enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want, struct phase *out)
@@ -273,7 +281,13 @@ enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double 
     if (!(volume > phase_smallest_volume(at_t, n)) || !isfinite(volume)) {
         return ANSWER_OUT_OF_RANGE;
     }
+    double single;
+    struct helmholtz F = arrays_for(at_t->fluid, want, out, &single);
+    const enum answer answer = ops->tv(at_t, volume, n, helmholtz_want_of(want), &F);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
     out->branch = BRANCH_STABLE;
     out->roots = 0;
-    return phase_at_volume(at_t, volume, NULL, n, want, out);
+    return phase_from_tv(at_t, volume, NULL, n, &F, want, out);
 }

@@ -103,6 +103,41 @@ struct reference_spec {
     struct saturation_guess pressure_guess, liquid_guess, vapour_guess;
 };
 
+/* Parameters of a component that belong to one cubic equation alone. A member set to zero (or not given) is left out
+ * of the equation. Method words are those of fluid/methods.c. */
+struct cubic_set {
+    const char *method;                                          /* the method's word */
+    struct optional critical_temperature, critical_pressure;     /* K, Pa, the set's own; absent: the component's */
+    bool has_twu;                                                /* L, M, N are given */
+    double L, M, N;                                              /* alpha = Tr^(N (M - 1)) exp(L (1 - Tr^(N M))) */
+    double shift;                                                /* c, m3/mol, in v = v_eos - c */
+    /* K, in b(T) = b ((1 + A / (T + B)) / (1 + A / (Tc + B)))^3 */
+    double covolume_A, covolume_B;
+};
+
+/* How often a molecule holds a group of the group-contribution method; groups are numbered by whoever fills in the
+ * spec, alike in all its parts. */
+struct group_share {
+    size_t group;
+    double number;
+};
+
+/* The interaction of two different groups, in either order: A and B in Pa. */
+struct group_pair {
+    size_t first, second;
+    double A, B;
+};
+
+/* A pair's constants for one method: a_ij = (1 - kij) sqrt(a_i a_j), b_ij = (1 - lij) (b_i + b_j) / 2. */
+enum pair_origin { PAIR_FROM_DECK, PAIR_FROM_GROUPS, PAIR_FROM_LIBRARY, PAIR_FROM_NOTHING };
+
+struct pair_constant {
+    size_t first, second;    /* indices of the components, in either order */
+    const char *method;      /* the method's word */
+    enum pair_origin origin; /* PAIR_FROM_DECK or PAIR_FROM_LIBRARY */
+    double kij, lij;
+};
+
 /* A pure substance as every method sees it; what a method needs and does not find makes it unable to answer. */
 struct pure_spec {
     const char *name;
@@ -111,13 +146,22 @@ struct pure_spec {
     struct optional acentric;
     struct optional triple_temperature;     /* K */
     const struct reference_spec *reference; /* NULL where none is published */
+    size_t cubic_set_count;
+    const struct cubic_set *cubic_sets; /* at most one for each method */
+    size_t group_count;                 /* 0: no assignment to groups */
+    const struct group_share *groups;
 };
 
-/* A fluid for one method: its substances and, row by row, their pair parameters. */
+/* A fluid: its substances and what is known of their pairs. A cubic method takes a pair's parameters from the deck, else
+ * from the groups (the method that has them), else from the library, else sets them to zero. */
 struct fluid_spec {
     size_t count;
     const struct pure_spec *const *pure; /* [count] */
-    const double *kij;                   /* [count * count], symmetric, zero diagonal; NULL: all zero */
+    const double *kij; /* [count * count], symmetric, zero diagonal: as if from the deck, for any method; or NULL */
+    size_t pair_count;
+    const struct pair_constant *pairs;
+    size_t group_pair_count;
+    const struct group_pair *group_pairs;
 };
 
 #endif
