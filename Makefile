@@ -11,6 +11,7 @@ PACKAGES       := gcc libc6-dev flex bison libcmocka-dev libgsl-dev libjansson-d
 PACKAGES_EXTRA := clang libclang-rt-dev clang-format cppcheck lcov valgrind
 
 VERSION := 0.1.0
+CORES   := $(shell nproc)
 
 # The layers in the order data flows. A partial build names fewer: make LAYERS="base fluid" build/tests/test_phase
 LAYERS ?= base deck case fluid equilibrium filling result report run
@@ -33,6 +34,12 @@ TESTS     := $(patsubst tests/%.c,$(BUILD)/tests/%,$(wildcard tests/test_*.c))
 SUPPORT   := $(patsubst tests/%.c,$(BUILD)/tests/%.o,$(wildcard tests/support/*.c))
 DEMO      := decks/carbon-dioxide-fifty.deck
 
+# `make V=1` shows the commands; otherwise a word and a name for each.
+ifeq ($(V),)
+Q := @
+say = @echo "  $(1)	$(2)"
+endif
+
 .DELETE_ON_ERROR:
 .SECONDARY:
 .PHONY: all demo test check asan valgrind coverage fuzz bench lint format install clean help packages packages-extra update
@@ -42,47 +49,54 @@ all: $(PROGRAM) ## build the program
 # ---- building ------------------------------------------------------------------------------------------------------
 
 $(PROGRAM): $(BUILD)/src/main.o $(LIBRARY)
-	$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ $(LDLIBS)
+	$(call say,link,$@)
+	$(Q)$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ $(LDLIBS)
 
 $(LIBRARY): $(OBJECTS)
-	@rm -f $@
-	$(AR) rcs $@ $^
+	$(call say,archive,$@)
+	$(Q)rm -f $@ && $(AR) rcs $@ $^
 
 $(BUILD)/%.o: %.c
+	$(call say,compile,$<)
 	@mkdir -p $(@D)
-	$(CC) $(CPPFLAGS) $(CFLAGS) -c -o $@ $<
+	$(Q)$(CC) $(CPPFLAGS) $(CFLAGS) -c -o $@ $<
 
 $(BUILD)/generated/deck_parser.c $(BUILD)/generated/deck_parser.h &: grammar/deck.y
+	$(call say,bison,$<)
 	@mkdir -p $(@D)
-	bison -Wall -Wcounterexamples -Wdangling-alias -Werror --header=$(BUILD)/generated/deck_parser.h \
+	$(Q)bison -Wall -Wcounterexamples -Wdangling-alias -Werror --header=$(BUILD)/generated/deck_parser.h \
 	      -o $(BUILD)/generated/deck_parser.c $<
 
 $(BUILD)/generated/deck_scanner.c $(BUILD)/generated/deck_scanner.h &: grammar/deck.l
+	$(call say,flex,$<)
 	@mkdir -p $(@D)
-	flex --header-file=$(BUILD)/generated/deck_scanner.h -o $(BUILD)/generated/deck_scanner.c $<
+	$(Q)flex --header-file=$(BUILD)/generated/deck_scanner.h -o $(BUILD)/generated/deck_scanner.c $<
 
 # Generated code keeps every warning but the two its skeletons cannot meet.
 $(BUILD)/generated/%.o: $(BUILD)/generated/%.c
-	$(CC) $(CPPFLAGS) $(CFLAGS) -Wno-switch-enum -Wno-conversion -c -o $@ $<
+	$(call say,compile,$<)
+	$(Q)$(CC) $(CPPFLAGS) $(CFLAGS) -Wno-switch-enum -Wno-conversion -c -o $@ $<
 
 $(filter $(BUILD)/src/deck/%.o $(BUILD)/generated/%.o,$(OBJECTS)): | $(PARSER:%=%.h)
 
 $(BUILD)/tests/test_%: $(BUILD)/tests/test_%.o $(SUPPORT) $(LIBRARY)
-	$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
+	$(call say,link,$@)
+	$(Q)$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
 
 $(BUILD)/bench: $(BUILD)/tests/bench.o $(SUPPORT) $(LIBRARY)
-	$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
+	$(call say,link,$@)
+	$(Q)$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
 
 # ---- the README's two ----------------------------------------------------------------------------------------------
 
 demo: ## install what is missing, build, run the demo deck and print its listing
 	@$(MAKE) --no-print-directory packages
-	@$(MAKE) --no-print-directory all
+	@$(MAKE) --no-print-directory -j$(CORES) all
 	$(PROGRAM) run $(DEMO) --out $(BUILD)
 
 test: ## install what is missing, build and run all tests
 	@$(MAKE) --no-print-directory packages
-	@$(MAKE) --no-print-directory check
+	@$(MAKE) --no-print-directory -j$(CORES) check
 
 # ---- testing -------------------------------------------------------------------------------------------------------
 
@@ -140,15 +154,17 @@ MAY_equilibrium := fluid
 MAY_filling     := case fluid equilibrium result
 MAY_result      :=
 MAY_report      := result
-MAY_run         := deck case filling result report
+MAY_run         := deck case fluid filling result report
+nothing :=
+one_of  = $(subst $(nothing) $(nothing),|,$(strip $(1)))
 
 lint: ## layer rules, headers that compile alone, marks left behind, cppcheck where it is installed
 	@bad=0; $(foreach layer,base deck case fluid equilibrium filling result report run, \
 	    found=$$(grep -nE '^#include "[a-z_]+/' src/$(layer)/*.[ch] /dev/null | \
-	        grep -vE '"(base|$(layer)$(foreach may,$(MAY_$(layer)),|$(may)))[/.]' ); \
+	        grep -vE '"($(call one_of,base $(layer) $(MAY_$(layer))))[/.]' ); \
 	    if [ -n "$$found" ]; then echo "layer $(layer) reaches too far:"; echo "$$found"; bad=1; fi;) exit $$bad
 	@for header in src/*/*.h; do $(CC) -std=c17 -Isrc $(WARNINGS) -fsyntax-only -x c $$header || exit 1; done
-	@! grep -nIE '\b(TODO|FIXME|XXX|HACK)\b' -r grammar src tests/*.c decks Makefile --exclude=Makefile
+	@! grep -nIE '\b(TODO|FIXME|XXX|HACK)\b' -r grammar src tests/*.c decks
 	@! grep -nE '.{121}' src/*/*.[ch] src/*.c tests/*.c tests/support/*.[ch]
 	@if command -v cppcheck >/dev/null; then \
 	    cppcheck --quiet --std=c11 --enable=warning,portability --inline-suppr --error-exitcode=1 -Isrc src; fi
