@@ -433,6 +433,8 @@ static void json_tables_and_requirements_are_si_with_null_for_nothing(void **sta
     assert_true(json_is_null(json_object_get(json_array_get(columns, 3), "unit")));
     json_t *row = json_array_get(json_object_get(table, "rows"), 2);
     assert_close(json_real_value(json_array_get(row, 0)), 338.15, 0.0, "set above");
+    assert_close(json_real_value(json_array_get(row, 1)), 24.79e6, 0.0, "set above, absolute");
+    assert_close(json_real_value(json_array_get(row, 2)), 24688675.0, 0.0, "the same less 101 325 Pa, as it is a gauge");
     assert_string_equal(json_string_value(json_array_get(row, 3)), "one phase, above critical");
     assert_true(json_is_null(json_array_get(row, 4)));
     json_t *requirements = json_object_get(sheet, "requirements");

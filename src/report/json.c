@@ -2,6 +2,7 @@
 
 #include <jansson.h>
 #include <math.h>
+#include <string.h>
 
 /* A tree of jansson values is built by functions that return NULL when memory runs out. append and set pass that on and
  * give back what they were handed, so one check at the root suffices and nothing is lost. */
@@ -19,6 +20,13 @@ static json_t *words_or_null(const char *words)
 static json_t *number_or_null(double value)
 {
     return isfinite(value) ? json_real(value) : json_null();
+}
+
+/* A pressure shown as gauge is a gauge pressure for machines too: Pa above the zero of its unit. */
+static json_t *si_or_null(const struct look *look, double si)
+{
+    const bool is_gauge = look->si_unit && strcmp(look->si_unit, "Pa") == 0;
+    return number_or_null(is_gauge ? si - look->shown.offset : si);
 }
 
 static json_t *append(json_t *array, json_t *item)
@@ -51,7 +59,7 @@ static json_t *fact_tree(const struct fact *fact)
     if (fact->text) {
         tree = set(tree, "text", words_or_null(fact->text));
     } else {
-        tree = set(tree, "value", number_or_null(fact->value));
+        tree = set(tree, "value", si_or_null(&fact->look, fact->value));
         tree = set(tree, "unit", words_or_null(fact->look.si_unit));
     }
     tree = set(tree, "method", words_or_null(fact->method));
@@ -69,11 +77,11 @@ static json_t *facts_tree(const struct result_sheet *sheet)
     return facts;
 }
 
-static json_t *cell_tree(const struct cell *cell)
+static json_t *cell_tree(const struct column *column, const struct cell *cell)
 {
     switch (cell->kind) {
     case CELL_NUMBER:
-        return number_or_null(cell->number);
+        return si_or_null(&column->look, cell->number);
     case CELL_TEXT:
         return words_or_null(cell->text);
     case CELL_EMPTY:
@@ -94,7 +102,7 @@ static json_t *table_tree(const struct table *table)
     for (size_t r = 0; r < table->row_count; r++) {
         json_t *row = json_array();
         for (size_t c = 0; c < table->column_count; c++) {
-            row = append(row, cell_tree(&table->cells[r * table->column_count + c]));
+            row = append(row, cell_tree(&table->columns[c], &table->cells[r * table->column_count + c]));
         }
         rows = append(rows, row);
     }

@@ -14,7 +14,8 @@ void report_listing(const struct result *result, struct text *out);
 /* The data and the sources of a result, as the listing draws them, without a heading. */
 void report_data(const struct result *result, struct text *out);
 
-/* The same tree as JSON, SI, 17 significant digits, a closing newline. False when memory ran out. */
+/* The same tree as JSON, SI, 17 significant digits, a closing newline; a pressure shown as gauge is Pa above that
+ * gauge's zero. False when memory ran out. */
 bool report_json(const struct result *result, struct text *out);
 
 /* One table as comma-separated values: a header row of `name [unit]`, units as shown, full precision (the shortest text
