@@ -267,6 +267,9 @@ static struct opened *open_path(struct loading *loading, const struct opened *by
 static void bring(struct loading *loading, const struct opened *by, struct use *use)
 {
     use->is_settled = true;
+    if (loading->diagnostics->errors > DIAGNOSTICS_MOST) {
+        return; /* nobody would read what else is missing */
+    }
     if (by->depth == USE_DEPTH_MOST || loading->files.count == FILES_MOST) {
         diagnose(loading->diagnostics, CODE_E122, place_of_use(use),
                  "files use one another too deeply, or there are too many of them");
