@@ -97,7 +97,8 @@ static void measure_head(struct layout *layout, size_t c)
     const size_t body = layout->width[c];
     if (column->name) {
         const size_t columns = page_columns(column->name);
-        const size_t wanted = columns < NARROWEST_HEAD ? columns : NARROWEST_HEAD;
+        const size_t least = column->align == GRID_WORDS ? NARROWEST_WORDS : NARROWEST_HEAD;
+        const size_t wanted = columns < least ? columns : least;
         layout->width[c] = larger(layout->width[c], larger(wanted, longest_piece(column->name)));
     }
     if (column->unit) {
