@@ -205,9 +205,9 @@ static enum run_status carry_out_verb(const struct command *command, struct aren
     }
     for (size_t i = 0; i < sizeof verbs / sizeof *verbs; i++) {
         if (strcmp(first, verbs[i].verb) == 0) {
-            return command->word_count == 2
-                       ? run_on_deck(command, verbs[i].mode, command->words[1], &reader)
-                       : complain(CODE_E415, "one deck is wanted after", first, "tarewright help shows the command line");
+            return command->word_count == 2 ? run_on_deck(command, verbs[i].mode, command->words[1], &reader)
+                                            : complain(CODE_E415, "one deck is wanted after", first,
+                                                       "tarewright help shows the command line");
         }
     }
     if (command->word_count > 1) {

@@ -17,11 +17,8 @@ enum { DECKS_MOST = 200, NAME_BYTES = 128, PAGE_COLUMNS = 100 };
 static struct run *run_deck_at(const char *path)
 {
     const struct deck_reader reader = {.read = deck_read_file, .library_folder = "decks/library"};
-    const struct run_request request = {.mode = RUN_ANSWER,
-                                        .deck_path = path,
-                                        .reader = &reader,
-                                        .version = TAREWRIGHT_VERSION,
-                                        .json_path = "a.json"};
+    const struct run_request request = {
+        .mode = RUN_ANSWER, .deck_path = path, .reader = &reader, .version = TAREWRIGHT_VERSION, .json_path = "a.json"};
     return run_deck(&request, NULL);
 }
 

@@ -24,8 +24,8 @@ struct scene {
     char folder[64];
     char out[PATH_BYTES], err[PATH_BYTES];
     const char *output, *messages;
-    int status;      /* exit status, or -1 */
-    int signal;      /* that ended it, or 0 */
+    int status; /* exit status, or -1 */
+    int signal; /* that ended it, or 0 */
 };
 
 static const char *program(void)
@@ -334,23 +334,52 @@ static const struct {
 enum { MONSTERS = sizeof monsters / sizeof *monsters };
 
 static const char *const swaps[][2] = {
-    {"barg", "kg"},       {"degC", "L"},        {"L", "barg"},         {"kg", "degC"},       {"barg", "bara"},
-    {"barg", "brag"},     {"degC", "degX"},     {"vessel", "vesel"},   {"fluid", "flud"},    {"rules", "ruels"},
-    {"number", "nubmer"}, {"tare", "taer"},     {"lead", "laed"},      {"sweep", "swep"},    {"require", "requiring"},
-    {"charge", "chrage"}, {"reference", "referencing"},                {"carbon-dioxide", "carbon-dioxid"},
-    {"propane", "propan"},                      {"nitrogen", "nitrogne"},                    {"ammonia", "amonia"},
-    {"250 barg", "1e308 barg"},                 {"50.2 L", "1e308 L"}, {"50.2 L", "-1e999 L"},
-    {"50.2 L", "0 L"},    {"50.2 L", "-3 L"},   {"50.2 L", "nan L"},   {"62.4 kg", "-1e999 kg"},
-    {"37.5 kg", "1e308 kg"},                    {"37.5 kg", "-37.5 kg"},                     {"65 degC", "-300 degC"},
-    {"65 degC", "1e999 degC"},                  {"by 5 K", "by 0 K"},  {"by 5 K", "by -5 K"},
-    {"by 5 K", "by 1e-12 K"},                   {"in 8 steps", "in 0 steps"},
-    {"in 8 steps", "in 1e9 steps"},             {"50.2 L", "50.2"},    {"50.2 L", "50.2 L 3"},
+    {"barg", "kg"},
+    {"degC", "L"},
+    {"L", "barg"},
+    {"kg", "degC"},
+    {"barg", "bara"},
+    {"barg", "brag"},
+    {"degC", "degX"},
+    {"vessel", "vesel"},
+    {"fluid", "flud"},
+    {"rules", "ruels"},
+    {"number", "nubmer"},
+    {"tare", "taer"},
+    {"lead", "laed"},
+    {"sweep", "swep"},
+    {"require", "requiring"},
+    {"charge", "chrage"},
+    {"reference", "referencing"},
+    {"carbon-dioxide", "carbon-dioxid"},
+    {"propane", "propan"},
+    {"nitrogen", "nitrogne"},
+    {"ammonia", "amonia"},
+    {"250 barg", "1e308 barg"},
+    {"50.2 L", "1e308 L"},
+    {"50.2 L", "-1e999 L"},
+    {"50.2 L", "0 L"},
+    {"50.2 L", "-3 L"},
+    {"50.2 L", "nan L"},
+    {"62.4 kg", "-1e999 kg"},
+    {"37.5 kg", "1e308 kg"},
+    {"37.5 kg", "-37.5 kg"},
+    {"65 degC", "-300 degC"},
+    {"65 degC", "1e999 degC"},
+    {"by 5 K", "by 0 K"},
+    {"by 5 K", "by -5 K"},
+    {"by 5 K", "by 1e-12 K"},
+    {"in 8 steps", "in 0 steps"},
+    {"in 8 steps", "in 1e9 steps"},
+    {"50.2 L", "50.2"},
+    {"50.2 L", "50.2 L 3"},
 };
 enum { SWAPS = sizeof swaps / sizeof *swaps };
 static const char *const heads[] = {"\nvessel ", "\ncharge ", "\nuse \"rules/"};
 enum { HEADS = sizeof heads / sizeof *heads };
 
-/* Whether a replacement leaves the deck wrong is known for those above; one that finds nothing to replace gives none. */
+/* Whether a replacement leaves the deck wrong is known for those above; one that finds nothing to replace gives none.
+ */
 static struct broken broken_deck(struct arena *arena, const char *const texts[EXAMPLES], size_t index)
 {
     if (index < MONSTERS) {

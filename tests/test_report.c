@@ -1,5 +1,5 @@
-/* The renderers, on result trees built by hand: what a listing, its JSON and its CSV look like. The numbers are made up;
- * nothing here says that a figure is right. */
+/* The renderers, on result trees built by hand: what a listing, its JSON and its CSV look like. The numbers are made
+ * up; nothing here says that a figure is right. */
 #include "base/file.h"
 #include "report/grid.h"
 #include "report/number.h"
@@ -133,8 +133,9 @@ static void add_document(struct result *result)
     result->number = "CO2-050";
     result->revision = "C";
     result->title = "Carbon dioxide, 50 L cylinders, east hall";
-    line_list_add(result, &result->notes, "a note that runs on and on so that it has to be wrapped on the page, as an "
-                                          "engineer's notes about the yard and its gates will be");
+    line_list_add(result, &result->notes,
+                  "a note that runs on and on so that it has to be wrapped on the page, as an "
+                  "engineer's notes about the yard and its gates will be");
     result->deck_name = "co2-fifty.deck";
     result->deck_sha256 = "5b0c91d2aa00bb11cc22dd33ee44ff5566778899aabbccddeeff00112233f77a";
     result->deck_text = "case \"Carbon dioxide\" {\r\n\tnumber \"CO2-050\"\n}\n\n# a long line: "
@@ -158,8 +159,8 @@ static void add_inputs_and_data(struct result *result)
     const struct input_row inputs[] = {
         {"vessel fifty", "water-capacity", "50.2 L", "0.0502 m3", "line 9"},
         {"vessel fifty", "test-pressure", "250 barg", "25 101 325 Pa abs", "line 10"},
-        {"charge lot", "fill", "a very long expression that was written out, 2 / 3 * (test-pressure + 1 bar)",
-         "0.68", "line 14 of a/very/long/path/below/the/deck/that/names/a/file/with-a-long-name.deck"},
+        {"charge lot", "fill", "a very long expression that was written out, 2 / 3 * (test-pressure + 1 bar)", "0.68",
+         "line 14 of a/very/long/path/below/the/deck/that/names/a/file/with-a-long-name.deck"},
     };
     for (size_t i = 0; i < sizeof inputs / sizeof *inputs; i++) {
         *ARENA_APPEND(result->arena, &result->inputs) = inputs[i];
@@ -174,9 +175,11 @@ static void add_inputs_and_data(struct result *result)
         *ARENA_APPEND(result->arena, &result->data) = data[i];
     }
     const struct source_row sources[] = {
-        {"span-wagner-1996", "R. Span, W. Wagner, A new equation of state for carbon dioxide covering the fluid region "
-                             "from the triple-point temperature to 1100 K at pressures up to 800 MPa, J. Phys. Chem. "
-                             "Ref. Data 25 (1996) 1509", false},
+        {"span-wagner-1996",
+         "R. Span, W. Wagner, A new equation of state for carbon dioxide covering the fluid region "
+         "from the triple-point temperature to 1100 K at pressures up to 800 MPa, J. Phys. Chem. "
+         "Ref. Data 25 (1996) 1509",
+         false},
         {"shop-note", "a figure somebody remembered", true},
     };
     for (size_t i = 0; i < sizeof sources / sizeof *sources; i++) {
@@ -221,9 +224,9 @@ static void add_wide_table(struct result *result, struct result_sheet *sheet)
 {
     struct table *table = sheet_add_table(result, sheet, "a table too wide for the page", NULL);
     table_add_column(result, table, "temperature", kelvin_as_celsius);
-    static const char *const names[] = {"density-of-the-vapour", "density-of-the-liquid", "fugacity-coefficient",
-                                        "compressibility-factor", "second-virial-coefficient", "residual-enthalpy",
-                                        "residual-entropy", "heat-capacity"};
+    static const char *const names[] = {
+        "density-of-the-vapour",     "density-of-the-liquid", "fugacity-coefficient", "compressibility-factor",
+        "second-virial-coefficient", "residual-enthalpy",     "residual-entropy",     "heat-capacity"};
     for (size_t i = 0; i < sizeof names / sizeof *names; i++) {
         table_add_column(result, table, names[i], six_digits);
     }
@@ -250,15 +253,17 @@ static void add_charge_sheet(struct result *result)
     sheet_add_fact(result, sheet, "mass", 38.1164, kilograms)->method = "reference";
     sheet_add_fact(result, sheet, "listed-ratio", 0.76, plain_ratio)->source = "adr-2025";
     sheet_add_fact(result, sheet, "never-known", (double)NAN, kilograms);
-    sheet_add_words(result, sheet, "governed-by",
-                    "the listed row of UN 1013 at 250 barg, as the edition of 2025 has it, which replaces the criterion "
-                    "of the rule and stands above what was computed");
+    sheet_add_words(
+        result, sheet, "governed-by",
+        "the listed row of UN 1013 at 250 barg, as the edition of 2025 has it, which replaces the criterion "
+        "of the rule and stands above what was computed");
     add_small_table(result, sheet)->csv = "co2.csv";
     struct hand_check *check = sheet_add_hand_check(result, sheet, "65 degC, reference equation");
     hand_check_line(result, check, "tau   = Tr / T     = 304.1282 / 338.15         = 0.899388");
     hand_check_line(result, check, "delta = rho / rhor = 17253.4 / 10624.9063      = 1.623864");
-    hand_check_line(result, check, "p     = Z rho R T  = 1.234567890123 * 17253.4 mol/m3 * 8.31451 J/mol/K * 338.15 K "
-                                   "= 24.79 MPa");
+    hand_check_line(result, check,
+                    "p     = Z rho R T  = 1.234567890123 * 17253.4 mol/m3 * 8.31451 J/mol/K * 338.15 K "
+                    "= 24.79 MPa");
     sheet_add_note(result, sheet, "the listed row is below the computed limit");
     sheet_add_note(result, sheet, "a second note");
     struct requirement *met = sheet_add_requirement(result, sheet, "at 65 degC pressure <= test-pressure");
@@ -272,7 +277,8 @@ static void add_charge_sheet(struct result *result)
     met->line = 21;
     met->method = "reference";
     struct requirement *undecided = sheet_add_requirement(result, sheet, "from -25 degC to 50 degC no liquid");
-    undecided->reason = "the method has no answer between 49.3 degC and 50 degC, where the volume is below its smallest";
+    undecided->reason =
+        "the method has no answer between 49.3 degC and 50 degC, where the volume is below its smallest";
     undecided->line = 22;
 }
 
@@ -290,11 +296,13 @@ static struct result *full_tree(struct arena *arena)
     broken->has_margin = true;
     broken->margin = -0.06;
     broken->look = plain_ratio;
-    result_warn(result, CODE_E101, 14, 1, "a warning that is long enough to be wrapped on the page, since it says what "
-                                          "was found, where, and what to do about it");
+    result_warn(result, CODE_E101, 14, 1,
+                "a warning that is long enough to be wrapped on the page, since it says what "
+                "was found, where, and what to do about it");
     result_warn(result, CODE_E101, 0, 0, "short");
-    line_list_add(result, &result->cautions, "Engineering estimates. The statutory table or approval for this gas and "
-                                             "vessel overrides them; a competent person decides.");
+    line_list_add(result, &result->cautions,
+                  "Engineering estimates. The statutory table or approval for this gas and "
+                  "vessel overrides them; a competent person decides.");
     return result;
 }
 
@@ -335,8 +343,8 @@ static void no_line_is_wider_than_the_page_or_ends_in_a_blank(void **state)
         struct result_sheet *sheet = result_add_sheet(result, word, word);
         sheet->fluid = sheet->vessel = sheet->charge = word;
         sheet_begin_facts(result, sheet, word);
-        *sheet_add_fact(result, sheet, word, 1e300, six_digits) =
-            (struct fact){.name = word, .method = word, .source = word, .remark = word, .value = 1.0, .look = six_digits};
+        *sheet_add_fact(result, sheet, word, 1e300, six_digits) = (struct fact){
+            .name = word, .method = word, .source = word, .remark = word, .value = 1.0, .look = six_digits};
         sheet_add_words(result, sheet, word, word);
         struct table *table = sheet_add_table(result, sheet, word, word);
         table_add_column(result, table, word, (struct look){"1", {word, 1.0, 0.0}, 2});
@@ -434,7 +442,8 @@ static void json_tables_and_requirements_are_si_with_null_for_nothing(void **sta
     json_t *row = json_array_get(json_object_get(table, "rows"), 2);
     assert_close(json_real_value(json_array_get(row, 0)), 338.15, 0.0, "set above");
     assert_close(json_real_value(json_array_get(row, 1)), 24.79e6, 0.0, "set above, absolute");
-    assert_close(json_real_value(json_array_get(row, 2)), 24688675.0, 0.0, "the same less 101 325 Pa, as it is a gauge");
+    assert_close(json_real_value(json_array_get(row, 2)), 24688675.0, 0.0,
+                 "the same less 101 325 Pa, as it is a gauge");
     assert_string_equal(json_string_value(json_array_get(row, 3)), "one phase, above critical");
     assert_true(json_is_null(json_array_get(row, 4)));
     json_t *requirements = json_object_get(sheet, "requirements");
@@ -494,11 +503,10 @@ static void csv_has_one_head_and_full_precision_in_shown_units(void **state)
     struct result_sheet *sheet = result_add_sheet(result, "settled-pressure", NULL);
     struct text out = {.arena = *state};
     report_csv(add_small_table(result, sheet), &out);
-    assert_string_equal(out.bytes,
-                        "temperature [degC],settled-pressure [bara],gauge [barg],phases,liquid-volume [%]\n"
-                        "15,50.9,49.88675,vapour + liquid,95.12\n"
-                        "21.3,58.9,57.88675,\"liquid-full, \"\"brim\"\"\",100\n"
-                        "65,247.9,246.88675,\"one phase, above critical\",\n");
+    assert_string_equal(out.bytes, "temperature [degC],settled-pressure [bara],gauge [barg],phases,liquid-volume [%]\n"
+                                   "15,50.9,49.88675,vapour + liquid,95.12\n"
+                                   "21.3,58.9,57.88675,\"liquid-full, \"\"brim\"\"\",100\n"
+                                   "65,247.9,246.88675,\"one phase, above critical\",\n");
 }
 
 int main(void)

@@ -14,13 +14,14 @@
 #include <unistd.h>
 
 /* A made-up gas with carbon dioxide's proportions, so that nothing but this text is needed. */
-#define GAS                                                                                                            \
-    "component stuff { molar-mass 44 g/mol; critical-temperature 304 K; critical-pressure 73.8 bara; acentric 0.22 }\n"   \
-    "vessel tube { water-capacity 50 L; test-pressure 250 barg }\n"                                                    \
-    "methods { lead peng-robinson }\n"                                                                                 \
+#define GAS                                                                                                          \
+    "component stuff { molar-mass 44 g/mol; critical-temperature 304 K; critical-pressure 73.8 bara; acentric 0.22 " \
+    "}\n"                                                                                                            \
+    "vessel tube { water-capacity 50 L; test-pressure 250 barg }\n"                                                  \
+    "methods { lead peng-robinson }\n"                                                                               \
     "charge lot { fluid stuff; vessel tube; mass 20 kg }\n"
 #define SETTLED(requirement) GAS "sheet settled-pressure { charge lot; " requirement " }\n"
-#define IN_ORDER SETTLED("require at 50 degC pressure <= test-pressure")
+#define IN_ORDER             SETTLED("require at 50 degC pressure <= test-pressure")
 
 struct memory_file {
     const char *path, *text;
@@ -174,8 +175,8 @@ static void a_file_that_cannot_be_written_leaves_nothing_behind(void **state)
     assert_int_equal(mkdir(in_the_way, 0700), 0);
     const char *const paths[] = {missing, in_the_way};
     for (size_t i = 0; i < 2; i++) {
-        struct run *run = run_text("some.deck", IN_ORDER, (struct run_request){.mode = RUN_ANSWER, .json_path = paths[i]},
-                                   NULL);
+        struct run *run =
+            run_text("some.deck", IN_ORDER, (struct run_request){.mode = RUN_ANSWER, .json_path = paths[i]}, NULL);
         assert_int_equal(run->status, RUN_MET);
         run_write(run);
         assert_int_equal(run->status, RUN_NO_FILE);
@@ -198,9 +199,9 @@ static void a_result_is_not_written_over_the_deck_or_another_result(void **state
     static const char *const codes[] = {"E416", "E412"};
     for (size_t i = 0; i < 2; i++) {
         const char *json = i == 0 ? other : "same.json";
-        struct run *run = run_text(deck, IN_ORDER,
-                                   (struct run_request){.mode = RUN_ANSWER, .json_path = json, .listing_path = "same.json"},
-                                   NULL);
+        struct run *run =
+            run_text(deck, IN_ORDER,
+                     (struct run_request){.mode = RUN_ANSWER, .json_path = json, .listing_path = "same.json"}, NULL);
         run_write(run);
         assert_int_equal(run->status, RUN_NO_FILE);
         assert_non_null(strstr(run->diagnostics.bytes, codes[i]));
@@ -265,9 +266,15 @@ static void help_knows_words_units_methods_codes_and_lists(void **state)
     static const struct {
         const char *topic, *says;
     } cases[] = {
-        {"test-pressure", "in a vessel block"}, {"E101", "no place in a deck"}, {"e101", "no place in a deck"},
-        {"psig", "psi above 101 325 Pa"},       {"peng-robinson", "mixtures"},  {"reference", "pure gases"},
-        {"units", "0.45359237 kg"},             {"methods", "ideal-gas"},       {"codes", "E401"},
+        {"test-pressure", "in a vessel block"},
+        {"E101", "no place in a deck"},
+        {"e101", "no place in a deck"},
+        {"psig", "psi above 101 325 Pa"},
+        {"peng-robinson", "mixtures"},
+        {"reference", "pure gases"},
+        {"units", "0.45359237 kg"},
+        {"methods", "ideal-gas"},
+        {"codes", "E401"},
         {"words", "water-capacity"},
     };
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {

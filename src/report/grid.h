@@ -1,7 +1,8 @@
 /* Columns of text: numbers aligned on their decimal point, words on the left, everything kept on the page.
  *
- * A grid too wide for the page first wraps its widest words more tightly, then is drawn as several blocks that repeat its first
- * columns, as many as tell the rows apart. Ownership: a grid lives in its arena; texts are kept by pointer and must be clean (page_clean).
+ * A grid too wide for the page first wraps its widest words more tightly, then is drawn as several blocks that repeat
+ * its first columns, as many as tell the rows apart. Ownership: a grid lives in its arena; texts are kept by pointer
+ * and must be clean (page_clean).
  */
 #ifndef TAREWRIGHT_REPORT_GRID_H
 #define TAREWRIGHT_REPORT_GRID_H

@@ -201,8 +201,8 @@ static json_t *result_tree(const struct result *result)
     return set(tree, "warnings", warnings);
 }
 
-/* The text is measured and then written into arena_try's memory, as arena_alloc would leave this function by its jump and
- * the tree with it. */
+/* The text is measured and then written into arena_try's memory, as arena_alloc would leave this function by its jump
+ * and the tree with it. */
 bool report_json(const struct result *result, struct text *out)
 {
     const size_t style = JSON_INDENT(1) | JSON_PRESERVE_ORDER | JSON_REAL_PRECISION(17);

@@ -49,8 +49,7 @@ static void draw_hand_check(const struct hand_check *check, struct text *out)
 {
     page_hanging(out, SECTION_INDENT, "hand check:", SECTION_INDENT + 12, check->title ? check->title : "");
     for (size_t i = 0; i < check->lines.count; i++) {
-        page_line(out, PART_INDENT + 4,
-                  arena_format(out->arena, "%*s%s", PART_INDENT, "", check->lines.items[i]));
+        page_line(out, PART_INDENT + 4, arena_format(out->arena, "%*s%s", PART_INDENT, "", check->lines.items[i]));
     }
 }
 
@@ -116,8 +115,7 @@ static void add_name(struct text *line, const char *what, const char *name)
 void listing_sheet(const struct result *result, const struct result_sheet *sheet, size_t section, struct text *out)
 {
     const char *heading = kind_as_heading(out->arena, sheet->kind);
-    page_section(out, section,
-                 sheet->title ? arena_format(out->arena, "%s  \"%s\"", heading, sheet->title) : heading);
+    page_section(out, section, sheet->title ? arena_format(out->arena, "%s  \"%s\"", heading, sheet->title) : heading);
     struct text names = {.arena = out->arena};
     add_name(&names, "fluid", sheet->fluid);
     add_name(&names, "vessel", sheet->vessel);

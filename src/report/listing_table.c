@@ -74,8 +74,8 @@ void listing_table(const struct table *table, size_t warnings, struct text *out)
     }
     if (has_outside_range(table)) {
         page_paragraph(out, PART_INDENT,
-                       arena_format(out->arena, "%s outside the method's published range, see section %zu", OUTSIDE_MARK,
-                                    warnings));
+                       arena_format(out->arena, "%s outside the method's published range, see section %zu",
+                                    OUTSIDE_MARK, warnings));
     }
     if (table->csv) {
         page_paragraph(out, PART_INDENT, arena_format(out->arena, "also written to %s", table->csv));

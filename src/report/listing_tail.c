@@ -59,8 +59,8 @@ static void add_requirement(struct grid *grid, const struct requirement *one, si
 static void name_columns(struct grid *grid)
 {
     static const char *const heads[REQUIREMENT_COLUMNS] = {
-        [REQUIREMENT_TEXT] = "requirement", [REQUIREMENT_STATE] = "verdict",  [REQUIREMENT_MARGIN] = "margin",
-        [REQUIREMENT_WORST] = "worst at",   [REQUIREMENT_METHOD] = "method",  [REQUIREMENT_WHERE] = "section",
+        [REQUIREMENT_TEXT] = "requirement", [REQUIREMENT_STATE] = "verdict", [REQUIREMENT_MARGIN] = "margin",
+        [REQUIREMENT_WORST] = "worst at",   [REQUIREMENT_METHOD] = "method", [REQUIREMENT_WHERE] = "section",
     };
     for (size_t c = 0; c < REQUIREMENT_COLUMNS; c++) {
         grid->columns[c].name = heads[c];

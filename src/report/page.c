@@ -9,8 +9,12 @@ enum { LONGEST_UNIT = 5 };
 static size_t sequence_length(const unsigned char *text)
 {
     static const unsigned smallest[] = {0, 0, 0x80U, 0x800U, 0x10000U};
-    const size_t length = text[0] < 0x80U ? 1 : text[0] < 0xC2U ? 0 : text[0] < 0xE0U ? 2 : text[0] < 0xF0U ? 3
-                        : text[0] < 0xF5U ? 4 : 0;
+    const size_t length = text[0] < 0x80U   ? 1
+                          : text[0] < 0xC2U ? 0
+                          : text[0] < 0xE0U ? 2
+                          : text[0] < 0xF0U ? 3
+                          : text[0] < 0xF5U ? 4
+                                            : 0;
     if (length <= 1) {
         return length == 1 && text[0] >= 0x20U && text[0] != 0x7FU ? 1 : 0;
     }

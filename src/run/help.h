@@ -10,8 +10,8 @@
 #include <stdbool.h>
 
 /* Everything known under `topic`: a word of the deck language, a unit, a method, a code as E101, or one of the lists
- * `words`, `units`, `methods`, `codes`. False when there is nothing; *nearest is then the word that may have been meant,
- * or NULL. */
+ * `words`, `units`, `methods`, `codes`. False when there is nothing; *nearest is then the word that may have been
+ * meant, or NULL. */
 bool help_topic(const char *topic, struct text *out, const char **nearest);
 
 #endif

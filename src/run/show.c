@@ -8,7 +8,7 @@
 #include <string.h>
 
 /* Where the made-up deck is taken to lie; no file is looked for beside it. */
-#define FOLDER "asked/"
+#define FOLDER  "asked/"
 #define MADE_UP FOLDER "gas.deck"
 
 struct made_up {
@@ -89,11 +89,10 @@ static void add_equation(struct result *result, const struct case_component *com
     if (!equation) {
         return;
     }
-    struct data_row *row =
-        add_row(result, component->name, "reference equation",
-                arena_format(result->arena, "%zu terms, %g K to %g K, to %g MPa", equation->residual_count,
-                             equation->smallest_temperature, equation->largest_temperature,
-                             equation->largest_pressure / 1e6));
+    struct data_row *row = add_row(result, component->name, "reference equation",
+                                   arena_format(result->arena, "%zu terms, %g K to %g K, to %g MPa",
+                                                equation->residual_count, equation->smallest_temperature,
+                                                equation->largest_temperature, equation->largest_pressure / 1e6));
     row->source = component->equation_source ? component->equation_source->key : NULL;
 }
 

@@ -14,11 +14,11 @@
 bool golden_matches(const char *path, const char *text, size_t length);
 
 /* Fails the running test at the caller's line when the text is not the file's. */
-#define assert_golden(path, text, length)                                                                              \
-    do {                                                                                                               \
-        if (!golden_matches((path), (text), (length))) {                                                               \
-            _fail(__FILE__, __LINE__);                                                                                 \
-        }                                                                                                              \
+#define assert_golden(path, text, length)                \
+    do {                                                 \
+        if (!golden_matches((path), (text), (length))) { \
+            _fail(__FILE__, __LINE__);                   \
+        }                                                \
     } while (0)
 
 /* The first line of more than `most` columns (code points), as its number from 1; 0 when there is none. */
