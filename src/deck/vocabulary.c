@@ -13,7 +13,7 @@ struct block_row {
 static const struct block_row blocks[] = {
 #define BLOCK(id, title, also) [BLOCK_##id] = {title, also},
 #define WORD(block, id, word, follows, measure, meaning, example)
-#include "grammar/vocabulary.def"
+#include "../../grammar/vocabulary.def"
 #undef BLOCK
 #undef WORD
 };
@@ -22,7 +22,7 @@ static const struct vocabulary_row rows[] = {
 #define BLOCK(id, title, also)
 #define WORD(block, id, word, follows, measure, meaning, example)                                                      \
     {BLOCK_##block, WORD_##block##_##id, word, follows, MEASURE_##measure, meaning, example},
-#include "grammar/vocabulary.def"
+#include "../../grammar/vocabulary.def"
 #undef BLOCK
 #undef WORD
 };

@@ -16,7 +16,7 @@
 enum vocabulary_block {
 #define BLOCK(id, title, also) BLOCK_##id,
 #define WORD(block, id, word, follows, measure, meaning, example)
-#include "grammar/vocabulary.def"
+#include "../../grammar/vocabulary.def"
 #undef BLOCK
 #undef WORD
     BLOCKS
@@ -26,7 +26,7 @@ enum vocabulary_block {
 enum vocabulary_word {
 #define BLOCK(id, title, also)
 #define WORD(block, id, word, follows, measure, meaning, example) WORD_##block##_##id,
-#include "grammar/vocabulary.def"
+#include "../../grammar/vocabulary.def"
 #undef BLOCK
 #undef WORD
     WORDS
