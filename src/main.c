@@ -141,6 +141,8 @@ static enum run_status finish(struct run *run, bool prints_output)
     }
     if (run->diagnostics.length != 0) {
         fwrite(run->diagnostics.bytes, 1, run->diagnostics.length, stderr);
+    } else if (run->status == RUN_NO_FILE) {
+        complain(CODE_E414, "memory ran out while files were written", NULL, NULL);
     }
     run_free(run);
     return status;

@@ -2,6 +2,7 @@
 #define _POSIX_C_SOURCE 200809L
 #include "base/file.h"
 #include "run/help.h"
+#include "run/library.h"
 #include "run/run.h"
 #include "support/check.h"
 #include "support/golden.h"
@@ -187,6 +188,37 @@ static void a_file_that_cannot_be_written_leaves_nothing_behind(void **state)
     assert_int_equal(rmdir(folder), 0);
 }
 
+static void a_device_is_written_through_and_not_replaced(void **state)
+{
+    (void)state;
+    static const struct {
+        const char *path;
+        enum run_status status;
+    } cases[] = {{"/dev/null", RUN_MET}, {"/dev/full", RUN_NO_FILE}};
+    for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
+        struct stat about;
+        const struct run_request request = {.mode = RUN_ANSWER, .json_path = cases[i].path};
+        struct run *run = run_text("some.deck", IN_ORDER, request, NULL);
+        run_write(run);
+        assert_int_equal(run->status, cases[i].status);
+        assert_int_equal(stat(cases[i].path, &about), 0);
+        assert_true(S_ISCHR(about.st_mode));
+        run_free(run);
+    }
+}
+
+static void the_library_is_the_one_named_first(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    assert_string_equal(library_find("asked", "named", arena), "asked");
+    assert_string_equal(library_find(NULL, "named", arena), "named");
+    /* What lies beside this test's own program depends on where it was built. */
+    const char *found = library_find(NULL, NULL, arena);
+    assert_true(!found || strstr(found, "/library"));
+    arena_free(arena);
+}
+
 static void a_result_is_not_written_over_the_deck_or_another_result(void **state)
 {
     (void)state;
@@ -315,6 +347,8 @@ int main(void)
         cmocka_unit_test(a_printed_deck_prints_the_same_again),
         cmocka_unit_test(files_are_named_by_deck_and_command_line),
         cmocka_unit_test(a_file_that_cannot_be_written_leaves_nothing_behind),
+        cmocka_unit_test(a_device_is_written_through_and_not_replaced),
+        cmocka_unit_test(the_library_is_the_one_named_first),
         cmocka_unit_test(a_result_is_not_written_over_the_deck_or_another_result),
         cmocka_unit_test(memory_may_run_out_anywhere),
         cmocka_unit_test(help_knows_words_units_methods_codes_and_lists),
