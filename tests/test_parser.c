@@ -65,7 +65,8 @@ static const struct accepted statements[] = {
     {"a line goes on after an operator", "x 1 +\n 2 *\n 3", "x[(1 + (2 * 3))]"},
     {"a line goes on after a relation", "let x =\n 5", "let[x][= 5]"},
     {"a line goes on in parentheses", "v 1 at (15 degC\n ,\n 1 bara\n )\nw", "v[1][at (15_degC, 1_bara)] w"},
-    {"use and its condition", "use \"gases\"\nuse \"equations/argon\" for argon", "use['gases'] use['equations/argon'][for argon]"},
+    {"use and its condition", "use \"gases\"\nuse \"equations/argon\" for argon",
+     "use['gases'] use['equations/argon'][for argon]"},
     {"a source", "source adr-2025 \"ADR 2025\" unverified", "source[adr-2025]['ADR 2025'][unverified]"},
     {"every marker", "x from 1 to 2 by 3 in 4 at 5 no a one b rest ref c for d",
      "x[from 1][to 2][by 3][in 4][at 5][no a][one b][rest][ref c][for d]"},
@@ -76,7 +77,8 @@ static const struct accepted statements[] = {
      "a[2_%][+/- 0.02_%] b[2_%][+/- 0.02_%]"},
     {"a sweep in steps", "sweep temperature from 0 K to 9 K in 20 steps",
      "sweep[temperature][from 0_K][to 9_K][in 20][steps]"},
-    {"rows of numbers", "term 0.3 -1.2 3e-5 +4 -5E+6", "term[0.29999999999999999][-1.2][3.0000000000000001e-05][4][-5000000]"},
+    {"rows of numbers", "term 0.3 -1.2 3e-5 +4 -5E+6",
+     "term[0.29999999999999999][-1.2][3.0000000000000001e-05][4][-5000000]"},
 };
 
 static const struct accepted words[] = {
@@ -84,7 +86,11 @@ static const struct accepted words[] = {
     {"names with hyphens and digits", "x r1234yf a-1 B2 c-2-d", "x[r1234yf][a-1][B2][c-2-d]"},
     {"words are names where they are not reserved", "vessel case { sheet 1 }", "vessel[case]{sheet[1]}"},
     {"upper case is another word", "From At", "From[At]"},
-    {"texts with signs", "note \"a # b { c } ; \\\"d\\\" \\\\ \xc2\xb0" "C\"", "note['a # b { c } ; \"d\" \\ \xc2\xb0" "C']"},
+    {"texts with signs",
+     "note \"a # b { c } ; \\\"d\\\" \\\\ \xc2\xb0"
+     "C\"",
+     "note['a # b { c } ; \"d\" \\ \xc2\xb0"
+     "C']"},
     {"an empty text", "note \"\"", "note['']"},
     {"display units", "units psig, kg/L, %, J/mol/K", "units[psig][,kg/L][,%][,J/mol/K]"},
     {"a unit without blank before it", "x 10L 5%", "x[10_L][5_%]"},
@@ -217,7 +223,10 @@ static const struct refused refusals[] = {
     {"a hyphen at a name's end", "x a- b", CODE_E103, 1, 4},
     {"an underscore", "test_pressure 5 barg", CODE_E101, 1, 5},
     {"a decimal without its digit", "x .5", CODE_E101, 1, 3},
-    {"a degree sign", "x 5 \xc2\xb0" "C", CODE_E101, 1, 5},
+    {"a degree sign",
+     "x 5 \xc2\xb0"
+     "C",
+     CODE_E101, 1, 5},
     {"an exclamation mark", "x !", CODE_E101, 1, 3},
     {"single quotes", "note 'abc'", CODE_E101, 1, 6},
     {"a control byte", "x \001", CODE_E101, 1, 3},
@@ -227,7 +236,10 @@ static const struct refused refusals[] = {
     {"an overlong UTF-8 character", "note \"\xc0\xaf\"", CODE_E101, 1, 7},
     {"half of a surrogate pair", "note \"\xed\xa0\x80\"", CODE_E101, 1, 7},
     {"a code point beyond Unicode", "note \"\xf4\x90\x80\x80\"", CODE_E101, 1, 7},
-    {"UTF-16", "\xff\xfe" "c", CODE_E109, 1, 1},
+    {"UTF-16",
+     "\xff\xfe"
+     "c",
+     CODE_E109, 1, 1},
     {"a number too large", "x 1e999", CODE_E104, 1, 3},
     {"a number too small", "x 1e-999", CODE_E104, 1, 3},
     {"an unknown escape", "note \"a\\n\"", CODE_E110, 1, 8},
@@ -309,8 +321,13 @@ static void printing_and_parsing_give_the_same_tree(void **state)
         }
     }
     const char *const awkward[] = {
-        "x (5) bar (2 * 5) m (a - 5) K", "x -(5) -(-5) -(-a) -((1, 2))", "x 0.1 1e22 1e23 123456.789012345678 -0",
-        "x 1 - (2 - 3) - (4 + 5) * 6 / (7 / 8)", "x (a + b) * -(c * d) / -e", "at (5) bar no m", "x 5, bar ; y 5 one m",
+        "x (5) bar (2 * 5) m (a - 5) K",
+        "x -(5) -(-5) -(-a) -((1, 2))",
+        "x 0.1 1e22 1e23 123456.789012345678 -0",
+        "x 1 - (2 - 3) - (4 + 5) * 6 / (7 / 8)",
+        "x (a + b) * -(c * d) / -e",
+        "at (5) bar no m",
+        "x 5, bar ; y 5 one m",
     };
     for (size_t i = 0; i < COUNT(awkward); i++) {
         check_round_trip(awkward[i], awkward[i]);

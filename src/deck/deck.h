@@ -11,7 +11,7 @@
 
 struct deck {
     const struct source_file *root;
-    struct source_file **files;   /* in the order first opened; files[0] is the root */
+    struct source_file **files; /* in the order first opened; files[0] is the root */
     size_t file_count;
     const struct statement *statements; /* of the root, each `use` replaced by what it brings, in order */
 };

@@ -6,7 +6,7 @@
 #include <string.h>
 
 enum {
-    PAGE_COLUMNS = 100, /* the listing's width */
+    PAGE_COLUMNS = 100,  /* the listing's width */
     GUTTER_COLUMNS = 10, /* of "      3 | " */
     LINE_COLUMNS = PAGE_COLUMNS - GUTTER_COLUMNS,
     COLUMNS_BEFORE_CARET = 50, /* of a line that is too long to be shown from its start */

@@ -14,10 +14,10 @@ struct diagnostic {
     enum code code;
     struct location at;
     const char *message;
-    const char *hint;           /* NULL: none */
-    const char *note;           /* about `note_at`, as "first defined here"; NULL: none */
+    const char *hint; /* NULL: none */
+    const char *note; /* about `note_at`, as "first defined here"; NULL: none */
     struct location note_at;
-    size_t order;               /* of arrival, the last sort key */
+    size_t order; /* of arrival, the last sort key */
 };
 
 /* At most this many errors, and this many warnings, are kept; the rest is counted. */

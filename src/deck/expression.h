@@ -16,9 +16,10 @@ struct name_scope {
 };
 
 /* The value of an expression. False after a message: unknown name or unit, dimensions that do not fit an addition, a
- * sum of two gauge or two temperature points, a division by zero, a result that is not finite. Rules: number times gauge
- * is gauge, gauge over gauge a number; point - point is a difference; point +- difference is a point; gauge +- plain
- * pressure is gauge; absolute - gauge is an error with a hint. A K is a point or a difference as its partner needs. */
+ * sum of two gauge or two temperature points, a division by zero, a result that is not finite. Rules: number times
+ * gauge is gauge, gauge over gauge a number; point - point is a difference; point +- difference is a point; gauge +-
+ * plain pressure is gauge; absolute - gauge is an error with a hint. A K is a point or a difference as its partner
+ * needs. */
 bool expression_value(const struct expression *expression, const struct name_scope *scope, struct diagnostics *out,
                       struct value *value);
 

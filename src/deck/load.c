@@ -21,7 +21,7 @@ struct use {
     const char *name;      /* NULL: the statement was wrong */
     const char *condition; /* NULL: none */
     struct opened *brought;
-    bool is_settled;       /* opened, found missing, or wrong */
+    bool is_settled; /* opened, found missing, or wrong */
 };
 
 struct use_list {
@@ -34,7 +34,7 @@ struct opened {
     const struct statement *statements;
     struct use_list uses;
     size_t depth;
-    bool is_counted;   /* the names of a file outside the library were noted */
+    bool is_counted;           /* the names of a file outside the library were noted */
     bool is_in_order, is_done; /* its statements are being, or have been, put into the deck */
 };
 

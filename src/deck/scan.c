@@ -9,8 +9,8 @@
 
 enum { LONGEST_UNIT = 48 };
 
-/* Names joined by operators without blanks up to this length are taken apart; a longer chain is taken as one wrong name,
- * as scanning its rest anew after each part would take time that grows with its square. */
+/* Names joined by operators without blanks up to this length are taken apart; a longer chain is taken as one wrong
+ * name, as scanning its rest anew after each part would take time that grows with its square. */
 enum { LONGEST_COMPOSED = 1000 };
 
 void *scan_reserve(struct parse_context *context, size_t bytes)
@@ -361,8 +361,12 @@ struct stranger {
 
 /* Characters that come from word processors, or from habits, and what to write for them. */
 static const struct stranger strangers[] = {
-    {"\xc2\xb0" "C", "write degC"},
-    {"\xc2\xb0" "F", "write degF"},
+    {"\xc2\xb0"
+     "C",
+     "write degC"},
+    {"\xc2\xb0"
+     "F",
+     "write degF"},
     {"\xc2\xb0", "write degC or degF"},
     {"\xc2\xb7", "join units with '.'"},
     {"\xc2\xb2", "write powers as in m2"},
@@ -387,8 +391,8 @@ void scan_stranger(struct parse_context *context, struct location at)
     const size_t left = context->file->length - at.begin;
     const size_t length = utf8_length(match, left);
     at.end = at.begin + (uint32_t)length;
-    struct parse_message *message = parse_complain(
-        context, CODE_E101, at, "'%.*s' has no place outside a text or a comment", (int)length, match);
+    struct parse_message *message =
+        parse_complain(context, CODE_E101, at, "'%.*s' has no place outside a text or a comment", (int)length, match);
     for (size_t i = 0; i < sizeof strangers / sizeof *strangers; i++) {
         const size_t bytes = strlen(strangers[i].begins);
         if (bytes <= left && memcmp(match, strangers[i].begins, bytes) == 0) {

@@ -12,16 +12,16 @@
 #include <stdint.h>
 
 struct source_file {
-    const char *name;   /* as shown to the reader: the path as given, or the path below the library folder */
-    const char *path;   /* as opened */
-    const char *text;   /* NUL-terminated; may hold NULs before `length` */
+    const char *name; /* as shown to the reader: the path as given, or the path below the library folder */
+    const char *path; /* as opened */
+    const char *text; /* NUL-terminated; may hold NULs before `length` */
     size_t length;
     const char *sha256; /* 64 hexadecimal digits */
     bool is_library;
-    bool is_used;       /* a value or block of it went into the case tree; set by elaboration */
+    bool is_used;                /* a value or block of it went into the case tree; set by elaboration */
     const uint32_t *line_starts; /* byte offset of each line */
     size_t line_count;
-    size_t order;       /* how many files were opened before it */
+    size_t order; /* how many files were opened before it */
 };
 
 /* Bytes begin..end (end not included) of a file; file NULL: nowhere in particular. */

@@ -20,17 +20,17 @@ enum expression_kind {
     EXPRESSION_SUBTRACT,
     EXPRESSION_MULTIPLY,
     EXPRESSION_DIVIDE,
-    EXPRESSION_TUPLE,  /* (left, right): two or more, chained through right as nested tuples */
+    EXPRESSION_TUPLE, /* (left, right): two or more, chained through right as nested tuples */
     EXPRESSION_KINDS
 };
 
 struct expression {
     enum expression_kind kind;
-    unsigned depth;          /* operations inside one another below this one; bounded, so that recursion is safe */
-    struct location at;      /* with the unit, and with parentheses around the whole */
+    unsigned depth;     /* operations inside one another below this one; bounded, so that recursion is safe */
+    struct location at; /* with the unit, and with parentheses around the whole */
     double number;
-    const char *unit;        /* NULL: no unit written */
-    const char *name;        /* EXPRESSION_NAME */
+    const char *unit; /* NULL: no unit written */
+    const char *name; /* EXPRESSION_NAME */
     const struct expression *left, *right;
 };
 
@@ -65,12 +65,12 @@ struct item {
 };
 
 struct statement {
-    struct location at;      /* word to last item */
+    struct location at; /* word to last item */
     struct location word_at;
     const char *word;
     const struct item *items;
     bool has_block;
-    struct location block_at; /* '{' to '}' */
+    struct location block_at;      /* '{' to '}' */
     const struct statement *block; /* NULL for an empty block */
     const struct statement *next;
 };

@@ -14,11 +14,11 @@
 #include <stddef.h>
 
 enum {
-    NESTING_MOST = 64,     /* blocks and parentheses inside one another */
-    EXPRESSION_MOST = 200, /* operations inside one another, and values of a pair */
-    TOKENS_MOST = 500000,  /* of one file; a library of all gases has a fifth of them */
+    NESTING_MOST = 64,       /* blocks and parentheses inside one another */
+    EXPRESSION_MOST = 200,   /* operations inside one another, and values of a pair */
+    TOKENS_MOST = 500000,    /* of one file; a library of all gases has a fifth of them */
     ERRORS_READ_MOST = 1000, /* then the rest of the file is not read */
-    SCANNER_BYTES = 1024   /* all the scanner allocates: its state and one buffer's */
+    SCANNER_BYTES = 1024     /* all the scanner allocates: its state and one buffer's */
 };
 
 /* A message found while parsing; handed to the diagnostics afterwards, since adding one there may jump. */
@@ -47,13 +47,13 @@ struct parse_context {
     size_t message_count;
     bool is_out_of_memory;
 
-    char *buffer;      /* the scanned copy of the file's text, with two closing NULs */
-    int last_token;    /* 0 at the start */
+    char *buffer;   /* the scanned copy of the file's text, with two closing NULs */
+    int last_token; /* 0 at the start */
     struct location last_at;
     bool is_recovering; /* after a syntax error, up to the statement's end: parentheses no longer hold lines together */
     bool is_stopped;    /* something is too large: the rest of the file is not read */
     size_t token_count;
-    bool is_end_known;  /* the blocks open at the end of the file were reported */
+    bool is_end_known; /* the blocks open at the end of the file were reported */
     struct opener openers[NESTING_MOST];
     size_t opener_count;
     struct location unclosed_pair; /* the last '(' given up as never closed */

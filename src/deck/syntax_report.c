@@ -25,8 +25,7 @@ static struct shown_token show_token(const struct syntax_error *error)
     }
     const bool is_long = length > LONGEST_SHOWN;
     if (is_long) {
-        for (length = LONGEST_SHOWN; length > 0 && ((unsigned char)at[length] & 0xc0U) == 0x80U; length--) {
-        }
+        for (length = LONGEST_SHOWN; length > 0 && ((unsigned char)at[length] & 0xc0U) == 0x80U; length--) {}
     }
     const char *quote = *at == '"' ? "" : "'";
     snprintf(shown.text, sizeof shown.text, "%s%.*s%s%s", quote, (int)length, at, is_long ? "..." : "", quote);
@@ -73,8 +72,8 @@ void syntax_report(struct parse_context *context, const struct syntax_error *err
     }
     const struct shown_token shown = show_token(error);
     if (error->may_begin_statement) {
-        struct parse_message *message = parse_complain(context, CODE_E105, error->at,
-                                                       "a statement begins with a word, not with %s", shown.text);
+        struct parse_message *message =
+            parse_complain(context, CODE_E105, error->at, "a statement begins with a word, not with %s", shown.text);
         if (error->is_block) {
             parse_hint(message, "put the '{' on the line of the word it belongs to");
         }

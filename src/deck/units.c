@@ -6,7 +6,7 @@
 
 /* Two rows of the same fact would need keeping equal, so all three tables come from units.def. */
 static const struct unit rows[] = {
-#define UNIT(symbol, numerator, denominator, offset, sort, kg, m, s, K, mol, A, definition)                            \
+#define UNIT(symbol, numerator, denominator, offset, sort, kg, m, s, K, mol, A, definition) \
     {{symbol, (numerator) / (denominator), offset}, {kg, m, s, K, mol, A}, SORT_##sort},
 #include "deck/units.def"
 #undef UNIT
@@ -31,8 +31,8 @@ static const char *const definitions[] = {
 
 enum {
     ROWS = sizeof rows / sizeof *rows,
-    LONGEST_SYMBOL = 48,   /* of a composed unit, in bytes */
-    LARGEST_EXPONENT = 12  /* of any base unit in a composed one */
+    LONGEST_SYMBOL = 48,  /* of a composed unit, in bytes */
+    LARGEST_EXPONENT = 12 /* of any base unit in a composed one */
 };
 
 static_assert(sizeof ratios / sizeof *ratios == ROWS, "one ratio for each row");

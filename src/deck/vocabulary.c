@@ -8,7 +8,10 @@ struct block_row {
     enum vocabulary_block also[2];
 };
 
-#define ALSO(first, second) {BLOCK_##first, BLOCK_##second}
+#define ALSO(first, second)           \
+    {                                 \
+        BLOCK_##first, BLOCK_##second \
+    }
 
 static const struct block_row blocks[] = {
 #define BLOCK(id, title, also) [BLOCK_##id] = {title, also},
@@ -20,7 +23,7 @@ static const struct block_row blocks[] = {
 
 static const struct vocabulary_row rows[] = {
 #define BLOCK(id, title, also)
-#define WORD(block, id, word, follows, measure, meaning, example)                                                      \
+#define WORD(block, id, word, follows, measure, meaning, example) \
     {BLOCK_##block, WORD_##block##_##id, word, follows, MEASURE_##measure, meaning, example},
 #include "../../grammar/vocabulary.def"
 #undef BLOCK

@@ -34,16 +34,16 @@ enum vocabulary_word {
 
 /* What is measured by the value a word takes. */
 enum measure {
-    MEASURE_NONE,           /* the word takes no single value */
+    MEASURE_NONE, /* the word takes no single value */
     MEASURE_NUMBER,
-    MEASURE_PRESSURE,       /* absolute; a plain unit is read as absolute */
-    MEASURE_GAUGE,          /* a rating: must be written as gauge */
-    MEASURE_TEMPERATURE,    /* a point */
+    MEASURE_PRESSURE,    /* absolute; a plain unit is read as absolute */
+    MEASURE_GAUGE,       /* a rating: must be written as gauge */
+    MEASURE_TEMPERATURE, /* a point */
     MEASURE_VOLUME,
     MEASURE_MASS,
     MEASURE_AMOUNT,
-    MEASURE_DENSITY,        /* mass per volume */
-    MEASURE_MOLAR_DENSITY,  /* amount per volume; a component's critical-density may be mass per volume too */
+    MEASURE_DENSITY,       /* mass per volume */
+    MEASURE_MOLAR_DENSITY, /* amount per volume; a component's critical-density may be mass per volume too */
     MEASURE_MOLAR_MASS,
     MEASURE_MOLAR_HEAT,
     MEASURE_DIPOLE,
@@ -54,10 +54,10 @@ struct vocabulary_row {
     enum vocabulary_block block;
     enum vocabulary_word id; /* equal to the row's index in vocabulary_rows() */
     const char *word;
-    const char *follows;     /* what follows the word, "" for nothing */
+    const char *follows; /* what follows the word, "" for nothing */
     enum measure measure;
-    const char *meaning;     /* one line */
-    const char *example;     /* a statement that uses it */
+    const char *meaning; /* one line */
+    const char *example; /* a statement that uses it */
 };
 
 /* The row of `word` in `block`, or in a block whose words `block` shares (a sheet's kind shares those of all sheets);

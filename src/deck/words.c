@@ -21,8 +21,8 @@ static struct word *find_place(const struct word_table *table, const char *text,
 {
     for (size_t at = hash & (table->capacity - 1);; at = (at + 1) & (table->capacity - 1)) {
         struct word *place = &table->places[at];
-        const bool is_same = place->text && place->hash == hash && place->length == length &&
-                             memcmp(place->text, text, length) == 0;
+        const bool is_same =
+            place->text && place->hash == hash && place->length == length && memcmp(place->text, text, length) == 0;
         if (!place->text || is_same) {
             return place;
         }

@@ -16,7 +16,7 @@ struct word {
     const char *text; /* NUL-terminated; NULL marks a free place */
     uint32_t length;
     uint32_t hash;
-    int token;        /* the parser's token of a reserved word, else that of a name; 0: not looked up */
+    int token; /* the parser's token of a reserved word, else that of a name; 0: not looked up */
     enum { UNIT_UNKNOWN, UNIT_YES, UNIT_NO } unit; /* UNIT_UNKNOWN: not looked up */
 };
 

@@ -9,8 +9,8 @@
 
 struct memory_file {
     const char *path;
-    const char *text;  /* NULL: reading it fails with `reason` */
-    int reason;        /* an errno value */
+    const char *text; /* NULL: reading it fails with `reason` */
+    int reason;       /* an errno value */
 };
 
 struct memory_files {

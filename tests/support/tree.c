@@ -27,9 +27,9 @@ static void add_expression(const struct expression *expression, struct text *out
 static void add_item(const struct item *item, struct text *out)
 {
     static const char *const kinds[ITEM_KINDS] = {
-        [ITEM_FROM] = "from ", [ITEM_TO] = "to ",          [ITEM_BY] = "by ", [ITEM_IN] = "in ",   [ITEM_AT] = "at ",
-        [ITEM_REF] = "ref ",   [ITEM_PLUS_MINUS] = "+/- ", [ITEM_NO] = "no ", [ITEM_ONE] = "one ", [ITEM_REST] = "rest",
-        [ITEM_FOR] = "for ",
+        [ITEM_FROM] = "from ", [ITEM_TO] = "to ",    [ITEM_BY] = "by ",          [ITEM_IN] = "in ",
+        [ITEM_AT] = "at ",     [ITEM_REF] = "ref ",  [ITEM_PLUS_MINUS] = "+/- ", [ITEM_NO] = "no ",
+        [ITEM_ONE] = "one ",   [ITEM_REST] = "rest", [ITEM_FOR] = "for ",
     };
     static const char *const relations[] = {"< ", "<= ", "= ", ">= ", "> "};
     text_format(out, "[%s%s", item->after_comma ? "," : "", kinds[item->kind] ? kinds[item->kind] : "");

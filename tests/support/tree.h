@@ -6,8 +6,8 @@
 #include "base/text.h"
 #include "deck/syntax.h"
 
-/* Adds the tree on one line: each statement as `word` and items in brackets, `,` before an item after a comma, blocks in
- * braces; operations with all parentheses: `[let x][= ((1 + 2 K) * a)]`. */
+/* Adds the tree on one line: each statement as `word` and items in brackets, `,` before an item after a comma, blocks
+ * in braces; operations with all parentheses: `[let x][= ((1 + 2 K) * a)]`. */
 void tree_add(const struct statement *statements, struct text *out);
 
 /* Whether two trees say the same; places do not count. */
