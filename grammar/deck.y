@@ -229,6 +229,7 @@ static int yyreport_syntax_error(const yypcontext_t *at, struct parse_context *c
         .is_relation = yypcontext_token(at) == YYSYMBOL_RELATION,
         .is_close_pair = yypcontext_token(at) == YYSYMBOL_CLOSE_PAIR,
         .is_starter = yypcontext_token(at) == YYSYMBOL_USE || yypcontext_token(at) == YYSYMBOL_LET,
+        .is_reserved = yypcontext_token(at) >= YYSYMBOL_FROM && yypcontext_token(at) <= YYSYMBOL_REST,
     };
     for (int i = 0; i < count; i++) {
         error.may_begin_value |= expected[i] == YYSYMBOL_OPEN_PAIR;

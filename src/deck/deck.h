@@ -28,7 +28,7 @@ struct deck_reader {
  *
  * `use "name"`: name.deck beside the file that uses it, else below the library folder. A file is brought once.
  * `use "name" for thing`: brought only when some file of the deck outside the library, or a library block that such a
- * file's names lead to, mentions `thing`. */
+ * file's names lead to, mentions `thing`, be it as the word of a statement. */
 struct deck *deck_load(const char *path, const struct deck_reader *reader, struct arena *arena,
                        struct diagnostics *diagnostics);
 

@@ -132,6 +132,9 @@ static size_t draw_character(struct drawn_line *line, const char *at, size_t lef
 {
     const size_t length = utf8_length(at, left);
     const unsigned char byte = (unsigned char)*at;
+    if (length == 3 && memcmp(at, "\xef\xbb\xbf", length) == 0) { /* a byte-order mark takes no column */
+        return length;
+    }
     if (byte == '\t') {
         const size_t blanks = TAB_COLUMNS - line->columns % TAB_COLUMNS;
         text_pad(line->out, blanks);

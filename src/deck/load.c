@@ -314,8 +314,10 @@ static void mention_expression(struct loading *loading, const struct expression 
     }
 }
 
+/* The word counts too: a line of a mixture begins with the name of its component. */
 static void mention_statement(struct loading *loading, const struct statement *statement)
 {
+    mention(loading, statement->word);
     for (const struct item *item = statement->items; item; item = item->next) {
         if (item->value) {
             mention_expression(loading, item->value);

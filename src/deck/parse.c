@@ -58,7 +58,11 @@ static bool clean_buffer(struct parse_context *context)
             parse_complain(context, CODE_E109, here, "too many bytes that are no text: this is not a deck");
             return false;
         }
-        parse_complain(context, CODE_E101, here, "byte 0x%02X is no text", (unsigned)(unsigned char)file->text[at]);
+        struct parse_message *message =
+            parse_complain(context, CODE_E101, here, "byte 0x%02X is no text", (unsigned)byte);
+        if (byte >= 0x80) {
+            parse_hint(message, "decks are read as UTF-8: save the file so");
+        }
         memset(context->buffer + at, ' ', strange);
         at += strange;
     }

@@ -116,7 +116,11 @@ bool scan_close_block(struct parse_context *context, struct location at)
 {
     give_up_pairs(context);
     if (context->opener_count == 0) {
-        parse_complain(context, CODE_E106, at, "'}' without a '{' before it");
+        if (context->swallowed_blocks > 0) {
+            context->swallowed_blocks--;
+        } else {
+            parse_complain(context, CODE_E106, at, "'}' without a '{' before it");
+        }
         return false;
     }
     context->opener_count--;
@@ -140,8 +144,7 @@ static struct location last_written(const struct parse_context *context)
 
 int scan_finish(struct parse_context *context, struct location *at)
 {
-    const uint32_t end = (uint32_t)context->file->length;
-    *at = (struct location){context->file, end, end};
+    *at = last_written(context);
     if (scan_needs_end(context)) {
         return scan_give(context, TOK_END, *at);
     }
@@ -335,6 +338,7 @@ int scan_text(struct parse_context *context, struct location at, bool is_closed,
     if (!is_closed) {
         parse_complain(context, CODE_E102, at, "a text that is not closed on its line");
         end -= match[end - 1] == '\r' ? 1U : 0U;
+        context->swallowed_blocks += match[end - 1] == '{';
     }
     char *plain = arena_try(context->arena, end + 1, 1);
     if (!plain) {
@@ -379,7 +383,7 @@ static const struct stranger strangers[] = {
     {"\xe2\x80\x9d", "write \" for a quotation mark"},
     {"\xc3\x97", "write *"},
     {"_", "words are joined by hyphens"},
-    {".", "a number begins with a digit, as in 0.5"},
+    {".", "a number has digits before and after its point, as in 0.5"},
     {"'", "a text stands in \"double quotes\""},
     {":", "a word and its value are separated by blanks only"},
     {"[", "pairs stand in parentheses, blocks in braces"},

@@ -57,6 +57,7 @@ struct parse_context {
     struct opener openers[NESTING_MOST];
     size_t opener_count;
     struct location unclosed_pair; /* the last '(' given up as never closed */
+    size_t swallowed_blocks;       /* '{' at the end of texts that are not closed: their '}' are no mistakes */
 
     max_align_t scanner_memory[SCANNER_BYTES / sizeof(max_align_t)];
     size_t scanner_bytes;

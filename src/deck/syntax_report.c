@@ -1,8 +1,7 @@
 #include "deck/syntax_report.h"
 
-#include "deck_parser.h"
-
 #include <stdio.h>
+#include <string.h>
 
 enum { LONGEST_SHOWN = 30 };
 
@@ -18,8 +17,9 @@ static struct shown_token show_token(const struct syntax_error *error)
     const char *at = file->text + error->at.begin;
     size_t length = error->at.end - error->at.begin;
     if (error->is_end) {
-        const char byte = error->at.begin < file->length ? *at : '\0';
-        const char *name = byte == '}' ? "'}'" : byte == ';' ? "';'" : byte == '\0' ? "end of file" : "end of line";
+        const char byte = *at;
+        const bool is_last = at + strspn(at, " \t\r\n") == file->text + file->length;
+        const char *name = byte == '}' ? "'}'" : byte == ';' ? "';'" : is_last ? "end of file" : "end of line";
         snprintf(shown.text, sizeof shown.text, "%s", name);
         return shown;
     }
@@ -50,8 +50,8 @@ static void report_value(struct parse_context *context, const struct syntax_erro
         parse_complain(context, CODE_E105, error->at, "a %s is expected here, not %s", wanted, shown);
     if (error->is_block || error->is_relation) {
         parse_hint(message, "the word before it is reserved and cannot be a name");
-    } else if (context->last_token != TOK_END && !error->may_begin_value) {
-        parse_hint(message, "reserved words are: from to by at in no one rest ref use let for");
+    } else if (error->is_reserved) {
+        parse_hint(message, "it is reserved and cannot be a name");
     }
 }
 
@@ -76,6 +76,8 @@ void syntax_report(struct parse_context *context, const struct syntax_error *err
             parse_complain(context, CODE_E105, error->at, "a statement begins with a word, not with %s", shown.text);
         if (error->is_block) {
             parse_hint(message, "put the '{' on the line of the word it belongs to");
+        } else if (error->is_reserved) {
+            parse_hint(message, "it is reserved for use inside a statement");
         }
     } else if (error->may_close_pair && !error->may_begin_value) {
         report_open_pair(context, error, shown.text);

@@ -8,7 +8,7 @@
 /* What the parser knows when a token does not fit. */
 struct syntax_error {
     struct location at;
-    bool is_end, is_block, is_relation, is_close_pair, is_starter;                   /* the token found */
+    bool is_end, is_block, is_relation, is_close_pair, is_starter, is_reserved;      /* the token found */
     bool may_begin_value, may_begin_statement, may_close_pair, may_be_name, may_end; /* what would have fitted */
 };
 
