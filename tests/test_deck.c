@@ -97,10 +97,10 @@ static const struct loaded_case waiting[] = {
      {{.path = "a.deck", .text = "use \"b\" for argon\nx"}, {.path = "b.deck", .text = "y"}},
      "x",
      "a.deck"},
-    {"the name of a statement is no mention",
+    {"the word of a statement is a mention, as in a mixture's lines",
      {{.path = "a.deck", .text = "use \"b\" for argon\nargon 5"}, {.path = "b.deck", .text = "y"}},
-     "argon[5]",
-     "a.deck"},
+     "y argon[5]",
+     "a.deck b.deck"},
     {"a name in an expression, in a block, after a marker",
      {{.path = "a.deck",
        .text = "use \"b\" for p\nuse \"c\" for q\nuse \"d\" for r\n"
