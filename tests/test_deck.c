@@ -128,7 +128,7 @@ static const struct loaded_case waiting[] = {
       {.path = "library/b.deck", .text = "mix q { part r }"},
       {.path = "library/c.deck", .text = "z"}},
      "z mix[q]{r} mix[q]{part[r]} mix[p]{part[q]} x[p]",
-     "a.deck gases.deck* b.deck* c.deck*"},
+     "a.deck gases.deck* c.deck* b.deck*"},
     {"a file that waits may bring the deck's own mention",
      {{.path = "a.deck", .text = "use \"b\" for p\nuse \"c\" for q\nx p"},
       {.path = "b.deck", .text = "y q"},

@@ -50,8 +50,8 @@ char *arena_format(struct arena *arena, const char *format, ...) __attribute__((
 void *arena_grow(struct arena *arena, void *items, size_t *capacity, size_t needed, size_t size);
 
 /* One more item at the end of a list: `list` is any struct with `items`, `count` and `capacity` members. */
-#define ARENA_APPEND(arena, list)                                                                                      \
-    ((list)->items = arena_grow((arena), (list)->items, &(list)->capacity, (list)->count + 1, sizeof *(list)->items),  \
+#define ARENA_APPEND(arena, list)                                                                                     \
+    ((list)->items = arena_grow((arena), (list)->items, &(list)->capacity, (list)->count + 1, sizeof *(list)->items), \
      &(list)->items[(list)->count++])
 
 #endif

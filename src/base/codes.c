@@ -1,7 +1,7 @@
 #include "base/codes.h"
 
 static const struct code_row rows[] = {
-#define CODE(number, severity, meaning, advice)                                                                        \
+#define CODE(number, severity, meaning, advice) \
     {CODE_##severity##number, #severity[0], #severity #number, meaning, advice},
 #include "base/codes.def"
 #undef CODE

@@ -13,7 +13,7 @@ enum code {
 
 struct code_row {
     enum code code;
-    char severity; /* 'E' or 'W' */
+    char severity;    /* 'E' or 'W' */
     const char *name; /* "E101" */
     const char *meaning;
     const char *advice;
