@@ -4,6 +4,7 @@
 #include "support/result_reading.h"
 
 #include "filling/classify.h"
+#include "filling/listed_ledger.h"
 #include "filling/solve.h"
 
 #include <math.h>
@@ -382,6 +383,41 @@ static void a_cubic_alone_is_indicative_and_a_listed_row_is_not(void **state)
     tear_down_bench(bench);
 }
 
+/* ---- every listed row together ----------------------------------------------------------------------------------- */
+
+static void two_listed_rows_or_more_are_told_together(void **state)
+{
+    (void)state;
+    struct bench *bench = set_up_bench();
+    list_rows(bench, 0.61, 0.77);
+    bench->it->sheet.listed = LISTED_COMPARE;
+    filled_vessel_method(bench->it, "peng-robinson");
+    struct listed_ledger ledger = {0};
+    bench->it->run.ledger = &ledger;
+    answer(bench);
+    struct result *result = bench->it->run.result;
+    tell_listed_ledger(&ledger, result);
+    assert_int_equal(result->sheet_count, 1); /* one row: the sheet says it all */
+    bench->it->vessel.test_pressure = given(190.0 * BAR);
+    answer(bench);
+    tell_listed_ledger(&ledger, result);
+    assert_int_equal(result->sheet_count, 2);
+    const struct table *table =
+        result_table(result->last_sheet, "filling ratio, listed beside computed", "peng-robinson");
+    assert_non_null(table);
+    assert_int_equal(table->row_count, 2);
+    const double computed = result_cell(table, 0, "computed")->number;
+    assert_close(peng_robinson_pressure(computed * 999.1 * 0.0502, 338.15), 250.0 * BAR + GAUGE_ZERO, 1e-9,
+                 "the 1976 equation gives the test pressure there");
+    assert_close(result_cell(table, 0, "excess")->number, 0.77 - computed, 1e-12, "listed less computed");
+    assert_string_equal(result_cell(table, 0, "agrees")->text, "no");
+    assert_true(result_cell(table, 1, "sheet")->number == 1.0); /* set, not computed */
+    table = result_table(result->last_sheet, "criteria that listed charges miss", NULL);
+    assert_int_equal(table->row_count, peng_robinson_pressure(0.61 * 999.1 * 0.0502, 338.15) > 190e5 + GAUGE_ZERO
+                                           ? 2 : 1);
+    tear_down_bench(bench);
+}
+
 /* ---- no charge --------------------------------------------------------------------------------------------------- */
 
 static void a_refused_gas_gets_no_charge_whatever_was_assessed(void **state)
@@ -410,8 +446,7 @@ static void a_gas_that_reacts_needs_an_assessment(void **state)
     } cases[] = {
         {HAZARD_DECOMPOSES, NULL, false},
         {HAZARD_DECOMPOSES, "HAZ-7", true},
-        {HAZARD_POLYMERISES, NULL, false},
-        {HAZARD_POLYMERISES, "HAZ-7", true},
+        {HAZARD_POLYMERISES, NULL, true},
         {HAZARD_FLAMMABLE | HAZARD_OXIDISING, NULL, false},
         {HAZARD_FLAMMABLE | HAZARD_TOXIC, NULL, true},
         {HAZARD_DISSOLVED, "HAZ-7", false},
@@ -427,6 +462,17 @@ static void a_gas_that_reacts_needs_an_assessment(void **state)
                          cases[i].is_filled && cases[i].assessed != NULL);
         tear_down_bench(bench);
     }
+}
+
+static void a_gas_that_polymerises_is_filled_with_a_warning(void **state)
+{
+    (void)state;
+    struct bench *bench = set_up_bench();
+    bench->it->component.hazards = HAZARD_POLYMERISES;
+    filled_vessel_method(bench->it, "peng-robinson");
+    answer(bench);
+    assert_int_equal(result_warnings(bench->it->run.result, CODE_W333), 1);
+    tear_down_bench(bench);
 }
 
 static void a_vapour_pressure_rule_above_the_critical_temperature_is_undecided(void **state)
@@ -667,8 +713,10 @@ int main(void)
         cmocka_unit_test(a_shown_method_never_governs),
         cmocka_unit_test(an_ideal_gas_leads_nowhere),
         cmocka_unit_test(a_cubic_alone_is_indicative_and_a_listed_row_is_not),
+        cmocka_unit_test(two_listed_rows_or_more_are_told_together),
         cmocka_unit_test(a_refused_gas_gets_no_charge_whatever_was_assessed),
         cmocka_unit_test(a_gas_that_reacts_needs_an_assessment),
+        cmocka_unit_test(a_gas_that_polymerises_is_filled_with_a_warning),
         cmocka_unit_test(a_vapour_pressure_rule_above_the_critical_temperature_is_undecided),
         cmocka_unit_test(a_rule_that_every_charge_breaks_allows_none),
         cmocka_unit_test(a_limit_that_rounds_to_nothing_allows_none),

@@ -344,6 +344,28 @@ static void a_vessel_denser_than_the_method_knows_fails(void **state)
     arena_free(it->arena);
 }
 
+/* A vapour pressure does not depend on the mass: only the densest state ends the search. */
+static void what_only_the_densest_state_ends_is_unlimited(void **state)
+{
+    (void)state;
+    struct filled_vessel *it = filled_vessel_create();
+    struct method_run *method = filled_vessel_method(it, "peng-robinson");
+    struct predicate rule = compared(280.0, 280.0, SYMBOL_VAPOUR_PRESSURE, RELATION_AT_MOST, formula_number(it, 1e7));
+    for (int ranged = 0; ranged < 2; ranged++) {
+        rule.to = ranged ? 300.0 : 280.0;
+        double mass;
+        bool is_unlimited;
+        struct predicate_finding finding;
+        assert_int_equal(
+            predicate_largest_mass(&it->run, method, &rule, 200.0, &mass, &is_unlimited, &finding), ANSWER_OK);
+        assert_true(is_unlimited);
+        const double densest = 0.0502 * 0.0440098 * 7.3773e6 / (0.077796073903888456 * GAS_CONSTANT * 304.1282);
+        assert_true(mass <= densest);
+        assert_close(mass, densest, 1e-6, "V M / b, Peng and Robinson 1976");
+    }
+    arena_free(it->arena);
+}
+
 static void no_solid_is_decided_by_the_triple_point_alone(void **state)
 {
     (void)state;
@@ -480,6 +502,7 @@ int main(void)
         cmocka_unit_test(above_the_critical_temperature_there_is_no_liquid_and_no_vapour_pressure),
         cmocka_unit_test(a_rule_on_liquid_density_speaks_of_the_liquid_beside_vapour),
         cmocka_unit_test(a_vessel_denser_than_the_method_knows_fails),
+        cmocka_unit_test(what_only_the_densest_state_ends_is_unlimited),
         cmocka_unit_test(no_solid_is_decided_by_the_triple_point_alone),
         cmocka_unit_test(the_limits_of_the_phase_rules_are_the_saturated_densities),
         cmocka_unit_test(a_largest_mass_is_met_and_a_little_more_is_not),

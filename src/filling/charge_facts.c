@@ -1,6 +1,7 @@
 #include "filling/charge_facts.h"
 
 #include "filling/classify.h"
+#include "filling/requirement.h"
 #include "filling/sensitivities.h"
 
 #define STATED_TEMPERATURE 288.15 /* K: gas volumes and settled pressures are stated at 15 degC */
@@ -29,21 +30,40 @@ static void add_gas_volume(const struct sheet_run *run, struct method_run *metho
     }
 }
 
-void add_charge_facts(const struct sheet_run *run, struct method_run *method, double mass)
+struct mass_basis basis_of_charge(const struct sheet_run *run)
 {
-    struct result *result = run->result;
+    const struct case_charge *charge = run->sheet->charge;
+    if (charge->kind == FILL_PRESSURE || charge->kind == FILL_VOLUME) {
+        return (struct mass_basis){.method = run->methods[0].name};
+    }
+    const struct origin *origin = &charge->amount.origin;
+    const size_t line = deck_line(run, origin->at.file != NULL ? origin->at : charge->origin.at);
+    return (struct mass_basis){.source = arena_format(run->arena, "given, line %zu", line)};
+}
+
+static struct fact *add_based(const struct sheet_run *run, const char *name, double value, struct look look,
+                              struct mass_basis basis)
+{
+    struct fact *fact = sheet_add_fact(run->result, run->out, name, value, look);
+    fact->method = basis.method;
+    fact->source = basis.source;
+    return fact;
+}
+
+void add_charge_facts(const struct sheet_run *run, struct method_run *method, double mass, struct mass_basis basis)
+{
     const struct case_vessel *vessel = run->sheet->vessel;
     const double density = mass / vessel->water_capacity.value;
-    sheet_add_fact(result, run->out, "mass", mass, look_mass(run));
-    sheet_add_fact(result, run->out, "amount", mass / run->sheet->fluid->molar_mass, look_amount());
+    add_based(run, "mass", mass, look_mass(run), basis);
+    add_based(run, "amount", mass / run->sheet->fluid->molar_mass, look_amount(), basis);
     add_gas_volume(run, method, mass);
-    sheet_add_fact(result, run->out, "density", density, look_density(run));
-    sheet_add_fact(result, run->out, "filling-ratio", density / WATER_DENSITY_15C, look_ratio(4));
+    add_based(run, "density", density, look_density(run), basis);
+    add_based(run, "filling-ratio", density / WATER_DENSITY_15C, look_ratio(4), basis)->remark = basis.ratio_remark;
     if (vessel->tare.given) {
-        sheet_add_fact(result, run->out, "gross-weight", vessel->tare.value + mass, look_mass(run))->remark =
-            "tare and charge";
+        add_based(run, "gross-weight", vessel->tare.value + mass, look_mass(run), basis)->remark = "tare and charge";
     }
-    sheet_add_words(result, run->out, "class", class_words(classify_charge(run, method, mass)))->method = method->name;
+    sheet_add_words(run->result, run->out, "class", class_words(classify_charge(run, method, mass)))->method =
+        method->name;
 }
 
 struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct method_run *method, double mass)

@@ -4,6 +4,7 @@
 
 #include "filling/contents_table.h"
 #include "filling/found_temperatures.h"
+#include "filling/listed_ledger.h"
 #include "filling/requirement.h"
 
 #define SETTLED_TEMPERATURE 288.15 /* K: where listed working pressures are stated */
@@ -137,13 +138,28 @@ void apply_listed_row(struct permissible *sheet)
     }
 }
 
+/* The row that applies, or by letter o the lowest. */
+static const struct listed_row *row_in_question(const struct permissible *sheet)
+{
+    return sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+}
+
 const char *listed_words(const struct permissible *sheet)
 {
-    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+    const struct listed_row *row = row_in_question(sheet);
     return arena_format(sheet->run->arena, "%s, %.6g %s", sheet->listed.entry->name,
                         (row->test_pressure + STANDARD_ATMOSPHERE - sheet->run->sheet->units.gauge.offset) /
                             sheet->run->sheet->units.gauge.factor,
                         sheet->run->sheet->units.gauge.symbol);
+}
+
+const char *listed_source(const struct permissible *sheet)
+{
+    const struct listed_row *row = row_in_question(sheet);
+    if (row->origin.source != NULL) {
+        return row->origin.source->key;
+    }
+    return arena_format(sheet->run->arena, "given, line %zu", deck_line(sheet->run, row->origin.at));
 }
 
 /* ---- the comparison ---------------------------------------------------------------------------------------------- */
@@ -154,8 +170,32 @@ static struct method_limits *basis_of(const struct permissible *sheet)
     return &sheet->by_method[sheet->governing.given ? sheet->governing.index : 0];
 }
 
+/* How a criterion is met or missed; where the liquid's volume misses it, from which temperature on the vessel is full. */
+static const char *found_words(const struct sheet_run *run, struct method_run *method,
+                               const struct predicate *predicate, const struct predicate_finding *finding, double mass)
+{
+    const char *words = margin_words(run, predicate, finding);
+    if (finding->holds || predicate->quantity != SYMBOL_LIQUID_VOLUME) {
+        return words;
+    }
+    const struct liquid_end_found end = find_liquid_end(run, method, mass);
+    return end.end == LIQUID_END_FULL
+               ? arena_format(run->arena, "liquid-full from %s on", temperature_words(run, end.temperature))
+               : words;
+}
+
+static void add_miss(const struct sheet_run *run, struct listed_line *line, const struct predicate *predicate,
+                     const struct predicate_finding *finding, const char *words)
+{
+    line->misses =
+        arena_grow(run->arena, line->misses, &line->miss_capacity, line->miss_count + 1, sizeof *line->misses);
+    line->misses[line->miss_count++] = (struct listed_miss){
+        .criterion = predicate->written, .temperature = finding->worst_temperature, .words = words};
+}
+
 /* What the listed charge does to each computed criterion: this explains a row that differs from the computation. */
-static void add_findings(const struct permissible *sheet, struct method_run *method, double mass)
+static void add_findings(const struct permissible *sheet, struct method_run *method, double mass,
+                         struct listed_line *line)
 {
     const struct sheet_run *run = sheet->run;
     for (size_t i = 0; i < sheet->criterion_count; i++) {
@@ -164,16 +204,21 @@ static void add_findings(const struct permissible *sheet, struct method_run *met
             continue;
         }
         const struct predicate_finding finding = predicate_check(run, method, criterion->predicate, mass);
-        if (finding.answer == ANSWER_OK) {
-            sheet_add_note(run->result, run->out, "filled to the row, '%s' is %s at %s: %s (%s)",
-                           criterion->predicate->written, finding.holds ? "met" : "missed",
-                           temperature_words(run, finding.worst_temperature),
-                           margin_words(run, criterion->predicate, &finding), method->name);
+        if (finding.answer != ANSWER_OK) {
+            continue;
+        }
+        const char *words = found_words(run, method, criterion->predicate, &finding, mass);
+        sheet_add_note(run->result, run->out, "filled to the row, '%s' is %s at %s: %s (%s)",
+                       criterion->predicate->written, finding.holds ? "met" : "missed",
+                       temperature_words(run, finding.worst_temperature), words, method->name);
+        if (!finding.holds) {
+            add_miss(run, line, criterion->predicate, &finding, words);
         }
     }
 }
 
-static void add_listed_pressure(const struct permissible *sheet, struct method_run *method, double mass)
+static void add_listed_pressure(const struct permissible *sheet, struct method_run *method, double mass,
+                                struct listed_line *line)
 {
     const struct sheet_run *run = sheet->run;
     const double temperature = hottest_ruled(sheet);
@@ -186,6 +231,7 @@ static void add_listed_pressure(const struct permissible *sheet, struct method_r
     }
     const struct liquid_end_found found = find_liquid_end(run, method, mass);
     if (found.end == LIQUID_END_FULL) {
+        line->liquid_full = (struct optional){true, found.temperature};
         sheet_add_fact(run->result, run->out, "listed-liquid-full-temperature", found.temperature,
                        look_temperature(run))
             ->method = method->name;
@@ -199,14 +245,31 @@ static void warn_of_difference(const struct permissible *sheet, double computed)
     const size_t line = location_line(run->sheet->at);
     if (listed > computed + SAME_RATIO) {
         result_warn(run->result, CODE_W320, line, run->number,
-                    "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.1f %%",
+                    "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.2f %%",
                     listed_words(sheet), listed, computed, listed - computed, 100.0 * (listed / computed - 1.0));
     } else if (listed < computed - SAME_RATIO && sheet->governing.given &&
                governing_criterion(sheet)->kind == CRITERION_LISTED) {
         result_warn(run->result, CODE_W321, line, run->number,
-                    "%s: listed filling ratio %g is below the computed limit %.4f by %.4f, %.1f %%: the row governs",
+                    "%s: listed filling ratio %g is below the computed limit %.4f by %.4f, %.2f %%: the row governs",
                     listed_words(sheet), listed, computed, computed - listed, 100.0 * (1.0 - listed / computed));
     }
+}
+
+/* The row's ratio beside the computed one: facts, and a warning where they differ. */
+static void add_computed_ratio(const struct permissible *sheet, const struct method_limits *basis,
+                               struct listed_line *line)
+{
+    const struct sheet_run *run = sheet->run;
+    const double computed = ratio_of_mass(run, basis->limits[basis->ruled.index].mass);
+    line->computed = (struct optional){true, computed};
+    struct fact *fact = sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4));
+    fact->method = basis->method->name;
+    fact->remark = "least of the rules' criteria, unrounded";
+    fact = sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed,
+                          look_ratio(4));
+    fact->method = basis->method->name;
+    fact->remark = "listed less computed";
+    warn_of_difference(sheet, computed);
 }
 
 static void tell_ratio_row(const struct permissible *sheet)
@@ -214,26 +277,25 @@ static void tell_ratio_row(const struct permissible *sheet)
     const struct sheet_run *run = sheet->run;
     const struct method_limits *basis = basis_of(sheet);
     const double mass = mass_of_ratio(run, sheet->listed.filling_ratio);
-    struct fact *fact = sheet_add_fact(run->result, run->out, "listed-filling-ratio", sheet->listed.filling_ratio,
-                                       look_ratio(4));
-    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
-    fact->source = row->origin.source == NULL ? NULL : row->origin.source->key;
-    sheet_add_fact(run->result, run->out, "listed-mass", mass, look_mass(run));
+    sheet_add_fact(run->result, run->out, "listed-filling-ratio", sheet->listed.filling_ratio, look_ratio(4))->source =
+        listed_source(sheet);
+    sheet_add_fact(run->result, run->out, "listed-mass", mass, look_mass(run))->source = listed_source(sheet);
     if (basis->method == NULL) {
         return;
     }
+    struct listed_line line = {.run = run,
+                               .entry = sheet->listed.entry->name,
+                               .test_pressure = row_in_question(sheet)->test_pressure,
+                               .listed = sheet->listed.filling_ratio,
+                               .method = basis->method->name};
     if (basis->ruled.given) {
-        const double computed = ratio_of_mass(run, basis->limits[basis->ruled.index].mass);
-        fact = sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4));
-        fact->method = basis->method->name;
-        fact->remark = "least of the rules' criteria, unrounded";
-        fact = sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed,
-                              look_ratio(4));
-        fact->remark = "listed less computed";
-        warn_of_difference(sheet, computed);
+        add_computed_ratio(sheet, basis, &line);
     }
-    add_listed_pressure(sheet, basis->method, mass);
-    add_findings(sheet, basis->method, mass);
+    add_listed_pressure(sheet, basis->method, mass, &line);
+    add_findings(sheet, basis->method, mass, &line);
+    if (run->ledger != NULL) {
+        *ARENA_APPEND(run->arena, run->ledger) = line;
+    }
 }
 
 /* A listed working pressure beside the settled pressure that the criterion it stands for would allow. */
@@ -241,10 +303,10 @@ static void tell_pressure_row(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
     const struct method_limits *basis = basis_of(sheet);
-    const struct listed_row *row = sheet->listed.row != NULL ? sheet->listed.row : sheet->listed.lowest;
+    const struct listed_row *row = row_in_question(sheet);
     sheet_add_fact(run->result, run->out, "listed-working-pressure", row->working_pressure.value + STANDARD_ATMOSPHERE,
                    look_gauge(run))
-        ->source = row->origin.source == NULL ? NULL : row->origin.source->key;
+        ->source = listed_source(sheet);
     struct vessel_contents contents;
     if (basis->method != NULL && basis->replaced.given &&
         contents_at(run, basis->method, basis->limits[basis->replaced.index].mass, SETTLED_TEMPERATURE, &contents) ==

@@ -75,9 +75,6 @@ static const char *assessment_needed(const struct case_fluid *fluid)
     if ((hazards & HAZARD_DECOMPOSES) != 0) {
         return "the gas may decompose, and its pressure after that was not computed";
     }
-    if ((hazards & HAZARD_POLYMERISES) != 0) {
-        return "the gas may polymerise";
-    }
     if ((hazards & HAZARD_FLAMMABLE) != 0 && (hazards & HAZARD_OXIDISING) != 0) {
         return "fuel beside oxidant";
     }
@@ -93,6 +90,18 @@ static void tell_no_charge(const struct sheet_run *run, enum requirement_state s
     requirement->reason = reason;
     requirement->line = location_line(run->sheet->at);
     add_headline(run, "no permitted charge");
+}
+
+static void warn_of_polymerisation(const struct sheet_run *run)
+{
+    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
+        if ((run->sheet->fluid->components[i]->hazards & HAZARD_POLYMERISES) != 0) {
+            result_warn(run->result, CODE_W333, location_line(run->sheet->at), run->number,
+                        "%s may polymerise: the charge holds for stabilised gas only, and heat set free by the "
+                        "reaction was not computed",
+                        run->sheet->fluid->components[i]->name);
+        }
+    }
 }
 
 /* True when the sheet ends here. An assessment is quoted, never judged. */
@@ -218,6 +227,21 @@ static void add_settled_pressure(const struct permissible *sheet)
     }
 }
 
+/* A listed row's mass is the row's own; a computed one is the method's, rounded as its criterion says. */
+static struct mass_basis basis_of_permitted(const struct permissible *sheet)
+{
+    const struct criterion *criterion = governing_criterion(sheet);
+    if (criterion->kind == CRITERION_LISTED && sheet->listed.has_ratio) {
+        return (struct mass_basis){.source = listed_source(sheet)};
+    }
+    struct mass_basis basis = {.method = governing_method(sheet)->name};
+    if (criterion->round_to > 0.0) {
+        basis.ratio_remark =
+            arena_format(sheet->run->arena, "rounded down to a multiple of %g", criterion->round_to);
+    }
+    return basis;
+}
+
 static void tell_charge(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
@@ -227,7 +251,7 @@ static void tell_charge(const struct permissible *sheet)
     const struct choice computed = sheet->by_method[sheet->governing.index].computed;
     sheet_begin_facts(run->result, run->out,
                       is_indicative(sheet) ? "indicative charge, not for filling" : "permitted charge");
-    add_charge_facts(run, method, sheet->mass);
+    add_charge_facts(run, method, sheet->mass, basis_of_permitted(sheet));
     if (computed.given) {
         struct fact *fact = sheet_add_fact(
             run->result, run->out, "filling-ratio-unrounded",
@@ -431,6 +455,7 @@ void answer_permissible_charge(struct sheet_run *run)
     if (refuses(run)) {
         return;
     }
+    warn_of_polymerisation(run);
     struct permissible sheet = {.run = run};
     collect_criteria(&sheet);
     find_limits(&sheet);

@@ -87,6 +87,9 @@ double hottest_ruled(const struct permissible *sheet);
 /* "UN 1013, 250 barg". */
 const char *listed_words(const struct permissible *sheet);
 
+/* The key of the source that states the row, or words for a row of the deck itself. */
+const char *listed_source(const struct permissible *sheet);
+
 /* The row beside the computation: facts, what it misses and by how much, warnings. */
 void tell_listed_row(struct permissible *sheet);
 

@@ -169,7 +169,8 @@ static void add_listed_row(const struct permissible *sheet, struct table *table)
     struct cell *row = table_add_row(sheet->run->result, table);
     cell_set_text(&row[SUMMARY_METHOD], "listed row");
     set_amounts(sheet, row, sheet->governing.given ? governing_method(sheet) : NULL, mass, mass);
-    cell_set_text(&row[SUMMARY_GOVERNED_BY], listed_words(sheet));
+    cell_set_text(&row[SUMMARY_GOVERNED_BY],
+                  arena_format(sheet->run->arena, "%s, %s", listed_words(sheet), listed_source(sheet)));
 }
 
 static void add_permitted_row(const struct permissible *sheet, struct table *table)
@@ -183,7 +184,11 @@ static void add_permitted_row(const struct permissible *sheet, struct table *tab
     cell_set_text(&row[SUMMARY_METHOD], "permitted");
     set_amounts(sheet, row, of->method, sheet->mass, sheet->mass);
     row[SUMMARY_UNROUNDED] = (struct cell){.kind = CELL_EMPTY};
-    cell_set_text(&row[SUMMARY_GOVERNED_BY], governed_by(sheet, of->permitted.index, limit));
+    const char *words = governed_by(sheet, of->permitted.index, limit);
+    if (sheet->criteria[of->permitted.index].kind != CRITERION_LISTED) {
+        words = arena_format(sheet->run->arena, "%s, %s", words, of->method->name);
+    }
+    cell_set_text(&row[SUMMARY_GOVERNED_BY], words);
 }
 
 static bool shows_indicative(const struct permissible *sheet)

@@ -266,6 +266,7 @@ static struct predicate_finding find_contents(const struct sheet_run *run, struc
         finding.has_contents = true;
     } else if (answer == ANSWER_OUT_OF_RANGE && is_overfull(run, method, mass, temperature)) {
         decide(&finding, false, (double)INFINITY, "denser than any state the method knows", score);
+        finding.is_overfull = true;
     } else {
         return undecided(answer, temperature, "the method gave no answer");
     }

@@ -14,6 +14,7 @@ struct predicate_finding {
     bool has_margin;              /* false for `one phase` and the like, and where none of the quantity is present */
     double margin;                /* SI of the quantity compared, positive when it holds */
     double worst_temperature;     /* K */
+    bool is_overfull;             /* fails only because the method knows no state as dense */
     bool has_contents;            /* false for what temperature or mass alone decides, and for an overfull vessel */
     struct vessel_contents worst; /* the contents there */
     const char *words;            /* what was found where a number does not say it ("liquid-full"); may be NULL */
@@ -27,8 +28,8 @@ struct predicate_finding predicate_check(const struct sheet_run *run, struct met
                                          const struct predicate *predicate, double mass);
 
 /* The largest mass (kg) such that it and every smaller one meets the predicate, by one method: located to 1e-10,
- * relative, on the side that meets it; 0 when no mass does. *is_unlimited when no mass up to `most` breaks it (*mass
- * is `most`). answer: ANSWER_OK, or why it is undecided (at_limit->words may say more). */
+ * relative, on the side that meets it; 0 when no mass does. *is_unlimited when no mass up to `most`, or to the densest
+ * state the method knows, breaks it (*mass is that). answer: ANSWER_OK, or why it is undecided (at_limit->words may say more). */
 enum answer predicate_largest_mass(const struct sheet_run *run, struct method_run *method,
                                    const struct predicate *predicate, double most, double *mass, bool *is_unlimited,
                                    struct predicate_finding *at_limit);

@@ -157,6 +157,10 @@ static enum answer limit_at_temperature(struct mass_search *search, double most,
         const struct search_function function = {score_at_mass, search};
         answer = search_root(&function, 0.0, MASS_TOLERANCE, &step);
         limit->mass = step.a;
+        /* What ends at the densest state of the method was not broken by anything. */
+        double score;
+        limit->is_unlimited =
+            answer == ANSWER_OK && score_at_mass(search, step.b, &score) == ANSWER_OK && search->last.is_overfull;
     }
     if (answer == ANSWER_OK) {
         double score;
@@ -178,7 +182,8 @@ static enum answer lower_limit(struct mass_search *search, double temperature, s
         limit->finding = here.finding;
         return answer;
     }
-    if (!here.is_unlimited) {
+    if (here.mass < limit->mass || !here.is_unlimited) {
+        here.is_unlimited = here.is_unlimited && limit->is_unlimited;
         here.has_window = here.has_window || limit->has_window;
         here.window = limit->has_window ? limit->window : here.window;
         *limit = here;
@@ -198,7 +203,7 @@ static enum answer exchange(struct mass_search *search, double mass, struct mass
     }
     const double before = limit->mass;
     limit->mass = fmin(before, mass);
-    limit->is_unlimited = false;
+    limit->is_unlimited = limit->is_unlimited && finding.is_overfull;
     const enum answer answer = lower_limit(search, finding.worst_temperature, limit);
     /* The worst temperature moves a little with the mass: a step below the limits' tolerance is taken twice over. */
     if (answer == ANSWER_OK && limit->mass > before * (1.0 - 10.0 * MASS_TOLERANCE)) {

@@ -225,7 +225,7 @@ void answer_settled_pressure(struct sheet_run *run)
     struct method_run *lead = &run->methods[0];
     choose_temperatures(&settled);
     sheet_begin_facts(run->result, run->out, "charge");
-    add_charge_facts(run, lead, settled.mass);
+    add_charge_facts(run, lead, settled.mass, basis_of_charge(run));
     add_tables(&settled);
     add_quotes(&settled);
     add_found(&settled);

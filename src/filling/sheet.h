@@ -22,6 +22,9 @@ struct method_run {
     bool may_govern;
 };
 
+/* Listed rows held against the computation, over all sheets. */
+struct listed_ledger;
+
 struct sheet_run {
     struct arena *arena;
     const struct case_tree *tree;
@@ -31,6 +34,7 @@ struct sheet_run {
     size_t number; /* of the sheet, from 1 */
     size_t method_count;
     struct method_run *methods; /* lead first */
+    struct listed_ledger *ledger; /* NULL: none is kept */
 };
 
 /* A method ready for a fluid, or with `lack` set. Ideal gas is never allowed to govern, whatever `may_govern` says. */

@@ -3,6 +3,7 @@
 #include "filling/solve.h"
 
 #include "filling/data_used.h"
+#include "filling/listed_ledger.h"
 
 #include <string.h>
 
@@ -78,7 +79,8 @@ static const struct {
     [SHEET_FUGACITY] = {"fugacity", answer_fugacity},
 };
 
-static void answer_sheet(const struct case_tree *tree, size_t index, struct method_pool *pool, struct result *result)
+static void answer_sheet(const struct case_tree *tree, size_t index, struct method_pool *pool,
+                         struct listed_ledger *ledger, struct result *result)
 {
     const struct case_sheet *sheet = &tree->sheets[index];
     struct sheet_run *run = arena_alloc(result->arena, 1, sizeof *run);
@@ -89,6 +91,7 @@ static void answer_sheet(const struct case_tree *tree, size_t index, struct meth
         .result = result,
         .out = result_add_sheet(result, KINDS[sheet->kind].word, sheet->title),
         .number = index + 1,
+        .ledger = ledger,
     };
     run->out->fluid = sheet->fluid->name;
     run->out->vessel = sheet->vessel == NULL ? NULL : sheet->vessel->name;
@@ -148,11 +151,13 @@ struct result *filling_solve(const struct case_tree *tree, const char *version, 
 {
     struct result *result = result_create(arena);
     struct method_pool pool = {0};
+    struct listed_ledger ledger = {0};
     tell_document(tree, version, result);
     tell_inputs(tree, result);
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        answer_sheet(tree, i, &pool, result);
+        answer_sheet(tree, i, &pool, &ledger, result);
     }
+    tell_listed_ledger(&ledger, result);
     tell_data(tree, &pool, result);
     tell_methods(&pool, result);
     tell_cautions(result);

@@ -26,6 +26,8 @@ static const char *cell_field(struct arena *arena, const struct column *column, 
         return number_exact(arena, &column->look, cell->number);
     case CELL_TEXT:
         return page_clean(arena, cell->text);
+    case CELL_SHEET:
+        return arena_format(arena, "%.0f", cell->number);
     case CELL_EMPTY:
         break;
     }

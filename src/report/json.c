@@ -84,6 +84,8 @@ static json_t *cell_tree(const struct column *column, const struct cell *cell)
         return si_or_null(&column->look, cell->number);
     case CELL_TEXT:
         return words_or_null(cell->text);
+    case CELL_SHEET:
+        return json_integer((json_int_t)cell->number);
     case CELL_EMPTY:
         break;
     }

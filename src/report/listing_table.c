@@ -16,6 +16,9 @@ static void set_cell(struct grid *grid, struct grid_cell *to, const struct colum
     case CELL_TEXT:
         to->text = page_clean(grid->arena, cell->text);
         break;
+    case CELL_SHEET:
+        to->text = arena_format(grid->arena, "section %zu", section_of_sheet((size_t)cell->number));
+        break;
     case CELL_EMPTY:
         to->text = PAGE_DASH;
         break;

@@ -174,6 +174,12 @@ void cell_set_text(struct cell *cell, const char *text)
     cell->text = text;
 }
 
+void cell_set_sheet(struct cell *cell, size_t sheet)
+{
+    cell->kind = CELL_SHEET;
+    cell->number = (double)sheet;
+}
+
 void hand_check_line(struct result *result, struct hand_check *check, const char *format, ...)
 {
     va_list arguments;

@@ -23,18 +23,18 @@ struct look {
 struct fact {
     const char *name;    /* for machines and readers, "filling-ratio" */
     const char *method;  /* "reference"; NULL: no method involved */
-    const char *source;  /* key of a data source; NULL: computed */
+    const char *source;  /* key of a data source, or the place of the deck that gives it; NULL: computed */
     const char *text;    /* not NULL: a fact in words, `value` unused */
     double value;
     struct look look;
     const char *remark;  /* set beside the value: "rounded down"; NULL: none */
 };
 
-enum cell_kind { CELL_NUMBER, CELL_TEXT, CELL_EMPTY };
+enum cell_kind { CELL_NUMBER, CELL_TEXT, CELL_SHEET, CELL_EMPTY };
 
 struct cell {
     enum cell_kind kind;
-    double number;    /* SI */
+    double number;    /* SI; of CELL_SHEET a sheet of the result, from 1 */
     const char *text;
     bool is_outside_range; /* printed with a mark that points at the warning */
 };
@@ -197,6 +197,7 @@ void table_add_word_column(struct result *result, struct table *table, const cha
 struct cell *table_add_row(struct result *result, struct table *table);
 void cell_set(struct cell *cell, double number); /* a number that is not finite becomes CELL_EMPTY */
 void cell_set_text(struct cell *cell, const char *text);
+void cell_set_sheet(struct cell *cell, size_t sheet); /* in a column of words: readers are led to the sheet's section */
 
 void hand_check_line(struct result *result, struct hand_check *check, const char *format, ...)
     __attribute__((format(printf, 3, 4)));
