@@ -121,8 +121,9 @@ static const char BUSY_DECK[] =
     "vessel v { water-capacity 50.2 L; test-pressure 250 barg; fitting \"f\" 300 barg }\n"
     "charge c { fluid carbon-dioxide; vessel v; fill 50 barg at 15 degC }\n"
     "methods { lead reference; beside peng-robinson }\n"
+    "mixture m by volume at (15 degC, 1 bara) { argon 2 % +/- 0.1 %; vapid 5 ppm; carbon-dioxide rest }\n"
     "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure\n"
-    "  quote pressure at 15 degC, hot; require at hot pressure <= 2 / 3 * test-pressure }\n"
+    "  entry \"UN 1013\"; quote pressure at 15 degC, hot; require at hot pressure <= 2 / 3 * test-pressure }\n"
     "sheet settled-pressure { charge c; sweep temperature from 0 degC to 60 degC by 0.5 K }\n";
 
 /* True when the elaboration came to its end, with `calls` allocations allowed. */
@@ -214,6 +215,7 @@ static void each_word_of_the_vocabulary_is_at_home_in_some_reader(void **state)
     static const char *const heads[] = {"vessel b",
                                         "charge b",
                                         "component b",
+                                        "mixture b by mole",
                                         "equation b",
                                         "rule b",
                                         "entry \"b\"",

@@ -63,13 +63,30 @@ struct case_component {
     struct pure_spec spec;
 };
 
-/* What is filled. A pure gas has one component with fraction 1. */
+enum fraction_basis { BASIS_MOLE, BASIS_MASS, BASIS_VOLUME };
+
+/* One line of a mixture as it was written. */
+struct case_share {
+    struct quantity given; /* part of the whole on the mixture's basis; of the rest, what completes the whole */
+    bool is_rest;
+};
+
+/* What is filled: a component by itself with fraction 1, or a mixture. */
 struct case_fluid {
     const char *name;
+    struct location at; /* of the name where it is defined */
     size_t count;
-    const struct case_component *const *components;
-    const double *fractions; /* mole fractions, [count] */
+    const struct case_component *const *components; /* of a mixture in the order written; none stands twice */
+    const double *fractions; /* mole fractions, [count]; zero is allowed */
     double molar_mass;       /* kg/mol, of the whole */
+    const struct case_share *shares; /* [count]; NULL: a component named as a fluid */
+    enum fraction_basis basis;       /* of the shares */
+    /* The shares are parts of the volumes the components have by themselves at this state (K, Pa absolute). Fractions
+     * and molar mass then still take volume for amount: whoever has a method converts them. */
+    bool has_state;
+    double temperature, pressure;
+    const char *assessment; /* what an assessment has to cover before a charge is permitted; NULL: nothing */
+    const char *refuse;     /* why no charge is computed however much is known; NULL: none */
     struct fluid_spec spec;
 };
 
@@ -272,5 +289,9 @@ const struct case_tree *case_elaborate(const struct deck *deck, struct arena *ar
 /* One library or deck component by name, for showing; NULL when there is none. */
 const struct case_component *case_find_component(const struct deck *deck, const char *name, struct arena *arena,
                                                  struct diagnostics *diagnostics);
+
+/* One mixture by name, likewise. */
+const struct case_fluid *case_find_mixture(const struct deck *deck, const char *name, struct arena *arena,
+                                           struct diagnostics *diagnostics);
 
 #endif

@@ -21,6 +21,7 @@ enum name_kind {
     NAMES_LET,
     NAMES_SOURCE,
     NAMES_COMPONENT,
+    NAMES_MIXTURE,
     NAMES_EQUATION,
     NAMES_ENTRY,
     NAMES_VESSEL,
@@ -39,7 +40,7 @@ struct named {
     size_t count, capacity;
     enum build_state state;
     const void *built;                /* once state is BUILT: what its kind is built into */
-    bool is_in_use;                   /* of a source: a value in use names it */
+    bool is_in_use;                   /* of a source: a value in use names it; of a component: a fluid has it */
     const struct case_fluid *fluid;   /* of a component, once a sheet or charge asked for it */
     const struct entry_list *entries; /* of a component, once a sheet asked for them */
     struct named *next_in_bucket;
@@ -117,6 +118,9 @@ size_t trouble_so_far(const struct elaboration *e);
 /* The definition an item names, or NULL after "unknown ... did you mean". `what` as in "vessel". */
 struct named *named_of_item(struct elaboration *e, enum name_kind kind, const struct expression *name,
                             const char *what);
+
+/* The names of a kind for the nearest one, the first thousand of them. */
+const char **known_names(struct elaboration *e, enum name_kind kind, size_t *count);
 
 /* Adds "did you mean ..." where one of the known words is near. */
 void suggest(struct elaboration *e, struct diagnostic *said, const char *word, const char *const *known, size_t count);
@@ -293,7 +297,13 @@ void finish_inputs(struct elaboration *e);
 
 const struct case_component *build_component(struct elaboration *e, struct named *named);
 const struct case_component *component_of_name(struct elaboration *e, const struct expression *name);
+const struct case_fluid *build_mixture(struct elaboration *e, struct named *named);
+
+/* The component or mixture of that name as what is filled; NULL after a message. */
 const struct case_fluid *fluid_of_name(struct elaboration *e, const struct expression *name);
+
+/* Completes a fluid that has its components and mole fractions. */
+void finish_fluid(struct elaboration *e, struct case_fluid *fluid);
 
 /* The equation of a component into `spec`; false after a message. */
 bool build_equation(struct elaboration *e, struct named *named, struct reference_spec *spec,
@@ -315,6 +325,10 @@ struct fill {
     struct location at;
 };
 void read_fill(struct elaboration *e, const struct statement *statement, struct fill *fill);
+
+/* `at (T, p)`: the state a gas volume is stated at, in K and Pa absolute; `name` in the inputs. False after a message.
+ */
+bool take_state(struct reading *reading, const char *name, double *temperature, double *pressure);
 const struct case_charge *make_charge(struct elaboration *e, const char *name, const struct case_fluid *fluid,
                                       const struct case_vessel *vessel, const struct fill *fill);
 
@@ -325,8 +339,11 @@ const struct case_rule *build_rule(struct elaboration *e, struct named *named);
 const struct case_rule *rule_of_name(struct elaboration *e, const struct expression *name);
 const struct case_entry *build_entry(struct elaboration *e, struct named *named);
 
-/* The entries of all files in use that are for this fluid; never NULL. */
+/* The entries of all files in use that are for this fluid, none for a mixture; never NULL. */
 const struct entry_list *entries_of_fluid(struct elaboration *e, const struct case_fluid *fluid);
+
+/* The one entry that a sheet names with `entry "..."`; NULL after a message. */
+const struct entry_list *entry_of_name(struct elaboration *e, const struct item *name, const struct case_fluid *fluid);
 
 struct predicate_list {
     struct predicate *items;

@@ -17,26 +17,27 @@ static bool take_temperature(struct reading *reading, double *temperature)
     return true;
 }
 
-/* `at (T, p)`: the state a gas volume is stated at. */
-static bool take_state(struct reading *reading, struct fill *fill)
+bool take_state(struct reading *reading, const char *name, double *temperature, double *pressure)
 {
-    const struct item *at = take_item(reading, ITEM_AT);
-    if (at == NULL || at->value->kind != EXPRESSION_TUPLE || at->value->right->kind == EXPRESSION_TUPLE) {
+    const struct item *at = reading->item;
+    if (at == NULL || at->kind != ITEM_AT || at->value->kind != EXPRESSION_TUPLE ||
+        at->value->right->kind == EXPRESSION_TUPLE) {
         report_missing(reading, "'at' and a state, as in 'at (15 degC, 1 bara)',");
         return false;
     }
     struct elaboration *e = reading->e;
+    take_item(reading, ITEM_AT);
     const bool is_temperature =
-        read_value(e, &FORM_TEMPERATURE, "the temperature of the volume", at->value->left, &fill->temperature);
+        read_value(e, &FORM_TEMPERATURE, "the temperature of the volume", at->value->left, temperature);
     const bool is_pressure =
-        read_value(e, &FORM_PRESSURE, "the pressure of the volume", at->value->right, &fill->pressure);
+        read_value(e, &FORM_PRESSURE, "the pressure of the volume", at->value->right, pressure);
     if (!is_temperature || !is_pressure) {
         return false;
     }
     const struct origin origin = origin_of(e, at->at);
-    add_input(e, "volume stated",
-              arena_format(e->arena, "%s, %s", si_text(e, &FORM_TEMPERATURE, fill->temperature),
-                           si_text(e, &FORM_PRESSURE, fill->pressure)),
+    add_input(e, name,
+              arena_format(e->arena, "%s, %s", si_text(e, &FORM_TEMPERATURE, *temperature),
+                           si_text(e, &FORM_PRESSURE, *pressure)),
               &origin);
     return true;
 }
@@ -69,7 +70,7 @@ static bool take_state_of(struct reading *reading, struct fill *fill)
     case FILL_PRESSURE:
         return take_temperature(reading, &fill->temperature);
     case FILL_VOLUME:
-        return take_state(reading, fill);
+        return take_state(reading, "volume stated", &fill->temperature, &fill->pressure);
     case FILL_MASS:
     case FILL_RATIO:
     case FILL_DENSITY:
@@ -108,7 +109,7 @@ struct charge_target {
 static void read_fluid(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct charge_target *into = target;
-    into->fluid = read_one_name(e, statement, "the name of a component");
+    into->fluid = read_one_name(e, statement, "the name of a component or mixture");
 }
 
 static void read_vessel(struct elaboration *e, const struct statement *statement, void *target)

@@ -314,39 +314,3 @@ const struct case_component *component_of_name(struct elaboration *e, const stru
     }
     return component;
 }
-
-static const struct case_fluid *make_fluid(struct elaboration *e, const struct case_component *component)
-{
-    struct case_fluid *fluid = arena_alloc(e->arena, 1, sizeof *fluid);
-    const struct case_component **components = arena_alloc(e->arena, 1, sizeof(const struct case_component *));
-    const struct pure_spec **pure = arena_alloc(e->arena, 1, sizeof(const struct pure_spec *));
-    double *fractions = arena_alloc(e->arena, 1, sizeof *fractions);
-    components[0] = component;
-    pure[0] = &component->spec;
-    fractions[0] = 1.0;
-    *fluid = (struct case_fluid){
-        .name = component->name,
-        .count = 1,
-        .components = components,
-        .fractions = fractions,
-        .molar_mass = component->molar_mass.value,
-        .spec = {.count = 1, .pure = pure},
-    };
-    if (!e->is_checking) {
-        *ARENA_APPEND(e->arena, &e->components) = component;
-    }
-    return fluid;
-}
-
-const struct case_fluid *fluid_of_name(struct elaboration *e, const struct expression *name)
-{
-    const struct case_component *component = component_of_name(e, name);
-    if (component == NULL) {
-        return NULL;
-    }
-    struct named *named = names_find(&e->tables[NAMES_COMPONENT], component->name);
-    if (named->fluid == NULL) {
-        named->fluid = make_fluid(e, component);
-    }
-    return named->fluid;
-}

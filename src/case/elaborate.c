@@ -55,6 +55,18 @@ static void define_named(struct elaboration *e, enum name_kind kind, const char 
     finish_items(&reading);
 }
 
+/* `mixture name by mole { ... }`: what follows the name is read when the mixture is built. */
+static void define_mixture(struct elaboration *e, const struct statement *statement)
+{
+    struct reading reading = read_items(e, statement);
+    const struct expression *name = take_name(&reading);
+    if (name == NULL) {
+        report_missing(&reading, "the name of the mixture");
+        return;
+    }
+    define(e, NAMES_MIXTURE, name->name, name->at, statement);
+}
+
 static void define_entry(struct elaboration *e, const struct statement *statement)
 {
     struct reading reading = read_items(e, statement);
@@ -128,6 +140,8 @@ static void index_statement(struct elaboration *e, const struct statement *state
     }
     if (row->id == WORD_FILE_ENTRY) {
         define_entry(e, statement);
+    } else if (row->id == WORD_FILE_MIXTURE) {
+        define_mixture(e, statement);
     } else if (row->id == WORD_FILE_SOURCE) {
         define_source(e, statement);
     } else if (row->id == WORD_FILE_LET) {
@@ -162,7 +176,7 @@ void suggest(struct elaboration *e, struct diagnostic *said, const char *word, c
 /* So many names are looked through for the nearest one. */
 enum { KNOWN_MOST = 1000 };
 
-static const char **known_names(struct elaboration *e, enum name_kind kind, size_t *count)
+const char **known_names(struct elaboration *e, enum name_kind kind, size_t *count)
 {
     const struct name_table *table = &e->tables[kind];
     *count = table->count < KNOWN_MOST ? table->count : KNOWN_MOST;
@@ -388,6 +402,9 @@ static void check_named(struct elaboration *e, enum name_kind kind, struct named
     case NAMES_COMPONENT:
         build_component(e, named);
         break;
+    case NAMES_MIXTURE:
+        build_mixture(e, named);
+        break;
     case NAMES_EQUATION:
         check_equation(e, named);
         break;
@@ -498,4 +515,12 @@ const struct case_component *case_find_component(const struct deck *deck, const 
     struct elaboration *e = begin(deck, arena, diagnostics);
     struct named *named = names_find(&e->tables[NAMES_COMPONENT], name);
     return named == NULL ? NULL : build_component(e, named);
+}
+
+const struct case_fluid *case_find_mixture(const struct deck *deck, const char *name, struct arena *arena,
+                                           struct diagnostics *diagnostics)
+{
+    struct elaboration *e = begin(deck, arena, diagnostics);
+    struct named *named = names_find(&e->tables[NAMES_MIXTURE], name);
+    return named == NULL ? NULL : build_mixture(e, named);
 }

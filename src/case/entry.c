@@ -180,6 +180,10 @@ static bool is_for(const struct named *entry, const char *component)
 
 const struct entry_list *entries_of_fluid(struct elaboration *e, const struct case_fluid *fluid)
 {
+    static const struct entry_list none = {.items = NULL};
+    if (fluid->shares != NULL) {
+        return &none;
+    }
     struct named *component = names_find(&e->tables[NAMES_COMPONENT], fluid->name);
     if (component->entries != NULL) {
         return component->entries;
@@ -193,5 +197,58 @@ const struct entry_list *entries_of_fluid(struct elaboration *e, const struct ca
         }
     }
     component->entries = entries;
+    return entries;
+}
+
+static bool contains(const struct case_fluid *fluid, const struct case_component *component)
+{
+    for (size_t i = 0; i < fluid->count; i++) {
+        if (fluid->components[i] == component) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* An entry of one substance is for that substance, perhaps with impurities; of a group, whoever names it says that the
+ * fluid belongs to it, and its limits are tested. */
+static bool check_fits(struct elaboration *e, const struct item *name, const struct case_entry *entry,
+                       const struct case_fluid *fluid)
+{
+    if (entry->component == NULL || (fluid->count == 1 && fluid->components[0] == entry->component)) {
+        return true;
+    }
+    const bool is_part = contains(fluid, entry->component);
+    struct diagnostic *said = diagnose(
+        e->out, is_part ? CODE_W281 : CODE_E228, name->at, "the entry \"%s\" is for %s%s, and '%s' %s",
+        shortened(e, entry->name), entry->component->name, is_part ? " by itself" : "", shortened(e, fluid->name),
+        is_part ? "is a mixture" : "contains none");
+    said->note = "the entry";
+    said->note_at = entry->origin.at;
+    return is_part;
+}
+
+static struct named *find_entry(struct elaboration *e, const struct item *name)
+{
+    struct named *named = names_find(&e->tables[NAMES_ENTRY], name->text);
+    if (named == NULL) {
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E205, name->at, "there is no entry \"%s\"", shortened(e, name->text));
+        size_t count;
+        const char **known = known_names(e, NAMES_ENTRY, &count);
+        suggest(e, said, name->text, known, count);
+    }
+    return named;
+}
+
+const struct entry_list *entry_of_name(struct elaboration *e, const struct item *name, const struct case_fluid *fluid)
+{
+    struct named *named = find_entry(e, name);
+    const struct case_entry *entry = named == NULL ? NULL : build_entry(e, named);
+    if (entry == NULL || !check_fits(e, name, entry, fluid)) {
+        return NULL;
+    }
+    struct entry_list *entries = arena_alloc(e->arena, 1, sizeof *entries);
+    *ARENA_APPEND(e->arena, entries) = entry;
     return entries;
 }

@@ -26,6 +26,7 @@ struct note_list {
 struct sheet_target {
     struct case_sheet sheet;
     const struct expression *fluid, *vessel, *charge; /* as named */
+    const struct item *entry; /* its number, as named */
     const struct statement *methods, *sweep;
     struct fill fill;
     struct rule_use_list rules;
@@ -37,7 +38,7 @@ struct sheet_target {
 static void read_fluid(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
-    into->fluid = read_one_name(e, statement, "the name of a component");
+    into->fluid = read_one_name(e, statement, "the name of a component or mixture");
 }
 
 static void read_vessel(struct elaboration *e, const struct statement *statement, void *target)
@@ -231,6 +232,14 @@ static void read_assessed(struct elaboration *e, const struct statement *stateme
     into->sheet.assessed = read_text(e, statement, "the document in quotes");
 }
 
+static void read_entry(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct sheet_target *into = target;
+    if (read_text(e, statement, "the entry's number in quotes") != NULL) {
+        into->entry = statement->items;
+    }
+}
+
 static void read_require(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
@@ -254,6 +263,7 @@ static const struct block_row ROWS[] = {
     READ_EACH(WORD_PERMISSIBLE_CHARGE_SWEEP, read_sweep_row),
     READ_ONCE(WORD_PERMISSIBLE_CHARGE_LISTED, read_listed),
     READ_ONCE(WORD_PERMISSIBLE_CHARGE_ASSESSED, read_assessed),
+    READ_ONCE(WORD_PERMISSIBLE_CHARGE_ENTRY, read_entry),
     READ_EACH(WORD_PERMISSIBLE_CHARGE_REQUIRE, read_require),
     READ_ONCE(WORD_SETTLED_PRESSURE_CHARGE, read_charge),
     READ_EACH(WORD_SETTLED_PRESSURE_SWEEP, read_sweep_row),
@@ -468,14 +478,31 @@ static void attach_lists(struct elaboration *e, struct sheet_target *target)
     sheet->quote_count = target->quotes.count;
     sheet->notes = target->notes.items;
     sheet->note_count = target->notes.count;
-    const struct entry_list *entries = entries_of_fluid(e, sheet->fluid);
-    sheet->entries = entries->items;
-    sheet->entry_count = entries->count;
+    const struct entry_list *entries =
+        target->entry == NULL ? entries_of_fluid(e, sheet->fluid) : entry_of_name(e, target->entry, sheet->fluid);
+    if (entries != NULL) {
+        sheet->entries = entries->items;
+        sheet->entry_count = entries->count;
+    }
 }
 
 static struct location place_of_fluid(const struct sheet_target *target)
 {
     return target->fluid != NULL ? target->fluid->at : target->charge->at;
+}
+
+/* Sheets still take their fluid for a pure gas. */
+static void check_pure(struct elaboration *e, const struct sheet_target *target)
+{
+    const struct case_fluid *fluid = target->sheet.fluid;
+    if (fluid->count == 1) {
+        return;
+    }
+    struct diagnostic *said = diagnose(e->out, CODE_E225, place_of_fluid(target),
+                                       "this version answers sheets for pure gases only, and '%s' is a mixture",
+                                       shortened(e, fluid->name));
+    said->note = "the mixture";
+    said->note_at = fluid->at;
 }
 
 static void complete_sheet(struct elaboration *e, struct sheet_target *target)
@@ -484,6 +511,7 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
     if (!resolve(e, target) || !check_complete(e, target)) {
         return;
     }
+    check_pure(e, target);
     if (target->fill.given) {
         sheet->charge = make_charge(e, sheet->title == NULL ? "of this sheet" : sheet->title, sheet->fluid,
                                     sheet->vessel, &target->fill);
