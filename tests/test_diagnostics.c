@@ -350,6 +350,7 @@ static void a_misspelled_word_gets_the_nearest(void **state)
         {"", NULL},
         {"x", NULL},
         {"k", "K"},
+        {"tare", NULL},
     };
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
         const char *nearest = nearest_word(cases[i].word, known, sizeof known / sizeof *known);

@@ -292,8 +292,8 @@ const char *nearest_word(const char *word, const char *const *known, size_t coun
     for (size_t i = 0; length <= LONGEST_WORD && i < count; i++) {
         const size_t known_length = strlen(known[i]);
         const size_t apart = known_length > length ? known_length - length : length - known_length;
-        if (known_length > LONGEST_WORD || apart > most) {
-            continue;
+        if (known_length > LONGEST_WORD || apart > most || strcmp(word, known[i]) == 0) {
+            continue; /* the word itself is no help, if it is known elsewhere */
         }
         const size_t distance = word_distance(word, length, known[i], known_length);
         if (distance <= most && distance < length) {
