@@ -9,7 +9,9 @@
 enum { MOST = SAMPLE_MOST, MOST_VALUES = 3 + SAMPLE_MOST };
 enum { ALL_WANTS = WANT_F_VV | WANT_F_N | WANT_F_VN | WANT_F_NN | WANT_F_T | WANT_F_TT | WANT_F_TN };
 
-/* Molar volumes (m3/mol) from liquid-like to dilute, and temperatures (K) on both sides of the critical ones. */
+/* Molar volumes (m3/mol) from liquid-like to dilute, and temperatures (K) on both sides of the critical ones. No volume
+ * comes nearer to the smallest one than this factor. */
+#define LEAST_CLEARANCE 1.2
 static const double MOLAR_VOLUMES[] = {0.91e-4, 2.3e-4, 1.1e-3, 2.3e-2};
 static const double TEMPERATURES[] = {231.0, 311.0, 457.0};
 
@@ -167,7 +169,9 @@ static void for_each_state(void (*check)(struct subject *subject, const char *na
         for (size_t t = 0; t < COUNT(TEMPERATURES); t++) {
             for (size_t v = 0; v < COUNT(MOLAR_VOLUMES); v++) {
                 subject.T = TEMPERATURES[t];
-                subject.V = MOLAR_VOLUMES[v] * amount;
+                assert_int_equal(fluid_set_t(subject.at_t, subject.fluid, subject.T), ANSWER_OK);
+                const double smallest = subject.fluid->ops->smallest_volume(subject.at_t, subject.n);
+                subject.V = fmax(MOLAR_VOLUMES[v] * amount, LEAST_CLEARANCE * smallest);
                 check(&subject, sample->name);
             }
         }

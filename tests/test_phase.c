@@ -390,6 +390,9 @@ static void a_fluid_that_cannot_be_made_says_what_it_lacks(void **state)
         {"soave-redlich-kwong", &lacks_acentric, LACK_ACENTRIC, 1},
         {"reference", &lacks_acentric, LACK_MIXTURE, 0},
         {"reference", &lacks_equation, LACK_EQUATION, 0},
+        {"van-der-waals", &lacks_critical, LACK_CRITICAL_POINT, 1},
+        {"peng-robinson-twu", &lacks_critical, LACK_PARAMETERS, 1},
+        {"quantum-peng-robinson", &lacks_acentric, LACK_PARAMETERS, 0},
     };
     for (size_t k = 0; k < COUNT(cases); k++) {
         struct fluid_lack_report report;

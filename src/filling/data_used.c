@@ -392,29 +392,6 @@ void tell_data(const struct case_tree *tree, const struct method_pool *pool, str
 
 /* ---- methods --------------------------------------------------------------------------------------------------- */
 
-/* What is said of a method whatever the fluid. */
-struct method_words {
-    const char *name, *citation, *range;
-};
-
-static const struct method_words METHOD_WORDS[] = {
-    {"ideal-gas", "p v = R T", "the limit of low pressure; shown for comparison, never governs"},
-    {"peng-robinson", "D.-Y. Peng, D. B. Robinson, Ind. Eng. Chem. Fundam. 15 (1976) 59",
-     "no published limits; liquid densities are off by several per cent"},
-    {"soave-redlich-kwong", "G. Soave, Chem. Eng. Sci. 27 (1972) 1197",
-     "no published limits; liquid densities are off by ten per cent and more"},
-};
-
-static const struct method_words *words_of(const char *name)
-{
-    for (size_t i = 0; i < sizeof METHOD_WORDS / sizeof *METHOD_WORDS; i++) {
-        if (strcmp(METHOD_WORDS[i].name, name) == 0) {
-            return &METHOD_WORDS[i];
-        }
-    }
-    return NULL;
-}
-
 static const char *reference_parameters(const struct case_component *component, struct arena *arena)
 {
     const struct reference_spec *equation = component->spec.reference;
@@ -452,8 +429,7 @@ static const char *parameters_of(const struct pooled_method *pooled, struct aren
 
 static const char *title_of(const struct pooled_method *pooled, struct arena *arena)
 {
-    const struct method_words *words = words_of(pooled->run.name);
-    const char *citation = words == NULL ? NULL : words->citation;
+    const char *citation = pooled->run.fluid->ops->citation;
     if (uses_equation(pooled) && pooled->fluid->components[0]->equation_source != NULL) {
         citation = pooled->fluid->components[0]->equation_source->citation;
     }
@@ -463,11 +439,10 @@ static const char *title_of(const struct pooled_method *pooled, struct arena *ar
 
 static const char *range_of(const struct pooled_method *pooled, struct arena *arena)
 {
-    const struct method_words *words = words_of(pooled->run.name);
     if (uses_equation(pooled)) {
         return equation_range(pooled->fluid->components[0]->spec.reference, arena);
     }
-    return words == NULL ? NULL : words->range;
+    return pooled->run.fluid->ops->validity;
 }
 
 static const char *role_words(const struct pooled_method *pooled, struct arena *arena)

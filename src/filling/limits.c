@@ -197,13 +197,7 @@ struct method_run *governing_method(const struct permissible *sheet)
 
 bool is_cubic(const struct method_run *method)
 {
-    static const char *const cubics[] = {"peng-robinson", "soave-redlich-kwong"};
-    for (size_t i = 0; i < sizeof cubics / sizeof *cubics; i++) {
-        if (strcmp(method->name, cubics[i]) == 0) {
-            return true;
-        }
-    }
-    return false;
+    return method->fluid != NULL && (method->fluid->ops->capabilities & IS_CUBIC) != 0;
 }
 
 /* Whether a method better than a cubic allows the charge as well: then the cubic does not stand alone. */

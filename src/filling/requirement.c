@@ -98,7 +98,8 @@ struct requirement *add_requirement(const struct sheet_run *run, const struct me
 
 bool method_governs(const struct method_run *method)
 {
-    return method->fluid != NULL && method->may_govern && strcmp(method->name, "ideal-gas") != 0;
+    return method->fluid != NULL && method->may_govern &&
+           (method->fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
 }
 
 /* Worse: not met before undecided before met; among equals the smaller margin. */

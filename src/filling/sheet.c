@@ -19,11 +19,12 @@ enum { TEMPERATURE_DECIMALS = 2, AMOUNT_DECIMALS = 2, MOST_DECIMALS = 12 };
 struct method_run method_run_create(const struct case_fluid *fluid, const char *method, bool may_govern,
                                     struct arena *arena)
 {
-    struct method_run run = {.name = method, .may_govern = may_govern && strcmp(method, "ideal-gas") != 0};
+    struct method_run run = {.name = method};
     run.fluid = fluid_create(method, &fluid->spec, arena, &run.lack);
     if (run.fluid == NULL) {
         return run;
     }
+    run.may_govern = may_govern && (run.fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
     run.at_t = fluid_at_t_create(run.fluid, arena);
     run.has_critical =
         run.fluid->ops->critical != NULL && run.fluid->ops->critical(run.fluid, &run.critical) == ANSWER_OK;

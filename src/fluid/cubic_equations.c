@@ -39,8 +39,10 @@ static const struct cubic_form VAN_DER_WAALS_FORM = {
     .delta2 = 0.0,
     .omega_a = 27.0 / 64.0,
     .omega_b = 1.0 / 8.0,
-    .liquid = {0},
-    .vapour = {0},
+    .liquid = {1.9999929, 0.401110511, -0.548049889, 0.41295949, -1.31007658, 3.1068757, -4.18281295, 2.92245912,
+               -0.802437114},
+    .vapour = {-1.99975739, -2.64164803, 1.78470333, -10.5974303, 55.3621082, -142.852696, 201.386168, -144.725312,
+               40.9096893},
 };
 
 /* ---- slopes of Soave's alpha ----------------------------------------------------------------------------------- */
@@ -137,11 +139,13 @@ static const struct cubic_equation QUANTUM_PENG_ROBINSON = {
 
 /* ---- rows of the table of methods ------------------------------------------------------------------------------ */
 
+#define CUBIC_CAPABILITIES (CAN_LIQUID | CAN_MIXTURE | CAN_CALORIC | IS_CUBIC)
+
 #define CUBIC_OPS                                                                                                      \
-    .form = FLUID_FROM_TV, .capabilities = CAN_LIQUID | CAN_MIXTURE | CAN_CALORIC, .at_t_size = cubic_at_t_size,       \
-    .set_t = cubic_set_t, .tv = cubic_tv, .volume_and_tv = cubic_volume_and_tv, .volume = cubic_volume,                \
-    .smallest_volume = cubic_smallest_volume, .range = cubic_range, .critical = cubic_critical,                       \
-    .saturation_start = cubic_saturation_start, .pair = cubic_pair_at, .explain = cubic_explain
+    .form = FLUID_FROM_TV, .at_t_size = cubic_at_t_size, .set_t = cubic_set_t, .tv = cubic_tv,                         \
+    .volume_and_tv = cubic_volume_and_tv, .volume = cubic_volume, .smallest_volume = cubic_smallest_volume,            \
+    .range = cubic_range, .critical = cubic_critical, .saturation_start = cubic_saturation_start,                      \
+    .pair = cubic_pair_at, .explain = cubic_explain
 
 static struct fluid *create_van_der_waals(const struct fluid_spec *spec, struct arena *arena,
                                           struct fluid_lack_report *lack)
@@ -152,6 +156,9 @@ static struct fluid *create_van_der_waals(const struct fluid_spec *spec, struct 
 const struct fluid_ops van_der_waals_ops = {
     .name = "van-der-waals",
     .title = "Van der Waals (1873)",
+    .citation = "J. D. van der Waals, thesis, Leiden (1873)",
+    .validity = "qualitative: wrong by tens of per cent; shown for comparison, never governs",
+    .capabilities = CUBIC_CAPABILITIES | IS_FOR_COMPARISON,
     .create = create_van_der_waals,
     CUBIC_OPS,
 };
@@ -165,6 +172,9 @@ static struct fluid *create_redlich_kwong(const struct fluid_spec *spec, struct 
 const struct fluid_ops redlich_kwong_ops = {
     .name = "redlich-kwong",
     .title = "Redlich and Kwong (1949)",
+    .citation = "O. Redlich, J. N. S. Kwong, Chem. Rev. 44 (1949) 233",
+    .validity = "no published limits; meant for gases: vapour pressures and liquid densities are poor",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_redlich_kwong,
     CUBIC_OPS,
 };
@@ -178,6 +188,9 @@ static struct fluid *create_soave_redlich_kwong(const struct fluid_spec *spec, s
 const struct fluid_ops soave_redlich_kwong_ops = {
     .name = "soave-redlich-kwong",
     .title = "Redlich and Kwong, by Soave (1972)",
+    .citation = "G. Soave, Chem. Eng. Sci. 27 (1972) 1197",
+    .validity = "no published limits; liquid densities are off by ten per cent and more",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_soave_redlich_kwong,
     CUBIC_OPS,
 };
@@ -191,6 +204,9 @@ static struct fluid *create_peng_robinson(const struct fluid_spec *spec, struct 
 const struct fluid_ops peng_robinson_ops = {
     .name = "peng-robinson",
     .title = "Peng and Robinson (1976)",
+    .citation = "D.-Y. Peng, D. B. Robinson, Ind. Eng. Chem. Fundam. 15 (1976) 59",
+    .validity = "no published limits; liquid densities are off by several per cent",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_peng_robinson,
     CUBIC_OPS,
 };
@@ -204,6 +220,9 @@ static struct fluid *create_peng_robinson_1978(const struct fluid_spec *spec, st
 const struct fluid_ops peng_robinson_1978_ops = {
     .name = "peng-robinson-1978",
     .title = "Peng and Robinson (1978)",
+    .citation = "D. B. Robinson, D.-Y. Peng, Gas Processors Association RR-28 (1978)",
+    .validity = "no published limits; liquid densities are off by several per cent unless translated",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_peng_robinson_1978,
     CUBIC_OPS,
 };
@@ -217,6 +236,9 @@ static struct fluid *create_peng_robinson_twu(const struct fluid_spec *spec, str
 const struct fluid_ops peng_robinson_twu_ops = {
     .name = "peng-robinson-twu",
     .title = "Peng and Robinson, with the alpha of Twu by Bell et al. (2018)",
+    .citation = "I. H. Bell, M. Satyro, E. W. Lemmon, J. Chem. Eng. Data 63 (2018) 2402",
+    .validity = "no published limits; liquid densities are off by several per cent",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_peng_robinson_twu,
     CUBIC_OPS,
 };
@@ -230,6 +252,9 @@ static struct fluid *create_translated_peng_robinson(const struct fluid_spec *sp
 const struct fluid_ops translated_peng_robinson_ops = {
     .name = "translated-peng-robinson",
     .title = "Peng and Robinson, translated and consistent",
+    .citation = "A. Pina-Martinez, R. Privat, J.-N. Jaubert, AIChE J. 68 (2022) e17518",
+    .validity = "no published limits; liquid densities are off by a few per cent, more near the critical point",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_translated_peng_robinson,
     CUBIC_OPS,
 };
@@ -243,6 +268,9 @@ static struct fluid *create_translated_redlich_kwong(const struct fluid_spec *sp
 const struct fluid_ops translated_redlich_kwong_ops = {
     .name = "translated-redlich-kwong",
     .title = "Redlich and Kwong, translated and consistent",
+    .citation = "A. Pina-Martinez, R. Privat, J.-N. Jaubert, AIChE J. 68 (2022) e17518",
+    .validity = "no published limits; liquid densities are off by a few per cent, more near the critical point",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_translated_redlich_kwong,
     CUBIC_OPS,
 };
@@ -256,6 +284,10 @@ static struct fluid *create_quantum_peng_robinson(const struct fluid_spec *spec,
 const struct fluid_ops quantum_peng_robinson_ops = {
     .name = "quantum-peng-robinson",
     .title = "Peng and Robinson, with quantum covolume",
+    .citation = "A. Aasen, M. Hammer, S. Lasala, J.-N. Jaubert, O. Wilhelmsen, Fluid Ph"
+                "ase Equilib. 524 (2020) 112790",
+    .validity = "helium, neon, hydrogen, deuterium and their mixtures",
+    .capabilities = CUBIC_CAPABILITIES,
     .create = create_quantum_peng_robinson,
     CUBIC_OPS,
 };

@@ -65,30 +65,52 @@ static double slope_of(const struct cubic_polynomial *h, double y)
     return h->c[1] + y * (2.0 * h->c[2] + y * 3.0 * h->c[3]);
 }
 
-/* The root between `low` and `high`, where h rises through zero: Newton's steps, halving wherever one would leave the
- * bracket. Stops when a step is a few units in the last place, or when rounding leaves the bracket no middle. */
+/* One step of Halley's towards a root, and whether it is the last: the error it leaves, of third order in the step, is
+ * below the last digit, and no digits were lost to a step much longer than what remains. */
+struct step {
+    double next;
+    bool is_last;
+};
+
+static struct step step_from(const struct cubic_polynomial *h, double y, double value)
+{
+    const double slope = slope_of(h, y), bend = h->c[2] + 3.0 * h->c[3] * y;
+    const double denominator = slope * slope - value * bend;
+    if (!(denominator > 0.0)) {
+        return (struct step){.next = -1.0};
+    }
+    const double change = value * slope / denominator, size = fabs(change), next = y - change;
+    const double left = size * size * size * (bend * bend + fabs(h->c[3] * slope));
+    return (struct step){
+        .next = next,
+        .is_last = size <= 4.0 * DBL_EPSILON * next ||
+                   (size <= next && left <= 0.5 * DBL_EPSILON * next * slope * slope),
+    };
+}
+
+/* The root between `low` and `high`, where h rises through zero: Halley's steps, halving wherever one would leave the
+ * bracket. Stops when nothing is left to gain, or when rounding leaves the bracket no middle. */
 static double root_between(const struct cubic_polynomial *h, double low, double high, double y)
 {
-    for (int step = 0; step < MOST_ROOT_STEPS; step++) {
+    for (int count = 0; count < MOST_ROOT_STEPS; count++) {
         const double value = value_of(h, y);
         if (value < 0.0) {
             low = y;
         } else {
             high = y;
         }
-        double next = y - value / slope_of(h, y);
-        const bool is_done = fabs(next - y) <= 4.0 * DBL_EPSILON * y;
-        if (!(next > low && next < high)) {
-            if (is_done) {
+        struct step step = step_from(h, y, value);
+        if (!(step.next > low && step.next < high)) {
+            if (step.is_last) {
                 break;
             }
-            next = 0.5 * (low + high);
-            if (!(next > low && next < high)) {
+            step.next = 0.5 * (low + high);
+            if (!(step.next > low && step.next < high)) {
                 break;
             }
         }
-        y = next;
-        if (is_done) {
+        y = step.next;
+        if (step.is_last) {
             break;
         }
     }
@@ -105,9 +127,13 @@ struct extrema {
 static struct extrema extrema_of(const struct cubic_polynomial *h)
 {
     struct extrema found = {.separate_three_roots = false};
-    found.centre = -h->c[2] / (3.0 * h->c[3]);
-    const double square = found.centre * found.centre - h->c[1] / (3.0 * h->c[3]);
-    if (!(h->c[3] > 0.0) || !(square > 0.0)) {
+    if (!(h->c[3] > 0.0)) {
+        return found;
+    }
+    const double unit = 1.0 / (3.0 * h->c[3]);
+    found.centre = -h->c[2] * unit;
+    const double square = found.centre * found.centre - h->c[1] * unit;
+    if (!(square > 0.0)) {
         return found;
     }
     found.reach = sqrt(square);
@@ -117,7 +143,7 @@ static struct extrema extrema_of(const struct cubic_polynomial *h)
     return found;
 }
 
-/* The only root in (0, 1). With c[3] > 0 the curve bends down left of its centre and up right of it, so Newton's
+/* The only root in (0, 1). With c[3] > 0 the curve bends down left of its centre and up right of it, so the
  * steps from the far end of the side that holds the root run to it from one side. */
 static double lone_root(const struct cubic_polynomial *h, double centre)
 {
@@ -135,8 +161,8 @@ static double lone_root(const struct cubic_polynomial *h, double centre)
 }
 
 /* The smallest and the largest of three roots. A cubic reaches the height of its maximum again two reaches right of
- * its centre, and that of its minimum two reaches left, so both lie within those ends and Newton's steps from there
- * run to them from one side. */
+ * its centre, and that of its minimum two reaches left, so both lie within those ends and steps from there run to
+ * them from one side. */
 static double vapour_root(const struct cubic_polynomial *h, const struct extrema *extrema)
 {
     const double low = fmax(0.0, extrema->centre - 2.0 * extrema->reach);

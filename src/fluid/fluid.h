@@ -27,7 +27,13 @@ enum answer {
     ANSWER_FAILED        /* an iteration did not converge, or a value was not finite */
 };
 
-enum capability { CAN_LIQUID = 1, CAN_MIXTURE = 2, CAN_CALORIC = 4 };
+enum capability {
+    CAN_LIQUID = 1,
+    CAN_MIXTURE = 2,
+    CAN_CALORIC = 4,
+    IS_CUBIC = 8,            /* its liquid densities are estimates */
+    IS_FOR_COMPARISON = 16   /* too far from real gases for any charge to rest on it */
+};
 
 /* What may be asked of a (T, V, n) method, as a set of bits. The value itself and F_V always come. */
 enum helmholtz_want {
@@ -116,6 +122,8 @@ enum fluid_form { FLUID_FROM_TV, FLUID_FROM_TP };
 struct fluid_ops {
     const char *name; /* the deck's word for it */
     const char *title; /* the published name, for listings */
+    const char *citation; /* the publication; NULL: each component's own */
+    const char *validity; /* what is known of its range and accuracy; NULL: each component's own */
     enum fluid_form form;
     unsigned capabilities;
 

@@ -102,8 +102,10 @@ static enum answer explain(const struct fluid_at_t *at_t, double molar_volume, b
 const struct fluid_ops ideal_gas_ops = {
     .name = "ideal-gas",
     .title = "ideal gas",
+    .citation = "p v = R T",
+    .validity = "the limit of low pressure; shown for comparison, never governs",
     .form = FLUID_FROM_TV,
-    .capabilities = CAN_MIXTURE | CAN_CALORIC,
+    .capabilities = CAN_MIXTURE | CAN_CALORIC | IS_FOR_COMPARISON,
     .create = create,
     .at_t_size = at_t_size,
     .set_t = set_t,

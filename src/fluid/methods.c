@@ -6,8 +6,15 @@
 
 static const struct fluid_ops *const METHODS[] = {
     &ideal_gas_ops,
-    &peng_robinson_ops,
+    &van_der_waals_ops,
+    &redlich_kwong_ops,
     &soave_redlich_kwong_ops,
+    &peng_robinson_ops,
+    &peng_robinson_1978_ops,
+    &peng_robinson_twu_ops,
+    &translated_peng_robinson_ops,
+    &translated_redlich_kwong_ops,
+    &quantum_peng_robinson_ops,
     &reference_ops,
     NULL,
 };

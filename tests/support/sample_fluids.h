@@ -5,11 +5,22 @@
 #include "base/arena.h"
 #include "fluid/fluid.h"
 
-enum sample_substance { NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE, SAMPLE_SUBSTANCES };
+enum sample_substance { NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE, HYDROGEN, HELIUM, NEON, SAMPLE_SUBSTANCES };
 
 extern const struct pure_spec SAMPLE_SUBSTANCE[SAMPLE_SUBSTANCES];
 
-enum { SAMPLE_MOST = SAMPLE_SUBSTANCES };
+/* Interactions of the groups the first five substances are made of. */
+extern const struct group_pair SAMPLE_GROUP_PAIRS[];
+extern const size_t SAMPLE_GROUP_PAIRS_COUNT;
+
+enum { SAMPLE_MOST = 5 };
+
+/* Where a mixture's pairs have their parameters from. */
+enum sample_pairs {
+    SAMPLE_INVENTED,  /* every kij invented */
+    SAMPLE_GROUPS,    /* the groups of E-PPR78 */
+    SAMPLE_CONSTANTS, /* kij and lij as published for the method, zero where nothing is */
+};
 
 struct sample_fluid {
     const char *name;   /* for messages */
@@ -17,9 +28,10 @@ struct sample_fluid {
     size_t count;
     enum sample_substance substance[SAMPLE_MOST];
     double n[SAMPLE_MOST]; /* mol, awkward on purpose */
+    enum sample_pairs pairs;
 };
 
-/* Every method, pure and as a mixture where it can. The pair parameters of mixtures are invented. */
+/* Every method, pure and as a mixture where it can. */
 extern const struct sample_fluid SAMPLE_FLUIDS[];
 extern const size_t SAMPLE_FLUIDS_COUNT;
 
