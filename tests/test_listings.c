@@ -1,4 +1,4 @@
-/* Every example deck runs, and its listing is the committed one. */
+/* Every example deck and every deck of the language reference runs; an example's listing is the committed one. */
 #define _POSIX_C_SOURCE 200809L
 #include "base/file.h"
 #include "run/run.h"
@@ -14,12 +14,31 @@
 
 enum { DECKS_MOST = 200, NAME_BYTES = 128, PAGE_COLUMNS = 100 };
 
-static struct run *run_deck_at(const char *path)
+#define FENCE_DECK "fence.deck"
+
+/* The usual reader, except for one text that is held in memory. */
+static bool read_fence_or_file(void *context, struct arena *arena, const char *path, char **text, size_t *length)
 {
-    const struct deck_reader reader = {.read = deck_read_file, .library_folder = "decks/library"};
+    if (strcmp(path, FENCE_DECK) == 0) {
+        const char *fence = context;
+        *length = strlen(fence);
+        *text = arena_copy_text(arena, fence, *length);
+        return true;
+    }
+    return deck_read_file(NULL, arena, path, text, length);
+}
+
+static struct run *run_deck_or_fence(const char *path, char *fence)
+{
+    const struct deck_reader reader = {.read = read_fence_or_file, .context = fence, .library_folder = "decks/library"};
     const struct run_request request = {
         .mode = RUN_ANSWER, .deck_path = path, .reader = &reader, .version = TAREWRIGHT_VERSION, .json_path = "a.json"};
     return run_deck(&request, NULL);
+}
+
+static struct run *run_deck_at(const char *path)
+{
+    return run_deck_or_fence(path, NULL);
 }
 
 static int by_name(const void *a, const void *b)
@@ -121,12 +140,41 @@ static void two_runs_of_a_deck_are_the_same_to_the_byte(void **state)
     run_free(second);
 }
 
+/* Decks in the reference stand between a line of ```deck and one of ```. */
+static void every_deck_of_the_reference_runs(void **state)
+{
+    (void)state;
+    static const char opening[] = "\n```deck\n", closing[] = "\n```";
+    struct arena *arena = arena_create(NULL);
+    char *text;
+    size_t length, count = 0;
+    assert_true(file_read(arena, "grammar/reference.md", &text, &length));
+    for (const char *at = strstr(text, opening); at; at = strstr(at, opening)) {
+        at += strlen(opening);
+        const char *end = strstr(at - 1, closing);
+        assert_non_null(end);
+        const size_t bytes = end > at ? (size_t)(end - at) : 0;
+        struct run *run = run_deck_or_fence(FENCE_DECK, arena_copy_text(arena, at, bytes));
+        assert_non_null(run);
+        if (run->status == RUN_DECK_WRONG || run->status == RUN_NO_FILE) {
+            print_error("a deck of the reference:\n%.*s\n%s", (int)bytes, at, run->diagnostics.bytes);
+            fail();
+        }
+        assert_fit_to_be_filed("a deck of the reference", run);
+        run_free(run);
+        count++;
+    }
+    assert_true(count > 0);
+    arena_free(arena);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(every_example_deck_gives_its_committed_listing),
         cmocka_unit_test(a_deck_whose_requirement_is_not_met_says_so),
         cmocka_unit_test(two_runs_of_a_deck_are_the_same_to_the_byte),
+        cmocka_unit_test(every_deck_of_the_reference_runs),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
