@@ -106,7 +106,8 @@ void *arena_try(struct arena *arena, size_t count, size_t size)
     if (size != 0 && count > (SIZE_MAX - step) / size) {
         return NULL;
     }
-    const size_t bytes = (count * size + step - 1) / step * step;
+    /* Nothing takes a step too: an arena without a block has no place to point at. */
+    const size_t bytes = count * size > 0 ? (count * size + step - 1) / step * step : step;
     void *taken = take_bytes(arena, bytes);
     if (taken) {
         memset(taken, 0, bytes);
