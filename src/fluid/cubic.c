@@ -151,8 +151,7 @@ enum answer cubic_set_t(struct fluid_at_t *at_t)
     const double root_T = sqrt(at_t->temperature);
     place_arrays(at);
     for (size_t i = 0; i < at_t->fluid->count; i++) {
-        const struct cubic_curve s =
-            cubic_root_of_a(cubic->equation, &cubic->component[i], at_t->temperature, root_T);
+        const struct cubic_curve s = cubic_root_of_a(cubic->equation, &cubic->component[i], at_t->temperature, root_T);
         at->s[i] = s.value;
         at->s_t[i] = s.t;
         at->s_tt[i] = s.tt;

@@ -53,8 +53,7 @@ static double pair_covolume(const struct cubic_at_t *at, const double b[], size_
 }
 
 /* n b, or a derivative of it: sum_ij n_i n_j b_ij / n, and its derivatives by n_i. Without lij that is sum n_i b_i. */
-static double covolume_sum(const struct cubic_at_t *at, const double b[], double amount, const double n[],
-                           double B_n[])
+static double covolume_sum(const struct cubic_at_t *at, const double b[], double amount, const double n[], double B_n[])
 {
     const size_t count = at->head.fluid->count;
     double B = 0.0;
@@ -173,8 +172,8 @@ static void set_second(const struct cubic_at_t *at, const struct parts *p, doubl
         const double by_c = A_n[i] * p->f_V + p->A * (p->f_VV * c[i] + p->f_VB * B_n[i]) - repulsion;
         for (size_t j = 0; j <= i; j++) {
             const size_t ij = i * count + j;
-            F_nn[ij] = F_nn[j * count + i] = -(constant + 2.0 * p->f * at->pair[ij] + by_A * A_n[j] +
-                                               by_B * B_n[j] + by_c * c[j]);
+            F_nn[ij] = F_nn[j * count + i] =
+                -(constant + 2.0 * p->f * at->pair[ij] + by_A * A_n[j] + by_B * B_n[j] + by_c * c[j]);
         }
     }
 }
@@ -230,10 +229,10 @@ static void set_temperature_derivatives(const struct cubic_at_t *at, const struc
     }
     for (size_t i = 0; want & WANT_F_TN && i < count; i++) {
         const double B_i = work->B_n[i], c_i = at->c[i];
-        const double by_B_t = p->g_D + p->n * p->g_DD * (B_i - c_i) + work->A_n[i] * p->f_B +
-                              p->A * (p->f_VB * c_i + p->f_BB * B_i);
-        out->F_Tn[i] = -work->A_Tn[i] * p->f - s.A_t * (p->f_V * c_i + p->f_B * B_i) - s.B_t * by_B_t -
-                       by_B * work->B_Tn[i];
+        const double by_B_t =
+            p->g_D + p->n * p->g_DD * (B_i - c_i) + work->A_n[i] * p->f_B + p->A * (p->f_VB * c_i + p->f_BB * B_i);
+        out->F_Tn[i] =
+            -work->A_Tn[i] * p->f - s.A_t * (p->f_V * c_i + p->f_B * B_i) - s.B_t * by_B_t - by_B * work->B_Tn[i];
     }
 }
 

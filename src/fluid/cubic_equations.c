@@ -1,4 +1,5 @@
-/* The cubic equations of the literature, one row each: a form (the denominator) and what alpha, covolume and pairs do. */
+/* The cubic equations of the literature, one row each: a form, that is the denominator, and what alpha, covolume and
+ * pairs do. */
 #include "fluid/cubic_internal.h"
 #include "fluid/methods_internal.h"
 
@@ -141,10 +142,10 @@ static const struct cubic_equation QUANTUM_PENG_ROBINSON = {
 
 #define CUBIC_CAPABILITIES (CAN_LIQUID | CAN_MIXTURE | CAN_CALORIC | IS_CUBIC)
 
-#define CUBIC_OPS                                                                                                      \
-    .form = FLUID_FROM_TV, .at_t_size = cubic_at_t_size, .set_t = cubic_set_t, .tv = cubic_tv,                         \
-    .volume_and_tv = cubic_volume_and_tv, .volume = cubic_volume, .smallest_volume = cubic_smallest_volume,            \
-    .range = cubic_range, .critical = cubic_critical, .saturation_start = cubic_saturation_start,                      \
+#define CUBIC_OPS                                                                                           \
+    .form = FLUID_FROM_TV, .at_t_size = cubic_at_t_size, .set_t = cubic_set_t, .tv = cubic_tv,              \
+    .volume_and_tv = cubic_volume_and_tv, .volume = cubic_volume, .smallest_volume = cubic_smallest_volume, \
+    .range = cubic_range, .critical = cubic_critical, .saturation_start = cubic_saturation_start,           \
     .pair = cubic_pair_at, .explain = cubic_explain
 
 static struct fluid *create_van_der_waals(const struct fluid_spec *spec, struct arena *arena,

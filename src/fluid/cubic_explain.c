@@ -6,8 +6,8 @@
 /* From here on a pressure is a small difference of two large terms. */
 #define STRONG_CANCELLATION 1e3
 
-static void add(struct explanation *out, const char *symbol, const char *meaning, const char *formula,
-                const char *unit, double value)
+static void add(struct explanation *out, const char *symbol, const char *meaning, const char *formula, const char *unit,
+                double value)
 {
     explanation_add(out, (struct explained_value){symbol, meaning, formula, unit, 0, value, false});
 }
@@ -52,8 +52,8 @@ static void add_alpha_parameters(const struct cubic_fluid *cubic, struct explana
 {
     const struct cubic_component *component = &cubic->component[0];
     if (cubic->equation->alpha == ALPHA_SOAVE) {
-        const bool is_high = cubic->equation->high_slope_formula != NULL &&
-                             cubic->head.spec->pure[0]->acentric.value > HIGH_ACENTRIC;
+        const bool is_high =
+            cubic->equation->high_slope_formula != NULL && cubic->head.spec->pure[0]->acentric.value > HIGH_ACENTRIC;
         add(out, "m", "slope of the attraction",
             is_high ? cubic->equation->high_slope_formula : cubic->equation->slope_formula, "1", component->m);
     } else if (cubic->equation->alpha == ALPHA_TWU) {
@@ -72,8 +72,8 @@ static void add_covolume(const struct cubic_at_t *at, struct explanation *out)
     }
     add(out, "A_b", "first constant of the covolume", NULL, "K", component->set->covolume_A);
     add(out, "B_b", "second constant of the covolume", NULL, "K", component->set->covolume_B);
-    add(out, "b", "covolume",
-        "Omega_b * R * T_c / p_c * ((1 + A_b / (T + B_b)) / (1 + A_b / (T_c + B_b))) ^ 3", "m3/mol", at->b[0]);
+    add(out, "b", "covolume", "Omega_b * R * T_c / p_c * ((1 + A_b / (T + B_b)) / (1 + A_b / (T_c + B_b))) ^ 3",
+        "m3/mol", at->b[0]);
 }
 
 static void add_parameters(const struct cubic_at_t *at, double a, struct explanation *out)
@@ -159,8 +159,8 @@ enum answer cubic_explain(const struct fluid_at_t *at_t, double molar_volume, bo
     if (is_translated) {
         add_translation(molar_volume, at->c[0], out);
     }
-    explanation_add(out, (struct explained_value){"p_rep", "repulsive part", words->repulsion, "Pa", 0, repulsion,
-                                                  is_cancelling});
+    explanation_add(
+        out, (struct explained_value){"p_rep", "repulsive part", words->repulsion, "Pa", 0, repulsion, is_cancelling});
     explanation_add(out, (struct explained_value){"p_att", "attractive part", words->attraction, "Pa", 0, attraction,
                                                   is_cancelling});
     add(out, "p", "pressure", "p_rep - p_att", "Pa", p);

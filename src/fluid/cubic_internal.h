@@ -52,7 +52,7 @@ enum answer cubic_packing(const struct cubic_form *form, double theta, double pi
  * distance from the critical point, to 2e-5 (liquid) and 4e-3 (vapour) for theta up to 33 times the critical one. */
 void cubic_saturation_guess(const struct cubic_form *form, double theta, double *vapour, double *liquid);
 
-/* ---- cubic_alpha.c: what a component's a and b do with temperature ------------------------------------------------ */
+/* ---- cubic_alpha.c: what a component's a and b do with temperature ----------------------------------------------- */
 
 enum cubic_alpha {
     ALPHA_ONE,           /* alpha = 1 */
@@ -100,7 +100,7 @@ struct cubic_curve cubic_root_of_a(const struct cubic_equation *equation, const 
 struct cubic_curve cubic_covolume(const struct cubic_equation *equation, const struct cubic_component *component,
                                   double temperature);
 
-/* ---- the fluid, and its state at one temperature ------------------------------------------------------------------ */
+/* ---- the fluid, and its state at one temperature ----------------------------------------------------------------- */
 
 /* Two groups' share in a pair: `part` times a power of temperature that other pairs may need as well. */
 struct cubic_group_part {
@@ -121,9 +121,9 @@ struct cubic_powers {
 
 struct cubic_pair {
     enum pair_origin origin;
-    double factor;      /* 1 - kij; unused from groups */
+    double kij; /* zero from groups */
     double lij;
-    size_t part_count;  /* from groups */
+    size_t part_count; /* from groups */
     const struct cubic_group_part *parts;
 };
 
@@ -134,6 +134,8 @@ struct cubic_fluid {
     const double *b;                         /* [count], m3/mol; at the critical temperature where it moves */
     const double *c;                         /* [count], m3/mol, the translations */
     const struct cubic_pair *pair;           /* [count * count] */
+    const double *factor;                    /* [count * count], 1 - kij */
+    bool has_groups;                         /* some pair has its parameter from groups */
     struct cubic_powers powers;              /* what the pairs from groups need */
     bool has_lij;                            /* some pair has lij other than zero: b is quadratic in x */
 };
@@ -149,13 +151,13 @@ struct cubic_work {
 /* The arrays follow in the same block. */
 struct cubic_at_t {
     struct fluid_at_t head;
-    double *s, *s_t, *s_tt;   /* [count], sqrt(a_i / (R T)) */
-    double *moving_b;         /* [count], what `b` points to where it moves */
-    double *b_t, *b_tt;       /* [count], not looked at unless b moves */
-    double *pair;             /* [count * count], a_ij / (R T) in m3/mol */
-    double *power;            /* [powers.count], over R T */
-    const double *b;          /* [count], m3/mol */
-    const double *c;          /* [count], m3/mol */
+    double *s, *s_t, *s_tt; /* [count], sqrt(a_i / (R T)) */
+    double *moving_b;       /* [count], what `b` points to where it moves */
+    double *b_t, *b_tt;     /* [count], not looked at unless b moves */
+    double *pair;           /* [count * count], a_ij / (R T) in m3/mol */
+    double *power;          /* [powers.count], over R T */
+    const double *b;        /* [count], m3/mol */
+    const double *c;        /* [count], m3/mol */
     struct cubic_work *work;
 };
 
@@ -169,7 +171,7 @@ static inline const struct cubic_at_t *cubic_at(const struct fluid_at_t *at_t)
     return (const struct cubic_at_t *)at_t;
 }
 
-/* ---- cubic_pairs.c ------------------------------------------------------------------------------------------------ */
+/* ---- cubic_pairs.c ----------------------------------------------------------------------------------------------- */
 
 /* Chooses where every pair has its parameters from; `component` and `equation` are set. */
 void cubic_choose_pairs(struct cubic_fluid *cubic, struct arena *arena);
@@ -183,7 +185,7 @@ void cubic_set_pair_slopes(const struct cubic_at_t *at);
 /* struct fluid_ops' pair. */
 enum answer cubic_pair_at(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
 
-/* ---- cubic_energy.c: the residual Helmholtz energy ---------------------------------------------------------------- */
+/* ---- cubic_energy.c: the residual Helmholtz energy --------------------------------------------------------------- */
 
 /* The mixture as one fluid: sums over all of n. */
 struct cubic_sums {
@@ -200,7 +202,7 @@ struct cubic_sums cubic_sums_of(const struct cubic_at_t *at, const double n[]);
 void cubic_energy_at(const struct cubic_at_t *at, const struct cubic_sums *sums, double volume, const double n[],
                      unsigned want, struct helmholtz *out);
 
-/* ---- cubic.c ------------------------------------------------------------------------------------------------------ */
+/* ---- cubic.c ----------------------------------------------------------------------------------------------------- */
 
 /* A fluid of that equation, or NULL with the reason in *lack. */
 struct fluid *cubic_create(const struct fluid_ops *ops, const struct cubic_equation *equation,
@@ -220,7 +222,7 @@ struct range_note cubic_range(const struct fluid *fluid, double temperature, dou
 enum answer cubic_critical(const struct fluid *fluid, struct critical_point *out);
 enum answer cubic_saturation_start(const struct fluid_at_t *at_t, struct saturation_start *out);
 
-/* ---- cubic_explain.c ---------------------------------------------------------------------------------------------- */
+/* ---- cubic_explain.c --------------------------------------------------------------------------------------------- */
 
 /* struct fluid_ops' explain. */
 enum answer cubic_explain(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,

@@ -137,20 +137,19 @@ static bool take_groups(struct cubic_fluid *cubic, size_t i, size_t j, struct ar
 
 static struct cubic_pair constant_pair(const struct pair_constant *constant)
 {
-    return (struct cubic_pair){
-        .origin = constant->origin, .factor = 1.0 - constant->kij, .lij = constant->lij};
+    return (struct cubic_pair){.origin = constant->origin, .kij = constant->kij, .lij = constant->lij};
 }
 
 static struct cubic_pair choose(struct cubic_fluid *cubic, size_t i, size_t j, struct arena *arena)
 {
     const struct fluid_spec *spec = cubic->head.spec;
     const struct pair_constant *constant = constant_of(cubic, i, j, PAIR_FROM_DECK);
-    struct cubic_pair pair = {.origin = PAIR_FROM_NOTHING, .factor = 1.0};
+    struct cubic_pair pair = {.origin = PAIR_FROM_NOTHING};
     if (constant != NULL) {
         return constant_pair(constant);
     }
     if (spec->kij != NULL) {
-        return (struct cubic_pair){.origin = PAIR_FROM_DECK, .factor = 1.0 - spec->kij[i * spec->count + j]};
+        return (struct cubic_pair){.origin = PAIR_FROM_DECK, .kij = spec->kij[i * spec->count + j]};
     }
     if (cubic->equation->takes_groups && take_groups(cubic, i, j, arena, &pair)) {
         return pair;
@@ -163,15 +162,20 @@ void cubic_choose_pairs(struct cubic_fluid *cubic, struct arena *arena)
 {
     const size_t count = cubic->head.count;
     struct cubic_pair *pair = arena_alloc(arena, count * count, sizeof *pair);
+    double *factor = arena_alloc(arena, count * count, sizeof *factor);
     for (size_t i = 0; i < count; i++) {
-        pair[i * count + i] = (struct cubic_pair){.origin = PAIR_FROM_NOTHING, .factor = 1.0};
+        pair[i * count + i].origin = PAIR_FROM_NOTHING;
+        factor[i * count + i] = 1.0;
         for (size_t j = 0; j < i; j++) {
             const struct cubic_pair chosen = choose(cubic, i, j, arena);
             pair[i * count + j] = pair[j * count + i] = chosen;
+            factor[i * count + j] = factor[j * count + i] = 1.0 - chosen.kij;
+            cubic->has_groups = cubic->has_groups || chosen.origin == PAIR_FROM_GROUPS;
             cubic->has_lij = cubic->has_lij || fabs(chosen.lij) > 0.0;
         }
     }
     cubic->pair = pair;
+    cubic->factor = factor;
 }
 
 /* ---- at one temperature ---------------------------------------------------------------------------------------- */
@@ -196,6 +200,9 @@ static struct cubic_curve group_energy(const struct cubic_at_t *at, const struct
 static void set_powers(struct cubic_at_t *at)
 {
     const struct cubic_powers *powers = &cubic_of(&at->head)->powers;
+    if (powers->count == 0) {
+        return;
+    }
     const double RT = at->head.fluid->gas_constant * at->head.temperature;
     const double ln_ratio = log(GROUP_TEMPERATURE / at->head.temperature);
     for (size_t k = 0; k < powers->count; k++) {
@@ -214,36 +221,57 @@ static struct cubic_curve from_groups(const struct cubic_at_t *at, size_t i, siz
     return (struct cubic_curve){
         .value = u * s[i] * s[i] + w * s[j] * s[j] - half * energy.value,
         .t = 2.0 * (u * s[i] * s_t[i] + w * s[j] * s_t[j]) - half * energy.t,
-        .tt = 2.0 * (u * (s_t[i] * s_t[i] + s[i] * s_tt[i]) + w * (s_t[j] * s_t[j] + s[j] * s_tt[j])) -
-              half * energy.tt,
+        .tt =
+            2.0 * (u * (s_t[i] * s_t[i] + s[i] * s_tt[i]) + w * (s_t[j] * s_t[j] + s[j] * s_tt[j])) - half * energy.tt,
     };
 }
 
-static bool is_from_groups(const struct cubic_at_t *at, size_t ij)
+/* Calls `put` for every pair from groups, with its attraction. */
+static void for_pairs_from_groups(const struct cubic_at_t *at,
+                                  void (*put)(const struct cubic_at_t *at, size_t ij, const struct cubic_curve *a))
 {
-    return cubic_of(&at->head)->pair[ij].origin == PAIR_FROM_GROUPS;
+    const struct cubic_fluid *cubic = cubic_of(&at->head);
+    const size_t count = at->head.fluid->count;
+    for (size_t i = 0; cubic->has_groups && i < count; i++) {
+        for (size_t j = 0; j < i; j++) {
+            if (cubic->pair[i * count + j].origin == PAIR_FROM_GROUPS) {
+                const struct cubic_curve a = from_groups(at, i, j);
+                put(at, i * count + j, &a);
+                put(at, j * count + i, &a);
+            }
+        }
+    }
+}
+
+static void put_value(const struct cubic_at_t *at, size_t ij, const struct cubic_curve *a)
+{
+    at->pair[ij] = a->value;
+}
+
+static void put_slopes(const struct cubic_at_t *at, size_t ij, const struct cubic_curve *a)
+{
+    at->work->pair_t[ij] = a->t;
+    at->work->pair_tt[ij] = a->tt;
 }
 
 void cubic_set_pairs(struct cubic_at_t *at)
 {
     const struct cubic_fluid *cubic = cubic_of(&at->head);
     const size_t count = at->head.fluid->count;
-    if (cubic->powers.count > 0) {
-        set_powers(at);
-    }
     for (size_t i = 0; i < count; i++) {
         for (size_t j = 0; j <= i; j++) {
             const size_t ij = i * count + j;
-            at->pair[ij] = at->pair[j * count + i] =
-                is_from_groups(at, ij) ? from_groups(at, i, j).value : cubic->pair[ij].factor * at->s[i] * at->s[j];
+            at->pair[ij] = at->pair[j * count + i] = cubic->factor[ij] * at->s[i] * at->s[j];
         }
     }
+    set_powers(at);
+    for_pairs_from_groups(at, put_value);
     at->work->has_slopes = false;
 }
 
 void cubic_set_pair_slopes(const struct cubic_at_t *at)
 {
-    const struct cubic_fluid *cubic = cubic_of(&at->head);
+    const double *factor = cubic_of(&at->head)->factor;
     const size_t count = at->head.fluid->count;
     const double *s = at->s, *s_t = at->s_t, *s_tt = at->s_tt;
     struct cubic_work *work = at->work;
@@ -253,18 +281,12 @@ void cubic_set_pair_slopes(const struct cubic_at_t *at)
     for (size_t i = 0; i < count; i++) {
         for (size_t j = 0; j <= i; j++) {
             const size_t ij = i * count + j, ji = j * count + i;
-            const double factor = cubic->pair[ij].factor;
-            struct cubic_curve a = {
-                .t = factor * (s_t[i] * s[j] + s[i] * s_t[j]),
-                .tt = factor * (s_tt[i] * s[j] + 2.0 * s_t[i] * s_t[j] + s[i] * s_tt[j]),
-            };
-            if (is_from_groups(at, ij)) {
-                a = from_groups(at, i, j);
-            }
-            work->pair_t[ij] = work->pair_t[ji] = a.t;
-            work->pair_tt[ij] = work->pair_tt[ji] = a.tt;
+            work->pair_t[ij] = work->pair_t[ji] = factor[ij] * (s_t[i] * s[j] + s[i] * s_t[j]);
+            work->pair_tt[ij] = work->pair_tt[ji] =
+                factor[ij] * (s_tt[i] * s[j] + 2.0 * s_t[i] * s_t[j] + s[i] * s_tt[j]);
         }
     }
+    for_pairs_from_groups(at, put_slopes);
     work->has_slopes = true;
 }
 
@@ -273,7 +295,7 @@ enum answer cubic_pair_at(const struct fluid_at_t *at_t, size_t i, size_t j, str
     const struct cubic_at_t *at = cubic_at(at_t);
     const size_t ij = i * at_t->fluid->count + j;
     const struct cubic_pair *pair = &cubic_of(at_t)->pair[ij];
-    *out = (struct pair_parameter){.origin = pair->origin, .kij = 1.0 - pair->factor, .lij = pair->lij};
+    *out = (struct pair_parameter){.origin = pair->origin, .kij = pair->kij, .lij = pair->lij};
     if (pair->origin == PAIR_FROM_GROUPS) {
         out->kij = 1.0 - at->pair[ij] / (at->s[i] * at->s[j]);
     }

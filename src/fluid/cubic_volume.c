@@ -31,8 +31,7 @@ double cubic_reduced_pressure_slope(const struct cubic_form *form, double theta,
 {
     const double denominator = (1.0 + form->delta1 * y) * (1.0 + form->delta2 * y);
     const double free = 1.0 - y;
-    return 1.0 / (free * free) -
-           theta * y * (2.0 + (form->delta1 + form->delta2) * y) / (denominator * denominator);
+    return 1.0 / (free * free) - theta * y * (2.0 + (form->delta1 + form->delta2) * y) / (denominator * denominator);
 }
 
 double cubic_ln_reduced_fugacity(const struct cubic_form *form, double theta, double y)
@@ -83,8 +82,8 @@ static struct step step_from(const struct cubic_polynomial *h, double y, double 
     const double left = size * size * size * (bend * bend + fabs(h->c[3] * slope));
     return (struct step){
         .next = next,
-        .is_last = size <= 4.0 * DBL_EPSILON * next ||
-                   (size <= next && left <= 0.5 * DBL_EPSILON * next * slope * slope),
+        .is_last =
+            size <= 4.0 * DBL_EPSILON * next || (size <= next && left <= 0.5 * DBL_EPSILON * next * slope * slope),
     };
 }
 
@@ -138,8 +137,7 @@ static struct extrema extrema_of(const struct cubic_polynomial *h)
     }
     found.reach = sqrt(square);
     const double top = found.centre - found.reach, bottom = found.centre + found.reach;
-    found.separate_three_roots =
-        top > 0.0 && bottom < 1.0 && value_of(h, top) >= 0.0 && value_of(h, bottom) <= 0.0;
+    found.separate_three_roots = top > 0.0 && bottom < 1.0 && value_of(h, top) >= 0.0 && value_of(h, bottom) <= 0.0;
     return found;
 }
 
@@ -196,8 +194,8 @@ enum answer cubic_packing(const struct cubic_form *form, double theta, double pi
     if (branch != BRANCH_VAPOUR) {
         const double vapour = *y;
         *y = liquid_root(&h, &extrema);
-        if (branch == BRANCH_STABLE && cubic_ln_reduced_fugacity(form, theta, vapour) <
-                                           cubic_ln_reduced_fugacity(form, theta, *y)) {
+        if (branch == BRANCH_STABLE &&
+            cubic_ln_reduced_fugacity(form, theta, vapour) < cubic_ln_reduced_fugacity(form, theta, *y)) {
             *y = vapour;
         }
     }

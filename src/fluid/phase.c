@@ -57,14 +57,13 @@ static double total(const double n[], size_t count)
     return sum;
 }
 
-/* Zero times a number is zero, times anything else it is not: one test for them all. */
 static bool all_finite(const double values[], size_t count)
 {
-    double sum = 0.0;
+    bool is_good = true;
     for (size_t i = 0; i < count; i++) {
-        sum += 0.0 * values[i];
+        is_good &= isfinite(values[i]) != 0;
     }
-    return isfinite(sum);
+    return is_good;
 }
 
 /* ANSWER_OK only if everything that was wanted is a number. */
@@ -136,6 +135,13 @@ static void set_fugacities(const double *F_n, size_t count, double RT, unsigned 
     }
 }
 
+static void add_to_row(double *row, size_t count, double constant, double factor, const double values[])
+{
+    for (size_t j = 0; j < count; j++) {
+        row[j] += constant + factor * values[j];
+    }
+}
+
 /* `dp_dn` arrives holding F_Vi. The other arrays hold F_Ti and F_ij where they are wanted. */
 static void set_derivatives(double *dp_dn, size_t count, double RT, unsigned want, struct phase *out)
 {
@@ -150,8 +156,8 @@ static void set_derivatives(double *dp_dn, size_t count, double RT, unsigned wan
         if (want & PHASE_DLN_PHI_DT) {
             out->dln_phi_dt[i] += 1.0 / out->temperature - partial_volume * out->dp_dt / RT;
         }
-        for (size_t j = 0; want & PHASE_DLN_PHI_DN && j < count; j++) {
-            out->dln_phi_dn[i * count + j] += 1.0 / out->amount - partial_volume * dp_dn[j] / RT;
+        if (want & PHASE_DLN_PHI_DN) {
+            add_to_row(&out->dln_phi_dn[i * count], count, 1.0 / out->amount, -partial_volume / RT, dp_dn);
         }
     }
 }
@@ -172,7 +178,9 @@ static struct helmholtz arrays_for(const struct fluid *fluid, unsigned want, con
     return (struct helmholtz){
         .F_n = want & PHASE_LN_PHI ? out->ln_phi : out->ln_f_over_x,
         /* A pure fluid's dp/dn needs no scratch. */
-        .F_Vn = want & PHASE_DP_DN ? out->dp_dn : fluid->count == 1 ? single : out->scratch,
+        .F_Vn = want & PHASE_DP_DN  ? out->dp_dn
+                : fluid->count == 1 ? single
+                                    : out->scratch,
         .F_Tn = out->dln_phi_dt,
         .F_nn = out->dln_phi_dn,
     };
@@ -180,8 +188,8 @@ static struct helmholtz arrays_for(const struct fluid *fluid, unsigned want, con
 
 /* The phase from what tv said at `volume`. With `pressure` not NULL the pressure is the one the volume was solved for,
  * to its last digit, rather than what rounding in a stiff liquid makes of it. */
-static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, const double *pressure,
-                                 const double n[], const struct helmholtz *F, unsigned want, struct phase *out)
+static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, const double *pressure, const double n[],
+                                 const struct helmholtz *F, unsigned want, struct phase *out)
 {
     const struct fluid *fluid = at_t->fluid;
     const size_t count = fluid->count;

@@ -152,8 +152,8 @@ struct pure_spec {
     const struct group_share *groups;
 };
 
-/* A fluid: its substances and what is known of their pairs. A cubic method takes a pair's parameters from the deck, else
- * from the groups (the method that has them), else from the library, else sets them to zero. */
+/* A fluid: its substances and what is known of their pairs. A cubic method takes a pair's parameters from the deck,
+ * else from the groups (the method that has them), else from the library, else sets them to zero. */
 struct fluid_spec {
     size_t count;
     const struct pure_spec *const *pure; /* [count] */

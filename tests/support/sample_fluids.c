@@ -15,26 +15,68 @@ static const struct residual_term PROPANE_RESIDUAL[] = {
     {.kind = RESIDUAL_POWER, .n = -0.22917851, .t = 1.09, .d = 6.0, .l = 1.0},
     {.kind = RESIDUAL_POWER, .n = -0.60405866, .t = 3.25, .d = 2.0, .l = 2.0},
     {.kind = RESIDUAL_POWER, .n = 0.066680654, .t = 4.62, .d = 3.0, .l = 2.0},
-    {.kind = RESIDUAL_GAUSSIAN, .n = 0.017534618, .t = 0.76, .d = 1.0, .eta = 0.963, .epsilon = 1.283, .beta = 2.33,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = 0.017534618,
+     .t = 0.76,
+     .d = 1.0,
+     .eta = 0.963,
+     .epsilon = 1.283,
+     .beta = 2.33,
      .gamma = 0.684},
-    {.kind = RESIDUAL_GAUSSIAN, .n = 0.33874242, .t = 2.5, .d = 1.0, .eta = 1.977, .epsilon = 0.6936, .beta = 3.47,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = 0.33874242,
+     .t = 2.5,
+     .d = 1.0,
+     .eta = 1.977,
+     .epsilon = 0.6936,
+     .beta = 3.47,
      .gamma = 0.829},
-    {.kind = RESIDUAL_GAUSSIAN, .n = 0.22228777, .t = 2.75, .d = 1.0, .eta = 1.917, .epsilon = 0.788, .beta = 3.15,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = 0.22228777,
+     .t = 2.75,
+     .d = 1.0,
+     .eta = 1.917,
+     .epsilon = 0.788,
+     .beta = 3.15,
      .gamma = 1.419},
-    {.kind = RESIDUAL_GAUSSIAN, .n = -0.23219062, .t = 3.05, .d = 2.0, .eta = 2.307, .epsilon = 0.473, .beta = 3.19,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = -0.23219062,
+     .t = 3.05,
+     .d = 2.0,
+     .eta = 2.307,
+     .epsilon = 0.473,
+     .beta = 3.19,
      .gamma = 0.817},
-    {.kind = RESIDUAL_GAUSSIAN, .n = -0.09220694, .t = 2.55, .d = 2.0, .eta = 2.546, .epsilon = 0.8577, .beta = 0.92,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = -0.09220694,
+     .t = 2.55,
+     .d = 2.0,
+     .eta = 2.546,
+     .epsilon = 0.8577,
+     .beta = 0.92,
      .gamma = 1.5},
-    {.kind = RESIDUAL_GAUSSIAN, .n = -0.47575718, .t = 8.4, .d = 4.0, .eta = 3.28, .epsilon = 0.271, .beta = 18.8,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = -0.47575718,
+     .t = 8.4,
+     .d = 4.0,
+     .eta = 3.28,
+     .epsilon = 0.271,
+     .beta = 18.8,
      .gamma = 1.426},
-    {.kind = RESIDUAL_GAUSSIAN, .n = -0.017486824, .t = 6.75, .d = 1.0, .eta = 14.6, .epsilon = 0.948, .beta = 547.8,
+    {.kind = RESIDUAL_GAUSSIAN,
+     .n = -0.017486824,
+     .t = 6.75,
+     .d = 1.0,
+     .eta = 14.6,
+     .epsilon = 0.948,
+     .beta = 547.8,
      .gamma = 1.093},
 };
 
 static const struct ideal_term PROPANE_IDEAL[] = {
-    {.kind = IDEAL_LEAD, .a = -4.970583, .b = 4.29352},        {.kind = IDEAL_LOG_TAU, .a = 3.0},
-    {.kind = IDEAL_EINSTEIN, .a = 3.043, .b = 1.062478},       {.kind = IDEAL_EINSTEIN, .a = 5.874, .b = 3.344237},
-    {.kind = IDEAL_EINSTEIN, .a = 9.337, .b = 5.363757},       {.kind = IDEAL_EINSTEIN, .a = 7.922, .b = 11.762957},
+    {.kind = IDEAL_LEAD, .a = -4.970583, .b = 4.29352},  {.kind = IDEAL_LOG_TAU, .a = 3.0},
+    {.kind = IDEAL_EINSTEIN, .a = 3.043, .b = 1.062478}, {.kind = IDEAL_EINSTEIN, .a = 5.874, .b = 3.344237},
+    {.kind = IDEAL_EINSTEIN, .a = 9.337, .b = 5.363757}, {.kind = IDEAL_EINSTEIN, .a = 7.922, .b = 11.762957},
 };
 
 static const double PROPANE_PRESSURE[][2] = {
@@ -45,10 +87,10 @@ static const double PROPANE_VAPOUR[][2] = {
     {-2.4887, 0.3785}, {-5.1069, 1.07}, {-12.174, 2.7}, {-30.495, 5.5}, {-52.192, 10.0}, {-134.89, 20.0},
 };
 
-#define GUESS(kind, value, table)                                                                                      \
-    {                                                                                                                  \
-        .form = (kind), .reducing_temperature = 369.89, .reducing_value = (value),                                     \
-        .count = sizeof(table) / sizeof *(table), .terms = (table)                                                     \
+#define GUESS(kind, value, table)                                                  \
+    {                                                                              \
+        .form = (kind), .reducing_temperature = 369.89, .reducing_value = (value), \
+        .count = sizeof(table) / sizeof *(table), .terms = (table)                 \
     }
 
 static const struct reference_spec PROPANE_EQUATION = {
@@ -71,28 +113,31 @@ static const struct reference_spec PROPANE_EQUATION = {
 };
 
 /* Bell, Satyro and Lemmon, J. Chem. Eng. Data 63 (2018) 2402, with the critical constants fitted there. */
-#define TWU(Tc, pc, L_, M_, N_)                                                                                        \
-    {                                                                                                                  \
-        .method = "peng-robinson-twu", .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)},        \
-        .has_twu = true, .L = (L_), .M = (M_), .N = (N_)                                                               \
+#define TWU(Tc, pc, L_, M_, N_)                                                                                 \
+    {                                                                                                           \
+        .method = "peng-robinson-twu", .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)}, \
+        .has_twu = true, .L = (L_), .M = (M_), .N = (N_)                                                        \
     }
 
 /* Pina-Martinez, Privat and Jaubert, AIChE J. 68 (2022) e17518. */
-#define TRANSLATED(word, L_, M_, N_, c)                                                                                \
-    {                                                                                                                  \
-        .method = (word), .has_twu = true, .L = (L_), .M = (M_), .N = (N_), .shift = (c)                               \
+#define TRANSLATED(word, L_, M_, N_, c)                                                  \
+    {                                                                                    \
+        .method = (word), .has_twu = true, .L = (L_), .M = (M_), .N = (N_), .shift = (c) \
     }
 #define TRANSLATED_PR(L_, M_, N_, c) TRANSLATED("translated-peng-robinson", L_, M_, N_, c)
 #define TRANSLATED_RK(L_, M_, N_, c) TRANSLATED("translated-redlich-kwong", L_, M_, N_, c)
 
 /* A translation of Peng and Robinson's equation of 1978, invented. */
-#define INVENTED_SHIFT(c) {.method = "peng-robinson-1978", .shift = (c)}
+#define INVENTED_SHIFT(c)                            \
+    {                                                \
+        .method = "peng-robinson-1978", .shift = (c) \
+    }
 
 /* Aasen et al., Fluid Phase Equilib. 524 (2020) 112790. */
-#define QUANTUM(Tc, pc, L_, M_, N_, A_, B_, c)                                                                         \
-    {                                                                                                                  \
-        .method = "quantum-peng-robinson", .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)},    \
-        .has_twu = true, .L = (L_), .M = (M_), .N = (N_), .shift = (c), .covolume_A = (A_), .covolume_B = (B_)         \
+#define QUANTUM(Tc, pc, L_, M_, N_, A_, B_, c)                                                                      \
+    {                                                                                                               \
+        .method = "quantum-peng-robinson", .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)}, \
+        .has_twu = true, .L = (L_), .M = (M_), .N = (N_), .shift = (c), .covolume_A = (A_), .covolume_B = (B_)      \
     }
 
 static const struct cubic_set NITROGEN_SETS[] = {
@@ -144,21 +189,21 @@ static const struct group_share N_BUTANE_GROUPS[] = {{GROUP_CH3, 2.0}, {GROUP_CH
 
 /* Jaubert and Mutelet, Fluid Phase Equilib. 224 (2004) 285, and the papers that followed it: A and B in Pa. */
 const struct group_pair SAMPLE_GROUP_PAIRS[] = {
-    {GROUP_CH3, GROUP_CH2, 65.5e6, 105.7e6}, {GROUP_CH3, GROUP_CH4, 28.5e6, 20.2e6},
-    {GROUP_CH4, GROUP_CH2, 37.7e6, 74.8e6},  {GROUP_CH3, GROUP_CO2, 144.8e6, 401.5e6},
+    {GROUP_CH3, GROUP_CH2, 65.5e6, 105.7e6},  {GROUP_CH3, GROUP_CH4, 28.5e6, 20.2e6},
+    {GROUP_CH4, GROUP_CH2, 37.7e6, 74.8e6},   {GROUP_CH3, GROUP_CO2, 144.8e6, 401.5e6},
     {GROUP_CH2, GROUP_CO2, 141.4e6, 237.1e6}, {GROUP_CH4, GROUP_CO2, 136.6e6, 214.8e6},
-    {GROUP_CH3, GROUP_N2, 38.1e6, 88.2e6},   {GROUP_N2, GROUP_CH2, 83.7e6, 188.7e6},
-    {GROUP_CH4, GROUP_N2, 30.9e6, 37.1e6},   {GROUP_CO2, GROUP_N2, 113.9e6, 212.4e6},
+    {GROUP_CH3, GROUP_N2, 38.1e6, 88.2e6},    {GROUP_N2, GROUP_CH2, 83.7e6, 188.7e6},
+    {GROUP_CH4, GROUP_N2, 30.9e6, 37.1e6},    {GROUP_CO2, GROUP_N2, 113.9e6, 212.4e6},
 };
 const size_t SAMPLE_GROUP_PAIRS_COUNT = sizeof SAMPLE_GROUP_PAIRS / sizeof *SAMPLE_GROUP_PAIRS;
 
 /* Critical constants of the reference equations' papers: Span et al. 2000, Setzmann and Wagner 1991, Span and Wagner
  * 1996, Lemmon et al. 2009, Buecker and Wagner 2006, Leachman et al. 2009, Ortiz Vega et al. 2023, Thol et al. 2019;
  * acentric factors follow from those equations. */
-#define LIST(array) .cubic_set_count = sizeof(array) / sizeof *(array), .cubic_sets = (array)
+#define LIST(array)   .cubic_set_count = sizeof(array) / sizeof *(array), .cubic_sets = (array)
 #define GROUPS(array) .group_count = sizeof(array) / sizeof *(array), .groups = (array)
-#define SUBSTANCE(word, mass, Tc, pc, omega)                                                                           \
-    .name = (word), .molar_mass = (mass), .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)},     \
+#define SUBSTANCE(word, mass, Tc, pc, omega)                                                                       \
+    .name = (word), .molar_mass = (mass), .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)}, \
     .acentric = {true, (omega)}
 
 const struct pure_spec SAMPLE_SUBSTANCE[SAMPLE_SUBSTANCES] = {
@@ -168,8 +213,8 @@ const struct pure_spec SAMPLE_SUBSTANCE[SAMPLE_SUBSTANCES] = {
                  GROUPS(METHANE_GROUPS)},
     [CARBON_DIOXIDE] = {SUBSTANCE("carbon-dioxide", 0.0440098, 304.1282, 7.3773e6, 0.2249), LIST(CARBON_DIOXIDE_SETS),
                         GROUPS(CARBON_DIOXIDE_GROUPS)},
-    [PROPANE] = {SUBSTANCE("propane", 0.04409562, 369.89, 4.2512e6, 0.1521), LIST(PROPANE_SETS),
-                 GROUPS(PROPANE_GROUPS), .reference = &PROPANE_EQUATION},
+    [PROPANE] = {SUBSTANCE("propane", 0.04409562, 369.89, 4.2512e6, 0.1521), LIST(PROPANE_SETS), GROUPS(PROPANE_GROUPS),
+                 .reference = &PROPANE_EQUATION},
     [N_BUTANE] = {SUBSTANCE("n-butane", 0.0581222, 425.125, 3.796e6, 0.2008), LIST(N_BUTANE_SETS),
                   GROUPS(N_BUTANE_GROUPS)},
     [HYDROGEN] = {SUBSTANCE("hydrogen", 0.00201588, 33.145, 1.2964e6, -0.2187), LIST(HYDROGEN_SETS)},
@@ -177,30 +222,56 @@ const struct pure_spec SAMPLE_SUBSTANCE[SAMPLE_SUBSTANCES] = {
     [NEON] = {SUBSTANCE("neon", 0.020179, 44.4, 2661630.8, -0.0355), LIST(NEON_SETS)},
 };
 
-#define FIVE {NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE}
-#define FIVE_AMOUNTS {0.23, 0.41, 0.37, 0.19, 0.11}
+#define FIVE                                                 \
+    {                                                        \
+        NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE \
+    }
+#define FIVE_AMOUNTS                 \
+    {                                \
+        0.23, 0.41, 0.37, 0.19, 0.11 \
+    }
 
 const struct sample_fluid SAMPLE_FLUIDS[] = {
     {"ideal gas", "ideal-gas", 3, {NITROGEN, PROPANE, METHANE}, {0.31, 0.47, 1.13}, SAMPLE_INVENTED},
     {"Peng-Robinson propane", "peng-robinson", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"Peng-Robinson mixture", "peng-robinson", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
     {"Soave propane", "soave-redlich-kwong", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
-    {"Soave mixture", "soave-redlich-kwong", 3, {CARBON_DIOXIDE, N_BUTANE, NITROGEN}, {0.71, 0.43, 0.17},
+    {"Soave mixture",
+     "soave-redlich-kwong",
+     3,
+     {CARBON_DIOXIDE, N_BUTANE, NITROGEN},
+     {0.71, 0.43, 0.17},
      SAMPLE_INVENTED},
     {"reference propane", "reference", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"van der Waals propane", "van-der-waals", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
-    {"van der Waals mixture", "van-der-waals", 3, {CARBON_DIOXIDE, N_BUTANE, NITROGEN}, {0.71, 0.43, 0.17},
+    {"van der Waals mixture",
+     "van-der-waals",
+     3,
+     {CARBON_DIOXIDE, N_BUTANE, NITROGEN},
+     {0.71, 0.43, 0.17},
      SAMPLE_INVENTED},
     {"Redlich-Kwong mixture", "redlich-kwong", 3, {METHANE, PROPANE, HYDROGEN}, {0.53, 0.29, 0.13}, SAMPLE_INVENTED},
     {"Peng-Robinson 1978 propane", "peng-robinson-1978", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"Peng-Robinson 1978 by groups", "peng-robinson-1978", 5, FIVE, FIVE_AMOUNTS, SAMPLE_GROUPS},
-    {"Peng-Robinson by Twu", "peng-robinson-twu", 3, {N_BUTANE, NITROGEN, METHANE}, {0.37, 0.71, 0.19},
+    {"Peng-Robinson by Twu",
+     "peng-robinson-twu",
+     3,
+     {N_BUTANE, NITROGEN, METHANE},
+     {0.37, 0.71, 0.19},
      SAMPLE_INVENTED},
     {"translated Peng-Robinson propane", "translated-peng-robinson", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
-    {"translated Peng-Robinson mixture", "translated-peng-robinson", 3, {CARBON_DIOXIDE, METHANE, PROPANE},
-     {0.41, 0.67, 0.29}, SAMPLE_INVENTED},
-    {"translated Redlich-Kwong mixture", "translated-redlich-kwong", 3, {NITROGEN, N_BUTANE, CARBON_DIOXIDE},
-     {0.41, 0.67, 0.29}, SAMPLE_INVENTED},
+    {"translated Peng-Robinson mixture",
+     "translated-peng-robinson",
+     3,
+     {CARBON_DIOXIDE, METHANE, PROPANE},
+     {0.41, 0.67, 0.29},
+     SAMPLE_INVENTED},
+    {"translated Redlich-Kwong mixture",
+     "translated-redlich-kwong",
+     3,
+     {NITROGEN, N_BUTANE, CARBON_DIOXIDE},
+     {0.41, 0.67, 0.29},
+     SAMPLE_INVENTED},
     {"quantum hydrogen", "quantum-peng-robinson", 1, {HYDROGEN}, {1.37}, SAMPLE_CONSTANTS},
     {"quantum mixture", "quantum-peng-robinson", 3, {NEON, HYDROGEN, HELIUM}, {0.47, 0.59, 0.31}, SAMPLE_CONSTANTS},
 };
@@ -244,9 +315,8 @@ static void add_quantum_pairs(const struct sample_fluid *sample, struct fluid_sp
         for (size_t j = 0; j < sample->count; j++) {
             for (size_t k = 0; k < sizeof QUANTUM_PAIRS / sizeof *QUANTUM_PAIRS; k++) {
                 if (QUANTUM_PAIRS[k].first == sample->substance[i] && QUANTUM_PAIRS[k].second == sample->substance[j]) {
-                    pairs[spec->pair_count++] =
-                        (struct pair_constant){i, j, "quantum-peng-robinson", PAIR_FROM_LIBRARY, QUANTUM_PAIRS[k].kij,
-                                               QUANTUM_PAIRS[k].lij};
+                    pairs[spec->pair_count++] = (struct pair_constant){
+                        i, j, "quantum-peng-robinson", PAIR_FROM_LIBRARY, QUANTUM_PAIRS[k].kij, QUANTUM_PAIRS[k].lij};
                 }
             }
         }

@@ -5,7 +5,17 @@
 #include "base/arena.h"
 #include "fluid/fluid.h"
 
-enum sample_substance { NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE, HYDROGEN, HELIUM, NEON, SAMPLE_SUBSTANCES };
+enum sample_substance {
+    NITROGEN,
+    METHANE,
+    CARBON_DIOXIDE,
+    PROPANE,
+    N_BUTANE,
+    HYDROGEN,
+    HELIUM,
+    NEON,
+    SAMPLE_SUBSTANCES
+};
 
 extern const struct pure_spec SAMPLE_SUBSTANCE[SAMPLE_SUBSTANCES];
 
@@ -23,7 +33,7 @@ enum sample_pairs {
 };
 
 struct sample_fluid {
-    const char *name;   /* for messages */
+    const char *name; /* for messages */
     const char *method;
     size_t count;
     enum sample_substance substance[SAMPLE_MOST];
