@@ -109,6 +109,33 @@ static void a_deck_that_cannot_be_read_is_told_of(void **state)
     run_free(run);
 }
 
+/* A slip of the pen in one statement hides none of the others, and a name it may have defined is not asked for. */
+static void one_run_shows_mistakes_of_grammar_and_of_meaning(void **state)
+{
+    (void)state;
+    const struct {
+        const char *text, *expected[4], *unexpected;
+    } cases[] = {
+        {"let hot = = 5 K\nvessel v { water-capacity 50 bar; test-presure 200 barg }\n"
+         "sheet saturation { fluid argon; sweep temperature hot }\n",
+         {"[E105]", "[E208]", "'test-pressure'?"},
+         "'hot'"},
+        {"use \"nowhere\"\nvessel v { water-capacity 50 bar }\n"
+         "sheet saturation { fluid argon; sweep temperature 90 K }\n",
+         {"[E402]", "[E208]"},
+         "'argon'"},
+        {"vessel v {\n water-capacity 50 bar\nlet a = 5 K + 1 bar\n", {"[E107]"}, "[E208]"},
+    };
+    for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
+        struct run *run = run_text("some.deck", cases[i].text, (struct run_request){.mode = RUN_CHECK}, NULL);
+        for (size_t k = 0; cases[i].expected[k] != NULL; k++) {
+            assert_non_null(strstr(run->diagnostics.bytes, cases[i].expected[k]));
+        }
+        assert_null(strstr(run->diagnostics.bytes, cases[i].unexpected));
+        run_free(run);
+    }
+}
+
 static void a_listing_does_not_depend_on_where_the_deck_lies(void **state)
 {
     (void)state;
@@ -342,6 +369,7 @@ int main(void)
         cmocka_unit_test(the_worst_status_wins),
         cmocka_unit_test(every_status_is_reached_by_a_deck),
         cmocka_unit_test(a_deck_that_cannot_be_read_is_told_of),
+        cmocka_unit_test(one_run_shows_mistakes_of_grammar_and_of_meaning),
         cmocka_unit_test(a_listing_does_not_depend_on_where_the_deck_lies),
         cmocka_unit_test(a_check_says_that_a_deck_is_in_order),
         cmocka_unit_test(a_printed_deck_prints_the_same_again),

@@ -283,7 +283,7 @@ struct case_tree {
 };
 
 /* The case a deck describes, or NULL when there were errors (all of them are in the diagnostics). Only what the sheets
- * need is built. */
+ * need is built. A deck that was read with errors is looked through too, for the further messages it gives. */
 const struct case_tree *case_elaborate(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics);
 
 /* One library or deck component by name, for showing; NULL when there is none. */

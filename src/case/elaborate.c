@@ -488,9 +488,6 @@ static void mark_own_files(struct elaboration *e)
 
 const struct case_tree *case_elaborate(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics)
 {
-    if (diagnostics->errors != 0) {
-        return NULL;
-    }
     struct elaboration *e = begin(deck, arena, diagnostics);
     mark_own_files(e);
     read_case(e);

@@ -101,8 +101,8 @@ static bool evaluate_sum(const struct evaluation *with, const struct expression 
     const bool is_addition = at->kind == EXPRESSION_ADD;
     if (!dimension_equal(a->dimension, b->dimension)) {
         struct arena *arena = with->out->arena;
-        diagnose(with->out, CODE_E114, at->at, "%s %s and %s %s", dimension_name(a->dimension, arena),
-                 is_addition ? "plus" : "minus", dimension_name(b->dimension, arena), "do not go together");
+        diagnose(with->out, CODE_E114, at->at, "%s %s %s has no meaning", dimension_name(a->dimension, arena),
+                 is_addition ? "plus" : "minus", dimension_name(b->dimension, arena));
         return false;
     }
     value->dimension = a->dimension;

@@ -149,12 +149,58 @@ static bool refuse_nothing_asked(struct diagnostics *diagnostics)
     return true;
 }
 
+/* Whether what was read still has the deck's own structure: every error so far is within one statement. */
+static bool keeps_its_structure(const struct diagnostics *diagnostics)
+{
+    for (size_t i = 0; i < diagnostics->count; i++) {
+        const enum code code = diagnostics->items[i].code;
+        if (code == CODE_E106 || code == CODE_E107 || code == CODE_E108 || code == CODE_E109 || code == CODE_E119) {
+            return false;
+        }
+    }
+    return diagnostics->count < DIAGNOSTICS_MOST;
+}
+
+/* A name without a definition, or a block without a part, where the statement that gives it may be the one that was
+ * not understood. */
+static bool may_be_consequence(enum code code)
+{
+    return code == CODE_E112 || code == CODE_E205 || code == CODE_E214 || code == CODE_E216 || code == CODE_E223 ||
+           code == CODE_W280;
+}
+
+/* Looks for further mistakes in a deck that is wrong already, so that one run shows them all, and keeps those that do
+ * not follow from the first. */
+static void add_mistakes_of_meaning(struct run *run, const struct deck *deck, struct diagnostics *diagnostics)
+{
+    const size_t before = diagnostics->count;
+    size_t kept = before;
+    case_elaborate(deck, run->arena, diagnostics);
+    for (size_t i = before; i < diagnostics->count; i++) {
+        const struct diagnostic *one = &diagnostics->items[i];
+        if (!may_be_consequence(one->code)) {
+            diagnostics->items[kept++] = *one;
+        } else if (code_row(one->code)->severity == 'E') {
+            diagnostics->errors--;
+        } else {
+            diagnostics->warnings--;
+        }
+    }
+    diagnostics->count = kept;
+}
+
 /* Carries a deck as far as its mode and its errors allow; false when memory ran out outside the arena. */
 static bool carry_out(struct run *run, const struct run_request *request, struct diagnostics *diagnostics)
 {
     const struct deck *deck = deck_load(request->deck_path, request->reader, run->arena, diagnostics);
     run->deck = deck;
-    if (!deck || diagnostics->errors > 0) {
+    if (!deck) {
+        return true;
+    }
+    if (diagnostics->errors > 0) {
+        if (request->mode != RUN_PRINT && keeps_its_structure(diagnostics)) {
+            add_mistakes_of_meaning(run, deck, diagnostics);
+        }
         return true;
     }
     if (request->mode == RUN_PRINT) {
