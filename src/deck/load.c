@@ -168,10 +168,12 @@ static void read_use(struct loading *loading, struct opened *file, const struct 
     use->is_settled = false;
 }
 
+/* A block of one name leads on from that name; one of two, a pair, would lead from each gas to all others. */
 static void note_library_block(struct loading *loading, const struct statement *statement)
 {
     const struct item *head = statement->items;
-    if (head && head->kind == ITEM_EXPRESSION && head->value->kind == EXPRESSION_NAME) {
+    const bool is_pair = head && head->next && head->next->kind == ITEM_EXPRESSION;
+    if (head && head->kind == ITEM_EXPRESSION && head->value->kind == EXPRESSION_NAME && !is_pair) {
         struct library_block *block = ARENA_APPEND(loading->arena, &loading->blocks);
         *block = (struct library_block){.statement = statement, .name = head->value->name};
     }

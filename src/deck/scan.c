@@ -195,7 +195,7 @@ int scan_operator(struct parse_context *context, struct location at)
 {
     const char sign = byte_at(context, at.begin);
     const char after = byte_at(context, at.begin + 1);
-    if (sign == '-' && is_value_start(context, at) && (is_letter(after) || after == '(')) {
+    if (sign == '-' && is_value_start(context, at) && (is_letter(after) || after == '%' || after == '(')) {
         return TOK_NEGATE;
     }
     const bool is_apart = at.begin > 0 && is_blank(byte_at(context, at.begin - 1)) && is_blank(after);

@@ -10,19 +10,28 @@ struct shown_token {
     char text[LONGEST_SHOWN + 8];
 };
 
+static const char *name_of_end(const struct source_file *file, size_t at)
+{
+    const char byte = at < file->length ? file->text[at] : '\0';
+    if (byte == '}' || byte == ';') {
+        return byte == '}' ? "'}'" : "';'";
+    }
+    while (at < file->length && strchr(" \t\r\n", file->text[at])) {
+        at++;
+    }
+    return at >= file->length ? "end of file" : "end of line";
+}
+
 static struct shown_token show_token(const struct syntax_error *error)
 {
     struct shown_token shown;
     const struct source_file *file = error->at.file;
-    const char *at = file->text + error->at.begin;
-    size_t length = error->at.end - error->at.begin;
     if (error->is_end) {
-        const char byte = *at;
-        const bool is_last = at + strspn(at, " \t\r\n") == file->text + file->length;
-        const char *name = byte == '}' ? "'}'" : byte == ';' ? "';'" : is_last ? "end of file" : "end of line";
-        snprintf(shown.text, sizeof shown.text, "%s", name);
+        snprintf(shown.text, sizeof shown.text, "%s", name_of_end(file, error->at.begin));
         return shown;
     }
+    const char *at = file->text + error->at.begin;
+    size_t length = error->at.end - error->at.begin;
     const bool is_long = length > LONGEST_SHOWN;
     if (is_long) {
         for (length = LONGEST_SHOWN; length > 0 && ((unsigned char)at[length] & 0xc0U) == 0x80U; length--) {}

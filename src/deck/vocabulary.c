@@ -108,6 +108,8 @@ struct dimension measure_dimension(enum measure measure)
         return DIMENSION_DENSITY;
     case MEASURE_MOLAR_DENSITY:
         return DIMENSION_MOLAR_DENSITY;
+    case MEASURE_MOLAR_VOLUME:
+        return DIMENSION_MOLAR_VOLUME;
     case MEASURE_MOLAR_MASS:
         return DIMENSION_MOLAR_MASS;
     case MEASURE_MOLAR_HEAT:

@@ -44,6 +44,7 @@ enum measure {
     MEASURE_AMOUNT,
     MEASURE_DENSITY,       /* mass per volume */
     MEASURE_MOLAR_DENSITY, /* amount per volume; a component's critical-density may be mass per volume too */
+    MEASURE_MOLAR_VOLUME,
     MEASURE_MOLAR_MASS,
     MEASURE_MOLAR_HEAT,
     MEASURE_DIPOLE,
