@@ -209,6 +209,15 @@ static const struct fluid *open_fluid(const struct bench *bench, struct arena *a
     return fluid_create(bench->method, spec, arena, &lack);
 }
 
+static void print_row(const char *operation, const char *set, double seconds, double unit, size_t failed)
+{
+    printf("%-38s %-14s %10.4f %14.0f %10.1f", operation, set, 1e6 * seconds, 1.0 / seconds, seconds / unit);
+    if (failed > 0) {
+        printf("   %zu states failed", failed);
+    }
+    printf("\n");
+}
+
 /* Prints one row; false when a state failed. `*unit` is the time of one exp, set by the first row. */
 static bool measure(const struct bench *bench, double *unit)
 {
@@ -227,12 +236,99 @@ static bool measure(const struct bench *bench, double *unit)
     size_t failed = 0;
     const double seconds = median_time(bench, fluid, fluid_at_t_create(fluid, arena), states, &failed);
     *unit = *unit > 0.0 ? *unit : seconds;
-    printf("%-34s %-14s %10.4f %14.0f %10.1f", bench->operation, bench->set, 1e6 * seconds, 1.0 / seconds,
-           seconds / *unit);
-    if (failed > 0) {
-        printf("   %zu states failed", failed);
+    print_row(bench->operation, bench->set, seconds, *unit, failed);
+    arena_free(arena);
+    return failed == 0;
+}
+
+/* ---- mixtures -------------------------------------------------------------------------------------------------- */
+
+enum { MOST_COMPONENTS = 10 };
+
+/* Critical constants of the papers of the reference equations; acentric factors follow from those equations. */
+#define GAS(word, mass, Tc, pc, omega)                                                                                 \
+    {                                                                                                                  \
+        .name = (word), .molar_mass = (mass), .critical_temperature = {true, (Tc)}, .critical_pressure = {true, (pc)}, \
+        .acentric = {                                                                                                  \
+            true,                                                                                                      \
+            (omega)                                                                                                    \
+        }                                                                                                              \
     }
-    printf("\n");
+
+static const struct pure_spec GASES[MOST_COMPONENTS] = {
+    GAS("nitrogen", 0.0280135, 126.192, 3.3958e6, 0.0372), GAS("propane", 0.0440956, 369.89, 4.2512e6, 0.1521),
+    GAS("methane", 0.0160428, 190.564, 4.5992e6, 0.0114),  GAS("carbon-dioxide", 0.0440098, 304.128, 7.3773e6, 0.2249),
+    GAS("n-butane", 0.0581222, 425.125, 3.796e6, 0.2008),  GAS("ethane", 0.0300690, 305.322, 4.8722e6, 0.0995),
+    GAS("isobutane", 0.0581222, 407.81, 3.629e6, 0.1835),  GAS("oxygen", 0.0319988, 154.581, 5.0430e6, 0.0222),
+    GAS("argon", 0.0399480, 150.687, 4.8630e6, -0.0022),   GAS("n-pentane", 0.0721488, 469.7, 3.3675e6, 0.2509),
+};
+
+struct mixture_state {
+    double temperature, pressure; /* K, Pa */
+    double x[MOST_COMPONENTS];
+};
+
+/* 200 to 400 K, 1 kPa to 60 MPa even in ln p, compositions even over the simplex: one and two phases alike. */
+static void draw_mixtures(size_t count, struct mixture_state states[STATES])
+{
+    uint64_t seed = 20250917;
+    for (size_t i = 0; i < STATES; i++) {
+        double sum = 0.0;
+        states[i].temperature = between(200.0, 400.0, draw_uniform(&seed));
+        states[i].pressure = 1e3 * pow(6e4, draw_uniform(&seed));
+        for (size_t k = 0; k < count; k++) {
+            sum += states[i].x[k] = -log(1.0 - draw_uniform(&seed));
+        }
+        for (size_t k = 0; k < count; k++) {
+            states[i].x[k] /= sum;
+        }
+    }
+}
+
+/* Median seconds for ln phi of all components at T, p, the temperature set anew each time. */
+static double time_fugacities(const struct fluid *fluid, const struct mixture_state states[STATES], struct arena *arena,
+                              size_t *failed)
+{
+    struct fluid_at_t *at_t = fluid_at_t_create(fluid, arena);
+    struct phase *phase = phase_create(fluid->count, arena);
+    double samples[SAMPLES], sum = 0.0;
+    for (size_t k = 0; k < SAMPLES; k++) {
+        *failed = 0;
+        const double start = now();
+        for (size_t i = 0; i < STATES; i++) {
+            fluid_set_t(at_t, fluid, states[i].temperature);
+            const enum answer answer =
+                phase_tp(at_t, states[i].pressure, states[i].x, BRANCH_STABLE, PHASE_LN_PHI, phase);
+            *failed += answer == ANSWER_OK ? 0 : 1;
+            sum += phase->ln_phi[0];
+        }
+        samples[k] = (now() - start) / STATES;
+    }
+    qsort(samples, SAMPLES, sizeof *samples, by_size);
+    *failed += isfinite(sum) ? 0 : 1;
+    return samples[SAMPLES / 2];
+}
+
+static bool measure_fugacities(size_t count, double unit)
+{
+    struct arena *arena = arena_create(NULL);
+    const struct pure_spec *pure[MOST_COMPONENTS];
+    double kij[MOST_COMPONENTS * MOST_COMPONENTS];
+    for (size_t i = 0; i < count; i++) {
+        pure[i] = &GASES[i];
+        for (size_t j = 0; j < count; j++) {
+            kij[i * count + j] = i == j ? 0.0 : 0.01 * (double)(i + j);
+        }
+    }
+    const struct fluid_spec spec = {.count = count, .pure = pure, .kij = kij};
+    struct fluid_lack_report lack;
+    struct mixture_state *states = arena_alloc(arena, STATES, sizeof *states);
+    draw_mixtures(count, states);
+    char operation[64];
+    size_t failed = 0;
+    const struct fluid *fluid = fluid_create("peng-robinson", &spec, arena, &lack);
+    snprintf(operation, sizeof operation, "ln phi, %zu components, Peng-Robinson", count);
+    print_row(operation, "mixture-plane", time_fugacities(fluid, states, arena, &failed), unit, failed);
     arena_free(arena);
     return failed == 0;
 }
@@ -242,9 +338,12 @@ int main(void)
     double unit = 0.0;
     bool good = true;
     printf("medians of %d passes over %d seeded states, one thread\n\n", SAMPLES, STATES);
-    printf("%-34s %-14s %10s %14s %10s\n", "operation", "state set", "us", "operations/s", "exp calls");
+    printf("%-38s %-14s %10s %14s %10s\n", "operation", "state set", "us", "operations/s", "exp calls");
     for (size_t i = 0; i < sizeof BENCHES / sizeof *BENCHES; i++) {
         good = measure(&BENCHES[i], &unit) && good;
     }
+    good = measure_fugacities(2, unit) && good;
+    good = measure_fugacities(5, unit) && good;
+    good = measure_fugacities(10, unit) && good;
     return good ? EXIT_SUCCESS : EXIT_FAILURE;
 }
