@@ -121,6 +121,9 @@ static const char BUSY_DECK[] =
     "vessel v { water-capacity 50.2 L; test-pressure 250 barg; fitting \"f\" 300 barg }\n"
     "charge c { fluid carbon-dioxide; vessel v; fill 50 barg at 15 degC }\n"
     "methods { lead reference; beside peng-robinson }\n"
+    "component vapid { parameters peng-robinson { shift 2 cm3/mol }; groups CH3 1, CH2 2 }\n"
+    "component argon { groups CH2 1 }\ngroup-pair CH3 CH2 65.5 MPa, 105.7 MPa\n"
+    "pair argon vapid { peng-robinson kij 0.1; peng-robinson-1978 kij 0.2, lij 0.1; reacts \"slowly\" }\n"
     "mixture m by volume at (15 degC, 1 bara) { argon 2 % +/- 0.1 %; vapid 5 ppm; carbon-dioxide rest }\n"
     "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure\n"
     "  entry \"UN 1013\"; quote pressure at 15 degC, hot; require at hot pressure <= 2 / 3 * test-pressure }\n"
@@ -216,6 +219,8 @@ static void each_word_of_the_vocabulary_is_at_home_in_some_reader(void **state)
                                         "charge b",
                                         "component b",
                                         "mixture b by mole",
+                                        "pair argon vapid",
+                                        "component b { parameters peng-robinson { shift 1 cm3/mol } }; component b",
                                         "equation b",
                                         "rule b",
                                         "entry \"b\"",

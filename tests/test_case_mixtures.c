@@ -1,14 +1,14 @@
 /* Elaboration of mixtures: fractions on each basis, the rest, what needs an assessment, the entry a sheet names. */
 #include "support/elaborated.h"
 
-#define GASES                                                                                                          \
-    "component fuel { molar-mass 16 g/mol; hazard flammable }\n"                                                       \
-    "component oxidant { molar-mass 32 g/mol; hazard oxidising }\n"                                                    \
-    "component inert { molar-mass 28 g/mol }\n"                                                                        \
-    "component heavy { molar-mass 44 g/mol }\n"                                                                        \
-    "component spark { molar-mass 28 g/mol; hazard pyrophoric }\n"                                                     \
-    "component unstable { molar-mass 26 g/mol; hazard flammable, decomposes, dissolved }\n"                            \
-    "component monomer { molar-mass 54 g/mol; hazard flammable, polymerises }\n"                                       \
+#define GASES                                                                               \
+    "component fuel { molar-mass 16 g/mol; hazard flammable }\n"                            \
+    "component oxidant { molar-mass 32 g/mol; hazard oxidising }\n"                         \
+    "component inert { molar-mass 28 g/mol }\n"                                             \
+    "component heavy { molar-mass 44 g/mol }\n"                                             \
+    "component spark { molar-mass 28 g/mol; hazard pyrophoric }\n"                          \
+    "component unstable { molar-mass 26 g/mol; hazard flammable, decomposes, dissolved }\n" \
+    "component monomer { molar-mass 54 g/mol; hazard flammable, polymerises }\n"            \
     "component barred { molar-mass 50 g/mol; refuse \"never here\" }\n"
 
 struct mixed {
@@ -183,8 +183,8 @@ static void what_may_react_needs_an_assessment(void **state)
         {"by mole { oxidant 5 ppm; fuel rest }", NULL, NULL},
         {"by mole { oxidant 110 ppm; fuel rest }", "a fuel beside an oxidant, fuel and oxidant", NULL},
         {"by mass { oxidant 0 %; fuel rest }", NULL, NULL},
-        {"by mole { unstable 1 %; inert rest }",
-         "unstable may decompose, and the pressure after that was not computed", NULL},
+        {"by mole { unstable 1 %; inert rest }", "unstable may decompose, and the pressure after that was not computed",
+         NULL},
         {"by mole { inert 0.4 %; unstable rest }",
          "unstable may decompose, and the pressure after that was not computed",
          "a dissolved gas: its charge follows from the porous mass and the solvent"},
@@ -217,17 +217,150 @@ static void a_pure_gas_carries_the_same_marks(void **state)
     elaborated_end(&it);
 }
 
+/* ---- Pairs ---- */
+
+static struct mixed mix_of_library(const char *more)
+{
+    char deck[2000];
+    snprintf(deck, sizeof deck, "use \"small\"\nmixture m by mole { carbon-dioxide 18 %%; argon rest }\n%s\n", more);
+    struct mixed mixed = {.it = elaborate_well(deck)};
+    mixed.fluid = case_find_mixture(mixed.it.deck, "m", mixed.it.arena, &mixed.it.diagnostics);
+    assert_non_null(mixed.fluid);
+    return mixed;
+}
+
+static const struct pair_constant *constant_of(const struct case_fluid *fluid, const char *method)
+{
+    for (size_t i = 0; i < fluid->spec.pair_count; i++) {
+        if (strcmp(fluid->spec.pairs[i].method, method) == 0) {
+            return &fluid->spec.pairs[i];
+        }
+    }
+    fail_msg("no constants for %s", method);
+    return NULL;
+}
+
+static void a_pair_of_the_library_is_found_whatever_its_order(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("");
+    assert_int_equal(m.fluid->spec.pair_count, 2);
+    const struct pair_constant *constant = constant_of(m.fluid, "peng-robinson");
+    assert_int_equal(constant->first, 0);
+    assert_int_equal(constant->second, 1);
+    assert_int_equal(constant->origin, PAIR_FROM_LIBRARY);
+    assert_close(constant->kij, 0.1, 1e-15, "as written");
+    assert_near(constant->lij, 0.0, 0.0, "none given");
+    assert_close(constant_of(m.fluid, "soave-redlich-kwong")->lij, 0.03, 1e-15, "as written");
+    const struct case_pair *pair = case_pair_of(m.fluid, "carbon-dioxide", "argon");
+    assert_string_equal(pair->first, "argon");
+    assert_string_equal(case_pair_constants_of(pair, "peng-robinson")->kij.origin.source->key, "notebook");
+    assert_null(case_pair_constants_of(pair, "peng-robinson-1978"));
+    assert_null(case_pair_of(m.fluid, "argon", "vapid"));
+    elaborated_end(&m.it);
+}
+
+static void the_decks_pair_overrides_what_it_names(void **state)
+{
+    (void)state;
+    struct mixed m =
+        mix_of_library("pair carbon-dioxide argon { peng-robinson kij 0.12; peng-robinson-1978 kij 0.11 }");
+    assert_int_equal(m.fluid->spec.pair_count, 3);
+    assert_close(constant_of(m.fluid, "peng-robinson")->kij, 0.12, 1e-15, "the deck's");
+    assert_int_equal(constant_of(m.fluid, "peng-robinson")->origin, PAIR_FROM_DECK);
+    assert_int_equal(constant_of(m.fluid, "peng-robinson-1978")->origin, PAIR_FROM_DECK);
+    assert_int_equal(constant_of(m.fluid, "soave-redlich-kwong")->origin, PAIR_FROM_LIBRARY);
+    const struct case_pair *pair = case_pair_of(m.fluid, "argon", "carbon-dioxide");
+    const struct quantity *kij = &case_pair_constants_of(pair, "peng-robinson")->kij;
+    assert_close(kij->overridden->value, 0.1, 1e-15, "the library's");
+    elaborated_end(&m.it);
+}
+
+static void groups_and_their_pairs_share_their_numbers(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("");
+    const struct fluid_spec *spec = &m.fluid->spec;
+    assert_int_equal(spec->group_pair_count, 1);
+    assert_close(spec->group_pairs[0].A, 164.3e6, 1e-15, "164.3 MPa");
+    assert_close(spec->group_pairs[0].B, 270e6, 1e-15, "270 MPa");
+    const struct pure_spec *carbon_dioxide = spec->pure[0];
+    const struct pure_spec *argon = spec->pure[1];
+    assert_int_equal(carbon_dioxide->group_count, 1);
+    assert_close(argon->groups[0].number, 1.0, 1e-15, "as written");
+    assert_int_equal(spec->group_pairs[0].first, carbon_dioxide->groups[0].group);
+    assert_int_equal(spec->group_pairs[0].second, argon->groups[0].group);
+    assert_string_equal(m.fluid->components[1]->groups_origin.source->key, "notebook");
+    elaborated_end(&m.it);
+}
+
+static void a_group_pair_of_the_deck_replaces_the_librarys(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("group-pair Ar CO2 150 MPa, 250 MPa");
+    assert_int_equal(m.fluid->spec.group_pair_count, 1);
+    assert_close(m.fluid->spec.group_pairs[0].A, 150e6, 1e-15, "150 MPa");
+    elaborated_end(&m.it);
+}
+
+static void parameters_of_a_method_come_with_their_component(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("component argon { parameters peng-robinson-twu { twu 0.3, 0.8, 0.7 } }\n"
+                                    "component argon { parameters quantum-peng-robinson { twu 1, 2, 3\n"
+                                    "  covolume 3.0696 K, 12.682 K; critical-pressure 1.2964 MPa } }");
+    const struct pure_spec *argon = m.fluid->spec.pure[1];
+    assert_int_equal(argon->cubic_set_count, 3);
+    const struct cubic_set *twu = &argon->cubic_sets[0];
+    assert_string_equal(twu->method, "peng-robinson-twu");
+    assert_close(twu->critical_temperature.value, 150.72, 1e-15, "the library's");
+    assert_true(twu->has_twu);
+    assert_close(twu->L, 0.3, 1e-15, "the deck's");
+    assert_close(twu->N, 0.7, 1e-15, "the deck's");
+    assert_close(m.fluid->components[1]->cubic_sets[0].twu[0].overridden->value, 0.34, 1e-15, "the library's");
+    assert_false(argon->cubic_sets[1].has_twu);
+    assert_close(argon->cubic_sets[1].shift, -3.3e-6, 1e-15, "-3.3 cm3");
+    const struct cubic_set *quantum = &argon->cubic_sets[2];
+    assert_close(quantum->covolume_A, 3.0696, 1e-15, "as written");
+    assert_close(quantum->covolume_B, 12.682, 1e-15, "as written");
+    assert_false(quantum->critical_temperature.given);
+    assert_close(quantum->critical_pressure.value, 1.2964e6, 1e-15, "1.2964 MPa");
+    elaborated_end(&m.it);
+}
+
+static void parameters_count_as_used_once_their_method_is_named(void **state)
+{
+    (void)state;
+    struct elaborated plain =
+        elaborate_well("use \"small\"\nsheet saturation { fluid argon; sweep temperature 100 K }\n");
+    assert_int_equal(plain.tree->source_count, 0);
+    elaborated_end(&plain);
+    struct elaborated twu = elaborate_well("use \"small\"\nsheet saturation { fluid argon; sweep temperature 100 K\n"
+                                           "  methods peng-robinson, peng-robinson-twu }\n");
+    assert_int_equal(twu.tree->source_count, 1);
+    assert_string_equal(twu.tree->sources[0]->key, "notebook");
+    elaborated_end(&twu);
+}
+
+static void components_that_react_need_an_assessment(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("pair argon carbon-dioxide { reacts \"never\" }");
+    assert_string_equal(m.fluid->assessment, "argon and carbon-dioxide react: never");
+    elaborated_end(&m.it);
+}
+
 /* ---- Entries ---- */
 
 static void the_entry_a_sheet_names_stands_instead_of_those_of_its_gas(void **state)
 {
     (void)state;
-    struct elaborated it = elaborate_well(
-        "use \"small\"\nvessel v { water-capacity 50 L; test-pressure 250 barg }\n"
-        "entry \"UN 1965 mixture C\" { limit at 70 degC vapour-pressure <= 31 bara\n"
-        "  limit at 50 degC liquid-density >= 0.440 kg/L; listed-fill 30 barg filling-ratio 0.42 }\n"
-        "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure\n"
-        "  entry \"UN 1965 mixture C\" }\n");
+    struct elaborated it =
+        elaborate_well("use \"small\"\nvessel v { water-capacity 50 L; test-pressure 250 barg }\n"
+                       "entry \"UN 1965 mixture C\" { limit at 70 degC vapour-pressure <= 31 bara\n"
+                       "  limit at 50 degC liquid-density >= 0.440 kg/L; listed-fill 30 barg filling-ratio 0.42 }\n"
+                       "sheet permissible-charge { fluid carbon-dioxide; vessel v; rules liquefied-high-pressure\n"
+                       "  entry \"UN 1965 mixture C\" }\n");
     const struct case_sheet *sheet = &it.tree->sheets[0];
     assert_int_equal(sheet->entry_count, 1);
     assert_string_equal(sheet->entries[0]->name, "UN 1965 mixture C");
@@ -251,6 +384,13 @@ int main(void)
         cmocka_unit_test(a_hundred_components_are_enough),
         cmocka_unit_test(what_may_react_needs_an_assessment),
         cmocka_unit_test(a_pure_gas_carries_the_same_marks),
+        cmocka_unit_test(a_pair_of_the_library_is_found_whatever_its_order),
+        cmocka_unit_test(the_decks_pair_overrides_what_it_names),
+        cmocka_unit_test(groups_and_their_pairs_share_their_numbers),
+        cmocka_unit_test(a_group_pair_of_the_deck_replaces_the_librarys),
+        cmocka_unit_test(parameters_of_a_method_come_with_their_component),
+        cmocka_unit_test(parameters_count_as_used_once_their_method_is_named),
+        cmocka_unit_test(components_that_react_need_an_assessment),
         cmocka_unit_test(the_entry_a_sheet_names_stands_instead_of_those_of_its_gas),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

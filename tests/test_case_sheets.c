@@ -74,6 +74,17 @@ static void a_method_without_its_data_is_refused(void **state)
         CODE_E220);
 }
 
+static void a_method_that_is_the_default_lead_stands_once(void **state)
+{
+    (void)state;
+    struct elaborated it = elaborate_well("methods { beside reference; show peng-robinson }\n" SATURATION(""));
+    const struct case_methods *methods = &first_sheet(&it)->methods;
+    assert_int_equal(methods->count, 2);
+    assert_int_equal(methods->may_govern, 1);
+    assert_string_equal(methods->names[1], "peng-robinson");
+    elaborated_end(&it);
+}
+
 /* ---- Sweeps ---- */
 
 static void a_sweep_is_laid_out_in_si(void **state)
@@ -372,6 +383,7 @@ int main(void)
         cmocka_unit_test(the_methods_block_orders_lead_beside_and_show),
         cmocka_unit_test(a_sheets_methods_stand_instead_of_the_blocks),
         cmocka_unit_test(a_method_without_its_data_is_refused),
+        cmocka_unit_test(a_method_that_is_the_default_lead_stands_once),
         cmocka_unit_test(a_sweep_is_laid_out_in_si),
         cmocka_unit_test(a_density_sweep_is_per_mass_or_per_amount_as_written),
         cmocka_unit_test(swept_gauge_pressures_count_from_the_ambient_pressure),

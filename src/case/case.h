@@ -48,6 +48,21 @@ enum hazard {
     HAZARD_DISSOLVED = 128
 };
 
+/* What one cubic method knows of a component beyond its constants. */
+struct case_cubic_set {
+    const char *method;                                      /* the method's word */
+    struct quantity critical_temperature, critical_pressure; /* not given: the component's */
+    struct quantity twu[3];                                  /* L, M, N; all or none */
+    struct quantity shift;                                   /* m3/mol */
+    struct quantity covolume_A, covolume_B;                  /* K; both or none */
+};
+
+/* How often a molecule has a group. */
+struct case_group {
+    const char *name;
+    double number;
+};
+
 struct case_component {
     const char *name;
     const char *title;   /* NULL: none */
@@ -60,7 +75,33 @@ struct case_component {
     const char *refuse; /* the reason why no charge is computed; NULL: none */
     struct location refuse_at;
     const struct case_source *equation_source; /* NULL where it has no reference equation */
+    size_t cubic_set_count;
+    const struct case_cubic_set *cubic_sets;
+    size_t group_count;
+    const struct case_group *groups;
+    struct origin groups_origin;
     struct pure_spec spec;
+};
+
+/* What one method has of a pair. */
+struct case_pair_constants {
+    const char *method; /* the method's word */
+    struct quantity kij, lij;
+};
+
+/* Two components together. */
+struct case_pair {
+    const char *first, *second; /* as the first of its blocks has them */
+    size_t count;
+    const struct case_pair_constants *constants;
+    const char *reacts; /* what the two do; NULL: nothing is known */
+    struct origin reacts_origin;
+};
+
+/* Two groups together: the interaction of the method of group contributions, Pa. */
+struct case_group_pair {
+    const char *first, *second;
+    struct quantity A, B;
 };
 
 enum fraction_basis { BASIS_MOLE, BASIS_MASS, BASIS_VOLUME };
@@ -77,18 +118,26 @@ struct case_fluid {
     struct location at; /* of the name where it is defined */
     size_t count;
     const struct case_component *const *components; /* of a mixture in the order written; none stands twice */
-    const double *fractions; /* mole fractions, [count]; zero is allowed */
-    double molar_mass;       /* kg/mol, of the whole */
-    const struct case_share *shares; /* [count]; NULL: a component named as a fluid */
-    enum fraction_basis basis;       /* of the shares */
+    const double *fractions;                        /* mole fractions, [count]; zero is allowed */
+    double molar_mass;                              /* kg/mol, of the whole */
+    const struct case_share *shares;                /* [count]; NULL: a component named as a fluid */
+    enum fraction_basis basis;                      /* of the shares */
     /* The shares are parts of the volumes the components have by themselves at this state (K, Pa absolute). Fractions
      * and molar mass then still take volume for amount: whoever has a method converts them. */
     bool has_state;
     double temperature, pressure;
     const char *assessment; /* what an assessment has to cover before a charge is permitted; NULL: nothing */
     const char *refuse;     /* why no charge is computed however much is known; NULL: none */
+    size_t pair_count;      /* pairs of the components of which something is known */
+    const struct case_pair *const *pairs;
+    size_t group_pair_count;
+    const struct case_group_pair *const *group_pairs;
     struct fluid_spec spec;
 };
+
+/* The pair of these components of the fluid, and what it has for a method; NULL: none. */
+const struct case_pair *case_pair_of(const struct case_fluid *fluid, const char *one, const char *other);
+const struct case_pair_constants *case_pair_constants_of(const struct case_pair *pair, const char *method);
 
 struct case_rating {
     const char *name; /* "test-pressure", or the fitting's text */
@@ -105,17 +154,24 @@ struct case_vessel {
 };
 
 /* Arithmetic over numbers and symbols that only a filled vessel gives a value to. */
-enum formula_kind { FORMULA_NUMBER, FORMULA_SYMBOL, FORMULA_NEGATE, FORMULA_ADD, FORMULA_SUBTRACT, FORMULA_MULTIPLY,
-                    FORMULA_DIVIDE };
+enum formula_kind {
+    FORMULA_NUMBER,
+    FORMULA_SYMBOL,
+    FORMULA_NEGATE,
+    FORMULA_ADD,
+    FORMULA_SUBTRACT,
+    FORMULA_MULTIPLY,
+    FORMULA_DIVIDE
+};
 
 enum case_symbol {
-    SYMBOL_PRESSURE,         /* of the contents; Pa absolute */
-    SYMBOL_VAPOUR_PRESSURE,  /* Pa absolute */
-    SYMBOL_DENSITY,          /* mass over water capacity, kg/m3 */
-    SYMBOL_LIQUID_DENSITY,   /* kg/m3 */
-    SYMBOL_LIQUID_VOLUME,    /* fraction of the water capacity */
+    SYMBOL_PRESSURE,        /* of the contents; Pa absolute */
+    SYMBOL_VAPOUR_PRESSURE, /* Pa absolute */
+    SYMBOL_DENSITY,         /* mass over water capacity, kg/m3 */
+    SYMBOL_LIQUID_DENSITY,  /* kg/m3 */
+    SYMBOL_LIQUID_VOLUME,   /* fraction of the water capacity */
     SYMBOL_FILLING_RATIO,
-    SYMBOL_TEST_PRESSURE,    /* gauge, of the vessel */
+    SYMBOL_TEST_PRESSURE, /* gauge, of the vessel */
     SYMBOL_WORKING_PRESSURE,
     SYMBOL_SERVICE_PRESSURE,
     SYMBOLS
@@ -139,17 +195,17 @@ enum predicate_kind { PREDICATE_COMPARE, PREDICATE_ONE_PHASE, PREDICATE_NO_LIQUI
 
 struct predicate {
     enum predicate_kind kind;
-    double from, to;         /* K; equal for `at` */
-    bool has_temperature;    /* false for a requirement that holds at every swept temperature, and for a quantity that
-                                does not depend on it (filling-ratio, density) */
+    double from, to;      /* K; equal for `at` */
+    bool has_temperature; /* false for a requirement that holds at every swept temperature, and for a quantity that
+                             does not depend on it (filling-ratio, density) */
     enum case_symbol quantity;
     enum relation relation;
     const struct formula *bound;
-    bool bound_is_gauge;     /* the bound is Pa above `gauge_zero`; else absolute or no pressure */
-    double gauge_zero;       /* Pa, 101 325 unless stated */
-    bool states_gauge_zero;  /* the predicate or its rule states it */
+    bool bound_is_gauge;    /* the bound is Pa above `gauge_zero`; else absolute or no pressure */
+    double gauge_zero;      /* Pa, 101 325 unless stated */
+    bool states_gauge_zero; /* the predicate or its rule states it */
     bool unless_listed;
-    const char *written;     /* "at 65 degC pressure <= test-pressure" */
+    const char *written; /* "at 65 degC pressure <= test-pressure" */
     struct location at;
     struct shown_unit temperature_unit; /* as written */
 };
@@ -168,18 +224,18 @@ struct case_rule {
 };
 
 struct listed_row {
-    double test_pressure;         /* gauge, Pa */
+    double test_pressure; /* gauge, Pa */
     struct optional filling_ratio;
     struct optional working_pressure; /* gauge, Pa */
     struct origin origin;
 };
 
 struct case_entry {
-    const char *name;  /* "UN 1978" */
+    const char *name;                         /* "UN 1978" */
     const char *title, *class_code, *letters; /* NULL: none */
     const struct case_component *component;   /* NULL: a group or a mixture */
-    struct optional lc50;    /* fraction, as 760 ppm = 760e-6 */
-    bool is_never_exceeded;  /* letter o */
+    struct optional lc50;                     /* fraction, as 760 ppm = 760e-6 */
+    bool is_never_exceeded;                   /* letter o */
     size_t row_count;
     const struct listed_row *rows; /* by rising test pressure */
     size_t limit_count;
@@ -194,7 +250,7 @@ struct case_charge {
     const struct case_fluid *fluid;
     const struct case_vessel *vessel;
     enum fill_kind kind;
-    struct quantity amount;      /* absolute Pa, kg, 1, kg/m3, mol or m3 by kind */
+    struct quantity amount;       /* absolute Pa, kg, 1, kg/m3, mol or m3 by kind */
     double temperature, pressure; /* K, Pa absolute: the state of FILL_PRESSURE (temperature) and FILL_VOLUME (both) */
     struct origin origin;
 };
@@ -202,11 +258,11 @@ struct case_charge {
 enum governing { GOVERN_LEAD, GOVERN_STRICTEST };
 
 struct case_methods {
-    size_t count;              /* lead first, then beside, then show */
+    size_t count; /* lead first, then beside, then show */
     const char *const *names;
-    size_t may_govern;         /* the first so many are lead and beside */
+    size_t may_govern; /* the first so many are lead and beside */
     enum governing govern;
-    const char *reason;        /* why this lead, in words */
+    const char *reason; /* why this lead, in words */
     struct location at;
 };
 
@@ -214,8 +270,8 @@ struct case_methods {
 struct case_sweep {
     bool given;
     size_t count;
-    const double *values; /* SI: K, Pa absolute, or mol/m3 */
-    bool is_mass_density; /* a density sweep written per mass: values are kg/m3 */
+    const double *values;    /* SI: K, Pa absolute, or mol/m3 */
+    bool is_mass_density;    /* a density sweep written per mass: values are kg/m3 */
     struct shown_unit shown; /* as first written; a gauge unit's offset is the ambient pressure */
     struct origin origin;
 };
@@ -257,8 +313,8 @@ struct case_sheet {
     const char *const *notes;
 };
 
-/* One line of the listing's inputs: a value as written, in SI, with its place. The place may be in any of the user's own
- * files, of which the root is one. */
+/* One line of the listing's inputs: a value as written, in SI, with its place. The place may be in any of the user's
+ * own files, of which the root is one. */
 struct case_input {
     const char *group; /* "vessel fifty" */
     const char *name;  /* "water-capacity" */

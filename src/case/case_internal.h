@@ -22,6 +22,8 @@ enum name_kind {
     NAMES_SOURCE,
     NAMES_COMPONENT,
     NAMES_MIXTURE,
+    NAMES_PAIR,       /* "nitrogen propane", in the order of the alphabet */
+    NAMES_GROUP_PAIR, /* likewise */
     NAMES_EQUATION,
     NAMES_ENTRY,
     NAMES_VESSEL,
@@ -32,9 +34,10 @@ enum name_kind {
 
 enum build_state { NOT_BUILT, BUILT, FAILED };
 
-/* One defined name. All blocks are kept for a component (they add up), else only the one that counts. */
+/* One defined name. All blocks are kept for a component and a pair (they add up), else only the one that counts. */
 struct named {
     const char *name;
+    size_t number;      /* in the order of first definition */
     struct location at; /* of the name in the block that counts */
     const struct statement **items;
     size_t count, capacity;
@@ -84,6 +87,16 @@ struct statement_list {
     size_t count, capacity;
 };
 
+struct cubic_set_list {
+    struct case_cubic_set *items;
+    size_t count, capacity;
+};
+
+struct group_list {
+    struct case_group *items;
+    size_t count, capacity;
+};
+
 struct entry_list {
     const struct case_entry **items;
     size_t count, capacity;
@@ -110,6 +123,8 @@ struct elaboration {
     enum vocabulary_block block;   /* what is being read */
     size_t silent;                 /* failures that need no message of their own */
     bool is_checking;              /* reading blocks no sheet uses: nothing counts as used */
+    bool is_deferring;             /* reading what counts as used only once a method asks for it */
+    struct name_table groups;      /* of molecules, numbered for the methods */
 };
 
 /* A number that grows with every failure, told or silent: a block was read well when it did not change. */
@@ -269,8 +284,11 @@ bool take_quantity(struct reading *reading, const struct quantity_form *form, co
 /* `ref KEY` where it stands next: the source, NULL when there is none; false after a message. */
 bool take_reference(struct reading *reading, const struct case_source **source);
 
-/* The source a name stands for; NULL after a message. */
+/* The source a name stands for, which counts as used unless that is deferred; NULL after a message. */
 const struct case_source *source_of_name(struct elaboration *e, const struct expression *key);
+
+/* The source counts as used; NULL: none. */
+void use_source(struct elaboration *e, const struct case_source *source);
 
 /* The unit of the first number in the expression, also behind a let; the fallback where there is none. */
 struct shown_unit unit_written(struct elaboration *e, const struct expression *expression, struct shown_unit fallback);
@@ -304,6 +322,33 @@ const struct case_fluid *fluid_of_name(struct elaboration *e, const struct expre
 
 /* Completes a fluid that has its components and mole fractions. */
 void finish_fluid(struct elaboration *e, struct case_fluid *fluid);
+
+/* `parameters METHOD { ... }` of a component, added to the sets; `groups NAME number, ...` */
+void read_parameters(struct elaboration *e, const struct statement *statement, struct cubic_set_list *sets);
+void read_groups(struct elaboration *e, const struct statement *statement, struct case_component *component);
+
+/* The same as the methods take them. */
+const struct cubic_set *plain_sets(struct elaboration *e, const struct case_cubic_set *sets, size_t count);
+const struct group_share *plain_groups(struct elaboration *e, const struct case_component *component);
+
+/* The next item's name as a cubic method; NULL after a message. */
+const struct vocabulary_row *take_cubic(struct reading *reading);
+bool method_is_cubic(enum vocabulary_word method);
+
+/* The name a pair is kept under, whatever the order of the two. */
+const char *pair_name(struct elaboration *e, const char *one, const char *other);
+const struct case_pair *build_component_pair(struct elaboration *e, struct named *named);
+const struct case_group_pair *build_group_pair(struct elaboration *e, struct named *named);
+
+/* All pairs of the fluid's components and of their groups, into the fluid and its spec. */
+void find_pairs(struct elaboration *e, struct case_fluid *fluid);
+
+/* Marks the sources and files of what a method takes of a fluid beyond the constants: of everything, of one component's
+ * parameters, of its groups, of one value. */
+void use_method_data(struct elaboration *e, const struct case_fluid *fluid, const char *method);
+void use_parameters(struct elaboration *e, const struct case_component *component, const char *method);
+void use_groups(struct elaboration *e, const struct case_component *component);
+void use_quantity(struct elaboration *e, const struct quantity *quantity);
 
 /* The equation of a component into `spec`; false after a message. */
 bool build_equation(struct elaboration *e, struct named *named, struct reference_spec *spec,

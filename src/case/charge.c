@@ -29,8 +29,7 @@ bool take_state(struct reading *reading, const char *name, double *temperature, 
     take_item(reading, ITEM_AT);
     const bool is_temperature =
         read_value(e, &FORM_TEMPERATURE, "the temperature of the volume", at->value->left, temperature);
-    const bool is_pressure =
-        read_value(e, &FORM_PRESSURE, "the pressure of the volume", at->value->right, pressure);
+    const bool is_pressure = read_value(e, &FORM_PRESSURE, "the pressure of the volume", at->value->right, pressure);
     if (!is_temperature || !is_pressure) {
         return false;
     }

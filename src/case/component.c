@@ -140,6 +140,7 @@ static void read_refuse(struct elaboration *e, const struct statement *statement
 struct component_target {
     struct case_component component; /* first, so that the rows' offsets serve both */
     struct statement_list critical_densities;
+    struct cubic_set_list sets;
 };
 
 /* A critical density may be per mass, which takes the molar mass, perhaps of a later block: kept for the end. */
@@ -148,6 +149,18 @@ static void keep_critical_density(struct elaboration *e, const struct statement 
     struct component_target *into = target;
     struct statement_list *list = &into->critical_densities;
     *ARENA_APPEND(e->arena, list) = statement;
+}
+
+static void read_parameters_row(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct component_target *into = target;
+    read_parameters(e, statement, &into->sets);
+}
+
+static void read_groups_row(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct component_target *into = target;
+    read_groups(e, statement, &into->component);
 }
 
 #define QUANTITY(word, form, member) READ_QUANTITY(WORD_COMPONENT_##word, form, struct case_component, member)
@@ -168,6 +181,8 @@ static const struct block_row ROWS[] = {
     QUANTITY(TRIPLE_PRESSURE, NULL, triple_pressure),
     QUANTITY(BOILING_TEMPERATURE, NULL, boiling_temperature),
     QUANTITY(DIPOLE, NULL, dipole),
+    READ_EACH(WORD_COMPONENT_PARAMETERS, read_parameters_row),
+    READ_ONCE(WORD_COMPONENT_GROUPS, read_groups_row),
 };
 
 static const struct block_form COMPONENT = BLOCK_FORM(BLOCK_COMPONENT, ROWS);
@@ -178,7 +193,8 @@ static struct optional optional_of(const struct quantity *quantity)
 }
 
 /* The plain parameters the methods see. */
-static struct pure_spec spec_of(const struct case_component *component, const struct reference_spec *reference)
+static struct pure_spec spec_of(struct elaboration *e, const struct case_component *component,
+                                const struct reference_spec *reference)
 {
     return (struct pure_spec){
         .name = component->name,
@@ -189,6 +205,10 @@ static struct pure_spec spec_of(const struct case_component *component, const st
         .acentric = optional_of(&component->acentric),
         .triple_temperature = optional_of(&component->triple_temperature),
         .reference = reference,
+        .cubic_set_count = component->cubic_set_count,
+        .cubic_sets = plain_sets(e, component->cubic_sets, component->cubic_set_count),
+        .group_count = component->group_count,
+        .groups = plain_groups(e, component),
     };
 }
 
@@ -289,7 +309,9 @@ const struct case_component *build_component(struct elaboration *e, struct named
     settle_critical_density(e, target, group);
     e->group = outer;
     check_order(e, &target->component);
-    target->component.spec = spec_of(&target->component, equation_of(e, &target->component));
+    target->component.cubic_sets = target->sets.items;
+    target->component.cubic_set_count = target->sets.count;
+    target->component.spec = spec_of(e, &target->component, equation_of(e, &target->component));
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? &target->component : NULL;
     return named->built;

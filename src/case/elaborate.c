@@ -23,12 +23,12 @@ static void report_defined_twice(struct elaboration *e, const struct named *name
     said->note_at = named->at;
 }
 
-/* Components add up. Of everything else one definition counts: the deck's own before the library's. */
+/* Components and pairs add up. Of everything else one definition counts: the deck's own before the library's. */
 static void define(struct elaboration *e, enum name_kind kind, const char *name, struct location at,
                    const struct statement *statement)
 {
     struct named *named = names_add(e->arena, &e->tables[kind], name);
-    if (named->count == 0 || kind == NAMES_COMPONENT) {
+    if (named->count == 0 || kind == NAMES_COMPONENT || kind == NAMES_PAIR) {
         named->at = named->count == 0 ? at : named->at;
         *ARENA_APPEND(e->arena, named) = statement;
         return;
@@ -65,6 +65,27 @@ static void define_mixture(struct elaboration *e, const struct statement *statem
         return;
     }
     define(e, NAMES_MIXTURE, name->name, name->at, statement);
+}
+
+/* `pair nitrogen propane { ... }`, `group-pair CH3 CH2 ...`: two names, of groups with values after them. */
+static void define_pair(struct elaboration *e, enum name_kind kind, const char *what, const struct statement *statement)
+{
+    struct reading reading = read_items(e, statement);
+    const struct expression *first = take_name(&reading);
+    const struct expression *second = first == NULL ? NULL : take_name(&reading);
+    if (second == NULL) {
+        report_missing(&reading, what);
+        return;
+    }
+    if (strcmp(first->name, second->name) == 0) {
+        diagnose(e->out, CODE_E229, second->at, "a pair is of two different %s, and '%s' is named twice",
+                 kind == NAMES_PAIR ? "components" : "groups", shortened(e, first->name));
+        return;
+    }
+    if (kind == NAMES_GROUP_PAIR || finish_items(&reading)) {
+        const struct location at = location_span(first->at, second->at);
+        define(e, kind, pair_name(e, first->name, second->name), at, statement);
+    }
 }
 
 static void define_entry(struct elaboration *e, const struct statement *statement)
@@ -142,6 +163,10 @@ static void index_statement(struct elaboration *e, const struct statement *state
         define_entry(e, statement);
     } else if (row->id == WORD_FILE_MIXTURE) {
         define_mixture(e, statement);
+    } else if (row->id == WORD_FILE_PAIR) {
+        define_pair(e, NAMES_PAIR, "the names of two components", statement);
+    } else if (row->id == WORD_FILE_GROUP_PAIR) {
+        define_pair(e, NAMES_GROUP_PAIR, "the names of two groups", statement);
     } else if (row->id == WORD_FILE_SOURCE) {
         define_source(e, statement);
     } else if (row->id == WORD_FILE_LET) {
@@ -248,12 +273,20 @@ const struct case_source *source_of_name(struct elaboration *e, const struct exp
     if (named->state == NOT_BUILT) {
         build_source(e, named);
     }
-    if (named->state == BUILT && !e->is_checking && !named->is_in_use) {
-        named->is_in_use = true;
-        *ARENA_APPEND(e->arena, &e->sources) = named->built;
-        mark_file_used(e, named->at);
+    if (!e->is_deferring) {
+        use_source(e, named->built);
     }
     return named->built;
+}
+
+void use_source(struct elaboration *e, const struct case_source *source)
+{
+    struct named *named = source == NULL ? NULL : names_find(&e->tables[NAMES_SOURCE], source->key);
+    if (named != NULL && !e->is_checking && !named->is_in_use) {
+        named->is_in_use = true;
+        *ARENA_APPEND(e->arena, &e->sources) = source;
+        mark_file_used(e, named->at);
+    }
 }
 
 /* ---- Lets ---- */
@@ -404,6 +437,12 @@ static void check_named(struct elaboration *e, enum name_kind kind, struct named
         break;
     case NAMES_MIXTURE:
         build_mixture(e, named);
+        break;
+    case NAMES_PAIR:
+        build_component_pair(e, named);
+        break;
+    case NAMES_GROUP_PAIR:
+        build_group_pair(e, named);
         break;
     case NAMES_EQUATION:
         check_equation(e, named);

@@ -219,10 +219,10 @@ static bool check_fits(struct elaboration *e, const struct item *name, const str
         return true;
     }
     const bool is_part = contains(fluid, entry->component);
-    struct diagnostic *said = diagnose(
-        e->out, is_part ? CODE_W281 : CODE_E228, name->at, "the entry \"%s\" is for %s%s, and '%s' %s",
-        shortened(e, entry->name), entry->component->name, is_part ? " by itself" : "", shortened(e, fluid->name),
-        is_part ? "is a mixture" : "contains none");
+    struct diagnostic *said =
+        diagnose(e->out, is_part ? CODE_W281 : CODE_E228, name->at, "the entry \"%s\" is for %s%s, and '%s' %s",
+                 shortened(e, entry->name), entry->component->name, is_part ? " by itself" : "",
+                 shortened(e, fluid->name), is_part ? "is a mixture" : "contains none");
     said->note = "the entry";
     said->note_at = entry->origin.at;
     return is_part;

@@ -23,6 +23,25 @@ static const struct case_component *find_hazard(const struct case_fluid *fluid, 
     return NULL;
 }
 
+/* Two components in more than traces that are known to react; NULL: none. */
+static const struct case_pair *find_reaction(struct elaboration *e, const struct case_fluid *fluid)
+{
+    for (size_t i = 0; i < fluid->count; i++) {
+        for (size_t j = i + 1; j < fluid->count; j++) {
+            const struct case_pair *pair =
+                is_more_than_trace(fluid, i) && is_more_than_trace(fluid, j)
+                    ? case_pair_of(fluid, fluid->components[i]->name, fluid->components[j]->name)
+                    : NULL;
+            if (pair != NULL && pair->reacts != NULL) {
+                use_source(e, pair->reacts_origin.source);
+                mark_file_used(e, pair->reacts_origin.at);
+                return pair;
+            }
+        }
+    }
+    return NULL;
+}
+
 static const char *assessment_of(struct elaboration *e, const struct case_fluid *fluid)
 {
     const struct case_component *fuel = find_hazard(fluid, HAZARD_FLAMMABLE | HAZARD_PYROPHORIC);
@@ -30,13 +49,16 @@ static const char *assessment_of(struct elaboration *e, const struct case_fluid 
     const struct case_component *unstable = find_hazard(fluid, HAZARD_DECOMPOSES);
     const struct case_component *monomer = find_hazard(fluid, HAZARD_POLYMERISES);
     if (fuel != NULL && oxidant != NULL) {
-        return fuel == oxidant ? arena_format(e->arena, "%s is fuel and oxidant in one", fuel->name)
-                               : arena_format(e->arena, "a fuel beside an oxidant, %s and %s", fuel->name,
-                                              oxidant->name);
+        return fuel == oxidant
+                   ? arena_format(e->arena, "%s is fuel and oxidant in one", fuel->name)
+                   : arena_format(e->arena, "a fuel beside an oxidant, %s and %s", fuel->name, oxidant->name);
+    }
+    const struct case_pair *reaction = find_reaction(e, fluid);
+    if (reaction != NULL) {
+        return arena_format(e->arena, "%s and %s react: %s", reaction->first, reaction->second, reaction->reacts);
     }
     if (unstable != NULL) {
-        return arena_format(e->arena, "%s may decompose, and the pressure after that was not computed",
-                            unstable->name);
+        return arena_format(e->arena, "%s may decompose, and the pressure after that was not computed", unstable->name);
     }
     return monomer == NULL ? NULL : arena_format(e->arena, "%s may polymerise", monomer->name);
 }
@@ -78,6 +100,7 @@ void finish_fluid(struct elaboration *e, struct case_fluid *fluid)
         mark_in_use(e, fluid->components[i]);
     }
     fluid->spec = (struct fluid_spec){.count = fluid->count, .pure = pure};
+    find_pairs(e, fluid);
     fluid->assessment = assessment_of(e, fluid);
     fluid->refuse = refusal_of(fluid);
 }
@@ -112,8 +135,8 @@ static const struct case_fluid *pure_of_name(struct elaboration *e, const struct
 /* The known names of both kinds, for the nearest one. */
 static void report_unknown(struct elaboration *e, const struct expression *name)
 {
-    struct diagnostic *said = diagnose(e->out, CODE_E205, name->at, "there is no component or mixture named '%s'",
-                                       shortened(e, name->name));
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E205, name->at, "there is no component or mixture named '%s'", shortened(e, name->name));
     size_t component_count;
     size_t mixture_count;
     const char **components = known_names(e, NAMES_COMPONENT, &component_count);

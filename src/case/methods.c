@@ -129,19 +129,62 @@ void read_methods_block(struct elaboration *e)
     e->methods = block;
 }
 
-/* What a method needs of a component and does not find; NULL: nothing. */
-static const char *lack_of(enum vocabulary_word method, const struct case_component *component)
+/* Cubic methods whose alpha comes with a substance's own parameters, or follows from the acentric factor. */
+static bool takes_twu(enum vocabulary_word method)
 {
-    if (method == WORD_METHOD_REFERENCE) {
+    return method == WORD_METHOD_PENG_ROBINSON_TWU || method == WORD_METHOD_TRANSLATED_PENG_ROBINSON ||
+           method == WORD_METHOD_TRANSLATED_REDLICH_KWONG || method == WORD_METHOD_QUANTUM_PENG_ROBINSON;
+}
+
+static bool takes_acentric(enum vocabulary_word method)
+{
+    return method == WORD_METHOD_PENG_ROBINSON || method == WORD_METHOD_PENG_ROBINSON_1978 ||
+           method == WORD_METHOD_SOAVE_REDLICH_KWONG;
+}
+
+static const struct case_cubic_set *set_of(const struct vocabulary_row *method, const struct case_component *component)
+{
+    for (size_t i = 0; i < component->cubic_set_count; i++) {
+        if (strcmp(component->cubic_sets[i].method, method->word) == 0) {
+            return &component->cubic_sets[i];
+        }
+    }
+    return NULL;
+}
+
+/* What a method needs of a component and does not find; NULL: nothing. */
+static const char *lack_of(const struct vocabulary_row *method, const struct case_component *component)
+{
+    if (method->id == WORD_METHOD_REFERENCE) {
         return component->spec.reference == NULL ? "a published reference equation" : NULL;
     }
-    if (method != WORD_METHOD_PENG_ROBINSON && method != WORD_METHOD_SOAVE_REDLICH_KWONG) {
+    if (!method_is_cubic(method->id)) {
         return NULL;
     }
-    return !component->critical_temperature.given ? "a critical-temperature"
-           : !component->critical_pressure.given  ? "a critical-pressure"
-           : !component->acentric.given           ? "an acentric factor"
-                                                  : NULL;
+    const struct case_cubic_set *set = set_of(method, component);
+    if (takes_twu(method->id) && (set == NULL || !set->twu[0].given)) {
+        return "a fitted alpha";
+    }
+    if (!component->critical_temperature.given && (set == NULL || !set->critical_temperature.given)) {
+        return "a critical-temperature";
+    }
+    if (!component->critical_pressure.given && (set == NULL || !set->critical_pressure.given)) {
+        return "a critical-pressure";
+    }
+    return takes_acentric(method->id) && !component->acentric.given ? "an acentric factor" : NULL;
+}
+
+/* A method for pure gases only cannot answer for a mixture. */
+static bool check_mixture(struct elaboration *e, const struct choice *choice, const struct case_fluid *fluid)
+{
+    if (fluid->count == 1 || choice->method->id != WORD_METHOD_REFERENCE) {
+        return true;
+    }
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E230, choice->at, "%s answers for pure gases only, and '%s' is a mixture",
+                 choice->method->word, shortened(e, fluid->name));
+    diagnostic_hint(e->out, said, "name another method for it, as in 'methods peng-robinson-1978' in the sheet");
+    return false;
 }
 
 /* True when every component has what the method needs; else says what is missing, at `at`. */
@@ -149,7 +192,7 @@ static bool check_data(struct elaboration *e, const struct choice *choice, const
 {
     for (size_t i = 0; i < fluid->count; i++) {
         const struct case_component *component = fluid->components[i];
-        const char *lack = lack_of(choice->method->id, component);
+        const char *lack = lack_of(choice->method, component);
         if (lack == NULL) {
             continue;
         }
@@ -158,34 +201,69 @@ static bool check_data(struct elaboration *e, const struct choice *choice, const
         diagnostic_hint(e->out, said,
                         choice->method->id == WORD_METHOD_REFERENCE
                             ? "name another method for this gas, as in 'methods peng-robinson' in the sheet"
-                            : "give it in a component block, or name another method");
+                        : takes_twu(choice->method->id)
+                            ? "give it in a component block, as 'parameters %s { twu L, M, N }', or name another method"
+                            : "give it in a component block, or name another method",
+                        choice->method->word);
         return false;
     }
     return true;
 }
 
+static bool is_among(const struct choice_list *list, const struct vocabulary_row *method)
+{
+    for (size_t i = 0; i < list->count; i++) {
+        if (list->items[i].method == method) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* Adds what is not there yet: the default lead may stand beside itself. */
 static bool add_choices(struct elaboration *e, const struct choice_list *from, const struct case_fluid *fluid,
                         struct choice_list *to)
 {
     bool is_good = true;
     for (size_t i = 0; i < from->count; i++) {
-        is_good = check_data(e, &from->items[i], fluid) && is_good;
-        *ARENA_APPEND(e->arena, to) = from->items[i];
+        if (!is_among(to, from->items[i].method)) {
+            is_good = check_data(e, &from->items[i], fluid) && is_good;
+            *ARENA_APPEND(e->arena, to) = from->items[i];
+        }
     }
     return is_good;
 }
 
-/* The reference equation where there is one for a pure gas, else Peng and Robinson's. */
+/* The same of methods that a sheet or the deck wants to hear of this very fluid. */
+static bool add_firm_choices(struct elaboration *e, const struct choice_list *from, const struct case_fluid *fluid,
+                             struct choice_list *to)
+{
+    bool is_good = true;
+    for (size_t i = 0; i < from->count; i++) {
+        is_good = check_mixture(e, &from->items[i], fluid) && is_good;
+    }
+    return add_choices(e, from, fluid, to) && is_good;
+}
+
+/* The reference equation where there is one for a pure gas, else Peng and Robinson's; of mixtures the form whose pair
+ * parameters are predicted. */
 static struct choice default_lead(const struct case_fluid *fluid, struct location at)
 {
-    const bool has_equation = fluid->count == 1 && fluid->components[0]->spec.reference != NULL;
-    const enum vocabulary_word word = has_equation ? WORD_METHOD_REFERENCE : WORD_METHOD_PENG_ROBINSON;
+    const bool has_equation = fluid->components[0]->spec.reference != NULL;
+    const enum vocabulary_word word = fluid->count > 1 ? WORD_METHOD_PENG_ROBINSON_1978
+                                      : has_equation   ? WORD_METHOD_REFERENCE
+                                                       : WORD_METHOD_PENG_ROBINSON;
     return (struct choice){.method = &vocabulary_rows()[word], .at = at};
 }
 
 static const char *default_reason(struct elaboration *e, const struct case_fluid *fluid, const struct choice *lead)
 {
     const char *asked = e->methods == NULL ? "no methods block" : "the methods block names no lead";
+    if (fluid->count > 1) {
+        return arena_format(e->arena,
+                            "%s: %s leads for mixtures, its pair parameters predicted by groups where they can be",
+                            asked, lead->method->word);
+    }
     return lead->method->id == WORD_METHOD_REFERENCE
                ? arena_format(e->arena, "%s: the published reference equation of %s leads", asked, fluid->name)
                : arena_format(e->arena, "%s, and no reference equation of %s is known: peng-robinson leads", asked,
@@ -211,7 +289,7 @@ static bool choose_own(struct elaboration *e, const struct statement *own, const
     struct choice_list written = {.items = NULL};
     struct choice_list choices = {.items = NULL};
     struct reading reading = read_items(e, own);
-    if (!take_methods(&reading, &written) || !add_choices(e, &written, fluid, &choices)) {
+    if (!take_methods(&reading, &written) || !add_firm_choices(e, &written, fluid, &choices)) {
         return false;
     }
     out->reason = "named in the sheet";
@@ -232,7 +310,7 @@ bool choose_methods(struct elaboration *e, const struct statement *own, const st
     if (block != NULL && block->lead.count != 0) {
         out->reason = "named in the methods block";
         out->at = block->at;
-        is_good = add_choices(e, &block->lead, fluid, &choices);
+        is_good = add_firm_choices(e, &block->lead, fluid, &choices);
     } else {
         const struct choice lead = default_lead(fluid, at);
         out->reason = default_reason(e, fluid, &lead);

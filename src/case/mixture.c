@@ -33,9 +33,9 @@ struct mixture_target {
 
 static bool report_no_basis(struct elaboration *e, const struct named *named)
 {
-    struct diagnostic *said = diagnose(e->out, CODE_E226, named->at,
-                                       "mixture '%s' does not say what its fractions are parts of",
-                                       shortened(e, named->name));
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E226, named->at, "mixture '%s' does not say what its fractions are parts of",
+                 shortened(e, named->name));
     diagnostic_hint(e->out, said, "write 'mixture %s by mole', 'by mass' or 'by volume'", shortened(e, named->name));
     return false;
 }
@@ -93,9 +93,9 @@ static const struct case_component *component_of_line(struct elaboration *e, con
 {
     const struct named *mixture = names_find(&e->tables[NAMES_MIXTURE], line->word);
     if (mixture != NULL && names_find(&e->tables[NAMES_COMPONENT], line->word) == NULL) {
-        struct diagnostic *said = diagnose(e->out, CODE_E205, line->word_at,
-                                           "'%s' is a mixture, and mixtures are made of components",
-                                           shortened(e, line->word));
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E205, line->word_at, "'%s' is a mixture, and mixtures are made of components",
+                     shortened(e, line->word));
         diagnostic_hint(e->out, said, "give its components their own lines");
         said->note = "defined here";
         said->note_at = mixture->at;
@@ -180,14 +180,15 @@ static double sum_of(const struct share_list *shares)
 static void report_sum(struct elaboration *e, const struct mixture_target *target, double sum)
 {
     const char *percent = si_number(e->arena, 100.0 * sum);
-    struct diagnostic *said =
-        target->has_rest
-            ? diagnose(e->out, CODE_E227, target->named->at, "the fractions of '%s' add up to %s %%, which leaves no rest",
-                       shortened(e, target->named->name), percent)
-            : diagnose(e->out, CODE_E227, target->named->at, "the fractions of '%s' add up to %s %%, not to 100 %%",
-                       shortened(e, target->named->name), percent);
-    diagnostic_hint(e->out, said, target->has_rest ? "correct one of them"
-                                                   : "correct one of them, or let one component be the 'rest'");
+    struct diagnostic *said = target->has_rest ? diagnose(e->out, CODE_E227, target->named->at,
+                                                          "the fractions of '%s' add up to %s %%, which leaves no rest",
+                                                          shortened(e, target->named->name), percent)
+                                               : diagnose(e->out, CODE_E227, target->named->at,
+                                                          "the fractions of '%s' add up to %s %%, not to 100 %%",
+                                                          shortened(e, target->named->name), percent);
+    diagnostic_hint(e->out, said,
+                    target->has_rest ? "correct one of them"
+                                     : "correct one of them, or let one component be the 'rest'");
 }
 
 /* The rest, or the rounding of a sum that is 1 within it. False after a message. */

@@ -53,6 +53,7 @@ struct named *names_add(struct arena *arena, struct name_table *table, const cha
     }
     named = arena_alloc(arena, 1, sizeof *named);
     named->name = name;
+    named->number = table->count;
     *ARENA_APPEND(arena, table) = named;
     put_in_bucket(table, named);
     return named;

@@ -26,7 +26,7 @@ struct note_list {
 struct sheet_target {
     struct case_sheet sheet;
     const struct expression *fluid, *vessel, *charge; /* as named */
-    const struct item *entry; /* its number, as named */
+    const struct item *entry;                         /* its number, as named */
     const struct statement *methods, *sweep;
     struct fill fill;
     struct rule_use_list rules;
@@ -446,15 +446,18 @@ static void check_temperatures(struct elaboration *e, const struct sheet_target 
     }
 }
 
-/* Ideal gas underestimates what a dense gas weighs and knows no liquid: no charge is permitted by it. */
+/* Ideal gas underestimates what a dense gas weighs and knows no liquid, and van der Waals is far off both: no charge is
+ * permitted by them. */
 static void check_lead(struct elaboration *e, const struct case_sheet *sheet)
 {
-    const char *never = vocabulary_rows()[WORD_METHOD_IDEAL_GAS].word;
-    if (sheet->kind == SHEET_PERMISSIBLE_CHARGE && sheet->methods.count != 0 &&
-        strcmp(sheet->methods.names[0], never) == 0) {
-        struct diagnostic *said =
-            diagnose(e->out, CODE_E224, sheet->methods.at, "%s never governs a charge, so it cannot lead here", never);
-        diagnostic_hint(e->out, said, "lead with reference or peng-robinson");
+    static const enum vocabulary_word never[] = {WORD_METHOD_IDEAL_GAS, WORD_METHOD_VAN_DER_WAALS};
+    for (size_t i = 0; i < sizeof never / sizeof *never && sheet->kind == SHEET_PERMISSIBLE_CHARGE; i++) {
+        const char *method = vocabulary_rows()[never[i]].word;
+        if (sheet->methods.count != 0 && strcmp(sheet->methods.names[0], method) == 0) {
+            struct diagnostic *said = diagnose(e->out, CODE_E224, sheet->methods.at,
+                                               "%s never governs a charge, so it cannot lead here", method);
+            diagnostic_hint(e->out, said, "lead with reference or peng-robinson");
+        }
     }
 }
 
@@ -498,9 +501,9 @@ static void check_pure(struct elaboration *e, const struct sheet_target *target)
     if (fluid->count == 1) {
         return;
     }
-    struct diagnostic *said = diagnose(e->out, CODE_E225, place_of_fluid(target),
-                                       "this version answers sheets for pure gases only, and '%s' is a mixture",
-                                       shortened(e, fluid->name));
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E225, place_of_fluid(target),
+                 "this version answers sheets for pure gases only, and '%s' is a mixture", shortened(e, fluid->name));
     said->note = "the mixture";
     said->note_at = fluid->at;
 }
@@ -520,6 +523,9 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
     check_temperatures(e, target);
     if (choose_methods(e, target->methods, sheet->fluid, place_of_fluid(target), &sheet->methods)) {
         check_lead(e, sheet);
+        for (size_t i = 0; i < sheet->methods.count; i++) {
+            use_method_data(e, sheet->fluid, sheet->methods.names[i]);
+        }
     }
     attach_lists(e, target);
 }

@@ -35,6 +35,9 @@ static const struct quantity_form FORM_MOLAR_MASS = {.measure = MEASURE_MOLAR_MA
                                                      .least = 0.001,
                                                      .most = 1.0,
                                                      .because = "atomic hydrogen has 1.008 g/mol"};
+/* Of either sign: a shift of an equation's volume. No covolume is larger than a litre for each mole. */
+static const struct quantity_form FORM_MOLAR_VOLUME = {
+    .measure = MEASURE_MOLAR_VOLUME, .reading = READ_NUMBER, .least = -1e-3, .most = 1e-3};
 static const struct quantity_form FORM_MOLAR_HEAT = {.measure = MEASURE_MOLAR_HEAT,
                                                      .reading = READ_NUMBER,
                                                      .least = 8.3,
@@ -62,6 +65,8 @@ const struct quantity_form *form_of_measure(enum measure measure)
         return &FORM_DENSITY;
     case MEASURE_MOLAR_DENSITY:
         return &FORM_MOLAR_DENSITY;
+    case MEASURE_MOLAR_VOLUME:
+        return &FORM_MOLAR_VOLUME;
     case MEASURE_MOLAR_MASS:
         return &FORM_MOLAR_MASS;
     case MEASURE_MOLAR_HEAT:
@@ -113,11 +118,17 @@ static const char *quoted(struct elaboration *e, const struct expression *expres
 static const char *usual_unit(const struct quantity_form *form)
 {
     static const char *const units[MEASURES] = {
-        [MEASURE_PRESSURE] = "bara",    [MEASURE_GAUGE] = "barg",
-        [MEASURE_TEMPERATURE] = "degC", [MEASURE_VOLUME] = "L",
-        [MEASURE_MASS] = "kg",          [MEASURE_AMOUNT] = "mol",
-        [MEASURE_DENSITY] = "kg/L",     [MEASURE_MOLAR_DENSITY] = "mol/L",
-        [MEASURE_MOLAR_MASS] = "g/mol", [MEASURE_MOLAR_HEAT] = "J/mol/K",
+        [MEASURE_PRESSURE] = "bara",
+        [MEASURE_GAUGE] = "barg",
+        [MEASURE_TEMPERATURE] = "degC",
+        [MEASURE_VOLUME] = "L",
+        [MEASURE_MASS] = "kg",
+        [MEASURE_AMOUNT] = "mol",
+        [MEASURE_DENSITY] = "kg/L",
+        [MEASURE_MOLAR_DENSITY] = "mol/L",
+        [MEASURE_MOLAR_VOLUME] = "cm3/mol",
+        [MEASURE_MOLAR_MASS] = "g/mol",
+        [MEASURE_MOLAR_HEAT] = "J/mol/K",
         [MEASURE_DIPOLE] = "D",
     };
     if (form->reading == READ_RATING) {

@@ -50,6 +50,12 @@ static const char SMALL_LIBRARY[] =
     "  title \"high-pressure liquefied gas\"; clause \"P200 (5)(b)\"; class high-pressure-liquefied; ref notebook\n"
     "  at 65 degC pressure <= test-pressure unless listed\n"
     "}\n"
+    "component argon { groups Ar 1 ref notebook\n"
+    "  parameters peng-robinson-twu { critical-temperature 150.72 K ref notebook; twu 0.34, 0.86, 0.83 ref notebook }\n"
+    "  parameters peng-robinson-1978 { shift -3.3 cm3/mol } }\n"
+    "component carbon-dioxide { groups CO2 1 ref notebook }\n"
+    "group-pair CO2 Ar 164.3 MPa, 270.0 MPa ref notebook\n"
+    "pair argon carbon-dioxide { peng-robinson kij 0.1 ref notebook; soave-redlich-kwong kij 0.2, lij 0.03 }\n"
     "rule broken-rule { at 65 degC pressure <= 5 kg }\n";
 
 struct elaborated {
