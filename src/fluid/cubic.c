@@ -212,8 +212,7 @@ enum answer cubic_volume_and_tv(const struct fluid_at_t *at_t, double pressure, 
 /* A translation may exceed the covolume in principle; no volume is negative all the same. */
 double cubic_smallest_volume(const struct fluid_at_t *at_t, const double n[])
 {
-    const struct cubic_sums sums = cubic_sums_of(cubic_at(at_t), n);
-    return fmax(sums.B - sums.C, 0.0);
+    return fmax(cubic_occupied_volume(cubic_at(at_t), n), 0.0);
 }
 
 /* ---- limits, starting values ----------------------------------------------------------------------------------- */

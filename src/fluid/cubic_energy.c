@@ -96,6 +96,12 @@ struct cubic_sums cubic_sums_of(const struct cubic_at_t *at, const double n[])
     return sums;
 }
 
+double cubic_occupied_volume(const struct cubic_at_t *at, const double n[])
+{
+    const size_t count = at->head.fluid->count;
+    return covolume_sum(at, at->b, total(n, count), n, at->work->B_n) - linear_sum(at->c, count, n);
+}
+
 /* ---- the two functions of volume ------------------------------------------------------------------------------- */
 
 /* The subscript D of g is the derivative by its second argument, B of f likewise. */

@@ -198,6 +198,9 @@ struct cubic_sums {
 /* Sets A_n and B_n as well. */
 struct cubic_sums cubic_sums_of(const struct cubic_at_t *at, const double n[]);
 
+/* B - C alone, m3: no state has a volume at or below it. */
+double cubic_occupied_volume(const struct cubic_at_t *at, const double n[]);
+
 /* struct fluid_ops' tv, for sums just taken; `volume` is the translated one. */
 void cubic_energy_at(const struct cubic_at_t *at, const struct cubic_sums *sums, double volume, const double n[],
                      unsigned want, struct helmholtz *out);

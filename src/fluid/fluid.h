@@ -6,7 +6,8 @@
  *
  * Ownership: a struct fluid lives in the arena given to fluid_create, never changes afterwards and may be shared
  * between threads. A struct fluid_at_t is memory the caller provides (fluid_at_t_create, or any block of
- * fluid_at_t_size bytes), one for each thread; setting a temperature allocates nothing.
+ * fluid_at_t_size bytes), one for each thread, as it also holds scratch that calls with a const pointer overwrite;
+ * setting a temperature allocates nothing.
  */
 #ifndef TAREWRIGHT_FLUID_FLUID_H
 #define TAREWRIGHT_FLUID_FLUID_H
