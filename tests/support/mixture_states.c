@@ -1,0 +1,137 @@
+#include "support/mixture_states.h"
+#include "support/check.h"
+#include "support/library_gases.h"
+
+#include <math.h>
+
+struct state_room {
+    struct arena *arena; /* of the current fluid alone */
+    struct fluid_spec spec;
+    const struct pure_spec *pure[STATE_MOST_COMPONENTS];
+    struct equilibrium_workspace *ws[STATE_MOST_COMPONENTS + 1];
+    struct split *split[STATE_MOST_COMPONENTS + 1];
+};
+
+struct state_room *state_room_create(struct arena *arena)
+{
+    struct state_room *room = arena_alloc(arena, 1, sizeof *room);
+    for (size_t count = 1; count <= STATE_MOST_COMPONENTS; count++) {
+        room->ws[count] = equilibrium_workspace_create(count, arena);
+        room->split[count] = split_create(count, arena);
+    }
+    return room;
+}
+
+/* splitmix64: Steele, Lea and Flood, OOPSLA 2014. */
+static uint64_t next(uint64_t *state)
+{
+    uint64_t z = (*state += 0x9E3779B97F4A7C15U);
+    z = (z ^ (z >> 30)) * 0xBF58476D1CE4E5B9U;
+    z = (z ^ (z >> 27)) * 0x94D049BB133111EBU;
+    return z ^ (z >> 31);
+}
+
+/* In [0, 1). */
+static double uniform(uint64_t *state)
+{
+    return (double)(next(state) >> 11) / 9007199254740992.0;
+}
+
+static size_t one_of(uint64_t *state, size_t count)
+{
+    return (size_t)(next(state) % count);
+}
+
+static void draw_gases(uint64_t *state, struct mixture_state *out)
+{
+    out->count = 1 + one_of(state, STATE_MOST_COMPONENTS);
+    for (size_t i = 0; i < out->count; i++) {
+        bool is_new;
+        do {
+            out->gas[i] = one_of(state, LIBRARY_GASES);
+            is_new = true;
+            for (size_t j = 0; j < i; j++) {
+                is_new = is_new && out->gas[j] != out->gas[i];
+            }
+        } while (!is_new);
+    }
+}
+
+/* Half of the mixtures with parts of like size, half with parts spread over eight decades; one part in fifteen is
+ * exactly absent. */
+static void draw_parts(uint64_t *state, enum state_kind kind, struct mixture_state *out)
+{
+    const double decades = kind == STATE_NEARLY_PURE ? 3.0 : one_of(state, 2) == 0 ? 1.0 : 8.0;
+    for (size_t i = 0; i < out->count; i++) {
+        out->z[i] = pow(10.0, -decades * uniform(state));
+        if (one_of(state, 15) == 0) {
+            out->z[i] = 0.0;
+        }
+    }
+    const size_t chief = one_of(state, out->count);
+    out->z[chief] = kind == STATE_NEARLY_PURE ? 1e5 * (double)out->count : fmax(out->z[chief], 0.1);
+}
+
+/* ---- fluids ---------------------------------------------------------------------------------------------------- */
+
+struct state_place mixture_state_place(const struct mixture_state *state, struct state_room *room)
+{
+    struct fluid_lack_report lack;
+    if (room->arena) {
+        arena_free(room->arena);
+    }
+    room->arena = arena_create(NULL);
+    for (size_t i = 0; i < state->count; i++) {
+        room->pure[i] = &LIBRARY_GAS[state->gas[i]];
+    }
+    room->spec = (struct fluid_spec){.count = state->count, .pure = room->pure};
+    struct state_place place = {.ws = room->ws[state->count], .split = room->split[state->count]};
+    place.fluid = fluid_create("peng-robinson", &room->spec, room->arena, &lack);
+    assert_non_null(place.fluid);
+    place.at_t = fluid_at_t_create(place.fluid, room->arena);
+    assert_int_equal(fluid_set_t(place.at_t, place.fluid, state->temperature), ANSWER_OK);
+    return place;
+}
+
+/* ---- states beside a boundary ---------------------------------------------------------------------------------- */
+
+static size_t phases_at(const struct state_place *place, const struct mixture_state *state, double pressure)
+{
+    const enum answer answer = split_at_tp(place->at_t, pressure, state->z, place->ws, place->split);
+    return answer == ANSWER_OK ? place->split->phase_count : 0;
+}
+
+/* Moves the pressure to within 1 % of the first change found going up or down from it, at any distance from 1e-2 to
+ * 1e-11 of it; a state that has none between 100 Pa and 100 MPa stays where it is. */
+static void move_to_boundary(uint64_t *state, struct state_room *room, struct mixture_state *out)
+{
+    const struct state_place place = mixture_state_place(out, room);
+    const size_t here = phases_at(&place, out, out->pressure);
+    const double factor = one_of(state, 2) == 0 ? 1.3 : 1.0 / 1.3;
+    double inside = out->pressure, outside = out->pressure;
+    while (phases_at(&place, out, outside) == here) {
+        inside = outside;
+        outside *= factor;
+        if (!(outside > 1e2 && outside < 1e8)) {
+            return;
+        }
+    }
+    for (int k = 0; k < 45; k++) {
+        const double middle = sqrt(inside * outside);
+        *(phases_at(&place, out, middle) == here ? &inside : &outside) = middle;
+    }
+    const double distance = pow(10.0, -2.0 - 9.0 * uniform(state));
+    out->pressure = inside * (1.0 + (one_of(state, 2) == 0 ? distance : -distance));
+}
+
+void mixture_state_draw(uint64_t seed, enum state_kind kind, struct state_room *room, struct mixture_state *out)
+{
+    uint64_t state = seed * 1000003U + (uint64_t)kind;
+    draw_gases(&state, out);
+    draw_parts(&state, kind, out);
+    out->temperature = 200.0 + 200.0 * uniform(&state);
+    out->pressure = 1e3 * pow(6e4, uniform(&state));
+    if (kind == STATE_NEAR_BOUNDARY) {
+        move_to_boundary(&state, room, out);
+    }
+}

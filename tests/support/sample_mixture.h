@@ -1,0 +1,21 @@
+/* Mixtures of the sample substances by Peng-Robinson, with pair parameters of a size met in practice. */
+#ifndef TAREWRIGHT_TESTS_SAMPLE_MIXTURE_H
+#define TAREWRIGHT_TESTS_SAMPLE_MIXTURE_H
+
+#include "equilibrium/workspace.h"
+#include "support/sample_fluids.h"
+
+/* The pair parameter of two sample substances: near the values fitted to measurements, from memory, and of no more
+ * meaning here than that an independent evaluation must use the same. */
+double sample_kij(enum sample_substance a, enum sample_substance b);
+
+/* A fluid of `count` sample substances, and its state and workspace at a temperature (K), all from the arena. */
+struct sample_mixture {
+    const struct fluid *fluid;
+    struct fluid_at_t *at_t;
+    struct equilibrium_workspace *ws;
+};
+struct sample_mixture sample_mixture_create(size_t count, const enum sample_substance *substance, double temperature,
+                                            struct arena *arena);
+
+#endif
