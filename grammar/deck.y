@@ -46,8 +46,9 @@ YY_DECL;
 #include "deck/syntax_report.h"
 
 #define YYLLOC_DEFAULT(whole, parts, count)                                                                            \
-    ((whole) = (count) ? location_span(YYRHSLOC(parts, 1), YYRHSLOC(parts, count))                                     \
-                       : (struct location){YYRHSLOC(parts, 0).file, YYRHSLOC(parts, 0).end, YYRHSLOC(parts, 0).end})
+    ((whole) = (count)                                                                                                 \
+         ? (struct location){YYRHSLOC(parts, 1).file, YYRHSLOC(parts, 1).begin, YYRHSLOC(parts, count).end}            \
+         : (struct location){YYRHSLOC(parts, 0).file, YYRHSLOC(parts, 0).end, YYRHSLOC(parts, 0).end})
 
 /* Leaves the parse when a constructor found no memory. */
 #define NEED(made)                                                                                                     \

@@ -37,15 +37,32 @@ static bool check_mark(struct parse_context *context)
     return true;
 }
 
+/* The first place from `at` on that is not plain text in ASCII, found eight bytes at a time. */
+static size_t skip_plain(const struct source_file *file, size_t at)
+{
+    const uint64_t ones = UINT64_C(0x0101010101010101);
+    while (at + sizeof ones <= file->length) {
+        uint64_t bytes;
+        memcpy(&bytes, file->text + at, sizeof bytes);
+        /* A byte below 0x20 borrows, and 0x7f carries, into its highest bit; a neighbour's borrow only stops early. */
+        const uint64_t odd = (bytes | (bytes - 0x20 * ones) | (bytes + ones)) & (0x80 * ones);
+        if (odd != 0) {
+            break;
+        }
+        at += sizeof bytes;
+    }
+    return at;
+}
+
 /* Replaces bytes that are no text by blanks, after a message for each run; false when there are too many. */
 static bool clean_buffer(struct parse_context *context)
 {
     const struct source_file *file = context->file;
     size_t runs = 0;
-    for (size_t at = 0; at < file->length;) {
+    for (size_t at = skip_plain(file, 0); at < file->length;) {
         const unsigned char byte = (unsigned char)file->text[at];
         if ((byte >= 0x20 && byte < 0x7f) || byte == '\n') {
-            at++;
+            at = skip_plain(file, at + 1);
             continue;
         }
         const size_t strange = strange_bytes(file, at);

@@ -258,6 +258,15 @@ double scan_number(struct parse_context *context, struct location at, const char
     return is_negative ? -size : size;
 }
 
+bool scan_may_unit_follow(const struct parse_context *context, struct location at)
+{
+    size_t next = at.end;
+    while (byte_at(context, next) == ' ' || byte_at(context, next) == '\t') {
+        next++;
+    }
+    return is_letter(byte_at(context, next)) || byte_at(context, next) == '%';
+}
+
 /* The token of a word of the vocabulary's list of markers. */
 static int token_of_marker(enum vocabulary_word marker)
 {

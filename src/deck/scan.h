@@ -44,6 +44,9 @@ int scan_operator(struct parse_context *context, struct location at);
 /* The value of a number, rounded to nearest; a message where that is out of range. */
 double scan_number(struct parse_context *context, struct location at, const char *digits);
 
+/* Whether a word stands after the number at this place, on its line. */
+bool scan_may_unit_follow(const struct parse_context *context, struct location at);
+
 /* A name or a reserved word, its spelling in *spelled. */
 int scan_word(struct parse_context *context, const char *match, size_t length, const char **spelled);
 
