@@ -6,14 +6,16 @@
 
 enum { FIRST_CAPACITY = 256 };
 
-/* FNV-1a, 32 bits (Fowler, Noll, Vo; RFC draft "The FNV Non-Cryptographic Hash Algorithm"). */
+/* FNV-1a, 32 bits (Fowler, Noll, Vo; RFC draft "The FNV Non-Cryptographic Hash Algorithm"), stirred once more, since
+ * numbered words would otherwise fill neighbouring places. */
 static uint32_t hash_of(const char *text, size_t length)
 {
     uint32_t hash = 2166136261U;
     for (size_t i = 0; i < length; i++) {
         hash = (hash ^ (unsigned char)text[i]) * 16777619U;
     }
-    return hash;
+    hash = (hash ^ hash >> 16) * 0x9e3779b1U;
+    return hash ^ hash >> 15;
 }
 
 /* The place of the word, or the free place where it belongs. The table is never full. */
