@@ -327,7 +327,7 @@ static void printing_and_parsing_give_the_same_tree(void **state)
         "x 1 - (2 - 3) - (4 + 5) * 6 / (7 / 8)",
         "x (a + b) * -(c * d) / -e",
         "at (5) bar no m",
-        "let x = -(%) * -(kg/L)",
+        "let x = -(%) * -(kg/L) - -(1-butene)",
         "x 5, bar ; y 5 one m",
     };
     for (size_t i = 0; i < COUNT(awkward); i++) {

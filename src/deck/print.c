@@ -88,6 +88,14 @@ static void print_operand(const struct expression *operand, int least, struct te
     text_format(out, "%s", is_bare ? "" : ")");
 }
 
+/* A minus directly before digits, those of 1-butene too, would become part of a number. */
+static void print_negation(const struct expression *of, struct text *out)
+{
+    const bool is_bare = of->kind == EXPRESSION_NAME && !(of->name[0] >= '0' && of->name[0] <= '9');
+    text_add(out, "-", 1);
+    print_operand(of, is_bare ? 4 : 5, out);
+}
+
 static void print_tuple(const struct expression *tuple, struct text *out)
 {
     text_add(out, "(", 1);
@@ -112,9 +120,7 @@ static void print_expression(const struct expression *expression, struct text *o
         text_format(out, "%s", expression->name);
         return;
     case EXPRESSION_NEGATE:
-        /* A minus directly before digits would become part of the number. */
-        text_add(out, "-", 1);
-        print_operand(expression->left, expression->left->kind == EXPRESSION_NAME ? 4 : 5, out);
+        print_negation(expression->left, out);
         return;
     case EXPRESSION_TUPLE:
         print_tuple(expression, out);
