@@ -7,7 +7,10 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { LONGEST_UNIT = 48 };
+enum {
+    LONGEST_UNIT = 48,
+    LONGEST_MARKER = 8 /* longer words are not looked for among the reserved ones */
+};
 
 /* Names joined by operators without blanks up to this length are taken apart; a longer chain is taken as one wrong
  * name, as scanning its rest anew after each part would take time that grows with its square. */
@@ -301,7 +304,7 @@ int scan_word(struct parse_context *context, const char *match, size_t length, c
         return run_out(context);
     }
     if (word->token == 0) {
-        const struct vocabulary_row *row = vocabulary_find(BLOCK_MARKER, word->text);
+        const struct vocabulary_row *row = length > LONGEST_MARKER ? NULL : vocabulary_find(BLOCK_MARKER, word->text);
         word->token = row ? token_of_marker(row->id) : TOK_NAME;
     }
     *spelled = word->text;
