@@ -62,7 +62,7 @@ const char *dimension_name(struct dimension dimension, struct arena *arena);
 #define DIMENSION_AMOUNT        ((struct dimension){0, 0, 0, 0, 1, 0})
 #define DIMENSION_DENSITY       ((struct dimension){1, -3, 0, 0, 0, 0})
 #define DIMENSION_MOLAR_DENSITY ((struct dimension){0, -3, 0, 0, 1, 0})
-#define DIMENSION_MOLAR_VOLUME ((struct dimension){0, 3, 0, 0, -1, 0})
+#define DIMENSION_MOLAR_VOLUME  ((struct dimension){0, 3, 0, 0, -1, 0})
 #define DIMENSION_MOLAR_MASS    ((struct dimension){1, 0, 0, 0, -1, 0})
 #define DIMENSION_MOLAR_HEAT    ((struct dimension){1, 2, -2, -1, -1, 0})
 #define DIMENSION_DIPOLE        ((struct dimension){0, 1, 1, 0, 0, 1})
