@@ -268,7 +268,7 @@ static void a_fill_by_pressure_settles_back_to_that_pressure(void **state)
         small.charge.temperature = cases[i].temperature;
         small_case_start(&small, ALL);
         double mass;
-        struct vessel_contents contents;
+        struct contents contents;
         assert_int_equal(charge_mass(&small.run, &small.charge, &mass), ANSWER_OK);
         assert_int_equal(contents_at(&small.run, &small.methods[0], mass, cases[i].temperature, &contents), ANSWER_OK);
         assert_int_equal(contents.state, cases[i].state);

@@ -219,7 +219,7 @@ static void the_pressure_of_one_phase_is_redone_from_the_printed_numbers(void **
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
         for (size_t k = 0; k < small.run.method_count; k++) {
             struct method_run *method = &small.methods[k];
-            struct vessel_contents contents;
+            struct contents contents;
             if (contents_at(&small.run, method, cases[i].mass, cases[i].temperature, &contents) != ANSWER_OK ||
                 contents.state == VESSEL_TWO_PHASE) {
                 continue;
@@ -273,7 +273,7 @@ static void two_phases_are_redone_by_equal_fugacity_and_the_balance_of_volumes(v
     for (size_t k = 1; k < small.run.method_count; k++) {
         for (size_t i = 0; i < sizeof temperatures / sizeof *temperatures; i++) {
             struct method_run *method = &small.methods[k];
-            struct vessel_contents contents;
+            struct contents contents;
             assert_int_equal(contents_at(&small.run, method, 13.31, temperatures[i], &contents), ANSWER_OK);
             assert_int_equal(contents.state, VESSEL_TWO_PHASE);
             struct hand_check *check = sheet_add_hand_check(small.run.result, small.run.out, method->name);

@@ -259,7 +259,7 @@ static void a_pressure_reached_is_that_pressure(void **state)
     static const double pressures[] = {20.0 * BAR, 60.0 * BAR, 199.0 * BAR};
     for (size_t i = 0; i < sizeof pressures / sizeof *pressures; i++) {
         double temperature;
-        struct vessel_contents contents;
+        struct contents contents;
         assert_int_equal(find_temperature_of_pressure(&it->run, method, 30.0, pressures[i], &temperature), ANSWER_OK);
         assert_int_equal(contents_at(&it->run, method, 30.0, temperature, &contents), ANSWER_OK);
         assert_close(contents.pressure, pressures[i], 1e-7, "found again at that temperature");

@@ -47,7 +47,6 @@ static const char *assessment_of(struct elaboration *e, const struct case_fluid 
     const struct case_component *fuel = find_hazard(fluid, HAZARD_FLAMMABLE | HAZARD_PYROPHORIC);
     const struct case_component *oxidant = find_hazard(fluid, HAZARD_OXIDISING);
     const struct case_component *unstable = find_hazard(fluid, HAZARD_DECOMPOSES);
-    const struct case_component *monomer = find_hazard(fluid, HAZARD_POLYMERISES);
     if (fuel != NULL && oxidant != NULL) {
         return fuel == oxidant
                    ? arena_format(e->arena, "%s is fuel and oxidant in one", fuel->name)
@@ -57,10 +56,9 @@ static const char *assessment_of(struct elaboration *e, const struct case_fluid 
     if (reaction != NULL) {
         return arena_format(e->arena, "%s and %s react: %s", reaction->first, reaction->second, reaction->reacts);
     }
-    if (unstable != NULL) {
-        return arena_format(e->arena, "%s may decompose, and the pressure after that was not computed", unstable->name);
-    }
-    return monomer == NULL ? NULL : arena_format(e->arena, "%s may polymerise", monomer->name);
+    return unstable == NULL ? NULL
+                            : arena_format(e->arena, "%s may decompose, and the pressure after that was not computed",
+                                           unstable->name);
 }
 
 /* A gas that is carried dissolved only is refused where it is most of what is filled; as a part of a mixture it is a

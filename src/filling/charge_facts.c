@@ -9,14 +9,13 @@
 
 bool gas_volume_of(const struct sheet_run *run, struct method_run *method, double mass, double *volume)
 {
-    const double one_mole[] = {1.0};
-    struct phase phase = {0};
-    if (method->fluid == NULL || fluid_set_t(method->at_t, method->fluid, STATED_TEMPERATURE) != ANSWER_OK ||
-        stable_phase_tp(method->at_t, STATED_PRESSURE, one_mole, 0, &phase) != ANSWER_OK ||
-        phase.branch == BRANCH_LIQUID) {
+    double molar_volume;
+    bool holds_liquid;
+    if (free_volume_at(method, STATED_TEMPERATURE, STATED_PRESSURE, &molar_volume, &holds_liquid) != ANSWER_OK ||
+        holds_liquid) {
         return false;
     }
-    *volume = mass / run->sheet->fluid->molar_mass * phase.volume;
+    *volume = mass / run->sheet->fluid->molar_mass * molar_volume;
     return true;
 }
 
@@ -66,6 +65,12 @@ void add_charge_facts(const struct sheet_run *run, struct method_run *method, do
         method->name;
 }
 
+/* A pure gas that warms loses its last liquid there; a mixture is asked when it condenses as it cools. */
+static const char *end_name(const struct method_run *method)
+{
+    return method->mixture == NULL ? "last-liquid-temperature" : "first-liquid-temperature";
+}
+
 struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct method_run *method, double mass)
 {
     const struct liquid_end_found found = find_liquid_end(run, method, mass);
@@ -76,7 +81,7 @@ struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct metho
             method->name;
         break;
     case LIQUID_END_DRY:
-        sheet_add_fact(result, run->out, "last-liquid-temperature", found.temperature, look_temperature(run))->method =
+        sheet_add_fact(result, run->out, end_name(method), found.temperature, look_temperature(run))->method =
             method->name;
         break;
     case LIQUID_END_CRITICAL:
@@ -84,7 +89,7 @@ struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct metho
             method->name;
         break;
     case LIQUID_END_BELOW:
-        sheet_add_words(result, run->out, "last-liquid-temperature",
+        sheet_add_words(result, run->out, end_name(method),
                         arena_format(run->arena, "one phase down to %s",
                                      shown_text(run, look_temperature(run), found.temperature)))
             ->method = method->name;
@@ -101,7 +106,7 @@ struct fill_point fill_point_of(const struct sheet_run *run, struct method_run *
     if (charge != NULL && charge->kind == FILL_PRESSURE) {
         return (struct fill_point){true, charge->temperature, charge->amount.value};
     }
-    struct vessel_contents contents;
+    struct contents contents;
     if (contents_at(run, method, mass, STATED_TEMPERATURE, &contents) != ANSWER_OK ||
         contents.state == VESSEL_TWO_PHASE || contents.state == VESSEL_LIQUID_FULL) {
         return (struct fill_point){.is_known = false};

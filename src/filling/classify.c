@@ -3,28 +3,38 @@
 #define COLD_TEMPERATURE          223.15 /* K, -50 degC */
 #define HIGHEST_HIGH_PRESSURE_TC  338.15 /* K, 65 degC */
 
-enum filling_class classify_gas(const struct case_component *component)
+static enum filling_class class_of_critical(double Tc)
 {
-    if (!component->critical_temperature.given) {
-        return CLASS_NONE;
-    }
-    const double Tc = component->critical_temperature.value;
     if (Tc <= COLD_TEMPERATURE) {
         return CLASS_COMPRESSED;
     }
     return Tc <= HIGHEST_HIGH_PRESSURE_TC ? CLASS_HIGH_PRESSURE_LIQUEFIED : CLASS_LOW_PRESSURE_LIQUEFIED;
 }
 
+enum filling_class classify_fluid(const struct case_fluid *fluid)
+{
+    double Tc = 0.0;
+    for (size_t i = 0; i < fluid->count; i++) {
+        if (!fluid->components[i]->critical_temperature.given) {
+            return CLASS_NONE;
+        }
+        Tc += fluid->fractions[i] * fluid->components[i]->critical_temperature.value;
+    }
+    return class_of_critical(Tc);
+}
+
 /* Saturation below the triple point is that of the undercooled liquid: a gas not condensed by that is not condensed. */
 enum filling_class classify_charge(const struct sheet_run *run, struct method_run *method, double mass)
 {
-    const enum filling_class by_gas = classify_gas(run->sheet->fluid->components[0]);
-    struct vessel_contents contents;
+    const enum filling_class by_gas = classify_fluid(run->sheet->fluid);
+    struct contents contents;
     if (by_gas == CLASS_NONE || by_gas == CLASS_COMPRESSED ||
         contents_at(run, method, mass, COLD_TEMPERATURE, &contents) != ANSWER_OK) {
         return by_gas;
     }
-    return contents.state == VESSEL_VAPOUR ? CLASS_COMPRESSED : by_gas;
+    const bool is_gas = contents.state == VESSEL_VAPOUR || (method->mixture != NULL && contents.phase_count == 1 &&
+                                                            !contents.phases[0].is_liquid);
+    return is_gas ? CLASS_COMPRESSED : by_gas;
 }
 
 const char *class_words(enum filling_class of)

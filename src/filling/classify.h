@@ -11,8 +11,9 @@
  * decides. CLASS_NONE when that is not known either. */
 enum filling_class classify_charge(const struct sheet_run *run, struct method_run *method, double mass);
 
-/* By the critical temperature alone, as for a vessel full enough to hold liquid. */
-enum filling_class classify_gas(const struct case_component *component);
+/* By the critical temperature alone, as for a vessel full enough to hold liquid; of a mixture by the mean of its
+ * components' critical temperatures, weighted with the mole fractions (Kay, Ind. Eng. Chem. 28 (1936) 1014). */
+enum filling_class classify_fluid(const struct case_fluid *fluid);
 
 /* "high-pressure liquefied gas". */
 const char *class_words(enum filling_class of);

@@ -8,17 +8,33 @@
 /* Temperatures nearer to each other than this (K) are one row: the table shows hundredths. */
 #define SAME_TEMPERATURE 0.005
 
-const char *contents_words(const struct vessel_contents *contents)
+static const char *split_words(const struct sheet_run *run, const struct contents *contents)
+{
+    size_t liquids = 0;
+    for (size_t k = 0; k < contents->phase_count; k++) {
+        liquids += contents->phases[k].is_liquid;
+    }
+    if (liquids == contents->phase_count) {
+        return arena_format(run->arena, "%zu liquids", liquids);
+    }
+    return liquids == 1 ? "vapour + liquid" : arena_format(run->arena, "vapour + %zu liquids", liquids);
+}
+
+const char *contents_words(const struct sheet_run *run, const struct contents *contents)
 {
     switch (contents->state) {
     case VESSEL_VAPOUR:
         return "vapour";
     case VESSEL_TWO_PHASE:
-        return "vapour + liquid";
+        return contents->has_saturation ? "vapour + liquid" : split_words(run, contents);
     case VESSEL_LIQUID_FULL:
         return "liquid-full";
     case VESSEL_SUPERCRITICAL:
-        return "one phase, above critical";
+        if (contents->edges.has_high) {
+            return arena_format(run->arena, "one phase, would condense in use at %s",
+                                shown_text(run, look_pressure(run), contents->edges.high_pressure));
+        }
+        return contents->phases[0].x == NULL ? "one phase, above critical" : "one phase";
     case VESSEL_GAS:
         return "gas";
     }
@@ -56,14 +72,20 @@ void warn_below_triple(const struct sheet_run *run, double temperature)
     }
 }
 
+/* Above the critical temperature, and for a method without liquid, there is no level to tell. */
+static bool has_level(const struct contents *contents)
+{
+    return contents->state == VESSEL_TWO_PHASE || contents->edges.has_high;
+}
+
 static void fill_row(const struct sheet_run *run, struct table *table, struct cell *row,
-                     const struct vessel_contents *contents, bool is_inside)
+                     const struct contents *contents, bool is_inside)
 {
     cell_set(&row[COLUMN_PRESSURE], contents->pressure);
     cell_set(&row[COLUMN_GAUGE], contents->pressure);
     row[COLUMN_PRESSURE].is_outside_range = row[COLUMN_GAUGE].is_outside_range = !is_inside;
-    cell_set_text(&row[COLUMN_STATE], contents_words(contents));
-    if (contents->has_saturation) {
+    cell_set_text(&row[COLUMN_STATE], contents_words(run, contents));
+    if (has_level(contents)) {
         cell_set(&row[COLUMN_LIQUID], contents->liquid_fraction);
         cell_set(&row[COLUMN_ULLAGE], 1.0 - contents->liquid_fraction);
     }
@@ -79,7 +101,7 @@ enum answer contents_table_row(const struct sheet_run *run, struct table *table,
     struct cell *row = table_add_row(run->result, table);
     cell_set(&row[COLUMN_TEMPERATURE], temperature);
     warn_below_triple(run, temperature);
-    struct vessel_contents contents;
+    struct contents contents;
     const enum answer answer = contents_at(run, method, mass, temperature, &contents);
     if (answer != ANSWER_OK) {
         cell_set_text(&row[COLUMN_STATE], "no answer");

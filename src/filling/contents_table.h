@@ -8,7 +8,7 @@
 #include "filling/sheet.h"
 
 /* "vapour + liquid" and the like. */
-const char *contents_words(const struct vessel_contents *contents);
+const char *contents_words(const struct sheet_run *run, const struct contents *contents);
 
 /* A table with the columns temperature, pressure, gauge-pressure, state, liquid-volume, ullage and, where the vessel
  * has a test pressure, margin (to it). Rows are added with contents_table_row. */

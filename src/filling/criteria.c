@@ -32,7 +32,7 @@ static bool fills_by_ratio(const struct case_sheet *sheet)
         }
         has_compressed = has_compressed || of == CLASS_COMPRESSED;
     }
-    return !has_compressed && classify_gas(sheet->fluid->components[0]) != CLASS_COMPRESSED;
+    return !has_compressed && classify_fluid(sheet->fluid) != CLASS_COMPRESSED;
 }
 
 static bool has_listed_criterion(const struct case_rule *rule)

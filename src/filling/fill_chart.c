@@ -18,14 +18,14 @@ static void add_row(const struct sheet_run *run, struct table *table, struct met
 {
     struct cell *row = table_add_row(run->result, table);
     cell_set(&row[CHART_TEMPERATURE], temperature);
-    struct vessel_contents contents;
+    struct contents contents;
     if (contents_at(run, method, mass, temperature, &contents) != ANSWER_OK) {
         cell_set_text(&row[CHART_STATE], "no answer");
         return;
     }
     cell_set(&row[CHART_READING], contents.pressure);
     row[CHART_READING].is_outside_range = !warn_outside_range(run, method, temperature, contents.pressure);
-    cell_set_text(&row[CHART_STATE], contents_words(&contents));
+    cell_set_text(&row[CHART_STATE], contents_words(run, &contents));
 }
 
 void tell_fill_chart(const struct permissible *sheet)

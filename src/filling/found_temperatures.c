@@ -6,6 +6,9 @@
 
 #define HOTTEST 473.15 /* K: no filled vessel is asked about above 200 degC */
 #define COLDEST 20.0   /* K: for gases whose triple point and method say nothing */
+#define COLDEST_MIXTURE 120.0 /* K: colder than any yard; what freezes above it is not a matter of these searches */
+/* K, of the walk down to a mixture's second phase: what is there over less may be missed. */
+#define MIXTURE_STEP 5.0
 /* K, of the walk up to a pressure: at given volume a pressure all but always rises with temperature. */
 #define STEP 25.0
 #define TEMPERATURE_TOLERANCE 1e-7 /* K */
@@ -21,6 +24,9 @@ static struct span searched_span(const struct sheet_run *run, const struct metho
 {
     const struct quantity *triple = &run->sheet->fluid->components[0]->triple_temperature;
     struct span span = {triple->given ? triple->value : COLDEST, HOTTEST};
+    if (method->mixture != NULL) {
+        span.low = COLDEST_MIXTURE;
+    }
     if (method->fluid->ops->range == NULL) {
         return span;
     }
@@ -59,9 +65,80 @@ static enum answer distance_to_saturation(void *context, double temperature, dou
     return answer;
 }
 
+struct phase_search {
+    const struct sheet_run *run;
+    struct method_run *method;
+    double mass;
+};
+
+/* Minus infinity where there is more than one phase, else infinity. */
+static enum answer one_phase_side(void *context, double temperature, double *side)
+{
+    const struct phase_search *search = context;
+    struct contents contents;
+    const enum answer answer = pressure_at(search->run, search->method, search->mass, temperature, &contents);
+    if (answer == ANSWER_OK) {
+        *side = contents.phase_count == 1 ? (double)INFINITY : -(double)INFINITY;
+    }
+    return answer;
+}
+
+/* Down from the hottest to the first step with more than one phase. */
+static enum answer walk_to_second_phase(const struct search_function *function, struct span span,
+                                        struct search_bracket *bracket)
+{
+    bracket->a = span.high;
+    enum answer answer = function->value(function->context, bracket->a, &bracket->value_a);
+    if (answer == ANSWER_OK && bracket->value_a < 0.0) {
+        return ANSWER_CANNOT;
+    }
+    while (answer == ANSWER_OK && bracket->a > span.low) {
+        bracket->b = fmax(bracket->a - MIXTURE_STEP, span.low);
+        answer = function->value(function->context, bracket->b, &bracket->value_b);
+        if (answer == ANSWER_OK && bracket->value_b < 0.0) {
+            return ANSWER_OK;
+        }
+        bracket->a = bracket->b;
+    }
+    return answer == ANSWER_OK ? ANSWER_NO_SUCH_ROOT : answer;
+}
+
+/* What the second phase is tells the end: a bubble in a full vessel, or the first liquid. */
+static enum liquid_end end_at(const struct phase_search *search, double temperature)
+{
+    struct contents contents;
+    if (pressure_at(search->run, search->method, search->mass, temperature, &contents) != ANSWER_OK) {
+        return LIQUID_END_UNKNOWN;
+    }
+    return contents.liquid_fraction > 0.5 ? LIQUID_END_FULL : LIQUID_END_DRY;
+}
+
+static struct liquid_end_found find_mixture_end(const struct sheet_run *run, struct method_run *method, double mass)
+{
+    struct liquid_end_found found = {.end = LIQUID_END_UNKNOWN};
+    struct phase_search search = {run, method, mass};
+    const struct search_function function = {one_phase_side, &search};
+    const struct span span = searched_span(run, method);
+    struct search_bracket bracket;
+    enum answer answer = walk_to_second_phase(&function, span, &bracket);
+    if (answer == ANSWER_OK) {
+        bracket.value_a = (double)INFINITY;
+        answer = search_root(&function, TEMPERATURE_TOLERANCE, 0.0, &bracket);
+        found.temperature = bracket.a;
+        found.end = answer == ANSWER_OK ? end_at(&search, bracket.b) : LIQUID_END_UNKNOWN;
+    } else if (answer == ANSWER_NO_SUCH_ROOT) {
+        found = (struct liquid_end_found){LIQUID_END_BELOW, span.low};
+    }
+    return found;
+}
+
 struct liquid_end_found find_liquid_end(const struct sheet_run *run, struct method_run *method, double mass)
 {
     struct liquid_end_found found = {.end = LIQUID_END_UNKNOWN};
+    if (method->fluid != NULL && method->mixture != NULL &&
+        (method->fluid->ops->capabilities & CAN_LIQUID) != 0) {
+        return find_mixture_end(run, method, mass);
+    }
     if (method->fluid == NULL || !method->has_critical) {
         return found;
     }
@@ -100,8 +177,8 @@ struct pressure_search {
 static enum answer pressure_above(void *context, double temperature, double *above)
 {
     const struct pressure_search *search = context;
-    struct vessel_contents contents;
-    const enum answer answer = contents_at(search->run, search->method, search->mass, temperature, &contents);
+    struct contents contents;
+    const enum answer answer = pressure_at(search->run, search->method, search->mass, temperature, &contents);
     if (answer == ANSWER_OK) {
         *above = contents.pressure - search->pressure;
     }

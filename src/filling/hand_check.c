@@ -252,15 +252,16 @@ void hand_check_saturation(const struct sheet_run *run, struct hand_check *check
 
 /* The balance of volumes: n_V v_V + n_L v_L = V with n_V + n_L = n. */
 static void add_lever_rule(const struct sheet_run *run, struct hand_check *check, double mass,
-                           const struct vessel_contents *contents)
+                           const struct contents *contents)
 {
     const double n = mass / run->sheet->fluid->molar_mass, V = run->sheet->vessel->water_capacity.value;
-    const double n_L = contents->liquid_amount, v_L = contents->liquid_molar_volume;
+    const struct contents_phase *vapour = &contents->phases[0], *liquid = &contents->phases[1];
+    const double n_L = liquid->amount, v_L = liquid->molar_volume;
     struct explanation numbers = {.count = 0};
     hand_check_line(run->result, check, "balance of volumes, n_V v_V + n_L v_L = V with n_V + n_L = n:");
     put(&numbers, "n", "amount of substance", NULL, "mol", n);
     put(&numbers, "V", "water capacity", NULL, "m3", V);
-    put(&numbers, "v_V", "molar volume of the vapour", NULL, "m3/mol", contents->vapour_molar_volume);
+    put(&numbers, "v_V", "molar volume of the vapour", NULL, "m3/mol", vapour->molar_volume);
     put(&numbers, "v_L", "molar volume of the liquid", NULL, "m3/mol", v_L);
     put(&numbers, "n_L", "amount of liquid", "(n * v_V - V) / (v_V - v_L)", "mol", n_L);
     put(&numbers, "x_L", "liquid's part of the capacity", "n_L * v_L / V", "1", n_L * v_L / V);
@@ -268,7 +269,7 @@ static void add_lever_rule(const struct sheet_run *run, struct hand_check *check
 }
 
 void hand_check_contents(const struct sheet_run *run, struct hand_check *check, struct method_run *method, double mass,
-                         const struct vessel_contents *contents)
+                         const struct contents *contents)
 {
     if (contents->state == VESSEL_TWO_PHASE) {
         hand_check_saturation(run, check, method, &contents->saturation);

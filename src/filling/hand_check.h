@@ -16,7 +16,7 @@ void hand_check_amount(const struct sheet_run *run, struct hand_check *check, do
 /* How `contents` (of `mass` kg, by this method) follows: the method's equation with its numbers for one phase; the
  * equal fugacities and the balance of volumes for two. Ends with the pressure. */
 void hand_check_contents(const struct sheet_run *run, struct hand_check *check, struct method_run *method, double mass,
-                         const struct vessel_contents *contents);
+                         const struct contents *contents);
 
 /* The method's pressure at `temperature` (K) and `molar_volume` (m3/mol) of one homogeneous phase; and where
  * `with_fugacity`, its fugacity coefficient. `phase` names it in the lines ("vapour", "liquid", "contents"). */

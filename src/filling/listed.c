@@ -222,7 +222,7 @@ static void add_listed_pressure(const struct permissible *sheet, struct method_r
 {
     const struct sheet_run *run = sheet->run;
     const double temperature = hottest_ruled(sheet);
-    struct vessel_contents contents;
+    struct contents contents;
     if (contents_at(run, method, mass, temperature, &contents) == ANSWER_OK) {
         struct fact *fact =
             sheet_add_fact(run->result, run->out, "listed-pressure", contents.pressure, look_pressure(run));
@@ -307,7 +307,7 @@ static void tell_pressure_row(const struct permissible *sheet)
     sheet_add_fact(run->result, run->out, "listed-working-pressure", row->working_pressure.value + STANDARD_ATMOSPHERE,
                    look_gauge(run))
         ->source = listed_source(sheet);
-    struct vessel_contents contents;
+    struct contents contents;
     if (basis->method != NULL && basis->replaced.given &&
         contents_at(run, basis->method, basis->limits[basis->replaced.index].mass, SETTLED_TEMPERATURE, &contents) ==
             ANSWER_OK) {

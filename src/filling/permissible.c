@@ -2,6 +2,7 @@
 #include "filling/charge_facts.h"
 #include "filling/classify.h"
 #include "filling/contents_table.h"
+#include "filling/dew_limit.h"
 #include "filling/hand_check.h"
 #include "filling/permissible_internal.h"
 #include "filling/requirement.h"
@@ -45,42 +46,6 @@ static void add_headline(const struct sheet_run *run, const char *text)
 
 /* ---- gases that get no charge ------------------------------------------------------------------------------------ */
 
-static unsigned hazards_of(const struct case_fluid *fluid)
-{
-    unsigned hazards = 0;
-    for (size_t i = 0; i < fluid->count; i++) {
-        hazards |= fluid->components[i]->hazards;
-    }
-    return hazards;
-}
-
-/* Why no charge is computed however much is known, or NULL. */
-static const char *refusal_of(const struct case_fluid *fluid)
-{
-    for (size_t i = 0; i < fluid->count; i++) {
-        if (fluid->components[i]->refuse != NULL) {
-            return fluid->components[i]->refuse;
-        }
-        if ((fluid->components[i]->hazards & HAZARD_DISSOLVED) != 0) {
-            return "a dissolved gas: its charge follows from the porous mass and the solvent";
-        }
-    }
-    return NULL;
-}
-
-/* What an assessment has to cover, or NULL. */
-static const char *assessment_needed(const struct case_fluid *fluid)
-{
-    const unsigned hazards = hazards_of(fluid);
-    if ((hazards & HAZARD_DECOMPOSES) != 0) {
-        return "the gas may decompose, and its pressure after that was not computed";
-    }
-    if ((hazards & HAZARD_FLAMMABLE) != 0 && (hazards & HAZARD_OXIDISING) != 0) {
-        return "fuel beside oxidant";
-    }
-    return NULL;
-}
-
 static void tell_no_charge(const struct sheet_run *run, enum requirement_state state, const char *reason)
 {
     sheet_add_note(run->result, run->out, "no permitted charge: %s", reason);
@@ -107,14 +72,15 @@ static void warn_of_polymerisation(const struct sheet_run *run)
 /* True when the sheet ends here. An assessment is quoted, never judged. */
 static bool refuses(const struct sheet_run *run)
 {
-    const char *reason = refusal_of(run->sheet->fluid);
-    const char *needed = assessment_needed(run->sheet->fluid);
+    const struct case_fluid *fluid = run->sheet->fluid;
+    const char *needed = fluid->assessment;
+    const char *reason =
+        fluid->refuse == NULL ? NULL : arena_format(run->arena, "%s: %s", fluid->name, fluid->refuse);
     if (reason == NULL && needed != NULL && run->sheet->assessed == NULL) {
         reason = arena_format(run->arena, "%s; the sheet names no assessment", needed);
     }
     if (reason != NULL) {
-        result_warn(run->result, CODE_W324, location_line(run->sheet->at), run->number, "%s: %s",
-                    run->sheet->fluid->name, reason);
+        result_warn(run->result, CODE_W324, location_line(run->sheet->at), run->number, "%s", reason);
         tell_no_charge(run, REQUIREMENT_NOT_MET, reason);
         return true;
     }
@@ -122,7 +88,7 @@ static bool refuses(const struct sheet_run *run)
         sheet_add_note(run->result, run->out, "assessed: \"%s\"", run->sheet->assessed);
         if (needed != NULL) {
             result_warn(run->result, CODE_W329, location_line(run->sheet->at), run->number,
-                        "%s: %s; assessed in \"%s\"", run->sheet->fluid->name, needed, run->sheet->assessed);
+                        "%s; assessed in \"%s\"", needed, run->sheet->assessed);
         }
     }
     return false;
@@ -217,7 +183,7 @@ static void add_settled_pressure(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
     struct method_run *method = governing_method(sheet);
-    struct vessel_contents contents;
+    struct contents contents;
     if (!sheet->is_by_ratio &&
         contents_at(run, method, sheet->mass, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
         struct fact *fact = sheet_add_fact(run->result, run->out, "settled-gauge-pressure", contents.pressure,
@@ -299,7 +265,7 @@ static void tell_headline(const struct permissible *sheet)
     const char *opening = is_indicative(sheet) ? "indicative, not for filling: charge" : "permitted charge";
     const char *amount =
         arena_format(run->arena, "filling ratio %s", ratio_words(run, ratio_of_mass(run, sheet->mass)));
-    struct vessel_contents contents;
+    struct contents contents;
     if (!sheet->is_by_ratio && contents_at(run, governing_method(sheet), sheet->mass, SETTLED_TEMPERATURE, &contents) ==
                                    ANSWER_OK) {
         amount = arena_format(run->arena, "%s at 15 degC", shown_text(run, look_gauge(run), contents.pressure));
@@ -433,7 +399,7 @@ static void check_listed(const struct permissible *sheet)
     const struct sheet_run *run = sheet->run;
     struct method_run *method = governing_method(sheet);
     const double temperature = hottest_ruled(sheet);
-    struct vessel_contents contents;
+    struct contents contents;
     struct hand_check *check =
         sheet_add_hand_check(run->result, run->out,
                              arena_format(run->arena, "the listed row's charge, and its pressure at %s, %s",
@@ -461,6 +427,7 @@ void answer_permissible_charge(struct sheet_run *run)
     find_limits(&sheet);
     tell_rules(&sheet);
     tell_limits(&sheet);
+    tell_dew_limits(&sheet);
     tell_listed_row(&sheet);
     if (!sheet.governing.given) {
         tell_undecided(&sheet);

@@ -132,7 +132,7 @@ static void set_amounts(const struct permissible *sheet, struct cell *row, struc
         cell_set(&row[SUMMARY_RATIO], ratio_of_mass(run, rounded));
         return;
     }
-    struct vessel_contents contents;
+    struct contents contents;
     if (method != NULL && rounded > 0.0 &&
         contents_at(run, method, rounded, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
         cell_set(&row[SUMMARY_RATIO], contents.pressure);

@@ -28,12 +28,12 @@ double vessel_symbol(const struct case_vessel *vessel, enum case_symbol symbol)
 struct symbols {
     const struct sheet_run *run;
     double mass;
-    const struct vessel_contents *contents; /* NULL: none needed */
+    const struct contents *contents; /* NULL: none needed */
 };
 
 static double contents_symbol(const struct symbols *symbols, enum case_symbol symbol)
 {
-    const struct vessel_contents *contents = symbols->contents;
+    const struct contents *contents = symbols->contents;
     if (contents == NULL) {
         return (double)NAN;
     }
@@ -41,13 +41,12 @@ static double contents_symbol(const struct symbols *symbols, enum case_symbol sy
         return contents->pressure;
     }
     if (symbol == SYMBOL_VAPOUR_PRESSURE) {
-        return contents->has_saturation ? contents->saturation.pressure : (double)NAN;
+        return contents->edges.high_is_bubble ? contents->edges.high_pressure : (double)NAN;
     }
     if (symbol == SYMBOL_LIQUID_VOLUME) {
         return contents->liquid_fraction;
     }
-    return contents->liquid_molar_volume > 0.0 ? symbols->run->sheet->fluid->molar_mass / contents->liquid_molar_volume
-                                               : (double)NAN;
+    return contents->liquid_density > 0.0 ? contents->liquid_density : (double)NAN;
 }
 
 static double symbol_value(void *context, enum case_symbol symbol)
@@ -144,14 +143,15 @@ static void compare(struct predicate_finding *finding, const struct predicate *p
 
 /* A rule on the liquid's density speaks of the liquid beside vapour: none present, it is met; nothing else present,
  * it is failed. True when that settled it. */
-static bool settle_liquid_density(struct predicate_finding *finding, double molar_volume, double *score)
+static bool settle_liquid_density(struct predicate_finding *finding, double *score)
 {
-    const struct vessel_contents *contents = &finding->worst;
+    const struct contents *contents = &finding->worst;
     if (contents->state == VESSEL_TWO_PHASE) {
         return false;
     }
     if (contents->state == VESSEL_LIQUID_FULL) {
-        decide(finding, false, log(contents->saturation.liquid_volume / molar_volume), "liquid-full", score);
+        decide(finding, false, log(contents->edges.high_volume / contents->molar_volume),
+               "liquid-full", score);
         return true;
     }
     decide(finding, true, (double)INFINITY, "no liquid present", score);
@@ -161,19 +161,17 @@ static bool settle_liquid_density(struct predicate_finding *finding, double mola
 static struct predicate_finding compare_at(const struct sheet_run *run, const struct predicate *predicate, double mass,
                                            struct predicate_finding finding, double *score)
 {
-    const struct vessel_contents *contents = &finding.worst;
+    const struct contents *contents = &finding.worst;
     if (finding.has_contents && contents->state == VESSEL_GAS &&
         (mentions(predicate, SYMBOL_LIQUID_DENSITY) || mentions(predicate, SYMBOL_LIQUID_VOLUME) ||
          mentions(predicate, SYMBOL_VAPOUR_PRESSURE))) {
         return undecided(ANSWER_CANNOT, finding.worst_temperature, "this method knows no liquid");
     }
-    if (mentions(predicate, SYMBOL_VAPOUR_PRESSURE) && !contents->has_saturation) {
+    if (mentions(predicate, SYMBOL_VAPOUR_PRESSURE) && !contents->edges.high_is_bubble) {
         return undecided(ANSWER_CANNOT, finding.worst_temperature,
                          "not applicable: above the critical temperature there is no vapour pressure");
     }
-    if (mentions(predicate, SYMBOL_LIQUID_DENSITY) &&
-        settle_liquid_density(&finding, run->sheet->vessel->water_capacity.value * run->sheet->fluid->molar_mass / mass,
-                              score)) {
+    if (mentions(predicate, SYMBOL_LIQUID_DENSITY) && settle_liquid_density(&finding, score)) {
         return finding;
     }
     struct symbols symbols = {run, mass, finding.has_contents ? contents : NULL};
@@ -193,34 +191,51 @@ static struct predicate_finding compare_at(const struct sheet_run *run, const st
     return finding;
 }
 
-/* `no liquid` asks whether any density up to the vessel's would condense: for a pure gas, whether its density is above
- * the dew density. `one phase` asks about the vessel's own density alone. */
-static struct predicate_finding phases_at(enum predicate_kind kind, double molar_volume,
-                                          struct predicate_finding finding, double *score)
+/* How far, in ln density, the contents lie below the dew point, or above the upper edge; infinite without one. */
+static double below_dew(const struct contents *contents)
 {
-    const struct saturation *saturation = &finding.worst.saturation;
-    switch (finding.worst.state) {
-    case VESSEL_GAS:
-        return undecided(ANSWER_CANNOT, finding.worst_temperature, "this method knows no liquid");
-    case VESSEL_SUPERCRITICAL:
-        decide(&finding, true, (double)INFINITY, "above the critical temperature", score);
-        break;
+    return contents->edges.has_low ? log(contents->molar_volume / contents->edges.low_volume) : (double)INFINITY;
+}
+
+static double above_upper_edge(const struct contents *contents)
+{
+    return contents->edges.has_high ? log(contents->edges.high_volume / contents->molar_volume) : -(double)INFINITY;
+}
+
+static const char *phase_words(const struct contents *contents)
+{
+    switch (contents->state) {
     case VESSEL_VAPOUR:
-        decide(&finding, true, log(molar_volume / saturation->vapour_volume), "vapour", score);
-        break;
-    case VESSEL_TWO_PHASE: {
-        const double below_dew = log(saturation->vapour_volume / molar_volume);
-        const double above_bubble = log(molar_volume / saturation->liquid_volume);
-        decide(&finding, false, kind == PREDICATE_ONE_PHASE ? fmin(below_dew, above_bubble) : below_dew,
-               "vapour + liquid", score);
+        return "vapour";
+    case VESSEL_TWO_PHASE:
+        return "vapour + liquid";
+    case VESSEL_LIQUID_FULL:
+        return "liquid-full";
+    case VESSEL_SUPERCRITICAL:
+    case VESSEL_GAS:
         break;
     }
-    case VESSEL_LIQUID_FULL:
-        decide(&finding, kind == PREDICATE_ONE_PHASE,
-               kind == PREDICATE_ONE_PHASE ? log(saturation->liquid_volume / molar_volume)
-                                           : log(saturation->vapour_volume / molar_volume),
-               "liquid-full", score);
-        break;
+    if (contents->edges.has_high) {
+        return "one phase, would condense in use";
+    }
+    return contents->phases[0].x == NULL ? "above the critical temperature" : "no dew point at this temperature";
+}
+
+/* `no liquid` asks whether any density up to the vessel's would condense: whether its density is above the dew density.
+ * `one phase` asks about the vessel's own density alone. */
+static struct predicate_finding phases_at(enum predicate_kind kind, struct predicate_finding finding, double *score)
+{
+    const struct contents *contents = &finding.worst;
+    if (!contents->edges.is_known) {
+        return undecided(ANSWER_CANNOT, finding.worst_temperature,
+                         contents->state == VESSEL_GAS ? "this method knows no liquid"
+                                                       : "the dew points were not found");
+    }
+    const double low = below_dew(contents), high = above_upper_edge(contents);
+    if (kind == PREDICATE_NO_LIQUID) {
+        decide(&finding, low >= 0.0, low, phase_words(contents), score);
+    } else {
+        decide(&finding, contents->phase_count == 1, fmin(fabs(low), fabs(high)), phase_words(contents), score);
     }
     return finding;
 }
@@ -252,16 +267,25 @@ static bool is_overfull(const struct sheet_run *run, const struct method_run *me
     if (fluid_set_t(method->at_t, method->fluid, temperature) != ANSWER_OK) {
         return false;
     }
-    const double n[] = {mass / run->sheet->fluid->molar_mass};
-    return method->fluid->count == 1 &&
-           run->sheet->vessel->water_capacity.value <= phase_smallest_volume(method->at_t, n);
+    const double amount = mass / method->molar_mass;
+    return run->sheet->vessel->water_capacity.value <= amount * smallest_molar_volume(method);
 }
 
-static struct predicate_finding find_contents(const struct sheet_run *run, struct method_run *method, double mass,
-                                              double temperature, double *score)
+/* Whether more than pressure and density is asked for. */
+static bool needs_edges(const struct predicate *predicate)
+{
+    return predicate->kind != PREDICATE_COMPARE || mentions(predicate, SYMBOL_VAPOUR_PRESSURE) ||
+           mentions(predicate, SYMBOL_LIQUID_DENSITY) || mentions(predicate, SYMBOL_LIQUID_VOLUME);
+}
+
+static struct predicate_finding find_contents(const struct sheet_run *run, struct method_run *method,
+                                              const struct predicate *predicate, double mass, double temperature,
+                                              double *score)
 {
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
-    const enum answer answer = contents_at(run, method, mass, temperature, &finding.worst);
+    const enum answer answer = needs_edges(predicate)
+                                   ? contents_at(run, method, mass, temperature, &finding.worst)
+                                   : pressure_at(run, method, mass, temperature, &finding.worst);
     if (answer == ANSWER_OK) {
         finding.has_contents = true;
     } else if (answer == ANSWER_OUT_OF_RANGE && is_overfull(run, method, mass, temperature)) {
@@ -282,7 +306,7 @@ struct predicate_finding predicate_at(const struct sheet_run *run, struct method
     }
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
     if (predicate->kind != PREDICATE_COMPARE || needs_contents(predicate)) {
-        finding = find_contents(run, method, mass, temperature, score);
+        finding = find_contents(run, method, predicate, mass, temperature, score);
         if (finding.answer != ANSWER_OK || !finding.has_contents) {
             return finding;
         }
@@ -290,8 +314,7 @@ struct predicate_finding predicate_at(const struct sheet_run *run, struct method
     if (predicate->kind == PREDICATE_COMPARE) {
         return compare_at(run, predicate, mass, finding, score);
     }
-    return phases_at(predicate->kind, run->sheet->vessel->water_capacity.value * run->sheet->fluid->molar_mass / mass,
-                     finding, score);
+    return phases_at(predicate->kind, finding, score);
 }
 
 /* ---- a range of temperatures ------------------------------------------------------------------------------------- */

@@ -16,7 +16,7 @@ struct predicate_finding {
     double worst_temperature;     /* K */
     bool is_overfull;             /* fails only because the method knows no state as dense */
     bool has_contents;            /* false for what temperature or mass alone decides, and for an overfull vessel */
-    struct vessel_contents worst; /* the contents there */
+    struct contents worst; /* the contents there */
     const char *words;            /* what was found where a number does not say it ("liquid-full"); may be NULL */
     bool has_window;              /* predicate_largest_mass: some larger mass meets the predicate again */
     double window;                /* kg, such a mass */

@@ -30,11 +30,10 @@ enum {
 double predicate_most_mass(const struct sheet_run *run, struct method_run *method)
 {
     const double volume = run->sheet->vessel->water_capacity.value;
-    const double one_mole[] = {1.0};
-    if (method->fluid->count == 1 && fluid_set_t(method->at_t, method->fluid, SETTLED_TEMPERATURE) == ANSWER_OK) {
-        const double smallest = phase_smallest_volume(method->at_t, one_mole);
+    if (fluid_set_t(method->at_t, method->fluid, SETTLED_TEMPERATURE) == ANSWER_OK) {
+        const double smallest = smallest_molar_volume(method);
         if (smallest > 0.0) {
-            return SHORT_OF_DENSEST * volume * run->sheet->fluid->molar_mass / smallest;
+            return SHORT_OF_DENSEST * volume * method->molar_mass / smallest;
         }
     }
     return DENSEST * volume;
@@ -70,6 +69,21 @@ static void add_trial(struct trials *trials, double mass, double most)
     }
 }
 
+/* Both sides of an edge, where predicates on phases change. */
+static void add_edge_trials(struct trials *trials, bool is_given, double mass, double most)
+{
+    if (is_given) {
+        add_trial(trials, mass * (1.0 - BESIDE_PHASE_CHANGE), most);
+        add_trial(trials, mass * (1.0 + BESIDE_PHASE_CHANGE), most);
+    }
+}
+
+static bool asks_of_phases(const struct predicate *predicate)
+{
+    return predicate->kind == PREDICATE_ONE_PHASE || predicate->kind == PREDICATE_NO_LIQUID ||
+           predicate->kind == PREDICATE_COMPARE;
+}
+
 static int by_mass(const void *left, const void *right)
 {
     const double a = *(const double *)left, b = *(const double *)right;
@@ -85,15 +99,12 @@ static struct trials trial_masses(const struct mass_search *search, double most)
     for (int k = 1; k <= UPPER_STEPS; k++) {
         add_trial(&trials, most * (0.5 + 0.5 * k / UPPER_STEPS), most);
     }
-    struct saturation saturation;
-    if (fluid_set_t(search->method->at_t, search->method->fluid, search->temperature) == ANSWER_OK &&
-        saturation_at_t(search->method->at_t, &saturation) == ANSWER_OK) {
-        const double per_volume =
-            search->run->sheet->vessel->water_capacity.value * search->run->sheet->fluid->molar_mass;
-        add_trial(&trials, per_volume / saturation.vapour_volume * (1.0 - BESIDE_PHASE_CHANGE), most);
-        add_trial(&trials, per_volume / saturation.vapour_volume * (1.0 + BESIDE_PHASE_CHANGE), most);
-        add_trial(&trials, per_volume / saturation.liquid_volume * (1.0 - BESIDE_PHASE_CHANGE), most);
-        add_trial(&trials, per_volume / saturation.liquid_volume * (1.0 + BESIDE_PHASE_CHANGE), most);
+    struct phase_edges edges;
+    if (asks_of_phases(search->predicate) &&
+        edges_at(search->method, search->temperature, &edges) == ANSWER_OK) {
+        const double per_volume = search->run->sheet->vessel->water_capacity.value * search->method->molar_mass;
+        add_edge_trials(&trials, edges.has_low, per_volume / edges.low_volume, most);
+        add_edge_trials(&trials, edges.has_high, per_volume / edges.high_volume, most);
     }
     qsort(trials.masses, trials.count, sizeof *trials.masses, by_mass);
     return trials;

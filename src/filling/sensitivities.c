@@ -9,9 +9,9 @@
 static bool rise_between(const struct sheet_run *run, struct method_run *method, const double mass[2],
                          const double temperature[2], double *rise)
 {
-    struct vessel_contents before, after;
-    if (contents_at(run, method, mass[0], temperature[0], &before) != ANSWER_OK ||
-        contents_at(run, method, mass[1], temperature[1], &after) != ANSWER_OK) {
+    struct contents before, after;
+    if (pressure_at(run, method, mass[0], temperature[0], &before) != ANSWER_OK ||
+        pressure_at(run, method, mass[1], temperature[1], &after) != ANSWER_OK) {
         return false;
     }
     *rise = after.pressure - before.pressure;
@@ -34,15 +34,15 @@ bool rise_per_percent(const struct sheet_run *run, struct method_run *method, do
 bool rise_per_bar_of_fill(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
                           const struct fill_point *fill, double *rise)
 {
-    const double one_mole[] = {1.0};
-    struct phase phase = {0};
-    if (!fill->is_known || fluid_set_t(method->at_t, method->fluid, fill->temperature) != ANSWER_OK ||
-        stable_phase_tp(method->at_t, fill->pressure + ONE_BAR, one_mole, 0, &phase) != ANSWER_OK ||
-        phase.branch == BRANCH_LIQUID) {
+    double molar_volume;
+    bool holds_liquid;
+    if (!fill->is_known ||
+        free_volume_at(method, fill->temperature, fill->pressure + ONE_BAR, &molar_volume, &holds_liquid) !=
+            ANSWER_OK ||
+        holds_liquid) {
         return false;
     }
-    const double raised =
-        run->sheet->vessel->water_capacity.value / phase.volume * run->sheet->fluid->molar_mass;
+    const double raised = run->sheet->vessel->water_capacity.value / molar_volume * method->molar_mass;
     return rise_between(run, method, (double[]){mass, raised}, (double[]){temperature, temperature}, rise);
 }
 

@@ -4,6 +4,7 @@
 #include "filling/classify.h"
 #include "filling/contents_table.h"
 #include "filling/hand_check.h"
+#include "filling/phases_table.h"
 #include "filling/requirement.h"
 #include "filling/sensitivities.h"
 
@@ -24,6 +25,19 @@ struct settled {
 static double hottest(const struct settled *settled)
 {
     return settled->temperatures[settled->count - 1];
+}
+
+/* The coldest temperature asked about, by the sweep or by a requirement. */
+static double coldest(const struct settled *settled)
+{
+    const struct case_sheet *sheet = settled->run->sheet;
+    double coldest = settled->temperatures[0];
+    for (size_t i = 0; i < sheet->requirement_count; i++) {
+        if (sheet->requirements[i].has_temperature) {
+            coldest = fmin(coldest, sheet->requirements[i].from);
+        }
+    }
+    return coldest;
 }
 
 static void choose_temperatures(struct settled *settled)
@@ -187,7 +201,7 @@ static void add_hand_check(const struct settled *settled)
     struct sheet_run *run = settled->run;
     struct method_run *lead = &run->methods[0];
     const double temperature = checked_temperature(settled);
-    struct vessel_contents contents;
+    struct contents contents;
     if (contents_at(run, lead, settled->mass, temperature, &contents) != ANSWER_OK) {
         return;
     }
@@ -228,6 +242,8 @@ void answer_settled_pressure(struct sheet_run *run)
     add_charge_facts(run, lead, settled.mass, basis_of_charge(run));
     add_tables(&settled);
     add_quotes(&settled);
+    add_phases_table(run, lead, settled.mass, settled.temperatures, settled.count);
+    add_liquid_at(run, lead, settled.mass, coldest(&settled));
     add_found(&settled);
     const struct fill_point fill = fill_point_of(run, lead, settled.mass);
     add_sensitivities(run, lead, settled.mass, hottest(&settled), &fill);

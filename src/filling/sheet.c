@@ -1,6 +1,8 @@
 /* What the sheets share: how numbers are shown, warnings of range, contents of the vessel, mass of a charge. */
 #include "filling/sheet.h"
 
+#include "filling/mixture_contents.h"
+
 #include <float.h>
 #include <math.h>
 #include <string.h>
@@ -19,7 +21,7 @@ enum { TEMPERATURE_DECIMALS = 2, AMOUNT_DECIMALS = 2, MOST_DECIMALS = 12 };
 struct method_run method_run_create(const struct case_fluid *fluid, const char *method, bool may_govern,
                                     struct arena *arena)
 {
-    struct method_run run = {.name = method};
+    struct method_run run = {.name = method, .molar_mass = fluid->molar_mass, .z = fluid->fractions};
     run.fluid = fluid_create(method, &fluid->spec, arena, &run.lack);
     if (run.fluid == NULL) {
         return run;
@@ -27,7 +29,9 @@ struct method_run method_run_create(const struct case_fluid *fluid, const char *
     run.may_govern = may_govern && (run.fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
     run.at_t = fluid_at_t_create(run.fluid, arena);
     run.has_critical =
-        run.fluid->ops->critical != NULL && run.fluid->ops->critical(run.fluid, &run.critical) == ANSWER_OK;
+        fluid->count == 1 && run.fluid->ops->critical != NULL &&
+        run.fluid->ops->critical(run.fluid, &run.critical) == ANSWER_OK;
+    run.mixture = fluid->count == 1 ? NULL : mixture_work_create(fluid, method, arena);
     return run;
 }
 
@@ -152,38 +156,26 @@ bool warn_outside_range(const struct sheet_run *run, const struct method_run *me
 
 /* ---- the vessel and its charge --------------------------------------------------------------------------------- */
 
-enum answer contents_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
-                        struct vessel_contents *out)
+/* One phase that is not of a gas, by pressure and volume of the charge's own statement. */
+static void warn_of_liquid(const struct sheet_run *run, const struct case_charge *charge, enum code code,
+                           double pressure, const char *words)
 {
-    if (method->fluid == NULL || run->sheet->vessel == NULL) {
-        return ANSWER_CANNOT;
-    }
-    const enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
-    const double amount = mass / run->sheet->fluid->molar_mass;
-    return closed_vessel_at_tv(method->at_t, run->sheet->vessel->water_capacity.value, amount, out);
+    result_warn(run->result, code, location_line(charge->origin.at), run->number,
+                "charge %s: at %s and %s %s is %s", charge->name, shown_text(run, look_pressure(run), pressure),
+                shown_text(run, look_temperature(run), charge->temperature), run->sheet->fluid->name, words);
 }
 
-/* Molar volume of the lead method's stable phase. */
-static enum answer stable_molar_volume(const struct sheet_run *run, double temperature, double pressure,
-                                       double *molar_volume, enum branch *branch)
+/* Molar volume by the lead method, which alone turns pressures and volumes into mass. */
+static enum answer lead_molar_volume(const struct sheet_run *run, double temperature, double pressure,
+                                     double *molar_volume, bool *holds_liquid)
 {
     struct method_run *lead = &run->methods[0];
     if (lead->fluid == NULL) {
         return ANSWER_CANNOT;
     }
-    const double one = 1.0;
-    struct phase phase = {0};
-    enum answer answer = fluid_set_t(lead->at_t, lead->fluid, temperature);
-    if (answer == ANSWER_OK) {
-        answer = stable_phase_tp(lead->at_t, pressure, &one, 0, &phase);
-    }
+    const enum answer answer = free_volume_at(lead, temperature, pressure, molar_volume, holds_liquid);
     if (answer == ANSWER_OK) {
         warn_outside_range(run, lead, temperature, pressure);
-        *molar_volume = phase.volume;
-        *branch = phase.branch;
     }
     return answer;
 }
@@ -191,18 +183,17 @@ static enum answer stable_molar_volume(const struct sheet_run *run, double tempe
 static enum answer mass_by_pressure(const struct sheet_run *run, const struct case_charge *charge, double *mass)
 {
     double molar_volume;
-    enum branch branch;
+    bool holds_liquid;
     const enum answer answer =
-        stable_molar_volume(run, charge->temperature, charge->amount.value, &molar_volume, &branch);
+        lead_molar_volume(run, charge->temperature, charge->amount.value, &molar_volume, &holds_liquid);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *mass = charge->vessel->water_capacity.value / molar_volume * charge->fluid->molar_mass;
-    if (branch == BRANCH_LIQUID) {
-        result_warn(run->result, CODE_W304, location_line(charge->origin.at), run->number,
-                    "charge %s: at %s and %s %s is a liquid, and the vessel is taken as full of it", charge->name,
-                    shown_text(run, look_pressure(run), charge->amount.value),
-                    shown_text(run, look_temperature(run), charge->temperature), charge->fluid->name);
+    *mass = charge->vessel->water_capacity.value / molar_volume * run->sheet->fluid->molar_mass;
+    if (holds_liquid) {
+        warn_of_liquid(run, charge, CODE_W304, charge->amount.value,
+                       run->sheet->fluid->count == 1 ? "a liquid, and the vessel is taken as full of it"
+                                                     : "not all gas, and the vessel is taken as full of it all");
     }
     return ANSWER_OK;
 }
@@ -210,18 +201,17 @@ static enum answer mass_by_pressure(const struct sheet_run *run, const struct ca
 static enum answer mass_by_volume(const struct sheet_run *run, const struct case_charge *charge, double *mass)
 {
     double molar_volume;
-    enum branch branch;
+    bool holds_liquid;
     const enum answer answer =
-        stable_molar_volume(run, charge->temperature, charge->pressure, &molar_volume, &branch);
+        lead_molar_volume(run, charge->temperature, charge->pressure, &molar_volume, &holds_liquid);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *mass = charge->amount.value / molar_volume * charge->fluid->molar_mass;
-    if (branch == BRANCH_LIQUID) {
-        result_warn(run->result, CODE_W305, location_line(charge->origin.at), run->number,
-                    "charge %s: at %s and %s %s is a liquid; its volume is taken as liquid volume", charge->name,
-                    shown_text(run, look_pressure(run), charge->pressure),
-                    shown_text(run, look_temperature(run), charge->temperature), charge->fluid->name);
+    *mass = charge->amount.value / molar_volume * run->sheet->fluid->molar_mass;
+    if (holds_liquid) {
+        warn_of_liquid(run, charge, CODE_W305, charge->pressure,
+                       run->sheet->fluid->count == 1 ? "a liquid; its volume is taken as liquid volume"
+                                                     : "not all gas; its volume is taken as that of gas and liquid");
     }
     return ANSWER_OK;
 }
@@ -244,7 +234,7 @@ enum answer charge_mass(const struct sheet_run *run, const struct case_charge *c
         *mass = amount * charge->vessel->water_capacity.value;
         return ANSWER_OK;
     case FILL_MOLES:
-        *mass = amount * charge->fluid->molar_mass;
+        *mass = amount * run->sheet->fluid->molar_mass;
         return ANSWER_OK;
     }
     return ANSWER_CANNOT;

@@ -6,10 +6,11 @@
 #define TAREWRIGHT_FILLING_SHEET_H
 
 #include "case/case.h"
-#include "equilibrium/closed_vessel.h"
-#include "equilibrium/saturation.h"
+#include "filling/contents.h"
 #include "fluid/fluid.h"
 #include "result/result.h"
+
+struct mixture_work;
 
 /* One method at work on the sheet's fluid. `fluid` is NULL when the method cannot serve it (`lack` says why). */
 struct method_run {
@@ -17,9 +18,12 @@ struct method_run {
     const struct fluid *fluid;
     struct fluid_at_t *at_t;     /* workspace; its temperature changes with every question */
     struct fluid_lack_report lack;
-    bool has_critical;
+    bool has_critical;           /* of a pure gas */
     struct critical_point critical;
     bool may_govern;
+    double molar_mass;           /* kg/mol, of the whole */
+    const double *z;             /* [fluid->count], mole fractions of the whole */
+    struct mixture_work *mixture; /* NULL: a pure gas */
 };
 
 /* Listed rows held against the computation, over all sheets. */
@@ -66,7 +70,23 @@ bool warn_outside_range(const struct sheet_run *run, const struct method_run *me
 
 /* The contents of the sheet's vessel with `mass` kg at `temperature` by one method. */
 enum answer contents_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
-                        struct vessel_contents *out);
+                        struct contents *out);
+
+/* The same for who asks for pressure and amounts alone: the edges of a mixture are left unknown, which saves most of
+ * the work, and its one phase is told VESSEL_SUPERCRITICAL. */
+enum answer pressure_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
+                        struct contents *out);
+
+/* The edges at `temperature`. */
+enum answer edges_at(struct method_run *method, double temperature, struct phase_edges *out);
+
+/* The fluid, free to expand, at `temperature` and `pressure`: molar volume of the whole (m3/mol); *holds_liquid when a
+ * liquid is all or part of it. */
+enum answer free_volume_at(struct method_run *method, double temperature, double pressure, double *molar_volume,
+                           bool *holds_liquid);
+
+/* The smallest volume (m3) that the method knows for one mole at the temperature set last; 0 where there is none. */
+double smallest_molar_volume(const struct method_run *method);
 
 /* A charge's mass in kg, by the lead method where it was given by pressure or by volume. */
 enum answer charge_mass(const struct sheet_run *run, const struct case_charge *charge, double *mass);

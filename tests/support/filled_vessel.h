@@ -77,14 +77,10 @@ static inline struct filled_vessel *filled_vessel_create(void)
 static inline struct method_run *filled_vessel_method(struct filled_vessel *it, const char *name)
 {
     struct method_run *method = &it->methods[it->run.method_count++];
-    *method = (struct method_run){.name = name, .may_govern = strcmp(name, "ideal-gas") != 0};
-    method->fluid = fluid_create(name, &it->fluid.spec, it->arena, &method->lack);
+    *method = method_run_create(&it->fluid, name, true, it->arena);
     if (method->fluid == NULL) {
         abort();
     }
-    method->at_t = fluid_at_t_create(method->fluid, it->arena);
-    method->has_critical = method->fluid->ops->critical != NULL &&
-                           method->fluid->ops->critical(method->fluid, &method->critical) == ANSWER_OK;
     return method;
 }
 

@@ -1,0 +1,52 @@
+/* A mixture in a closed vessel, where it condenses at a temperature, and how it stands free to expand.
+ *
+ * `method->at_t` has its temperature set. Nothing is allocated after mixture_work_create.
+ */
+#ifndef TAREWRIGHT_FILLING_MIXTURE_CONTENTS_H
+#define TAREWRIGHT_FILLING_MIXTURE_CONTENTS_H
+
+#include "filling/sheet.h"
+
+/* Memory for one method's answers on one mixture. */
+struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const char *method, struct arena *arena);
+
+/* The same method for component i by itself; its `fluid` is NULL where it lacks data. */
+struct method_run *mixture_alone(struct method_run *method, size_t i);
+
+/* The method's split at the temperature set and `pressure`, in its memory until its next question. */
+struct split;
+enum answer mixture_split(struct method_run *method, double pressure, const struct split **out);
+
+/* `amount` mol in `volume` m3. The answer is stable against any further phase. */
+enum answer mixture_contents(struct method_run *method, double volume, double amount, bool with_edges,
+                             struct contents *out);
+
+/* A state of the fluid at overall composition that just touches a second phase, its other one. */
+struct phase_edge {
+    bool opens;              /* with rising density: one phase ends here; else it begins again */
+    bool other_is_lighter;   /* a bubble point; else a dew point */
+    double pressure;         /* Pa */
+    double molar_volume;     /* m3/mol, of the whole as one phase */
+    double other_volume;     /* m3/mol; 0 where the other phase was not caught */
+    double *other;           /* [count], mole fractions */
+};
+
+enum { MOST_EDGES = 8 };
+
+struct edge_list {
+    size_t count; /* by rising density */
+    struct phase_edge items[MOST_EDGES];
+};
+
+/* All edges at the temperature set, in the method's memory until it is asked at another temperature. */
+enum answer mixture_edge_list(struct method_run *method, const struct edge_list **out);
+
+/* The lowest and the highest of them, kept for many temperatures; without compositions. */
+enum answer mixture_edges(struct method_run *method, struct phase_edges *out);
+
+enum answer mixture_free_volume(struct method_run *method, double pressure, double *molar_volume, bool *holds_liquid);
+
+/* kg/mol of a phase with these mole fractions. */
+double mixture_molar_mass(const struct method_run *method, const double x[]);
+
+#endif
