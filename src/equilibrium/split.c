@@ -8,8 +8,8 @@
  * Unknowns are scaled by sqrt(n_ik), which makes an ideal split's Hessian nearly the unit matrix (Michelsen, Fluid
  * Phase Equilib. 9 (1982) 21; Michelsen and Mollerup, Thermodynamic Models, 2nd ed., chapter 10).
  */
-#include "equilibrium/split.h"
 #include "equilibrium/linear.h"
+#include "equilibrium/split_internal.h"
 
 #include <math.h>
 
@@ -46,16 +46,6 @@ enum {
 #define SAME_PHASE    1e-7
 #define SIMILAR_PHASE 0.05
 
-struct flash {
-    const struct fluid_at_t *at_t;
-    double pressure;
-    struct equilibrium_workspace *ws;
-    struct split *out;
-    size_t phases;
-    double gibbs;    /* against the feed as one phase */
-    double residual; /* largest |g| */
-};
-
 /* ---- the phases at hand ---------------------------------------------------------------------------------------- */
 
 static double sum_of(const double n[], size_t count)
@@ -75,6 +65,13 @@ static double molar_volume_of(const struct phase *phase)
 static enum answer evaluate_phase(struct flash *f, size_t k, unsigned want, const double amounts[])
 {
     f->out->evaluations++;
+    if (f->is_gas_over_liquid) {
+        const enum branch branch = k == 0 ? BRANCH_VAPOUR : BRANCH_LIQUID;
+        const enum answer answer = phase_tp(f->at_t, f->pressure, amounts, branch, want, f->ws->phase[k]);
+        if (answer != ANSWER_NO_SUCH_ROOT) {
+            return answer;
+        }
+    }
     return phase_tp(f->at_t, f->pressure, amounts, BRANCH_STABLE, want, f->ws->phase[k]);
 }
 
@@ -92,7 +89,7 @@ static double gibbs_of(struct equilibrium_workspace *ws, size_t k, const double 
     return gibbs;
 }
 
-static enum answer evaluate(struct flash *f, unsigned want, double *const amounts[], double *gibbs)
+enum answer flash_evaluate(struct flash *f, unsigned want, double *const amounts[], double *gibbs)
 {
     *gibbs = 0.0;
     for (size_t k = 0; k < f->phases; k++) {
@@ -105,7 +102,7 @@ static enum answer evaluate(struct flash *f, unsigned want, double *const amount
     return isfinite(*gibbs) ? ANSWER_OK : ANSWER_FAILED;
 }
 
-static size_t rest_phase(const struct flash *f, size_t i)
+size_t flash_rest_phase(const struct flash *f, size_t i)
 {
     size_t rest = 0;
     for (size_t k = 1; k < f->phases; k++) {
@@ -162,16 +159,11 @@ static bool substitute_to_gain(struct flash *f)
 
 /* ---- second-order steps ---------------------------------------------------------------------------------------- */
 
-/* The unknowns in order: component by component, phases other than its rest phase. */
-struct unknown {
-    size_t i, phase, rest;
-};
-
-static struct unknown unknown_at(const struct flash *f, size_t index)
+struct unknown flash_unknown_at(const struct flash *f, size_t index)
 {
     const size_t others = f->phases - 1;
     struct unknown u = {.i = f->ws->active[index / others]};
-    u.rest = rest_phase(f, u.i);
+    u.rest = flash_rest_phase(f, u.i);
     u.phase = index % others;
     if (u.phase >= u.rest) {
         u.phase++;
@@ -179,7 +171,7 @@ static struct unknown unknown_at(const struct flash *f, size_t index)
     return u;
 }
 
-static size_t unknowns_of(const struct flash *f)
+size_t flash_unknowns_of(const struct flash *f)
 {
     return (f->phases - 1) * f->ws->active_count;
 }
@@ -208,26 +200,26 @@ static double hessian_entry(const struct equilibrium_workspace *ws, struct unkno
     return sum;
 }
 
-static void set_hessian(const struct flash *f, double shift)
+void flash_set_hessian(const struct flash *f, double shift)
 {
     struct equilibrium_workspace *ws = f->ws;
-    const size_t size = unknowns_of(f);
+    const size_t size = flash_unknowns_of(f);
     for (size_t a = 0; a < size; a++) {
-        const struct unknown u = unknown_at(f, a);
+        const struct unknown u = flash_unknown_at(f, a);
         for (size_t b = 0; b <= a; b++) {
-            ws->matrix[a * size + b] = ws->scale[a] * ws->scale[b] * hessian_entry(ws, u, unknown_at(f, b));
+            ws->matrix[a * size + b] = ws->scale[a] * ws->scale[b] * hessian_entry(ws, u, flash_unknown_at(f, b));
         }
         ws->matrix[a * size + a] += shift;
     }
 }
 
 /* The gradient, its largest entry, and the scales. */
-static void set_gradient(struct flash *f, double *g)
+void flash_set_gradient(struct flash *f, double *g)
 {
     struct equilibrium_workspace *ws = f->ws;
     f->residual = 0.0;
-    for (size_t a = 0; a < unknowns_of(f); a++) {
-        const struct unknown u = unknown_at(f, a);
+    for (size_t a = 0; a < flash_unknowns_of(f); a++) {
+        const struct unknown u = flash_unknown_at(f, a);
         g[a] = ws->phase[u.phase]->ln_f_over_x[u.i] - ws->phase[u.rest]->ln_f_over_x[u.i];
         ws->scale[a] = sqrt(ws->amounts[u.phase][u.i]);
         f->residual = fmax(f->residual, fabs(g[a]));
@@ -239,9 +231,9 @@ static void set_gradient(struct flash *f, double *g)
 static bool solve_step(struct flash *f, double shift)
 {
     struct equilibrium_workspace *ws = f->ws;
-    const size_t size = unknowns_of(f);
+    const size_t size = flash_unknowns_of(f);
     double square = 0.0;
-    set_hessian(f, shift);
+    flash_set_hessian(f, shift);
     if (!linear_factor(ws->matrix, size)) {
         return false;
     }
@@ -261,11 +253,11 @@ static double newton_step(struct flash *f)
 {
     struct equilibrium_workspace *ws = f->ws;
     double shift = 0.0, decrease = 0.0;
-    set_gradient(f, ws->border);
+    flash_set_gradient(f, ws->border);
     for (int k = 0; !solve_step(f, shift) && k < MOST_SHIFTS; k++) {
         shift = shift > 0.0 ? 10.0 * shift : 1e-10;
     }
-    for (size_t a = 0; a < unknowns_of(f); a++) {
+    for (size_t a = 0; a < flash_unknowns_of(f); a++) {
         ws->step[a] *= ws->scale[a];
         decrease -= 0.5 * ws->step[a] * ws->border[a];
     }
@@ -273,11 +265,11 @@ static double newton_step(struct flash *f)
 }
 
 /* The largest change of an amount relative to itself. */
-static double largest_change(const struct flash *f)
+double flash_largest_change(const struct flash *f)
 {
     double largest = 0.0;
-    for (size_t a = 0; a < unknowns_of(f); a++) {
-        const struct unknown u = unknown_at(f, a);
+    for (size_t a = 0; a < flash_unknowns_of(f); a++) {
+        const struct unknown u = flash_unknown_at(f, a);
         largest = fmax(largest, fabs(f->ws->step[a]) / f->ws->amounts[u.phase][u.i]);
     }
     return largest;
@@ -286,20 +278,20 @@ static double largest_change(const struct flash *f)
 /* `part` of the step, into ws->candidate. An amount that shrinks does so as n / (1 - change / n), the same to first
  * order, and never reaches zero; one that grows does so by a limited factor. False when a component's rest would not
  * stay well above zero. */
-static bool take_step(const struct flash *f, double part)
+bool flash_take_step(const struct flash *f, double part)
 {
     struct equilibrium_workspace *ws = f->ws;
     const size_t others = f->phases - 1;
-    for (size_t a = 0; a < unknowns_of(f); a += others) {
+    for (size_t a = 0; a < flash_unknowns_of(f); a += others) {
         const size_t i = ws->active[a / others];
         double rest = ws->feed[i];
         for (size_t b = a; b < a + others; b++) {
-            const size_t k = unknown_at(f, b).phase;
+            const size_t k = flash_unknown_at(f, b).phase;
             const double n = ws->amounts[k][i], change = part * ws->step[b];
             ws->candidate[k][i] = change < 0.0 ? n / (1.0 - change / n) : n + fmin(change, LARGEST_GROWTH * n);
             rest -= ws->candidate[k][i];
         }
-        const size_t r = rest_phase(f, i);
+        const size_t r = flash_rest_phase(f, i);
         ws->candidate[r][i] = rest;
         if (!(rest > 0.1 * ws->amounts[r][i])) {
             return false;
@@ -308,7 +300,7 @@ static bool take_step(const struct flash *f, double part)
     return true;
 }
 
-static void accept_candidate(struct equilibrium_workspace *ws, size_t phases)
+void flash_accept_candidate(struct equilibrium_workspace *ws, size_t phases)
 {
     for (size_t k = 0; k < phases; k++) {
         double *const kept = ws->amounts[k];
@@ -323,16 +315,16 @@ static bool descend(struct flash *f, double decrease, unsigned want)
     double part = 1.0;
     for (int k = 0; k < MOST_HALVINGS; k++, part *= 0.3) {
         double gibbs;
-        if (!take_step(f, part) || evaluate(f, want, f->ws->candidate, &gibbs) != ANSWER_OK) {
+        if (!flash_take_step(f, part) || flash_evaluate(f, want, f->ws->candidate, &gibbs) != ANSWER_OK) {
             continue;
         }
         if (gibbs <= f->gibbs + GIBBS_ROUNDING || decrease < GIBBS_ROUNDING) {
             f->gibbs = gibbs;
-            accept_candidate(f->ws, f->phases);
+            flash_accept_candidate(f->ws, f->phases);
             return true;
         }
     }
-    return evaluate(f, want, f->ws->amounts, &f->gibbs) == ANSWER_OK && false;
+    return flash_evaluate(f, want, f->ws->amounts, &f->gibbs) == ANSWER_OK && false;
 }
 
 /* ---- phases that come and go ----------------------------------------------------------------------------------- */
@@ -373,8 +365,8 @@ static double difference_of(const struct equilibrium_workspace *ws, size_t k, si
 static double growth_of(const struct flash *f, size_t k)
 {
     double change = 0.0;
-    for (size_t a = 0; a < unknowns_of(f); a++) {
-        const struct unknown u = unknown_at(f, a);
+    for (size_t a = 0; a < flash_unknowns_of(f); a++) {
+        const struct unknown u = flash_unknown_at(f, a);
         change += u.phase == k ? f->ws->step[a] : 0.0;
         change -= u.rest == k ? f->ws->step[a] : 0.0;
     }
@@ -433,14 +425,15 @@ static bool make_do(struct flash *f)
         return false;
     }
     set_ratios_from_coefficients(f->ws);
-    return substitute(f, 2) && evaluate(f, PHASE_LN_PHI | PHASE_DLN_PHI_DN, f->ws->amounts, &f->gibbs) == ANSWER_OK;
+    return substitute(f, 2) &&
+           flash_evaluate(f, PHASE_LN_PHI | PHASE_DLN_PHI_DN, f->ws->amounts, &f->gibbs) == ANSWER_OK;
 }
 
 /* From the amounts at hand; ends with fewer phases where some were superfluous, at best with one. */
 static enum answer minimise(struct flash *f)
 {
     const unsigned want = PHASE_LN_PHI | PHASE_DLN_PHI_DN;
-    enum answer answer = evaluate(f, want, f->ws->amounts, &f->gibbs);
+    enum answer answer = flash_evaluate(f, want, f->ws->amounts, &f->gibbs);
     double last = HUGE_VAL;
     for (int step = 0; step < MOST_STEPS && answer == ANSWER_OK; step++) {
         f->out->steps++;
@@ -451,16 +444,16 @@ static enum answer minimise(struct flash *f)
             if (f->phases == 1) {
                 return ANSWER_OK;
             }
-            answer = evaluate(f, want, f->ws->amounts, &f->gibbs);
+            answer = flash_evaluate(f, want, f->ws->amounts, &f->gibbs);
             continue;
         }
-        const double change = largest_change(f);
+        const double change = flash_largest_change(f);
         const bool is_last = change <= LAST_STEP || (f->residual <= ROUNDING && change > 0.5 * last);
         if (!descend(f, decrease, is_last ? (unsigned)PHASE_LN_PHI : want) && !make_do(f)) {
             return ANSWER_FAILED;
         }
         if (is_last) {
-            set_gradient(f, f->ws->border);
+            flash_set_gradient(f, f->ws->border);
             return f->residual <= SPLIT_LN_F_TOLERANCE ? ANSWER_OK : ANSWER_FAILED;
         }
         last = change;
@@ -471,7 +464,7 @@ static enum answer minimise(struct flash *f)
 /* ---- proof, and phases that were missing ----------------------------------------------------------------------- */
 
 /* The plane through the phases at hand: of each component, where it is most plentiful. */
-static enum answer prove(struct flash *f, struct stability *found)
+enum answer flash_prove(struct flash *f, struct stability *found)
 {
     struct equilibrium_workspace *ws = f->ws;
     struct known_phases known = {.count = f->phases};
@@ -481,7 +474,7 @@ static enum answer prove(struct flash *f, struct stability *found)
     }
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
-        ws->d[i] = ws->phase[rest_phase(f, i)]->ln_f_over_x[i];
+        ws->d[i] = ws->phase[flash_rest_phase(f, i)]->ln_f_over_x[i];
     }
     const enum answer answer = stability_of_plane(f->at_t, f->pressure, &known, STABILITY_DECIDE, ws, found);
     f->out->smallest_tpd = found->has_incipient ? found->smallest_tpd : 0.0;
@@ -529,7 +522,7 @@ static double gibbs_with(struct flash *f, const double w[], size_t source, doubl
     double gibbs;
     take_out(f, w, source, taken);
     f->phases++;
-    const enum answer answer = evaluate(f, PHASE_LN_PHI, f->ws->candidate, &gibbs);
+    const enum answer answer = flash_evaluate(f, PHASE_LN_PHI, f->ws->candidate, &gibbs);
     f->phases--;
     return answer == ANSWER_OK ? gibbs : HUGE_VAL;
 }
@@ -570,7 +563,7 @@ static void add_phase(struct flash *f, const double w[], double tpd)
         take_out(f, w, f->phases, estimated_amount(f, w, tpd));
     }
     f->phases++;
-    accept_candidate(f->ws, f->phases);
+    flash_accept_candidate(f->ws, f->phases);
 }
 
 /* Two phases from the feed and an incipient phase w: its ratios to the feed, shifted to the middle of those that admit
@@ -590,7 +583,7 @@ static bool start_from_incipient(struct flash *f, const double w[])
     return substitute_to_gain(f);
 }
 
-static void set_single_phase(struct flash *f)
+void flash_set_single_phase(struct flash *f)
 {
     struct equilibrium_workspace *ws = f->ws;
     f->phases = 1;
@@ -617,7 +610,7 @@ static enum answer minimise_with(struct flash *f, const struct stability *found)
         return minimise(f);
     }
     if (is_first) {
-        set_single_phase(f);
+        flash_set_single_phase(f);
     }
     if (f->phases == MOST_PHASES) {
         return ANSWER_FAILED;
@@ -627,11 +620,11 @@ static enum answer minimise_with(struct flash *f, const struct stability *found)
 }
 
 /* From the phases at hand, one or more, until none is missing. */
-static enum answer complete(struct flash *f)
+enum answer flash_complete(struct flash *f)
 {
     for (int round = 0; round < MOST_ROUNDS; round++) {
         struct stability found;
-        enum answer answer = prove(f, &found);
+        enum answer answer = flash_prove(f, &found);
         if (answer != ANSWER_OK) {
             return answer;
         }
@@ -644,7 +637,7 @@ static enum answer complete(struct flash *f)
             return answer;
         }
         if (f->phases == 1) {
-            set_single_phase(f);
+            flash_set_single_phase(f);
             if (!(found.smallest_tpd < -SPLIT_LEAST_TPD)) {
                 return ANSWER_OK; /* below the plane by no more than a split could gain */
             }
@@ -670,7 +663,7 @@ static void report_phase(const struct flash *f, size_t k, struct split_phase *ou
 }
 
 /* Lightest first; few enough for the plainest way. */
-static void report(const struct flash *f)
+void flash_report(const struct flash *f)
 {
     struct split *out = f->out;
     size_t order[MOST_PHASES];
@@ -701,7 +694,7 @@ struct split *split_create(size_t count, struct arena *arena)
 }
 
 /* The feed as one phase, and everything a flash counts from zero. */
-static enum answer begin(struct flash *f, const double z[])
+enum answer flash_begin(struct flash *f, const double z[])
 {
     struct equilibrium_workspace *ws = f->ws;
     struct split *out = f->out;
@@ -740,13 +733,13 @@ static bool start_from_guess(struct flash *f)
 static enum answer finish(struct flash *f, enum answer answer)
 {
     if (answer != ANSWER_OK || f->phases == 1) {
-        set_single_phase(f);
+        flash_set_single_phase(f);
     }
     if (f->ws->active_count > 1) {
-        answer = complete(f);
+        answer = flash_complete(f);
     }
     if (answer == ANSWER_OK) {
-        report(f);
+        flash_report(f);
     }
     return answer;
 }
@@ -755,7 +748,7 @@ enum answer split_at_tp(const struct fluid_at_t *at_t, double pressure, const do
                         struct equilibrium_workspace *ws, struct split *out)
 {
     struct flash f = {.at_t = at_t, .pressure = pressure, .ws = ws, .out = out, .phases = 1};
-    const enum answer answer = begin(&f, z);
+    const enum answer answer = flash_begin(&f, z);
     if (answer != ANSWER_OK) {
         return answer;
     }

@@ -35,6 +35,7 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
     ws->step = vector(unknowns, arena);
     ws->scale = vector(unknowns, arena);
     ws->border = vector(unknowns, arena);
+    ws->partial_volume = vector(unknowns, arena);
     return ws;
 }
 
