@@ -212,6 +212,18 @@ static struct pure_spec spec_of(struct elaboration *e, const struct case_compone
     };
 }
 
+/* Parameters and groups count as used only once a method asks for them; a block of nothing else does not either. */
+static bool is_deferred(const struct statement *block)
+{
+    for (const struct statement *at = block->block; at != NULL; at = at->next) {
+        const struct vocabulary_row *row = vocabulary_find(BLOCK_COMPONENT, at->word);
+        if (row == NULL || (row->id != WORD_COMPONENT_PARAMETERS && row->id != WORD_COMPONENT_GROUPS)) {
+            return false;
+        }
+    }
+    return true;
+}
+
 /* Blocks of the library first, so that the deck's own word counts wherever it stands. */
 static void read_blocks(struct elaboration *e, const struct named *named, const char *group,
                         struct component_target *target)
@@ -220,7 +232,9 @@ static void read_blocks(struct elaboration *e, const struct named *named, const 
         for (size_t i = 0; i < named->count; i++) {
             const struct statement *block = named->items[i];
             if (block->at.file->is_library == (own == 0) && require_block(e, block)) {
-                mark_file_used(e, block->at);
+                if (!is_deferred(block)) {
+                    mark_file_used(e, block->at);
+                }
                 read_block(e, &COMPONENT, group, block, target);
             }
         }
