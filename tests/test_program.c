@@ -197,6 +197,8 @@ static void what_is_known_of_a_gas_is_shown_with_sources(void **state)
     assert_non_null(strstr(scene->output, "critical-temperature"));
     assert_non_null(strstr(scene->output, "304.1282 K"));
     assert_non_null(strstr(scene->output, "(1996) 1509"));
+    assert_non_null(strstr(scene->output, "carbon-dioxide, peng-robinson-twu"));
+    assert_non_null(strstr(scene->output, "Bell"));
     RUN(scene, "show", "gas", "carbon-dioxid");
     assert_int_equal(scene->status, 2);
     assert_non_null(strstr(scene->messages, "carbon-dioxide"));

@@ -46,10 +46,25 @@ static struct data_row *add_row(struct result *result, const char *group, const 
     return row;
 }
 
+/* A source that values shown name, once. */
+static void cite(struct result *result, const struct case_source *source)
+{
+    for (size_t i = 0; i < result->sources.count; i++) {
+        if (strcmp(result->sources.items[i].key, source->key) == 0) {
+            return;
+        }
+    }
+    *ARENA_APPEND(result->arena, &result->sources) =
+        (struct source_row){source->key, source->citation, source->is_unverified};
+}
+
 static void set_source(struct result *result, struct data_row *row, const struct case_source *source,
                        struct location at)
 {
     row->source = source ? source->key : NULL;
+    if (source) {
+        cite(result, source);
+    }
     if (!source && at.file) {
         row->source = arena_format(result->arena, "%s, line %zu", at.file->name, location_line(at));
     }
@@ -93,7 +108,44 @@ static void add_equation(struct result *result, const struct case_component *com
                                    arena_format(result->arena, "%zu terms, %g K to %g K, to %g MPa",
                                                 equation->residual_count, equation->smallest_temperature,
                                                 equation->largest_temperature, equation->largest_pressure / 1e6));
-    row->source = component->equation_source ? component->equation_source->key : NULL;
+    set_source(result, row, component->equation_source, (struct location){.file = NULL});
+}
+
+static void add_set(struct result *result, const char *group, const struct case_cubic_set *set)
+{
+    const struct {
+        const char *name;
+        const struct quantity *quantity;
+    } rows[] = {
+        {"critical-temperature", &set->critical_temperature},
+        {"critical-pressure", &set->critical_pressure},
+        {"twu L", &set->twu[0]},
+        {"twu M", &set->twu[1]},
+        {"twu N", &set->twu[2]},
+        {"covolume A", &set->covolume_A},
+        {"covolume B", &set->covolume_B},
+        {"shift", &set->shift},
+    };
+    const char *own_group = arena_format(result->arena, "%s, %s", group, set->method);
+    for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
+        add_quantity(result, own_group, rows[i].name, rows[i].quantity);
+    }
+}
+
+/* What cubic methods take of the gas beyond its constants. */
+static void add_parameters(struct result *result, const struct case_component *component)
+{
+    struct text groups = {.arena = result->arena};
+    for (size_t i = 0; i < component->group_count; i++) {
+        text_format(&groups, "%s%s %g", i == 0 ? "" : ", ", component->groups[i].name, component->groups[i].number);
+    }
+    if (component->group_count != 0) {
+        struct data_row *row = add_row(result, component->name, "groups", groups.bytes);
+        set_source(result, row, component->groups_origin.source, component->groups_origin.at);
+    }
+    for (size_t i = 0; i < component->cubic_set_count; i++) {
+        add_set(result, component->name, &component->cubic_sets[i]);
+    }
 }
 
 static void add_component(struct result *result, const struct case_component *component)
@@ -117,6 +169,7 @@ static void add_component(struct result *result, const struct case_component *co
     add_quantity(result, group, "boiling-temperature", &component->boiling_temperature);
     add_quantity(result, group, "dipole", &component->dipole);
     add_equation(result, component);
+    add_parameters(result, component);
 }
 
 static void add_listed_row(struct result *result, const char *group, const struct listed_row *listed)
@@ -155,9 +208,7 @@ static void describe(struct run *run, const struct case_tree *tree)
         add_entry(result, sheet->entries[i]);
     }
     for (size_t i = 0; i < tree->source_count; i++) {
-        const struct case_source *source = tree->sources[i];
-        *ARENA_APPEND(run->arena, &result->sources) =
-            (struct source_row){source->key, source->citation, source->is_unverified};
+        cite(result, tree->sources[i]);
     }
     report_data(result, &run->output);
 }
