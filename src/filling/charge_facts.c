@@ -89,9 +89,9 @@ struct liquid_end_found add_liquid_end(const struct sheet_run *run, struct metho
             method->name;
         break;
     case LIQUID_END_BELOW:
-        sheet_add_words(result, run->out, end_name(method),
-                        arena_format(run->arena, "one phase down to %s",
-                                     shown_text(run, look_temperature(run), found.temperature)))
+        sheet_add_words(
+            result, run->out, end_name(method),
+            arena_format(run->arena, "one phase down to %s", shown_text(run, look_temperature(run), found.temperature)))
             ->method = method->name;
         break;
     case LIQUID_END_UNKNOWN:

@@ -1,7 +1,7 @@
 #include "filling/classify.h"
 
-#define COLD_TEMPERATURE          223.15 /* K, -50 degC */
-#define HIGHEST_HIGH_PRESSURE_TC  338.15 /* K, 65 degC */
+#define COLD_TEMPERATURE         223.15 /* K, -50 degC */
+#define HIGHEST_HIGH_PRESSURE_TC 338.15 /* K, 65 degC */
 
 static enum filling_class class_of_critical(double Tc)
 {
@@ -32,8 +32,8 @@ enum filling_class classify_charge(const struct sheet_run *run, struct method_ru
         contents_at(run, method, mass, COLD_TEMPERATURE, &contents) != ANSWER_OK) {
         return by_gas;
     }
-    const bool is_gas = contents.state == VESSEL_VAPOUR || (method->mixture != NULL && contents.phase_count == 1 &&
-                                                            !contents.phases[0].is_liquid);
+    const bool is_gas = contents.state == VESSEL_VAPOUR ||
+                        (method->mixture != NULL && contents.phase_count == 1 && !contents.phases[0].is_liquid);
     return is_gas ? CLASS_COMPRESSED : by_gas;
 }
 

@@ -38,8 +38,7 @@ static enum answer pure_contents(const struct method_run *method, double volume,
                              .saturation = vessel.saturation};
     add_pure_phase(method, false, vessel.vapour_amount, vessel.vapour_molar_volume, out);
     add_pure_phase(method, true, vessel.liquid_amount, vessel.liquid_molar_volume, out);
-    out->liquid_density =
-        vessel.liquid_molar_volume > 0.0 ? method->molar_mass / vessel.liquid_molar_volume : 0.0;
+    out->liquid_density = vessel.liquid_molar_volume > 0.0 ? method->molar_mass / vessel.liquid_molar_volume : 0.0;
     if (vessel.state != VESSEL_GAS) {
         set_pure_edges(vessel.has_saturation, &vessel.saturation, &out->edges);
     }
@@ -65,8 +64,8 @@ static enum answer set_temperature(struct method_run *method, double temperature
     return method->fluid == NULL ? ANSWER_CANNOT : fluid_set_t(method->at_t, method->fluid, temperature);
 }
 
-static enum answer contents_by(const struct sheet_run *run, struct method_run *method, double mass,
-                               double temperature, bool with_edges, struct contents *out)
+static enum answer contents_by(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
+                               bool with_edges, struct contents *out)
 {
     if (run->sheet->vessel == NULL) {
         return ANSWER_CANNOT;

@@ -13,7 +13,7 @@
  * more than one. The lower edge is the dew point of lowest density; the upper one the bubble point or, above a
  * mixture's critical temperature, the dew point where the last liquid goes again. */
 struct phase_edges {
-    bool is_known;       /* false: the method knows no liquid, or gave no answer; then neither edge is given */
+    bool is_known; /* false: the method knows no liquid, or gave no answer; then neither edge is given */
     bool has_low, has_high;
     bool high_is_bubble;
     double low_volume, high_volume;     /* m3/mol of the whole */

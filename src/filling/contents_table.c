@@ -41,8 +41,15 @@ const char *contents_words(const struct sheet_run *run, const struct contents *c
     return "";
 }
 
-enum contents_column { COLUMN_TEMPERATURE, COLUMN_PRESSURE, COLUMN_GAUGE, COLUMN_STATE, COLUMN_LIQUID, COLUMN_ULLAGE,
-                       COLUMN_MARGIN };
+enum contents_column {
+    COLUMN_TEMPERATURE,
+    COLUMN_PRESSURE,
+    COLUMN_GAUGE,
+    COLUMN_STATE,
+    COLUMN_LIQUID,
+    COLUMN_ULLAGE,
+    COLUMN_MARGIN
+};
 
 struct table *contents_table_begin(const struct sheet_run *run, const char *title, const char *method)
 {
@@ -66,8 +73,7 @@ void warn_below_triple(const struct sheet_run *run, double temperature)
         if (component->triple_temperature.given && temperature < component->triple_temperature.value) {
             result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,
                         "below the triple point of %s, %s, a solid may form, which no method here knows",
-                        component->name,
-                        temperature_words(run, component->triple_temperature.value));
+                        component->name, temperature_words(run, component->triple_temperature.value));
         }
     }
 }

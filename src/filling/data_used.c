@@ -1,6 +1,8 @@
 /* The sections of a result that tell its making: inputs, data used, sources, methods. */
 #include "filling/data_used.h"
 
+#include "filling/mixture_data.h"
+
 #include "base/text.h"
 
 #include <string.h>
@@ -165,8 +167,8 @@ static void tell_hazards(const struct telling *telling, unsigned hazards)
         enum hazard hazard;
         const char *word;
     } words[] = {
-        {HAZARD_FLAMMABLE, "flammable"},   {HAZARD_OXIDISING, "oxidising"},   {HAZARD_TOXIC, "toxic"},
-        {HAZARD_CORROSIVE, "corrosive"},   {HAZARD_PYROPHORIC, "pyrophoric"}, {HAZARD_DECOMPOSES, "decomposes"},
+        {HAZARD_FLAMMABLE, "flammable"},     {HAZARD_OXIDISING, "oxidising"},   {HAZARD_TOXIC, "toxic"},
+        {HAZARD_CORROSIVE, "corrosive"},     {HAZARD_PYROPHORIC, "pyrophoric"}, {HAZARD_DECOMPOSES, "decomposes"},
         {HAZARD_POLYMERISES, "polymerises"}, {HAZARD_DISSOLVED, "dissolved"},
     };
     struct text text = {.arena = telling->result->arena};
@@ -215,6 +217,40 @@ static void tell_equation(const struct telling *telling, const struct case_compo
     warn_unverified(telling, row->name, source);
 }
 
+static bool is_in_use(const struct method_pool *pool, const struct case_component *component, const char *method)
+{
+    for (size_t i = 0; i < pool->count; i++) {
+        if (pool->items[i].run.fluid != NULL && strcmp(pool->items[i].run.name, method) == 0 &&
+            contains(pool->items[i].fluid, component)) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* What a cubic method in use knows of the component beyond its constants. */
+static void tell_cubic_set(const struct telling *telling, const struct case_cubic_set *set)
+{
+    struct arena *arena = telling->result->arena;
+    const struct {
+        const char *name, *unit;
+        const struct quantity *quantity;
+    } rows[] = {
+        {"critical-temperature", "K", &set->critical_temperature},
+        {"critical-pressure", "Pa", &set->critical_pressure},
+        {"L", "", &set->twu[0]},
+        {"M", "", &set->twu[1]},
+        {"N", "", &set->twu[2]},
+        {"shift", "m3/mol", &set->shift},
+        {"covolume A", "K", &set->covolume_A},
+        {"covolume B", "K", &set->covolume_B},
+    };
+    for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
+        tell_quantity(telling, arena_format(arena, "%s %s", set->method, rows[i].name), rows[i].quantity, rows[i].unit,
+                      true);
+    }
+}
+
 static void tell_component(const struct case_tree *tree, const struct method_pool *pool,
                            const struct case_component *component, struct result *result)
 {
@@ -231,6 +267,11 @@ static void tell_component(const struct case_tree *tree, const struct method_poo
     tell_quantity(&telling, "triple-pressure", &component->triple_pressure, "Pa", false);
     tell_quantity(&telling, "boiling-temperature", &component->boiling_temperature, "K", false);
     tell_quantity(&telling, "dipole", &component->dipole, "C m", false);
+    for (size_t i = 0; i < component->cubic_set_count; i++) {
+        if (is_in_use(pool, component, component->cubic_sets[i].method)) {
+            tell_cubic_set(&telling, &component->cubic_sets[i]);
+        }
+    }
     if (any_method(pool, component, uses_equation)) {
         tell_equation(&telling, component);
     }
@@ -255,8 +296,7 @@ static void tell_listed_row(const struct telling *telling, const struct listed_r
         text_format(&value, "%sworking-pressure %s", value.length == 0 ? "" : ", ",
                     gauge_words(telling->tree, listed->working_pressure.value, arena));
     }
-    const char *name =
-        arena_format(arena, "listed-fill %s", gauge_words(telling->tree, listed->test_pressure, arena));
+    const char *name = arena_format(arena, "listed-fill %s", gauge_words(telling->tree, listed->test_pressure, arena));
     struct data_row *row = add_row(telling, name, value.bytes);
     row->source = source_words(telling, &listed->origin);
     row->remark = listed->origin.source != NULL && listed->origin.source->is_unverified ? "unverified" : NULL;
@@ -386,6 +426,7 @@ void tell_data(const struct case_tree *tree, const struct method_pool *pool, str
     for (size_t i = 0; i < tree->component_count; i++) {
         tell_component(tree, pool, tree->components[i], result);
     }
+    tell_mixtures(tree, pool, result);
     tell_entries_and_rules(tree, result);
     tell_sources(tree, result);
 }

@@ -68,8 +68,17 @@ static bool find_dew_limit(struct method_run *method, double temperature, struct
 /* ---- the limits beside the rule of partial pressures ------------------------------------------------------------- */
 
 /* The last column only where the methods' worst temperatures differ. */
-enum dew_column { DEW_METHOD, DEW_PRESSURE, DEW_DENSITY, DEW_MASS, DEW_COMPONENT, DEW_IDEAL_PRESSURE, DEW_IDEAL_MASS,
-                  DEW_ENHANCEMENT, DEW_TEMPERATURE };
+enum dew_column {
+    DEW_METHOD,
+    DEW_PRESSURE,
+    DEW_DENSITY,
+    DEW_MASS,
+    DEW_COMPONENT,
+    DEW_IDEAL_PRESSURE,
+    DEW_IDEAL_MASS,
+    DEW_ENHANCEMENT,
+    DEW_TEMPERATURE
+};
 
 /* Whether a method's dew limit of that criterion is told: it has one. */
 static bool is_told(const struct method_limits *of, size_t index)
@@ -150,8 +159,8 @@ static void tell_first_liquid(const struct sheet_run *run, struct method_run *me
     struct result *result = run->result;
     const struct look percent = {"1", {"%", 0.01, 0.0}, -5};
     struct table *table = sheet_add_table(
-        result, run->out,
-        arena_format(run->arena, "the first liquid at %s", temperature_words(run, dew->temperature)), method->name);
+        result, run->out, arena_format(run->arena, "the first liquid at %s", temperature_words(run, dew->temperature)),
+        method->name);
     table_add_word_column(result, table, "component");
     table_add_column(result, table, "whole", percent);
     table_add_column(result, table, "first-liquid", percent);

@@ -4,15 +4,15 @@
 
 #include <math.h>
 
-#define HOTTEST 473.15 /* K: no filled vessel is asked about above 200 degC */
-#define COLDEST 20.0   /* K: for gases whose triple point and method say nothing */
-#define COLDEST_MIXTURE 120.0 /* K: colder than any yard; what freezes above it is not a matter of these searches */
+#define HOTTEST         473.15 /* K: no filled vessel is asked about above 200 degC */
+#define COLDEST         20.0   /* K: for gases whose triple point and method say nothing */
+#define COLDEST_MIXTURE 120.0  /* K: colder than any yard; what freezes above it is not a matter of these searches */
 /* K, of the walk down to a mixture's second phase: what is there over less may be missed. */
 #define MIXTURE_STEP 5.0
 /* K, of the walk up to a pressure: at given volume a pressure all but always rises with temperature. */
-#define STEP 25.0
-#define TEMPERATURE_TOLERANCE 1e-7 /* K */
-#define NEAR_CRITICAL 0.9999 /* of the critical temperature: saturation is promised up to here */
+#define STEP                  25.0
+#define TEMPERATURE_TOLERANCE 1e-7   /* K */
+#define NEAR_CRITICAL         0.9999 /* of the critical temperature: saturation is promised up to here */
 
 /* ---- the range searched ------------------------------------------------------------------------------------------ */
 
@@ -135,8 +135,7 @@ static struct liquid_end_found find_mixture_end(const struct sheet_run *run, str
 struct liquid_end_found find_liquid_end(const struct sheet_run *run, struct method_run *method, double mass)
 {
     struct liquid_end_found found = {.end = LIQUID_END_UNKNOWN};
-    if (method->fluid != NULL && method->mixture != NULL &&
-        (method->fluid->ops->capabilities & CAN_LIQUID) != 0) {
+    if (method->fluid != NULL && method->mixture != NULL && (method->fluid->ops->capabilities & CAN_LIQUID) != 0) {
         return find_mixture_end(run, method, mass);
     }
     if (method->fluid == NULL || !method->has_critical) {

@@ -1,6 +1,7 @@
 /* The sheet `fugacity`: the stable state, compressibility, density and fugacity over swept temperature and pressure,
  * or over swept temperature and density, method beside method. */
 #include "filling/hand_check.h"
+#include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
 
 #include <math.h>
@@ -282,6 +283,10 @@ static void work_one_state(const struct sheet_run *run, struct method_run *metho
 
 void answer_fugacity(struct sheet_run *run)
 {
+    if (run->sheet->fluid->count > 1) {
+        answer_mixture_fugacity(run);
+        return;
+    }
     const struct spot *lead = NULL;
     for (size_t i = 0; i < run->method_count; i++) {
         struct method_run *method = &run->methods[i];

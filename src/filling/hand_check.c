@@ -148,8 +148,8 @@ static bool is_shown(const struct explanation *before, const struct explained_va
     return known != NULL && fabs(known->value - value->value) <= 0.0;
 }
 
-static void add_numbers(const struct sheet_run *run, struct hand_check *check, const struct explanation *numbers,
-                        const struct explanation *before)
+void hand_check_further_numbers(const struct sheet_run *run, struct hand_check *check,
+                                const struct explanation *numbers, const struct explanation *before)
 {
     for (size_t i = 0; i < numbers->count; i++) {
         const struct explained_value *value = &numbers->values[i];
@@ -166,18 +166,18 @@ static void add_numbers(const struct sheet_run *run, struct hand_check *check, c
 
 void hand_check_numbers(const struct sheet_run *run, struct hand_check *check, const struct explanation *numbers)
 {
-    add_numbers(run, check, numbers, NULL);
+    hand_check_further_numbers(run, check, numbers, NULL);
 }
 
-static void put(struct explanation *numbers, const char *symbol, const char *meaning, const char *formula,
-                const char *unit, double value)
+void hand_check_put(struct explanation *numbers, const char *symbol, const char *meaning, const char *formula,
+                    const char *unit, double value)
 {
     explanation_add(numbers, (struct explained_value){symbol, meaning, formula, unit, 0, value, false});
 }
 
 /* ---- the checks ------------------------------------------------------------------------------------------------ */
 
-static void add_pressure_as_shown(const struct sheet_run *run, struct hand_check *check, double pressure)
+void hand_check_pressure_shown(const struct sheet_run *run, struct hand_check *check, double pressure)
 {
     hand_check_line(run->result, check, "p is %s, %s", shown_text(run, look_pressure(run), pressure),
                     shown_text(run, look_gauge(run), pressure));
@@ -187,11 +187,11 @@ void hand_check_amount(const struct sheet_run *run, struct hand_check *check, do
 {
     const double M = run->sheet->fluid->molar_mass, V = run->sheet->vessel->water_capacity.value;
     struct explanation numbers = {.count = 0};
-    put(&numbers, "m", "mass of gas", NULL, "kg", mass);
-    put(&numbers, "M", "molar mass", NULL, "kg/mol", M);
-    put(&numbers, "V", "water capacity", NULL, "m3", V);
-    put(&numbers, "n", "amount of substance", "m / M", "mol", mass / M);
-    put(&numbers, "v", "molar volume of the contents", "V / n", "m3/mol", V / (mass / M));
+    hand_check_put(&numbers, "m", "mass of gas", NULL, "kg", mass);
+    hand_check_put(&numbers, "M", "molar mass", NULL, "kg/mol", M);
+    hand_check_put(&numbers, "V", "water capacity", NULL, "m3", V);
+    hand_check_put(&numbers, "n", "amount of substance", "m / M", "mol", mass / M);
+    hand_check_put(&numbers, "v", "molar volume of the contents", "V / n", "m3/mol", V / (mass / M));
     hand_check_numbers(run, check, &numbers);
 }
 
@@ -222,10 +222,10 @@ void hand_check_pressure(const struct sheet_run *run, struct hand_check *check, 
     if (with_fugacity) {
         const double p = find(&numbers, numbers.count, "p", 1)->value;
         const double ln_phi = numbers.values[numbers.count - 1].value;
-        put(&numbers, "f", "fugacity", "p * exp(ln_phi)", "Pa", p * exp(ln_phi));
+        hand_check_put(&numbers, "f", "fugacity", "p * exp(ln_phi)", "Pa", p * exp(ln_phi));
     }
     hand_check_numbers(run, check, &numbers);
-    add_pressure_as_shown(run, check, find(&numbers, numbers.count, "p", 1)->value);
+    hand_check_pressure_shown(run, check, find(&numbers, numbers.count, "p", 1)->value);
 }
 
 void hand_check_saturation(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
@@ -238,16 +238,18 @@ void hand_check_saturation(const struct sheet_run *run, struct hand_check *check
     }
     hand_check_numbers(run, check, &vapour);
     if (explain(run, check, method, T, saturation->liquid_volume, "liquid", true, &liquid)) {
-        add_numbers(run, check, &liquid, &vapour);
+        hand_check_further_numbers(run, check, &liquid, &vapour);
     }
     hand_check_line(run->result, check, "equal fugacity of both:");
-    put(&both, "p", "saturation pressure", NULL, "Pa", p);
-    put(&both, "ln_phi_V", "of the vapour", NULL, "1", saturation->ln_phi_vapour);
-    put(&both, "ln_phi_L", "of the liquid", NULL, "1", saturation->ln_phi_liquid);
-    put(&both, "f_V", "fugacity in the vapour", "p * exp(ln_phi_V)", "Pa", p * exp(saturation->ln_phi_vapour));
-    put(&both, "f_L", "fugacity in the liquid", "p * exp(ln_phi_L)", "Pa", p * exp(saturation->ln_phi_liquid));
+    hand_check_put(&both, "p", "saturation pressure", NULL, "Pa", p);
+    hand_check_put(&both, "ln_phi_V", "of the vapour", NULL, "1", saturation->ln_phi_vapour);
+    hand_check_put(&both, "ln_phi_L", "of the liquid", NULL, "1", saturation->ln_phi_liquid);
+    hand_check_put(&both, "f_V", "fugacity in the vapour", "p * exp(ln_phi_V)", "Pa",
+                   p * exp(saturation->ln_phi_vapour));
+    hand_check_put(&both, "f_L", "fugacity in the liquid", "p * exp(ln_phi_L)", "Pa",
+                   p * exp(saturation->ln_phi_liquid));
     hand_check_numbers(run, check, &both);
-    add_pressure_as_shown(run, check, p);
+    hand_check_pressure_shown(run, check, p);
 }
 
 /* The balance of volumes: n_V v_V + n_L v_L = V with n_V + n_L = n. */
@@ -259,18 +261,22 @@ static void add_lever_rule(const struct sheet_run *run, struct hand_check *check
     const double n_L = liquid->amount, v_L = liquid->molar_volume;
     struct explanation numbers = {.count = 0};
     hand_check_line(run->result, check, "balance of volumes, n_V v_V + n_L v_L = V with n_V + n_L = n:");
-    put(&numbers, "n", "amount of substance", NULL, "mol", n);
-    put(&numbers, "V", "water capacity", NULL, "m3", V);
-    put(&numbers, "v_V", "molar volume of the vapour", NULL, "m3/mol", vapour->molar_volume);
-    put(&numbers, "v_L", "molar volume of the liquid", NULL, "m3/mol", v_L);
-    put(&numbers, "n_L", "amount of liquid", "(n * v_V - V) / (v_V - v_L)", "mol", n_L);
-    put(&numbers, "x_L", "liquid's part of the capacity", "n_L * v_L / V", "1", n_L * v_L / V);
+    hand_check_put(&numbers, "n", "amount of substance", NULL, "mol", n);
+    hand_check_put(&numbers, "V", "water capacity", NULL, "m3", V);
+    hand_check_put(&numbers, "v_V", "molar volume of the vapour", NULL, "m3/mol", vapour->molar_volume);
+    hand_check_put(&numbers, "v_L", "molar volume of the liquid", NULL, "m3/mol", v_L);
+    hand_check_put(&numbers, "n_L", "amount of liquid", "(n * v_V - V) / (v_V - v_L)", "mol", n_L);
+    hand_check_put(&numbers, "x_L", "liquid's part of the capacity", "n_L * v_L / V", "1", n_L * v_L / V);
     hand_check_numbers(run, check, &numbers);
 }
 
 void hand_check_contents(const struct sheet_run *run, struct hand_check *check, struct method_run *method, double mass,
                          const struct contents *contents)
 {
+    if (method->mixture != NULL) {
+        hand_check_mixture_contents(run, check, method, mass, contents->temperature);
+        return;
+    }
     if (contents->state == VESSEL_TWO_PHASE) {
         hand_check_saturation(run, check, method, &contents->saturation);
         add_lever_rule(run, check, mass, contents);
@@ -285,15 +291,16 @@ void hand_check_ratio(const struct sheet_run *run, struct hand_check *check, dou
     const double V = run->sheet->vessel->water_capacity.value;
     const double ratio = limiting_mass / (WATER_DENSITY_15C * V);
     struct explanation numbers = {.count = 0};
-    put(&numbers, "m", "largest mass", NULL, "kg", limiting_mass);
-    put(&numbers, "rho_w", "density of water at 15 degC", NULL, "kg/m3", WATER_DENSITY_15C);
-    put(&numbers, "V", "water capacity", NULL, "m3", V);
-    put(&numbers, "r", "filling ratio", "m / (rho_w * V)", "1", ratio);
+    hand_check_put(&numbers, "m", "largest mass", NULL, "kg", limiting_mass);
+    hand_check_put(&numbers, "rho_w", "density of water at 15 degC", NULL, "kg/m3", WATER_DENSITY_15C);
+    hand_check_put(&numbers, "V", "water capacity", NULL, "m3", V);
+    hand_check_put(&numbers, "r", "filling ratio", "m / (rho_w * V)", "1", ratio);
     if (round_to > 0.0) {
         const double rounded = ratio_rounded_down(ratio, round_to);
-        put(&numbers, "r_d", arena_format(run->arena, "r rounded down to a multiple of %g", round_to), NULL, "1",
-            rounded);
-        put(&numbers, "m_d", "mass of the rounded ratio", "r_d * rho_w * V", "kg", rounded * WATER_DENSITY_15C * V);
+        hand_check_put(&numbers, "r_d", arena_format(run->arena, "r rounded down to a multiple of %g", round_to), NULL,
+                       "1", rounded);
+        hand_check_put(&numbers, "m_d", "mass of the rounded ratio", "r_d * rho_w * V", "kg",
+                       rounded * WATER_DENSITY_15C * V);
     }
     hand_check_numbers(run, check, &numbers);
 }
@@ -306,10 +313,10 @@ void hand_check_gauge(const struct sheet_run *run, struct hand_check *check, dou
 {
     const double p = round(pressure / SHOWN_PRESSURE_PLACE) * SHOWN_PRESSURE_PLACE;
     struct explanation numbers = {.count = 0};
-    put(&numbers, "p", "pressure, absolute", NULL, "Pa", p);
-    put(&numbers, "p_0", "zero of the gauge", NULL, "Pa", gauge_zero);
-    put(&numbers, "p_g", "pressure, gauge", "p - p_0", "Pa", p - gauge_zero);
-    put(&numbers, "p_r", "bound, gauge", NULL, "Pa", bound);
-    put(&numbers, "margin", "", "p_r - p_g", "Pa", bound - (p - gauge_zero));
+    hand_check_put(&numbers, "p", "pressure, absolute", NULL, "Pa", p);
+    hand_check_put(&numbers, "p_0", "zero of the gauge", NULL, "Pa", gauge_zero);
+    hand_check_put(&numbers, "p_g", "pressure, gauge", "p - p_0", "Pa", p - gauge_zero);
+    hand_check_put(&numbers, "p_r", "bound, gauge", NULL, "Pa", bound);
+    hand_check_put(&numbers, "margin", "", "p_r - p_g", "Pa", bound - (p - gauge_zero));
     hand_check_numbers(run, check, &numbers);
 }

@@ -39,4 +39,39 @@ void hand_check_gauge(const struct sheet_run *run, struct hand_check *check, dou
  * (explanation_add fills them in). */
 void hand_check_numbers(const struct sheet_run *run, struct hand_check *check, const struct explanation *numbers);
 
+/* The same without the numbers that `before` (may be NULL) shows already, by name and value. */
+void hand_check_further_numbers(const struct sheet_run *run, struct hand_check *check,
+                                const struct explanation *numbers, const struct explanation *before);
+
+/* "p is 24.79 bara, 23.78 barg". */
+void hand_check_pressure_shown(const struct sheet_run *run, struct hand_check *check, double pressure);
+
+/* One more number; `formula` NULL: given. */
+void hand_check_put(struct explanation *numbers, const char *symbol, const char *meaning, const char *formula,
+                    const char *unit, double value);
+
+/* A homogeneous phase of a mixture. */
+struct mixture_state {
+    double temperature, molar_volume; /* K, m3/mol */
+    const double *x;                  /* mole fractions */
+};
+
+/* Each component's constants at the state's temperature, as the method sets them out for it by itself. */
+void hand_check_mixture_components(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
+                                   const struct mixture_state *state);
+
+/* The pressure of a mixture's phase by a cubic equation: the mixing rules over those constants, and the equation; and
+ * where `with_fugacity`, the fugacity of every component. */
+void hand_check_mixture_phase(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
+                              const struct mixture_state *state, const char *phase, bool with_fugacity);
+
+/* A mixture's contents of `mass` kg at `temperature`: every phase, and for two or more that their volumes fill the
+ * vessel. */
+void hand_check_mixture_contents(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
+                                 double mass, double temperature);
+
+/* The lowest dew point at `temperature`: the whole as one phase, and the first liquid, of equal fugacities. */
+void hand_check_dew_point(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
+                          double temperature);
+
 #endif

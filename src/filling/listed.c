@@ -170,7 +170,8 @@ static struct method_limits *basis_of(const struct permissible *sheet)
     return &sheet->by_method[sheet->governing.given ? sheet->governing.index : 0];
 }
 
-/* How a criterion is met or missed; where the liquid's volume misses it, from which temperature on the vessel is full. */
+/* How a criterion is met or missed; where the liquid's volume misses it, from which temperature on the vessel is full.
+ */
 static const char *found_words(const struct sheet_run *run, struct method_run *method,
                                const struct predicate *predicate, const struct predicate_finding *finding, double mass)
 {
@@ -245,8 +246,8 @@ static void warn_of_difference(const struct permissible *sheet, double computed)
     const size_t line = location_line(run->sheet->at);
     if (listed > computed + SAME_RATIO) {
         result_warn(run->result, CODE_W320, line, run->number,
-                    "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.2f %%",
-                    listed_words(sheet), listed, computed, listed - computed, 100.0 * (listed / computed - 1.0));
+                    "%s: listed filling ratio %g exceeds the computed limit %.4f by %.4f, %.2f %%", listed_words(sheet),
+                    listed, computed, listed - computed, 100.0 * (listed / computed - 1.0));
     } else if (listed < computed - SAME_RATIO && sheet->governing.given &&
                governing_criterion(sheet)->kind == CRITERION_LISTED) {
         result_warn(run->result, CODE_W321, line, run->number,
@@ -265,8 +266,8 @@ static void add_computed_ratio(const struct permissible *sheet, const struct met
     struct fact *fact = sheet_add_fact(run->result, run->out, "computed-filling-ratio", computed, look_ratio(4));
     fact->method = basis->method->name;
     fact->remark = "least of the rules' criteria, unrounded";
-    fact = sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed,
-                          look_ratio(4));
+    fact =
+        sheet_add_fact(run->result, run->out, "listed-excess", sheet->listed.filling_ratio - computed, look_ratio(4));
     fact->method = basis->method->name;
     fact->remark = "listed less computed";
     warn_of_difference(sheet, computed);
@@ -311,8 +312,8 @@ static void tell_pressure_row(const struct permissible *sheet)
     if (basis->method != NULL && basis->replaced.given &&
         contents_at(run, basis->method, basis->limits[basis->replaced.index].mass, SETTLED_TEMPERATURE, &contents) ==
             ANSWER_OK) {
-        struct fact *fact = sheet_add_fact(run->result, run->out, "computed-working-pressure", contents.pressure,
-                                           look_gauge(run));
+        struct fact *fact =
+            sheet_add_fact(run->result, run->out, "computed-working-pressure", contents.pressure, look_gauge(run));
         fact->method = basis->method->name;
         fact->remark = "allowed by the criterion the row stands for";
     }

@@ -7,7 +7,7 @@
 
 /* Listed ratios have two decimals: what differs by no more than their last place agrees with the row. The slack is
  * for the binary form of a decimal difference. */
-#define LISTED_PLACE 0.01
+#define LISTED_PLACE       0.01
 #define LISTED_PLACE_SLACK 1e-9
 
 static bool is_within_place(const struct listed_line *line)
@@ -27,8 +27,17 @@ static const char *common_method(const struct listed_ledger *ledger)
 }
 
 /* The last column only where the methods differ. */
-enum row_column { ROW_ENTRY, ROW_TEST_PRESSURE, ROW_LISTED, ROW_COMPUTED, ROW_EXCESS, ROW_WITHIN, ROW_LIQUID_FULL,
-                  ROW_SHEET, ROW_METHOD };
+enum row_column {
+    ROW_ENTRY,
+    ROW_TEST_PRESSURE,
+    ROW_LISTED,
+    ROW_COMPUTED,
+    ROW_EXCESS,
+    ROW_WITHIN,
+    ROW_LIQUID_FULL,
+    ROW_SHEET,
+    ROW_METHOD
+};
 
 static void add_row(struct result *result, struct table *table, const struct listed_line *line)
 {
@@ -69,9 +78,10 @@ static void tell_rows(const struct listed_ledger *ledger, struct result *result,
     for (size_t i = 0; i < ledger->count; i++) {
         add_row(result, table, &ledger->items[i]);
     }
-    sheet_add_note(result, out,
-                   "computed: the least of the rules' criteria, unrounded; excess: listed less computed; agrees: within "
-                   "0.01; liquid-full: of the listed charge");
+    sheet_add_note(
+        result, out,
+        "computed: the least of the rules' criteria, unrounded; excess: listed less computed; agrees: within "
+        "0.01; liquid-full: of the listed charge");
 }
 
 enum miss_column { MISS_ENTRY, MISS_SHEET, MISS_CRITERION, MISS_FOUND };

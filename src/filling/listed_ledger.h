@@ -20,8 +20,8 @@ struct listed_line {
     double test_pressure; /* gauge, Pa */
     double listed;        /* filling ratio */
     const char *method;
-    struct optional computed;          /* filling ratio, unrounded; not given where the method has no limit */
-    struct optional liquid_full;       /* K, of the listed charge */
+    struct optional computed;    /* filling ratio, unrounded; not given where the method has no limit */
+    struct optional liquid_full; /* K, of the listed charge */
     size_t miss_count, miss_capacity;
     struct listed_miss *misses;
 };

@@ -1,6 +1,6 @@
 #include "filling/mixture_contents.h"
 
-#include "equilibrium/split.h"
+#include "equilibrium/mixture_vessel.h"
 #include "filling/search.h"
 
 #include <math.h>
@@ -20,17 +20,18 @@ struct mixture_work {
     const double *molar_masses; /* [count], kg/mol */
     struct equilibrium_workspace *ws;
     struct split *split;
-    struct phase *phase; /* for the feed by itself */
+    struct mixture_vessel *vessel;
+    bool has_vessel;         /* it holds an answer, from which the next search may start */
+    struct phase *phase;     /* for the feed by itself */
     double list_temperature; /* K, of the list below; 0: none yet */
     enum answer list_answer;
     struct edge_list list;
-    struct kept_edges *kept; /* [KEPT_TEMPERATURES] */
+    struct kept_edges *kept;  /* [KEPT_TEMPERATURES] */
     struct method_run *alone; /* [count], each component by itself */
 };
 
 /* Component i as a fluid of its own. */
-static struct method_run create_alone(const struct case_fluid *fluid, size_t i, const char *method,
-                                      struct arena *arena)
+static struct method_run create_alone(const struct case_fluid *fluid, size_t i, const char *method, struct arena *arena)
 {
     struct case_fluid *alone = arena_alloc(arena, 1, sizeof *alone);
     double *fraction = arena_alloc(arena, 1, sizeof *fraction);
@@ -61,6 +62,7 @@ struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const c
         .molar_masses = molar_masses,
         .ws = equilibrium_workspace_create(fluid->count, arena),
         .split = split_create(fluid->count, arena),
+        .vessel = mixture_vessel_create(fluid->count, arena),
         .phase = phase_create(fluid->count, arena),
         .kept = arena_alloc(arena, KEPT_TEMPERATURES, sizeof(struct kept_edges)),
         .alone = alone,
@@ -191,8 +193,8 @@ enum answer mixture_edge_list(struct method_run *method, const struct edge_list 
     struct mixture_work *work = method->mixture;
     const double temperature = method->at_t->temperature;
     if (!(fabs(work->list_temperature - temperature) <= 0.0)) {
-        work->list_answer = (method->fluid->ops->capabilities & CAN_LIQUID) == 0 ? ANSWER_CANNOT
-                                                                                 : find_edges(method, &work->list);
+        work->list_answer =
+            (method->fluid->ops->capabilities & CAN_LIQUID) == 0 ? ANSWER_CANNOT : find_edges(method, &work->list);
         work->list_temperature = temperature;
     }
     *out = &work->list;
@@ -244,63 +246,32 @@ static double split_volume(const struct split *split)
     return sum;
 }
 
-struct volume_search {
-    struct method_run *method;
-    double molar_volume;
-};
-
-/* ln of the free volume over the volume asked for, at ln p. */
-static enum answer excess_volume(void *context, double ln_p, double *excess)
+enum answer mixture_split_at_volume(struct method_run *method, double molar_volume, const struct split **out)
 {
-    const struct volume_search *search = context;
-    struct mixture_work *work = search->method->mixture;
+    struct mixture_work *work = method->mixture;
+    const struct mixture_vessel *start = work->has_vessel ? work->vessel : NULL;
     const enum answer answer =
-        split_at_tp(search->method->at_t, exp(ln_p), search->method->z, work->ws, work->split);
-    if (answer == ANSWER_OK) {
-        *excess = log(split_volume(work->split) / search->molar_volume);
-    }
+        mixture_vessel_at_tv(method->at_t, molar_volume, method->z, start, work->ws, work->vessel);
+    work->has_vessel = answer == ANSWER_OK;
+    *out = work->vessel->split;
     return answer;
 }
 
-#define PRESSURE_FACTOR 4.0
-#define PRESSURE_TOLERANCE 1e-12 /* of ln p */
-enum { MOST_STEPS = 40 };
-
-static enum answer find_pressure(struct method_run *method, double molar_volume)
+bool mixture_is_liquid(const struct method_run *method, const struct split *split, size_t k)
 {
-    struct volume_search search = {method, molar_volume};
-    const struct search_function function = {excess_volume, &search};
-    const double RT = method->fluid->gas_constant * method->at_t->temperature;
-    struct search_bracket bracket = {.a = log(RT / molar_volume)};
-    enum answer answer = excess_volume(&search, bracket.a, &bracket.value_a);
-    const double step = bracket.value_a > 0.0 ? log(PRESSURE_FACTOR) : -log(PRESSURE_FACTOR);
-    for (int i = 0; answer == ANSWER_OK && i < MOST_STEPS; i++) {
-        bracket.b = bracket.a + step;
-        answer = excess_volume(&search, bracket.b, &bracket.value_b);
-        if ((bracket.value_b < 0.0) != (bracket.value_a < 0.0)) {
-            break;
-        }
-        bracket.a = bracket.b;
-        bracket.value_a = bracket.value_b;
-    }
-    if (answer == ANSWER_OK) {
-        answer = search_root(&function, PRESSURE_TOLERANCE, 0.0, &bracket);
-    }
-    double excess;
-    return answer == ANSWER_OK ? excess_volume(&search, bracket.a, &excess) : answer;
+    return k > 0 ||
+           (split->phase_count > 1 && split->phase[0].molar_volume < LIQUID_EXPANSION * smallest_molar_volume(method));
 }
 
-static void put_phases(const struct method_run *method, double amount, double volume, struct contents *out)
+static void put_phases(const struct method_run *method, const struct split *split, double amount, double volume,
+                       struct contents *out)
 {
-    const struct split *split = method->mixture->split;
-    const double smallest = smallest_molar_volume(method);
     double liquid_volume = 0.0, liquid_mass = 0.0;
     out->phase_count = split->phase_count;
     for (size_t k = 0; k < split->phase_count; k++) {
         const struct split_phase *from = &split->phase[k];
         struct contents_phase *phase = &out->phases[k];
-        *phase = (struct contents_phase){.is_liquid = k > 0 || (split->phase_count > 1 &&
-                                                               from->molar_volume < LIQUID_EXPANSION * smallest),
+        *phase = (struct contents_phase){.is_liquid = mixture_is_liquid(method, split, k),
                                          .amount = from->fraction * amount,
                                          .molar_volume = from->molar_volume,
                                          .molar_mass = mixture_molar_mass(method, from->x),
@@ -332,21 +303,18 @@ enum answer mixture_contents(struct method_run *method, double volume, double am
                              struct contents *out)
 {
     const double molar_volume = volume / amount;
-    if (!(molar_volume > smallest_molar_volume(method))) {
-        return ANSWER_OUT_OF_RANGE;
-    }
-    *out = (struct contents){.state = VESSEL_SUPERCRITICAL,
-                             .temperature = method->at_t->temperature,
-                             .molar_volume = molar_volume};
+    const struct split *split;
+    *out = (struct contents){
+        .state = VESSEL_SUPERCRITICAL, .temperature = method->at_t->temperature, .molar_volume = molar_volume};
     if (with_edges) {
         mixture_edges(method, &out->edges);
     }
-    const enum answer answer = find_pressure(method, molar_volume);
+    const enum answer answer = mixture_split_at_volume(method, molar_volume, &split);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    out->pressure = method->mixture->split->pressure;
-    put_phases(method, amount, volume, out);
+    out->pressure = split->pressure;
+    put_phases(method, split, amount, volume, out);
     if (out->phase_count > 1) {
         out->state = VESSEL_TWO_PHASE;
     } else if ((method->fluid->ops->capabilities & CAN_LIQUID) == 0) {
@@ -369,7 +337,6 @@ enum answer mixture_free_volume(struct method_run *method, double pressure, doub
     if (work->split->phase_count == 1) {
         mixture_edges(method, &edges);
     }
-    *holds_liquid =
-        work->split->phase_count > 1 || (edges.high_is_bubble && *molar_volume <= edges.high_volume);
+    *holds_liquid = work->split->phase_count > 1 || (edges.high_is_bubble && *molar_volume <= edges.high_volume);
     return ANSWER_OK;
 }

@@ -17,18 +17,24 @@ struct method_run *mixture_alone(struct method_run *method, size_t i);
 struct split;
 enum answer mixture_split(struct method_run *method, double pressure, const struct split **out);
 
+/* Likewise at a molar volume of the whole (m3/mol): the pressure is found. */
+enum answer mixture_split_at_volume(struct method_run *method, double molar_volume, const struct split **out);
+
+/* Whether phase k of a split of two or more is a liquid: all but the lightest, and that too where it is as dense. */
+bool mixture_is_liquid(const struct method_run *method, const struct split *split, size_t k);
+
 /* `amount` mol in `volume` m3. The answer is stable against any further phase. */
 enum answer mixture_contents(struct method_run *method, double volume, double amount, bool with_edges,
                              struct contents *out);
 
 /* A state of the fluid at overall composition that just touches a second phase, its other one. */
 struct phase_edge {
-    bool opens;              /* with rising density: one phase ends here; else it begins again */
-    bool other_is_lighter;   /* a bubble point; else a dew point */
-    double pressure;         /* Pa */
-    double molar_volume;     /* m3/mol, of the whole as one phase */
-    double other_volume;     /* m3/mol; 0 where the other phase was not caught */
-    double *other;           /* [count], mole fractions */
+    bool opens;            /* with rising density: one phase ends here; else it begins again */
+    bool other_is_lighter; /* a bubble point; else a dew point */
+    double pressure;       /* Pa */
+    double molar_volume;   /* m3/mol, of the whole as one phase */
+    double other_volume;   /* m3/mol; 0 where the other phase was not caught */
+    double *other;         /* [count], mole fractions */
 };
 
 enum { MOST_EDGES = 8 };

@@ -37,8 +37,8 @@ static void add_headline(const struct sheet_run *run, const char *text)
     if (asked == 1) {
         line_list_add(run->result, lines, "%s", text);
     } else if (asked <= MOST_HEADLINES) {
-        line_list_add(run->result, lines, "%s: %s", run->sheet->title == NULL ? run->sheet->fluid->name
-                                                                             : run->sheet->title, text);
+        line_list_add(run->result, lines, "%s: %s",
+                      run->sheet->title == NULL ? run->sheet->fluid->name : run->sheet->title, text);
     } else if (lines->count == 0) {
         line_list_add(run->result, lines, "%zu charges asked for: one in each sheet", asked);
     }
@@ -74,8 +74,7 @@ static bool refuses(const struct sheet_run *run)
 {
     const struct case_fluid *fluid = run->sheet->fluid;
     const char *needed = fluid->assessment;
-    const char *reason =
-        fluid->refuse == NULL ? NULL : arena_format(run->arena, "%s: %s", fluid->name, fluid->refuse);
+    const char *reason = fluid->refuse == NULL ? NULL : arena_format(run->arena, "%s: %s", fluid->name, fluid->refuse);
     if (reason == NULL && needed != NULL && run->sheet->assessed == NULL) {
         reason = arena_format(run->arena, "%s; the sheet names no assessment", needed);
     }
@@ -87,8 +86,8 @@ static bool refuses(const struct sheet_run *run)
     if (run->sheet->assessed != NULL) {
         sheet_add_note(run->result, run->out, "assessed: \"%s\"", run->sheet->assessed);
         if (needed != NULL) {
-            result_warn(run->result, CODE_W329, location_line(run->sheet->at), run->number,
-                        "%s; assessed in \"%s\"", needed, run->sheet->assessed);
+            result_warn(run->result, CODE_W329, location_line(run->sheet->at), run->number, "%s; assessed in \"%s\"",
+                        needed, run->sheet->assessed);
         }
     }
     return false;
@@ -184,10 +183,9 @@ static void add_settled_pressure(const struct permissible *sheet)
     const struct sheet_run *run = sheet->run;
     struct method_run *method = governing_method(sheet);
     struct contents contents;
-    if (!sheet->is_by_ratio &&
-        contents_at(run, method, sheet->mass, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
-        struct fact *fact = sheet_add_fact(run->result, run->out, "settled-gauge-pressure", contents.pressure,
-                                           look_gauge(run));
+    if (!sheet->is_by_ratio && contents_at(run, method, sheet->mass, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
+        struct fact *fact =
+            sheet_add_fact(run->result, run->out, "settled-gauge-pressure", contents.pressure, look_gauge(run));
         fact->method = method->name;
         fact->remark = "at 15 degC";
     }
@@ -202,8 +200,7 @@ static struct mass_basis basis_of_permitted(const struct permissible *sheet)
     }
     struct mass_basis basis = {.method = governing_method(sheet)->name};
     if (criterion->round_to > 0.0) {
-        basis.ratio_remark =
-            arena_format(sheet->run->arena, "rounded down to a multiple of %g", criterion->round_to);
+        basis.ratio_remark = arena_format(sheet->run->arena, "rounded down to a multiple of %g", criterion->round_to);
     }
     return basis;
 }
@@ -266,8 +263,8 @@ static void tell_headline(const struct permissible *sheet)
     const char *amount =
         arena_format(run->arena, "filling ratio %s", ratio_words(run, ratio_of_mass(run, sheet->mass)));
     struct contents contents;
-    if (!sheet->is_by_ratio && contents_at(run, governing_method(sheet), sheet->mass, SETTLED_TEMPERATURE, &contents) ==
-                                   ANSWER_OK) {
+    if (!sheet->is_by_ratio &&
+        contents_at(run, governing_method(sheet), sheet->mass, SETTLED_TEMPERATURE, &contents) == ANSWER_OK) {
         amount = arena_format(run->arena, "%s at 15 degC", shown_text(run, look_gauge(run), contents.pressure));
     }
     add_headline(run, arena_format(run->arena, "%s %s, %s, governed by %s", opening,
@@ -329,9 +326,8 @@ static void tell_replaced(const struct permissible *sheet, struct requirement *r
 static void tell_requirements(const struct permissible *sheet)
 {
     struct sheet_run *run = sheet->run;
-    struct method_run *method = run->methods[0].fluid != NULL && method_governs(&run->methods[0])
-                                    ? &run->methods[0]
-                                    : governing_method(sheet);
+    struct method_run *method =
+        run->methods[0].fluid != NULL && method_governs(&run->methods[0]) ? &run->methods[0] : governing_method(sheet);
     for (size_t i = 0; i < sheet->criterion_count; i++) {
         const struct criterion *criterion = &sheet->criteria[i];
         if (criterion->kind == CRITERION_LISTED) {
@@ -380,12 +376,13 @@ static void check_limit(const struct permissible *sheet)
     const struct criterion *criterion = governing_criterion(sheet);
     const struct criterion_limit *limit = governing_limit(sheet);
     struct method_run *method = governing_method(sheet);
-    struct hand_check *check =
-        sheet_add_hand_check(run->result, run->out,
-                             arena_format(run->arena, "the limit of '%s', %s", criterion->predicate->written,
-                                          method->name));
+    struct hand_check *check = sheet_add_hand_check(
+        run->result, run->out,
+        arena_format(run->arena, "the limit of '%s', %s", criterion->predicate->written, method->name));
     hand_check_amount(run, check, limit->mass);
-    if (limit->finding.has_contents) {
+    if (method->mixture != NULL && criterion->predicate->kind == PREDICATE_NO_LIQUID) {
+        hand_check_dew_point(run, check, method, limit->finding.worst_temperature);
+    } else if (limit->finding.has_contents) {
         hand_check_contents(run, check, method, limit->mass, &limit->finding.worst);
     }
     check_comparison(sheet, check, criterion, limit);

@@ -84,8 +84,7 @@ static void add_composition(const struct sheet_run *run, const struct method_run
     }
 }
 
-static void add_condensed(const struct sheet_run *run, const struct method_run *method,
-                          const struct contents *contents)
+static void add_condensed(const struct sheet_run *run, const struct method_run *method, const struct contents *contents)
 {
     const struct contents_phase *heaviest = &contents->phases[contents->phase_count - 1];
     sheet_add_note(run->result, run->out, "at %s liquid is there: %s of it, %s of the capacity (%s)",

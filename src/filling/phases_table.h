@@ -10,8 +10,8 @@
 void add_phases_table(const struct sheet_run *run, struct method_run *method, double mass, const double temperatures[],
                       size_t count);
 
-/* What has condensed at `temperature`, or would condense there in use as the pressure falls: a note and a table with the
- * liquid's composition. Nothing where the fluid has no dew point below its density. */
+/* What has condensed at `temperature`, or would condense there in use as the pressure falls: a note and a table with
+ * the liquid's composition. Nothing where the fluid has no dew point below its density. */
 void add_liquid_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature);
 
 #endif

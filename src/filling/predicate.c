@@ -7,7 +7,7 @@
 /* Values of `=` that agree to this part of the bound are equal. */
 #define EQUAL_TOLERANCE 1e-9
 
-#define RANGE_STEP 0.5         /* K: features narrower than this may be missed */
+#define RANGE_STEP      0.5    /* K: features narrower than this may be missed */
 #define RANGE_TOLERANCE 0.0005 /* K: half of the 1 mK promised */
 
 double vessel_symbol(const struct case_vessel *vessel, enum case_symbol symbol)
@@ -150,8 +150,7 @@ static bool settle_liquid_density(struct predicate_finding *finding, double *sco
         return false;
     }
     if (contents->state == VESSEL_LIQUID_FULL) {
-        decide(finding, false, log(contents->edges.high_volume / contents->molar_volume),
-               "liquid-full", score);
+        decide(finding, false, log(contents->edges.high_volume / contents->molar_volume), "liquid-full", score);
         return true;
     }
     decide(finding, true, (double)INFINITY, "no liquid present", score);
@@ -283,9 +282,8 @@ static struct predicate_finding find_contents(const struct sheet_run *run, struc
                                               double *score)
 {
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
-    const enum answer answer = needs_edges(predicate)
-                                   ? contents_at(run, method, mass, temperature, &finding.worst)
-                                   : pressure_at(run, method, mass, temperature, &finding.worst);
+    const enum answer answer = needs_edges(predicate) ? contents_at(run, method, mass, temperature, &finding.worst)
+                                                      : pressure_at(run, method, mass, temperature, &finding.worst);
     if (answer == ANSWER_OK) {
         finding.has_contents = true;
     } else if (answer == ANSWER_OUT_OF_RANGE && is_overfull(run, method, mass, temperature)) {

@@ -24,7 +24,7 @@ enum {
 /* Searches end a little short of the densest state, where pressures have no bound. */
 #define SHORT_OF_DENSEST 0.999
 /* kg/m3: denser than any filled gas; for methods without a densest state. */
-#define DENSEST 5000.0
+#define DENSEST             5000.0
 #define SETTLED_TEMPERATURE 288.15 /* K */
 
 double predicate_most_mass(const struct sheet_run *run, struct method_run *method)
@@ -52,8 +52,7 @@ struct mass_search {
 static enum answer score_at_mass(void *context, double mass, double *score)
 {
     struct mass_search *search = context;
-    search->last =
-        predicate_at(search->run, search->method, search->predicate, mass, search->temperature, score);
+    search->last = predicate_at(search->run, search->method, search->predicate, mass, search->temperature, score);
     return search->last.answer;
 }
 
@@ -100,8 +99,7 @@ static struct trials trial_masses(const struct mass_search *search, double most)
         add_trial(&trials, most * (0.5 + 0.5 * k / UPPER_STEPS), most);
     }
     struct phase_edges edges;
-    if (asks_of_phases(search->predicate) &&
-        edges_at(search->method, search->temperature, &edges) == ANSWER_OK) {
+    if (asks_of_phases(search->predicate) && edges_at(search->method, search->temperature, &edges) == ANSWER_OK) {
         const double per_volume = search->run->sheet->vessel->water_capacity.value * search->method->molar_mass;
         add_edge_trials(&trials, edges.has_low, per_volume / edges.low_volume, most);
         add_edge_trials(&trials, edges.has_high, per_volume / edges.high_volume, most);
@@ -253,8 +251,7 @@ enum answer predicate_largest_mass(const struct sheet_run *run, struct method_ru
                                    const struct predicate *predicate, double most, double *mass, bool *is_unlimited,
                                    struct predicate_finding *at_limit)
 {
-    struct mass_search search = {
-        .run = run, .method = method, .predicate = predicate, .temperature = predicate->from};
+    struct mass_search search = {.run = run, .method = method, .predicate = predicate, .temperature = predicate->from};
     struct mass_limit limit;
     const enum answer answer = predicate->to > predicate->from ? limit_over_range(&search, most, &limit)
                                                                : limit_at_temperature(&search, most, &limit);

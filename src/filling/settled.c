@@ -71,8 +71,7 @@ static void add_tables(struct settled *settled)
         table->csv = m == 0 ? run->sheet->table_csv : NULL;
         bool has_answers = true;
         for (size_t i = 0; i < settled->count; i++) {
-            const enum answer answer =
-                contents_table_row(run, table, method, settled->mass, settled->temperatures[i]);
+            const enum answer answer = contents_table_row(run, table, method, settled->mass, settled->temperatures[i]);
             has_answers = has_answers && answer == ANSWER_OK;
         }
         settled->has_answers = m == 0 ? has_answers : settled->has_answers;
@@ -128,16 +127,14 @@ static const struct case_rating *weakest_fitting(const struct case_vessel *vesse
 
 /* A gas with a critical temperature above the hot day is liquid there, and a vessel full of liquid is about to burst;
  * one with a lower critical temperature goes liquid-full in ordinary use on its way to one dense phase. */
-static void warn_if_liquid_full(const struct settled *settled, struct method_run *method,
-                                struct liquid_end_found found)
+static void warn_if_liquid_full(const struct settled *settled, struct method_run *method, struct liquid_end_found found)
 {
     const struct sheet_run *run = settled->run;
     const bool stays_liquid = classify_charge(run, method, settled->mass) == CLASS_LOW_PRESSURE_LIQUEFIED;
     if (stays_liquid && found.end == LIQUID_END_FULL && found.temperature <= hottest(settled)) {
         result_warn(run->result, CODE_W330, location_line(run->sheet->at), run->number,
                     "%s, %s: liquid-full from %s on, below the hottest temperature asked about, %s",
-                    run->sheet->fluid->name, method->name,
-                    temperature_words(run, found.temperature),
+                    run->sheet->fluid->name, method->name, temperature_words(run, found.temperature),
                     temperature_words(run, hottest(settled)));
     }
 }
@@ -207,8 +204,7 @@ static void add_hand_check(const struct settled *settled)
     }
     struct hand_check *check = sheet_add_hand_check(
         run->result, run->out,
-        arena_format(run->arena, "settled pressure at %s, %s", temperature_words(run, temperature),
-                     lead->name));
+        arena_format(run->arena, "settled pressure at %s, %s", temperature_words(run, temperature), lead->name));
     hand_check_amount(run, check, settled->mass);
     hand_check_contents(run, check, lead, settled->mass, &contents);
     if (run->sheet->vessel->test_pressure.given) {

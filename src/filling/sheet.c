@@ -28,9 +28,8 @@ struct method_run method_run_create(const struct case_fluid *fluid, const char *
     }
     run.may_govern = may_govern && (run.fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
     run.at_t = fluid_at_t_create(run.fluid, arena);
-    run.has_critical =
-        fluid->count == 1 && run.fluid->ops->critical != NULL &&
-        run.fluid->ops->critical(run.fluid, &run.critical) == ANSWER_OK;
+    run.has_critical = fluid->count == 1 && run.fluid->ops->critical != NULL &&
+                       run.fluid->ops->critical(run.fluid, &run.critical) == ANSWER_OK;
     run.mixture = fluid->count == 1 ? NULL : mixture_work_create(fluid, method, arena);
     return run;
 }
@@ -144,9 +143,9 @@ bool warn_outside_range(const struct sheet_run *run, const struct method_run *me
     }
     const bool is_pressure = note.side == RANGE_TOO_HIGH_PRESSURE;
     const struct look look = is_pressure ? look_pressure(run) : look_temperature(run);
-    const char *opening = arena_format(run->arena, "%s, %s: %s the published limit of %s", run->sheet->fluid->name,
-                                       method->name, note.side == RANGE_TOO_COLD ? "below" : "above",
-                                       limit_text(run, look, note.limit));
+    const char *opening =
+        arena_format(run->arena, "%s, %s: %s the published limit of %s", run->sheet->fluid->name, method->name,
+                     note.side == RANGE_TOO_COLD ? "below" : "above", limit_text(run, look, note.limit));
     if (!is_warned(run, opening)) {
         result_warn(run->result, CODE_W300, location_line(run->sheet->at), run->number, "%s, first at %s", opening,
                     shown_text(run, look, is_pressure ? pressure : temperature));
@@ -160,8 +159,8 @@ bool warn_outside_range(const struct sheet_run *run, const struct method_run *me
 static void warn_of_liquid(const struct sheet_run *run, const struct case_charge *charge, enum code code,
                            double pressure, const char *words)
 {
-    result_warn(run->result, code, location_line(charge->origin.at), run->number,
-                "charge %s: at %s and %s %s is %s", charge->name, shown_text(run, look_pressure(run), pressure),
+    result_warn(run->result, code, location_line(charge->origin.at), run->number, "charge %s: at %s and %s %s is %s",
+                charge->name, shown_text(run, look_pressure(run), pressure),
                 shown_text(run, look_temperature(run), charge->temperature), run->sheet->fluid->name, words);
 }
 

@@ -16,13 +16,13 @@ struct mixture_work;
 struct method_run {
     const char *name;
     const struct fluid *fluid;
-    struct fluid_at_t *at_t;     /* workspace; its temperature changes with every question */
+    struct fluid_at_t *at_t; /* workspace; its temperature changes with every question */
     struct fluid_lack_report lack;
-    bool has_critical;           /* of a pure gas */
+    bool has_critical; /* of a pure gas */
     struct critical_point critical;
     bool may_govern;
-    double molar_mass;           /* kg/mol, of the whole */
-    const double *z;             /* [fluid->count], mole fractions of the whole */
+    double molar_mass;            /* kg/mol, of the whole */
+    const double *z;              /* [fluid->count], mole fractions of the whole */
     struct mixture_work *mixture; /* NULL: a pure gas */
 };
 
@@ -37,7 +37,7 @@ struct sheet_run {
     struct result_sheet *out;
     size_t number; /* of the sheet, from 1 */
     size_t method_count;
-    struct method_run *methods; /* lead first */
+    struct method_run *methods;   /* lead first */
     struct listed_ledger *ledger; /* NULL: none is kept */
 };
 
@@ -51,11 +51,11 @@ struct look look_pressure(const struct sheet_run *run); /* absolute */
 struct look look_gauge(const struct sheet_run *run);    /* of an absolute SI value: the offset makes it gauge */
 struct look look_density(const struct sheet_run *run);
 struct look look_mass(const struct sheet_run *run);
-struct look look_ratio(int decimals);                   /* dimensionless */
-struct look look_percent(int decimals);                 /* SI fraction shown in % */
+struct look look_ratio(int decimals);   /* dimensionless */
+struct look look_percent(int decimals); /* SI fraction shown in % */
 struct look look_molar_density(void);
-struct look look_amount(void);                          /* mol */
-struct look look_volume(const struct sheet_run *run);   /* of vessels */
+struct look look_amount(void);                        /* mol */
+struct look look_volume(const struct sheet_run *run); /* of vessels */
 struct look look_gas_volume(const struct sheet_run *run);
 
 /* The same look with that many significant digits, for tables that span decades. */

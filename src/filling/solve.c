@@ -4,8 +4,45 @@
 
 #include "filling/data_used.h"
 #include "filling/listed_ledger.h"
+#include "filling/volume_fractions.h"
 
 #include <string.h>
+
+/* ---- fluids by amount -------------------------------------------------------------------------------------------- */
+
+/* Fluids written by volume at a stated state, in mole fractions by one method. */
+struct fluid_list {
+    size_t count, capacity;
+    struct converted {
+        const struct case_fluid *written, *fluid; /* fluid NULL: the method has no volumes for it */
+        const char *method;
+    } * items;
+};
+
+static const struct case_fluid *converted(struct fluid_list *list, const struct case_fluid *written, const char *method,
+                                          struct arena *arena)
+{
+    for (size_t i = 0; i < list->count; i++) {
+        if (list->items[i].written == written && strcmp(list->items[i].method, method) == 0) {
+            return list->items[i].fluid;
+        }
+    }
+    const struct case_fluid *fluid = fluid_by_amount(written, method, arena);
+    *ARENA_APPEND(arena, list) = (struct converted){written, fluid, method};
+    return fluid;
+}
+
+/* The sheet with its fluid in mole fractions, by the method that leads. */
+static const struct case_sheet *by_amount(const struct case_sheet *sheet, struct fluid_list *list, struct arena *arena)
+{
+    if (!sheet->fluid->has_state) {
+        return sheet;
+    }
+    struct case_sheet *made = arena_alloc(arena, 1, sizeof *made);
+    *made = *sheet;
+    made->fluid = converted(list, sheet->fluid, sheet->methods.names[0], arena);
+    return made->fluid == NULL ? NULL : made;
+}
 
 /* ---- methods ready --------------------------------------------------------------------------------------------- */
 
@@ -79,27 +116,48 @@ static const struct {
     [SHEET_FUGACITY] = {"fugacity", answer_fugacity},
 };
 
-static void answer_sheet(const struct case_tree *tree, size_t index, struct method_pool *pool,
-                         struct listed_ledger *ledger, struct result *result)
+/* What all sheets of a case share. */
+struct common {
+    struct method_pool pool;
+    struct listed_ledger ledger;
+    struct fluid_list fluids;
+};
+
+static void tell_no_fractions(const struct sheet_run *run, const struct case_sheet *asked)
 {
-    const struct case_sheet *sheet = &tree->sheets[index];
+    sheet_add_note(run->result, run->out, "%s has no volume for a component of %s at the state of its fractions",
+                   asked->methods.names[0], asked->fluid->name);
+    result_warn(run->result, CODE_W302, location_line(asked->at), run->number,
+                "%s: fractions of volume, and %s has no volume for a component", asked->fluid->name,
+                asked->methods.names[0]);
+    run->result->is_undecided = true;
+}
+
+static void answer_sheet(const struct case_tree *tree, size_t index, struct common *common, struct result *result)
+{
+    const struct case_sheet *asked = &tree->sheets[index];
+    const struct case_sheet *sheet = by_amount(asked, &common->fluids, result->arena);
     struct sheet_run *run = arena_alloc(result->arena, 1, sizeof *run);
     *run = (struct sheet_run){
         .arena = result->arena,
         .tree = tree,
         .sheet = sheet,
         .result = result,
-        .out = result_add_sheet(result, KINDS[sheet->kind].word, sheet->title),
+        .out = result_add_sheet(result, KINDS[asked->kind].word, asked->title),
         .number = index + 1,
-        .ledger = ledger,
+        .ledger = &common->ledger,
     };
-    run->out->fluid = sheet->fluid->name;
+    run->out->fluid = asked->fluid->name;
+    if (sheet == NULL) {
+        tell_no_fractions(run, asked);
+        return;
+    }
     run->out->vessel = sheet->vessel == NULL ? NULL : sheet->vessel->name;
     run->out->charge = sheet->charge == NULL ? NULL : sheet->charge->name;
     for (size_t i = 0; i < sheet->note_count; i++) {
         sheet_add_note(result, run->out, "%s", sheet->notes[i]);
     }
-    ready_methods(run, pool);
+    ready_methods(run, &common->pool);
     tell_lacks(run);
     KINDS[sheet->kind].answer(run);
 }
@@ -150,16 +208,15 @@ static void tell_cautions(struct result *result)
 struct result *filling_solve(const struct case_tree *tree, const char *version, struct arena *arena)
 {
     struct result *result = result_create(arena);
-    struct method_pool pool = {0};
-    struct listed_ledger ledger = {0};
+    struct common common = {.pool = {0}};
     tell_document(tree, version, result);
     tell_inputs(tree, result);
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        answer_sheet(tree, i, &pool, &ledger, result);
+        answer_sheet(tree, i, &common, result);
     }
-    tell_listed_ledger(&ledger, result);
-    tell_data(tree, &pool, result);
-    tell_methods(&pool, result);
+    tell_listed_ledger(&common.ledger, result);
+    tell_data(tree, &common.pool, result);
+    tell_methods(&common.pool, result);
     tell_cautions(result);
     return result;
 }

@@ -1,0 +1,263 @@
+/* The sheet `fugacity` for a mixture: at each state its stable phases, what every component's fugacity is in each, and
+ * the tangent-plane evidence that no phase is missing. */
+#include "equilibrium/split.h"
+#include "filling/hand_check.h"
+#include "filling/mixture_contents.h"
+#include "filling/mixture_sheets.h"
+
+#include <math.h>
+
+enum { DIGITS = 6 };
+
+/* The sweep as the tables go through it, for one method. */
+struct sweeping {
+    const struct sheet_run *run;
+    struct method_run *method;
+    struct table *phases, *fugacities, *evidence;
+};
+
+/* ---- columns ----------------------------------------------------------------------------------------------------- */
+
+static struct look significant(struct look look)
+{
+    return look_significant(look, DIGITS);
+}
+
+static void add_state_columns(const struct sheet_run *run, struct table *table)
+{
+    table_add_column(run->result, table, "temperature", look_temperature(run));
+    table_add_column(run->result, table, "pressure", significant(look_pressure(run)));
+}
+
+enum phase_column {
+    PHASE_TEMPERATURE,
+    PHASE_PRESSURE,
+    PHASE_NAME,
+    PHASE_AMOUNT,
+    PHASE_DENSITY,
+    PHASE_MOLAR_DENSITY,
+    PHASE_Z
+};
+
+static struct table *begin_phases(const struct sheet_run *run, const struct method_run *method)
+{
+    struct result *result = run->result;
+    struct table *table = sheet_add_table(result, run->out, "stable phases", method->name);
+    add_state_columns(run, table);
+    table_add_word_column(result, table, "phase");
+    table_add_column(result, table, "amount", significant(look_percent(0)));
+    table_add_column(result, table, "density", significant(look_density(run)));
+    table_add_column(result, table, "molar-density", significant(look_molar_density()));
+    table_add_column(result, table, "compressibility-factor", look_ratio(-DIGITS));
+    return table;
+}
+
+enum fugacity_column {
+    FUGACITY_TEMPERATURE,
+    FUGACITY_PRESSURE,
+    FUGACITY_PHASE,
+    FUGACITY_COMPONENT,
+    FUGACITY_FRACTION,
+    FUGACITY_PHI,
+    FUGACITY_FUGACITY,
+    FUGACITY_K
+};
+
+static struct table *begin_fugacities(const struct sheet_run *run, const struct method_run *method)
+{
+    struct result *result = run->result;
+    struct table *table = sheet_add_table(result, run->out, "fugacities of the components", method->name);
+    add_state_columns(run, table);
+    table_add_word_column(result, table, "phase");
+    table_add_word_column(result, table, "component");
+    table_add_column(result, table, "mole-fraction", look_ratio(-DIGITS));
+    table_add_column(result, table, "fugacity-coefficient", look_ratio(-DIGITS));
+    table_add_column(result, table, "fugacity", significant(look_pressure(run)));
+    table_add_column(result, table, "K", look_ratio(-DIGITS));
+    return table;
+}
+
+enum evidence_column {
+    EVIDENCE_TEMPERATURE,
+    EVIDENCE_PRESSURE,
+    EVIDENCE_PHASES,
+    EVIDENCE_DISTANCE,
+    EVIDENCE_TRIALS,
+    EVIDENCE_RESIDUAL,
+    EVIDENCE_GAIN
+};
+
+static struct table *begin_evidence(const struct sheet_run *run, const struct method_run *method)
+{
+    struct result *result = run->result;
+    struct table *table = sheet_add_table(result, run->out, "evidence of stability", method->name);
+    add_state_columns(run, table);
+    table_add_column(result, table, "phases", look_ratio(0));
+    table_add_column(result, table, "tangent-plane-distance", look_ratio(-3));
+    table_add_column(result, table, "trial-phases", look_ratio(0));
+    table_add_column(result, table, "ln-fugacity-difference", look_ratio(-2));
+    table_add_column(result, table, "gibbs-energy-gain", look_ratio(-4));
+    return table;
+}
+
+/* ---- one state --------------------------------------------------------------------------------------------------- */
+
+static const char *phase_name(const struct sweeping *at, const struct split *split, size_t k)
+{
+    static const char *const liquids[] = {"liquid", "liquid 2", "liquid 3", "liquid 4"};
+    if (split->phase_count == 1) {
+        return "one phase";
+    }
+    const bool has_vapour = !mixture_is_liquid(at->method, split, 0);
+    return has_vapour && k == 0 ? "vapour" : liquids[has_vapour ? k - 1 : k];
+}
+
+static void add_phase(const struct sweeping *at, const struct split *split, size_t k, bool is_inside)
+{
+    const struct split_phase *phase = &split->phase[k];
+    const double molar_mass = mixture_molar_mass(at->method, phase->x);
+    struct cell *row = table_add_row(at->run->result, at->phases);
+    cell_set(&row[PHASE_TEMPERATURE], split->temperature);
+    cell_set(&row[PHASE_PRESSURE], split->pressure);
+    cell_set_text(&row[PHASE_NAME], phase_name(at, split, k));
+    cell_set(&row[PHASE_AMOUNT], phase->fraction);
+    cell_set(&row[PHASE_DENSITY], molar_mass / phase->molar_volume);
+    cell_set(&row[PHASE_MOLAR_DENSITY], 1.0 / phase->molar_volume);
+    cell_set(&row[PHASE_Z], phase->Z);
+    for (size_t i = PHASE_DENSITY; i <= PHASE_Z; i++) {
+        row[i].is_outside_range = !is_inside;
+    }
+}
+
+/* K is the fraction in the lightest phase over that in the phase of the row. */
+static void add_fugacities(const struct sweeping *at, const struct split *split, size_t k)
+{
+    const struct split_phase *phase = &split->phase[k];
+    for (size_t i = 0; i < at->method->fluid->count; i++) {
+        struct cell *row = table_add_row(at->run->result, at->fugacities);
+        cell_set(&row[FUGACITY_TEMPERATURE], split->temperature);
+        cell_set(&row[FUGACITY_PRESSURE], split->pressure);
+        cell_set_text(&row[FUGACITY_PHASE], phase_name(at, split, k));
+        cell_set_text(&row[FUGACITY_COMPONENT], at->run->sheet->fluid->components[i]->name);
+        cell_set(&row[FUGACITY_FRACTION], phase->x[i]);
+        cell_set(&row[FUGACITY_PHI], exp(phase->ln_phi[i]));
+        cell_set(&row[FUGACITY_FUGACITY], phase->x[i] * split->pressure * exp(phase->ln_phi[i]));
+        if (k > 0 && phase->x[i] > 0.0) {
+            cell_set(&row[FUGACITY_K], split->phase[0].x[i] / phase->x[i]);
+        }
+    }
+}
+
+static void add_evidence(const struct sweeping *at, const struct split *split)
+{
+    struct cell *row = table_add_row(at->run->result, at->evidence);
+    cell_set(&row[EVIDENCE_TEMPERATURE], split->temperature);
+    cell_set(&row[EVIDENCE_PRESSURE], split->pressure);
+    cell_set(&row[EVIDENCE_PHASES], (double)split->phase_count);
+    cell_set(&row[EVIDENCE_DISTANCE], split->smallest_tpd);
+    cell_set(&row[EVIDENCE_TRIALS], (double)split->trials);
+    cell_set(&row[EVIDENCE_RESIDUAL], split->residual);
+    cell_set(&row[EVIDENCE_GAIN], split->gibbs_gain);
+}
+
+static void add_no_answer(const struct sweeping *at, double temperature, const char *second)
+{
+    const struct sheet_run *run = at->run;
+    struct cell *row = table_add_row(run->result, at->phases);
+    cell_set(&row[PHASE_TEMPERATURE], temperature);
+    cell_set_text(&row[PHASE_NAME], "no answer");
+    result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number, "%s, %s: no state found at %s, %s",
+                run->sheet->fluid->name, at->method->name, shown_text(run, look_temperature(run), temperature), second);
+    if (at->method == &run->methods[0]) {
+        run->result->is_undecided = true;
+    }
+}
+
+static enum answer solve_state(const struct sweeping *at, double temperature, double second, const struct split **split)
+{
+    const struct case_sweep *densities = &at->run->sheet->densities;
+    const enum answer answer = fluid_set_t(at->method->at_t, at->method->fluid, temperature);
+    if (answer != ANSWER_OK || !densities->given) {
+        return answer != ANSWER_OK ? answer : mixture_split(at->method, second, split);
+    }
+    const double molar_density = densities->is_mass_density ? second / at->method->molar_mass : second;
+    return mixture_split_at_volume(at->method, 1.0 / molar_density, split);
+}
+
+static const char *second_words(const struct sheet_run *run, double second)
+{
+    if (!run->sheet->densities.given) {
+        return shown_text(run, look_pressure(run), second);
+    }
+    return shown_text(run, run->sheet->densities.is_mass_density ? look_density(run) : look_molar_density(), second);
+}
+
+static void work_by_hand(const struct sweeping *at, const struct split *split)
+{
+    const struct sheet_run *run = at->run;
+    struct hand_check *check = sheet_add_hand_check(
+        run->result, run->out,
+        arena_format(run->arena, "state at %s and %s, %s", shown_text(run, look_temperature(run), split->temperature),
+                     shown_text(run, look_pressure(run), split->pressure), at->method->name));
+    for (size_t k = 0; k < split->phase_count; k++) {
+        const struct mixture_state state = {split->temperature, split->phase[k].molar_volume, split->phase[k].x};
+        if (k == 0) {
+            hand_check_mixture_components(run, check, at->method, &state);
+        }
+        hand_check_mixture_phase(run, check, at->method, &state, phase_name(at, split, k), true);
+    }
+}
+
+static void add_state(const struct sweeping *at, double temperature, double second)
+{
+    const struct split *split;
+    if (solve_state(at, temperature, second, &split) != ANSWER_OK) {
+        add_no_answer(at, temperature, second_words(at->run, second));
+        return;
+    }
+    const bool is_inside = warn_outside_range(at->run, at->method, temperature, split->pressure);
+    for (size_t k = 0; k < split->phase_count; k++) {
+        add_phase(at, split, k, is_inside);
+        add_fugacities(at, split, k);
+    }
+    add_evidence(at, split);
+}
+
+/* ---- the sheet --------------------------------------------------------------------------------------------------- */
+
+static void sweep_by(const struct sheet_run *run, struct method_run *method, bool is_lead)
+{
+    const struct case_sweep *temperatures = &run->sheet->temperatures;
+    const struct case_sweep *second = run->sheet->densities.given ? &run->sheet->densities : &run->sheet->pressures;
+    struct sweeping at = {.run = run, .method = method};
+    at.phases = begin_phases(run, method);
+    at.fugacities = begin_fugacities(run, method);
+    at.evidence = begin_evidence(run, method);
+    at.fugacities->csv = is_lead ? run->sheet->table_csv : NULL;
+    for (size_t i = 0; i < temperatures->count; i++) {
+        for (size_t k = 0; k < second->count; k++) {
+            add_state(&at, temperatures->values[i], second->values[k]);
+        }
+    }
+    const struct split *split;
+    if (is_lead && solve_state(&at, temperatures->values[0], second->values[0], &split) == ANSWER_OK) {
+        work_by_hand(&at, split);
+    }
+}
+
+void answer_mixture_fugacity(struct sheet_run *run)
+{
+    bool has_lead = false;
+    for (size_t i = 0; i < run->method_count; i++) {
+        struct method_run *method = &run->methods[i];
+        if (method->fluid == NULL) {
+            run->result->is_undecided |= i == 0;
+            continue;
+        }
+        sweep_by(run, method, !has_lead);
+        has_lead = true;
+    }
+    sheet_add_note(run->result, run->out,
+                   "K: mole fraction in the lightest phase over that in the phase of the row; tangent-plane distance: "
+                   "the least of all trial phases, by RT and mole, negative only by rounding for a stable answer");
+}
