@@ -68,10 +68,11 @@ static void add_trial(struct trials *trials, double mass, double most)
     }
 }
 
-/* Both sides of an edge, where predicates on phases change. */
-static void add_edge_trials(struct trials *trials, bool is_given, double mass, double most)
+/* Both sides of an edge at `molar_volume`, where predicates on phases change; `per_volume` over it is the mass there. */
+static void add_edge_trials(struct trials *trials, bool is_given, double per_volume, double molar_volume, double most)
 {
     if (is_given) {
+        const double mass = per_volume / molar_volume;
         add_trial(trials, mass * (1.0 - BESIDE_PHASE_CHANGE), most);
         add_trial(trials, mass * (1.0 + BESIDE_PHASE_CHANGE), most);
     }
@@ -101,8 +102,8 @@ static struct trials trial_masses(const struct mass_search *search, double most)
     struct phase_edges edges;
     if (asks_of_phases(search->predicate) && edges_at(search->method, search->temperature, &edges) == ANSWER_OK) {
         const double per_volume = search->run->sheet->vessel->water_capacity.value * search->method->molar_mass;
-        add_edge_trials(&trials, edges.has_low, per_volume / edges.low_volume, most);
-        add_edge_trials(&trials, edges.has_high, per_volume / edges.high_volume, most);
+        add_edge_trials(&trials, edges.has_low, per_volume, edges.low_volume, most);
+        add_edge_trials(&trials, edges.has_high, per_volume, edges.high_volume, most);
     }
     qsort(trials.masses, trials.count, sizeof *trials.masses, by_mass);
     return trials;
