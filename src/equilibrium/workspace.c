@@ -36,6 +36,10 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
     ws->scale = vector(unknowns, arena);
     ws->border = vector(unknowns, arena);
     ws->partial_volume = vector(unknowns, arena);
+    ws->unknowns = vector(unknowns, arena);
+    ws->next_unknowns = vector(unknowns, arena);
+    ws->next_slope = vector(unknowns, arena);
+    ws->crossed = vector(unknowns, arena);
     return ws;
 }
 

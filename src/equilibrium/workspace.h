@@ -27,7 +27,7 @@ struct equilibrium_workspace {
     /* Trial phases of the stability test. */
     double *W, *ln_W, *g, *kept_W, *kept_ln_W; /* [count] */
     /* Second-order steps: room for (MOST_PHASES - 1) count + 2 unknowns. */
-    double *matrix, *step, *scale, *border, *partial_volume;
+    double *matrix, *step, *scale, *border, *partial_volume, *unknowns, *next_unknowns, *next_slope, *crossed;
 };
 
 struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct arena *arena);

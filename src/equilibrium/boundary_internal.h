@@ -1,0 +1,34 @@
+/* One point of a phase boundary and Newton's steps to it, shared by single points and by the tracing of envelopes. */
+#ifndef TAREWRIGHT_EQUILIBRIUM_BOUNDARY_INTERNAL_H
+#define TAREWRIGHT_EQUILIBRIUM_BOUNDARY_INTERNAL_H
+
+#include "equilibrium/boundary.h"
+
+/* Unknowns X: ln K_i of the components present, then ln T, then ln p. One of them is held at a value. */
+struct boundary_state {
+    const struct fluid_at_t *at_t;
+    struct fluid_at_t *settable; /* the same, where the temperature may change; else NULL, and slopes are not wanted */
+    struct equilibrium_workspace *ws;
+    size_t size;                          /* active_count + 2 */
+    double *X;                            /* [size] */
+    double *slope;                        /* [size], dX by the held unknown */
+    double residual;                      /* largest of the equations */
+    double feed_volume, incipient_volume; /* m3/mol of the last evaluation */
+    double expected_feed,
+        expected_incipient; /* m3/mol: of several roots the nearest to these is taken; 0: by density */
+    bool is_dew;            /* with no volume expected: the feed is the vapour */
+    int iterations;
+};
+
+/* Prepares for the feed in ws. X and slope are the caller's, [count + 2]; the slope may be NULL without settable. */
+void boundary_begin(struct boundary_state *b, const struct fluid_at_t *at_t, struct fluid_at_t *settable,
+                    struct equilibrium_workspace *ws, double *X, double *slope);
+
+/* Newton's steps with X[held] as it stands. ANSWER_OK with X, slope, volumes and residual of the solution; FAILED when
+ * there was no convergence, or only to the trivial solution, all K = 1. */
+enum answer boundary_solve(struct boundary_state *b, size_t held, int most_steps);
+
+/* Copies the point out, and tests its feed for stability. */
+enum answer boundary_report(struct boundary_state *b, struct boundary_point *out);
+
+#endif

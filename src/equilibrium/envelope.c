@@ -1,0 +1,655 @@
+/* Tracing a mixture's phase envelope.
+ *
+ * From a dew point at low pressure the boundary is followed point by point. Of the unknowns ln K, ln T, ln p the one
+ * that changes fastest along the line is held at a new value in each step, so that neither the critical point nor the
+ * extrema of temperature and pressure are special (Michelsen, Fluid Phase Equilib. 4 (1980) 1). Next to the critical
+ * point, where all ln K vanish and every T and p is a trivial solution, the step is taken across.
+ */
+#include "equilibrium/boundary_internal.h"
+
+#include <math.h>
+#include <string.h>
+
+enum { MOST_STEPS = 12, MOST_START_STEPS = 60, MOST_RETRIES = 14, MOST_REFINEMENTS = 60, EASY = 4, HARD = 6 };
+
+/* Largest changes in one step of ln K and ln p, and of ln T. */
+#define LARGEST_CHANGE             0.5
+#define LARGEST_TEMPERATURE_CHANGE 0.05
+/* Where all ln K, and the logarithm of the ratio of the molar volumes, are smaller than this, a critical point may be
+ * near. */
+#define NEAR_CRITICAL 0.2
+/* Two lines that start as near to each other as this, in ln T, are one. */
+#define SAME_TEMPERATURE 1e-7
+/* A step shorter than this leads nowhere. */
+#define SHORTEST_STEP 1e-7
+/* Below this part of the first temperature a line is not followed. */
+#define COLDEST 0.1
+
+struct tracer {
+    struct boundary_state b;
+    struct envelope *envelope;
+    struct envelope_line *line;
+    size_t held;
+    double direction; /* +1 or -1: of the held unknown */
+    double step;      /* of the held unknown, positive */
+    double *slope;    /* [components + 2], at the last point */
+};
+
+/* ---- points ---------------------------------------------------------------------------------------------------- */
+
+struct envelope *envelope_create(size_t components, struct arena *arena)
+{
+    struct envelope *envelope = arena_alloc(arena, 1, sizeof *envelope);
+    envelope->components = components;
+    envelope->X = arena_alloc(arena, ENVELOPE_MOST_POINTS * (components + 2), sizeof(double));
+    envelope->feed_volume = arena_alloc(arena, ENVELOPE_MOST_POINTS, sizeof(double));
+    envelope->incipient_volume = arena_alloc(arena, ENVELOPE_MOST_POINTS, sizeof(double));
+    envelope->cricondentherm = boundary_point_create(components, arena);
+    envelope->cricondenbar = boundary_point_create(components, arena);
+    return envelope;
+}
+
+static double *point_at(const struct envelope *envelope, size_t k)
+{
+    return envelope->X + k * (envelope->components + 2);
+}
+
+static bool store(struct tracer *t)
+{
+    struct envelope *e = t->envelope;
+    if (e->point_count == ENVELOPE_MOST_POINTS) {
+        return false;
+    }
+    memcpy(point_at(e, e->point_count), t->b.X, t->b.size * sizeof(double));
+    e->feed_volume[e->point_count] = t->b.feed_volume;
+    e->incipient_volume[e->point_count] = t->b.incipient_volume;
+    e->point_count++;
+    t->line->count++;
+    t->b.expected_feed = t->b.feed_volume;
+    t->b.expected_incipient = t->b.incipient_volume;
+    return true;
+}
+
+/* ---- the first point ------------------------------------------------------------------------------------------- */
+
+/* Which components Raoult's law is summed over: all of them, or one alone, as its own phase. */
+static double raoult_excess(struct boundary_state *b, double T, bool is_dew, const size_t *alone)
+{
+    struct equilibrium_workspace *ws = b->ws;
+    double sum = 0.0;
+    struct fluid_at_t at = {.fluid = b->at_t->fluid, .temperature = T};
+    workspace_set_pure(ws, &at, ENVELOPE_LOWEST_PRESSURE);
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
+        if (alone == NULL || *alone == i) {
+            sum += ws->feed[i] * exp(is_dew ? -ws->ln_pure[i] : ws->ln_pure[i]);
+        }
+    }
+    return is_dew ? 1.0 - sum : sum - 1.0;
+}
+
+/* The temperature where it holds at the lowest pressure, by halving; ws->ln_pure is left for it. */
+static double raoult_temperature(struct boundary_state *b, bool is_dew, const size_t *alone)
+{
+    double low = 1.0, high = 3000.0;
+    for (int k = 0; k < MOST_REFINEMENTS; k++) {
+        const double middle = 0.5 * (low + high);
+        *(raoult_excess(b, middle, is_dew, alone) < 0.0 ? &low : &high) = middle;
+    }
+    raoult_excess(b, high, is_dew, alone);
+    return high;
+}
+
+static bool solve_start(struct boundary_state *b, double T, bool is_dew)
+{
+    const size_t m = b->ws->active_count;
+    b->X[m] = log(T);
+    b->X[m + 1] = log(ENVELOPE_LOWEST_PRESSURE);
+    b->is_dew = is_dew;
+    b->expected_feed = b->expected_incipient = 0.0;
+    return boundary_solve(b, m + 1, MOST_START_STEPS) == ANSWER_OK && (b->feed_volume > b->incipient_volume) == is_dew;
+}
+
+/* Like dissolves like: an ideal incipient phase. */
+static bool start_ideally(struct boundary_state *b, bool is_dew)
+{
+    struct equilibrium_workspace *ws = b->ws;
+    const double T = raoult_temperature(b, is_dew, NULL);
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const double ln_pure = ws->ln_pure[ws->active[a]];
+        b->X[a] = is_dew ? -ln_pure : ln_pure;
+    }
+    return solve_start(b, T, is_dew);
+}
+
+/* A dew of one component alone, in which the others dissolve as little as its fugacity coefficients say. */
+static bool start_alone(struct boundary_state *b, size_t alone)
+{
+    struct equilibrium_workspace *ws = b->ws;
+    const double T = raoult_temperature(b, true, &alone);
+    for (size_t i = 0; i < ws->count; i++) {
+        ws->W[i] = i == alone ? 1.0 : 0.0;
+    }
+    if (fluid_set_t(b->settable, b->at_t->fluid, T) != ANSWER_OK ||
+        phase_tp(b->at_t, ENVELOPE_LOWEST_PRESSURE, ws->W, BRANCH_LIQUID, PHASE_LN_PHI, ws->trial) != ANSWER_OK) {
+        return false;
+    }
+    for (size_t a = 0; a < ws->active_count; a++) {
+        b->X[a] = -ws->trial->ln_phi[ws->active[a]];
+    }
+    ws->W[alone] = 0.0;
+    return solve_start(b, T, true);
+}
+
+/* ---- one step -------------------------------------------------------------------------------------------------- */
+
+static double change_limit(const struct tracer *t, size_t a)
+{
+    return a == t->b.size - 2 ? LARGEST_TEMPERATURE_CHANGE : LARGEST_CHANGE;
+}
+
+static void hold(struct tracer *t, size_t a)
+{
+    if (a == t->held) {
+        return;
+    }
+    const double factor = t->slope[a];
+    t->direction *= factor < 0.0 ? -1.0 : 1.0;
+    t->step *= fabs(factor);
+    for (size_t c = 0; c < t->b.size; c++) {
+        t->slope[c] /= factor;
+    }
+    t->held = a;
+}
+
+/* Holds the unknown that changes fastest by its limit, and keeps the sense in which the line is followed. */
+static void choose_held(struct tracer *t)
+{
+    size_t fastest = t->held;
+    double rate = 0.0;
+    for (size_t a = 0; a < t->b.size; a++) {
+        const double here = fabs(t->slope[a]) / change_limit(t, a);
+        if (here > rate) {
+            rate = here;
+            fastest = a;
+        }
+    }
+    hold(t, fastest);
+    t->step = fmin(t->step, change_limit(t, fastest));
+}
+
+static size_t fastest_ratio(const struct tracer *t, const double *X)
+{
+    size_t fastest = 0;
+    for (size_t a = 1; a < t->b.ws->active_count; a++) {
+        if (fabs(X[a]) > fabs(X[fastest])) {
+            fastest = a;
+        }
+    }
+    return fastest;
+}
+
+/* Does the line pass a critical point between two of its points? The ratio that is farthest from one turns over. */
+static bool is_across(const struct tracer *t, const double *before, const double *after)
+{
+    const size_t ratio = fastest_ratio(t, before);
+    return fabs(before[ratio]) < NEAR_CRITICAL && before[ratio] * after[ratio] < 0.0;
+}
+
+/* Is the line about to reach a critical point? Then the phases are alike and growing more so. */
+static bool is_approaching_critical(const struct tracer *t, const double *from)
+{
+    const size_t ratio = fastest_ratio(t, from);
+    const double towards = -from[ratio] * t->slope[ratio] * t->direction;
+    return fabs(from[ratio]) < NEAR_CRITICAL && towards > 0.0 &&
+           fabs(log(t->b.expected_feed / t->b.expected_incipient)) < NEAR_CRITICAL;
+}
+
+/* Next to a critical point the largest ln K is held and the first attempt is to cross over to minus its value; later
+ * ones go nearer by ever less. */
+static double next_held_value(const struct tracer *t, const double *from, bool is_near_critical, int retry)
+{
+    const double here = from[t->held];
+    if (!is_near_critical) {
+        return here + t->direction * t->step;
+    }
+    return retry == 0 ? -here : here * (1.0 - 0.7 * pow(0.5, retry));
+}
+
+static void predict(struct tracer *t, const double *from, double value)
+{
+    const double change = value - from[t->held];
+    for (size_t a = 0; a < t->b.size; a++) {
+        t->b.X[a] = from[a] + t->slope[a] * change;
+    }
+    t->b.X[t->held] = value;
+}
+
+/* Has the solution gone elsewhere than along the line? */
+static bool is_astray(const struct tracer *t, const double *from)
+{
+    for (size_t a = 0; a < t->b.size; a++) {
+        if (!(fabs(t->b.X[a] - from[a]) <= 3.0 * change_limit(t, a))) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* One more point from the last one; false when no step, however short, leads to one. */
+static bool advance(struct tracer *t)
+{
+    const double *from = point_at(t->envelope, t->envelope->point_count - 1);
+    choose_held(t);
+    const bool is_near_critical = is_approaching_critical(t, from);
+    if (is_near_critical) {
+        hold(t, fastest_ratio(t, from));
+    }
+    for (int retry = 0; retry < MOST_RETRIES && t->step > SHORTEST_STEP; retry++) {
+        memcpy(t->b.X, from, t->b.size * sizeof(double));
+        predict(t, from, next_held_value(t, from, is_near_critical, retry));
+        if (boundary_solve(&t->b, t->held, MOST_STEPS) == ANSWER_OK && !is_astray(t, from)) {
+            t->step *= t->b.iterations <= EASY ? 1.5 : t->b.iterations >= HARD ? 0.6 : 1.0;
+            return true;
+        }
+        t->step *= 0.4;
+    }
+    return false;
+}
+
+/* ---- extrema of temperature and pressure ----------------------------------------------------------------------- */
+
+/* Between the last point stored and the one just found the slope of unknown `a` changes sign: the point where it
+ * vanishes, by false position in the held unknown (the Illinois way). False when it was not found. */
+static bool find_extremum(struct tracer *t, size_t a, double slope_before, const double *after, double slope_after)
+{
+    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
+    double low = 0.0, high = 1.0, at_low = slope_before, at_high = slope_after;
+    for (int k = 0; k < MOST_REFINEMENTS; k++) {
+        const double part = low + (high - low) * at_low / (at_low - at_high);
+        for (size_t c = 0; c < t->b.size; c++) {
+            t->b.X[c] = before[c] + part * (after[c] - before[c]);
+        }
+        if (boundary_solve(&t->b, t->held, MOST_STEPS) != ANSWER_OK) {
+            return false;
+        }
+        const double slope = t->b.slope[a];
+        if (fabs(slope) < 1e-11 || high - low < 1e-13) {
+            return true;
+        }
+        if ((slope < 0.0) == (at_low < 0.0)) {
+            low = part;
+            at_low = slope;
+            at_high *= 0.5;
+        } else {
+            high = part;
+            at_high = slope;
+            at_low *= 0.5;
+        }
+    }
+    return true;
+}
+
+/* Stores the extrema between the last point and the one in `after` first, so that between any two stored points
+ * temperature and pressure are monotone. `X` and `slope` of the new point are the tracer's own copies. */
+static void store_extrema(struct tracer *t, const double *after, const double *slope_after)
+{
+    const size_t m = t->b.ws->active_count;
+    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
+    for (size_t a = m; a < m + 2 && !is_across(t, before, after); a++) {
+        if (t->slope[a] * slope_after[a] < 0.0 && find_extremum(t, a, t->slope[a], after, slope_after[a])) {
+            memcpy(t->slope, t->b.slope, t->b.size * sizeof(double));
+            store(t);
+        }
+    }
+}
+
+/* ---- one line -------------------------------------------------------------------------------------------------- */
+
+/* True, with the reason, where the line ends at the point just stored. */
+static bool is_at_end(struct tracer *t, double coldest)
+{
+    const size_t m = t->b.ws->active_count;
+    const double ln_p = t->b.X[m + 1];
+    if (ln_p < log(ENVELOPE_LOWEST_PRESSURE)) {
+        t->line->end = ENVELOPE_END_LOW_PRESSURE;
+    } else if (ln_p > log(ENVELOPE_HIGHEST_PRESSURE)) {
+        t->line->end = ENVELOPE_END_HIGH_PRESSURE;
+    } else if (t->b.X[m] < coldest) {
+        t->line->end = ENVELOPE_END_COLD;
+    } else {
+        return false;
+    }
+    return true;
+}
+
+/* The critical point between the last two points, if the ratios pass through one there. */
+static void note_critical(struct tracer *t)
+{
+    struct envelope *e = t->envelope;
+    const size_t m = t->b.ws->active_count, last = e->point_count - 1;
+    const double *before = point_at(e, last - 1), *after = point_at(e, last);
+    const size_t ratio = fastest_ratio(t, before);
+    if (!is_across(t, before, after) || e->critical_count == ENVELOPE_MOST_CRITICAL) {
+        return;
+    }
+    const double part = before[ratio] / (before[ratio] - after[ratio]);
+    e->critical[e->critical_count++] = (struct critical_point){
+        .temperature = exp(before[m] + part * (after[m] - before[m])),
+        .pressure = exp(before[m + 1] + part * (after[m + 1] - before[m + 1])),
+        .molar_volume = 0.5 * (e->feed_volume[last] + e->incipient_volume[last]),
+    };
+}
+
+/* The point at hand, after any extrema before it. */
+static bool add(struct tracer *t)
+{
+    struct equilibrium_workspace *ws = t->b.ws;
+    const size_t bytes = t->b.size * sizeof(double);
+    const double feed_volume = t->b.feed_volume, incipient_volume = t->b.incipient_volume;
+    memcpy(ws->next_unknowns, t->b.X, bytes);
+    memcpy(ws->next_slope, t->b.slope, bytes);
+    store_extrema(t, ws->next_unknowns, ws->next_slope);
+    memcpy(t->b.X, ws->next_unknowns, bytes);
+    memcpy(t->slope, ws->next_slope, bytes);
+    t->b.feed_volume = feed_volume;
+    t->b.incipient_volume = incipient_volume;
+    return store(t);
+}
+
+/* Not far outside the step it was meant to be a part of? Else it belongs to another critical point. */
+static bool is_between(const struct tracer *t, const double *before, const double *after)
+{
+    for (size_t a = 0; a < t->b.size; a++) {
+        const double reach = fabs(after[a] - before[a]) + 1e-3;
+        if (!(fabs(t->b.X[a] - 0.5 * (before[a] + after[a])) <= reach)) {
+            return false;
+        }
+    }
+    return true;
+}
+
+/* The step just taken passed a critical point: more points on either side of it, ever closer to it, so that little is
+ * left between them where no point can be told from a trivial one. */
+static void approach_critical(struct tracer *t)
+{
+    static const double PARTS[] = {0.2, 0.35, 0.45, 0.49, 0.51, 0.55, 0.65, 0.8};
+    struct equilibrium_workspace *ws = t->b.ws;
+    const size_t bytes = t->b.size * sizeof(double);
+    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
+    memcpy(ws->crossed, t->b.X, bytes);
+    for (size_t k = 0; k < sizeof PARTS / sizeof *PARTS; k++) {
+        for (size_t a = 0; a < t->b.size; a++) {
+            t->b.X[a] = before[a] + PARTS[k] * (ws->crossed[a] - before[a]);
+        }
+        const enum answer answer = boundary_solve(&t->b, t->held, MOST_STEPS);
+        if (answer == ANSWER_OK && is_between(t, before, ws->crossed) && add(t)) {
+            note_critical(t);
+        }
+    }
+    memcpy(t->b.X, ws->crossed, bytes);
+    boundary_solve(&t->b, t->held, MOST_STEPS);
+}
+
+static void follow(struct tracer *t)
+{
+    const size_t m = t->b.ws->active_count;
+    const double coldest = t->b.X[m] + log(COLDEST);
+    t->line->end = ENVELOPE_END_LOST;
+    t->held = m + 1;
+    t->direction = 1.0;
+    t->step = 0.1;
+    memcpy(t->slope, t->b.slope, t->b.size * sizeof(double));
+    if (!store(t)) {
+        return;
+    }
+    do {
+        if (!advance(t)) {
+            return;
+        }
+        if (is_across(t, point_at(t->envelope, t->envelope->point_count - 1), t->b.X)) {
+            approach_critical(t);
+        }
+        if (!add(t)) {
+            return;
+        }
+        note_critical(t);
+    } while (!is_at_end(t, coldest));
+}
+
+/* From the point at hand, unless a line starts there already. */
+static void trace_line(struct tracer *t)
+{
+    struct envelope *e = t->envelope;
+    const size_t m = t->b.ws->active_count;
+    for (size_t l = 0; l < e->line_count; l++) {
+        const size_t first = e->line[l].first;
+        const bool is_same_side =
+            (e->feed_volume[first] > e->incipient_volume[first]) == (t->b.feed_volume > t->b.incipient_volume);
+        if (is_same_side && fabs(point_at(e, first)[m] - t->b.X[m]) < SAME_TEMPERATURE) {
+            return;
+        }
+    }
+    if (e->line_count < ENVELOPE_MOST_LINES && e->point_count < ENVELOPE_MOST_POINTS) {
+        t->line = &e->line[e->line_count++];
+        *t->line = (struct envelope_line){.first = e->point_count};
+        follow(t);
+    }
+}
+
+/* A dew may be of all components, or nearly of one alone where that dissolves little of the others. */
+static void trace_dew_lines(struct tracer *t)
+{
+    if (start_ideally(&t->b, true)) {
+        trace_line(t);
+    }
+    for (size_t a = 0; a < t->b.ws->active_count && t->envelope->line_count + 1 < ENVELOPE_MOST_LINES; a++) {
+        if (start_alone(&t->b, t->b.ws->active[a])) {
+            trace_line(t);
+        }
+    }
+}
+
+/* Did one of the lines come down again on the bubble side? */
+static bool has_come_round(const struct envelope *e)
+{
+    for (size_t l = 0; l < e->line_count; l++) {
+        const size_t last = e->line[l].first + e->line[l].count - 1;
+        const bool is_whole = e->line[l].end == ENVELOPE_END_LOW_PRESSURE || e->line[l].end == ENVELOPE_END_COLD;
+        if (is_whole && e->feed_volume[last] < e->incipient_volume[last]) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* ---- its highest temperature and pressure ---------------------------------------------------------------------- */
+
+/* The point of highest unknown `a`, if it lies inside a line: extrema have been stored as points. */
+static bool report_highest(struct tracer *t, size_t a, struct boundary_point *out)
+{
+    struct envelope *e = t->envelope;
+    size_t highest = 0;
+    bool is_inside = false;
+    for (size_t l = 0; l < e->line_count; l++) {
+        for (size_t k = 0; k < e->line[l].count; k++) {
+            const size_t here = e->line[l].first + k;
+            if (here == 0 || point_at(e, here)[a] > point_at(e, highest)[a]) {
+                highest = here;
+                is_inside = k > 0 && k + 1 < e->line[l].count;
+            }
+        }
+    }
+    if (!is_inside) {
+        return false;
+    }
+    memcpy(t->b.X, point_at(e, highest), t->b.size * sizeof(double));
+    t->b.expected_feed = e->feed_volume[highest];
+    t->b.expected_incipient = e->incipient_volume[highest];
+    const size_t m = t->b.ws->active_count;
+    return boundary_solve(&t->b, a == m ? m + 1 : m, MOST_STEPS) == ANSWER_OK &&
+           boundary_report(&t->b, out) == ANSWER_OK;
+}
+
+enum answer envelope_trace(struct fluid_at_t *at_t, const struct fluid *fluid, const double z[],
+                           struct equilibrium_workspace *ws, struct envelope *out)
+{
+    struct tracer t = {.envelope = out};
+    out->point_count = out->line_count = out->critical_count = 0;
+    out->has_cricondentherm = out->has_cricondenbar = false;
+    if (!workspace_set_feed(ws, z)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    if (ws->active_count < 2) {
+        return ANSWER_CANNOT;
+    }
+    const enum answer answer = fluid_set_t(at_t, fluid, 300.0); /* any: the first point sets its own */
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    boundary_begin(&t.b, at_t, at_t, ws, ws->unknowns, ws->partial_volume);
+    t.slope = ws->border;
+    trace_dew_lines(&t);
+    if (!has_come_round(out) && start_ideally(&t.b, false)) {
+        trace_line(&t);
+    }
+    if (out->line_count == 0) {
+        return ANSWER_NO_SUCH_ROOT;
+    }
+    out->has_cricondentherm = report_highest(&t, ws->active_count, out->cricondentherm);
+    out->has_cricondenbar = report_highest(&t, ws->active_count + 1, out->cricondenbar);
+    return ANSWER_OK;
+}
+
+/* ---- points of the envelope ------------------------------------------------------------------------------------ */
+
+struct boundary_list *boundary_list_create(size_t components, struct arena *arena)
+{
+    struct boundary_list *list = arena_alloc(arena, 1, sizeof *list);
+    for (size_t k = 0; k < BOUNDARY_MOST; k++) {
+        list->point[k] = boundary_point_create(components, arena);
+    }
+    return list;
+}
+
+/* `part` of the way from point k of the envelope to the next. */
+static void interpolate(struct boundary_state *b, const struct envelope *e, size_t k, double part)
+{
+    const double *before = point_at(e, k), *after = point_at(e, k + 1);
+    for (size_t c = 0; c < b->size; c++) {
+        b->X[c] = before[c] + part * (after[c] - before[c]);
+    }
+    b->expected_feed = e->feed_volume[k] * pow(e->feed_volume[k + 1] / e->feed_volume[k], part);
+    b->expected_incipient = e->incipient_volume[k] * pow(e->incipient_volume[k + 1] / e->incipient_volume[k], part);
+}
+
+/* The unknown that changes most between the two points. */
+static size_t most_changed(const struct boundary_state *b, const struct envelope *e, size_t k)
+{
+    size_t most = 0;
+    for (size_t c = 1; c < b->size; c++) {
+        if (fabs(point_at(e, k + 1)[c] - point_at(e, k)[c]) > fabs(point_at(e, k + 1)[most] - point_at(e, k)[most])) {
+            most = c;
+        }
+    }
+    return most;
+}
+
+/* Where unknown `a` passes `value`, by false position in the one that changes most: the way the line was traced. */
+static enum answer approach(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value)
+{
+    const size_t held = most_changed(b, e, k);
+    double low = 0.0, high = 1.0, at_low = point_at(e, k)[a] - value, at_high = point_at(e, k + 1)[a] - value;
+    for (int step = 0; step < MOST_REFINEMENTS; step++) {
+        const double part = low + (high - low) * at_low / (at_low - at_high);
+        interpolate(b, e, k, part);
+        const enum answer answer = boundary_solve(b, held, MOST_STEPS);
+        const double miss = b->X[a] - value;
+        if (answer != ANSWER_OK || fabs(miss) < 1e-11) {
+            return answer;
+        }
+        if ((miss < 0.0) == (at_low < 0.0)) {
+            low = part;
+            at_low = miss;
+            at_high *= 0.5;
+        } else {
+            high = part;
+            at_high = miss;
+            at_low *= 0.5;
+        }
+    }
+    return ANSWER_FAILED;
+}
+
+/* Between points k and k + 1 of the envelope unknown `a` passes `value`. */
+static enum answer solve_between(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value,
+                                 struct boundary_point *out)
+{
+    const double before = point_at(e, k)[a], after = point_at(e, k + 1)[a];
+    interpolate(b, e, k, (value - before) / (after - before));
+    b->X[a] = value;
+    enum answer answer = boundary_solve(b, a, MOST_STEPS);
+    if (answer != ANSWER_OK) {
+        answer = approach(b, e, k, a, value);
+    }
+    return answer == ANSWER_OK ? boundary_report(b, out) : answer;
+}
+
+/* By rising pressure, or temperature. */
+static void sort(struct boundary_list *list, bool by_pressure)
+{
+    for (size_t k = 1; k < list->count; k++) {
+        for (size_t l = k; l > 0; l--) {
+            struct boundary_point *lower = list->point[l - 1], *upper = list->point[l];
+            if (by_pressure ? lower->pressure <= upper->pressure : lower->temperature <= upper->temperature) {
+                break;
+            }
+            list->point[l - 1] = upper;
+            list->point[l] = lower;
+        }
+    }
+}
+
+static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, size_t offset, double ln_value,
+                            const double z[], const struct envelope *e, struct equilibrium_workspace *ws,
+                            struct boundary_list *out)
+{
+    struct boundary_state b;
+    out->count = 0;
+    if (!workspace_set_feed(ws, z) || !isfinite(ln_value)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    const enum answer set = fluid_set_t(at_t, fluid, at_t->temperature > 0.0 ? at_t->temperature : 300.0);
+    if (set != ANSWER_OK) {
+        return set;
+    }
+    boundary_begin(&b, at_t, at_t, ws, ws->unknowns, ws->partial_volume);
+    const size_t a = ws->active_count + offset;
+    for (size_t l = 0; l < e->line_count; l++) {
+        for (size_t k = e->line[l].first; k + 1 < e->line[l].first + e->line[l].count; k++) {
+            const double before = point_at(e, k)[a] - ln_value, after = point_at(e, k + 1)[a] - ln_value;
+            if (!((before < 0.0) != (after < 0.0)) || out->count == BOUNDARY_MOST) {
+                continue;
+            }
+            const enum answer answer = solve_between(&b, e, k, a, ln_value, out->point[out->count]);
+            if (answer != ANSWER_OK) {
+                return answer;
+            }
+            out->count++;
+        }
+    }
+    sort(out, offset == 0);
+    return ANSWER_OK;
+}
+
+enum answer boundary_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature, const double z[],
+                          const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
+{
+    return find_all(at_t, fluid, 0, log(temperature), z, envelope, ws, out);
+}
+
+enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
+                          const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
+{
+    return find_all(at_t, fluid, 1, log(pressure), z, envelope, ws, out);
+}

@@ -1,0 +1,225 @@
+/* Dew and bubble points, envelopes and their extrema: against an independent evaluation and by what they mean. */
+#include "equilibrium/boundary.h"
+#include "equilibrium/split.h"
+#include "support/check.h"
+#include "support/mixture_states.h"
+#include "support/sample_mixture.h"
+
+#include <math.h>
+
+#define COUNT(array) (sizeof(array) / sizeof *(array))
+
+static const enum sample_substance FIVE[] = {NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE};
+static const double FIVE_PARTS[] = {0.11, 0.43, 0.17, 0.19, 0.10};
+static const enum sample_substance SPAN_GAS[] = {NITROGEN, N_BUTANE};
+static const double SPAN_GAS_PARTS[] = {0.98, 0.02};
+
+/* Peng-Robinson 1976 in 34 digits from the same constants: equal ln f and mole fractions that sum to one, by Newton's
+ * method in ln K and ln p. */
+struct known_boundary {
+    const char *name;
+    size_t count;
+    enum sample_substance substance[SAMPLE_MOST];
+    double z[SAMPLE_MOST];
+    double temperature;
+    size_t points;
+    double pressure[2];
+    enum boundary_kind kind[2];
+    double first_incipient; /* mole fraction of the first component in the first point's incipient phase */
+};
+
+static const struct known_boundary KNOWN[] = {
+    {"2 % n-butane in nitrogen, both dew points",
+     2,
+     {NITROGEN, N_BUTANE},
+     {0.98, 0.02},
+     248.15,
+     2,
+     {2903366.9516650985, 14099129.930567956},
+     {BOUNDARY_DEW, BOUNDARY_DEW},
+     0.0510152119581},
+    {"methane and propane",
+     2,
+     {METHANE, PROPANE},
+     {0.37, 0.63},
+     277.6,
+     2,
+     {907209.2202260977, 6067147.5041687842},
+     {BOUNDARY_DEW, BOUNDARY_BUBBLE},
+     0.0257525246703},
+    {"five components",
+     5,
+     {NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE},
+     {0.11, 0.43, 0.17, 0.19, 0.10},
+     251.3,
+     2,
+     {327072.34338708006, 10812095.907341331},
+     {BOUNDARY_DEW, BOUNDARY_BUBBLE},
+     0.000708406279931},
+    {"nothing above the cricondentherm", 2, {NITROGEN, N_BUTANE}, {0.98, 0.02}, 255.4, 0, {0.0}, {BOUNDARY_DEW}, 0.0},
+};
+
+static void all_points_at_a_temperature_agree_with_an_independent_evaluation(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    for (size_t k = 0; k < COUNT(KNOWN); k++) {
+        const struct known_boundary *known = &KNOWN[k];
+        struct sample_mixture m = sample_mixture_create(known->count, known->substance, 300.0, arena);
+        struct envelope *envelope = envelope_create(known->count, arena);
+        struct boundary_list *list = boundary_list_create(known->count, arena);
+        assert_int_equal(envelope_trace(m.at_t, m.fluid, known->z, m.ws, envelope), ANSWER_OK);
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, known->temperature, known->z, envelope, m.ws, list), ANSWER_OK);
+        assert_int_equal(list->count, known->points);
+        for (size_t i = 0; i < list->count; i++) {
+            assert_close(list->point[i]->pressure, known->pressure[i], 1e-10, known->name);
+            assert_int_equal(list->point[i]->kind, known->kind[i]);
+            assert_true(list->point[i]->is_stable);
+        }
+        if (list->count > 0) {
+            assert_close(list->point[0]->incipient[0], known->first_incipient, 1e-9, known->name);
+        }
+    }
+    arena_free(arena);
+}
+
+static void the_first_dew_pressure_is_found_without_an_envelope(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    for (size_t k = 0; k < COUNT(KNOWN); k++) {
+        const struct known_boundary *known = &KNOWN[k];
+        struct sample_mixture m = sample_mixture_create(known->count, known->substance, known->temperature, arena);
+        struct boundary_point *point = boundary_point_create(known->count, arena);
+        const enum answer answer = boundary_dew_pressure(m.at_t, known->z, m.ws, point);
+        if (known->points == 0) {
+            assert_int_equal(answer, ANSWER_NO_SUCH_ROOT);
+        } else {
+            assert_int_equal(answer, ANSWER_OK);
+            assert_close(point->pressure, known->pressure[0], 1e-10, known->name);
+            assert_true(point->kind == BOUNDARY_DEW && point->is_stable);
+        }
+    }
+    arena_free(arena);
+}
+
+/* The temperatures found at a pressure lead back to it. */
+static void temperatures_at_a_pressure_lead_back_to_it(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct sample_mixture m = sample_mixture_create(5, FIVE, 300.0, arena);
+    struct envelope *envelope = envelope_create(5, arena);
+    struct boundary_list *at_p = boundary_list_create(5, arena), *at_t = boundary_list_create(5, arena);
+    assert_int_equal(envelope_trace(m.at_t, m.fluid, FIVE_PARTS, m.ws, envelope), ANSWER_OK);
+    static const double pressures[] = {2.3e4, 7.1e5, 5.3e6, 1.19e7, 1.23e7};
+    for (size_t k = 0; k < COUNT(pressures); k++) {
+        assert_int_equal(boundary_at_p(m.at_t, m.fluid, pressures[k], FIVE_PARTS, envelope, m.ws, at_p), ANSWER_OK);
+        assert_int_equal(at_p->count, 2);
+        for (size_t i = 0; i < at_p->count; i++) {
+            const double T = at_p->point[i]->temperature;
+            double nearest = HUGE_VAL;
+            assert_int_equal(boundary_at_t(m.at_t, m.fluid, T, FIVE_PARTS, envelope, m.ws, at_t), ANSWER_OK);
+            for (size_t j = 0; j < at_t->count; j++) {
+                nearest = fmin(nearest, fabs(at_t->point[j]->pressure / pressures[k] - 1.0));
+            }
+            assert_near(nearest, 0.0, 1e-9, "the pressure the temperature was found at");
+        }
+    }
+    arena_free(arena);
+}
+
+/* Peng-Robinson 1976 in 50 digits: the equations of a dew point with the derivative that vanishes at the extremum. */
+static void extrema_agree_with_an_independent_evaluation(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct sample_mixture m = sample_mixture_create(5, FIVE, 300.0, arena);
+    struct envelope *envelope = envelope_create(5, arena);
+    assert_int_equal(envelope_trace(m.at_t, m.fluid, FIVE_PARTS, m.ws, envelope), ANSWER_OK);
+    assert_true(envelope->has_cricondentherm && envelope->has_cricondenbar);
+    assert_close(envelope->cricondentherm->temperature, 326.159754198780718, 1e-10, "five components");
+    assert_close(envelope->cricondentherm->pressure, 7724339.44574178597, 1e-7, "five components");
+    assert_close(envelope->cricondenbar->temperature, 290.527804545601946, 1e-7, "five components");
+    assert_close(envelope->cricondenbar->pressure, 12329268.1729720643, 1e-10, "five components");
+    assert_int_equal(envelope->critical_count, 1);
+    assert_int_equal(envelope->line_count, 1);
+    assert_int_equal(envelope->line[0].end, ENVELOPE_END_LOW_PRESSURE);
+    struct sample_mixture s = sample_mixture_create(2, SPAN_GAS, 300.0, arena);
+    struct envelope *open = envelope_create(2, arena);
+    assert_int_equal(envelope_trace(s.at_t, s.fluid, SPAN_GAS_PARTS, s.ws, open), ANSWER_OK);
+    assert_close(open->cricondentherm->temperature, 255.365561008200818, 1e-10, "2 % n-butane in nitrogen");
+    assert_close(open->cricondentherm->pressure, 7353498.02915674304, 1e-7, "2 % n-butane in nitrogen");
+    assert_int_equal(open->line[0].end, ENVELOPE_END_HIGH_PRESSURE); /* dew line without a critical point */
+    arena_free(arena);
+}
+
+/* Close to the cricondentherm the two dew points approach each other, and none is lost. */
+static void no_pair_is_missed_beside_the_cricondentherm(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct sample_mixture m = sample_mixture_create(5, FIVE, 300.0, arena);
+    struct envelope *envelope = envelope_create(5, arena);
+    struct boundary_list *list = boundary_list_create(5, arena);
+    assert_int_equal(envelope_trace(m.at_t, m.fluid, FIVE_PARTS, m.ws, envelope), ANSWER_OK);
+    static const double below[] = {1.0, 0.1, 1e-2, 1e-3, 1e-4};
+    for (size_t k = 0; k < COUNT(below); k++) {
+        const double T = 326.159754198780718;
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, T - below[k], FIVE_PARTS, envelope, m.ws, list), ANSWER_OK);
+        assert_int_equal(list->count, 2);
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, T + below[k], FIVE_PARTS, envelope, m.ws, list), ANSWER_OK);
+        assert_int_equal(list->count, 0);
+    }
+    arena_free(arena);
+}
+
+/* Just inside a stable boundary the flash finds two phases, just outside one. */
+static void flashes_change_their_phases_at_the_boundary(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct state_room *room = state_room_create(arena);
+    size_t points = 0;
+    for (uint64_t seed = 1; seed <= 150; seed++) {
+        struct mixture_state drawn;
+        mixture_state_draw(seed, STATE_GENERAL, room, &drawn);
+        const struct state_place place = mixture_state_place(&drawn, room);
+        struct envelope *envelope = envelope_create(drawn.count, arena);
+        struct boundary_list *list = boundary_list_create(drawn.count, arena);
+        if (envelope_trace(place.at_t, place.fluid, drawn.z, place.ws, envelope) != ANSWER_OK) {
+            continue; /* one component present */
+        }
+        assert_int_equal(boundary_at_t(place.at_t, place.fluid, drawn.temperature, drawn.z, envelope, place.ws, list),
+                         ANSWER_OK);
+        for (size_t i = 0; i < list->count; i++) {
+            const double p = list->point[i]->pressure;
+            size_t phases[2];
+            if (!list->point[i]->is_stable || p > 2e8) {
+                continue;
+            }
+            for (int side = 0; side < 2; side++) {
+                const double moved = p * (side == 0 ? 1.0 - 1e-8 : 1.0 + 1e-8);
+                assert_int_equal(split_at_tp(place.at_t, moved, drawn.z, place.ws, place.split), ANSWER_OK);
+                phases[side] = place.split->phase_count;
+            }
+            assert_int_not_equal(phases[0], phases[1]);
+            points++;
+        }
+    }
+    assert_true(points > 100);
+    arena_free(arena);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(all_points_at_a_temperature_agree_with_an_independent_evaluation),
+        cmocka_unit_test(the_first_dew_pressure_is_found_without_an_envelope),
+        cmocka_unit_test(temperatures_at_a_pressure_lead_back_to_it),
+        cmocka_unit_test(extrema_agree_with_an_independent_evaluation),
+        cmocka_unit_test(no_pair_is_missed_beside_the_cricondentherm),
+        cmocka_unit_test(flashes_change_their_phases_at_the_boundary),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}
