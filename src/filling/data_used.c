@@ -1,10 +1,12 @@
 /* The sections of a result that tell its making: inputs, data used, sources, methods. */
 #include "filling/data_used.h"
 
+#include "filling/method_parameters.h"
 #include "filling/mixture_data.h"
 
 #include "base/text.h"
 
+#include <ctype.h>
 #include <string.h>
 
 /* ---- inputs ---------------------------------------------------------------------------------------------------- */
@@ -47,23 +49,33 @@ static bool contains(const struct case_fluid *fluid, const struct case_component
     return false;
 }
 
-static bool uses_equation(const struct pooled_method *pooled)
+static bool uses_equation(const char *method, const struct case_component *component)
 {
-    return strcmp(pooled->run.name, "reference") == 0;
+    (void)component;
+    return strcmp(method, "reference") == 0;
 }
 
-/* Methods that take a component's critical constants and acentric factor: all but these two. */
-static bool uses_corresponding_states(const struct pooled_method *pooled)
+static bool uses_acentric(const char *method, const struct case_component *component)
 {
-    return !uses_equation(pooled) && strcmp(pooled->run.name, "ideal-gas") != 0;
+    (void)component;
+    return method_takes_acentric(method);
 }
 
-static bool any_method(const struct method_pool *pool, const struct case_component *component,
-                       bool (*uses)(const struct pooled_method *pooled))
+/* Groups make the pairs of the one method that was fitted with them. */
+static bool uses_groups(const char *method, const struct case_component *component)
+{
+    (void)component;
+    return strcmp(method, "peng-robinson-1978") == 0;
+}
+
+/* Whether a method that answers for the component, in a mixture if that is asked for, uses something of it. */
+static bool any_method(const struct method_pool *pool, const struct case_component *component, bool in_mixture,
+                       bool (*uses)(const char *method, const struct case_component *component))
 {
     for (size_t i = 0; i < pool->count; i++) {
         const struct pooled_method *pooled = &pool->items[i];
-        if (pooled->run.fluid != NULL && contains(pooled->fluid, component) && uses(pooled)) {
+        if (pooled->run.fluid != NULL && contains(pooled->fluid, component) &&
+            (!in_mixture || pooled->fluid->count > 1) && uses(pooled->run.name, component)) {
             return true;
         }
     }
@@ -96,29 +108,25 @@ static struct data_row *add_row(const struct telling *telling, const char *name,
     return row;
 }
 
-static const char *source_words(const struct telling *telling, const struct origin *origin)
+const char *data_source_words(const struct case_tree *tree, const struct origin *origin, struct arena *arena)
 {
     if (origin->source != NULL) {
         return origin->source->key;
     }
     switch (origin->kind) {
     case ORIGIN_DECK:
-        return arena_format(telling->result->arena, "given in this deck, %s",
-                            place_words(telling->tree, origin, telling->result->arena));
+        return arena_format(arena, "given in this deck, %s", place_words(tree, origin, arena));
     case ORIGIN_LIBRARY:
-        return place_words(telling->tree, origin, telling->result->arena);
+        return place_words(tree, origin, arena);
     case ORIGIN_DEFAULT:
         break;
     }
     return "default";
 }
 
-static const char *value_words(const struct quantity *quantity, const char *si_unit, struct arena *arena)
+static const char *source_words(const struct telling *telling, const struct origin *origin)
 {
-    if (quantity->origin.written != NULL) {
-        return quantity->origin.written;
-    }
-    return arena_format(arena, "%.10g%s%s", quantity->value, *si_unit ? " " : "", si_unit);
+    return data_source_words(telling->tree, origin, telling->result->arena);
 }
 
 /* "replaces 369.9 K (lemmon-2009)", back to the first value; and the mark of a value entered from memory. */
@@ -130,7 +138,7 @@ static const char *remark_words(const struct telling *telling, const struct quan
     }
     for (const struct quantity *old = quantity->overridden; old != NULL; old = old->overridden) {
         text_format(&text, "%sreplaces %s (%s)", text.length == 0 ? "" : "; ",
-                    value_words(old, si_unit, telling->result->arena), source_words(telling, &old->origin));
+                    quantity_words(old, si_unit, telling->result->arena), source_words(telling, &old->origin));
     }
     return text.bytes;
 }
@@ -152,7 +160,7 @@ static void tell_quantity(const struct telling *telling, const char *name, const
     if (!quantity->given || !is_of_interest) {
         return;
     }
-    const char *value = value_words(quantity, si_unit, telling->result->arena);
+    const char *value = quantity_words(quantity, si_unit, telling->result->arena);
     struct data_row *row = add_row(telling, name, value);
     row->source = source_words(telling, &quantity->origin);
     row->remark = remark_words(telling, quantity, si_unit);
@@ -196,12 +204,6 @@ static void tell_identity(const struct telling *telling, const struct case_compo
     tell_hazards(telling, component->hazards);
 }
 
-static const char *equation_range(const struct reference_spec *equation, struct arena *arena)
-{
-    return arena_format(arena, "%.6g to %.6g K, to %.6g MPa", equation->smallest_temperature,
-                        equation->largest_temperature, equation->largest_pressure / 1e6);
-}
-
 static void tell_equation(const struct telling *telling, const struct case_component *component)
 {
     const struct reference_spec *equation = component->spec.reference;
@@ -209,7 +211,8 @@ static void tell_equation(const struct telling *telling, const struct case_compo
         return;
     }
     struct arena *arena = telling->result->arena;
-    const char *value = arena_format(arena, "%zu terms, %s", equation->residual_count, equation_range(equation, arena));
+    const char *value =
+        arena_format(arena, "%zu terms, %s", equation->residual_count, equation_range_words(equation, arena));
     struct data_row *row = add_row(telling, "reference-equation", value);
     const struct case_source *source = component->equation_source;
     row->source = source == NULL ? "given in this deck" : source->key;
@@ -251,17 +254,34 @@ static void tell_cubic_set(const struct telling *telling, const struct case_cubi
     }
 }
 
+/* "CH3 2, CH2 1"; the warning of an unverified source stands with the pairs. */
+static void tell_groups(const struct telling *telling, const struct case_component *component)
+{
+    struct text text = {.arena = telling->result->arena};
+    for (size_t i = 0; i < component->group_count; i++) {
+        text_format(&text, "%s%s %.6g", i == 0 ? "" : ", ", component->groups[i].name, component->groups[i].number);
+    }
+    if (text.length == 0) {
+        return;
+    }
+    const struct case_source *source = component->groups_origin.source;
+    struct data_row *row = add_row(telling, "groups", text.bytes);
+    row->source = source_words(telling, &component->groups_origin);
+    row->remark = source != NULL && source->is_unverified ? "unverified" : NULL;
+}
+
 static void tell_component(const struct case_tree *tree, const struct method_pool *pool,
                            const struct case_component *component, struct result *result)
 {
     const struct telling telling = {tree, result, component->name};
-    const bool corresponding = any_method(pool, component, uses_corresponding_states);
+    const bool critical = any_method(pool, component, false, method_takes_critical);
+    const bool acentric = any_method(pool, component, false, uses_acentric);
     tell_identity(&telling, component);
     tell_quantity(&telling, "molar-mass", &component->molar_mass, "kg/mol", true);
-    tell_quantity(&telling, "critical-temperature", &component->critical_temperature, "K", corresponding);
-    tell_quantity(&telling, "critical-pressure", &component->critical_pressure, "Pa", corresponding);
+    tell_quantity(&telling, "critical-temperature", &component->critical_temperature, "K", critical);
+    tell_quantity(&telling, "critical-pressure", &component->critical_pressure, "Pa", critical);
     tell_quantity(&telling, "critical-density", &component->critical_density, "mol/m3", false);
-    tell_quantity(&telling, "acentric", &component->acentric, "", corresponding);
+    tell_quantity(&telling, "acentric", &component->acentric, "", acentric);
     tell_quantity(&telling, "triple-temperature", &component->triple_temperature, "K",
                   any_sheet(tree, SHEET_SATURATION));
     tell_quantity(&telling, "triple-pressure", &component->triple_pressure, "Pa", false);
@@ -272,7 +292,10 @@ static void tell_component(const struct case_tree *tree, const struct method_poo
             tell_cubic_set(&telling, &component->cubic_sets[i]);
         }
     }
-    if (any_method(pool, component, uses_equation)) {
+    if (any_method(pool, component, true, uses_groups)) {
+        tell_groups(&telling, component);
+    }
+    if (any_method(pool, component, false, uses_equation)) {
         tell_equation(&telling, component);
     }
 }
@@ -382,12 +405,28 @@ static void tell_entries_and_rules(const struct case_tree *tree, struct result *
     }
 }
 
+static bool is_part_of_key(char c)
+{
+    return isalnum((unsigned char)c) || c == '-';
+}
+
+/* Whether a text, perhaps NULL, names the source: by itself, not as part of a longer key. */
+static bool mentions(const char *text, const char *key)
+{
+    const size_t length = strlen(key);
+    for (const char *at = text == NULL ? NULL : strstr(text, key); at != NULL; at = strstr(at + 1, key)) {
+        if ((at == text || !is_part_of_key(at[-1])) && !is_part_of_key(at[length])) {
+            return true;
+        }
+    }
+    return false;
+}
+
 static bool is_cited_in_data(const struct result *result, const char *key)
 {
     for (size_t i = 0; i < result->data.count; i++) {
         const struct data_row *row = &result->data.items[i];
-        if ((row->source != NULL && strcmp(row->source, key) == 0) ||
-            (row->remark != NULL && strstr(row->remark, key) != NULL)) {
+        if (mentions(row->source, key) || mentions(row->remark, key)) {
             return true;
         }
     }
@@ -433,57 +472,14 @@ void tell_data(const struct case_tree *tree, const struct method_pool *pool, str
 
 /* ---- methods --------------------------------------------------------------------------------------------------- */
 
-static const char *reference_parameters(const struct case_component *component, struct arena *arena)
-{
-    const struct reference_spec *equation = component->spec.reference;
-    return arena_format(arena,
-                        "%s: %zu terms as in the component's equation block; reducing temperature %.10g K, reducing "
-                        "density %.10g mol/m3, R = %.10g J/(mol K)",
-                        component->name, equation->residual_count, equation->reducing_temperature,
-                        equation->reducing_density, equation->gas_constant);
-}
-
-static const char *corresponding_parameters(const struct pooled_method *pooled, struct arena *arena)
-{
-    struct text text = {.arena = arena};
-    for (size_t i = 0; i < pooled->fluid->count; i++) {
-        const struct case_component *component = pooled->fluid->components[i];
-        text_format(&text, "%s: critical temperature %s, critical pressure %s, acentric factor %s; ", component->name,
-                    value_words(&component->critical_temperature, "K", arena),
-                    value_words(&component->critical_pressure, "Pa", arena),
-                    value_words(&component->acentric, "", arena));
-    }
-    text_format(&text, "R = %.15g J/(mol K)", pooled->run.fluid->gas_constant);
-    return text.bytes;
-}
-
-static const char *parameters_of(const struct pooled_method *pooled, struct arena *arena)
-{
-    if (uses_equation(pooled)) {
-        return reference_parameters(pooled->fluid->components[0], arena);
-    }
-    if (uses_corresponding_states(pooled)) {
-        return corresponding_parameters(pooled, arena);
-    }
-    return arena_format(arena, "%s: R = %.15g J/(mol K)", pooled->fluid->name, pooled->run.fluid->gas_constant);
-}
-
 static const char *title_of(const struct pooled_method *pooled, struct arena *arena)
 {
     const char *citation = pooled->run.fluid->ops->citation;
-    if (uses_equation(pooled) && pooled->fluid->components[0]->equation_source != NULL) {
+    if (strcmp(pooled->run.name, "reference") == 0 && pooled->fluid->components[0]->equation_source != NULL) {
         citation = pooled->fluid->components[0]->equation_source->citation;
     }
     const char *title = pooled->run.fluid->ops->title;
     return citation == NULL ? title : arena_format(arena, "%s: %s", title, citation);
-}
-
-static const char *range_of(const struct pooled_method *pooled, struct arena *arena)
-{
-    if (uses_equation(pooled)) {
-        return equation_range(pooled->fluid->components[0]->spec.reference, arena);
-    }
-    return pooled->run.fluid->ops->validity;
 }
 
 static const char *role_words(const struct pooled_method *pooled, struct arena *arena)
@@ -511,8 +507,8 @@ void tell_methods(const struct method_pool *pool, struct result *result)
             continue;
         }
         row->title = title_of(pooled, result->arena);
-        row->parameters = parameters_of(pooled, result->arena);
-        row->range = range_of(pooled, result->arena);
+        row->parameters = method_parameters(pooled, result->arena);
+        row->range = method_range(pooled, result->arena);
         row->reason = role_words(pooled, result->arena);
     }
 }

@@ -18,7 +18,7 @@ struct method_pool {
         struct method_run run;
         enum method_role role;
         const char *reason; /* why it leads, in the case's words; NULL: it never leads */
-    } *items;
+    } * items;
 };
 
 /* Every value the deck gives, in SI, with its line. */
@@ -30,6 +30,9 @@ void tell_data(const struct case_tree *tree, const struct method_pool *pool, str
 
 /* Every method in use: published name, parameters, range, and why it leads. */
 void tell_methods(const struct method_pool *pool, struct result *result);
+
+/* Where a value comes from: the key of its source, else the place that gives it. */
+const char *data_source_words(const struct case_tree *tree, const struct origin *origin, struct arena *arena);
 
 /* Why a method has no answer for a fluid: "no acentric factor is given for propane". */
 const char *lack_words(const struct case_fluid *fluid, const struct fluid_lack_report *lack, struct arena *arena);

@@ -6,31 +6,25 @@
 #include <string.h>
 
 #define STATED_TEMPERATURE 288.15 /* K: interactions that depend on temperature are told at 15 degC */
-/* K: gases critical below this are light enough for quantum effects; the acentric factor then says little. */
-#define QUANTUM_CRITICAL_TEMPERATURE 50.0
 
-static struct data_row *add_row(struct result *result, const char *group, const char *name, const char *value)
+/* More pairs than these of which a method knows nothing are told in one row. */
+enum { UNKNOWN_NAMED = 3 };
+
+/* Where the rows of one group go. */
+struct telling {
+    const struct case_tree *tree;
+    struct result *result;
+    const char *group;
+};
+
+static struct data_row *add_row(const struct telling *telling, const char *name, const char *value)
 {
-    struct data_row *row = ARENA_APPEND(result->arena, &result->data);
-    *row = (struct data_row){.group = group, .name = name, .value = value};
+    struct data_row *row = ARENA_APPEND(telling->result->arena, &telling->result->data);
+    *row = (struct data_row){.group = telling->group, .name = name, .value = value};
     return row;
 }
 
 /* ---- composition ------------------------------------------------------------------------------------------------- */
-
-static const char *share_place(const struct case_tree *tree, const struct case_share *share, struct arena *arena)
-{
-    const struct origin *origin = &share->given.origin;
-    if (origin->source != NULL) {
-        return origin->source->key;
-    }
-    if (origin->at.file == NULL) {
-        return "default";
-    }
-    const size_t line = location_line(origin->at);
-    return origin->at.file == tree->deck->root ? arena_format(arena, "line %zu", line)
-                                               : arena_format(arena, "%s, line %zu", origin->at.file->name, line);
-}
 
 static const char *basis_words(enum fraction_basis basis)
 {
@@ -45,172 +39,329 @@ static const char *basis_words(enum fraction_basis basis)
     return "volume";
 }
 
-static const char *share_words(const struct case_fluid *fluid, size_t i, struct arena *arena)
+/* The fluid as the deck has it, of which one in mole fractions may have been made. */
+static const struct case_fluid *as_written(const struct case_tree *tree, const struct case_fluid *fluid)
 {
-    struct text text = {.arena = arena};
-    const struct case_share *share = &fluid->shares[i];
-    if (fluid->basis != BASIS_MOLE) {
-        text_format(&text, "%.6g by %s", share->given.value, basis_words(fluid->basis));
-    }
-    if (share->is_rest) {
-        text_format(&text, "%srest", text.length == 0 ? "" : ", ");
-    }
-    if (share->given.uncertainty > 0.0) {
-        text_format(&text, "%s+/- %.6g", text.length == 0 ? "" : ", ", share->given.uncertainty);
-    }
-    return text.bytes;
-}
-
-static void tell_composition(const struct case_tree *tree, const struct case_fluid *fluid, struct result *result)
-{
-    struct arena *arena = result->arena;
-    const char *group = arena_format(arena, "mixture %s", fluid->name);
-    for (size_t i = 0; i < fluid->count; i++) {
-        struct data_row *row = add_row(result, group, fluid->components[i]->name,
-                                       arena_format(arena, "mole fraction %.10g", fluid->fractions[i]));
-        if (fluid->shares != NULL) {
-            row->source = share_place(tree, &fluid->shares[i], arena);
-            row->remark = share_words(fluid, i, arena);
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        if (tree->sheets[i].fluid->shares == fluid->shares) {
+            return tree->sheets[i].fluid;
         }
     }
-    add_row(result, group, "molar-mass", arena_format(arena, "%.10g g/mol", 1e3 * fluid->molar_mass))->source =
+    return fluid;
+}
+
+static const char *line_words(const struct case_tree *tree, const struct origin *origin, struct arena *arena)
+{
+    const bool is_root = origin->source == NULL && origin->at.file != NULL && origin->at.file == tree->deck->root;
+    return is_root ? arena_format(arena, "line %zu", location_line(origin->at))
+                   : data_source_words(tree, origin, arena);
+}
+
+/* Short, as all rows of the section share the width of this column. */
+static const char *share_remark(const struct case_share *share, struct arena *arena)
+{
+    if (share->given.uncertainty > 0.0) {
+        return arena_format(arena, "+/- %.6g", share->given.uncertainty);
+    }
+    return share->is_rest ? "rest" : NULL;
+}
+
+/* One row for each component; `fractions` NULL: the shares as they were written. */
+static void tell_fractions(const struct telling *telling, const struct case_fluid *fluid, const char *kind,
+                           const double fractions[])
+{
+    struct arena *arena = telling->result->arena;
+    for (size_t i = 0; i < fluid->count; i++) {
+        const double value = fractions != NULL ? fractions[i] : fluid->shares[i].given.value;
+        struct data_row *row =
+            add_row(telling, fluid->components[i]->name, arena_format(arena, "%s fraction %.8g", kind, value));
+        if (fluid->shares != NULL && (fractions == NULL || fluid->basis == BASIS_MOLE)) {
+            row->source = line_words(telling->tree, &fluid->shares[i].given.origin, arena);
+            row->remark = share_remark(&fluid->shares[i], arena);
+        }
+    }
+}
+
+/* Shares that are not of amount come first as they were written, with the state where their volumes are real. */
+static void tell_composition(const struct telling *telling, const struct case_fluid *fluid,
+                             const struct case_fluid *written)
+{
+    struct arena *arena = telling->result->arena;
+    if (written->has_state) {
+        add_row(telling, "volumes at", arena_format(arena, "%.6g K, %.8g Pa", written->temperature, written->pressure));
+    }
+    if (fluid->shares != NULL && fluid->basis != BASIS_MOLE) {
+        tell_fractions(telling, fluid, basis_words(fluid->basis), NULL);
+    }
+    tell_fractions(telling, fluid, "mole", fluid->fractions);
+    add_row(telling, "molar-mass", arena_format(arena, "%.10g g/mol", 1e3 * fluid->molar_mass))->source =
         "mean by mole";
+}
+
+/* ---- what has to be assessed ------------------------------------------------------------------------------------- */
+
+static void tell_reaction(const struct telling *telling, const struct case_pair *pair)
+{
+    struct arena *arena = telling->result->arena;
+    const struct case_source *source = pair->reacts_origin.source;
+    const char *name = arena_format(arena, "reaction %s, %s", pair->first, pair->second);
+    struct data_row *row = add_row(telling, name, pair->reacts);
+    row->source = data_source_words(telling->tree, &pair->reacts_origin, arena);
+    row->remark = source != NULL && source->is_unverified ? "unverified" : NULL;
+}
+
+static void tell_assessment(const struct telling *telling, const struct case_fluid *fluid)
+{
+    for (size_t i = 0; i < fluid->pair_count; i++) {
+        if (fluid->pairs[i]->reacts != NULL) {
+            tell_reaction(telling, fluid->pairs[i]);
+        }
+    }
+    if (fluid->assessment != NULL) {
+        add_row(telling, "to be assessed", fluid->assessment);
+    }
+    if (fluid->refuse != NULL) {
+        add_row(telling, "no charge", fluid->refuse);
+    }
+}
+
+/* Each document that a sheet names for the fluid, once. */
+static void tell_documents(const struct telling *telling, const struct case_fluid *written)
+{
+    for (size_t i = 0; i < telling->tree->sheet_count; i++) {
+        const struct case_sheet *sheet = &telling->tree->sheets[i];
+        bool is_told = sheet->fluid != written || sheet->assessed == NULL;
+        for (size_t k = 0; k < i && !is_told; k++) {
+            const struct case_sheet *earlier = &telling->tree->sheets[k];
+            is_told = earlier->fluid == written && earlier->assessed != NULL &&
+                      strcmp(earlier->assessed, sheet->assessed) == 0;
+        }
+        if (!is_told) {
+            add_row(telling, "assessed", arena_format(telling->result->arena, "\"%s\"", sheet->assessed))->source =
+                arena_format(telling->result->arena, "sheet %zu", i + 1);
+        }
+    }
+}
+
+static void tell_mixture(const struct case_tree *tree, const struct pooled_method *pooled, struct result *result)
+{
+    const struct case_fluid *fluid = pooled->fluid, *written = as_written(tree, fluid);
+    const char *group = written->has_state
+                            ? arena_format(result->arena, "mixture %s, by %s", fluid->name, pooled->run.name)
+                            : arena_format(result->arena, "mixture %s", fluid->name);
+    const struct telling telling = {tree, result, group};
+    tell_composition(&telling, fluid, written);
+    tell_assessment(&telling, fluid);
+    tell_documents(&telling, written);
 }
 
 /* ---- pairs ------------------------------------------------------------------------------------------------------- */
 
-/* Pairs of one method that rest on one unverified source. */
+/* Sources marked unverified that pairs of one method rest on, each with the number of them. */
 struct unverified {
-    const struct case_source *source;
-    size_t count;
+    size_t count, capacity;
+    struct unverified_source {
+        const struct case_source *source;
+        size_t pairs;
+    } * items;
 };
 
-struct telling {
-    struct result *result;
+struct pairs_telling {
+    struct telling to;
     const struct pooled_method *pooled;
-    const char *group;
     struct unverified unverified;
+    size_t unknown; /* pairs the method knows nothing of */
 };
 
-static const struct case_source *source_of_groups(const struct case_fluid *fluid)
+static void count_unverified(struct pairs_telling *telling, const struct case_source *source)
 {
-    for (size_t i = 0; i < fluid->group_pair_count; i++) {
-        if (fluid->group_pairs[i]->A.origin.source != NULL) {
-            return fluid->group_pairs[i]->A.origin.source;
+    struct unverified *list = &telling->unverified;
+    for (size_t i = 0; i < list->count; i++) {
+        if (list->items[i].source == source) {
+            list->items[i].pairs++;
+            return;
         }
     }
-    return NULL;
+    *ARENA_APPEND(telling->to.result->arena, list) = (struct unverified_source){source, 1};
 }
 
-static const struct case_source *source_of_pair(const struct telling *telling, size_t i, size_t j,
-                                                enum pair_origin origin)
+static bool has_group(const struct case_component *component, const char *name)
 {
-    const struct case_fluid *fluid = telling->pooled->fluid;
-    if (origin == PAIR_FROM_GROUPS) {
-        return source_of_groups(fluid);
-    }
-    const struct case_pair *pair = case_pair_of(fluid, fluid->components[i]->name, fluid->components[j]->name);
-    const struct case_pair_constants *constants =
-        pair == NULL ? NULL : case_pair_constants_of(pair, telling->pooled->run.name);
-    return constants == NULL ? NULL : constants->kij.origin.source;
-}
-
-static const char *pair_value(const struct pair_parameter *pair, struct arena *arena)
-{
-    struct text text = {.arena = arena};
-    text_format(&text, "%.6g", pair->kij);
-    if (fabs(pair->lij) > 0.0) {
-        text_format(&text, ", lij %.6g", pair->lij);
-    }
-    if (pair->origin == PAIR_FROM_GROUPS) {
-        text_format(&text, " at 15 degC, by groups");
-    }
-    return text.bytes;
-}
-
-static void tell_pair(struct telling *telling, size_t i, size_t j)
-{
-    const struct pooled_method *pooled = telling->pooled;
-    const struct case_fluid *fluid = pooled->fluid;
-    struct result *result = telling->result;
-    struct pair_parameter pair;
-    if (fluid_pair(pooled->run.at_t, i, j, &pair) != ANSWER_OK) {
-        return;
-    }
-    const char *name =
-        arena_format(result->arena, "kij %s, %s", fluid->components[i]->name, fluid->components[j]->name);
-    if (pair.origin == PAIR_FROM_NOTHING) {
-        add_row(result, telling->group, name, "0")->source = "none known";
-        result_warn(result, CODE_W306, location_line(fluid->at), 0,
-                    "%s, %s: no interaction is known of %s and %s: taken as zero", fluid->name, pooled->run.name,
-                    fluid->components[i]->name, fluid->components[j]->name);
-        return;
-    }
-    const struct case_source *source = source_of_pair(telling, i, j, pair.origin);
-    struct data_row *row = add_row(result, telling->group, name, pair_value(&pair, result->arena));
-    row->source = source != NULL ? source->key : pair.origin == PAIR_FROM_DECK ? "given in this deck" : "library";
-    if (source != NULL && source->is_unverified) {
-        row->remark = "unverified";
-        telling->unverified.source = source;
-        telling->unverified.count++;
-    }
-}
-
-static void warn_of_unverified(const struct telling *telling)
-{
-    if (telling->unverified.count > 0) {
-        result_warn(telling->result, CODE_W301, 0, 0,
-                    "%s, %s: the source of %zu interaction%s, %s, is marked unverified, as the citation or the figures "
-                    "were entered from memory: compare them with the publication",
-                    telling->pooled->fluid->name, telling->pooled->run.name, telling->unverified.count,
-                    telling->unverified.count == 1 ? "" : "s", telling->unverified.source->key);
-    }
-}
-
-static void tell_pairs(const struct pooled_method *pooled, struct result *result)
-{
-    struct telling telling = {
-        .result = result,
-        .pooled = pooled,
-        .group = arena_format(result->arena, "pairs of %s, %s", pooled->fluid->name, pooled->run.name)};
-    if (fluid_set_t(pooled->run.at_t, pooled->run.fluid, STATED_TEMPERATURE) != ANSWER_OK) {
-        return;
-    }
-    for (size_t i = 0; i < pooled->fluid->count; i++) {
-        for (size_t j = i + 1; j < pooled->fluid->count; j++) {
-            if (pooled->fluid->fractions[i] > 0.0 && pooled->fluid->fractions[j] > 0.0) {
-                tell_pair(&telling, i, j);
-            }
-        }
-    }
-    warn_of_unverified(&telling);
-}
-
-/* ---- light gases ------------------------------------------------------------------------------------------------- */
-
-/* Cubic methods whose attraction follows the acentric factor alone. */
-static bool goes_by_acentric_factor(const char *method)
-{
-    static const char *const methods[] = {"soave-redlich-kwong", "peng-robinson", "peng-robinson-1978"};
-    for (size_t i = 0; i < sizeof methods / sizeof *methods; i++) {
-        if (strcmp(methods[i], method) == 0) {
+    for (size_t i = 0; i < component->group_count; i++) {
+        if (strcmp(component->groups[i].name, name) == 0) {
             return true;
         }
     }
     return false;
 }
 
-static void warn_of_light_gases(const struct pooled_method *pooled, struct result *result)
+/* Whether the two groups meet when the two molecules do. */
+static bool is_between(const struct case_group_pair *groups, const struct case_component *one,
+                       const struct case_component *other)
 {
-    for (size_t i = 0; i < pooled->fluid->count && goes_by_acentric_factor(pooled->run.name); i++) {
-        const struct case_component *component = pooled->fluid->components[i];
-        if (component->critical_temperature.given &&
-            component->critical_temperature.value < QUANTUM_CRITICAL_TEMPERATURE) {
-            result_warn(result, CODE_W307, location_line(pooled->fluid->at), 0,
-                        "%s: the attraction of %s follows an acentric factor that says little of so light a gas",
-                        pooled->run.name, component->name);
+    return (has_group(one, groups->first) || has_group(other, groups->first)) &&
+           (has_group(one, groups->second) || has_group(other, groups->second));
+}
+
+/* Where the numbers behind one pair come from, each place once. */
+struct places {
+    struct text words;
+    bool is_unverified;
+};
+
+static void take_source(struct pairs_telling *telling, const struct origin *origin, struct places *places)
+{
+    if (origin->source != NULL && origin->source->is_unverified) {
+        places->is_unverified = true;
+        count_unverified(telling, origin->source);
+    }
+}
+
+static void add_place(struct pairs_telling *telling, const struct origin *origin, struct places *places)
+{
+    const char *words = data_source_words(telling->to.tree, origin, telling->to.result->arena);
+    if (places->words.length > 0 && strstr(places->words.bytes, words) != NULL) {
+        return;
+    }
+    text_format(&places->words, "%s%s", places->words.length == 0 ? "" : ", ", words);
+    take_source(telling, origin, places);
+}
+
+static void add_group_places(struct pairs_telling *telling, size_t i, size_t j, struct places *places)
+{
+    const struct case_fluid *fluid = telling->pooled->fluid;
+    for (size_t k = 0; k < fluid->group_pair_count; k++) {
+        if (is_between(fluid->group_pairs[k], fluid->components[i], fluid->components[j])) {
+            add_place(telling, &fluid->group_pairs[k]->A.origin, places);
         }
     }
+    take_source(telling, &fluid->components[i]->groups_origin, places);
+    if (fluid->components[j]->groups_origin.source != fluid->components[i]->groups_origin.source) {
+        take_source(telling, &fluid->components[j]->groups_origin, places);
+    }
+}
+
+static void add_constant_places(struct pairs_telling *telling, size_t i, size_t j, struct places *places)
+{
+    const struct case_fluid *fluid = telling->pooled->fluid;
+    const struct case_pair *pair = case_pair_of(fluid, fluid->components[i]->name, fluid->components[j]->name);
+    const struct case_pair_constants *constants =
+        pair == NULL ? NULL : case_pair_constants_of(pair, telling->pooled->run.name);
+    if (constants != NULL && constants->kij.given) {
+        add_place(telling, &constants->kij.origin, places);
+    }
+    if (constants != NULL && constants->lij.given) {
+        add_place(telling, &constants->lij.origin, places);
+    }
+}
+
+static const char *pair_name(const struct pairs_telling *telling, size_t i, size_t j)
+{
+    const struct case_component *const *components = telling->pooled->fluid->components;
+    return arena_format(telling->to.result->arena, "%s, %s", components[i]->name, components[j]->name);
+}
+
+static const char *pair_words(const struct pair_parameter *pair, struct arena *arena)
+{
+    return fabs(pair->lij) > 0.0 ? arena_format(arena, "%.6g, lij %.6g", pair->kij, pair->lij)
+                                 : arena_format(arena, "%.6g", pair->kij);
+}
+
+static const char *kind_words(enum pair_origin origin)
+{
+    switch (origin) {
+    case PAIR_FROM_GROUPS:
+        return ", by groups";
+    case PAIR_FROM_LIBRARY:
+        return ", constant";
+    case PAIR_FROM_DECK:
+    case PAIR_FROM_NOTHING:
+        break;
+    }
+    return "";
+}
+
+static void tell_known(struct pairs_telling *telling, size_t i, size_t j, const struct pair_parameter *pair)
+{
+    struct arena *arena = telling->to.result->arena;
+    struct places places = {.words = {.arena = arena}};
+    struct data_row *row = add_row(&telling->to, pair_name(telling, i, j), pair_words(pair, arena));
+    if (pair->origin == PAIR_FROM_GROUPS) {
+        add_group_places(telling, i, j, &places);
+    } else {
+        add_constant_places(telling, i, j, &places);
+    }
+    if (places.words.length > 0) {
+        text_format(&places.words, "%s", kind_words(pair->origin));
+    }
+    row->source = places.words.bytes;
+    row->remark = places.is_unverified ? "unverified" : NULL;
+}
+
+/* Calls `tell` for every pair that has shares in the mixture, known to the method or not. */
+static void for_pairs(struct pairs_telling *telling, bool is_known,
+                      void (*tell)(struct pairs_telling *telling, size_t i, size_t j,
+                                   const struct pair_parameter *pair))
+{
+    const struct case_fluid *fluid = telling->pooled->fluid;
+    struct pair_parameter pair;
+    for (size_t i = 0; i < fluid->count; i++) {
+        for (size_t j = i + 1; j < fluid->count; j++) {
+            if (fluid->fractions[i] > 0.0 && fluid->fractions[j] > 0.0 &&
+                fluid_pair(telling->pooled->run.at_t, i, j, &pair) == ANSWER_OK &&
+                (pair.origin != PAIR_FROM_NOTHING) == is_known) {
+                tell(telling, i, j, &pair);
+            }
+        }
+    }
+}
+
+static void count_unknown(struct pairs_telling *telling, size_t i, size_t j, const struct pair_parameter *pair)
+{
+    (void)i, (void)j, (void)pair;
+    telling->unknown++;
+}
+
+static void tell_unknown(struct pairs_telling *telling, size_t i, size_t j, const struct pair_parameter *pair)
+{
+    (void)pair;
+    add_row(&telling->to, pair_name(telling, i, j), "0")->source = "none known";
+}
+
+static void warn_of_unverified(const struct pairs_telling *telling)
+{
+    struct text names = {.arena = telling->to.result->arena};
+    for (size_t i = 0; i < telling->unverified.count; i++) {
+        const struct unverified_source *one = &telling->unverified.items[i];
+        text_format(&names, "%s%s (%zu)", i == 0 ? "" : ", ", one->source->key, one->pairs);
+    }
+    if (names.length > 0) {
+        result_warn(telling->to.result, CODE_W301, 0, 0,
+                    "%s, %s: sources of interactions, each with the number of pairs, are marked unverified, as the "
+                    "citation or the figures were entered from memory: %s: compare them with the publication",
+                    telling->pooled->fluid->name, telling->pooled->run.name, names.bytes);
+    }
+}
+
+static void tell_pairs(const struct case_tree *tree, const struct pooled_method *pooled, struct result *result)
+{
+    const struct case_fluid *fluid = pooled->fluid;
+    struct pairs_telling telling = {
+        .to = {tree, result, arena_format(result->arena, "kij at 15 degC of %s, %s", fluid->name, pooled->run.name)},
+        .pooled = pooled,
+    };
+    if (fluid_set_t(pooled->run.at_t, pooled->run.fluid, STATED_TEMPERATURE) != ANSWER_OK) {
+        return;
+    }
+    for_pairs(&telling, true, tell_known);
+    for_pairs(&telling, false, count_unknown);
+    if (telling.unknown <= UNKNOWN_NAMED) {
+        for_pairs(&telling, false, tell_unknown);
+    } else {
+        add_row(&telling.to, arena_format(result->arena, "%zu other pairs", telling.unknown), "0")->source =
+            "none known";
+    }
+    warn_of_unverified(&telling);
 }
 
 /* ---- the section ------------------------------------------------------------------------------------------------- */
@@ -230,17 +381,13 @@ void tell_mixtures(const struct case_tree *tree, const struct method_pool *pool,
     for (size_t i = 0; i < pool->count; i++) {
         const struct pooled_method *pooled = &pool->items[i];
         if (pooled->fluid->count > 1 && is_first_of_fluid(pool, i)) {
-            tell_composition(tree, pooled->fluid, result);
+            tell_mixture(tree, pooled, result);
         }
     }
     for (size_t i = 0; i < pool->count; i++) {
         const struct pooled_method *pooled = &pool->items[i];
-        if (pooled->run.fluid == NULL) {
-            continue;
+        if (pooled->run.fluid != NULL && pooled->fluid->count > 1) {
+            tell_pairs(tree, pooled, result);
         }
-        if (pooled->fluid->count > 1) {
-            tell_pairs(pooled, result);
-        }
-        warn_of_light_gases(pooled, result);
     }
 }

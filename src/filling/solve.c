@@ -4,44 +4,52 @@
 
 #include "filling/data_used.h"
 #include "filling/listed_ledger.h"
-#include "filling/volume_fractions.h"
+#include "filling/mixture_basis.h"
+#include "filling/pair_warnings.h"
 
 #include <string.h>
 
 /* ---- fluids by amount -------------------------------------------------------------------------------------------- */
 
 /* Fluids written by volume at a stated state, in mole fractions by one method. */
-struct fluid_list {
+struct basis_list {
     size_t count, capacity;
-    struct converted {
-        const struct case_fluid *written, *fluid; /* fluid NULL: the method has no volumes for it */
-        const char *method;
-    } * items;
+    const struct mixture_basis **items;
 };
 
-static const struct case_fluid *converted(struct fluid_list *list, const struct case_fluid *written, const char *method,
-                                          struct arena *arena)
+static const struct mixture_basis *basis_of(struct basis_list *list, const struct case_fluid *written,
+                                            const char *method, struct arena *arena)
 {
     for (size_t i = 0; i < list->count; i++) {
-        if (list->items[i].written == written && strcmp(list->items[i].method, method) == 0) {
-            return list->items[i].fluid;
+        if (list->items[i]->written == written && strcmp(list->items[i]->method, method) == 0) {
+            return list->items[i];
         }
     }
-    const struct case_fluid *fluid = fluid_by_amount(written, method, arena);
-    *ARENA_APPEND(arena, list) = (struct converted){written, fluid, method};
-    return fluid;
+    const struct mixture_basis *basis = mixture_basis_create(written, method, arena);
+    *ARENA_APPEND(arena, list) = basis;
+    return basis;
 }
 
-/* The sheet with its fluid in mole fractions, by the method that leads. */
-static const struct case_sheet *by_amount(const struct case_sheet *sheet, struct fluid_list *list, struct arena *arena)
+/* Gives the sheet its fluid in mole fractions, by the method that leads. False where there are none. */
+static bool take_amounts(struct sheet_run *run, struct basis_list *list)
 {
-    if (!sheet->fluid->has_state) {
-        return sheet;
+    const struct case_sheet *asked = run->sheet;
+    if (!asked->fluid->has_state) {
+        return true;
     }
-    struct case_sheet *made = arena_alloc(arena, 1, sizeof *made);
-    *made = *sheet;
-    made->fluid = converted(list, sheet->fluid, sheet->methods.names[0], arena);
-    return made->fluid == NULL ? NULL : made;
+    const struct mixture_basis *basis = basis_of(list, asked->fluid, asked->methods.names[0], run->arena);
+    tell_mixture_basis(run, basis);
+    struct case_sheet *made = arena_alloc(run->arena, 1, sizeof *made);
+    *made = *asked;
+    made->fluid = basis->fluid;
+    if (asked->charge != NULL) {
+        struct case_charge *charge = arena_alloc(run->arena, 1, sizeof *charge);
+        *charge = *asked->charge;
+        charge->fluid = basis->fluid;
+        made->charge = charge;
+    }
+    run->sheet = basis->fluid == NULL ? asked : made;
+    return basis->fluid != NULL;
 }
 
 /* ---- methods ready --------------------------------------------------------------------------------------------- */
@@ -120,45 +128,36 @@ static const struct {
 struct common {
     struct method_pool pool;
     struct listed_ledger ledger;
-    struct fluid_list fluids;
+    struct basis_list bases;
 };
-
-static void tell_no_fractions(const struct sheet_run *run, const struct case_sheet *asked)
-{
-    sheet_add_note(run->result, run->out, "%s has no volume for a component of %s at the state of its fractions",
-                   asked->methods.names[0], asked->fluid->name);
-    result_warn(run->result, CODE_W302, location_line(asked->at), run->number,
-                "%s: fractions of volume, and %s has no volume for a component", asked->fluid->name,
-                asked->methods.names[0]);
-    run->result->is_undecided = true;
-}
 
 static void answer_sheet(const struct case_tree *tree, size_t index, struct common *common, struct result *result)
 {
-    const struct case_sheet *asked = &tree->sheets[index];
-    const struct case_sheet *sheet = by_amount(asked, &common->fluids, result->arena);
+    const struct case_sheet *sheet = &tree->sheets[index];
     struct sheet_run *run = arena_alloc(result->arena, 1, sizeof *run);
     *run = (struct sheet_run){
         .arena = result->arena,
         .tree = tree,
         .sheet = sheet,
         .result = result,
-        .out = result_add_sheet(result, KINDS[asked->kind].word, asked->title),
+        .out = result_add_sheet(result, KINDS[sheet->kind].word, sheet->title),
         .number = index + 1,
         .ledger = &common->ledger,
     };
-    run->out->fluid = asked->fluid->name;
-    if (sheet == NULL) {
-        tell_no_fractions(run, asked);
-        return;
-    }
+    run->out->fluid = sheet->fluid->name;
     run->out->vessel = sheet->vessel == NULL ? NULL : sheet->vessel->name;
     run->out->charge = sheet->charge == NULL ? NULL : sheet->charge->name;
     for (size_t i = 0; i < sheet->note_count; i++) {
         sheet_add_note(result, run->out, "%s", sheet->notes[i]);
     }
+    if (!take_amounts(run, &common->bases)) {
+        return;
+    }
     ready_methods(run, &common->pool);
     tell_lacks(run);
+    for (size_t i = 0; i < run->method_count; i++) {
+        warn_pairs(run, &run->methods[i]);
+    }
     KINDS[sheet->kind].answer(run);
 }
 
