@@ -494,27 +494,12 @@ static struct location place_of_fluid(const struct sheet_target *target)
     return target->fluid != NULL ? target->fluid->at : target->charge->at;
 }
 
-/* Sheets still take their fluid for a pure gas. */
-static void check_pure(struct elaboration *e, const struct sheet_target *target)
-{
-    const struct case_fluid *fluid = target->sheet.fluid;
-    if (fluid->count == 1) {
-        return;
-    }
-    struct diagnostic *said =
-        diagnose(e->out, CODE_E225, place_of_fluid(target),
-                 "this version answers sheets for pure gases only, and '%s' is a mixture", shortened(e, fluid->name));
-    said->note = "the mixture";
-    said->note_at = fluid->at;
-}
-
 static void complete_sheet(struct elaboration *e, struct sheet_target *target)
 {
     struct case_sheet *sheet = &target->sheet;
     if (!resolve(e, target) || !check_complete(e, target)) {
         return;
     }
-    check_pure(e, target);
     if (target->fill.given) {
         sheet->charge = make_charge(e, sheet->title == NULL ? "of this sheet" : sheet->title, sheet->fluid,
                                     sheet->vessel, &target->fill);

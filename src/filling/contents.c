@@ -91,6 +91,30 @@ enum answer pressure_at(const struct sheet_run *run, struct method_run *method, 
     return contents_by(run, method, mass, temperature, false, out);
 }
 
+static enum vessel_state state_beside(const struct phase_edges *edges, double molar_volume)
+{
+    if (!edges->has_low) {
+        return VESSEL_SUPERCRITICAL;
+    }
+    if (molar_volume >= edges->low_volume) {
+        return VESSEL_VAPOUR;
+    }
+    if (edges->has_high && molar_volume < edges->high_volume) {
+        return edges->high_is_bubble ? VESSEL_LIQUID_FULL : VESSEL_SUPERCRITICAL;
+    }
+    return VESSEL_TWO_PHASE;
+}
+
+enum answer density_beside_edges(const struct sheet_run *run, struct method_run *method, double mass,
+                                 double temperature, struct contents *out)
+{
+    *out = (struct contents){.temperature = temperature,
+                             .molar_volume = run->sheet->vessel->water_capacity.value * method->molar_mass / mass};
+    const enum answer answer = edges_at(method, temperature, &out->edges);
+    out->state = answer == ANSWER_CANNOT ? VESSEL_GAS : state_beside(&out->edges, out->molar_volume);
+    return answer;
+}
+
 enum answer edges_at(struct method_run *method, double temperature, struct phase_edges *out)
 {
     const enum answer answer = set_temperature(method, temperature);

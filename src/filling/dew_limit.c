@@ -1,5 +1,6 @@
 #include "filling/dew_limit.h"
 
+#include "equilibrium/boundary.h"
 #include "filling/mixture_contents.h"
 #include "filling/requirement.h"
 
@@ -203,6 +204,76 @@ static void tell_window(const struct sheet_run *run, struct method_run *method, 
                    shown_text(run, look_pressure(run), edges.high_pressure));
 }
 
+/* ---- no dew point within the range ------------------------------------------------------------------------------- */
+
+/* K: nearer to the cricondentherm than this the limit may jump with a small error of temperature or composition. */
+#define NEAR_CRICONDENTHERM 5.0
+
+/* The limit a few kelvin colder, where there is one at all. */
+static const char *colder_words(const struct permissible *sheet, const struct method_limits *of, size_t index,
+                                double temperature)
+{
+    const struct sheet_run *run = sheet->run;
+    struct predicate colder = *sheet->criteria[index].predicate;
+    colder.from = colder.to = temperature;
+    double mass;
+    bool is_unlimited;
+    struct predicate_finding finding;
+    if (predicate_largest_mass(run, of->method, &colder, predicate_most_mass(run, of->method), &mass, &is_unlimited,
+                               &finding) != ANSWER_OK) {
+        return "has no answer";
+    }
+    return is_unlimited ? "is none" : arena_format(run->arena, "is %s", shown_text(run, look_mass(run), mass));
+}
+
+static void tell_far_dew(const struct permissible *sheet, const struct method_limits *of, size_t index)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct envelope *envelope = mixture_envelope(of->method);
+    const double coldest = sheet->criteria[index].predicate->from;
+    if (envelope == NULL || !envelope->has_cricondentherm) {
+        sheet_add_note(run->result, run->out, "no dew point from %s on (%s)", temperature_words(run, coldest),
+                       of->method->name);
+        return;
+    }
+    const struct boundary_point *highest = envelope->cricondentherm;
+    const double distance = coldest - highest->temperature;
+    struct fact *fact =
+        sheet_add_fact(run->result, run->out, "cricondentherm", highest->temperature, look_temperature(run));
+    fact->method = of->method->name;
+    fact->remark = arena_format(run->arena, "at %s; no dew point above it",
+                                shown_text(run, look_pressure(run), highest->pressure));
+    fact = sheet_add_fact(run->result, run->out, "coldest-above-cricondentherm", distance,
+                          (struct look){"K", {"K", 1.0, 0.0}, 2});
+    fact->method = of->method->name;
+    if (distance >= 0.0 && distance < NEAR_CRICONDENTHERM) {
+        const double colder = coldest - NEAR_CRICONDENTHERM;
+        result_warn(run->result, CODE_W334, location_line(run->sheet->at), run->number,
+                    "'%s' by %s: the cricondentherm is only %.2f K colder; the limit jumps there, and at %s %s",
+                    sheet->criteria[index].predicate->written, of->method->name, distance,
+                    temperature_words(run, colder), colder_words(sheet, of, index, colder));
+    }
+}
+
+static void tell_far_dews(const struct permissible *sheet, size_t index)
+{
+    const struct sheet_run *run = sheet->run;
+    bool has_begun = false;
+    for (size_t m = 0; m < run->method_count; m++) {
+        const struct method_limits *of = &sheet->by_method[m];
+        if (of->method == NULL || of->limits[index].answer != ANSWER_OK || !of->limits[index].is_unlimited) {
+            continue;
+        }
+        if (!has_begun) {
+            sheet_begin_facts(
+                run->result, run->out,
+                arena_format(run->arena, "no dew point for '%s'", sheet->criteria[index].predicate->written));
+            has_begun = true;
+        }
+        tell_far_dew(sheet, of, index);
+    }
+}
+
 /* ---- each criterion ---------------------------------------------------------------------------------------------- */
 
 static bool tell_table(const struct permissible *sheet, size_t index)
@@ -253,6 +324,7 @@ void tell_dew_limits(const struct permissible *sheet)
         const struct predicate *predicate = sheet->criteria[i].predicate;
         if (predicate->kind == PREDICATE_NO_LIQUID) {
             tell_criterion(sheet, i);
+            tell_far_dews(sheet, i);
         }
     }
 }

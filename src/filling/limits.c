@@ -39,8 +39,19 @@ static double rounded_mass(const struct sheet_run *run, double mass, double step
 static struct criterion_limit listed_limit(const struct permissible *sheet)
 {
     const double mass = mass_of_ratio(sheet->run, sheet->listed.filling_ratio);
-    return (struct criterion_limit){.answer = ANSWER_OK, .mass = mass, .rounded = mass,
-                                    .finding = {.answer = ANSWER_OK, .holds = true}};
+    return (struct criterion_limit){
+        .answer = ANSWER_OK, .mass = mass, .rounded = mass, .finding = {.answer = ANSWER_OK, .holds = true}};
+}
+
+/* An entry's limit asks about the fluid: kept, it limits no charge, and missed, it allows none. */
+static struct criterion_limit entry_limit(const struct permissible *sheet, struct method_run *method,
+                                          const struct criterion *criterion, double most)
+{
+    struct criterion_limit limit = {.finding = predicate_check_fluid(sheet->run, method, criterion->predicate)};
+    limit.answer = limit.finding.answer;
+    limit.is_unlimited = limit.answer == ANSWER_OK && limit.finding.holds;
+    limit.mass = limit.rounded = limit.is_unlimited ? most : 0.0;
+    return limit;
 }
 
 static struct criterion_limit limit_of(const struct permissible *sheet, struct method_run *method,
@@ -48,6 +59,9 @@ static struct criterion_limit limit_of(const struct permissible *sheet, struct m
 {
     if (criterion->kind == CRITERION_LISTED && sheet->listed.has_ratio) {
         return listed_limit(sheet);
+    }
+    if (criterion->kind == CRITERION_ENTRY) {
+        return entry_limit(sheet, method, criterion, most);
     }
     struct criterion_limit limit = {0};
     limit.answer = predicate_largest_mass(sheet->run, method, criterion->predicate, most, &limit.mass,
@@ -153,8 +167,7 @@ static struct choice strictest(const struct permissible *sheet)
             continue;
         }
         const struct method_limits *best = &sheet->by_method[choice.index];
-        if (!choice.given ||
-            allows_less(&of->limits[of->permitted.index], &best->limits[best->permitted.index])) {
+        if (!choice.given || allows_less(&of->limits[of->permitted.index], &best->limits[best->permitted.index])) {
             choice = (struct choice){true, m};
         }
     }

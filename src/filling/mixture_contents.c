@@ -1,5 +1,7 @@
 #include "filling/mixture_contents.h"
 
+#include "equilibrium/boundary.h"
+#include "equilibrium/mixture_critical.h"
 #include "equilibrium/mixture_vessel.h"
 #include "filling/search.h"
 
@@ -28,6 +30,10 @@ struct mixture_work {
     struct edge_list list;
     struct kept_edges *kept;  /* [KEPT_TEMPERATURES] */
     struct method_run *alone; /* [count], each component by itself */
+    struct arena *arena;      /* for the envelope, which not every case asks for */
+    bool is_traced;
+    struct envelope *envelope; /* NULL: there is none */
+    struct boundary_list *points;
 };
 
 /* Component i as a fluid of its own. */
@@ -66,6 +72,7 @@ struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const c
         .phase = phase_create(fluid->count, arena),
         .kept = arena_alloc(arena, KEPT_TEMPERATURES, sizeof(struct kept_edges)),
         .alone = alone,
+        .arena = arena,
     };
     for (size_t i = 0; i < MOST_EDGES; i++) {
         work->list.items[i].other = arena_alloc(arena, fluid->count, sizeof(double));
@@ -94,6 +101,42 @@ double mixture_molar_mass(const struct method_run *method, const double x[])
     return sum;
 }
 
+/* ---- the envelope ------------------------------------------------------------------------------------------------ */
+
+const struct envelope *mixture_envelope(struct method_run *method)
+{
+    struct mixture_work *work = method->mixture;
+    if (work->is_traced || (method->fluid->ops->capabilities & CAN_LIQUID) == 0) {
+        return work->envelope;
+    }
+    struct envelope *envelope = envelope_create(work->count, work->arena);
+    work->points = boundary_list_create(work->count, work->arena);
+    work->is_traced = true;
+    if (envelope_trace(method->at_t, method->fluid, method->z, work->ws, envelope) == ANSWER_OK) {
+        work->envelope = envelope;
+    }
+    return work->envelope;
+}
+
+enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out)
+{
+    struct mixture_work *work = method->mixture;
+    const struct envelope *envelope = mixture_envelope(method);
+    if (envelope == NULL) {
+        return ANSWER_CANNOT;
+    }
+    *out = work->points;
+    return is_pressure ? boundary_at_p(method->at_t, method->fluid, value, method->z, envelope, work->ws, work->points)
+                       : boundary_at_t(method->at_t, method->fluid, value, method->z, envelope, work->ws, work->points);
+}
+
+enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out)
+{
+    const struct envelope *envelope = mixture_envelope(method);
+    return mixture_critical_near(method->at_t, method->fluid, method->z, &envelope->critical[index],
+                                 method->mixture->ws, out);
+}
+
 /* ---- where one phase ends ---------------------------------------------------------------------------------------- */
 
 /* Densities are tried upwards from that of a gas at this pressure, each by this factor above the one before. */
@@ -104,6 +147,8 @@ double mixture_molar_mass(const struct method_run *method, const double x[])
 /* Parts of the densest state that the trials end at. */
 #define SHORT_OF_DENSEST 0.9995
 #define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
+/* Molar volumes by this factor beside an edge lie clearly on one side of it. */
+#define BESIDE_EDGE 1.3
 /* The state tried is the stable root of its pressure when their volumes agree to this part. */
 #define SAME_VOLUME 1e-7
 
@@ -168,7 +213,8 @@ static enum answer close_in(struct edge_search *search, double stable, double un
     return answer;
 }
 
-static enum answer find_edges(struct method_run *method, struct edge_list *list)
+/* Without an envelope to go by: densities are tried upwards, and what is two-phase over less than a step is missed. */
+static enum answer scan_edges(struct method_run *method, struct edge_list *list)
 {
     struct edge_search search = {.method = method};
     const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
@@ -186,6 +232,80 @@ static enum answer find_edges(struct method_run *method, struct edge_list *list)
         side_before = side;
     }
     return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;
+}
+
+/* The stable points of the envelope, lowest pressure first: one phase ends at the first, begins again at the second,
+ * and so on. */
+static void edges_of_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
+{
+    list->count = 0;
+    for (size_t i = 0; i < points->count && list->count < MOST_EDGES; i++) {
+        const struct boundary_point *point = points->point[i];
+        if (!point->is_stable) {
+            continue;
+        }
+        struct phase_edge *edge = &list->items[list->count];
+        edge->opens = list->count % 2 == 0;
+        edge->other_is_lighter = point->kind == BOUNDARY_BUBBLE;
+        edge->pressure = point->pressure;
+        edge->molar_volume = point->feed_volume;
+        edge->other_volume = point->incipient_volume;
+        memcpy(edge->other, point->incipient, work->count * sizeof *edge->other);
+        list->count++;
+    }
+}
+
+/* Whether the fluid is one phase below, between and above the edges just where they say: a state of each stretch is
+ * tested. */
+static bool agrees_with_stability(struct method_run *method, const struct edge_list *list)
+{
+    struct edge_search search = {.method = method};
+    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
+    for (size_t i = 0; i <= list->count; i++) {
+        const double thinner = i == 0 ? BESIDE_EDGE * list->items[0].molar_volume : list->items[i - 1].molar_volume;
+        const double denser =
+            i == list->count ? list->items[i - 1].molar_volume / BESIDE_EDGE : list->items[i].molar_volume;
+        double side;
+        const double middle = sqrt(thinner * denser);
+        if (!(thinner > denser)) {
+            return false;
+        }
+        if (middle <= smallest || stable_side(&search, middle, &side) != ANSWER_OK) {
+            continue;
+        }
+        if ((side > 0.0) != (i % 2 == 0)) {
+            return false;
+        }
+    }
+    return true;
+}
+
+static enum answer find_edges(struct method_run *method, struct edge_list *list)
+{
+    const double temperature = method->at_t->temperature;
+    const struct envelope *envelope = mixture_envelope(method);
+    enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    list->count = 0;
+    if (envelope != NULL && envelope->has_cricondentherm && temperature > envelope->cricondentherm->temperature) {
+        return ANSWER_OK;
+    }
+    const struct boundary_list *points;
+    const bool has_points =
+        envelope != NULL && mixture_points(method, false, temperature, &points) == ANSWER_OK && points->count > 0;
+    answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    if (has_points) {
+        edges_of_points(method->mixture, points, list);
+        if (list->count > 0 && agrees_with_stability(method, list)) {
+            return ANSWER_OK;
+        }
+    }
+    return scan_edges(method, list);
 }
 
 enum answer mixture_edge_list(struct method_run *method, const struct edge_list **out)

@@ -20,6 +20,19 @@ enum answer mixture_split(struct method_run *method, double pressure, const stru
 /* Likewise at a molar volume of the whole (m3/mol): the pressure is found. */
 enum answer mixture_split_at_volume(struct method_run *method, double molar_volume, const struct split **out);
 
+/* The whole boundary of the two-phase states, traced when first asked for; NULL where the method has none. */
+struct envelope;
+const struct envelope *mixture_envelope(struct method_run *method);
+
+/* Its critical point `index`, solved for. */
+struct mixture_critical;
+enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out);
+
+/* All dew and bubble points at a pressure (Pa) or temperature (K), metastable ones among them, in the method's memory
+ * until its next question. */
+struct boundary_list;
+enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out);
+
 /* Whether phase k of a split of two or more is a liquid: all but the lightest, and that too where it is as dense. */
 bool mixture_is_liquid(const struct method_run *method, const struct split *split, size_t k);
 

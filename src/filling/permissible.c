@@ -7,6 +7,7 @@
 #include "filling/permissible_internal.h"
 #include "filling/requirement.h"
 #include "filling/sensitivities.h"
+#include "filling/stepwise.h"
 
 #include <math.h>
 #include <string.h>
@@ -333,7 +334,9 @@ static void tell_requirements(const struct permissible *sheet)
         if (criterion->kind == CRITERION_LISTED) {
             continue;
         }
-        const struct predicate_finding finding = predicate_check(run, method, criterion->predicate, sheet->mass);
+        const struct predicate_finding finding = criterion->kind == CRITERION_ENTRY
+                                                     ? predicate_check_fluid(run, method, criterion->predicate)
+                                                     : predicate_check(run, method, criterion->predicate, sheet->mass);
         struct requirement *requirement =
             add_requirement(run, method, requirement_words(sheet, criterion), criterion->predicate, &finding);
         if (criterion->is_replaced) {
@@ -437,6 +440,7 @@ void answer_permissible_charge(struct sheet_run *run)
     tell_charge(&sheet);
     tell_headline(&sheet);
     tell_pressures(&sheet);
+    add_stepwise(run, governing_method(&sheet), sheet.mass);
     const struct fill_point fill = fill_point_of(run, governing_method(&sheet), sheet.mass);
     add_sensitivities(run, governing_method(&sheet), sheet.mass, hottest_ruled(&sheet), &fill);
     tell_fill_chart(&sheet);

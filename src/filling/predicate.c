@@ -138,6 +138,7 @@ static void compare(struct predicate_finding *finding, const struct predicate *p
         break;
     }
     finding->has_margin = true;
+    finding->bound = bound;
     decide(finding, holds, finding->margin, NULL, score);
 }
 
@@ -201,7 +202,7 @@ static double above_upper_edge(const struct contents *contents)
     return contents->edges.has_high ? log(contents->edges.high_volume / contents->molar_volume) : -(double)INFINITY;
 }
 
-static const char *phase_words(const struct contents *contents)
+static const char *phase_words(const struct contents *contents, bool is_pure)
 {
     switch (contents->state) {
     case VESSEL_VAPOUR:
@@ -217,12 +218,13 @@ static const char *phase_words(const struct contents *contents)
     if (contents->edges.has_high) {
         return "one phase, would condense in use";
     }
-    return contents->phases[0].x == NULL ? "above the critical temperature" : "no dew point at this temperature";
+    return is_pure ? "above the critical temperature" : "no dew point at this temperature";
 }
 
 /* `no liquid` asks whether any density up to the vessel's would condense: whether its density is above the dew density.
  * `one phase` asks about the vessel's own density alone. */
-static struct predicate_finding phases_at(enum predicate_kind kind, struct predicate_finding finding, double *score)
+static struct predicate_finding phases_at(enum predicate_kind kind, bool is_pure, struct predicate_finding finding,
+                                          double *score)
 {
     const struct contents *contents = &finding.worst;
     if (!contents->edges.is_known) {
@@ -232,9 +234,10 @@ static struct predicate_finding phases_at(enum predicate_kind kind, struct predi
     }
     const double low = below_dew(contents), high = above_upper_edge(contents);
     if (kind == PREDICATE_NO_LIQUID) {
-        decide(&finding, low >= 0.0, low, phase_words(contents), score);
+        decide(&finding, low >= 0.0, low, phase_words(contents, is_pure), score);
     } else {
-        decide(&finding, contents->phase_count == 1, fmin(fabs(low), fabs(high)), phase_words(contents), score);
+        decide(&finding, contents->phase_count == 1, fmin(fabs(low), fabs(high)), phase_words(contents, is_pure),
+               score);
     }
     return finding;
 }
@@ -295,12 +298,25 @@ static struct predicate_finding find_contents(const struct sheet_run *run, struc
     return finding;
 }
 
+/* `no liquid` of a mixture asks for its edges only, which saves the work of filling the vessel. */
+static struct predicate_finding no_liquid_of_mixture(const struct sheet_run *run, struct method_run *method,
+                                                     double mass, double temperature, double *score)
+{
+    struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
+    const enum answer answer = density_beside_edges(run, method, mass, temperature, &finding.worst);
+    return answer == ANSWER_OK || answer == ANSWER_CANNOT ? phases_at(PREDICATE_NO_LIQUID, false, finding, score)
+                                                          : undecided(answer, temperature, "the method gave no answer");
+}
+
 struct predicate_finding predicate_at(const struct sheet_run *run, struct method_run *method,
                                       const struct predicate *predicate, double mass, double temperature, double *score)
 {
     *score = 0.0;
     if (predicate->kind == PREDICATE_NO_SOLID) {
         return no_solid_at(run, temperature, score);
+    }
+    if (predicate->kind == PREDICATE_NO_LIQUID && method->mixture != NULL) {
+        return no_liquid_of_mixture(run, method, mass, temperature, score);
     }
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
     if (predicate->kind != PREDICATE_COMPARE || needs_contents(predicate)) {
@@ -312,7 +328,24 @@ struct predicate_finding predicate_at(const struct sheet_run *run, struct method
     if (predicate->kind == PREDICATE_COMPARE) {
         return compare_at(run, predicate, mass, finding, score);
     }
-    return phases_at(predicate->kind, finding, score);
+    return phases_at(predicate->kind, method->mixture == NULL, finding, score);
+}
+
+/* So much short of the bubble density, relative, a vessel holds liquid and a trace of vapour. */
+#define SHORT_OF_FULL 1e-9
+
+struct predicate_finding predicate_check_fluid(const struct sheet_run *run, struct method_run *method,
+                                               const struct predicate *predicate)
+{
+    struct phase_edges edges;
+    const enum answer answer = edges_at(method, predicate->from, &edges);
+    if (answer != ANSWER_OK || !edges.high_is_bubble) {
+        return undecided(answer == ANSWER_OK ? ANSWER_CANNOT : answer, predicate->from,
+                         answer == ANSWER_OK ? "not applicable: the fluid has no bubble point there"
+                                             : "the method gave no answer");
+    }
+    const double full = run->sheet->vessel->water_capacity.value * method->molar_mass / edges.high_volume;
+    return predicate_check(run, method, predicate, full * (1.0 - SHORT_OF_FULL));
 }
 
 /* ---- a range of temperatures ------------------------------------------------------------------------------------- */

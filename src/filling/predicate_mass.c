@@ -23,6 +23,8 @@ enum {
 #define BESIDE_PHASE_CHANGE 1e-9
 /* Searches end a little short of the densest state, where pressures have no bound. */
 #define SHORT_OF_DENSEST 0.999
+/* Of a mixture's densest state: tens of thousands of bar, where splits no longer converge. */
+#define MIXTURE_SHORT_OF_DENSEST 0.97
 /* kg/m3: denser than any filled gas; for methods without a densest state. */
 #define DENSEST             5000.0
 #define SETTLED_TEMPERATURE 288.15 /* K */
@@ -33,7 +35,8 @@ double predicate_most_mass(const struct sheet_run *run, struct method_run *metho
     if (fluid_set_t(method->at_t, method->fluid, SETTLED_TEMPERATURE) == ANSWER_OK) {
         const double smallest = smallest_molar_volume(method);
         if (smallest > 0.0) {
-            return SHORT_OF_DENSEST * volume * method->molar_mass / smallest;
+            return (method->mixture == NULL ? SHORT_OF_DENSEST : MIXTURE_SHORT_OF_DENSEST) * volume *
+                   method->molar_mass / smallest;
         }
     }
     return DENSEST * volume;
@@ -68,7 +71,8 @@ static void add_trial(struct trials *trials, double mass, double most)
     }
 }
 
-/* Both sides of an edge at `molar_volume`, where predicates on phases change; `per_volume` over it is the mass there. */
+/* Both sides of an edge at `molar_volume`, where predicates on phases change; `per_volume` over it is the mass there.
+ */
 static void add_edge_trials(struct trials *trials, bool is_given, double per_volume, double molar_volume, double most)
 {
     if (is_given) {

@@ -71,12 +71,21 @@ size_t deck_line(const struct sheet_run *run, struct location at)
 
 /* ---- requirements ------------------------------------------------------------------------------------------------ */
 
+/* A bound missed by no more than this part of it is met: a vessel filled to a rating keeps it, whatever the last digits
+ * of the solution say. */
+#define BOUND_TOLERANCE 1e-9
+
+static bool is_at_its_bound(const struct predicate_finding *finding)
+{
+    return finding->has_margin && !(finding->margin < -BOUND_TOLERANCE * fabs(finding->bound));
+}
+
 static enum requirement_state state_of(const struct predicate_finding *finding)
 {
     if (finding->answer != ANSWER_OK) {
         return REQUIREMENT_UNDECIDED;
     }
-    return finding->holds ? REQUIREMENT_MET : REQUIREMENT_NOT_MET;
+    return finding->holds || is_at_its_bound(finding) ? REQUIREMENT_MET : REQUIREMENT_NOT_MET;
 }
 
 struct requirement *add_requirement(const struct sheet_run *run, const struct method_run *method, const char *text,
@@ -86,7 +95,7 @@ struct requirement *add_requirement(const struct sheet_run *run, const struct me
     requirement->state = state_of(finding);
     requirement->reason = finding->words;
     requirement->has_margin = finding->answer == ANSWER_OK && finding->has_margin;
-    requirement->margin = finding->margin;
+    requirement->margin = requirement->state == REQUIREMENT_MET ? fmax(finding->margin, 0.0) : finding->margin;
     requirement->look = look_predicate_margin(run, predicate);
     requirement->has_worst_temperature = true;
     requirement->worst_temperature = finding->worst_temperature;
@@ -98,8 +107,7 @@ struct requirement *add_requirement(const struct sheet_run *run, const struct me
 
 bool method_governs(const struct method_run *method)
 {
-    return method->fluid != NULL && method->may_govern &&
-           (method->fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
+    return method->fluid != NULL && method->may_govern && (method->fluid->ops->capabilities & IS_FOR_COMPARISON) == 0;
 }
 
 /* Worse: not met before undecided before met; among equals the smaller margin. */
@@ -118,7 +126,8 @@ static struct predicate_finding check_by(const struct sheet_run *run, struct met
                                          const struct predicate *predicate, double mass)
 {
     if (method->fluid == NULL) {
-        return (struct predicate_finding){.answer = ANSWER_CANNOT, .worst_temperature = predicate->from,
+        return (struct predicate_finding){.answer = ANSWER_CANNOT,
+                                          .worst_temperature = predicate->from,
                                           .words = "the method has no data for this gas"};
     }
     const struct predicate_finding finding = predicate_check(run, method, predicate, mass);

@@ -1,6 +1,7 @@
 /* The sheet `saturation`: the boiling line of a pure gas by equal fugacity, method beside method, the classical
  * iteration written out where it is asked for, and the hand check of one point. */
 #include "filling/hand_check.h"
+#include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
 
 #include <math.h>
@@ -63,8 +64,7 @@ static bool latent_heat_of(const struct sheet_run *run, const struct method_run 
         return false;
     }
     const double RT = method->fluid->gas_constant * saturation->temperature;
-    *latent_heat =
-        RT * (vapour.residual_enthalpy_rt - liquid.residual_enthalpy_rt) / run->sheet->fluid->molar_mass;
+    *latent_heat = RT * (vapour.residual_enthalpy_rt - liquid.residual_enthalpy_rt) / run->sheet->fluid->molar_mass;
     return true;
 }
 
@@ -80,8 +80,7 @@ static struct point solve_point(const struct sheet_run *run, struct method_run *
         }
     }
     if (point.answer == ANSWER_OK) {
-        point.is_inside =
-            warn_outside_range(run, method, point.saturation.temperature, point.saturation.pressure);
+        point.is_inside = warn_outside_range(run, method, point.saturation.temperature, point.saturation.pressure);
         point.has_latent_heat = latent_heat_of(run, method, &point.saturation, &point.latent_heat);
     }
     return point;
@@ -217,8 +216,7 @@ static void add_line_table(const struct sheet_run *run, const struct method_run 
     }
 }
 
-static void add_evidence_table(const struct sheet_run *run, const struct method_run *method,
-                               const struct point *points)
+static void add_evidence_table(const struct sheet_run *run, const struct method_run *method, const struct point *points)
 {
     struct result *result = run->result;
     struct table *table = sheet_add_table(result, run->out, "equality of the fugacities", method->name);
@@ -275,9 +273,8 @@ static double start_of(const struct sheet_run *run, const struct method_run *met
 
 enum { MOST_STARTS = 6 };
 
-static size_t find_passes(const struct sheet_run *run, const struct method_run *method,
-                          const struct saturation *answer, struct saturation_pass passes[MOST_PASSES],
-                          const char **words)
+static size_t find_passes(const struct sheet_run *run, const struct method_run *method, const struct saturation *answer,
+                          struct saturation_pass passes[MOST_PASSES], const char **words)
 {
     for (int attempt = 0; attempt < MOST_STARTS; attempt++) {
         size_t count = 0;
@@ -294,11 +291,9 @@ static void add_pass_table(const struct sheet_run *run, const struct method_run 
 {
     struct result *result = run->result;
     const struct look pressure = look_significant(look_pressure(run), 10);
-    struct table *table =
-        sheet_add_table(result, run->out,
-                        arena_format(run->arena, "iteration at %s",
-                                     shown_text(run, look_temperature(run), temperature)),
-                        method->name);
+    struct table *table = sheet_add_table(
+        result, run->out,
+        arena_format(run->arena, "iteration at %s", shown_text(run, look_temperature(run), temperature)), method->name);
     table_add_column(result, table, "pass", look_ratio(0));
     table_add_column(result, table, "trial-pressure", pressure);
     table_add_column(result, table, "vapour-compressibility-factor", look_ratio(8));
@@ -308,8 +303,8 @@ static void add_pass_table(const struct sheet_run *run, const struct method_run 
     table_add_column(result, table, "next-pressure", pressure);
     for (size_t i = 0; i < count; i++) {
         struct cell *row = table_add_row(result, table);
-        const double values[] = {(double)(i + 1),           passes[i].pressure,        passes[i].Z_vapour,
-                                 passes[i].Z_liquid,        passes[i].fugacity_vapour, passes[i].fugacity_liquid,
+        const double values[] = {(double)(i + 1),        passes[i].pressure,        passes[i].Z_vapour,
+                                 passes[i].Z_liquid,     passes[i].fugacity_vapour, passes[i].fugacity_liquid,
                                  passes[i].next_pressure};
         for (size_t k = 0; k < sizeof values / sizeof *values; k++) {
             cell_set(&row[k], values[k]);
@@ -337,8 +332,7 @@ static void show_iteration(const struct sheet_run *run, const struct method_run 
         return;
     }
     sheet_add_note(run->result, run->out, "Iteration p(next) = p fL(p) / fV(p), started at %s: %s.",
-                   shown_text(run, look_significant(look_pressure(run), SATURATION_DIGITS), passes[0].pressure),
-                   words);
+                   shown_text(run, look_significant(look_pressure(run), SATURATION_DIGITS), passes[0].pressure), words);
     add_pass_table(run, lead, answer->temperature, passes, count);
     if (!has_converged(&passes[count - 1])) {
         result_warn(run->result, CODE_W351, location_line(run->sheet->at), run->number,
@@ -414,6 +408,10 @@ static bool has_liquid(const struct sheet_run *run, const struct method_run *met
 
 void answer_saturation(struct sheet_run *run)
 {
+    if (run->sheet->fluid->count > 1) {
+        answer_mixture_saturation(run);
+        return;
+    }
     const struct point *lead = NULL;
     for (size_t i = 0; i < run->method_count; i++) {
         struct method_run *method = &run->methods[i];

@@ -7,6 +7,7 @@
 #include "filling/phases_table.h"
 #include "filling/requirement.h"
 #include "filling/sensitivities.h"
+#include "filling/stepwise.h"
 
 #include <math.h>
 #include <string.h>
@@ -241,6 +242,7 @@ void answer_settled_pressure(struct sheet_run *run)
     add_phases_table(run, lead, settled.mass, settled.temperatures, settled.count);
     add_liquid_at(run, lead, settled.mass, coldest(&settled));
     add_found(&settled);
+    add_stepwise(run, lead, settled.mass);
     const struct fill_point fill = fill_point_of(run, lead, settled.mass);
     add_sensitivities(run, lead, settled.mass, hottest(&settled), &fill);
     add_requirements(&settled);

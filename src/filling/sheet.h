@@ -77,6 +77,11 @@ enum answer contents_at(const struct sheet_run *run, struct method_run *method, 
 enum answer pressure_at(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
                         struct contents *out);
 
+/* The same without the vessel: molar volume, edges, and the state that follows from them; pressure and phases are left
+ * out. For questions whether any density up to the vessel's would condense. */
+enum answer density_beside_edges(const struct sheet_run *run, struct method_run *method, double mass,
+                                 double temperature, struct contents *out);
+
 /* The edges at `temperature`. */
 enum answer edges_at(struct method_run *method, double temperature, struct phase_edges *out);
 

@@ -1,0 +1,287 @@
+/* The sheet `saturation` for a mixture: its dew and bubble points at each swept temperature or pressure, with the phase
+ * that forms there, and what bounds them: cricondentherm, cricondenbar, critical points. */
+#include "equilibrium/boundary.h"
+#include "equilibrium/mixture_critical.h"
+#include "filling/hand_check.h"
+#include "filling/mixture_contents.h"
+#include "filling/mixture_sheets.h"
+
+enum { DIGITS = 7 };
+
+struct sweeping {
+    const struct sheet_run *run;
+    struct method_run *method;
+    struct table *points, *evidence;
+    bool is_lead;
+};
+
+static bool by_pressure(const struct sheet_run *run)
+{
+    return run->sheet->pressures.given && !run->sheet->temperatures.given;
+}
+
+static const struct case_sweep *sweep_of(const struct sheet_run *run)
+{
+    return by_pressure(run) ? &run->sheet->pressures : &run->sheet->temperatures;
+}
+
+/* ---- columns ----------------------------------------------------------------------------------------------------- */
+
+enum point_column {
+    POINT_TEMPERATURE,
+    POINT_PRESSURE,
+    POINT_KIND,
+    POINT_DENSITY,
+    POINT_OTHER_DENSITY,
+    POINT_FRACTIONS
+};
+
+static struct look look_found_temperature(const struct sheet_run *run)
+{
+    struct look look = look_temperature(run);
+    look.decimals += by_pressure(run) ? 2 : 0;
+    return look;
+}
+
+static struct table *begin_points(const struct sheet_run *run, const struct method_run *method)
+{
+    struct result *result = run->result;
+    const struct look density = look_significant(look_density(run), DIGITS);
+    const struct look fraction = {"1", {"%", 0.01, 0.0}, -5};
+    struct table *table = sheet_add_table(
+        result, run->out, "dew and bubble points, and mole fractions of the phase that forms", method->name);
+    table_add_column(result, table, "temperature", look_found_temperature(run));
+    table_add_column(result, table, "pressure", look_significant(look_pressure(run), DIGITS));
+    table_add_word_column(result, table, "point");
+    table_add_column(result, table, "density", density);
+    table_add_column(result, table, "forming-density", density);
+    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
+        table_add_column(result, table, run->sheet->fluid->components[i]->name, fraction);
+    }
+    return table;
+}
+
+enum evidence_column {
+    EVIDENCE_TEMPERATURE,
+    EVIDENCE_PRESSURE,
+    EVIDENCE_DIFFERENCE,
+    EVIDENCE_DISTANCE,
+    EVIDENCE_VERDICT
+};
+
+static struct table *begin_evidence(const struct sheet_run *run, const struct method_run *method)
+{
+    struct result *result = run->result;
+    struct table *table = sheet_add_table(result, run->out, "equality of the fugacities, and stability", method->name);
+    table_add_column(result, table, "temperature", look_found_temperature(run));
+    table_add_column(result, table, "pressure", look_significant(look_pressure(run), DIGITS));
+    table_add_column(result, table, "ln-fugacity-difference", look_ratio(-2));
+    table_add_column(result, table, "tangent-plane-distance", look_ratio(-3));
+    table_add_word_column(result, table, "whole-is");
+    return table;
+}
+
+/* ---- points ------------------------------------------------------------------------------------------------------ */
+
+static void add_point(const struct sweeping *at, const struct boundary_point *point)
+{
+    const struct sheet_run *run = at->run;
+    struct cell *row = table_add_row(run->result, at->points);
+    const bool is_inside = warn_outside_range(run, at->method, point->temperature, point->pressure);
+    cell_set(&row[POINT_TEMPERATURE], point->temperature);
+    cell_set(&row[POINT_PRESSURE], point->pressure);
+    cell_set_text(&row[POINT_KIND], point->kind == BOUNDARY_DEW ? "dew" : "bubble");
+    cell_set(&row[POINT_DENSITY], at->method->molar_mass / point->feed_volume);
+    cell_set(&row[POINT_OTHER_DENSITY], mixture_molar_mass(at->method, point->incipient) / point->incipient_volume);
+    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
+        cell_set(&row[POINT_FRACTIONS + i], point->incipient[i]);
+    }
+    row[POINT_TEMPERATURE].is_outside_range = row[POINT_PRESSURE].is_outside_range = !is_inside;
+}
+
+static void add_evidence(const struct sweeping *at, const struct boundary_point *point)
+{
+    struct cell *row = table_add_row(at->run->result, at->evidence);
+    cell_set(&row[EVIDENCE_TEMPERATURE], point->temperature);
+    cell_set(&row[EVIDENCE_PRESSURE], point->pressure);
+    cell_set(&row[EVIDENCE_DIFFERENCE], point->residual);
+    cell_set(&row[EVIDENCE_DISTANCE], point->smallest_tpd);
+    cell_set_text(&row[EVIDENCE_VERDICT], point->is_stable ? "stable" : "metastable, left out");
+}
+
+static void add_words(const struct sweeping *at, double swept, const char *words)
+{
+    struct cell *row = table_add_row(at->run->result, at->points);
+    cell_set(&row[by_pressure(at->run) ? POINT_PRESSURE : POINT_TEMPERATURE], swept);
+    cell_set_text(&row[POINT_KIND], words);
+}
+
+static void work_by_hand(const struct sweeping *at, const struct boundary_point *point)
+{
+    const struct sheet_run *run = at->run;
+    const struct mixture_state whole = {point->temperature, point->feed_volume, at->method->z};
+    const struct mixture_state forming = {point->temperature, point->incipient_volume, point->incipient};
+    struct hand_check *check = sheet_add_hand_check(
+        run->result, run->out,
+        arena_format(run->arena, "%s point at %s and %s, %s", point->kind == BOUNDARY_DEW ? "dew" : "bubble",
+                     shown_text(run, look_temperature(run), point->temperature),
+                     shown_text(run, look_pressure(run), point->pressure), at->method->name));
+    hand_check_mixture_components(run, check, at->method, &whole);
+    hand_check_mixture_phase(run, check, at->method, &whole, "the whole", true);
+    hand_check_mixture_phase(run, check, at->method, &forming, "the phase that forms", true);
+}
+
+static const char *no_answer(const struct sweeping *at, double swept)
+{
+    const struct sheet_run *run = at->run;
+    result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number,
+                "%s, %s: dew and bubble points were not found at %s", run->sheet->fluid->name, at->method->name,
+                by_pressure(run) ? shown_text(run, look_pressure(run), swept)
+                                 : shown_text(run, look_temperature(run), swept));
+    run->result->is_undecided = run->result->is_undecided || at->is_lead;
+    return "no answer";
+}
+
+static void add_points_at(const struct sweeping *at, double swept)
+{
+    const struct boundary_list *list;
+    if (mixture_points(at->method, by_pressure(at->run), swept, &list) != ANSWER_OK) {
+        add_words(at, swept, no_answer(at, swept));
+        return;
+    }
+    size_t told = 0;
+    for (size_t i = 0; i < list->count; i++) {
+        add_evidence(at, list->point[i]);
+        if (list->point[i]->is_stable) {
+            add_point(at, list->point[i]);
+            told++;
+        }
+    }
+    if (told == 0) {
+        add_words(at, swept, "none");
+    }
+}
+
+/* The first stable point of the sweep; a list lives only until the next question. */
+static void work_first_point(const struct sweeping *at)
+{
+    const struct case_sweep *sweep = sweep_of(at->run);
+    for (size_t i = 0; i < sweep->count; i++) {
+        const struct boundary_list *list;
+        if (mixture_points(at->method, by_pressure(at->run), sweep->values[i], &list) != ANSWER_OK) {
+            continue;
+        }
+        for (size_t k = 0; k < list->count; k++) {
+            if (list->point[k]->is_stable) {
+                work_by_hand(at, list->point[k]);
+                return;
+            }
+        }
+    }
+}
+
+/* ---- bounds ------------------------------------------------------------------------------------------------------ */
+
+static void add_state(const struct sheet_run *run, const struct method_run *method, const char *name,
+                      double temperature, double pressure)
+{
+    struct fact *fact = sheet_add_fact(run->result, run->out, arena_format(run->arena, "%s-temperature", name),
+                                       temperature, look_temperature(run));
+    fact->method = method->name;
+    fact = sheet_add_fact(run->result, run->out, arena_format(run->arena, "%s-pressure", name), pressure,
+                          look_pressure(run));
+    fact->method = method->name;
+}
+
+static void add_open_ends(const struct sheet_run *run, const struct method_run *method, const struct envelope *envelope)
+{
+    for (size_t i = 0; i < envelope->line_count; i++) {
+        if (envelope->line[i].end == ENVELOPE_END_HIGH_PRESSURE) {
+            sheet_add_note(run->result, run->out, "the boundary is open: it goes on above %s, where it was left (%s)",
+                           shown_text(run, look_pressure(run), ENVELOPE_HIGHEST_PRESSURE), method->name);
+        } else if (envelope->line[i].end == ENVELOPE_END_LOST) {
+            result_warn(run->result, CODE_W352, location_line(run->sheet->at), run->number,
+                        "%s, %s: a line of dew and bubble points could not be followed to its end",
+                        run->sheet->fluid->name, method->name);
+        }
+    }
+}
+
+static void tell_bounds(const struct sheet_run *run)
+{
+    sheet_begin_facts(run->result, run->out, "what bounds the two-phase states");
+    for (size_t m = 0; m < run->method_count; m++) {
+        struct method_run *method = &run->methods[m];
+        const struct envelope *envelope = method->fluid == NULL ? NULL : mixture_envelope(method);
+        if (envelope == NULL) {
+            continue;
+        }
+        if (envelope->has_cricondentherm) {
+            add_state(run, method, "cricondentherm", envelope->cricondentherm->temperature,
+                      envelope->cricondentherm->pressure);
+        }
+        if (envelope->has_cricondenbar) {
+            add_state(run, method, "cricondenbar", envelope->cricondenbar->temperature,
+                      envelope->cricondenbar->pressure);
+        }
+        struct mixture_critical critical;
+        for (size_t i = 0; i < envelope->critical_count; i++) {
+            if (mixture_critical_point(method, i, &critical) == ANSWER_OK) {
+                add_state(run, method, "critical", critical.temperature, critical.pressure);
+            }
+        }
+    }
+    for (size_t m = 0; m < run->method_count; m++) {
+        struct method_run *method = &run->methods[m];
+        const struct envelope *envelope = method->fluid == NULL ? NULL : mixture_envelope(method);
+        if (envelope != NULL) {
+            add_open_ends(run, method, envelope);
+        }
+    }
+}
+
+/* ---- the sheet --------------------------------------------------------------------------------------------------- */
+
+static bool has_liquid(const struct sheet_run *run, const struct method_run *method)
+{
+    if (method->fluid == NULL) {
+        return false; /* said once for all sheets, where methods are made ready */
+    }
+    if ((method->fluid->ops->capabilities & CAN_LIQUID) == 0) {
+        sheet_add_note(run->result, run->out, "%s has no liquid and therefore no dew or bubble points.", method->name);
+        return false;
+    }
+    return true;
+}
+
+static void sweep_by(const struct sheet_run *run, struct method_run *method, bool is_lead)
+{
+    const struct case_sweep *sweep = sweep_of(run);
+    struct sweeping at = {.run = run, .method = method, .is_lead = is_lead};
+    at.points = begin_points(run, method);
+    at.points->csv = is_lead ? run->sheet->table_csv : NULL;
+    at.evidence = begin_evidence(run, method);
+    for (size_t i = 0; i < sweep->count; i++) {
+        add_points_at(&at, sweep->values[i]);
+    }
+    if (is_lead) {
+        work_first_point(&at);
+    }
+}
+
+void answer_mixture_saturation(struct sheet_run *run)
+{
+    bool has_lead = false;
+    for (size_t i = 0; i < run->method_count; i++) {
+        if (!has_liquid(run, &run->methods[i])) {
+            run->result->is_undecided |= i == 0;
+            continue;
+        }
+        sweep_by(run, &run->methods[i], !has_lead);
+        has_lead = true;
+    }
+    tell_bounds(run);
+    if (run->sheet->show_iteration) {
+        sheet_add_note(run->result, run->out, "the iteration p fL / fV is shown for pure gases only");
+    }
+}
