@@ -48,8 +48,8 @@ enum { FIRST, SECOND, TEMPERATURE, PRESSURE, X1, Y1, NOTE };
  * figures from memory). A single series may part by more.
  *
  * For the pairs with nitrogen, oxygen, argon and carbon monoxide a second program of its own, by successive
- * substitution, found the same means and worsts from the same groups to 0.001; and one constant kij for all temperatures, whichever,
- * brings the mean of x of oxygen and argon in carbon dioxide closer by less than that. */
+ * substitution, found the same means and worsts from the same groups to 0.001; and one constant kij for all
+ * temperatures, whichever, brings the mean of x of oxygen and argon in carbon dioxide closer by less than that. */
 static const char HYDROCARBONS[] = "E-PPR78 papers: about 0.02 in x, 0.01 in y (from memory); worst near critical";
 static const char PENTANE[] = "its series at 313 K parts by 0.07 from a reference equation too";
 static const char BRANCHED[] = "the groups' kij is 0.02 to 0.04 below the constant that suits these later series";
