@@ -263,6 +263,24 @@ static void a_sweep_of_pressure_finds_the_temperatures_back(void **state)
     elaborated_end(&answered.it);
 }
 
+/* Traces of water condense on a line of their own, far from where the gas itself does; both are told. */
+static void a_trace_that_condenses_early_hides_no_bubble_point(void **state)
+{
+    (void)state;
+    struct answered answered = answer("component water { molar-mass 18.015268 g/mol; critical-temperature 647.096 K\n"
+                                      "  critical-pressure 22.064 MPa; acentric 0.3443 }\n"
+                                      "mixture damp by mole { water 5 ppm; nitrogen 20 ppm; propane rest }\n"
+                                      "sheet saturation { fluid damp; sweep temperature 20 degC }\n"
+                                      "sheet saturation { fluid propane; sweep temperature 20 degC }\n");
+    const struct table *points =
+        result_table(answered.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
+    const size_t last = points->row_count - 1;
+    assert_string_equal(result_cell(points, last, "point")->text, "bubble");
+    const double pure = cell_of(result_table(answered.sheet->next, "saturation line", NULL), 0, "pressure");
+    assert_close(cell_of(points, last, "pressure"), pure, 0.01, "propane but for 25 ppm, which add a few mbar");
+    elaborated_end(&answered.it);
+}
+
 /* ---- fugacity ---------------------------------------------------------------------------------------------------- */
 
 static void fugacities_of_one_phase_are_those_of_the_equation(void **state)
@@ -348,6 +366,7 @@ int main(void)
         cmocka_unit_test(a_liquefied_gas_under_a_compressed_one_is_told_step_by_step),
         cmocka_unit_test(both_dew_pressures_are_found_and_none_above_the_cricondentherm),
         cmocka_unit_test(a_sweep_of_pressure_finds_the_temperatures_back),
+        cmocka_unit_test(a_trace_that_condenses_early_hides_no_bubble_point),
         cmocka_unit_test(fugacities_of_one_phase_are_those_of_the_equation),
         cmocka_unit_test(phases_in_equilibrium_have_equal_fugacities),
         cmocka_unit_test(fractions_of_volume_become_amounts_by_the_lead),

@@ -15,6 +15,7 @@
 struct phase_edges {
     bool is_known; /* false: the method knows no liquid, or gave no answer; then neither edge is given */
     bool has_low, has_high;
+    size_t edge_count; /* of a mixture; more than two: it may be one phase somewhere between these two */
     bool high_is_bubble;
     double low_volume, high_volume;     /* m3/mol of the whole */
     double low_pressure, high_pressure; /* Pa */

@@ -1,40 +1,9 @@
-#include "filling/mixture_contents.h"
+#include "filling/mixture_internal.h"
 
-#include "equilibrium/boundary.h"
-#include "equilibrium/mixture_critical.h"
 #include "equilibrium/mixture_vessel.h"
-#include "filling/search.h"
 
 #include <math.h>
 #include <string.h>
-
-/* Searches over a range ask for the same temperatures again and again. */
-enum { KEPT_TEMPERATURES = 1024 };
-
-struct kept_edges {
-    double temperature; /* K; 0: none yet */
-    enum answer answer;
-    struct phase_edges edges;
-};
-
-struct mixture_work {
-    size_t count;
-    const double *molar_masses; /* [count], kg/mol */
-    struct equilibrium_workspace *ws;
-    struct split *split;
-    struct mixture_vessel *vessel;
-    bool has_vessel;         /* it holds an answer, from which the next search may start */
-    struct phase *phase;     /* for the feed by itself */
-    double list_temperature; /* K, of the list below; 0: none yet */
-    enum answer list_answer;
-    struct edge_list list;
-    struct kept_edges *kept;  /* [KEPT_TEMPERATURES] */
-    struct method_run *alone; /* [count], each component by itself */
-    struct arena *arena;      /* for the envelope, which not every case asks for */
-    bool is_traced;
-    struct envelope *envelope; /* NULL: there is none */
-    struct boundary_list *points;
-};
 
 /* Component i as a fluid of its own. */
 static struct method_run create_alone(const struct case_fluid *fluid, size_t i, const char *method, struct arena *arena)
@@ -99,257 +68,6 @@ double mixture_molar_mass(const struct method_run *method, const double x[])
         sum += x[i] * method->mixture->molar_masses[i];
     }
     return sum;
-}
-
-/* ---- the envelope ------------------------------------------------------------------------------------------------ */
-
-const struct envelope *mixture_envelope(struct method_run *method)
-{
-    struct mixture_work *work = method->mixture;
-    if (work->is_traced || (method->fluid->ops->capabilities & CAN_LIQUID) == 0) {
-        return work->envelope;
-    }
-    struct envelope *envelope = envelope_create(work->count, work->arena);
-    work->points = boundary_list_create(work->count, work->arena);
-    work->is_traced = true;
-    if (envelope_trace(method->at_t, method->fluid, method->z, work->ws, envelope) == ANSWER_OK) {
-        work->envelope = envelope;
-    }
-    return work->envelope;
-}
-
-enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out)
-{
-    struct mixture_work *work = method->mixture;
-    const struct envelope *envelope = mixture_envelope(method);
-    if (envelope == NULL) {
-        return ANSWER_CANNOT;
-    }
-    *out = work->points;
-    return is_pressure ? boundary_at_p(method->at_t, method->fluid, value, method->z, envelope, work->ws, work->points)
-                       : boundary_at_t(method->at_t, method->fluid, value, method->z, envelope, work->ws, work->points);
-}
-
-enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out)
-{
-    const struct envelope *envelope = mixture_envelope(method);
-    return mixture_critical_near(method->at_t, method->fluid, method->z, &envelope->critical[index],
-                                 method->mixture->ws, out);
-}
-
-/* ---- where one phase ends ---------------------------------------------------------------------------------------- */
-
-/* Densities are tried upwards from that of a gas at this pressure, each by this factor above the one before. */
-#define THINNEST_PRESSURE 1.0 /* Pa */
-#define DENSITY_FACTOR    1.12
-/* Pa; far above any vessel's pressure, where looking for edges ends. */
-#define HIGHEST_PRESSURE 1e9
-/* Parts of the densest state that the trials end at. */
-#define SHORT_OF_DENSEST 0.9995
-#define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
-/* Molar volumes by this factor beside an edge lie clearly on one side of it. */
-#define BESIDE_EDGE 1.3
-/* The state tried is the stable root of its pressure when their volumes agree to this part. */
-#define SAME_VOLUME 1e-7
-
-struct edge_search {
-    struct method_run *method;
-    struct stability found; /* of the last state tried */
-    double pressure;
-};
-
-/* Infinite where the fluid as one phase of that molar volume is stable, else minus infinity.
- * ANSWER_NO_SUCH_ROOT beyond the highest pressure. */
-static enum answer stable_side(void *context, double molar_volume, double *side)
-{
-    struct edge_search *search = context;
-    struct mixture_work *work = search->method->mixture;
-    const double *z = search->method->z;
-    enum answer answer = phase_tv(search->method->at_t, molar_volume, z, 0, work->phase);
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
-    search->pressure = work->phase->pressure;
-    if (search->pressure > HIGHEST_PRESSURE) {
-        return ANSWER_NO_SUCH_ROOT;
-    }
-    *side = -(double)INFINITY;
-    if (!(work->phase->pressure > 0.0) || !(work->phase->dp_dv < 0.0)) {
-        search->found.is_stable = false;
-        search->found.has_incipient = false;
-        return ANSWER_OK;
-    }
-    answer = stability_at_tp(search->method->at_t, search->pressure, z, STABILITY_DECIDE, work->ws, &search->found);
-    if (answer == ANSWER_OK && search->found.is_stable &&
-        fabs(work->ws->reference->volume / (work->ws->reference->amount * molar_volume) - 1.0) <= SAME_VOLUME) {
-        *side = (double)INFINITY;
-    }
-    return answer;
-}
-
-/* Closes in on a change of side between two volumes; the edge is the end that is stable, its other phase the one that
- * forms on the further side. */
-static enum answer close_in(struct edge_search *search, double stable, double unstable, struct phase_edge *edge)
-{
-    const struct search_function function = {stable_side, search};
-    struct search_bracket bracket = {stable, (double)INFINITY, unstable, -(double)INFINITY};
-    enum answer answer = search_root(&function, 0.0, EDGE_TOLERANCE, &bracket);
-    double side;
-    if (answer == ANSWER_OK) {
-        answer = stable_side(search, bracket.b, &side);
-    }
-    edge->other_volume = 0.0;
-    if (answer == ANSWER_OK && search->found.has_incipient) {
-        memcpy(edge->other, search->found.incipient, search->method->mixture->count * sizeof *edge->other);
-        edge->other_volume = search->found.incipient_volume;
-    }
-    edge->opens = unstable < stable;
-    edge->other_is_lighter = edge->other_volume > bracket.b;
-    if (answer == ANSWER_OK) {
-        answer = stable_side(search, bracket.a, &side);
-    }
-    edge->molar_volume = bracket.a;
-    edge->pressure = search->pressure;
-    return answer;
-}
-
-/* Without an envelope to go by: densities are tried upwards, and what is two-phase over less than a step is missed. */
-static enum answer scan_edges(struct method_run *method, struct edge_list *list)
-{
-    struct edge_search search = {.method = method};
-    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
-    double before = method->fluid->gas_constant * method->at_t->temperature / THINNEST_PRESSURE, side_before;
-    list->count = 0;
-    enum answer answer = stable_side(&search, before, &side_before);
-    for (double v = before / DENSITY_FACTOR; answer == ANSWER_OK && v > smallest; v /= DENSITY_FACTOR) {
-        double side;
-        answer = stable_side(&search, v, &side);
-        if (answer == ANSWER_OK && (side < 0.0) != (side_before < 0.0) && list->count < MOST_EDGES) {
-            struct phase_edge *edge = &list->items[list->count++];
-            answer = side < 0.0 ? close_in(&search, before, v, edge) : close_in(&search, v, before, edge);
-        }
-        before = v;
-        side_before = side;
-    }
-    return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;
-}
-
-/* The stable points of the envelope, lowest pressure first: one phase ends at the first, begins again at the second,
- * and so on. */
-static void edges_of_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
-{
-    list->count = 0;
-    for (size_t i = 0; i < points->count && list->count < MOST_EDGES; i++) {
-        const struct boundary_point *point = points->point[i];
-        if (!point->is_stable) {
-            continue;
-        }
-        struct phase_edge *edge = &list->items[list->count];
-        edge->opens = list->count % 2 == 0;
-        edge->other_is_lighter = point->kind == BOUNDARY_BUBBLE;
-        edge->pressure = point->pressure;
-        edge->molar_volume = point->feed_volume;
-        edge->other_volume = point->incipient_volume;
-        memcpy(edge->other, point->incipient, work->count * sizeof *edge->other);
-        list->count++;
-    }
-}
-
-/* Whether the fluid is one phase below, between and above the edges just where they say: a state of each stretch is
- * tested. */
-static bool agrees_with_stability(struct method_run *method, const struct edge_list *list)
-{
-    struct edge_search search = {.method = method};
-    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
-    for (size_t i = 0; i <= list->count; i++) {
-        const double thinner = i == 0 ? BESIDE_EDGE * list->items[0].molar_volume : list->items[i - 1].molar_volume;
-        const double denser =
-            i == list->count ? list->items[i - 1].molar_volume / BESIDE_EDGE : list->items[i].molar_volume;
-        double side;
-        const double middle = sqrt(thinner * denser);
-        if (!(thinner > denser)) {
-            return false;
-        }
-        if (middle <= smallest || stable_side(&search, middle, &side) != ANSWER_OK) {
-            continue;
-        }
-        if ((side > 0.0) != (i % 2 == 0)) {
-            return false;
-        }
-    }
-    return true;
-}
-
-static enum answer find_edges(struct method_run *method, struct edge_list *list)
-{
-    const double temperature = method->at_t->temperature;
-    const struct envelope *envelope = mixture_envelope(method);
-    enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
-    list->count = 0;
-    if (envelope != NULL && envelope->has_cricondentherm && temperature > envelope->cricondentherm->temperature) {
-        return ANSWER_OK;
-    }
-    const struct boundary_list *points;
-    const bool has_points =
-        envelope != NULL && mixture_points(method, false, temperature, &points) == ANSWER_OK && points->count > 0;
-    answer = fluid_set_t(method->at_t, method->fluid, temperature);
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
-    if (has_points) {
-        edges_of_points(method->mixture, points, list);
-        if (list->count > 0 && agrees_with_stability(method, list)) {
-            return ANSWER_OK;
-        }
-    }
-    return scan_edges(method, list);
-}
-
-enum answer mixture_edge_list(struct method_run *method, const struct edge_list **out)
-{
-    struct mixture_work *work = method->mixture;
-    const double temperature = method->at_t->temperature;
-    if (!(fabs(work->list_temperature - temperature) <= 0.0)) {
-        work->list_answer =
-            (method->fluid->ops->capabilities & CAN_LIQUID) == 0 ? ANSWER_CANNOT : find_edges(method, &work->list);
-        work->list_temperature = temperature;
-    }
-    *out = &work->list;
-    return work->list_answer;
-}
-
-static enum answer lowest_and_highest(struct method_run *method, struct phase_edges *edges)
-{
-    const struct edge_list *list;
-    const enum answer answer = mixture_edge_list(method, &list);
-    *edges = (struct phase_edges){.is_known = answer == ANSWER_OK};
-    if (answer != ANSWER_OK || list->count == 0) {
-        return answer;
-    }
-    const struct phase_edge *low = &list->items[0], *high = &list->items[list->count - 1];
-    edges->has_low = low->opens;
-    edges->low_volume = low->molar_volume;
-    edges->low_pressure = low->pressure;
-    edges->has_high = !high->opens;
-    edges->high_volume = high->molar_volume;
-    edges->high_pressure = high->pressure;
-    edges->high_is_bubble = edges->has_high && high->other_is_lighter;
-    return answer;
-}
-
-enum answer mixture_edges(struct method_run *method, struct phase_edges *out)
-{
-    const double temperature = method->at_t->temperature;
-    struct kept_edges *kept = &method->mixture->kept[(size_t)(temperature * 1e3) % KEPT_TEMPERATURES];
-    if (!(fabs(kept->temperature - temperature) <= 0.0)) {
-        kept->answer = lowest_and_highest(method, &kept->edges);
-        kept->temperature = temperature;
-    }
-    *out = kept->edges;
-    return kept->answer;
 }
 
 /* ---- the closed vessel ------------------------------------------------------------------------------------------- */
@@ -419,6 +137,24 @@ static void name_one_phase(const struct method_run *method, struct contents *out
     }
 }
 
+/* ln of volume: nearer to an edge than this, the phases of a vessel say nothing against it. */
+#define AT_AN_EDGE 1e-6
+
+/* Whether the vessel's phases, which are proved, are not those that the edges say. With more than two edges there may
+ * be one phase between them. */
+static bool contradicts(const struct phase_edges *edges, double molar_volume, size_t phase_count)
+{
+    if (!edges->is_known) {
+        return false;
+    }
+    const double above_low = edges->has_low ? log(edges->low_volume / molar_volume) : -1.0;
+    const double below_high = edges->has_high ? log(molar_volume / edges->high_volume) : 1.0;
+    if (phase_count > 1) {
+        return above_low < -AT_AN_EDGE || below_high < -AT_AN_EDGE;
+    }
+    return edges->edge_count <= 2 && above_low > AT_AN_EDGE && below_high > AT_AN_EDGE;
+}
+
 enum answer mixture_contents(struct method_run *method, double volume, double amount, bool with_edges,
                              struct contents *out)
 {
@@ -434,6 +170,10 @@ enum answer mixture_contents(struct method_run *method, double volume, double am
         return answer;
     }
     out->pressure = split->pressure;
+    if (with_edges && contradicts(&out->edges, molar_volume, split->phase_count)) {
+        mixture_distrust_edges(method);
+        mixture_edges(method, &out->edges);
+    }
     put_phases(method, split, amount, volume, out);
     if (out->phase_count > 1) {
         out->state = VESSEL_TWO_PHASE;

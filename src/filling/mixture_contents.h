@@ -20,16 +20,20 @@ enum answer mixture_split(struct method_run *method, double pressure, const stru
 /* Likewise at a molar volume of the whole (m3/mol): the pressure is found. */
 enum answer mixture_split_at_volume(struct method_run *method, double molar_volume, const struct split **out);
 
-/* The whole boundary of the two-phase states, traced when first asked for; NULL where the method has none. */
+/* The whole boundary of the two-phase states, traced when first asked for and held against the stability test; NULL
+ * where the method has none, or what was traced is not the whole. */
 struct envelope;
 const struct envelope *mixture_envelope(struct method_run *method);
+
+/* Whether an envelope was traced and given up. */
+bool mixture_envelope_is_incomplete(struct method_run *method);
 
 /* Its critical point `index`, solved for. */
 struct mixture_critical;
 enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out);
 
-/* All dew and bubble points at a pressure (Pa) or temperature (K), metastable ones among them, in the method's memory
- * until its next question. */
+/* All dew and bubble points at a pressure (Pa) or temperature (K), in the method's memory until its next question; with
+ * an envelope metastable ones among them, without one ANSWER_FAILED at a pressure. */
 struct boundary_list;
 enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out);
 

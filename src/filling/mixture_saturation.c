@@ -207,6 +207,19 @@ static void add_open_ends(const struct sheet_run *run, const struct method_run *
     }
 }
 
+static void tell_incomplete(const struct sheet_run *run)
+{
+    for (size_t m = 0; m < run->method_count; m++) {
+        struct method_run *method = &run->methods[m];
+        if (method->fluid != NULL && mixture_envelope_is_incomplete(method)) {
+            sheet_add_note(run->result, run->out,
+                           "the line traced from low pressure is not the whole boundary: its highest temperature and "
+                           "pressure are left out (%s)",
+                           method->name);
+        }
+    }
+}
+
 static void tell_bounds(const struct sheet_run *run)
 {
     sheet_begin_facts(run->result, run->out, "what bounds the two-phase states");
@@ -281,6 +294,7 @@ void answer_mixture_saturation(struct sheet_run *run)
         has_lead = true;
     }
     tell_bounds(run);
+    tell_incomplete(run);
     if (run->sheet->show_iteration) {
         sheet_add_note(run->result, run->out, "the iteration p fL / fV is shown for pure gases only");
     }

@@ -1,0 +1,390 @@
+/* Where a mixture stops being one phase: by its envelope where the stability test agrees with it, else by trying
+ * densities upwards. */
+#include "filling/mixture_internal.h"
+
+#include "equilibrium/boundary.h"
+#include "equilibrium/mixture_critical.h"
+#include "equilibrium/stability.h"
+#include "filling/search.h"
+
+#include <math.h>
+#include <string.h>
+
+/* ---- where one phase ends ---------------------------------------------------------------------------------------- */
+
+/* Densities are tried upwards from that of a gas at this pressure, each by this factor above the one before. */
+#define THINNEST_PRESSURE 1.0 /* Pa */
+#define DENSITY_FACTOR    1.12
+/* Pa; far above any vessel's pressure, where looking for edges ends. */
+#define HIGHEST_PRESSURE 1e9
+/* Parts of the densest state that the trials end at. */
+#define SHORT_OF_DENSEST 0.9995
+#define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
+/* Molar volumes by this factor beside an edge lie clearly on one side of it. */
+#define BESIDE_EDGE 1.3
+/* The state tried is the stable root of its pressure when their volumes agree to this part. */
+#define SAME_VOLUME 1e-7
+
+struct edge_search {
+    struct method_run *method;
+    struct stability found; /* of the last state tried */
+    double pressure;
+};
+
+/* Infinite where the fluid as one phase of that molar volume is stable, else minus infinity.
+ * ANSWER_NO_SUCH_ROOT beyond the highest pressure. */
+static enum answer stable_side(void *context, double molar_volume, double *side)
+{
+    struct edge_search *search = context;
+    struct mixture_work *work = search->method->mixture;
+    const double *z = search->method->z;
+    enum answer answer = phase_tv(search->method->at_t, molar_volume, z, 0, work->phase);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    search->pressure = work->phase->pressure;
+    if (search->pressure > HIGHEST_PRESSURE) {
+        return ANSWER_NO_SUCH_ROOT;
+    }
+    *side = -(double)INFINITY;
+    if (!(work->phase->pressure > 0.0) || !(work->phase->dp_dv < 0.0)) {
+        search->found.is_stable = false;
+        search->found.has_incipient = false;
+        return ANSWER_OK;
+    }
+    answer = stability_at_tp(search->method->at_t, search->pressure, z, STABILITY_DECIDE, work->ws, &search->found);
+    if (answer == ANSWER_OK && search->found.is_stable &&
+        fabs(work->ws->reference->volume / (work->ws->reference->amount * molar_volume) - 1.0) <= SAME_VOLUME) {
+        *side = (double)INFINITY;
+    }
+    return answer;
+}
+
+/* Closes in on a change of side between two volumes; the edge is the end that is stable, its other phase the one that
+ * forms on the further side. */
+static enum answer close_in(struct edge_search *search, double stable, double unstable, struct phase_edge *edge)
+{
+    const struct search_function function = {stable_side, search};
+    struct search_bracket bracket = {stable, (double)INFINITY, unstable, -(double)INFINITY};
+    enum answer answer = search_root(&function, 0.0, EDGE_TOLERANCE, &bracket);
+    double side;
+    if (answer == ANSWER_OK) {
+        answer = stable_side(search, bracket.b, &side);
+    }
+    edge->other_volume = 0.0;
+    if (answer == ANSWER_OK && search->found.has_incipient) {
+        memcpy(edge->other, search->found.incipient, search->method->mixture->count * sizeof *edge->other);
+        edge->other_volume = search->found.incipient_volume;
+    }
+    edge->opens = unstable < stable;
+    edge->other_is_lighter = edge->other_volume > bracket.b;
+    if (answer == ANSWER_OK) {
+        answer = stable_side(search, bracket.a, &side);
+    }
+    edge->molar_volume = bracket.a;
+    edge->pressure = search->pressure;
+    return answer;
+}
+
+/* Without an envelope to go by: densities are tried upwards, and what is two-phase over less than a step is missed. */
+static enum answer scan_edges(struct method_run *method, struct edge_list *list)
+{
+    struct edge_search search = {.method = method};
+    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
+    double before = method->fluid->gas_constant * method->at_t->temperature / THINNEST_PRESSURE, side_before;
+    list->count = 0;
+    enum answer answer = stable_side(&search, before, &side_before);
+    for (double v = before / DENSITY_FACTOR; answer == ANSWER_OK && v > smallest; v /= DENSITY_FACTOR) {
+        double side;
+        answer = stable_side(&search, v, &side);
+        if (answer == ANSWER_OK && (side < 0.0) != (side_before < 0.0) && list->count < MOST_EDGES) {
+            struct phase_edge *edge = &list->items[list->count++];
+            answer = side < 0.0 ? close_in(&search, before, v, edge) : close_in(&search, v, before, edge);
+        }
+        before = v;
+        side_before = side;
+    }
+    return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;
+}
+
+/* The stable points of the envelope, lowest pressure first: one phase ends at the first, begins again at the second,
+ * and so on. */
+static void edges_of_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
+{
+    list->count = 0;
+    for (size_t i = 0; i < points->count && list->count < MOST_EDGES; i++) {
+        const struct boundary_point *point = points->point[i];
+        if (!point->is_stable) {
+            continue;
+        }
+        struct phase_edge *edge = &list->items[list->count];
+        edge->opens = list->count % 2 == 0;
+        edge->other_is_lighter = point->kind == BOUNDARY_BUBBLE;
+        edge->pressure = point->pressure;
+        edge->molar_volume = point->feed_volume;
+        edge->other_volume = point->incipient_volume;
+        memcpy(edge->other, point->incipient, work->count * sizeof *edge->other);
+        list->count++;
+    }
+}
+
+/* Whether the fluid is one phase below, between and above the edges just where they say: a state of each stretch is
+ * tested. */
+static bool agrees_with_stability(struct method_run *method, const struct edge_list *list)
+{
+    struct edge_search search = {.method = method};
+    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
+    for (size_t i = 0; i <= list->count; i++) {
+        const double thinner = i == 0 ? BESIDE_EDGE * list->items[0].molar_volume : list->items[i - 1].molar_volume;
+        const double denser =
+            i == list->count ? list->items[i - 1].molar_volume / BESIDE_EDGE : list->items[i].molar_volume;
+        double side;
+        const double middle = sqrt(thinner * denser);
+        if (!(thinner > denser)) {
+            return false;
+        }
+        if (middle <= smallest || stable_side(&search, middle, &side) != ANSWER_OK) {
+            continue;
+        }
+        if ((side > 0.0) != (i % 2 == 0)) {
+            return false;
+        }
+    }
+    return true;
+}
+
+static enum answer points_of_envelope(struct method_run *method, bool is_pressure, double value)
+{
+    struct mixture_work *work = method->mixture;
+    return is_pressure
+               ? boundary_at_p(method->at_t, method->fluid, value, method->z, work->envelope, work->ws, work->points)
+               : boundary_at_t(method->at_t, method->fluid, value, method->z, work->envelope, work->ws, work->points);
+}
+
+static bool is_above_envelope(const struct mixture_work *work, double temperature)
+{
+    return work->envelope->has_cricondentherm && temperature > work->envelope->cricondentherm->temperature;
+}
+
+/* ---- whether the envelope is the whole boundary ------------------------------------------------------------------ */
+
+/* Temperatures (K) and densities at which it is held against the stability test when it has been traced. */
+#define CHECKED_FROM              160.0
+#define CHECKED_TO                420.0
+#define CHECKED_STEP              20.0
+#define CHECKED_FACTOR            1.8
+#define CHECKED_THINNEST_PRESSURE 1e3 /* Pa */
+/* What the stability test cannot say counts for nothing. */
+static bool is_stable_along_isotherm(struct method_run *method)
+{
+    struct edge_search search = {.method = method};
+    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
+    const double RT = method->fluid->gas_constant * method->at_t->temperature;
+    for (double v = RT / CHECKED_THINNEST_PRESSURE; v > smallest; v /= CHECKED_FACTOR) {
+        double side;
+        if (stable_side(&search, v, &side) == ANSWER_OK && side < 0.0) {
+            return false;
+        }
+    }
+    return true;
+}
+
+/* Below the cricondentherm each temperature's edges are held against stability on their own; above it the envelope says
+ * that there are none, and that is what is checked here. */
+static bool is_whole(struct method_run *method)
+{
+    struct mixture_work *work = method->mixture;
+    for (double T = CHECKED_FROM; T <= CHECKED_TO; T += CHECKED_STEP) {
+        if (is_above_envelope(work, T) && fluid_set_t(method->at_t, method->fluid, T) == ANSWER_OK &&
+            !is_stable_along_isotherm(method)) {
+            return false;
+        }
+    }
+    return true;
+}
+
+/* ---- the envelope ------------------------------------------------------------------------------------------------ */
+
+static void give_up_envelope(struct mixture_work *work)
+{
+    work->envelope = NULL;
+    work->is_incomplete = true;
+    work->list_temperature = 0.0;
+    for (size_t i = 0; i < KEPT_TEMPERATURES; i++) {
+        work->kept[i].temperature = 0.0;
+    }
+}
+
+const struct envelope *mixture_envelope(struct method_run *method)
+{
+    struct mixture_work *work = method->mixture;
+    if (work->is_traced || (method->fluid->ops->capabilities & CAN_LIQUID) == 0) {
+        return work->envelope;
+    }
+    struct envelope *envelope = envelope_create(work->count, work->arena);
+    work->points = boundary_list_create(work->count, work->arena);
+    work->is_traced = true;
+    if (envelope_trace(method->at_t, method->fluid, method->z, work->ws, envelope) == ANSWER_OK) {
+        work->envelope = envelope;
+        if (!is_whole(method)) {
+            give_up_envelope(work);
+        }
+    }
+    return work->envelope;
+}
+
+bool mixture_envelope_is_incomplete(struct method_run *method)
+{
+    mixture_envelope(method);
+    return method->mixture->is_incomplete;
+}
+
+/* Largest difference of ln f between the whole at an edge and its other phase. */
+static enum answer edge_residual(struct method_run *method, const struct phase_edge *edge, double *residual)
+{
+    struct mixture_work *work = method->mixture;
+    struct phase *whole = work->phase, *other = work->ws->trial;
+    enum answer answer = phase_tv(method->at_t, edge->molar_volume, method->z, PHASE_LN_F, whole);
+    if (answer == ANSWER_OK) {
+        answer = phase_tv(method->at_t, edge->other_volume, edge->other, PHASE_LN_F, other);
+    }
+    *residual = 0.0;
+    for (size_t i = 0; answer == ANSWER_OK && i < work->count; i++) {
+        if (method->z[i] > 0.0 && edge->other[i] > 0.0) {
+            *residual = fmax(*residual, fabs(whole->ln_f_over_x[i] + log(method->z[i]) - other->ln_f_over_x[i] -
+                                             log(edge->other[i])));
+        }
+    }
+    return answer;
+}
+
+/* Edges found without the envelope, told as its points. */
+static enum answer points_of_edges(struct method_run *method, double temperature)
+{
+    struct mixture_work *work = method->mixture;
+    const struct edge_list *list;
+    enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer == ANSWER_OK) {
+        answer = mixture_edge_list(method, &list);
+    }
+    work->points->count = 0;
+    for (size_t i = 0; answer == ANSWER_OK && i < list->count; i++) {
+        const struct phase_edge *edge = &list->items[i];
+        struct boundary_point *point = work->points->point[work->points->count++];
+        point->kind = edge->other_is_lighter ? BOUNDARY_BUBBLE : BOUNDARY_DEW;
+        point->temperature = temperature;
+        point->pressure = edge->pressure;
+        point->feed_volume = edge->molar_volume;
+        point->incipient_volume = edge->other_volume;
+        memcpy(point->incipient, edge->other, work->count * sizeof *edge->other);
+        point->is_stable = true;
+        point->smallest_tpd = 0.0;
+        answer = edge_residual(method, edge, &point->residual);
+    }
+    return answer;
+}
+
+enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out)
+{
+    const struct envelope *envelope = mixture_envelope(method);
+    *out = method->mixture->points;
+    if (method->mixture->points == NULL) {
+        return ANSWER_CANNOT;
+    }
+    if (envelope != NULL) {
+        return points_of_envelope(method, is_pressure, value);
+    }
+    return is_pressure ? ANSWER_FAILED : points_of_edges(method, value);
+}
+
+enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out)
+{
+    const struct envelope *envelope = mixture_envelope(method);
+    return mixture_critical_near(method->at_t, method->fluid, method->z, &envelope->critical[index],
+                                 method->mixture->ws, out);
+}
+
+/* ---- edges at a temperature -------------------------------------------------------------------------------------- */
+
+static enum answer find_edges(struct method_run *method, struct edge_list *list)
+{
+    const double temperature = method->at_t->temperature;
+    const struct envelope *envelope = mixture_envelope(method);
+    struct mixture_work *work = method->mixture;
+    list->count = 0;
+    const bool has_points = envelope != NULL && !is_above_envelope(work, temperature) &&
+                            points_of_envelope(method, false, temperature) == ANSWER_OK;
+    const enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer != ANSWER_OK || (envelope != NULL && is_above_envelope(work, temperature))) {
+        return answer;
+    }
+    if (has_points && work->points->count > 0) {
+        edges_of_points(work, work->points, list);
+        if (list->count > 0 && agrees_with_stability(method, list)) {
+            return ANSWER_OK;
+        }
+    }
+    return scan_edges(method, list);
+}
+
+enum answer mixture_edge_list(struct method_run *method, const struct edge_list **out)
+{
+    struct mixture_work *work = method->mixture;
+    const double temperature = method->at_t->temperature;
+    if (!(fabs(work->list_temperature - temperature) <= 0.0)) {
+        work->list_answer =
+            (method->fluid->ops->capabilities & CAN_LIQUID) == 0 ? ANSWER_CANNOT : find_edges(method, &work->list);
+        work->list_temperature = temperature;
+    }
+    *out = &work->list;
+    return work->list_answer;
+}
+
+static enum answer lowest_and_highest(struct method_run *method, struct phase_edges *edges)
+{
+    const struct edge_list *list;
+    const enum answer answer = mixture_edge_list(method, &list);
+    *edges = (struct phase_edges){.is_known = answer == ANSWER_OK};
+    if (answer != ANSWER_OK || list->count == 0) {
+        return answer;
+    }
+    const struct phase_edge *low = &list->items[0], *high = &list->items[list->count - 1];
+    edges->edge_count = list->count;
+    edges->has_low = low->opens;
+    edges->low_volume = low->molar_volume;
+    edges->low_pressure = low->pressure;
+    edges->has_high = !high->opens;
+    edges->high_volume = high->molar_volume;
+    edges->high_pressure = high->pressure;
+    edges->high_is_bubble = edges->has_high && high->other_is_lighter;
+    return answer;
+}
+
+static struct kept_edges *kept_at(const struct mixture_work *work, double temperature)
+{
+    return &work->kept[(size_t)(temperature * 1e3) % KEPT_TEMPERATURES];
+}
+
+enum answer mixture_edges(struct method_run *method, struct phase_edges *out)
+{
+    const double temperature = method->at_t->temperature;
+    struct kept_edges *kept = kept_at(method->mixture, temperature);
+    if (!(fabs(kept->temperature - temperature) <= 0.0)) {
+        kept->answer = lowest_and_highest(method, &kept->edges);
+        kept->temperature = temperature;
+    }
+    *out = kept->edges;
+    return kept->answer;
+}
+
+void mixture_distrust_edges(struct method_run *method)
+{
+    struct mixture_work *work = method->mixture;
+    if (work->envelope != NULL && is_above_envelope(work, method->at_t->temperature)) {
+        give_up_envelope(work);
+        return;
+    }
+    work->list_answer = scan_edges(method, &work->list);
+    work->list_temperature = method->at_t->temperature;
+    kept_at(work, work->list_temperature)->temperature = 0.0;
+}
