@@ -53,15 +53,12 @@ static json_t *set(json_t *object, const char *key, json_t *value)
     return object;
 }
 
+/* Every fact has the same keys, so that a reader need not ask first: words stand as a value without a unit. */
 static json_t *fact_tree(const struct fact *fact)
 {
     json_t *tree = set(json_object(), "name", words_or_null(fact->name));
-    if (fact->text) {
-        tree = set(tree, "text", words_or_null(fact->text));
-    } else {
-        tree = set(tree, "value", si_or_null(&fact->look, fact->value));
-        tree = set(tree, "unit", words_or_null(fact->look.si_unit));
-    }
+    tree = set(tree, "value", fact->text ? words_or_null(fact->text) : si_or_null(&fact->look, fact->value));
+    tree = set(tree, "unit", fact->text ? json_null() : words_or_null(fact->look.si_unit));
     tree = set(tree, "method", words_or_null(fact->method));
     return fact->source ? set(tree, "source", words_or_null(fact->source)) : tree;
 }
