@@ -110,7 +110,8 @@ struct elaboration {
     struct diagnostics *out;
     struct case_tree *tree;
     struct name_table tables[NAME_KINDS];
-    struct name_scope scope; /* the lets, for expressions */
+    struct name_scope scope;       /* the lets, for expressions */
+    struct name_scope bound_scope; /* also what a bound may name beside them, for suggestions; made with the first */
     const struct statement *case_statement, *methods_statement;
     const struct methods_block *methods; /* NULL: the deck has none */
     struct display_units units;

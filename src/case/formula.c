@@ -161,10 +161,30 @@ static struct formula *new_formula(struct elaboration *e, enum formula_kind kind
     return formula;
 }
 
+/* The lets, and for a misspelled word also what the vessel gives a value to. */
+static struct name_scope scope_of_bounds(struct elaboration *e)
+{
+    if (e->bound_scope.known == NULL) {
+        const char **known = arena_alloc(e->arena, e->scope.known_count + VOCABULARY_MOST, sizeof *known);
+        size_t count = vocabulary_words(BLOCK_SYMBOL, known, VOCABULARY_MOST);
+        for (size_t i = 0; i < e->scope.known_count; i++) {
+            known[count++] = e->scope.known[i];
+        }
+        e->bound_scope = e->scope;
+        e->bound_scope.known = known;
+        e->bound_scope.known_count = count;
+    }
+    return e->bound_scope;
+}
+
 static const struct formula *number_formula(struct elaboration *e, const struct expression *expression,
                                             struct value *kind)
 {
-    if (!value_of(e, expression, kind)) {
+    const struct name_scope lets = e->scope;
+    e->scope = scope_of_bounds(e);
+    const bool has_value = value_of(e, expression, kind);
+    e->scope = lets;
+    if (!has_value) {
         return NULL;
     }
     struct formula *formula = new_formula(e, FORMULA_NUMBER);
