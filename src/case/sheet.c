@@ -515,6 +515,23 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
     attach_lists(e, target);
 }
 
+/* A sheet with a mistake in it is not put together, but what it names is looked up, so that one run tells of every
+ * mistake. */
+static void check_names(struct elaboration *e, struct sheet_target *target)
+{
+    struct case_sheet *sheet = &target->sheet;
+    const struct case_charge *charge = target->charge == NULL ? NULL : charge_of_name(e, target->charge);
+    if (target->fluid != NULL) {
+        fluid_of_name(e, target->fluid);
+    }
+    if (charge != NULL) {
+        sheet->vessel = charge->vessel;
+    } else if (target->vessel != NULL) {
+        sheet->vessel = vessel_of_name(e, target->vessel);
+    }
+    check_ratings(e, target);
+}
+
 static bool build_sheet(struct elaboration *e, const struct statement *statement, size_t number, struct case_sheet *out)
 {
     struct reading reading = read_items(e, statement);
@@ -534,6 +551,8 @@ static bool build_sheet(struct elaboration *e, const struct statement *statement
     mark_file_used(e, statement->at);
     if (trouble_so_far(e) == before) {
         complete_sheet(e, &target);
+    } else {
+        check_names(e, &target);
     }
     *out = target.sheet;
     return trouble_so_far(e) == before;
