@@ -114,12 +114,16 @@ static void one_run_shows_mistakes_of_grammar_and_of_meaning(void **state)
 {
     (void)state;
     const struct {
-        const char *text, *expected[4], *unexpected;
+        const char *text, *expected[5], *unexpected;
     } cases[] = {
         {"let hot = = 5 K\nvessel v { water-capacity 50 bar; test-presure 200 barg }\n"
          "sheet saturation { fluid argon; sweep temperature hot }\n",
          {"[E105]", "[E208]", "'test-pressure'?"},
          "'hot'"},
+        {"let hot = = 5 K\nsheet saturation { fluid nitogen; sweep temperature hott, hot }\n"
+         "vessel v { water-capacity 3 * cap }\n",
+         {"[E105]", "named 'nitogen'", "'hott' stands for no value", "'cap' stands for no value"},
+         "'hot' "},
         {"use \"nowhere\"\nvessel v { water-capacity 50 bar }\n"
          "sheet saturation { fluid argon; sweep temperature 90 K }\n",
          {"[E402]", "[E208]"},

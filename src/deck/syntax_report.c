@@ -52,12 +52,23 @@ static void report_open_pair(struct parse_context *context, const struct syntax_
     parse_note(message, at, "the '(' that is not closed");
 }
 
+/* Whether a word stands before `at`, with nothing but blanks between. */
+static bool follows_word(struct location at)
+{
+    const char *const start = at.file->text;
+    const char *before = start + at.begin;
+    while (before > start && (before[-1] == ' ' || before[-1] == '\t')) {
+        before--;
+    }
+    return before > start && before[-1] >= 'a' && before[-1] <= 'z';
+}
+
 static void report_value(struct parse_context *context, const struct syntax_error *error, const char *shown)
 {
     const char *wanted = error->may_begin_value ? "value" : "name";
     struct parse_message *message =
         parse_complain(context, CODE_E105, error->at, "a %s is expected here, not %s", wanted, shown);
-    if (error->is_block || error->is_relation) {
+    if ((error->is_block || error->is_relation) && follows_word(error->at)) {
         parse_hint(message, "the word before it is reserved and cannot be a name");
     } else if (error->is_reserved) {
         parse_hint(message, "it is reserved and cannot be a name");

@@ -161,12 +161,52 @@ static bool keeps_its_structure(const struct diagnostics *diagnostics)
     return diagnostics->count < DIAGNOSTICS_MOST;
 }
 
-/* A name without a definition, or a block without a part, where the statement that gives it may be the one that was
- * not understood. */
-static bool may_be_consequence(enum code code)
+static bool is_name_byte(char byte)
 {
-    return code == CODE_E112 || code == CODE_E205 || code == CODE_E214 || code == CODE_E216 || code == CODE_E223 ||
-           code == CODE_W280;
+    return (byte >= 'a' && byte <= 'z') || (byte >= 'A' && byte <= 'Z') || (byte >= '0' && byte <= '9') || byte == '-';
+}
+
+/* Whether the word at `word` stands, whole, on the line of `error` too. */
+static bool stands_on_line(struct location word, struct location error)
+{
+    if (!word.file || !error.file) {
+        return false;
+    }
+    const size_t line = location_line(error);
+    const char *const file_end = error.file->text + error.file->length;
+    const char *const start = error.file->text + error.file->line_starts[line - 1];
+    const char *const end = line < error.file->line_count ? error.file->text + error.file->line_starts[line] : file_end;
+    const char *const name = word.file->text + word.begin;
+    const size_t length = word.end - word.begin;
+    for (const char *at = start; length > 0 && (size_t)(end - at) >= length; at++) {
+        const bool begins = at == start || !is_name_byte(at[-1]);
+        const bool ends = at + length == end || !is_name_byte(at[length]);
+        if (begins && ends && memcmp(at, name, length) == 0) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* Whether what `error` stopped, a statement or a file, may have given the name at `word`. */
+static bool may_give(const struct diagnostic *error, struct location word)
+{
+    return error->code >= CODE_E401 || stands_on_line(word, error->at);
+}
+
+/* A name without a definition, or a block without a part, where the statement that gives it may be one of those that
+ * were not understood, the first `count`. */
+static bool may_be_consequence(const struct diagnostic *one, const struct diagnostics *all, size_t count)
+{
+    if (one->code == CODE_E112 || one->code == CODE_E205) {
+        for (size_t i = 0; i < count; i++) {
+            if (may_give(&all->items[i], one->at)) {
+                return true;
+            }
+        }
+        return false;
+    }
+    return one->code == CODE_E214 || one->code == CODE_E216 || one->code == CODE_E223 || one->code == CODE_W280;
 }
 
 /* Looks for further mistakes in a deck that is wrong already, so that one run shows them all, and keeps those that do
@@ -177,10 +217,10 @@ static void add_mistakes_of_meaning(struct run *run, const struct deck *deck, st
     size_t kept = before;
     case_elaborate(deck, run->arena, diagnostics);
     for (size_t i = before; i < diagnostics->count; i++) {
-        const struct diagnostic *one = &diagnostics->items[i];
-        if (!may_be_consequence(one->code)) {
-            diagnostics->items[kept++] = *one;
-        } else if (code_row(one->code)->severity == 'E') {
+        const struct diagnostic one = diagnostics->items[i];
+        if (!may_be_consequence(&one, diagnostics, before)) {
+            diagnostics->items[kept++] = one;
+        } else if (code_row(one.code)->severity == 'E') {
             diagnostics->errors--;
         } else {
             diagnostics->warnings--;
