@@ -17,12 +17,12 @@ enum vessel_state {
 
 struct vessel_contents {
     enum vessel_state state;
-    double temperature;     /* K */
-    double pressure;        /* Pa */
-    double liquid_fraction; /* of the vessel's volume, 0 to 1 */
-    double vapour_amount, liquid_amount;               /* mol; the single phase of VAPOUR, SUPERCRITICAL, GAS is vapour */
-    double vapour_molar_volume, liquid_molar_volume;   /* m3/mol; 0 for a phase that is absent */
-    bool has_saturation;    /* false above the critical temperature and for a method without liquid */
+    double temperature;                              /* K */
+    double pressure;                                 /* Pa */
+    double liquid_fraction;                          /* of the vessel's volume, 0 to 1 */
+    double vapour_amount, liquid_amount;             /* mol; a single phase that is no liquid is vapour */
+    double vapour_molar_volume, liquid_molar_volume; /* m3/mol; 0 for a phase that is absent */
+    bool has_saturation; /* false above the critical temperature and for a method without liquid */
     struct saturation saturation;
 };
 

@@ -22,8 +22,8 @@ struct liquid_end_found {
     double temperature; /* K; unset for UNKNOWN; the lowest searched for BELOW */
 };
 
-/* Of `mass` kg, to 1e-7 K. Of a mixture: the warmest temperature with more than one phase, where what is there over less
- * than 5 K may be missed; DRY: the first liquid of a cooling vessel. */
+/* Of `mass` kg, to 1e-7 K. Of a mixture: the warmest temperature with more than one phase, where what is there over
+ * less than 5 K may be missed; DRY: the first liquid of a cooling vessel. */
 struct liquid_end_found find_liquid_end(const struct sheet_run *run, struct method_run *method, double mass);
 
 /* The temperature at which the settled pressure of `mass` kg reaches `pressure` (Pa absolute), going up, to 1e-7 K.
