@@ -92,7 +92,7 @@ static void measure(struct grid_layout *layout, size_t c)
 
 bool grid_layout_shows(const struct grid_layout *layout, size_t c, size_t first, size_t end)
 {
-    return layout->width[c] != 0 && (c < layout->lead || (c >= first && c < end));
+    return (c < layout->lead || (c >= first && c < end)) && layout->width[c] != 0;
 }
 
 /* Sets where the columns of a block begin; the columns taken in all. */
