@@ -264,9 +264,9 @@ static void start_dew(struct boundary_state *b)
 {
     struct equilibrium_workspace *ws = b->ws;
     const size_t m = ws->active_count;
-    double sum = 0.0;
     workspace_set_pure(ws, b->at_t, 1.0);
-    for (size_t a = 0; a < m; a++) {
+    double sum = ws->feed[ws->active[0]] * exp(-ws->ln_pure[ws->active[0]]);
+    for (size_t a = 1; a < m; a++) {
         const size_t i = ws->active[a];
         sum += ws->feed[i] * exp(-ws->ln_pure[i]);
     }

@@ -426,7 +426,7 @@ static enum answer try_single_phase(struct filling *v, double tolerance, bool *i
         return answer;
     }
     f->pressure = ws->reference->pressure;
-    double distance;
+    double distance = 0.0;
     struct stability found = {.is_stable = false};
     answer = phase_tv(f->at_t, v->volume, ws->feed, PHASE_LN_PHI, ws->reference);
     if (answer == ANSWER_OK) {
