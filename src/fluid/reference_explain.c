@@ -26,6 +26,7 @@ static enum group group_of(const struct residual_term *term)
         return GROUP_EXPONENTIAL;
     case RESIDUAL_GAUSSIAN:
     case RESIDUAL_INVERSE_GAUSSIAN:
+    case RESIDUAL_SPECIAL_EXPONENTIAL:
         return GROUP_GAUSSIAN;
     case RESIDUAL_DOUBLE_EXPONENTIAL:
         return GROUP_DOUBLE;
@@ -87,6 +88,10 @@ static struct term_value term_at(const struct residual_term *k, double tau, doub
             slope += k->ld * exponent;
         }
         exponent -= k->gt > 0.0 && k->lt > 0.0 ? k->gt * pow(tau, k->lt) : 0.0;
+        break;
+    case RESIDUAL_SPECIAL_EXPONENTIAL:
+        exponent = -k->eta * gap * gap - k->beta * (delta - k->gamma);
+        slope -= (2.0 * k->eta * gap + k->beta) * delta;
         break;
     case RESIDUAL_NONANALYTIC:
     case RESIDUAL_KINDS:

@@ -1,23 +1,15 @@
 #include "fluid/reference_residual.h"
 
-#include <math.h>
+#include "fluid/residual_parts.h"
 
-/* Integer powers of delta up to this one come from a table; all others by exp(d ln delta). */
-#define TABLE_POWERS  32
-#define GENERAL_POWER TABLE_POWERS
+#include <math.h>
 
 /* A nonanalytic term damped by more than exp(-this) is below 1e-26 and left out. */
 #define FARTHEST_EXPONENT 60.0
 
-/* The factor of a term that depends on delta alone. */
-enum envelope_kind { ENVELOPE_NONE, ENVELOPE_EXPONENTIAL, ENVELOPE_GAUSSIAN };
-
+/* An envelope and the entries under it. */
 struct envelope {
-    enum envelope_kind kind;
-    double strength; /* g, or eta */
-    double l;        /* EXPONENTIAL: exp(-g delta^l) */
-    unsigned l_slot;
-    double epsilon; /* GAUSSIAN: exp(-eta (delta - epsilon)^2) */
+    struct residual_envelope shape;
     size_t first_entry, end_entry;
 };
 
@@ -34,15 +26,6 @@ struct term {
     size_t factor; /* index of W(tau); 0 is W = 1 */
 };
 
-/* W(tau), the factor of a term that depends on tau alone beyond tau^t. */
-enum factor_kind { FACTOR_ONE, FACTOR_GAUSSIAN, FACTOR_INVERSE_GAUSSIAN, FACTOR_EXPONENTIAL };
-
-struct factor {
-    enum factor_kind kind;
-    double beta, gamma, b; /* the Gaussians */
-    double g, l;           /* EXPONENTIAL: exp(-g tau^l) */
-};
-
 struct nonanalytic {
     double n, a, b, A, B, C, E;
     double m;           /* 1 / (2 beta) */
@@ -56,7 +39,7 @@ struct residual {
     struct entry *entries;
     struct term *terms;
     double *powers;
-    struct factor *factors;
+    struct residual_factor *factors;
     struct nonanalytic *nonanalytic;
     size_t envelope_count, entry_count, term_count, power_count, factor_count, nonanalytic_count;
     unsigned table_end; /* powers of delta needed from the table, one past the last */
@@ -69,11 +52,6 @@ struct coefficient {
     double t, td, tt;
 };
 
-/* W and its logarithmic derivatives tau W'/W and tau^2 (ln W)''. */
-struct factor_value {
-    double value, first, second;
-};
-
 struct residual_at_t {
     double tau;
     double nonanalytic_exponent; /* least E (tau - 1)^2 of the nonanalytic terms */
@@ -81,79 +59,14 @@ struct residual_at_t {
     struct coefficient coefficients[];
 };
 
-/* One published term taken apart into the places it goes to. */
-struct parts {
-    struct envelope envelope;
-    struct factor factor;
-    double n, t, d;
-};
-
-static unsigned power_slot(double d)
-{
-    return d >= 0.0 && d < TABLE_POWERS && d == floor(d) ? (unsigned)d : GENERAL_POWER; /* == on given numbers */
-}
-
-static struct envelope exponential_envelope(double g, double l)
-{
-    /* A part whose g or l is zero is 1 by the definition of the kinds. */
-    if (g == 0.0 || l == 0.0) {
-        return (struct envelope){.kind = ENVELOPE_NONE};
-    }
-    return (struct envelope){.kind = ENVELOPE_EXPONENTIAL, .strength = g, .l = l, .l_slot = power_slot(l)};
-}
-
-static struct envelope gaussian_envelope(const struct residual_term *term)
-{
-    return (struct envelope){.kind = ENVELOPE_GAUSSIAN, .strength = term->eta, .epsilon = term->epsilon};
-}
-
-static struct parts take_apart(const struct residual_term *term)
-{
-    struct parts parts = {.n = term->n, .t = term->t, .d = term->d};
-    switch (term->kind) {
-    case RESIDUAL_POWER:
-        parts.envelope = exponential_envelope(1.0, term->l);
-        break;
-    case RESIDUAL_EXPONENTIAL:
-        /* Unlike a double exponential's part, g delta^0 here is a constant factor exp(-g). */
-        parts.envelope = exponential_envelope(term->g, term->l);
-        parts.n *= term->l == 0.0 ? exp(-term->g) : 1.0;
-        break;
-    case RESIDUAL_GAUSSIAN:
-        parts.envelope = gaussian_envelope(term);
-        parts.factor = (struct factor){.kind = FACTOR_GAUSSIAN, .beta = term->beta, .gamma = term->gamma};
-        break;
-    case RESIDUAL_INVERSE_GAUSSIAN:
-        parts.envelope = gaussian_envelope(term);
-        parts.factor =
-            (struct factor){.kind = FACTOR_INVERSE_GAUSSIAN, .beta = term->beta, .gamma = term->gamma, .b = term->b};
-        break;
-    case RESIDUAL_DOUBLE_EXPONENTIAL:
-        parts.envelope = exponential_envelope(term->gd, term->ld);
-        if (term->gt != 0.0 && term->lt != 0.0) {
-            parts.factor = (struct factor){.kind = FACTOR_EXPONENTIAL, .g = term->gt, .l = term->lt};
-        }
-        break;
-    case RESIDUAL_NONANALYTIC:
-    case RESIDUAL_KINDS:
-        break;
-    }
-    return parts;
-}
-
-static bool same_envelope(const struct envelope *a, const struct envelope *b)
-{
-    return a->kind == b->kind && a->strength == b->strength && a->l == b->l && a->epsilon == b->epsilon;
-}
-
-static size_t envelope_index(struct residual *residual, const struct envelope *envelope)
+static size_t envelope_index(struct residual *residual, const struct residual_envelope *envelope)
 {
     for (size_t i = 0; i < residual->envelope_count; i++) {
-        if (same_envelope(&residual->envelopes[i], envelope)) {
+        if (residual_same_envelope(&residual->envelopes[i].shape, envelope)) {
             return i;
         }
     }
-    residual->envelopes[residual->envelope_count] = *envelope;
+    residual->envelopes[residual->envelope_count].shape = *envelope;
     return residual->envelope_count++;
 }
 
@@ -168,12 +81,10 @@ static size_t power_index(struct residual *residual, double t)
     return residual->power_count++;
 }
 
-static size_t factor_index(struct residual *residual, const struct factor *factor)
+static size_t factor_index(struct residual *residual, const struct residual_factor *factor)
 {
     for (size_t i = 0; i < residual->factor_count; i++) {
-        const struct factor *known = &residual->factors[i];
-        if (known->kind == factor->kind && known->beta == factor->beta && known->gamma == factor->gamma &&
-            known->b == factor->b && known->g == factor->g && known->l == factor->l) {
+        if (residual_same_factor(&residual->factors[i], factor)) {
             return i;
         }
     }
@@ -220,7 +131,7 @@ static size_t place_terms(struct residual *residual, const struct reference_spec
             add_nonanalytic(residual, &spec->residual[i]);
             continue;
         }
-        const struct parts parts = take_apart(&spec->residual[i]);
+        const struct residual_parts parts = residual_take_apart(&spec->residual[i]);
         placed[count++] = (struct placed){
             .term = {.n = parts.n,
                      .t = parts.t,
@@ -239,7 +150,7 @@ static void gather_entry(struct residual *residual, struct placed *placed, bool 
     const size_t envelope = placed[first].envelope;
     const double d = placed[first].d;
     struct entry *entry = &residual->entries[residual->entry_count++];
-    *entry = (struct entry){.d = d, .slot = power_slot(d), .first_term = residual->term_count};
+    *entry = (struct entry){.d = d, .slot = residual_power_slot(d), .first_term = residual->term_count};
     for (size_t i = first; i < count; i++) {
         if (!taken[i] && placed[i].envelope == envelope && placed[i].d == d) {
             residual->terms[residual->term_count++] = placed[i].term;
@@ -263,9 +174,10 @@ static void gather_entries(struct residual *residual, struct placed *placed, boo
             }
         }
         envelope->end_entry = residual->entry_count;
-        if (envelope->kind == ENVELOPE_EXPONENTIAL && envelope->l_slot != GENERAL_POWER &&
-            envelope->l_slot >= residual->table_end) {
-            residual->table_end = envelope->l_slot + 1;
+        const struct residual_envelope *shape = &envelope->shape;
+        if (shape->kind == ENVELOPE_EXPONENTIAL && shape->l_slot != GENERAL_POWER &&
+            shape->l_slot >= residual->table_end) {
+            residual->table_end = shape->l_slot + 1;
         }
     }
 }
@@ -294,31 +206,6 @@ size_t residual_at_t_size(const struct residual *residual)
            residual->factor_count * sizeof(struct factor_value) + residual->power_count * sizeof(double);
 }
 
-static struct factor_value factor_at(const struct factor *factor, double tau, double log_tau)
-{
-    switch (factor->kind) {
-    case FACTOR_GAUSSIAN: {
-        const double x = tau - factor->gamma;
-        return (struct factor_value){exp(-factor->beta * x * x), -2.0 * factor->beta * tau * x,
-                                     -2.0 * factor->beta * tau * tau};
-    }
-    case FACTOR_INVERSE_GAUSSIAN: {
-        const double x = tau - factor->gamma;
-        const double h = factor->b + factor->beta * x * x;
-        const double slope = 2.0 * factor->beta * x;
-        return (struct factor_value){exp(1.0 / h), -tau * slope / (h * h),
-                                     tau * tau * (2.0 * slope * slope / h - 2.0 * factor->beta) / (h * h)};
-    }
-    case FACTOR_EXPONENTIAL: {
-        const double x = factor->g * exp(factor->l * log_tau);
-        return (struct factor_value){exp(-x), -factor->l * x, -factor->l * (factor->l - 1.0) * x};
-    }
-    case FACTOR_ONE:
-        break;
-    }
-    return (struct factor_value){1.0, 0.0, 0.0};
-}
-
 static struct coefficient coefficient_at(const struct residual *residual, const struct entry *entry,
                                          const struct factor_value *factors, const double *powers)
 {
@@ -345,7 +232,7 @@ void residual_set_tau(struct residual_at_t *at_t, const struct residual *residua
         powers[i] = exp(residual->powers[i] * log_tau);
     }
     for (size_t i = 0; i < residual->factor_count; i++) {
-        factors[i] = factor_at(&residual->factors[i], tau, log_tau);
+        factors[i] = residual_factor_at(&residual->factors[i], tau, log_tau);
     }
     for (size_t i = 0; i < residual->entry_count; i++) {
         at_t->coefficients[i] = coefficient_at(residual, &residual->entries[i], factors, powers);
@@ -355,46 +242,6 @@ void residual_set_tau(struct residual_at_t *at_t, const struct residual *residua
     for (size_t i = 0; i < residual->nonanalytic_count; i++) {
         at_t->nonanalytic_exponent = fmin(at_t->nonanalytic_exponent, residual->nonanalytic[i].E * z * z);
     }
-}
-
-/* delta^0 to delta^(end - 1); products of halves keep the chain of multiplications short. */
-static void fill_powers(double *table, unsigned end, double delta)
-{
-    table[0] = 1.0;
-    table[1] = delta;
-    for (unsigned k = 2; k < end; k++) {
-        table[k] = table[k / 2] * table[k - k / 2];
-    }
-}
-
-static inline double power_of(const double *table, unsigned slot, double d, double delta)
-{
-    return slot < GENERAL_POWER ? table[slot] : exp(d * log(delta));
-}
-
-/* An envelope E with delta E'/E in `first` and delta^2 E''/E in `second`. */
-struct envelope_value {
-    double value, first, second;
-};
-
-static inline struct envelope_value envelope_at(const struct envelope *envelope, const double *table, double delta)
-{
-    switch (envelope->kind) {
-    case ENVELOPE_EXPONENTIAL: {
-        const double x = envelope->strength * power_of(table, envelope->l_slot, envelope->l, delta);
-        const double first = -envelope->l * x;
-        return (struct envelope_value){exp(-x), first, first * (first + envelope->l - 1.0)};
-    }
-    case ENVELOPE_GAUSSIAN: {
-        const double x = delta - envelope->epsilon;
-        const double first = -2.0 * envelope->strength * x * delta;
-        return (struct envelope_value){exp(-envelope->strength * x * x), first,
-                                       first * first - 2.0 * envelope->strength * delta * delta};
-    }
-    case ENVELOPE_NONE:
-        break;
-    }
-    return (struct envelope_value){1.0, 0.0, 0.0};
 }
 
 /* The nonanalytic terms (Span and Wagner, J. Phys. Chem. Ref. Data 25 (1996) 1509, eq. 5.11 and table 32). */
@@ -488,14 +335,14 @@ void residual_by_density(const struct residual_at_t *at_t, const struct residual
                          struct residual_sums *out)
 {
     double table[TABLE_POWERS];
-    fill_powers(table, residual->table_end, delta);
+    residual_fill_powers(table, residual->table_end, delta);
     double value = 0.0, d = 0.0, dd = 0.0;
     for (size_t e = 0; e < residual->envelope_count; e++) {
         const struct envelope *envelope = &residual->envelopes[e];
-        const struct envelope_value E = envelope_at(envelope, table, delta);
+        const struct envelope_value E = residual_envelope_at(&envelope->shape, table, delta);
         double s = 0.0, sd = 0.0, sdd = 0.0;
         for (size_t i = envelope->first_entry; i < envelope->end_entry; i++) {
-            const double power = power_of(table, residual->entries[i].slot, residual->entries[i].d, delta);
+            const double power = residual_power_of(table, residual->entries[i].slot, residual->entries[i].d, delta);
             s += at_t->coefficients[i].c * power;
             sd += at_t->coefficients[i].cd * power;
             sdd += at_t->coefficients[i].cdd * power;
@@ -512,15 +359,15 @@ void residual_by_both(const struct residual_at_t *at_t, const struct residual *r
                       struct residual_sums *out)
 {
     double table[TABLE_POWERS];
-    fill_powers(table, residual->table_end, delta);
+    residual_fill_powers(table, residual->table_end, delta);
     *out = (struct residual_sums){0};
     for (size_t e = 0; e < residual->envelope_count; e++) {
         const struct envelope *envelope = &residual->envelopes[e];
-        const struct envelope_value E = envelope_at(envelope, table, delta);
+        const struct envelope_value E = residual_envelope_at(&envelope->shape, table, delta);
         struct coefficient s = {0};
         for (size_t i = envelope->first_entry; i < envelope->end_entry; i++) {
             const struct coefficient *c = &at_t->coefficients[i];
-            const double power = power_of(table, residual->entries[i].slot, residual->entries[i].d, delta);
+            const double power = residual_power_of(table, residual->entries[i].slot, residual->entries[i].d, delta);
             s.c += c->c * power;
             s.cd += c->cd * power;
             s.cdd += c->cdd * power;

@@ -24,6 +24,7 @@ struct optional {
  *   GAUSSIAN            exp(-eta (delta - epsilon)^2 - beta (tau - gamma)^2)
  *   INVERSE_GAUSSIAN    exp(-eta (delta - epsilon)^2 + 1 / (b + beta (tau - gamma)^2))
  *   DOUBLE_EXPONENTIAL  exp(-gd delta^ld - gt tau^lt); a part whose g or l is zero is 1
+ *   SPECIAL_EXPONENTIAL exp(-eta (delta - epsilon)^2 - beta (delta - gamma)), delta in both
  *   NONANALYTIC         n delta D^b psi in place of n delta^d tau^t, with D = theta^2 + B ((delta - 1)^2)^a,
  *                       theta = (1 - tau) + A ((delta - 1)^2)^(1 / (2 beta)),
  *                       psi = exp(-C (delta - 1)^2 - E (tau - 1)^2)
@@ -34,6 +35,7 @@ enum residual_kind {
     RESIDUAL_GAUSSIAN,
     RESIDUAL_INVERSE_GAUSSIAN,
     RESIDUAL_DOUBLE_EXPONENTIAL,
+    RESIDUAL_SPECIAL_EXPONENTIAL,
     RESIDUAL_NONANALYTIC,
     RESIDUAL_KINDS
 };
@@ -42,7 +44,7 @@ struct residual_term {
     enum residual_kind kind;
     double n, t, d, l;
     double g;                         /* EXPONENTIAL */
-    double eta, epsilon, beta, gamma; /* the GAUSSIANs, NONANALYTIC (beta) */
+    double eta, epsilon, beta, gamma; /* the GAUSSIANs, SPECIAL_EXPONENTIAL, NONANALYTIC (beta) */
     double b;                         /* INVERSE_GAUSSIAN, NONANALYTIC */
     double gd, ld, gt, lt;            /* DOUBLE_EXPONENTIAL */
     double a, A, B, C, E;             /* NONANALYTIC */
@@ -92,6 +94,7 @@ struct reference_spec {
     double gas_constant;         /* J/(mol K) */
     double reducing_temperature; /* K */
     double reducing_density;     /* mol/m3 */
+    struct optional molar_mass;  /* kg/mol, where the paper's differs from the substance's */
     size_t residual_count;
     const struct residual_term *residual;
     size_t ideal_count;
@@ -138,6 +141,29 @@ struct pair_constant {
     double kij, lij;
 };
 
+/* What a pair of components adds to a mixture's residual Helmholtz energy beyond its components' own: a function of the
+ * mixture's tau and delta, shared by all pairs that name it. */
+struct departure_spec {
+    const char *name;
+    size_t residual_count;
+    const struct residual_term *residual; /* of any kind but NONANALYTIC */
+};
+
+/* A pair's constants of a multi-fluid method. Of the order (first, second); turned round, a beta becomes 1 / beta:
+ *
+ *   T_r       = sum_i x_i^2 T_i + sum_{i<j} 2 x_i x_j beta_T gamma_T (x_i + x_j) / (beta_T^2 x_i + x_j) sqrt(T_i T_j)
+ *   1 / rho_r = the same with beta_V, gamma_V, 1 / rho_i and (rho_i^(-1/3) + rho_j^(-1/3))^3 / 8
+ *
+ * (Kunz and Wagner, J. Chem. Eng. Data 57 (2012) 3032, eqs. 16 and 17). */
+struct reducing_pair {
+    size_t first, second;    /* indices of the components */
+    const char *method;      /* the method's word */
+    enum pair_origin origin; /* PAIR_FROM_DECK or PAIR_FROM_LIBRARY */
+    double beta_T, gamma_T, beta_V, gamma_V;
+    double weight;                          /* of the departure, F_ij */
+    const struct departure_spec *departure; /* NULL: none */
+};
+
 /* A pure substance as every method sees it; what a method needs and does not find makes it unable to answer. */
 struct pure_spec {
     const char *name;
@@ -146,6 +172,7 @@ struct pure_spec {
     struct optional acentric;
     struct optional triple_temperature;     /* K */
     const struct reference_spec *reference; /* NULL where none is published */
+    const struct reference_spec *gerg_2008; /* NULL: not one of the components of GERG-2008 */
     size_t cubic_set_count;
     const struct cubic_set *cubic_sets; /* at most one for each method */
     size_t group_count;                 /* 0: no assignment to groups */
@@ -162,6 +189,8 @@ struct fluid_spec {
     const struct pair_constant *pairs;
     size_t group_pair_count;
     const struct group_pair *group_pairs;
+    size_t reducing_pair_count;
+    const struct reducing_pair *reducing_pairs;
 };
 
 #endif
