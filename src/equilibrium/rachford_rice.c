@@ -65,7 +65,7 @@ bool split_by_ratios(struct equilibrium_workspace *ws)
         const double c = expm1(fmin(ws->ln_K[i], 600.0));
         ws->ln_K_change[i] = c;
         at_none += ws->feed[i] * c;
-        at_all += ws->feed[i] * c / (1.0 + c);
+        at_all -= ws->feed[i] * expm1(fmin(-ws->ln_K[i], 600.0)); /* 1 - 1 / K, where c may have rounded to -1 */
     }
     if (!(at_none > 0.0) || !(at_all < 0.0)) {
         return false;
