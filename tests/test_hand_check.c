@@ -1,11 +1,13 @@
 /* Hand checks are redone here from the printed text alone, as a reader with a calculator would. */
 #include "filling/hand_check.h"
+#include "filling/solve.h"
 
 #include "base/text.h"
 #include "fluid/reference_explain.h"
 #include "fluid/reference_residual.h"
 #include "support/arithmetic.h"
 #include "support/check.h"
+#include "support/elaborated.h"
 #include "support/small_case.h"
 
 #include <math.h>
@@ -15,7 +17,7 @@
 
 /* ---- reading a check back ---------------------------------------------------------------------------------------- */
 
-enum { MOST_STATEMENTS = 120, MOST_PARTS = 4, TEXT_BYTES = 600, PAGE_COLUMNS = 100, INDENT_COLUMNS = 6 };
+enum { MOST_STATEMENTS = 160, MOST_PARTS = 4, TEXT_BYTES = 1200, PAGE_COLUMNS = 100, INDENT_COLUMNS = 6 };
 
 /* "symbol = formula = numbers = value unit": its parts without the meaning. */
 struct statement_text {
@@ -171,8 +173,8 @@ static void a_ratio_is_never_rounded_up(void **state)
     const struct {
         double ratio, step, expected;
     } cases[] = {
-        {0.7637, 0.01, 0.76}, {0.7699999, 0.01, 0.76}, {0.77, 0.01, 0.77}, {0.29, 0.01, 0.29},
-        {0.4263, 0.005, 0.425}, {0.0037, 0.01, 0.0}, {3.7, 1.0, 3.0},
+        {0.7637, 0.01, 0.76},   {0.7699999, 0.01, 0.76}, {0.77, 0.01, 0.77}, {0.29, 0.01, 0.29},
+        {0.4263, 0.005, 0.425}, {0.0037, 0.01, 0.0},     {3.7, 1.0, 3.0},
     };
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
         const double rounded = ratio_rounded_down(cases[i].ratio, cases[i].step);
@@ -342,12 +344,32 @@ static void the_explained_sums_of_every_kind_of_term_agree_with_the_solver(void 
         {.kind = RESIDUAL_POWER, .n = 0.43, .t = 0.37, .d = 1},
         {.kind = RESIDUAL_POWER, .n = -1.3, .t = 1.17, .d = 2, .l = 2},
         {.kind = RESIDUAL_EXPONENTIAL, .n = 0.21, .t = 2.3, .d = 3, .l = 1.7, .g = 1.3},
-        {.kind = RESIDUAL_GAUSSIAN, .n = -0.31, .t = 1.9, .d = 2, .eta = 1.1, .epsilon = 0.7, .beta = 2.1,
+        {.kind = RESIDUAL_GAUSSIAN,
+         .n = -0.31,
+         .t = 1.9,
+         .d = 2,
+         .eta = 1.1,
+         .epsilon = 0.7,
+         .beta = 2.1,
          .gamma = 1.2},
-        {.kind = RESIDUAL_INVERSE_GAUSSIAN, .n = 0.023, .t = 1.4, .d = 2, .eta = 1.8, .epsilon = 0.9, .beta = 0.37,
-         .gamma = 1.1, .b = 1.43},
+        {.kind = RESIDUAL_INVERSE_GAUSSIAN,
+         .n = 0.023,
+         .t = 1.4,
+         .d = 2,
+         .eta = 1.8,
+         .epsilon = 0.9,
+         .beta = 0.37,
+         .gamma = 1.1,
+         .b = 1.43},
         {.kind = RESIDUAL_DOUBLE_EXPONENTIAL, .n = 0.17, .t = 1.6, .d = 2, .gd = 0.7, .ld = 2, .gt = 0.3, .lt = 3},
-        {.kind = RESIDUAL_NONANALYTIC, .n = -0.67, .a = 3.5, .b = 0.875, .beta = 0.3, .A = 0.7, .B = 0.3, .C = 10,
+        {.kind = RESIDUAL_NONANALYTIC,
+         .n = -0.67,
+         .a = 3.5,
+         .b = 0.875,
+         .beta = 0.3,
+         .A = 0.7,
+         .B = 0.3,
+         .C = 10,
          .E = 275},
     };
     const struct reference_spec equation = {
@@ -385,6 +407,75 @@ static void the_explained_sums_of_every_kind_of_term_agree_with_the_solver(void 
     arena_free(arena);
 }
 
+/* ---- mixtures ---------------------------------------------------------------------------------------------------- */
+
+static const char MIXTURES[] =
+    "component n-butane { molar-mass 58.1222 g/mol; critical-temperature 425.125 K; critical-pressure 3.796 MPa\n"
+    "  acentric 0.2008; parameters peng-robinson-1978 { shift -5.3 cm3/mol } }\n"
+    "component nitrogen { molar-mass 28.01348 g/mol; critical-temperature 126.192 K; critical-pressure 3.3958 MPa\n"
+    "  acentric 0.0372; parameters peng-robinson-1978 { shift -3.825 cm3/mol } }\n"
+    "pair nitrogen n-butane { peng-robinson kij 0.08; peng-robinson-1978 kij 0.08 }\n"
+    "mixture span by mole { n-butane 2 %; nitrogen rest }\n"
+    "vessel ten { water-capacity 10 L; test-pressure 300 barg }\n"
+    "rule cold { from -25 degC to 50 degC no liquid }\n"
+    "charge c { fluid span; vessel ten; density 0.1 kg/L }\n";
+
+static const struct hand_check *first_check(const struct result_sheet *sheet)
+{
+    for (const struct sheet_part *part = sheet->first_part; part != NULL; part = part->next) {
+        if (part->kind == PART_HAND_CHECK) {
+            return part->hand_check;
+        }
+    }
+    fail_msg("no hand check");
+    return NULL;
+}
+
+/* The value of a symbol each time it is printed. */
+static size_t all_printed(const struct hand_check *check, const char *symbol, double values[], size_t most)
+{
+    static struct statements statements;
+    size_t count = 0;
+    read_back(check, &statements);
+    for (size_t i = 0; i < statements.count; i++) {
+        if (strcmp(statements.items[i].parts[0], symbol) == 0 && count < most) {
+            values[count++] = printed_value(&statements.items[i]);
+        }
+    }
+    return count;
+}
+
+static void phases_of_mixtures_are_redone_and_their_fugacities_are_equal(void **state)
+{
+    (void)state;
+    static const char *const methods[] = {"van-der-waals", "soave-redlich-kwong", "peng-robinson",
+                                          "peng-robinson-1978"};
+    static const char *const sheets[] = {
+        "sheet permissible-charge { fluid span; vessel ten; rules cold; methods ",
+        "sheet saturation { fluid span; sweep temperature -25 degC; methods ",
+        "sheet fugacity { fluid span; sweep temperature -100 degC; sweep density 0.1 kg/L; methods ",
+    };
+    for (size_t m = 0; m < sizeof methods / sizeof *methods; m++) {
+        for (size_t k = m == 0 ? 2 : 0; k < sizeof sheets / sizeof *sheets; k++) { /* van der Waals never governs */
+            char deck[4096];
+            snprintf(deck, sizeof deck, "%s%s%s }\n", MIXTURES, sheets[k], methods[m]);
+            struct elaborated it = elaborate_well(deck);
+            const struct result *result = filling_solve(it.tree, "0.0.0", it.arena);
+            const struct hand_check *check = first_check(result->first_sheet);
+            redo(check, 1e-6, methods[m]); /* ten digits of p_rep and p_att leave seven of a liquid's p */
+            assert_fits_the_page(check);
+            double p[4], f[4];
+            assert_int_equal(all_printed(check, "p", p, 4), 2);
+            assert_close(p[0], p[1], 1e-8, "one pressure in both phases");
+            assert_int_equal(all_printed(check, "f_1", f, 4), 2);
+            assert_close(f[0], f[1], 1e-7, "equal fugacity of the first component");
+            assert_int_equal(all_printed(check, "f_2", f, 4), 2);
+            assert_close(f[0], f[1], 1e-7, "equal fugacity of the second component");
+            elaborated_end(&it);
+        }
+    }
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -399,6 +490,7 @@ int main(void)
         cmocka_unit_test(what_both_phases_share_is_printed_once),
         cmocka_unit_test(a_method_without_an_explanation_says_so),
         cmocka_unit_test(the_explained_sums_of_every_kind_of_term_agree_with_the_solver),
+        cmocka_unit_test(phases_of_mixtures_are_redone_and_their_fugacities_are_equal),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -75,6 +75,7 @@ static void no_liquid_ends_at_the_lowest_dew_density(void **state)
                                       "sheet permissible-charge { fluid span; vessel ten; rules cold }\n");
     assert_close(fact_of(&answered, "mass"), 0.418430987119, 1e-9, "dew density at 248.15 K in 10 L: independent");
     assert_close(fact_of(&answered, "governing-temperature"), 248.15, 1e-9, "the coldest is the worst");
+    assert_string_equal(result_fact(answered.sheet, "governing-component", NULL)->text, "n-butane");
     const struct table *table = result_table(
         answered.sheet,
         "dew limit of 'from -25 degC to 50 degC no liquid', at -25 degC, beside the rule of partial pressures", NULL);

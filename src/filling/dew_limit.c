@@ -66,6 +66,15 @@ static bool find_dew_limit(struct method_run *method, double temperature, struct
     return true;
 }
 
+const char *condensing_component(const struct sheet_run *run, struct method_run *method, double temperature)
+{
+    struct dew_limit dew;
+    const struct phase_edge *edge;
+    return method->mixture != NULL && find_dew_limit(method, temperature, &dew, &edge)
+               ? run->sheet->fluid->components[dew.component]->name
+               : NULL;
+}
+
 /* ---- the limits beside the rule of partial pressures ------------------------------------------------------------- */
 
 /* The last column only where the methods' worst temperatures differ. */

@@ -6,6 +6,10 @@
 
 #include "filling/permissible_internal.h"
 
+/* The component that makes up most of the first liquid at the lowest dew point at `temperature`; NULL where there is no
+ * dew point, and for a pure gas. */
+const char *condensing_component(const struct sheet_run *run, struct method_run *method, double temperature);
+
 /* Tables and notes for each such criterion of a mixture's sheet; nothing for a pure gas. */
 void tell_dew_limits(const struct permissible *sheet);
 

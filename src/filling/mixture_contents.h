@@ -50,7 +50,7 @@ struct phase_edge {
     bool other_is_lighter; /* a bubble point; else a dew point */
     double pressure;       /* Pa */
     double molar_volume;   /* m3/mol, of the whole as one phase */
-    double other_volume;   /* m3/mol; 0 where the other phase was not caught */
+    double other_volume;   /* m3/mol */
     double *other;         /* [count], mole fractions */
 };
 

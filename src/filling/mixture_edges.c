@@ -29,13 +29,11 @@ struct edge_search {
     struct method_run *method;
     struct stability found; /* of the last state tried */
     double pressure;
+    bool takes_failure_for_unstable; /* closing in: what cannot be said counts to the side of the second phase */
 };
 
-/* Infinite where the fluid as one phase of that molar volume is stable, else minus infinity.
- * ANSWER_NO_SUCH_ROOT beyond the highest pressure. */
-static enum answer stable_side(void *context, double molar_volume, double *side)
+static enum answer side_at(struct edge_search *search, double molar_volume, double *side)
 {
-    struct edge_search *search = context;
     struct mixture_work *work = search->method->mixture;
     const double *z = search->method->z;
     enum answer answer = phase_tv(search->method->at_t, molar_volume, z, 0, work->phase);
@@ -60,22 +58,42 @@ static enum answer stable_side(void *context, double molar_volume, double *side)
     return answer;
 }
 
+/* Infinite where the fluid as one phase of that molar volume is stable, else minus infinity. ANSWER_NO_SUCH_ROOT beyond
+ * the highest pressure. Next to a critical point a trial phase may not converge: a state a hair beside it then speaks
+ * for this one. */
+static enum answer stable_side(void *context, double molar_volume, double *side)
+{
+    static const double nudges[] = {0.0, 1e-9, -1e-9, 1e-7, -1e-7, 1e-5, -1e-5};
+    struct edge_search *search = context;
+    enum answer answer = ANSWER_FAILED;
+    for (size_t i = 0; answer == ANSWER_FAILED && i < sizeof nudges / sizeof *nudges; i++) {
+        answer = side_at(search, molar_volume * (1.0 + nudges[i]), side);
+    }
+    if (answer == ANSWER_FAILED && search->takes_failure_for_unstable) {
+        *side = -(double)INFINITY;
+        search->found.has_incipient = false;
+        return ANSWER_OK;
+    }
+    return answer;
+}
+
 /* Closes in on a change of side between two volumes; the edge is the end that is stable, its other phase the one that
  * forms on the further side. */
 static enum answer close_in(struct edge_search *search, double stable, double unstable, struct phase_edge *edge)
 {
+    const size_t bytes = search->method->mixture->count * sizeof *edge->other;
     const struct search_function function = {stable_side, search};
     struct search_bracket bracket = {stable, (double)INFINITY, unstable, -(double)INFINITY};
+    search->takes_failure_for_unstable = true;
     enum answer answer = search_root(&function, 0.0, EDGE_TOLERANCE, &bracket);
     double side;
     if (answer == ANSWER_OK) {
         answer = stable_side(search, bracket.b, &side);
     }
-    edge->other_volume = 0.0;
-    if (answer == ANSWER_OK && search->found.has_incipient) {
-        memcpy(edge->other, search->found.incipient, search->method->mixture->count * sizeof *edge->other);
-        edge->other_volume = search->found.incipient_volume;
-    }
+    /* Where no other phase is caught the two are about to be one. */
+    const bool has_other = answer == ANSWER_OK && search->found.has_incipient;
+    memcpy(edge->other, has_other ? search->found.incipient : search->method->z, bytes);
+    edge->other_volume = has_other ? search->found.incipient_volume : bracket.b;
     edge->opens = unstable < stable;
     edge->other_is_lighter = edge->other_volume > bracket.b;
     if (answer == ANSWER_OK) {
@@ -83,6 +101,7 @@ static enum answer close_in(struct edge_search *search, double stable, double un
     }
     edge->molar_volume = bracket.a;
     edge->pressure = search->pressure;
+    search->takes_failure_for_unstable = false;
     return answer;
 }
 

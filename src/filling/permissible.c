@@ -206,6 +206,22 @@ static struct mass_basis basis_of_permitted(const struct permissible *sheet)
     return basis;
 }
 
+static void tell_governing(const struct permissible *sheet, size_t criterion, const struct criterion_limit *limit)
+{
+    const struct sheet_run *run = sheet->run;
+    struct method_run *method = governing_method(sheet);
+    const double temperature = limit->finding.worst_temperature;
+    sheet_add_words(run->result, run->out, "governing-method", method->name);
+    sheet_add_fact(run->result, run->out, "governing-temperature", temperature, look_temperature(run))->method =
+        method->name;
+    const char *condensing = sheet->criteria[criterion].predicate->kind == PREDICATE_NO_LIQUID
+                                 ? condensing_component(run, method, temperature)
+                                 : NULL;
+    if (condensing != NULL) {
+        sheet_add_words(run->result, run->out, "governing-component", condensing)->method = method->name;
+    }
+}
+
 static void tell_charge(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
@@ -227,10 +243,7 @@ static void tell_charge(const struct permissible *sheet)
     sheet_add_words(run->result, run->out, "governed-by", governed_by(sheet, criterion, limit));
     sheet_add_words(run->result, run->out, "governing-criterion", sheet->criteria[criterion].predicate->written);
     if (sheet->criteria[criterion].kind != CRITERION_LISTED) {
-        sheet_add_words(run->result, run->out, "governing-method", method->name);
-        sheet_add_fact(run->result, run->out, "governing-temperature", limit->finding.worst_temperature,
-                       look_temperature(run))
-            ->method = method->name;
+        tell_governing(sheet, criterion, limit);
     }
     add_liquid_end(run, method, sheet->mass);
     warn_of_class(sheet, classify_charge(run, method, sheet->mass));
