@@ -6,6 +6,8 @@
 #include "filling/mixture_contents.h"
 #include "filling/mixture_sheets.h"
 
+#include <math.h>
+
 enum { DIGITS = 7 };
 
 struct sweeping {
@@ -193,13 +195,30 @@ static void add_state(const struct sheet_run *run, const struct method_run *meth
     fact->method = method->name;
 }
 
+#define COLDER_THAN_ANY_YARD 150.0 /* K */
+
+/* A line lost at a temperature colder than any asked about takes nothing from the answer. */
+static bool matters(const struct sheet_run *run, const struct envelope *envelope, const struct envelope_line *line)
+{
+    const size_t last = line->first + line->count - 1;
+    const double temperature = exp(envelope->X[last * (envelope->components + 2) + envelope->components]);
+    double coldest = COLDER_THAN_ANY_YARD;
+    if (!by_pressure(run)) {
+        coldest = run->sheet->temperatures.values[0];
+        for (size_t i = 1; i < run->sheet->temperatures.count; i++) {
+            coldest = fmin(coldest, run->sheet->temperatures.values[i]);
+        }
+    }
+    return line->count > 0 && temperature > coldest;
+}
+
 static void add_open_ends(const struct sheet_run *run, const struct method_run *method, const struct envelope *envelope)
 {
     for (size_t i = 0; i < envelope->line_count; i++) {
         if (envelope->line[i].end == ENVELOPE_END_HIGH_PRESSURE) {
             sheet_add_note(run->result, run->out, "the boundary is open: it goes on above %s, where it was left (%s)",
                            shown_text(run, look_pressure(run), ENVELOPE_HIGHEST_PRESSURE), method->name);
-        } else if (envelope->line[i].end == ENVELOPE_END_LOST) {
+        } else if (envelope->line[i].end == ENVELOPE_END_LOST && matters(run, envelope, &envelope->line[i])) {
             result_warn(run->result, CODE_W352, location_line(run->sheet->at), run->number,
                         "%s, %s: a line of dew and bubble points could not be followed to its end",
                         run->sheet->fluid->name, method->name);
