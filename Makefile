@@ -92,7 +92,7 @@ $(BUILD)/bench: $(BUILD)/tests/bench.o $(SUPPORT) $(LIBRARY)
 demo: ## install what is missing, build, run the demo deck and print its listing
 	@$(MAKE) --no-print-directory packages
 	@$(MAKE) --no-print-directory -j$(CORES) all
-	$(PROGRAM) run $(DEMO) --out $(BUILD)
+	$(PROGRAM) run $(DEMO) --library decks/library --out $(BUILD)
 
 test: ## install what is missing, build and run all tests
 	@$(MAKE) --no-print-directory packages
@@ -119,7 +119,7 @@ asan: ## all tests under the address and undefined-behaviour sanitizers
 	    EXTRA_CFLAGS="-fsanitize=$(SANITIZERS) -fno-sanitize-recover=all -fno-omit-frame-pointer" check
 
 valgrind: $(PROGRAM) packages-extra ## the demo deck under valgrind
-	valgrind --quiet --leak-check=full --error-exitcode=9 $(PROGRAM) run $(DEMO) --out $(BUILD) >$(BUILD)/valgrind.listing
+	valgrind --quiet --leak-check=full --error-exitcode=9 $(PROGRAM) run $(DEMO) --library decks/library --out $(BUILD) >$(BUILD)/valgrind.listing
 
 coverage: packages-extra ## line coverage of src/ by the tests
 	$(MAKE) BUILD=$(BUILD)/coverage OPTIMISE=-O0 EXTRA_CFLAGS=--coverage check
