@@ -131,6 +131,23 @@ static void a_compressed_gas_is_filled_to_a_pressure_and_not_rounded(void **stat
     assert_non_null(result_cell(limits, row, "gauge-pressure-15-degC"));
     assert_null(result_cell(limits, row, "filling-ratio"));
     assert_int_equal(result_warnings(bench->it->run.result, CODE_W323), 1);
+    /* As filled it is liquefied all the same, and a cubic alone says how far: not for filling. */
+    assert_int_equal(result_warnings(bench->it->run.result, CODE_W325), 1);
+    assert_non_null(strstr(bench->it->run.result->headlines.items[0], "not for filling"));
+    tear_down_bench(bench);
+}
+
+/* "It and every smaller one": what is met by larger charges only permits none, and says so. */
+static void a_condition_met_by_larger_charges_only_permits_none(void **state)
+{
+    (void)state;
+    struct bench *bench = set_up_bench();
+    bench->predicates[0] =
+        compared(293.15, 293.15, SYMBOL_DENSITY, RELATION_AT_LEAST, formula_number(bench->it, 310.0));
+    filled_vessel_method(bench->it, "peng-robinson");
+    const struct result_sheet *sheet = answer(bench);
+    assert_true(result_has_note(sheet, "by the smallest charges already"));
+    assert_int_equal(result_warnings(bench->it->run.result, CODE_W327), 1);
     tear_down_bench(bench);
 }
 
@@ -249,6 +266,26 @@ static void a_listed_row_acts_as_the_sheet_asks(void **state)
         if (warnings[0] != cases[i].exceeds || warnings[1] != cases[i].below || warnings[2] != cases[i].missing) {
             fail_msg("%s: warnings %zu %zu %zu", cases[i].name, warnings[0], warnings[1], warnings[2]);
         }
+    }
+}
+
+/* A rule that no row replaces is no way around letter o. */
+static void letter_o_binds_beside_a_rule_of_ones_own(void **state)
+{
+    (void)state;
+    for (int is_never_exceeded = 0; is_never_exceeded <= 1; is_never_exceeded++) {
+        struct bench *bench = set_up_bench();
+        list_rows(bench, 0.61, 0.72);
+        bench->predicates[0].unless_listed = false;
+        bench->it->entry.is_never_exceeded = is_never_exceeded == 1;
+        filled_vessel_method(bench->it, "peng-robinson");
+        const struct result_sheet *sheet = answer(bench);
+        const double computed = floor(fact_value(sheet, "filling-ratio-unrounded") * 100.0) / 100.0;
+        assert_true(computed > 0.725);
+        assert_close(fact_value(sheet, "filling-ratio"), is_never_exceeded == 1 ? 0.72 : computed, 1e-14,
+                     "the row with letter o, the computation without");
+        assert_int_equal(result_warnings(bench->it->run.result, CODE_W331), is_never_exceeded);
+        tear_down_bench(bench);
     }
 }
 
@@ -697,11 +734,13 @@ int main(void)
         cmocka_unit_test(a_liquefied_gas_gets_its_ratio_rounded_down_and_the_mass_follows),
         cmocka_unit_test(a_ratio_that_is_a_multiple_of_the_step_keeps_it),
         cmocka_unit_test(a_compressed_gas_is_filled_to_a_pressure_and_not_rounded),
+        cmocka_unit_test(a_condition_met_by_larger_charges_only_permits_none),
         cmocka_unit_test(gross_weight_is_tare_and_charge),
         cmocka_unit_test(the_gas_volume_is_real_at_15_degc_and_1_bar),
         cmocka_unit_test(fittings_are_always_checked_at_15_degc),
         cmocka_unit_test(every_criterion_is_checked_again_for_the_permitted_charge),
         cmocka_unit_test(a_listed_row_acts_as_the_sheet_asks),
+        cmocka_unit_test(letter_o_binds_beside_a_rule_of_ones_own),
         cmocka_unit_test(a_replaced_criterion_is_met_by_the_row_with_the_computation_beside_it),
         cmocka_unit_test(a_row_replaces_only_the_criterion_marked_for_it),
         cmocka_unit_test(of_two_entries_the_smaller_ratio_applies),

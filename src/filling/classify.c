@@ -37,6 +37,11 @@ enum filling_class classify_charge(const struct sheet_run *run, struct method_ru
     return is_gas ? CLASS_COMPRESSED : by_gas;
 }
 
+bool class_is_liquefied(enum filling_class of)
+{
+    return of == CLASS_HIGH_PRESSURE_LIQUEFIED || of == CLASS_LOW_PRESSURE_LIQUEFIED;
+}
+
 const char *class_words(enum filling_class of)
 {
     switch (of) {

@@ -15,6 +15,9 @@ enum filling_class classify_charge(const struct sheet_run *run, struct method_ru
  * components' critical temperatures, weighted with the mole fractions (Kay, Ind. Eng. Chem. 28 (1936) 1014). */
 enum filling_class classify_fluid(const struct case_fluid *fluid);
 
+/* At high or at low pressure. */
+bool class_is_liquefied(enum filling_class of);
+
 /* "high-pressure liquefied gas". */
 const char *class_words(enum filling_class of);
 

@@ -27,7 +27,7 @@ static bool fills_by_ratio(const struct case_sheet *sheet)
     bool has_compressed = false;
     for (size_t i = 0; i < sheet->rule_count; i++) {
         const enum filling_class of = sheet->rules[i]->meant_for;
-        if (of == CLASS_HIGH_PRESSURE_LIQUEFIED || of == CLASS_LOW_PRESSURE_LIQUEFIED) {
+        if (class_is_liquefied(of)) {
             return true;
         }
         has_compressed = has_compressed || of == CLASS_COMPRESSED;

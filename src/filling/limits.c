@@ -1,6 +1,7 @@
 /* The limit of each criterion by each method, and which of them governs. */
 #include "filling/permissible_internal.h"
 
+#include "filling/classify.h"
 #include "filling/requirement.h"
 
 #include <math.h>
@@ -226,8 +227,17 @@ static bool is_supported(const struct permissible *sheet)
     return false;
 }
 
+/* Liquefied as its rules say; a pure gas also as it then lies in the vessel. A mixture with liquid at -50 degC may be
+ * filled to a dew point far from any liquid density. */
+static bool is_liquefied_charge(const struct permissible *sheet)
+{
+    return sheet->is_by_ratio ||
+           (sheet->run->sheet->fluid->count == 1 &&
+            class_is_liquefied(classify_charge(sheet->run, governing_method(sheet), sheet->mass)));
+}
+
 bool is_indicative(const struct permissible *sheet)
 {
-    return sheet->governing.given && sheet->is_by_ratio && is_cubic(governing_method(sheet)) &&
-           governing_criterion(sheet)->kind != CRITERION_LISTED && !is_supported(sheet);
+    return sheet->governing.given && is_cubic(governing_method(sheet)) &&
+           governing_criterion(sheet)->kind != CRITERION_LISTED && !is_supported(sheet) && is_liquefied_charge(sheet);
 }

@@ -2,6 +2,7 @@
  * computation it stands for. */
 #include "filling/permissible_internal.h"
 
+#include "filling/classify.h"
 #include "filling/contents_table.h"
 #include "filling/found_temperatures.h"
 #include "filling/listed_ledger.h"
@@ -15,11 +16,6 @@
 
 /* ---- the choice -------------------------------------------------------------------------------------------------- */
 
-static bool is_liquefied(enum filling_class of)
-{
-    return of == CLASS_HIGH_PRESSURE_LIQUEFIED || of == CLASS_LOW_PRESSURE_LIQUEFIED;
-}
-
 /* A filling ratio stands for a criterion on liquefied gases, a working pressure for one on compressed gases. */
 static bool implements(const struct listed_row *row, const struct criterion *criterion)
 {
@@ -27,7 +23,7 @@ static bool implements(const struct listed_row *row, const struct criterion *cri
         return false;
     }
     return row->filling_ratio.given ? criterion->meant_for != CLASS_COMPRESSED
-                                    : row->working_pressure.given && !is_liquefied(criterion->meant_for);
+                                    : row->working_pressure.given && !class_is_liquefied(criterion->meant_for);
 }
 
 static bool implements_any(const struct permissible *sheet, const struct listed_row *row)
@@ -63,6 +59,7 @@ static bool is_better_entry(const struct listed_choice *choice, const struct lis
            choice->row->filling_ratio.value < chosen->row->filling_ratio.value;
 }
 
+/* By letter o a row is never exceeded: it binds whatever rules the sheet names, also where it replaces none of them. */
 static void choose_row(struct permissible *sheet, const struct case_entry *entry)
 {
     const struct quantity *test = &sheet->run->sheet->vessel->test_pressure;
@@ -70,7 +67,7 @@ static void choose_row(struct permissible *sheet, const struct case_entry *entry
     const struct listed_row *lowest = NULL;
     for (size_t i = 0; i < entry->row_count; i++) {
         const struct listed_row *row = &entry->rows[i];
-        if (!implements_any(sheet, row)) {
+        if (!entry->is_never_exceeded && !implements_any(sheet, row)) {
             continue;
         }
         lowest = lowest == NULL || row->test_pressure < lowest->test_pressure ? row : lowest;
@@ -336,9 +333,12 @@ static void tell_missing_row(const struct permissible *sheet)
 static void tell_letter_o(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
-    if (sheet->listed.entry->is_never_exceeded && run->sheet->listed == LISTED_COMPARE) {
+    const char *although = run->sheet->listed == LISTED_COMPARE                ? "the sheet only compares"
+                           : !implements_any(sheet, row_in_question(sheet)) ? "no rule of the sheet gives way to it"
+                                                                            : NULL;
+    if (sheet->listed.entry->is_never_exceeded && although != NULL) {
         result_warn(run->result, CODE_W331, location_line(run->sheet->at), run->number,
-                    "%s has letter o: its row binds although the sheet only compares", sheet->listed.entry->name);
+                    "%s has letter o: its row binds although %s", sheet->listed.entry->name, although);
     }
 }
 

@@ -125,19 +125,37 @@ static void tell_undecided(const struct permissible *sheet)
     tell_no_charge(run, REQUIREMENT_UNDECIDED, reason);
 }
 
+/* A larger charge is permitted only where every smaller one is too; a window above is told, no more. */
+static void warn_of_windows(const struct permissible *sheet)
+{
+    const struct sheet_run *run = sheet->run;
+    const struct method_limits *of = &sheet->by_method[sheet->governing.index];
+    for (size_t i = 0; i < sheet->criterion_count; i++) {
+        const struct criterion_limit *limit = &of->limits[i];
+        if (limit->answer == ANSWER_OK && limit->finding.has_window) {
+            result_warn(run->result, CODE_W327, location_line(run->sheet->at), run->number,
+                        "'%s' would be met%s by larger charges, as %s (%s)", sheet->criteria[i].predicate->written,
+                        limit->mass > 0.0 ? " again" : "", shown_text(run, look_mass(run), limit->finding.window),
+                        of->method->name);
+        }
+    }
+}
+
 static void tell_nothing_allowed(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
     const struct criterion *criterion = governing_criterion(sheet);
     const struct criterion_limit *limit = governing_limit(sheet);
     const char *found = margin_words(run, criterion->predicate, &limit->finding);
+    const char *by = limit->finding.has_window ? "by the smallest charges already" : "whatever the charge";
     const char *reason =
         limit->mass > 0.0
             ? arena_format(run->arena, "the limit of '%s', filling ratio %.6f, rounds down to nothing by steps of %g",
                            criterion->predicate->written, ratio_of_mass(run, limit->mass), criterion->round_to)
-            : arena_format(run->arena, "'%s' is missed at %s whatever the charge: %s", criterion->predicate->written,
-                           temperature_words(run, limit->finding.worst_temperature), found);
+            : arena_format(run->arena, "'%s' is missed at %s %s: %s", criterion->predicate->written,
+                           temperature_words(run, limit->finding.worst_temperature), by, found);
     tell_no_charge(run, REQUIREMENT_NOT_MET, reason);
+    warn_of_windows(sheet);
 }
 
 /* ---- the permitted charge ---------------------------------------------------------------------------------------- */
@@ -151,19 +169,6 @@ static void warn_of_class(const struct permissible *sheet, enum filling_class of
             result_warn(run->result, CODE_W323, location_line(run->sheet->at), run->number,
                         "rule %s is meant for a %s; as filled, %s is a %s", rule->name, class_words(rule->meant_for),
                         run->sheet->fluid->name, class_words(of));
-        }
-    }
-}
-
-static void warn_of_windows(const struct permissible *sheet)
-{
-    const struct sheet_run *run = sheet->run;
-    const struct method_limits *of = &sheet->by_method[sheet->governing.index];
-    for (size_t i = 0; i < sheet->criterion_count; i++) {
-        if (of->limits[i].answer == ANSWER_OK && of->limits[i].finding.has_window) {
-            result_warn(run->result, CODE_W327, location_line(run->sheet->at), run->number,
-                        "'%s' would be met again by larger charges, as %s (%s)", sheet->criteria[i].predicate->written,
-                        shown_text(run, look_mass(run), of->limits[i].finding.window), of->method->name);
         }
     }
 }
