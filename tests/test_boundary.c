@@ -208,6 +208,7 @@ static void flashes_change_their_phases_at_the_boundary(void **state)
         }
     }
     assert_true(points > 100);
+    state_room_close(room);
     arena_free(arena);
 }
 

@@ -97,6 +97,23 @@ static double filled_volume(const struct mixture_vessel *vessel)
     return volume;
 }
 
+/* Where rounding decides: phases that differ by less than 0.1 % in density beside a critical point, and one of less
+ * than 1e-9 of the contents on a phase boundary. */
+static bool is_undecided(const struct split *split)
+{
+    for (size_t k = 1; k < split->phase_count; k++) {
+        if (fabs(split->phase[k - 1].molar_volume / split->phase[k].molar_volume - 1.0) < 1e-3) {
+            return true;
+        }
+    }
+    for (size_t k = 0; k < split->phase_count; k++) {
+        if (split->phase[k].fraction < 1e-9) {
+            return true;
+        }
+    }
+    return false;
+}
+
 /* The volume of any flash leads back to its pressure and number of phases. */
 static void vessels_return_to_the_flash_they_are_made_from(void **state)
 {
@@ -118,10 +135,14 @@ static void vessels_return_to_the_flash_they_are_made_from(void **state)
         }
         const enum answer answer = mixture_vessel_at_tv(place.at_t, volume * amount, drawn.z, NULL, place.ws, vessel);
         assert_int_equal(answer, ANSWER_OK);
+        if (is_undecided(place.split) || is_undecided(vessel->split)) {
+            continue;
+        }
         assert_int_equal(vessel->split->phase_count, place.split->phase_count);
         assert_close(vessel->split->pressure, drawn.pressure, 1e-7, "the flash the volume is from");
         assert_close(filled_volume(vessel), volume * amount, 1e-9, "the vessel's volume");
     }
+    state_room_close(room);
     arena_free(arena);
 }
 

@@ -153,6 +153,7 @@ static void random_states_meet_the_conditions_of_equilibrium(void **state)
         assert_int_equal(split_at_tp(place.at_t, drawn.pressure, drawn.z, place.ws, place.split), ANSWER_OK);
         assert_equilibrium(place.split, drawn.z, drawn.count, "conditions of equilibrium");
     }
+    state_room_close(room);
     arena_free(arena);
 }
 
@@ -229,6 +230,7 @@ static void three_phases_are_found(void **state)
         }
     }
     assert_int_equal(found, 20);
+    state_room_close(room);
     arena_free(arena);
 }
 

@@ -119,6 +119,7 @@ static void the_usual_trials_miss_nothing(void **state)
             ANSWER_OK);
         assert_int_equal(usual.is_stable, exhaustive.is_stable);
     }
+    state_room_close(room);
     arena_free(arena);
 }
 

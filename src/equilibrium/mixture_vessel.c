@@ -134,6 +134,7 @@ static bool solve_jointly(struct filling *v)
     struct flash *f = &v->flash;
     const unsigned want = PHASE_LN_PHI | PHASE_DLN_PHI_DN | PHASE_DP_DN;
     bool is_last = false;
+    double last = HUGE_VAL;
     for (int step = 0; step < MOST_STEPS; step++) {
         if (flash_evaluate(f, is_last ? (unsigned)PHASE_LN_PHI : want, f->ws->amounts, &f->gibbs) != ANSWER_OK) {
             return false;
@@ -148,7 +149,9 @@ static bool solve_jointly(struct filling *v)
         for (int k = 0; !flash_take_step(f, part) && k < MOST_PARTS; k++) {
             part *= 0.5;
         }
-        is_last = is_settled(v) || fmax(flash_largest_change(f), fabs(change) / f->pressure) <= LAST_STEP;
+        const double largest = fmax(flash_largest_change(f), fabs(change) / f->pressure);
+        is_last = largest <= LAST_STEP || (is_settled(v) && largest > 0.3 * last);
+        last = largest;
         flash_accept_candidate(f->ws, f->phases);
         f->pressure = moved_pressure(f->pressure, part * change);
         if (!(f->pressure > 0.0) || !isfinite(f->pressure)) {

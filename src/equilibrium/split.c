@@ -28,6 +28,9 @@ enum {
 #define LAST_STEP 1e-7
 /* Differences of ln f that are rounding, at which a step that no longer shrinks is the last one. */
 #define ROUNDING 1e-13
+/* Steps that promise no more than this are made of rounding, after this many. */
+#define LAST_DECREASE 1e-17
+#define PATIENCE      8
 /* Gibbs energies, by RT and mole of feed, nearer than this are not told apart. */
 #define GIBBS_ROUNDING 1e-14
 /* A gain that no rounding explains: the feed is not stable. */
@@ -275,9 +278,15 @@ double flash_largest_change(const struct flash *f)
     return largest;
 }
 
-/* `part` of the step, into ws->candidate. An amount that shrinks does so as n / (1 - change / n), the same to first
- * order, and never reaches zero; one that grows does so by a limited factor. False when a component's rest would not
- * stay well above zero. */
+/* Straight along the step for as long as that is safe: beside a critical point the valley is so narrow that any bend
+ * leads out of it. An amount that would lose more than half shrinks as 1 / change, and never reaches zero; one that
+ * grows does so by a limited factor. */
+static double moved_amount(double n, double change)
+{
+    return change < -0.5 * n ? 0.25 * n * n / -change : n + fmin(change, LARGEST_GROWTH * n);
+}
+
+/* `part` of the step, into ws->candidate. False when a component's rest would not stay well above zero. */
 bool flash_take_step(const struct flash *f, double part)
 {
     struct equilibrium_workspace *ws = f->ws;
@@ -288,7 +297,7 @@ bool flash_take_step(const struct flash *f, double part)
         for (size_t b = a; b < a + others; b++) {
             const size_t k = flash_unknown_at(f, b).phase;
             const double n = ws->amounts[k][i], change = part * ws->step[b];
-            ws->candidate[k][i] = change < 0.0 ? n / (1.0 - change / n) : n + fmin(change, LARGEST_GROWTH * n);
+            ws->candidate[k][i] = moved_amount(n, change);
             rest -= ws->candidate[k][i];
         }
         const size_t r = flash_rest_phase(f, i);
@@ -318,7 +327,7 @@ static bool descend(struct flash *f, double decrease, unsigned want)
         if (!flash_take_step(f, part) || flash_evaluate(f, want, f->ws->candidate, &gibbs) != ANSWER_OK) {
             continue;
         }
-        if (gibbs <= f->gibbs + GIBBS_ROUNDING || decrease < GIBBS_ROUNDING) {
+        if (gibbs <= f->gibbs + (decrease < GIBBS_ROUNDING ? 10.0 : 1.0) * GIBBS_ROUNDING) {
             f->gibbs = gibbs;
             flash_accept_candidate(f->ws, f->phases);
             return true;
@@ -373,8 +382,8 @@ static double growth_of(const struct flash *f, size_t k)
     return change;
 }
 
-/* Does the Gibbs energy fall when the phase's content joins the others, in proportion? */
-static bool is_better_without(struct flash *f, size_t k)
+/* Does the Gibbs energy rise by no more than the allowance when the phase's content joins the others, in proportion? */
+static bool can_do_without(struct flash *f, size_t k, double allowance)
 {
     struct equilibrium_workspace *ws = f->ws;
     double gibbs = 0.0;
@@ -394,7 +403,7 @@ static bool is_better_without(struct flash *f, size_t k)
         }
         gibbs += l == k ? 0.0 : gibbs_of(ws, l, ws->candidate[l]);
     }
-    return gibbs < f->gibbs - 10.0 * GIBBS_ROUNDING;
+    return gibbs <= f->gibbs + allowance;
 }
 
 /* The first phase that is vanishing, or is better left out, or is the same as another; f->phases without one. */
@@ -403,13 +412,14 @@ static size_t superfluous_phase(struct flash *f)
     for (size_t k = 0; k < f->phases; k++) {
         for (size_t l = 0; l < k; l++) {
             const double difference = difference_of(f->ws, k, l);
-            if (difference < SAME_PHASE || (difference < SIMILAR_PHASE && is_better_without(f, k))) {
+            if (difference < SAME_PHASE ||
+                (difference < SIMILAR_PHASE && can_do_without(f, k, -10.0 * GIBBS_ROUNDING))) {
                 return k;
             }
         }
         const double amount = f->ws->phase[k]->amount;
         if (amount < SMALL_PHASE && growth_of(f, k) < -0.3 * amount &&
-            (amount < VANISHING || (f->phases > 2 && is_better_without(f, k)))) {
+            (amount < VANISHING || (f->phases > 2 && can_do_without(f, k, -10.0 * GIBBS_ROUNDING)))) {
             return k;
         }
     }
@@ -448,6 +458,12 @@ static enum answer minimise(struct flash *f)
             continue;
         }
         const double change = flash_largest_change(f);
+        if (step >= PATIENCE && f->residual <= SPLIT_LN_F_TOLERANCE && decrease <= LAST_DECREASE &&
+            change > 0.3 * last) {
+            /* Beside a critical point rounding alone makes steps of this size: the phases stay where they were, and
+             * are evaluated there again, as the search for superfluous ones has moved them. */
+            return flash_evaluate(f, PHASE_LN_PHI, f->ws->amounts, &f->gibbs);
+        }
         const bool is_last = change <= LAST_STEP || (f->residual <= ROUNDING && change > 0.5 * last);
         if (!descend(f, decrease, is_last ? (unsigned)PHASE_LN_PHI : want) && !make_do(f)) {
             return ANSWER_FAILED;
@@ -459,6 +475,31 @@ static enum answer minimise(struct flash *f)
         last = change;
     }
     return answer == ANSWER_OK ? ANSWER_FAILED : answer;
+}
+
+/* Of three phases or more, two that are alike may be one that was found twice: then nothing is lost without it. */
+static bool merge_phases(struct flash *f)
+{
+    for (size_t k = 0; k < f->phases && f->phases > 2; k++) {
+        for (size_t l = 0; l < k; l++) {
+            if (difference_of(f->ws, k, l) < SIMILAR_PHASE && can_do_without(f, k, 10.0 * GIBBS_ROUNDING)) {
+                remove_phase(f, k);
+                return true;
+            }
+        }
+    }
+    return false;
+}
+
+static enum answer minimise_and_merge(struct flash *f)
+{
+    enum answer answer = minimise(f);
+    if (answer == ANSWER_OK && merge_phases(f)) {
+        answer = minimise(f);
+    } else if (answer == ANSWER_OK && f->phases > 2) {
+        answer = flash_evaluate(f, PHASE_LN_PHI, f->ws->amounts, &f->gibbs); /* the question moved the phases */
+    }
+    return answer;
 }
 
 /* ---- proof, and phases that were missing ----------------------------------------------------------------------- */
@@ -607,16 +648,19 @@ static enum answer minimise_with(struct flash *f, const struct stability *found)
         w[i] = found->incipient[i];
     }
     if (is_first && start_from_incipient(f, w)) {
-        return minimise(f);
+        return minimise_and_merge(f);
     }
     if (is_first) {
         flash_set_single_phase(f);
     }
-    if (f->phases == MOST_PHASES) {
-        return ANSWER_FAILED;
+    if (f->phases < MOST_PHASES) {
+        add_phase(f, w, found->smallest_tpd);
+        if (minimise_and_merge(f) == ANSWER_OK) {
+            return ANSWER_OK;
+        }
     }
-    add_phase(f, w, found->smallest_tpd);
-    return minimise(f);
+    /* Where that leads nowhere, the new phase may take the place of all others but one. */
+    return !is_first && start_from_incipient(f, w) ? minimise_and_merge(f) : ANSWER_FAILED;
 }
 
 /* From the phases at hand, one or more, until none is missing. */
@@ -625,12 +669,14 @@ enum answer flash_complete(struct flash *f)
     for (int round = 0; round < MOST_ROUNDS; round++) {
         struct stability found;
         enum answer answer = flash_prove(f, &found);
-        if (answer != ANSWER_OK) {
+        const bool is_single = f->phases == 1, is_marginal = !(found.smallest_tpd < -SPLIT_LEAST_TPD);
+        if (answer != ANSWER_OK || found.is_stable || (!is_single && is_marginal)) {
             return answer;
         }
-        if (!(found.is_stable) && (f->phases == 1 || found.smallest_tpd < -SPLIT_LEAST_TPD)) {
-            answer = minimise_with(f, &found);
-        } else {
+        answer = minimise_with(f, &found);
+        /* A single phase so little below the plane that no split is found to gain anything is one phase. */
+        if (is_single && is_marginal && (answer != ANSWER_OK || f->phases == 1)) {
+            flash_set_single_phase(f);
             return ANSWER_OK;
         }
         if (answer != ANSWER_OK) {
@@ -638,9 +684,6 @@ enum answer flash_complete(struct flash *f)
         }
         if (f->phases == 1) {
             flash_set_single_phase(f);
-            if (!(found.smallest_tpd < -SPLIT_LEAST_TPD)) {
-                return ANSWER_OK; /* below the plane by no more than a split could gain */
-            }
         }
     }
     return ANSWER_FAILED;

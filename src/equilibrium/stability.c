@@ -10,7 +10,7 @@
 
 #include <math.h>
 
-enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 12 };
+enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 13 };
 
 /* Below this a trial in progress has proved instability beyond doubt, and is good enough to start a split from. */
 #define CLEARLY_UNSTABLE (-1e-3)
@@ -18,6 +18,9 @@ enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 12 }
 #define SETTLED (-1e-6)
 /* Converged: largest sqrt(W_i) |g_i|. */
 #define GRADIENT_TOLERANCE 1e-11
+/* Steps that promise no more decrease than this change no verdict, however long they are beside a critical point. */
+#define NO_DECREASE          1e-17
+#define NO_DECREASE_REPORTED 1e-21
 /* A Newton step shorter than this is the last one. */
 #define LAST_STEP 1e-10
 /* The longest Newton step, in alpha, whose length is 2 for a normalised trial. */
@@ -177,7 +180,8 @@ static bool is_known(const struct test *t, const struct trial *trial)
 /* `decrease` is what is expected of the steps still to come. */
 static enum verdict judge(const struct test *t, const struct trial *trial, double decrease)
 {
-    if (!(trial->largest > GRADIENT_TOLERANCE)) {
+    if (!(trial->largest > GRADIENT_TOLERANCE) ||
+        decrease < (t->effort == STABILITY_DECIDE ? NO_DECREASE : NO_DECREASE_REPORTED)) {
         return is_known(t, trial) ? KNOWN_PHASE : STATIONARY;
     }
     if (t->effort == STABILITY_DECIDE && trial->tm < CLEARLY_UNSTABLE) {
@@ -220,7 +224,7 @@ static double newton_step(struct equilibrium_workspace *ws)
     }
     set_hessian(ws, shift);
     for (int k = 0; !linear_factor(ws->matrix, active) && k < MOST_SHIFTS; k++) {
-        shift = shift > 0.0 ? 3.0 * shift : 0.01;
+        shift = shift > 0.0 ? 10.0 * shift : 1e-8;
         set_hessian(ws, shift);
     }
     linear_solve_factored(ws->matrix, active, ws->step);

@@ -1,4 +1,6 @@
 #include "support/mixture_states.h"
+#include "equilibrium/boundary.h"
+#include "equilibrium/mixture_critical.h"
 #include "support/check.h"
 #include "support/library_gases.h"
 
@@ -10,6 +12,8 @@ struct state_room {
     const struct pure_spec *pure[STATE_MOST_COMPONENTS];
     struct equilibrium_workspace *ws[STATE_MOST_COMPONENTS + 1];
     struct split *split[STATE_MOST_COMPONENTS + 1];
+    struct envelope *envelope[STATE_MOST_COMPONENTS + 1];
+    struct boundary_point *point;
 };
 
 struct state_room *state_room_create(struct arena *arena)
@@ -18,8 +22,16 @@ struct state_room *state_room_create(struct arena *arena)
     for (size_t count = 1; count <= STATE_MOST_COMPONENTS; count++) {
         room->ws[count] = equilibrium_workspace_create(count, arena);
         room->split[count] = split_create(count, arena);
+        room->envelope[count] = envelope_create(count, arena);
     }
+    room->point = boundary_point_create(STATE_MOST_COMPONENTS, arena);
     return room;
+}
+
+void state_room_close(struct state_room *room)
+{
+    arena_free(room->arena);
+    room->arena = NULL;
 }
 
 /* splitmix64: Steele, Lea and Flood, OOPSLA 2014. */
@@ -124,6 +136,66 @@ static void move_to_boundary(uint64_t *state, struct state_room *room, struct mi
     out->pressure = inside * (1.0 + (one_of(state, 2) == 0 ? distance : -distance));
 }
 
+/* ---- states beside a critical point or an azeotrope ------------------------------------------------------------ */
+
+/* A relative distance of either sign, from 1e-2 down to 1e-2 - decades. */
+static double draw_distance(uint64_t *state, double decades)
+{
+    const double distance = pow(10.0, -2.0 - decades * uniform(state));
+    return one_of(state, 2) == 0 ? distance : -distance;
+}
+
+/* A mixture without a critical point that is found stays where it is. */
+static void move_to_critical(uint64_t *state, struct state_room *room, struct mixture_state *out)
+{
+    const struct state_place place = mixture_state_place(out, room);
+    struct envelope *envelope = room->envelope[out->count];
+    struct mixture_critical critical;
+    if (envelope_trace(place.at_t, place.fluid, out->z, place.ws, envelope) == ANSWER_OK &&
+        envelope->critical_count > 0 &&
+        mixture_critical_near(place.at_t, place.fluid, out->z, &envelope->critical[0], place.ws, &critical) ==
+            ANSWER_OK &&
+        critical.pressure > 0.0) {
+        out->temperature = critical.temperature * (1.0 + draw_distance(state, 5.0));
+        out->pressure = critical.pressure * (1.0 + draw_distance(state, 5.0));
+    }
+}
+
+/* ln K of the first of two gases at the dew point of a composition; false where there is none. */
+static bool dew_ratio(struct state_room *room, const struct state_place *place, const double z[], double *ln_K)
+{
+    if (boundary_dew_pressure(place->at_t, z, place->ws, room->point) != ANSWER_OK) {
+        return false;
+    }
+    *ln_K = log(room->point->incipient[0] / z[0]);
+    return true;
+}
+
+/* The composition whose dew has the same, by halving; two gases without one stay as they are. */
+static void move_to_azeotrope(uint64_t *state, struct state_room *room, struct mixture_state *out)
+{
+    out->count = 2;
+    out->z[0] = fmax(out->z[0], 0.1); /* both may have been drawn absent */
+    const struct state_place place = mixture_state_place(out, room);
+    double low = 0.02, high = 0.98, at_low, at_high;
+    const double lean[] = {low, 1.0 - low}, rich[] = {high, 1.0 - high};
+    if (!dew_ratio(room, &place, lean, &at_low) || !dew_ratio(room, &place, rich, &at_high) ||
+        (at_low < 0.0) == (at_high < 0.0)) {
+        return;
+    }
+    for (int k = 0; k < 60; k++) {
+        const double middle = 0.5 * (low + high), z[] = {middle, 1.0 - middle};
+        double here;
+        if (!dew_ratio(room, &place, z, &here)) {
+            return;
+        }
+        *((here < 0.0) == (at_low < 0.0) ? &low : &high) = middle;
+    }
+    out->z[0] = low;
+    out->z[1] = 1.0 - low;
+    out->pressure = room->point->pressure * (1.0 + draw_distance(state, 12.0));
+}
+
 void mixture_state_draw(uint64_t seed, enum state_kind kind, struct state_room *room, struct mixture_state *out)
 {
     uint64_t state = seed * 1000003U + (uint64_t)kind;
@@ -133,5 +205,9 @@ void mixture_state_draw(uint64_t seed, enum state_kind kind, struct state_room *
     out->pressure = 1e3 * pow(6e4, uniform(&state));
     if (kind == STATE_NEAR_BOUNDARY) {
         move_to_boundary(&state, room, out);
+    } else if (kind == STATE_NEAR_CRITICAL) {
+        move_to_critical(&state, room, out);
+    } else if (kind == STATE_AZEOTROPE && out->count > 1) {
+        move_to_azeotrope(&state, room, out);
     }
 }

@@ -1,5 +1,4 @@
-/* Random states of mixtures of library gases, by Peng-Robinson with all pair parameters zero, from seeds: the same
- * seed is the same state on every machine. */
+/* Random states of mixtures of library gases, by Peng-Robinson with all pair parameters zero, from seeds. */
 #ifndef TAREWRIGHT_TESTS_MIXTURE_STATES_H
 #define TAREWRIGHT_TESTS_MIXTURE_STATES_H
 
@@ -13,6 +12,8 @@ enum state_kind {
     STATE_GENERAL,       /* anything: 200 to 400 K, 1 kPa to 60 MPa, 1 to 10 components, some exactly absent */
     STATE_NEARLY_PURE,   /* 99.999 % of one gas */
     STATE_NEAR_BOUNDARY, /* within 1 % in pressure of a change of the number of phases */
+    STATE_NEAR_CRITICAL, /* within 1 % in temperature and pressure of a critical point, at any temperature */
+    STATE_AZEOTROPE,     /* two gases at or within 1 % in pressure of an azeotrope, where the two have one */
     STATE_KINDS
 };
 
@@ -26,6 +27,9 @@ struct mixture_state {
 /* Memory for states of any size: fluids with 1 to 10 components share it. */
 struct state_room;
 struct state_room *state_room_create(struct arena *arena);
+
+/* Gives back the current fluid, which has an arena of its own; the room itself belongs to the arena it came from. */
+void state_room_close(struct state_room *room);
 
 /* The state of that seed. */
 void mixture_state_draw(uint64_t seed, enum state_kind kind, struct state_room *room, struct mixture_state *out);
