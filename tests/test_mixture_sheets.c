@@ -279,6 +279,19 @@ static void a_trace_that_condenses_early_hides_no_bubble_point(void **state)
     assert_string_equal(result_cell(points, last, "point")->text, "bubble");
     const double pure = cell_of(result_table(answered.sheet->next, "saturation line", NULL), 0, "pressure");
     assert_close(cell_of(points, last, "pressure"), pure, 0.01, "propane but for 25 ppm, which add a few mbar");
+    struct arena *arena = arena_create(NULL);
+    struct answered back =
+        answer(arena_format(arena,
+                            "component water { molar-mass 18.015268 g/mol; critical-temperature 647.096 K\n"
+                            "  critical-pressure 22.064 MPa; acentric 0.3443 }\n"
+                            "mixture damp by mole { water 5 ppm; nitrogen 20 ppm; propane rest }\n"
+                            "sheet saturation { fluid damp; sweep pressure %.17g Pa }\n",
+                            cell_of(points, last, "pressure")));
+    points = result_table(back.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
+    assert_string_equal(result_cell(points, 0, "point")->text, "bubble");
+    assert_near(cell_of(points, 0, "temperature") - 293.15, 0.0, 1e-6, "the bubble point's own temperature");
+    elaborated_end(&back.it);
+    arena_free(arena);
     elaborated_end(&answered.it);
 }
 

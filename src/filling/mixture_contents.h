@@ -33,7 +33,7 @@ struct mixture_critical;
 enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out);
 
 /* All dew and bubble points at a pressure (Pa) or temperature (K), in the method's memory until its next question; with
- * an envelope metastable ones among them, without one ANSWER_FAILED at a pressure. */
+ * an envelope metastable ones among them, without one the stable ones found by trying states. */
 struct boundary_list;
 enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out);
 

@@ -4,6 +4,7 @@
 
 #include "equilibrium/boundary.h"
 #include "equilibrium/mixture_critical.h"
+#include "equilibrium/split.h"
 #include "equilibrium/stability.h"
 #include "filling/search.h"
 
@@ -303,6 +304,100 @@ static enum answer points_of_edges(struct method_run *method, double temperature
     return answer;
 }
 
+/* ---- points at a pressure, without the envelope ------------------------------------------------------------------ */
+
+/* Temperatures (K) that are tried downwards; what is two-phase over less than a step is missed. */
+#define TRIED_FROM        480.0
+#define TRIED_TO          120.0
+#define TRIED_STEP        4.0
+#define POINT_TOLERANCE_K 1e-9
+
+struct temperature_search {
+    struct method_run *method;
+    double pressure;
+};
+
+/* Infinite where the fluid is one phase, else minus infinity. */
+static enum answer one_phase_at(void *context, double temperature, double *side)
+{
+    const struct temperature_search *search = context;
+    const struct split *split;
+    enum answer answer = fluid_set_t(search->method->at_t, search->method->fluid, temperature);
+    if (answer == ANSWER_OK) {
+        answer = mixture_split(search->method, search->pressure, &split);
+    }
+    if (answer == ANSWER_OK) {
+        *side = split->phase_count == 1 ? (double)INFINITY : -(double)INFINITY;
+    }
+    return answer;
+}
+
+static size_t least_phase(const struct split *split)
+{
+    size_t least = 0;
+    for (size_t k = 1; k < split->phase_count; k++) {
+        least = split->phase[k].fraction < split->phase[least].fraction ? k : least;
+    }
+    return least;
+}
+
+/* The phase that is about to vanish on the two-phase side of the bracket, beside the whole on the other. */
+static enum answer add_point_of_split(struct temperature_search *search, const struct search_bracket *bracket)
+{
+    struct mixture_work *work = search->method->mixture;
+    struct boundary_point *point = work->points->point[work->points->count];
+    const double one_phase = bracket->value_a > 0.0 ? bracket->a : bracket->b;
+    const double two_phase = bracket->value_a > 0.0 ? bracket->b : bracket->a;
+    double side;
+    enum answer answer = one_phase_at(search, one_phase, &side);
+    point->feed_volume = work->split->phase[0].molar_volume;
+    if (answer == ANSWER_OK) {
+        answer = one_phase_at(search, two_phase, &side);
+    }
+    if (answer != ANSWER_OK || work->split->phase_count < 2 || work->points->count + 1 == BOUNDARY_MOST) {
+        return answer;
+    }
+    const struct split_phase *least = &work->split->phase[least_phase(work->split)];
+    point->temperature = one_phase;
+    point->pressure = search->pressure;
+    point->incipient_volume = least->molar_volume;
+    memcpy(point->incipient, least->x, work->count * sizeof *least->x);
+    point->kind = point->incipient_volume > point->feed_volume ? BOUNDARY_BUBBLE : BOUNDARY_DEW;
+    point->residual = work->split->residual;
+    point->smallest_tpd = work->split->smallest_tpd;
+    point->is_stable = true;
+    work->points->count++;
+    return answer;
+}
+
+/* Downwards in temperature; the points are told upwards. */
+static enum answer points_of_splits(struct method_run *method, double pressure)
+{
+    struct temperature_search search = {method, pressure};
+    const struct search_function function = {one_phase_at, &search};
+    struct boundary_list *points = method->mixture->points;
+    double before = TRIED_FROM, side_before;
+    points->count = 0;
+    enum answer answer = one_phase_at(&search, before, &side_before);
+    for (double T = before - TRIED_STEP; answer == ANSWER_OK && T >= TRIED_TO; T -= TRIED_STEP) {
+        double side;
+        answer = one_phase_at(&search, T, &side);
+        if (answer == ANSWER_OK && (side < 0.0) != (side_before < 0.0)) {
+            struct search_bracket bracket = {before, side_before, T, side};
+            answer = search_root(&function, POINT_TOLERANCE_K, 0.0, &bracket);
+            answer = answer == ANSWER_OK ? add_point_of_split(&search, &bracket) : answer;
+        }
+        before = T;
+        side_before = side;
+    }
+    for (size_t i = 0; i < points->count / 2; i++) {
+        struct boundary_point *swapped = points->point[i];
+        points->point[i] = points->point[points->count - 1 - i];
+        points->point[points->count - 1 - i] = swapped;
+    }
+    return answer;
+}
+
 enum answer mixture_points(struct method_run *method, bool is_pressure, double value, const struct boundary_list **out)
 {
     const struct envelope *envelope = mixture_envelope(method);
@@ -313,7 +408,7 @@ enum answer mixture_points(struct method_run *method, bool is_pressure, double v
     if (envelope != NULL) {
         return points_of_envelope(method, is_pressure, value);
     }
-    return is_pressure ? ANSWER_FAILED : points_of_edges(method, value);
+    return is_pressure ? points_of_splits(method, value) : points_of_edges(method, value);
 }
 
 enum answer mixture_critical_point(struct method_run *method, size_t index, struct mixture_critical *out)
