@@ -63,6 +63,22 @@ static void rows_are_sorted_and_follow_the_gas_law(void **state)
     arena_free(it->arena);
 }
 
+static void a_vessel_marked_with_its_service_pressure_alone_is_held_against_that(void **state)
+{
+    (void)state;
+    struct filled_vessel *it = set_up_charge(FILL_MASS, 7.3);
+    it->vessel.test_pressure.given = false;
+    it->vessel.service_pressure = given(123.0 * BAR);
+    filled_vessel_method(it, "ideal-gas");
+    const struct result_sheet *sheet = answer(it);
+    const struct table *table = result_table(sheet, "settled pressure", "ideal-gas");
+    assert_close(result_cell(table, 1, "margin")->number, 123.0 * BAR + GAUGE_ZERO - ideal_pressure(7.3, 288.15), 1e-12,
+                 "service pressure less gauge pressure");
+    assert_close(fact_value(sheet, "service-pressure-temperature", "ideal-gas"),
+                 288.15 * (123.0 * BAR + GAUGE_ZERO) / ideal_pressure(7.3, 288.15), 1e-9, "p / T is constant");
+    arena_free(it->arena);
+}
+
 static void the_temperature_at_a_rating_is_that_of_the_gas_law(void **state)
 {
     (void)state;
@@ -326,6 +342,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(rows_are_sorted_and_follow_the_gas_law),
+        cmocka_unit_test(a_vessel_marked_with_its_service_pressure_alone_is_held_against_that),
         cmocka_unit_test(the_temperature_at_a_rating_is_that_of_the_gas_law),
         cmocka_unit_test(a_rating_out_of_reach_is_told_in_words),
         cmocka_unit_test(the_weakest_fitting_is_named),

@@ -51,6 +51,15 @@ enum contents_column {
     COLUMN_MARGIN
 };
 
+/* What margins are to: the test pressure, or the service pressure of a vessel marked with that alone; NULL: neither. */
+static const struct quantity *rating_of_margin(const struct case_vessel *vessel)
+{
+    if (vessel->test_pressure.given) {
+        return &vessel->test_pressure;
+    }
+    return vessel->service_pressure.given ? &vessel->service_pressure : NULL;
+}
+
 struct table *contents_table_begin(const struct sheet_run *run, const char *title, const char *method)
 {
     struct table *table = sheet_add_table(run->result, run->out, title, method);
@@ -60,7 +69,7 @@ struct table *contents_table_begin(const struct sheet_run *run, const char *titl
     table_add_word_column(run->result, table, "state");
     table_add_column(run->result, table, "liquid-volume", look_percent(1));
     table_add_column(run->result, table, "ullage", look_percent(1));
-    if (run->sheet->vessel->test_pressure.given) {
+    if (rating_of_margin(run->sheet->vessel) != NULL) {
         table_add_column(run->result, table, "margin", look_pressure_difference(run));
     }
     return table;
@@ -84,8 +93,7 @@ static bool has_level(const struct contents *contents)
     return contents->state == VESSEL_TWO_PHASE || contents->edges.has_high;
 }
 
-static void fill_row(const struct sheet_run *run, struct table *table, struct cell *row,
-                     const struct contents *contents, bool is_inside)
+static void fill_row(const struct sheet_run *run, struct cell *row, const struct contents *contents, bool is_inside)
 {
     cell_set(&row[COLUMN_PRESSURE], contents->pressure);
     cell_set(&row[COLUMN_GAUGE], contents->pressure);
@@ -95,9 +103,9 @@ static void fill_row(const struct sheet_run *run, struct table *table, struct ce
         cell_set(&row[COLUMN_LIQUID], contents->liquid_fraction);
         cell_set(&row[COLUMN_ULLAGE], 1.0 - contents->liquid_fraction);
     }
-    if (table->column_count > COLUMN_MARGIN) {
-        cell_set(&row[COLUMN_MARGIN],
-                 run->sheet->vessel->test_pressure.value - (contents->pressure - STANDARD_ATMOSPHERE));
+    const struct quantity *rating = rating_of_margin(run->sheet->vessel);
+    if (rating != NULL) {
+        cell_set(&row[COLUMN_MARGIN], rating->value - (contents->pressure - STANDARD_ATMOSPHERE));
     }
 }
 
@@ -116,7 +124,7 @@ enum answer contents_table_row(const struct sheet_run *run, struct table *table,
                     temperature_words(run, temperature));
         return answer;
     }
-    fill_row(run, table, row, &contents, warn_outside_range(run, method, temperature, contents.pressure));
+    fill_row(run, row, &contents, warn_outside_range(run, method, temperature, contents.pressure));
     return ANSWER_OK;
 }
 

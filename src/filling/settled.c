@@ -157,6 +157,9 @@ static void add_found(const struct settled *settled)
         if (vessel->working_pressure.given) {
             add_reached(settled, method, "working-pressure-temperature", vessel->working_pressure.value);
         }
+        if (vessel->service_pressure.given) {
+            add_reached(settled, method, "service-pressure-temperature", vessel->service_pressure.value);
+        }
         if (vessel->test_pressure.given) {
             add_reached(settled, method, "test-pressure-temperature", vessel->test_pressure.value);
         }
