@@ -165,10 +165,17 @@ static const struct quantity_form *form_of_symbol(enum case_symbol symbol)
     return &FORM_PRESSURE;
 }
 
-/* The form a bound is checked by: a gauge bound is a rating, every other one what the quantity is. */
+/* Unlike a rating, a gauge bound may lie at or below the air's pressure: no vacuum in the coldest yard, say. */
+static const struct quantity_form FORM_GAUGE_BOUND = {.measure = MEASURE_PRESSURE,
+                                                      .reading = READ_RATING,
+                                                      .least = -STANDARD_ATMOSPHERE,
+                                                      .is_least_open = true,
+                                                      .most = 1e9};
+
+/* The form a bound is checked by: that of a gauge pressure, or of the quantity itself. */
 static const struct quantity_form *form_of_bound(const struct predicate *predicate)
 {
-    return predicate->bound_is_gauge ? &FORM_RATING : form_of_symbol(predicate->quantity);
+    return predicate->bound_is_gauge ? &FORM_GAUGE_BOUND : form_of_symbol(predicate->quantity);
 }
 
 /* A bound with symbols has a dimension too, though no value yet. */
