@@ -157,7 +157,7 @@ static bool runs_into(const struct equilibrium_workspace *ws, const double amoun
         const size_t i = ws->active[a];
         slope += (ws->W[i] - scale * amounts[i]) * ws->g[i];
     }
-    return fabs(2.0 * trial->tm / slope - 1.0) < LIKE_A_KNOWN_PHASE;
+    return fabs(2.0 * trial->tm - slope) < LIKE_A_KNOWN_PHASE * fabs(slope);
 }
 
 static bool is_known(const struct test *t, const struct trial *trial)

@@ -184,10 +184,14 @@ static enum answer volume_from_sums(const struct fluid_at_t *at_t, const struct 
     const double pi = pressure * sums->B / (sums->n * at_t->fluid->gas_constant * at_t->temperature);
     double y;
     const enum answer answer = cubic_packing(cubic_of(at_t)->equation->form, theta, pi, branch, &y, roots);
-    if (answer == ANSWER_OK) {
-        *volume = sums->B / y - sums->C;
+    if (answer != ANSWER_OK) {
+        return answer;
     }
-    return answer;
+    if (!(y > 0.0)) {
+        return ANSWER_OUT_OF_RANGE; /* a pressure so low that the reduced one is lost in rounding */
+    }
+    *volume = sums->B / y - sums->C;
+    return ANSWER_OK;
 }
 
 enum answer cubic_volume(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
