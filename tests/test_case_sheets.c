@@ -209,7 +209,7 @@ static void a_bound_is_arithmetic_over_numbers_and_the_vessels_ratings(void **st
         {"at 15 degC pressure <= (test-pressure - working-pressure) / 2", SYMBOL_PRESSURE, RELATION_AT_MOST, false,
          50e5, "the difference of two gauge pressures is plain"},
         {"at 15 degC pressure >= 0 barg", SYMBOL_PRESSURE, RELATION_AT_LEAST, true, 0.0, "no vacuum"},
-        {"at 15 degC pressure >= -0.5 barg", SYMBOL_PRESSURE, RELATION_AT_LEAST, true, -5e4, "half a bar below the air"},
+        {"at 15 degC pressure >= -0.5 barg", SYMBOL_PRESSURE, RELATION_AT_LEAST, true, -5e4, "half a bar of vacuum"},
         {"at 15 degC pressure <= 2 * gauge", SYMBOL_PRESSURE, RELATION_AT_MOST, true, 80e5, "2 x 40 barg, as gauge"},
         {"at 15 degC pressure <= 55 bara", SYMBOL_PRESSURE, RELATION_AT_MOST, false, 55e5, "as written"},
         {"at 15 degC pressure >= 55 bar", SYMBOL_PRESSURE, RELATION_AT_LEAST, false, 55e5,
