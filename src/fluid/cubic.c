@@ -165,12 +165,18 @@ enum answer cubic_set_t(struct fluid_at_t *at_t)
 
 /* ---- volumes --------------------------------------------------------------------------------------------------- */
 
+/* Whether anything is left of a volume beside the covolume, also after rounding. */
+static bool is_free(const struct cubic_sums *sums, double volume)
+{
+    return volume > 0.0 && volume - (sums->B - sums->C) > 0.0;
+}
+
 enum answer cubic_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want,
                      struct helmholtz *out)
 {
     const struct cubic_at_t *at = cubic_at(at_t);
     const struct cubic_sums sums = cubic_sums_of(at, n);
-    if (!(volume > 0.0) || !(volume + sums.C > sums.B)) {
+    if (!is_free(&sums, volume)) {
         return ANSWER_OUT_OF_RANGE;
     }
     cubic_energy_at(at, &sums, volume, n, want, out);
@@ -191,7 +197,7 @@ static enum answer volume_from_sums(const struct fluid_at_t *at_t, const struct 
         return ANSWER_OUT_OF_RANGE; /* a pressure so low that the reduced one is lost in rounding */
     }
     *volume = sums->B / y - sums->C;
-    return ANSWER_OK;
+    return is_free(sums, *volume) ? ANSWER_OK : ANSWER_OUT_OF_RANGE;
 }
 
 enum answer cubic_volume(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
