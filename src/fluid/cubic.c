@@ -165,10 +165,13 @@ enum answer cubic_set_t(struct fluid_at_t *at_t)
 
 /* ---- volumes --------------------------------------------------------------------------------------------------- */
 
+/* mol: sums of squares of smaller amounts are lost to underflow. */
+#define SMALLEST_AMOUNT 1e-140
+
 /* Whether anything is left of a volume beside the covolume, also after rounding. */
 static bool is_free(const struct cubic_sums *sums, double volume)
 {
-    return volume > 0.0 && volume - (sums->B - sums->C) > 0.0;
+    return sums->n > SMALLEST_AMOUNT && volume > 0.0 && volume - (sums->B - sums->C) > 0.0;
 }
 
 enum answer cubic_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want,
@@ -186,6 +189,9 @@ enum answer cubic_tv(const struct fluid_at_t *at_t, double volume, const double 
 static enum answer volume_from_sums(const struct fluid_at_t *at_t, const struct cubic_sums *sums, double pressure,
                                     enum branch branch, double *volume, int *roots)
 {
+    if (!(sums->n > SMALLEST_AMOUNT)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
     const double theta = sums->A / (sums->n * sums->B);
     const double pi = pressure * sums->B / (sums->n * at_t->fluid->gas_constant * at_t->temperature);
     double y;
