@@ -195,6 +195,25 @@ static bool solve_and_prove(struct filling *v)
     return solve_jointly(v) && are_distinct(&v->flash) && is_proved(v);
 }
 
+/* ---- pressures between two others ------------------------------------------------------------------------------- */
+
+/* A pressure too low or too high, with the volume there. */
+struct side {
+    double pressure, volume;
+};
+
+/* By false position in the logarithms of pressure and volume, and every third time by halving. */
+static double next_pressure(const struct filling *v, const struct side *low, const struct side *high, int count)
+{
+    const double middle = sqrt(low->pressure * high->pressure);
+    if (count % 3 == 2) {
+        return middle;
+    }
+    const double part = log(low->volume / v->volume) / log(low->volume / high->volume);
+    const double next = low->pressure * pow(high->pressure / low->pressure, part);
+    return next > low->pressure && next < high->pressure ? next : middle;
+}
+
 /* ---- first values by substitution ------------------------------------------------------------------------------ */
 
 /* What two phases of ratios K, with ln(K p) in ws->kept_ln_W, would fill at a pressure. */
@@ -203,19 +222,36 @@ struct guess {
     double heavy_volume; /* m3/mol */
 };
 
-static double guessed_volume(struct filling *v, const struct guess *guess, double pressure)
+static void set_ratios(struct filling *v, double pressure)
 {
     struct equilibrium_workspace *ws = v->flash.ws;
-    double at_none = 0.0, at_all = 0.0, light = 0.0;
+    const double ln_p = log(pressure);
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
-        ws->ln_K[i] = ws->kept_ln_W[i] - log(pressure);
+        ws->ln_K[i] = ws->kept_ln_W[i] - ln_p;
+    }
+}
+
+/* Without a split there is vapour alone where the ratios are the larger, and liquid alone where they are the smaller.
+ */
+static bool is_vapour_alone(const struct equilibrium_workspace *ws)
+{
+    double at_none = 0.0, at_all = 0.0;
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
         at_none += ws->feed[i] * exp(fmin(ws->ln_K[i], 600.0));
         at_all += ws->feed[i] * exp(fmin(-ws->ln_K[i], 600.0));
     }
+    return at_all < at_none;
+}
+
+static double guessed_volume(struct filling *v, const struct guess *guess, double pressure)
+{
+    struct equilibrium_workspace *ws = v->flash.ws;
+    double light = 0.0;
+    set_ratios(v, pressure);
     if (!split_by_ratios(ws)) {
-        light = at_all <= 1.0 ? 1.0 : 0.0;
-        return (at_none > 1.0 && light > 0.0) || at_all < at_none ? guess->Z * v->RT / pressure : guess->heavy_volume;
+        return is_vapour_alone(ws) ? guess->Z * v->RT / pressure : guess->heavy_volume;
     }
     for (size_t a = 0; a < ws->active_count; a++) {
         light += ws->amounts[0][ws->active[a]];
@@ -223,21 +259,34 @@ static double guessed_volume(struct filling *v, const struct guess *guess, doubl
     return light * guess->Z * v->RT / pressure + (1.0 - light) * guess->heavy_volume;
 }
 
-/* The pressure at which they fill the vessel, by bisection; false where they then are one phase. */
+/* The pressure at which they fill the vessel, bracketed outwards from the last one and then by false position in the
+ * logarithms; false where they then are one phase. */
 static bool guess_pressure(struct filling *v, const struct guess *guess)
 {
-    double low = 1e-3 * v->RT / v->volume, high = low;
-    low *= 1e-3;
-    while (guessed_volume(v, guess, high) > v->volume && high < 1e12) {
+    struct side low = {v->flash.pressure, 0.0}, high;
+    low.volume = guessed_volume(v, guess, low.pressure);
+    high = low;
+    double factor = 1.5;
+    for (; low.volume < v->volume && low.pressure > 1e-12; factor *= factor) {
+        high = low;
+        low.pressure /= factor;
+        low.volume = guessed_volume(v, guess, low.pressure);
+    }
+    for (; high.volume > v->volume && high.pressure < 1e12; factor *= factor) {
         low = high;
-        high *= 4.0;
+        high.pressure *= factor;
+        high.volume = guessed_volume(v, guess, high.pressure);
     }
-    for (int k = 0; k < MOST_PRESSURES && high > low * (1.0 + 1e-3); k++) {
-        const double middle = sqrt(low * high);
-        *(guessed_volume(v, guess, middle) > v->volume ? &low : &high) = middle;
+    for (int k = 0; k < MOST_PRESSURES && high.pressure > low.pressure * (1.0 + 1e-3); k++) {
+        const double pressure = next_pressure(v, &low, &high, k);
+        const double volume = guessed_volume(v, guess, pressure);
+        *(volume > v->volume ? &low : &high) = (struct side){pressure, volume};
+        if (fabs(volume / v->volume - 1.0) < 1e-3) {
+            low = high = (struct side){pressure, volume};
+        }
     }
-    v->flash.pressure = sqrt(low * high);
-    guessed_volume(v, guess, v->flash.pressure);
+    v->flash.pressure = sqrt(low.pressure * high.pressure);
+    set_ratios(v, v->flash.pressure);
     return split_by_ratios(v->flash.ws);
 }
 
@@ -259,6 +308,7 @@ static bool start_by_substitution(struct filling *v)
     struct equilibrium_workspace *ws = f->ws;
     struct guess guess = {1.0, LIQUID_BY_SMALLEST * phase_smallest_volume(f->at_t, ws->feed)};
     workspace_set_pure(ws, f->at_t, 1.0);
+    f->pressure = v->RT / v->volume;
     for (size_t i = 0; i < ws->count; i++) {
         ws->kept_ln_W[i] = ws->ln_pure[i];
     }
@@ -300,11 +350,6 @@ static bool start_nearby(struct filling *v, const struct mixture_vessel *start)
 
 /* ---- by flashes at trial pressures ----------------------------------------------------------------------------- */
 
-/* A pressure too low or too high, with the volume there. */
-struct side {
-    double pressure, volume;
-};
-
 static enum answer flash_at(struct filling *v, double pressure)
 {
     struct flash *f = &v->flash;
@@ -345,17 +390,6 @@ static bool finish_between(struct filling *v, const struct side *low, const stru
     const bool is_solved = light > 0.0 && light < 1.0 && solve_and_prove(v);
     f->is_gas_over_liquid = false;
     return is_solved;
-}
-
-static double next_pressure(const struct filling *v, const struct side *low, const struct side *high, int count)
-{
-    const double middle = sqrt(low->pressure * high->pressure);
-    if (count % 3 == 2) {
-        return middle;
-    }
-    const double part = log(low->volume / v->volume) / log(low->volume / high->volume);
-    const double next = low->pressure * pow(high->pressure / low->pressure, part);
-    return next > low->pressure && next < high->pressure ? next : middle;
 }
 
 static enum answer bracket(struct filling *v, struct side *low, struct side *high)
