@@ -116,6 +116,40 @@ static void a_ratio_that_is_a_multiple_of_the_step_keeps_it(void **state)
     }
 }
 
+static void a_ratio_short_of_a_multiple_loses_the_step(void **state)
+{
+    (void)state;
+    struct bench *bench = set_up_bench();
+    bench->predicates[0] =
+        compared(288.15, 288.15, SYMBOL_FILLING_RATIO, RELATION_AT_MOST, formula_number(bench->it, 0.679999));
+    filled_vessel_method(bench->it, "peng-robinson");
+    assert_close(fact_value(answer(bench), "filling-ratio"), 0.67, 1e-14, "rounded down, never up");
+    tear_down_bench(bench);
+}
+
+/* ADR/RID 2025, 2.2.2.1.2: compressed up to -50 degC, liquefied at high pressure up to +65 degC, both ends included. */
+static void the_class_follows_the_critical_temperature(void **state)
+{
+    (void)state;
+    static const struct {
+        double critical_temperature;
+        enum filling_class expected;
+    } cases[] = {
+        {223.15, CLASS_COMPRESSED},
+        {223.25, CLASS_HIGH_PRESSURE_LIQUEFIED},
+        {338.15, CLASS_HIGH_PRESSURE_LIQUEFIED},
+        {338.25, CLASS_LOW_PRESSURE_LIQUEFIED},
+    };
+    struct bench *bench = set_up_bench();
+    for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
+        bench->it->component.critical_temperature = given(cases[i].critical_temperature);
+        assert_int_equal(classify_fluid(&bench->it->fluid), cases[i].expected);
+    }
+    bench->it->component.critical_temperature.given = false;
+    assert_int_equal(classify_fluid(&bench->it->fluid), CLASS_NONE);
+    tear_down_bench(bench);
+}
+
 static void a_compressed_gas_is_filled_to_a_pressure_and_not_rounded(void **state)
 {
     (void)state;
@@ -187,6 +221,8 @@ static void fittings_are_always_checked_at_15_degc(void **state)
     assert_non_null(strstr(result_fact(sheet, "governed-by", NULL)->text, "vessel"));
     const double limit = fact_value(sheet, "filling-ratio-unrounded") * 999.1 * 0.0502;
     assert_close(peng_robinson_pressure(limit, 288.15), 31.0 * BAR + GAUGE_ZERO, 1e-9, "vapour at the hose's rating");
+    assert_close(fact_value(sheet, "filling-ratio"), floor(fact_value(sheet, "filling-ratio-unrounded") * 100.0) / 100.0,
+                 1e-14, "a rating's limit is rounded down to 0.01");
     assert_int_equal(result_requirement(sheet, "hose")->state, REQUIREMENT_MET);
     tear_down_bench(bench);
 }
@@ -733,6 +769,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(a_liquefied_gas_gets_its_ratio_rounded_down_and_the_mass_follows),
         cmocka_unit_test(a_ratio_that_is_a_multiple_of_the_step_keeps_it),
+        cmocka_unit_test(a_ratio_short_of_a_multiple_loses_the_step),
+        cmocka_unit_test(the_class_follows_the_critical_temperature),
         cmocka_unit_test(a_compressed_gas_is_filled_to_a_pressure_and_not_rounded),
         cmocka_unit_test(a_condition_met_by_larger_charges_only_permits_none),
         cmocka_unit_test(gross_weight_is_tare_and_charge),
