@@ -276,6 +276,30 @@ static void the_decks_pair_overrides_what_it_names(void **state)
     elaborated_end(&m.it);
 }
 
+static void a_kappa_reaches_the_method_as_its_kij(void **state)
+{
+    (void)state;
+    struct mixed m = mix_of_library("pair argon carbon-dioxide { lee-kesler kappa 1.2 }");
+    assert_close(constant_of(m.fluid, "lee-kesler")->kij, -0.2, 1e-14, "1 - kappa");
+    assert_int_equal(constant_of(m.fluid, "lee-kesler")->origin, PAIR_FROM_DECK);
+    const struct case_pair *pair = case_pair_of(m.fluid, "argon", "carbon-dioxide");
+    assert_close(case_pair_constants_of(pair, "lee-kesler")->kappa.value, 1.2, 1e-15, "as written");
+    elaborated_end(&m.it);
+}
+
+static void each_method_takes_its_own_parameters_of_pairs(void **state)
+{
+    (void)state;
+    static const char *const wrong[] = {"lee-kesler kij 0.1", "peng-robinson kappa 1.1", "lee-kesler kappa -1"};
+    for (size_t k = 0; k < sizeof wrong / sizeof *wrong; k++) {
+        char deck[300];
+        snprintf(deck, sizeof deck, "use \"small\"\npair argon carbon-dioxide { %s }\n", wrong[k]);
+        struct elaborated it = elaborate(deck);
+        assert_true(it.diagnostics.errors > 0);
+        elaborated_end(&it);
+    }
+}
+
 static void groups_and_their_pairs_share_their_numbers(void **state)
 {
     (void)state;
@@ -386,6 +410,8 @@ int main(void)
         cmocka_unit_test(a_pure_gas_carries_the_same_marks),
         cmocka_unit_test(a_pair_of_the_library_is_found_whatever_its_order),
         cmocka_unit_test(the_decks_pair_overrides_what_it_names),
+        cmocka_unit_test(a_kappa_reaches_the_method_as_its_kij),
+        cmocka_unit_test(each_method_takes_its_own_parameters_of_pairs),
         cmocka_unit_test(groups_and_their_pairs_share_their_numbers),
         cmocka_unit_test(a_group_pair_of_the_deck_replaces_the_librarys),
         cmocka_unit_test(parameters_of_a_method_come_with_their_component),

@@ -417,7 +417,9 @@ static enum answer virial_tp(const struct fluid_at_t *at_t, double pressure, con
     }
     const double reduced = SECOND_VIRIAL * pressure / (at_t->fluid->gas_constant * at_t->temperature);
     out->Z = 1.0 + reduced;
-    out->ln_phi[0] = reduced;
+    if (out->ln_phi != NULL) {
+        out->ln_phi[0] = reduced;
+    }
     return ANSWER_OK;
 }
 

@@ -87,6 +87,7 @@ struct case_component {
 struct case_pair_constants {
     const char *method; /* the method's word */
     struct quantity kij, lij;
+    struct quantity kappa; /* as written, where the method takes it: kij is then 1 - kappa */
 };
 
 /* Two components together. */

@@ -129,7 +129,7 @@ void read_methods_block(struct elaboration *e)
     e->methods = block;
 }
 
-/* Cubic methods whose alpha comes with a substance's own parameters, or follows from the acentric factor. */
+/* Methods whose alpha comes with a substance's own parameters, or that go by its acentric factor. */
 static bool takes_twu(enum vocabulary_word method)
 {
     return method == WORD_METHOD_PENG_ROBINSON_TWU || method == WORD_METHOD_TRANSLATED_PENG_ROBINSON ||
@@ -139,7 +139,7 @@ static bool takes_twu(enum vocabulary_word method)
 static bool takes_acentric(enum vocabulary_word method)
 {
     return method == WORD_METHOD_PENG_ROBINSON || method == WORD_METHOD_PENG_ROBINSON_1978 ||
-           method == WORD_METHOD_SOAVE_REDLICH_KWONG;
+           method == WORD_METHOD_SOAVE_REDLICH_KWONG || method == WORD_METHOD_LEE_KESLER;
 }
 
 static const struct case_cubic_set *set_of(const struct vocabulary_row *method, const struct case_component *component)
@@ -158,7 +158,7 @@ static const char *lack_of(const struct vocabulary_row *method, const struct cas
     if (method->id == WORD_METHOD_REFERENCE) {
         return component->spec.reference == NULL ? "a published reference equation" : NULL;
     }
-    if (!method_is_cubic(method->id)) {
+    if (!method_is_cubic(method->id) && !takes_acentric(method->id)) {
         return NULL;
     }
     const struct case_cubic_set *set = set_of(method, component);

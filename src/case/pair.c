@@ -13,6 +13,11 @@ static const struct quantity_form FORM_LIJ = {.measure = MEASURE_NUMBER,
                                               .least = -5.0,
                                               .most = 1.0,
                                               .because = "b_ij = (1 - lij) (b_i + b_j) / 2"};
+static const struct quantity_form FORM_KAPPA = {.measure = MEASURE_NUMBER,
+                                                .reading = READ_NUMBER,
+                                                .least = 0.0,
+                                                .most = 6.0,
+                                                .because = "Tc_ij = kappa sqrt(Tc_i Tc_j)"};
 /* Energies for each volume, positive or negative, of the size of a / b^2. */
 static const struct quantity_form FORM_INTERACTION = {
     .measure = MEASURE_PRESSURE, .reading = READ_NUMBER, .least = -1e11, .most = 1e11};
@@ -47,7 +52,20 @@ static struct case_pair_constants *constants_of(struct elaboration *e, struct co
     return constants;
 }
 
-/* 'kij' or 'lij'; NULL after a message. */
+/* Whether the method has such a parameter of pairs; a message if not. */
+static bool check_parameter(struct elaboration *e, const struct vocabulary_row *method,
+                            const struct vocabulary_row *parameter, struct location at)
+{
+    const bool takes_kappa = method->id == WORD_METHOD_LEE_KESLER;
+    if (takes_kappa == (parameter->id == WORD_INTERACTION_KAPPA)) {
+        return true;
+    }
+    struct diagnostic *said = diagnose(e->out, CODE_E203, at, "'%s' takes no '%s'", method->word, parameter->word);
+    diagnostic_hint(e->out, said, takes_kappa ? "as in: %s kappa 1.113" : "as in: %s kij 0.0852", method->word);
+    return false;
+}
+
+/* 'kij', 'lij' or 'kappa'; NULL after a message. */
 static const struct vocabulary_row *take_parameter(struct reading *reading)
 {
     const struct item *item = reading->item;
@@ -61,32 +79,54 @@ static const struct vocabulary_row *take_parameter(struct reading *reading)
     return NULL;
 }
 
-/* `peng-robinson kij 0.0852 ref KEY`, perhaps with lij */
+struct parameter_place {
+    const struct quantity_form *form;
+    struct quantity *quantity;
+};
+
+static struct parameter_place place_of(enum vocabulary_word parameter, struct case_pair_constants *constants)
+{
+    switch ((unsigned)parameter) {
+    case WORD_INTERACTION_KIJ:
+        return (struct parameter_place){&FORM_KIJ, &constants->kij};
+    case WORD_INTERACTION_LIJ:
+        return (struct parameter_place){&FORM_LIJ, &constants->lij};
+    default:
+        return (struct parameter_place){&FORM_KAPPA, &constants->kappa};
+    }
+}
+
+/* `peng-robinson kij 0.0852 ref KEY`, perhaps with lij; `lee-kesler kappa 1.113` */
 static void read_constants(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct pair_target *into = target;
     struct reading reading = read_items(e, statement);
     const struct vocabulary_row *method = vocabulary_find(BLOCK_METHOD, statement->word);
     struct case_pair_constants *constants = constants_of(e, &into->constants, method->word);
-    bool is_seen[2] = {false, false};
+    unsigned seen = 0;
     do {
         const struct item *item = reading.item;
         const struct vocabulary_row *row = take_parameter(&reading);
-        if (row == NULL) {
+        if (row == NULL || !check_parameter(e, method, row, item->at)) {
             return;
         }
-        const bool is_kij = row->id == WORD_INTERACTION_KIJ;
-        if (is_seen[is_kij]) {
+        const unsigned bit = 1U << (row->id - WORD_INTERACTION_KIJ);
+        if (seen & bit) {
             diagnose(e->out, CODE_E207, item->at, "'%s' is given twice", row->word);
             return;
         }
-        is_seen[is_kij] = true;
-        const char *name = arena_format(e->arena, "%s %s", method->word, row->word);
-        if (!take_quantity(&reading, is_kij ? &FORM_KIJ : &FORM_LIJ, name,
-                           is_kij ? &constants->kij : &constants->lij)) {
+        seen |= bit;
+        const struct parameter_place place = place_of(row->id, constants);
+        if (!take_quantity(&reading, place.form, arena_format(e->arena, "%s %s", method->word, row->word),
+                           place.quantity)) {
             return;
         }
     } while (reading.item != NULL);
+    if (constants->kappa.given) {
+        constants->kij = constants->kappa;
+        constants->kij.value = 1.0 - constants->kappa.value;
+        constants->kij.overridden = NULL; /* it would be a kappa */
+    }
     forbid_block(e, statement);
 }
 
@@ -113,6 +153,7 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_METHOD_TRANSLATED_PENG_ROBINSON, read_constants),
     READ_ONCE(WORD_METHOD_TRANSLATED_REDLICH_KWONG, read_constants),
     READ_ONCE(WORD_METHOD_QUANTUM_PENG_ROBINSON, read_constants),
+    READ_ONCE(WORD_METHOD_LEE_KESLER, read_constants),
     READ_ONCE(WORD_PAIR_REACTS, read_reacts),
 };
 static const struct block_form PAIR = BLOCK_FORM(BLOCK_PAIR, ROWS);

@@ -68,7 +68,7 @@ static const struct block_form PARAMETERS = BLOCK_FORM(BLOCK_PARAMETERS, ROWS);
 
 bool method_is_cubic(enum vocabulary_word method)
 {
-    return method != WORD_METHOD_IDEAL_GAS && method != WORD_METHOD_REFERENCE;
+    return method != WORD_METHOD_IDEAL_GAS && method != WORD_METHOD_REFERENCE && method != WORD_METHOD_LEE_KESLER;
 }
 
 const struct vocabulary_row *take_cubic(struct reading *reading)

@@ -63,11 +63,19 @@ struct helmholtz {
     double *F_nn;    /* [count * count], 1/mol */
 };
 
-/* What a (T, p, n) method gives for one branch. */
+/* What a (T, p, n) method gives for one branch. An array that is NULL is not asked for. */
 struct explicit_phase {
     double Z;
     double *ln_phi;     /* [count] */
-    double *dln_phi_dn; /* [count * count], 1/mol at constant T, p; NULL: not asked for */
+    double *dln_phi_dn; /* [count * count], 1/mol at constant T, p */
+    double *dln_phi_dp; /* [count], 1/Pa */
+    double *dln_phi_dt; /* [count], 1/K at constant p */
+    int roots;          /* mechanically stable roots found (1 or 2) */
+    /* A method that sets has_slopes gives the two arrays above and all of these as well. */
+    bool has_slopes;
+    double Z_ln_p, Z_ln_t; /* p dZ/dp at constant T, T dZ/dT at constant p */
+    double residual_gibbs_rt;                              /* the mean of ln phi_i by mole */
+    double residual_enthalpy_rt, residual_heat_capacity_r; /* as in struct phase */
 };
 
 struct critical_point {

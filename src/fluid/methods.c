@@ -16,6 +16,7 @@ static const struct fluid_ops *const METHODS[] = {
     &translated_redlich_kwong_ops,
     &quantum_peng_robinson_ops,
     &reference_ops,
+    &lee_kesler_ops,
     NULL,
 };
 

@@ -15,5 +15,6 @@ extern const struct fluid_ops translated_peng_robinson_ops;
 extern const struct fluid_ops translated_redlich_kwong_ops;
 extern const struct fluid_ops quantum_peng_robinson_ops;
 extern const struct fluid_ops reference_ops;
+extern const struct fluid_ops lee_kesler_ops;
 
 #endif

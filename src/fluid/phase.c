@@ -10,11 +10,16 @@
  *   d ln phi_i / dT  = F_Ti + 1 / T - v_i (dp/dT) / (R T)
  *   d ln phi_i / dn_j = F_ij + 1 / n + (dp/dn_i)(dp/dn_j) / (dp/dV) / (R T)
  *
- * A (T, p, n) method gives Z and ln phi_i, and is asked for no more than these.
+ * A (T, p, n) method gives Z and ln phi_i, and if it can their derivatives by T and p, from which all the same follows;
+ * at a given volume its pressure is solved for.
  */
 #include "fluid/phase.h"
 
+#include <float.h>
 #include <math.h>
+
+/* Relative error in a volume that a search for the pressure of a (T, p) method may leave. */
+#define LAST_VOLUME_ERROR 1e-13
 
 void phase_of_pure(struct phase *phase, struct pure_arrays *arrays)
 {
@@ -220,22 +225,49 @@ static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, c
 
 /* ---- methods explicit in T, p, n ------------------------------------------------------------------------------- */
 
-/* Z and ln phi_i, and with them the fugacities. */
+/* From Z and its derivatives, as V = n R T Z / p:  dV/dp = (n R T / p^2) (p dZ/dp - Z),
+ * dV/dT = (n R / p) (Z + T dZ/dT),  dp/dT = -(dV/dT) / (dV/dp),  dp/dn_i = -v_i / (dV/dp). */
+static void set_explicit_slopes(const struct explicit_phase *explicit, const double *dln_phi_dp, double gas_constant,
+                                size_t count, unsigned want, struct phase *out)
+{
+    const double R = gas_constant, T = out->temperature, p = out->pressure;
+    const double dv_dp = out->amount * R * T / (p * p) * (explicit->Z_ln_p - explicit->Z);
+    out->dp_dv = 1.0 / dv_dp;
+    out->dp_dt = -out->amount * R / p * (explicit->Z + explicit->Z_ln_t) / dv_dp;
+    for (size_t i = 0; want & PHASE_DP_DN && i < count; i++) {
+        out->dp_dn[i] = -R * T * (dln_phi_dp[i] + 1.0 / p) / dv_dp;
+    }
+    if (want & PHASE_RESIDUAL) {
+        out->residual_enthalpy_rt = explicit->residual_enthalpy_rt;
+        out->residual_entropy_r = explicit->residual_enthalpy_rt - explicit->residual_gibbs_rt;
+        out->residual_heat_capacity_r = explicit->residual_heat_capacity_r;
+    }
+}
+
+/* Where tp puts what is wanted; PHASE_DP_DN needs the derivative by p. */
+static struct explicit_phase arrays_of_explicit(unsigned want, const struct phase *out)
+{
+    return (struct explicit_phase){
+        .ln_phi = want & PHASE_LN_PHI ? out->ln_phi : want & PHASE_LN_F ? out->ln_f_over_x : NULL,
+        .dln_phi_dn = want & PHASE_DLN_PHI_DN ? out->dln_phi_dn : NULL,
+        .dln_phi_dp = want & PHASE_DLN_PHI_DP ? out->dln_phi_dp : want & PHASE_DP_DN ? out->dp_dn : NULL,
+        .dln_phi_dt = want & PHASE_DLN_PHI_DT ? out->dln_phi_dt : NULL,
+        .roots = 1,
+    };
+}
+
 static enum answer phase_from_tp(const struct fluid_at_t *at_t, double pressure, const double n[], enum branch branch,
                                  unsigned want, struct phase *out)
 {
     const struct fluid *fluid = at_t->fluid;
     const size_t count = fluid->count;
-    if (want & ~((unsigned)PHASE_LN_PHI | PHASE_LN_F | PHASE_DLN_PHI_DN)) {
-        return ANSWER_CANNOT;
-    }
-    struct explicit_phase explicit = {
-        .ln_phi = want & PHASE_LN_PHI || !(want & PHASE_LN_F) ? out->ln_phi : out->ln_f_over_x,
-        .dln_phi_dn = want & PHASE_DLN_PHI_DN ? out->dln_phi_dn : NULL,
-    };
+    struct explicit_phase explicit = arrays_of_explicit(want, out);
     const enum answer answer = fluid->ops->tp(at_t, pressure, n, branch, &explicit);
     if (answer != ANSWER_OK) {
         return answer;
+    }
+    if (!explicit.has_slopes && want & ~((unsigned)PHASE_LN_PHI | PHASE_LN_F | PHASE_DLN_PHI_DN)) {
+        return ANSWER_CANNOT;
     }
     out->temperature = at_t->temperature;
     out->pressure = pressure;
@@ -244,11 +276,99 @@ static enum answer phase_from_tp(const struct fluid_at_t *at_t, double pressure,
     out->volume = explicit.Z * out->amount * fluid->gas_constant * at_t->temperature / pressure;
     out->dp_dv = 0.0;
     out->branch = branch;
-    out->roots = 1;
+    out->roots = explicit.roots;
+    if (explicit.has_slopes) {
+        set_explicit_slopes(&explicit, explicit.dln_phi_dp, fluid->gas_constant, count, want, out);
+    }
     for (size_t i = 0; want & PHASE_LN_F && i < count; i++) {
         out->ln_f_over_x[i] = explicit.ln_phi[i] + log(pressure);
     }
     return check_phase(out, count, want);
+}
+
+enum { MOST_PRESSURES = 200 };
+
+/* A search for ln p between two bounds, either of which may not be known yet. */
+struct pressure_search {
+    double low, high, ln_p;
+};
+
+/* Newton's next ln p where it stays between the bounds, else the middle, or a step outwards. */
+static double next_ln_pressure(const struct pressure_search *search, double newton)
+{
+    if (newton > search->low && newton < search->high) {
+        return newton;
+    }
+    if (!isfinite(search->high)) {
+        return search->ln_p + 1.0;
+    }
+    return isfinite(search->low) ? 0.5 * (search->low + search->high) : search->ln_p - 1.0;
+}
+
+/* The change of ln p from V(p) = n R T Z / p to the volume at which the ideal gas has the pressure p / ratio: a vapour's
+ * ln V is nearly straight in ln p, a liquid's V in p. */
+static double ln_pressure_step(const struct explicit_phase *at, double ratio, enum branch branch)
+{
+    const double stiffness = at->Z - at->Z_ln_p; /* -p dV/dp / (n R T / p) */
+    if (branch == BRANCH_VAPOUR) {
+        return -log(ratio / at->Z) * at->Z / stiffness;
+    }
+    const double part = (at->Z - ratio) / stiffness;
+    return part > -0.5 ? log1p(part) : -0.7;
+}
+
+/* The pressure at which a branch has the volume asked for. The vapour's branch ends at a high pressure, the liquid's at
+ * a low one. */
+static enum answer pressure_on_branch(const struct fluid_at_t *at_t, double volume, const double n[],
+                                      enum branch branch, double *pressure)
+{
+    const double ideal = total(n, at_t->fluid->count) * at_t->fluid->gas_constant * at_t->temperature / volume;
+    struct pressure_search search = {-(double)INFINITY, (double)INFINITY, log(ideal)};
+    for (int count = 0; count < MOST_PRESSURES; count++) {
+        struct explicit_phase at = {.roots = 1};
+        *pressure = exp(search.ln_p);
+        const enum answer answer = at_t->fluid->ops->tp(at_t, *pressure, n, branch, &at);
+        double newton = (double)NAN;
+        if (answer == ANSWER_NO_SUCH_ROOT) {
+            *(branch == BRANCH_VAPOUR ? &search.high : &search.low) = search.ln_p;
+        } else if (answer != ANSWER_OK || !at.has_slopes) {
+            return answer != ANSWER_OK ? answer : ANSWER_CANNOT;
+        } else {
+            const double ratio = *pressure / ideal, step = ln_pressure_step(&at, ratio, branch);
+            if (fabs(ratio - at.Z) <= 4.0 * DBL_EPSILON * at.Z || fabs(step) <= DBL_EPSILON) {
+                return ANSWER_OK;
+            }
+            *(step > 0.0 ? &search.low : &search.high) = search.ln_p;
+            newton = search.ln_p + step;
+        }
+        const double next = next_ln_pressure(&search, newton);
+        if (!(next > search.low && next < search.high)) {
+            /* No number is left between the bounds: at a root, or at the end of the branch. */
+            return fabs(*pressure / ideal - at.Z) <= LAST_VOLUME_ERROR * at.Z ? ANSWER_OK : ANSWER_NO_SUCH_ROOT;
+        }
+        search.ln_p = next;
+    }
+    return ANSWER_NO_SUCH_ROOT;
+}
+
+/* The phase of that volume: on the vapour's branch or else the liquid's. */
+static enum answer phase_from_tp_at_volume(const struct fluid_at_t *at_t, double volume, const double n[],
+                                           unsigned want, struct phase *out)
+{
+    double pressure;
+    enum branch branch = BRANCH_VAPOUR;
+    enum answer answer = pressure_on_branch(at_t, volume, n, branch, &pressure);
+    if (answer == ANSWER_NO_SUCH_ROOT) {
+        branch = BRANCH_LIQUID;
+        answer = pressure_on_branch(at_t, volume, n, branch, &pressure);
+    }
+    answer = answer == ANSWER_OK ? phase_from_tp(at_t, pressure, n, branch, want, out) : answer;
+    if (answer == ANSWER_OK) {
+        out->volume = volume;
+        out->branch = BRANCH_STABLE;
+        out->roots = 0;
+    }
+    return answer;
 }
 
 /* ---- what the layers above call -------------------------------------------------------------------------------- */
@@ -283,11 +403,11 @@ enum answer phase_tp(const struct fluid_at_t *at_t, double pressure, const doubl
 enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want, struct phase *out)
 {
     const struct fluid_ops *ops = at_t->fluid->ops;
-    if (ops->form == FLUID_FROM_TP) {
-        return ANSWER_CANNOT;
-    }
     if (!(volume > phase_smallest_volume(at_t, n)) || !isfinite(volume)) {
         return ANSWER_OUT_OF_RANGE;
+    }
+    if (ops->form == FLUID_FROM_TP) {
+        return phase_from_tp_at_volume(at_t, volume, n, want, out);
     }
     double single;
     struct helmholtz F = arrays_for(at_t->fluid, want, out, &single);

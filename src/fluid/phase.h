@@ -25,7 +25,7 @@ struct phase {
     double volume;        /* m3, for all of n */
     double amount;        /* mol, the sum of n */
     double Z;             /* p V / (n R T) */
-    double dp_dv;         /* Pa/m3 at constant T, n; negative where mechanically stable; 0 from a (T, p) method */
+    double dp_dv;         /* Pa/m3 at constant T, n; negative where mechanically stable; 0: no slopes given */
     double dp_dt;         /* Pa/K at constant V, n */
     enum branch branch;   /* the branch the root was taken from (phase_tp), else BRANCH_STABLE */
     int roots;            /* mechanically stable roots found at this T, p (phase_tp); 0 after phase_tv */
@@ -47,7 +47,8 @@ enum answer phase_tp(const struct fluid_at_t *at_t, double pressure, const doubl
 
 /* The phase at volume (m3); its pressure may be negative (inside a spinodal). With PHASE_LN_PHI, PHASE_DLN_PHI_DP or
  * PHASE_RESIDUAL and a pressure that is not positive the answer is ANSWER_OUT_OF_RANGE; PHASE_LN_F answers there too.
- * ANSWER_CANNOT from a (T, p) method. */
+ * A (T, p) method's pressure is solved for, on the vapour's branch and then on the liquid's: ANSWER_NO_SUCH_ROOT between
+ * them, ANSWER_CANNOT from one without slopes. */
 enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want, struct phase *out);
 
 /* A memory-free home for a pure fluid's arrays: phase_of_pure points a struct phase at it. */

@@ -274,6 +274,8 @@ const struct sample_fluid SAMPLE_FLUIDS[] = {
      SAMPLE_INVENTED},
     {"quantum hydrogen", "quantum-peng-robinson", 1, {HYDROGEN}, {1.37}, SAMPLE_CONSTANTS},
     {"quantum mixture", "quantum-peng-robinson", 3, {NEON, HYDROGEN, HELIUM}, {0.47, 0.59, 0.31}, SAMPLE_CONSTANTS},
+    {"Lee-Kesler propane", "lee-kesler", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
+    {"Lee-Kesler mixture", "lee-kesler", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
 };
 const size_t SAMPLE_FLUIDS_COUNT = sizeof SAMPLE_FLUIDS / sizeof *SAMPLE_FLUIDS;
 
