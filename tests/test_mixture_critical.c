@@ -94,7 +94,7 @@ static void a_start_without_meaning_is_refused(void **state)
     struct mixture_critical critical;
     static const double z[] = {0.37, 0.63};
     static const struct critical_point starts[] = {{.temperature = 0.0, .molar_volume = 1e-4},
-                                                   {.temperature = NAN, .molar_volume = 1e-4},
+                                                   {.temperature = (double)NAN, .molar_volume = 1e-4},
                                                    {.temperature = 300.0, .molar_volume = -1e-4}};
     for (size_t k = 0; k < COUNT(starts); k++) {
         assert_int_equal(mixture_critical_near(m.at_t, m.fluid, z, &starts[k], m.ws, &critical), ANSWER_OUT_OF_RANGE);

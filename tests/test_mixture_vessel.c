@@ -200,7 +200,8 @@ static void a_vessel_without_meaning_is_refused(void **state)
     struct sample_mixture m = sample_mixture_create(2, two, 291.3, arena);
     struct mixture_vessel *vessel = mixture_vessel_create(2, arena);
     const double n[] = {0.4, 0.6}, none[] = {0.0, 0.0};
-    static const double volumes[] = {0.0, -1.0, 4e-5, NAN, INFINITY}; /* the third is below the covolume */
+    static const double volumes[] = {0.0, -1.0, 4e-5, (double)NAN,
+                                     (double)INFINITY}; /* the third is below the covolume */
     for (size_t k = 0; k < COUNT(volumes); k++) {
         assert_int_equal(mixture_vessel_at_tv(m.at_t, volumes[k], n, NULL, m.ws, vessel), ANSWER_OUT_OF_RANGE);
     }

@@ -241,11 +241,11 @@ static void a_feed_without_meaning_is_refused(void **state)
     static const enum sample_substance two[] = {METHANE, PROPANE};
     struct sample_mixture m = sample_mixture_create(2, two, 277.6, arena);
     struct split *split = split_create(2, arena);
-    static const double wrong[][2] = {{0.0, 0.0}, {-0.1, 1.0}, {NAN, 1.0}, {INFINITY, 1.0}};
+    static const double wrong[][2] = {{0.0, 0.0}, {-0.1, 1.0}, {(double)NAN, 1.0}, {(double)INFINITY, 1.0}};
     for (size_t k = 0; k < COUNT(wrong); k++) {
         assert_int_equal(split_at_tp(m.at_t, 1e6, wrong[k], m.ws, split), ANSWER_OUT_OF_RANGE);
     }
-    static const double pressures[] = {0.0, -1e5, NAN, INFINITY};
+    static const double pressures[] = {0.0, -1e5, (double)NAN, (double)INFINITY};
     const double z[] = {0.5, 0.5};
     for (size_t k = 0; k < COUNT(pressures); k++) {
         assert_int_equal(split_at_tp(m.at_t, pressures[k], z, m.ws, split), ANSWER_OUT_OF_RANGE);

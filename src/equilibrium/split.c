@@ -105,17 +105,6 @@ enum answer flash_evaluate(struct flash *f, unsigned want, double *const amounts
     return isfinite(*gibbs) ? ANSWER_OK : ANSWER_FAILED;
 }
 
-size_t flash_rest_phase(const struct flash *f, size_t i)
-{
-    size_t rest = 0;
-    for (size_t k = 1; k < f->phases; k++) {
-        if (f->ws->amounts[k][i] > f->ws->amounts[rest][i]) {
-            rest = k;
-        }
-    }
-    return rest;
-}
-
 /* ---- successive substitution, two phases ----------------------------------------------------------------------- */
 
 static void set_ratios_from_coefficients(struct equilibrium_workspace *ws)
@@ -161,60 +150,6 @@ static bool substitute_to_gain(struct flash *f)
 }
 
 /* ---- second-order steps ---------------------------------------------------------------------------------------- */
-
-struct unknown flash_unknown_at(const struct flash *f, size_t index)
-{
-    const size_t others = f->phases - 1;
-    struct unknown u = {.i = f->ws->active[index / others]};
-    u.rest = flash_rest_phase(f, u.i);
-    u.phase = index % others;
-    if (u.phase >= u.rest) {
-        u.phase++;
-    }
-    return u;
-}
-
-size_t flash_unknowns_of(const struct flash *f)
-{
-    return (f->phases - 1) * f->ws->active_count;
-}
-
-/* d ln f_i / d n_j in phase k. */
-static double ln_f_slope(const struct equilibrium_workspace *ws, size_t k, size_t i, size_t j)
-{
-    const struct phase *phase = ws->phase[k];
-    const double slope = phase->dln_phi_dn[i * ws->count + j] - 1.0 / phase->amount;
-    return i == j ? slope + 1.0 / ws->amounts[k][i] : slope;
-}
-
-static double hessian_entry(const struct equilibrium_workspace *ws, struct unknown u, struct unknown v)
-{
-    double sum = 0.0;
-    if (u.phase == v.phase) {
-        sum += ln_f_slope(ws, u.phase, u.i, v.i);
-    } else if (u.phase == v.rest) {
-        sum -= ln_f_slope(ws, u.phase, u.i, v.i);
-    }
-    if (u.rest == v.rest) {
-        sum += ln_f_slope(ws, u.rest, u.i, v.i);
-    } else if (u.rest == v.phase) {
-        sum -= ln_f_slope(ws, u.rest, u.i, v.i);
-    }
-    return sum;
-}
-
-void flash_set_hessian(const struct flash *f, double shift)
-{
-    struct equilibrium_workspace *ws = f->ws;
-    const size_t size = flash_unknowns_of(f);
-    for (size_t a = 0; a < size; a++) {
-        const struct unknown u = flash_unknown_at(f, a);
-        for (size_t b = 0; b <= a; b++) {
-            ws->matrix[a * size + b] = ws->scale[a] * ws->scale[b] * hessian_entry(ws, u, flash_unknown_at(f, b));
-        }
-        ws->matrix[a * size + a] += shift;
-    }
-}
 
 /* The gradient, its largest entry, and the scales. */
 void flash_set_gradient(struct flash *f, double *g)
