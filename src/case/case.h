@@ -75,6 +75,8 @@ struct case_component {
     const char *refuse; /* the reason why no charge is computed; NULL: none */
     struct location refuse_at;
     const struct case_source *equation_source; /* NULL where it has no reference equation */
+    const struct case_source *gerg_source;     /* likewise of GERG-2008 */
+    struct location gerg_at;
     size_t cubic_set_count;
     const struct case_cubic_set *cubic_sets;
     size_t group_count;
@@ -90,11 +92,29 @@ struct case_pair_constants {
     struct quantity kappa; /* as written, where the method takes it: kij is then 1 - kappa */
 };
 
+/* A departure function of mixtures. */
+struct case_departure {
+    const struct case_source *source; /* NULL: none named */
+    struct location at;
+    struct departure_spec spec;
+};
+
+/* What one multi-fluid method has of a pair; see struct reducing_pair. */
+struct case_reducing {
+    const char *method; /* the method's word */
+    const char *first;  /* the component that beta_T and beta_V take as first */
+    struct quantity beta_T, gamma_T, beta_V, gamma_V;
+    const struct case_departure *departure; /* NULL: none */
+    struct quantity weight;                 /* of the departure */
+};
+
 /* Two components together. */
 struct case_pair {
     const char *first, *second; /* as the first of its blocks has them */
     size_t count;
     const struct case_pair_constants *constants;
+    size_t reducing_count;
+    const struct case_reducing *reducing;
     const char *reacts; /* what the two do; NULL: nothing is known */
     struct origin reacts_origin;
 };
@@ -139,6 +159,7 @@ struct case_fluid {
 /* The pair of these components of the fluid, and what it has for a method; NULL: none. */
 const struct case_pair *case_pair_of(const struct case_fluid *fluid, const char *one, const char *other);
 const struct case_pair_constants *case_pair_constants_of(const struct case_pair *pair, const char *method);
+const struct case_reducing *case_reducing_of(const struct case_pair *pair, const char *method);
 
 struct case_rating {
     const char *name; /* "test-pressure", or the fitting's text */

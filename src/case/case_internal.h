@@ -25,6 +25,8 @@ enum name_kind {
     NAMES_PAIR,       /* "nitrogen propane", in the order of the alphabet */
     NAMES_GROUP_PAIR, /* likewise */
     NAMES_EQUATION,
+    NAMES_GERG_EQUATION,
+    NAMES_DEPARTURE,
     NAMES_ENTRY,
     NAMES_VESSEL,
     NAMES_CHARGE,
@@ -89,6 +91,16 @@ struct statement_list {
 
 struct cubic_set_list {
     struct case_cubic_set *items;
+    size_t count, capacity;
+};
+
+struct reducing_list {
+    struct case_reducing *items;
+    size_t count, capacity;
+};
+
+struct residual_list {
+    struct residual_term *items;
     size_t count, capacity;
 };
 
@@ -350,6 +362,23 @@ void use_method_data(struct elaboration *e, const struct case_fluid *fluid, cons
 void use_parameters(struct elaboration *e, const struct case_component *component, const char *method);
 void use_groups(struct elaboration *e, const struct case_component *component);
 void use_quantity(struct elaboration *e, const struct quantity *quantity);
+
+/* One method's reducing parameters of a pair, added to the list or in place of earlier ones; `first` as the pair's
+ * block has it. */
+void read_reducing(struct elaboration *e, const struct statement *statement, const char *first,
+                   struct reducing_list *list);
+
+/* The same as the methods take them, of components i and j of which i is called `first`. */
+struct reducing_pair plain_reducing(const struct case_reducing *from, const char *first, size_t i, size_t j);
+
+/* Marks what a method takes of a pair's reducing parameters, and of equations no other method has. */
+void use_reducing(struct elaboration *e, const struct case_pair *pair, const char *method);
+void use_own_equation(struct elaboration *e, const struct case_component *component, const char *method);
+
+const struct case_departure *build_departure(struct elaboration *e, struct named *named);
+
+/* `residual KIND { term ... }` of an equation or a departure, added to the list. */
+void read_residual_terms(struct elaboration *e, const struct statement *statement, struct residual_list *list);
 
 /* The equation of a component into `spec`; false after a message. */
 bool build_equation(struct elaboration *e, struct named *named, struct reference_spec *spec,

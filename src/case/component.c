@@ -294,19 +294,28 @@ static void check_order(struct elaboration *e, const struct case_component *comp
     }
 }
 
-static const struct reference_spec *equation_of(struct elaboration *e, struct case_component *component)
+static const struct reference_spec *equation_of(struct elaboration *e, const struct case_component *component,
+                                                enum name_kind kind, const struct case_source **source)
 {
-    struct named *equation = names_find(&e->tables[NAMES_EQUATION], component->name);
+    struct named *equation = names_find(&e->tables[kind], component->name);
     if (equation == NULL) {
         return NULL;
     }
     struct reference_spec *reference = arena_alloc(e->arena, 1, sizeof *reference);
-    const struct case_source *source;
-    if (!build_equation(e, equation, reference, &source)) {
-        return NULL;
+    return build_equation(e, equation, reference, source) ? reference : NULL;
+}
+
+/* The equation that serves one method only counts as used once that method answers. */
+static const struct reference_spec *gerg_equation_of(struct elaboration *e, struct case_component *component)
+{
+    const bool outer = e->is_deferring;
+    e->is_deferring = true;
+    const struct reference_spec *equation = equation_of(e, component, NAMES_GERG_EQUATION, &component->gerg_source);
+    e->is_deferring = outer;
+    if (equation != NULL) {
+        component->gerg_at = names_find(&e->tables[NAMES_GERG_EQUATION], component->name)->at;
     }
-    component->equation_source = source;
-    return reference;
+    return equation;
 }
 
 const struct case_component *build_component(struct elaboration *e, struct named *named)
@@ -325,7 +334,11 @@ const struct case_component *build_component(struct elaboration *e, struct named
     check_order(e, &target->component);
     target->component.cubic_sets = target->sets.items;
     target->component.cubic_set_count = target->sets.count;
-    target->component.spec = spec_of(e, &target->component, equation_of(e, &target->component));
+    const struct case_source *source = NULL;
+    const struct reference_spec *reference = equation_of(e, &target->component, NAMES_EQUATION, &source);
+    target->component.equation_source = reference == NULL ? NULL : source;
+    target->component.spec = spec_of(e, &target->component, reference);
+    target->component.spec.gerg_2008 = gerg_equation_of(e, &target->component);
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? &target->component : NULL;
     return named->built;

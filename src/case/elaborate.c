@@ -55,6 +55,21 @@ static void define_named(struct elaboration *e, enum name_kind kind, const char 
     finish_items(&reading);
 }
 
+/* `equation argon { ... }`, or `equation argon gerg-2008 { ... }` for that method alone. */
+static void define_equation(struct elaboration *e, const struct statement *statement)
+{
+    struct reading reading = read_items(e, statement);
+    const struct expression *name = take_name(&reading);
+    if (name == NULL) {
+        report_missing(&reading, "the name of the equation's component");
+        return;
+    }
+    const bool is_gerg = take_word(&reading, vocabulary_rows()[WORD_METHOD_GERG_2008].word);
+    if (finish_items(&reading)) {
+        define(e, is_gerg ? NAMES_GERG_EQUATION : NAMES_EQUATION, name->name, name->at, statement);
+    }
+}
+
 /* `mixture name by mole { ... }`: what follows the name is read when the mixture is built. */
 static void define_mixture(struct elaboration *e, const struct statement *statement)
 {
@@ -144,7 +159,7 @@ static void index_statement(struct elaboration *e, const struct statement *state
         const char *what;
     } blocks[] = {
         {WORD_FILE_COMPONENT, NAMES_COMPONENT, "the name of the component"},
-        {WORD_FILE_EQUATION, NAMES_EQUATION, "the name of the equation's component"},
+        {WORD_FILE_DEPARTURE, NAMES_DEPARTURE, "the name of the departure"},
         {WORD_FILE_VESSEL, NAMES_VESSEL, "the name of the vessel"},
         {WORD_FILE_CHARGE, NAMES_CHARGE, "the name of the charge"},
         {WORD_FILE_RULE, NAMES_RULE, "the name of the rule"},
@@ -163,6 +178,8 @@ static void index_statement(struct elaboration *e, const struct statement *state
         define_entry(e, statement);
     } else if (row->id == WORD_FILE_MIXTURE) {
         define_mixture(e, statement);
+    } else if (row->id == WORD_FILE_EQUATION) {
+        define_equation(e, statement);
     } else if (row->id == WORD_FILE_PAIR) {
         define_pair(e, NAMES_PAIR, "the names of two components", statement);
     } else if (row->id == WORD_FILE_GROUP_PAIR) {
@@ -445,7 +462,11 @@ static void check_named(struct elaboration *e, enum name_kind kind, struct named
         build_group_pair(e, named);
         break;
     case NAMES_EQUATION:
+    case NAMES_GERG_EQUATION:
         check_equation(e, named);
+        break;
+    case NAMES_DEPARTURE:
+        build_departure(e, named);
         break;
     case NAMES_ENTRY:
         build_entry(e, named);

@@ -39,6 +39,7 @@ static const struct term_kind RESIDUALS[] = {
      7,
      7,
      {N_T_D, R(gd, ANY), R(ld, NOT_NEGATIVE), R(gt, ANY), R(lt, NOT_NEGATIVE)}},
+    {WORD_RESIDUAL_SPECIAL_EXPONENTIAL, RESIDUAL_SPECIAL_EXPONENTIAL, 7, 7, {N_T_D, BELL}},
     {WORD_RESIDUAL_NONANALYTIC,
      RESIDUAL_NONANALYTIC,
      8,
@@ -66,11 +67,6 @@ static const struct term_kind IDEALS[] = {
 static const struct term_kind GUESS_TERM = {
     .required = 2, .count = 2, .columns = {{"n", ANY, 0}, {"t", ANY, sizeof(double)}}};
 
-struct residual_list {
-    struct residual_term *items;
-    size_t count, capacity;
-};
-
 struct ideal_list {
     struct ideal_term *items;
     size_t count, capacity;
@@ -82,7 +78,7 @@ struct guess_list {
 };
 
 struct equation {
-    struct quantity gas_constant, reducing_temperature, reducing_density;
+    struct quantity gas_constant, molar_mass, reducing_temperature, reducing_density;
     struct quantity critical_temperature, critical_pressure, critical_density, valid_pressure;
     bool has_range;
     double smallest_temperature, largest_temperature;
@@ -203,11 +199,16 @@ static void read_terms(struct elaboration *e, const struct statement *statement,
     }
 }
 
+void read_residual_terms(struct elaboration *e, const struct statement *statement, struct residual_list *list)
+{
+    read_terms(e, statement, BLOCK_RESIDUAL, (struct terms){.add = add_residual, .list = list}, RESIDUALS,
+               sizeof RESIDUALS / sizeof *RESIDUALS);
+}
+
 static void read_residual(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct equation *equation = target;
-    read_terms(e, statement, BLOCK_RESIDUAL, (struct terms){.add = add_residual, .list = &equation->residual},
-               RESIDUALS, sizeof RESIDUALS / sizeof *RESIDUALS);
+    read_residual_terms(e, statement, &equation->residual);
 }
 
 static void read_ideal(struct elaboration *e, const struct statement *statement, void *target)
@@ -338,6 +339,7 @@ static void read_valid_temperature(struct elaboration *e, const struct statement
 static const struct block_row ROWS[] = {
     READ_ONCE(WORD_EQUATION_SOURCE, read_source),
     QUANTITY(GAS_CONSTANT, gas_constant),
+    QUANTITY(MOLAR_MASS, molar_mass),
     QUANTITY(REDUCING_TEMPERATURE, reducing_temperature),
     QUANTITY(REDUCING_DENSITY, reducing_density),
     QUANTITY(CRITICAL_TEMPERATURE, critical_temperature),
@@ -382,6 +384,7 @@ static struct reference_spec spec_of(const struct equation *equation)
         .gas_constant = equation->gas_constant.value,
         .reducing_temperature = equation->reducing_temperature.value,
         .reducing_density = equation->reducing_density.value,
+        .molar_mass = {.given = equation->molar_mass.given, .value = equation->molar_mass.value},
         .residual_count = equation->residual.count,
         .residual = equation->residual.items,
         .ideal_count = equation->ideal.count,
@@ -408,7 +411,9 @@ bool build_equation(struct elaboration *e, struct named *named, struct reference
     const struct statement *block = named->items[0];
     const size_t before = trouble_so_far(e);
     struct equation equation = {.has_range = false};
-    mark_file_used(e, block->at);
+    if (!e->is_deferring) {
+        mark_file_used(e, block->at);
+    }
     if (require_block(e, block)) {
         read_block(e, &EQUATION, arena_format(e->arena, "equation %s", named->name), block, &equation);
     }

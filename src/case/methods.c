@@ -142,6 +142,11 @@ static bool takes_acentric(enum vocabulary_word method)
            method == WORD_METHOD_SOAVE_REDLICH_KWONG || method == WORD_METHOD_LEE_KESLER;
 }
 
+static bool goes_by_reference(enum vocabulary_word method)
+{
+    return method == WORD_METHOD_REFERENCE || method == WORD_METHOD_MULTI_FLUID;
+}
+
 static const struct case_cubic_set *set_of(const struct vocabulary_row *method, const struct case_component *component)
 {
     for (size_t i = 0; i < component->cubic_set_count; i++) {
@@ -155,8 +160,11 @@ static const struct case_cubic_set *set_of(const struct vocabulary_row *method, 
 /* What a method needs of a component and does not find; NULL: nothing. */
 static const char *lack_of(const struct vocabulary_row *method, const struct case_component *component)
 {
-    if (method->id == WORD_METHOD_REFERENCE) {
+    if (goes_by_reference(method->id)) {
         return component->spec.reference == NULL ? "a published reference equation" : NULL;
+    }
+    if (method->id == WORD_METHOD_GERG_2008) {
+        return component->spec.gerg_2008 == NULL ? "its own equation" : NULL;
     }
     if (!method_is_cubic(method->id) && !takes_acentric(method->id)) {
         return NULL;
@@ -199,7 +207,7 @@ static bool check_data(struct elaboration *e, const struct choice *choice, const
         struct diagnostic *said = diagnose(e->out, CODE_E220, choice->at, "%s needs %s of '%s', and there is none",
                                            choice->method->word, lack, shortened(e, component->name));
         diagnostic_hint(e->out, said,
-                        choice->method->id == WORD_METHOD_REFERENCE
+                        goes_by_reference(choice->method->id) || choice->method->id == WORD_METHOD_GERG_2008
                             ? "name another method for this gas, as in 'methods peng-robinson' in the sheet"
                         : takes_twu(choice->method->id)
                             ? "give it in a component block, as 'parameters %s { twu L, M, N }', or name another method"
@@ -245,20 +253,43 @@ static bool add_firm_choices(struct elaboration *e, const struct choice_list *fr
     return add_choices(e, from, fluid, to) && is_good;
 }
 
-/* The reference equation where there is one for a pure gas, else Peng and Robinson's; of mixtures the form whose pair
- * parameters are predicted. */
+/* Whether every component has a reference equation and every pair published reducing parameters. */
+static bool is_published(const struct case_fluid *fluid)
+{
+    const char *multi_fluid = vocabulary_rows()[WORD_METHOD_MULTI_FLUID].word;
+    for (size_t i = 0; i < fluid->count; i++) {
+        if (fluid->components[i]->spec.reference == NULL) {
+            return false;
+        }
+        for (size_t j = 0; j < i; j++) {
+            const struct case_pair *pair = case_pair_of(fluid, fluid->components[i]->name, fluid->components[j]->name);
+            if (pair == NULL || case_reducing_of(pair, multi_fluid) == NULL) {
+                return false;
+            }
+        }
+    }
+    return true;
+}
+
+/* The reference equation where there is one for a pure gas, else Peng and Robinson's; of mixtures the reference
+ * equations together where all their pairs are published, else the form whose pair parameters are predicted. */
 static struct choice default_lead(const struct case_fluid *fluid, struct location at)
 {
     const bool has_equation = fluid->components[0]->spec.reference != NULL;
-    const enum vocabulary_word word = fluid->count > 1 ? WORD_METHOD_PENG_ROBINSON_1978
-                                      : has_equation   ? WORD_METHOD_REFERENCE
-                                                       : WORD_METHOD_PENG_ROBINSON;
+    const enum vocabulary_word word = fluid->count > 1 && is_published(fluid) ? WORD_METHOD_MULTI_FLUID
+                                      : fluid->count > 1                      ? WORD_METHOD_PENG_ROBINSON_1978
+                                      : has_equation                          ? WORD_METHOD_REFERENCE
+                                                                              : WORD_METHOD_PENG_ROBINSON;
     return (struct choice){.method = &vocabulary_rows()[word], .at = at};
 }
 
 static const char *default_reason(struct elaboration *e, const struct case_fluid *fluid, const struct choice *lead)
 {
     const char *asked = e->methods == NULL ? "no methods block" : "the methods block names no lead";
+    if (lead->method->id == WORD_METHOD_MULTI_FLUID) {
+        return arena_format(e->arena, "%s: %s leads for mixtures of which all pairs are published", asked,
+                            lead->method->word);
+    }
     if (fluid->count > 1) {
         return arena_format(e->arena,
                             "%s: %s leads for mixtures, its pair parameters predicted by groups where they can be",

@@ -38,6 +38,8 @@ struct constants_list {
 struct pair_target {
     struct case_pair pair;
     struct constants_list constants;
+    struct reducing_list reducing;
+    const char *first; /* in the block being read */
 };
 
 static struct case_pair_constants *constants_of(struct elaboration *e, struct constants_list *list, const char *method)
@@ -143,6 +145,12 @@ static void read_reacts(struct elaboration *e, const struct statement *statement
     }
 }
 
+static void read_reducing_row(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct pair_target *into = target;
+    read_reducing(e, statement, into->first, &into->reducing);
+}
+
 static const struct block_row ROWS[] = {
     READ_ONCE(WORD_METHOD_VAN_DER_WAALS, read_constants),
     READ_ONCE(WORD_METHOD_REDLICH_KWONG, read_constants),
@@ -153,6 +161,8 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_METHOD_TRANSLATED_PENG_ROBINSON, read_constants),
     READ_ONCE(WORD_METHOD_TRANSLATED_REDLICH_KWONG, read_constants),
     READ_ONCE(WORD_METHOD_QUANTUM_PENG_ROBINSON, read_constants),
+    READ_ONCE(WORD_METHOD_MULTI_FLUID, read_reducing_row),
+    READ_ONCE(WORD_METHOD_GERG_2008, read_reducing_row),
     READ_ONCE(WORD_METHOD_LEE_KESLER, read_constants),
     READ_ONCE(WORD_PAIR_REACTS, read_reacts),
 };
@@ -172,6 +182,7 @@ static void check_names(struct elaboration *e, const struct statement *statement
 static void read_pair_block(struct elaboration *e, const struct statement *block, struct pair_target *target)
 {
     check_names(e, block);
+    target->first = block->items->value->name;
     if (require_block(e, block)) {
         const char *group = arena_format(e->arena, "pair %s %s", target->pair.first, target->pair.second);
         read_block(e, &PAIR, group, block, target);
@@ -199,6 +210,8 @@ const struct case_pair *build_component_pair(struct elaboration *e, struct named
     e->is_deferring = outer;
     target->pair.constants = target->constants.items;
     target->pair.count = target->constants.count;
+    target->pair.reducing = target->reducing.items;
+    target->pair.reducing_count = target->reducing.count;
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? &target->pair : NULL;
     return named->built;
@@ -246,6 +259,10 @@ struct found {
         size_t count, capacity;
     } constants;
     struct {
+        struct reducing_pair *items;
+        size_t count, capacity;
+    } reducing;
+    struct {
         const struct case_group_pair **items;
         size_t count, capacity;
     } group_pairs;
@@ -276,6 +293,10 @@ static void find_pair(struct elaboration *e, const struct case_fluid *fluid, siz
     if (pair != NULL) {
         *ARENA_APPEND(e->arena, &found->pairs) = pair;
         add_constants(e, pair, i, j, found);
+        for (size_t k = 0; k < pair->reducing_count; k++) {
+            *ARENA_APPEND(e->arena, &found->reducing) =
+                plain_reducing(&pair->reducing[k], fluid->components[i]->name, i, j);
+        }
     }
 }
 
@@ -341,6 +362,8 @@ void find_pairs(struct elaboration *e, struct case_fluid *fluid)
     fluid->group_pair_count = found.group_pairs.count;
     fluid->spec.pairs = found.constants.items;
     fluid->spec.pair_count = found.constants.count;
+    fluid->spec.reducing_pairs = found.reducing.items;
+    fluid->spec.reducing_pair_count = found.reducing.count;
     fluid->spec.group_pairs = plain_group_pairs(e, &found);
     fluid->spec.group_pair_count = found.group_pairs.count;
 }
@@ -381,12 +404,14 @@ void use_method_data(struct elaboration *e, const struct case_fluid *fluid, cons
     const bool takes_groups = strcmp(method, vocabulary_rows()[WORD_METHOD_PENG_ROBINSON_1978].word) == 0;
     for (size_t i = 0; i < fluid->count; i++) {
         use_parameters(e, fluid->components[i], method);
+        use_own_equation(e, fluid->components[i], method);
         if (takes_groups && fluid->count > 1) {
             use_groups(e, fluid->components[i]);
         }
     }
     for (size_t i = 0; i < fluid->pair_count; i++) {
         use_constants(e, fluid->pairs[i], method);
+        use_reducing(e, fluid->pairs[i], method);
     }
     for (size_t i = 0; takes_groups && i < fluid->group_pair_count; i++) {
         use_quantity(e, &fluid->group_pairs[i]->A);

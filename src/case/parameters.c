@@ -68,7 +68,8 @@ static const struct block_form PARAMETERS = BLOCK_FORM(BLOCK_PARAMETERS, ROWS);
 
 bool method_is_cubic(enum vocabulary_word method)
 {
-    return method != WORD_METHOD_IDEAL_GAS && method != WORD_METHOD_REFERENCE && method != WORD_METHOD_LEE_KESLER;
+    return method != WORD_METHOD_IDEAL_GAS && method != WORD_METHOD_REFERENCE && method != WORD_METHOD_MULTI_FLUID &&
+           method != WORD_METHOD_GERG_2008 && method != WORD_METHOD_LEE_KESLER;
 }
 
 const struct vocabulary_row *take_cubic(struct reading *reading)

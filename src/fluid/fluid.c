@@ -47,3 +47,11 @@ enum answer fluid_pair(const struct fluid_at_t *at_t, size_t i, size_t j, struct
     }
     return fluid->ops->pair(at_t, i, j, out);
 }
+
+enum answer fluid_reducing(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out)
+{
+    if (fluid->ops->reducing == NULL || i >= fluid->count || j >= fluid->count || i == j) {
+        return ANSWER_CANNOT;
+    }
+    return fluid->ops->reducing(fluid, i, j, out);
+}

@@ -121,6 +121,16 @@ struct pair_parameter {
     double lij; /* 1 */
 };
 
+/* What a multi-fluid method has of a pair, in the order of the two asked for: see struct reducing_pair. With
+ * PAIR_FROM_NOTHING nothing is published and the method's stated estimate beta = gamma = 1 (Lorentz and Berthelot),
+ * without a departure, stands in. */
+struct reducing_parameter {
+    enum pair_origin origin;
+    double beta_T, gamma_T, beta_V, gamma_V;
+    double weight;         /* of the departure function, F_ij; 0 without one */
+    const char *departure; /* its name; NULL: none */
+};
+
 struct fluid;
 struct fluid_at_t;
 struct explanation;
@@ -162,6 +172,8 @@ struct fluid_ops {
     enum answer (*saturation_start)(const struct fluid_at_t *at_t, struct saturation_start *out);
     /* The interaction of components i and j. NULL: the method has no such parameters. */
     enum answer (*pair)(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
+    /* The reducing parameters of components i and j. NULL: not a multi-fluid method. */
+    enum answer (*reducing)(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out);
     /* Pure fluids only: the numbers behind the pressure of one phase (fluid/explanation.h). NULL: not explained. */
     enum answer (*explain)(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
                            struct explanation *out);
@@ -200,5 +212,8 @@ enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, doub
 
 /* The interaction used for two different components of a mixture; ANSWER_CANNOT where the method has none. */
 enum answer fluid_pair(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
+
+/* The reducing parameters used for two different components of a mixture; ANSWER_CANNOT where the method has none. */
+enum answer fluid_reducing(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out);
 
 #endif

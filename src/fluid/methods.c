@@ -16,6 +16,8 @@ static const struct fluid_ops *const METHODS[] = {
     &translated_redlich_kwong_ops,
     &quantum_peng_robinson_ops,
     &reference_ops,
+    &multi_fluid_ops,
+    &gerg_2008_ops,
     &lee_kesler_ops,
     NULL,
 };

@@ -15,6 +15,8 @@ extern const struct fluid_ops translated_peng_robinson_ops;
 extern const struct fluid_ops translated_redlich_kwong_ops;
 extern const struct fluid_ops quantum_peng_robinson_ops;
 extern const struct fluid_ops reference_ops;
+extern const struct fluid_ops multi_fluid_ops;
+extern const struct fluid_ops gerg_2008_ops;
 extern const struct fluid_ops lee_kesler_ops;
 
 #endif

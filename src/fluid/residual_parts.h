@@ -90,9 +90,8 @@ static inline struct envelope_value residual_envelope_at(const struct residual_e
     case ENVELOPE_GAUSSIAN: {
         const double x = delta - envelope->epsilon;
         const double first = -(2.0 * envelope->strength * x + envelope->slope) * delta;
-        return (struct envelope_value){
-            exp(-envelope->strength * x * x - envelope->slope * (delta - envelope->gamma)), first,
-            first * first - 2.0 * envelope->strength * delta * delta};
+        return (struct envelope_value){exp(-envelope->strength * x * x - envelope->slope * (delta - envelope->gamma)),
+                                       first, first * first - 2.0 * envelope->strength * delta * delta};
     }
     case ENVELOPE_NONE:
         break;

@@ -80,7 +80,7 @@ static const struct fluid_spec *library_mixture(const char *method, const char *
     struct diagnostics diagnostics = {.arena = arena};
     text_format(&root, "use \"gases\"\nmethods { lead %s }\nmixture measured by mole {\n", method);
     for (size_t i = 0; i + 1 < count; i++) {
-        text_format(&root, "  %s 10 %%\n", names[i]);
+        text_format(&root, "  %s 1 %%\n", names[i]);
     }
     text_format(&root, "  %s rest\n}\n", names[count - 1]);
     const struct deck_reader reader = {read_root_or_library, root.bytes, "decks/library"};
