@@ -20,7 +20,9 @@ WARNINGS := -Wall -Wextra -Wpedantic -Wshadow -Wconversion -Wdouble-promotion -W
             -Wmissing-prototypes -Wswitch-enum -Wformat=2 -Wvla -Wundef -Werror
 OPTIMISE ?= -O2
 # No contraction into fused operations and no fast maths: two builds print the same digits.
-CFLAGS   += -std=c17 $(OPTIMISE) -g -ffp-contract=off $(WARNINGS) $(EXTRA_CFLAGS)
+# Threads by OpenMP where it comes with the compiler; elsewhere its pragmas are passed over, and answers are the same.
+THREADS  := $(if $(findstring clang,$(CC)),-Wno-unknown-pragmas,-fopenmp)
+CFLAGS   += -std=c17 $(OPTIMISE) -g -ffp-contract=off $(WARNINGS) $(THREADS) $(EXTRA_CFLAGS)
 CPPFLAGS += -Isrc -Itests -I. -I$(BUILD)/generated -DTAREWRIGHT_VERSION='"$(VERSION)"' -MMD -MP
 LDLIBS   := -lgsl -lgslcblas -ljansson -lnettle -lm
 LDFLAGS  += $(EXTRA_CFLAGS)

@@ -1,13 +1,18 @@
 /* The command line: words and options in, a run out, its texts to the standard streams, its status to the caller. */
+#define _POSIX_C_SOURCE 200809L
 #include "base/codes.h"
 #include "run/help.h"
 #include "run/library.h"
 #include "run/run.h"
 
 #include <setjmp.h>
+#include <signal.h>
 #include <stdio.h>
 #include <stdlib.h>
 #include <string.h>
+#include <sys/stat.h>
+#include <time.h>
+#include <unistd.h>
 
 static const char usage[] =
     "tarewright DECK                answer the deck's sheets; the listing goes to standard output\n"
@@ -116,6 +121,77 @@ static enum run_status read_command(int count, char *const arguments[], struct c
     return RUN_MET;
 }
 
+/* ---- somebody waits ---------------------------------------------------------------------------------------------- */
+
+#define SECONDS_BEFORE_TELLING 1.0
+#define SECONDS_BETWEEN        0.1
+enum { LINE_BYTES = 79 };
+
+/* One line on a terminal, written over and over, and gone at the end. */
+struct waiting {
+    struct timespec begun, told;
+    bool is_shown;
+};
+
+static double seconds_since(struct timespec then, struct timespec now)
+{
+    return (double)(now.tv_sec - then.tv_sec) + 1e-9 * (double)(now.tv_nsec - then.tv_nsec);
+}
+
+static void tell_progress(void *context, const struct progress_state *state)
+{
+    struct waiting *waiting = context;
+    char line[LINE_BYTES + 1];
+    struct timespec now;
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    if (seconds_since(waiting->begun, now) < SECONDS_BEFORE_TELLING ||
+        (waiting->is_shown && seconds_since(waiting->told, now) < SECONDS_BETWEEN)) {
+        return;
+    }
+    const int length =
+        snprintf(line, sizeof line, "sheet %zu of %zu, %s", state->sheet, state->sheet_count, state->kind);
+    if (state->count > 0 && length > 0 && length < LINE_BYTES) {
+        snprintf(line + length, sizeof line - (size_t)length, ": %zu of %zu states", state->done, state->count);
+    }
+    fprintf(stderr, "\r%-*s", LINE_BYTES, line);
+    waiting->told = now;
+    waiting->is_shown = true;
+}
+
+static void clear_progress(const struct waiting *waiting)
+{
+    if (waiting->is_shown) {
+        fprintf(stderr, "\r%-*s\r", LINE_BYTES, "");
+    }
+}
+
+/* ---- interrupts -------------------------------------------------------------------------------------------------- */
+
+/* An interrupt ends the run while it has written nothing. Once files are being written it waits until they are whole,
+ * and the standard output too where that is a file; at a pipe or a terminal nobody is to be kept waiting. */
+static void hold_interrupts(sigset_t *before)
+{
+    sigset_t held;
+    sigemptyset(&held);
+    sigaddset(&held, SIGHUP);
+    sigaddset(&held, SIGINT);
+    sigaddset(&held, SIGTERM);
+    sigprocmask(SIG_BLOCK, &held, before);
+}
+
+static void heed_interrupts(const sigset_t *before)
+{
+    sigprocmask(SIG_SETMASK, before, NULL);
+}
+
+static bool output_is_file(void)
+{
+    struct stat about;
+    return fstat(STDOUT_FILENO, &about) == 0 && S_ISREG(about.st_mode);
+}
+
+/* ---- runs -------------------------------------------------------------------------------------------------------- */
+
 /* Standard output may be a full disk or a closed pipe; a listing that did not arrive is a failure. */
 static enum run_status print(const struct text *text)
 {
@@ -134,11 +210,17 @@ static enum run_status finish(struct run *run, bool prints_output)
     if (!run) {
         return complain(CODE_E414, "memory ran out", NULL, NULL);
     }
+    sigset_t before;
+    hold_interrupts(&before);
     run_write(run);
     enum run_status status = run->status;
+    if (!output_is_file()) {
+        heed_interrupts(&before);
+    }
     if (prints_output) {
         status = run_worse(status, print(&run->output));
     }
+    heed_interrupts(&before);
     if (run->diagnostics.length != 0) {
         fwrite(run->diagnostics.bytes, 1, run->diagnostics.length, stderr);
     } else if (run->status == RUN_NO_FILE) {
@@ -155,6 +237,9 @@ static enum run_status run_on_deck(const struct command *command, enum run_mode 
     if (!answers && (command->json || command->listing || command->out)) {
         return complain(CODE_E415, "--json, --listing and --out go with run only", NULL, NULL);
     }
+    struct waiting waiting = {.is_shown = false};
+    const struct progress progress = {tell_progress, &waiting};
+    clock_gettime(CLOCK_MONOTONIC, &waiting.begun);
     const struct run_request request = {
         .mode = mode,
         .deck_path = deck,
@@ -163,8 +248,11 @@ static enum run_status run_on_deck(const struct command *command, enum run_mode 
         .json_path = command->json,
         .listing_path = command->listing,
         .out_folder = command->out,
+        .progress = isatty(STDERR_FILENO) ? &progress : NULL,
     };
-    return finish(run_deck(&request, NULL), !answers || !command->listing);
+    struct run *const run = run_deck(&request, NULL);
+    clear_progress(&waiting);
+    return finish(run, !answers || !command->listing);
 }
 
 static enum run_status show(const struct command *command, const struct deck_reader *reader)

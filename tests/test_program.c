@@ -1,12 +1,13 @@
 /* The built program, as a user meets it: its verbs, its streams, its exit statuses, and 200 broken decks.
  *
  * TAREWRIGHT names the program; make sets it. Every run has a limit on its processor time as a safety net. */
-#define _POSIX_C_SOURCE 200809L
+#define _XOPEN_SOURCE 700
 #define _DEFAULT_SOURCE
 #include "base/file.h"
 #include "base/text.h"
 #include "support/check.h"
 
+#include <dirent.h>
 #include <fcntl.h>
 #include <signal.h>
 #include <stdio.h>
@@ -14,6 +15,7 @@
 #include <string.h>
 #include <sys/resource.h>
 #include <sys/wait.h>
+#include <time.h>
 #include <unistd.h>
 
 enum { PATH_BYTES = 512, ARGUMENTS_MOST = 12, SECONDS_MOST = 60 };
@@ -202,6 +204,185 @@ static void what_is_known_of_a_gas_is_shown_with_sources(void **state)
     RUN(scene, "show", "gas", "carbon-dioxid");
     assert_int_equal(scene->status, 2);
     assert_non_null(strstr(scene->messages, "carbon-dioxide"));
+}
+
+/* ---- long runs --------------------------------------------------------------------------------------------------- */
+
+/* Enough states for threads, and `sheets` files to write; the more steps, the longer it takes. */
+static const char *write_long_deck(struct scene *scene, size_t sheets, size_t steps)
+{
+    struct text deck = {.arena = scene->arena};
+    text_format(&deck, "use \"gases\"\n"
+                       "mixture blend by mole { methane 80 %%; propane 5 %%; carbon-dioxide 3 %%; nitrogen rest }\n"
+                       "vessel fifty { water-capacity 50 L; test-pressure 300 barg }\n"
+                       "methods { lead peng-robinson-1978; beside soave-redlich-kwong }\n"
+                       "charge lot { fluid blend; vessel fifty; fill 100 barg at 15 degC }\n");
+    for (size_t i = 0; i < sheets; i++) {
+        text_format(&deck,
+                    "sheet settled-pressure { charge lot; sweep temperature from -60 degC to 65 degC in %zu steps\n"
+                    "  table \"table-%zu.csv\" }\n",
+                    steps, i);
+    }
+    const char *path = path_in(scene, "long.deck");
+    assert_true(file_write(scene->arena, path, deck.bytes, deck.length));
+    return path;
+}
+
+static void any_number_of_threads_gives_the_same_bytes(void **state)
+{
+    static const char *const threads[] = {"1", "2", "3"};
+    struct scene *scene = *state;
+    const char *deck = write_long_deck(scene, 1, 800), *json = path_in(scene, "a.json");
+    const char *table = path_in(scene, "table-0.csv");
+    const char *listings[3], *trees[3], *tables[3];
+    for (size_t i = 0; i < 3; i++) {
+        setenv("OMP_NUM_THREADS", threads[i], 1);
+        RUN(scene, deck, "--json", json, "--out", scene->folder);
+        assert_int_equal(scene->status, 0);
+        listings[i] = scene->output;
+        trees[i] = read_text(scene, json);
+        tables[i] = read_text(scene, table);
+    }
+    unsetenv("OMP_NUM_THREADS");
+    for (size_t i = 1; i < 3; i++) {
+        assert_string_equal(listings[i], listings[0]);
+        assert_string_equal(trees[i], trees[0]);
+        assert_string_equal(tables[i], tables[0]);
+    }
+    unlink(deck);
+    unlink(json);
+    unlink(table);
+}
+
+static double now_in_seconds(void)
+{
+    struct timespec now;
+    clock_gettime(CLOCK_MONOTONIC, &now);
+    return (double)now.tv_sec + 1e-9 * (double)now.tv_nsec;
+}
+
+static void wait_seconds(double seconds)
+{
+    const struct timespec span = {(time_t)seconds, (long)(1e9 * (seconds - (double)(time_t)seconds))};
+    nanosleep(&span, NULL);
+}
+
+/* Starts the program on a deck and sends it a signal after so many seconds; not started over when that comes late. */
+static void run_interrupted(struct scene *scene, const char *deck, int signal, double seconds)
+{
+    char *arguments[] = {(char *)(size_t)program(), (char *)(size_t)deck, (char *)(size_t) "--out", scene->folder,
+                         NULL};
+    assert_true(file_write(scene->arena, scene->out, "", 0));
+    const pid_t child = fork();
+    assert_true(child >= 0);
+    if (child == 0) {
+        become_program(scene, arguments);
+    }
+    int status = 0;
+    wait_seconds(seconds);
+    kill(child, signal);
+    assert_int_equal(waitpid(child, &status, 0), child);
+    scene->status = WIFEXITED(status) ? WEXITSTATUS(status) : -1;
+    scene->signal = WIFSIGNALED(status) ? WTERMSIG(status) : 0;
+}
+
+/* Removes what a run wrote; how many files there were. Nothing but whole tables may be there. */
+static size_t take_away_tables(struct scene *scene, size_t length)
+{
+    size_t count = 0;
+    DIR *folder = opendir(scene->folder);
+    assert_non_null(folder);
+    for (struct dirent *entry = readdir(folder); entry; entry = readdir(folder)) {
+        const size_t name_length = strlen(entry->d_name);
+        if (strncmp(entry->d_name, "table-", 6) != 0) {
+            continue;
+        }
+        const char *path = path_in(scene, entry->d_name);
+        assert_string_equal(entry->d_name + name_length - 4, ".csv");
+        assert_int_equal(strlen(read_text(scene, path)), length);
+        unlink(path);
+        count++;
+    }
+    closedir(folder);
+    return count;
+}
+
+/* Interrupted at any time, a run leaves all of its files or none, the listing on standard output among them. */
+static void an_interrupt_leaves_no_partial_file(void **state)
+{
+    enum { TABLES = 8, MOMENTS = 24 };
+    static const int signals[] = {SIGINT, SIGTERM};
+    struct scene *scene = *state;
+    const char *deck = write_long_deck(scene, TABLES, 60);
+    const double begun = now_in_seconds();
+    RUN(scene, deck, "--out", scene->folder);
+    const double taken = now_in_seconds() - begun;
+    assert_int_equal(scene->status, 0);
+    const size_t listing_length = strlen(scene->output),
+                 length = strlen(read_text(scene, path_in(scene, "table-0.csv")));
+    assert_int_equal(take_away_tables(scene, length), TABLES);
+    for (size_t i = 0; i < MOMENTS; i++) {
+        run_interrupted(scene, deck, signals[i % 2], taken * (double)i / (MOMENTS - 4));
+        const size_t tables = take_away_tables(scene, length);
+        const size_t listed = strlen(read_text(scene, scene->out));
+        assert_true(scene->status == 0 || scene->signal == signals[i % 2]);
+        assert_true((tables == 0 && listed == 0) || (tables == TABLES && listed == listing_length));
+    }
+    unlink(deck);
+}
+
+/* What the program says to a terminal as its standard error, until it ends. */
+static struct text run_at_terminal(struct scene *scene, const char *deck)
+{
+    struct text said = {.arena = scene->arena};
+    char *arguments[] = {(char *)(size_t)program(), (char *)(size_t)deck, (char *)(size_t) "--out", scene->folder,
+                         NULL};
+    const int terminal = posix_openpt(O_RDWR | O_NOCTTY);
+    assert_true(terminal >= 0 && grantpt(terminal) == 0 && unlockpt(terminal) == 0);
+    const int far_end = open(ptsname(terminal), O_RDWR | O_NOCTTY);
+    assert_true(far_end >= 0);
+    const pid_t child = fork();
+    assert_true(child >= 0);
+    if (child == 0) {
+        const int out = open(scene->out, O_WRONLY | O_CREAT | O_TRUNC, 0600);
+        if (out >= 0 && dup2(out, STDOUT_FILENO) >= 0 && dup2(far_end, STDERR_FILENO) >= 0) {
+            execv(arguments[0], arguments);
+        }
+        _exit(127);
+    }
+    close(far_end);
+    char bytes[512];
+    for (ssize_t got = read(terminal, bytes, sizeof bytes); got > 0; got = read(terminal, bytes, sizeof bytes)) {
+        text_add(&said, bytes, (size_t)got);
+    }
+    int status = 0;
+    assert_int_equal(waitpid(child, &status, 0), child);
+    assert_true(WIFEXITED(status) && WEXITSTATUS(status) == 0);
+    close(terminal);
+    return said;
+}
+
+/* The deck grows until it takes longer than a second, whatever the machine. */
+static void a_long_run_tells_a_terminal_how_far_it_is(void **state)
+{
+    struct scene *scene = *state;
+    struct text said = run_at_terminal(scene, write_long_deck(scene, 1, 20));
+    assert_int_equal(said.length, 0);
+    const char *deck = NULL;
+    for (size_t sheets = 2; said.length == 0 && sheets <= 64; sheets *= 2) {
+        deck = write_long_deck(scene, sheets, 3000);
+        said = run_at_terminal(scene, deck);
+    }
+    const char *line = said.length == 0 ? NULL : strstr(said.bytes, "\rsheet ");
+    assert_non_null(line);
+    assert_non_null(strstr(line, "settled-pressure"));
+    assert_int_equal(said.bytes[said.length - 1], '\r');
+    RUN(scene, deck, "--out", scene->folder);
+    assert_string_equal(scene->messages, "");
+    for (size_t i = 0; i < 64; i++) {
+        unlink(path_in(scene, arena_format(scene->arena, "table-%zu.csv", i)));
+    }
+    unlink(deck);
 }
 
 /* ---- 200 broken decks ------------------------------------------------------------------------------------------ */
@@ -465,6 +646,9 @@ int main(void)
         cmocka_unit_test_setup_teardown(a_listing_that_cannot_be_delivered_is_status_four, begin, end),
         cmocka_unit_test_setup_teardown(results_go_where_the_command_line_says, begin, end),
         cmocka_unit_test_setup_teardown(what_is_known_of_a_gas_is_shown_with_sources, begin, end),
+        cmocka_unit_test_setup_teardown(any_number_of_threads_gives_the_same_bytes, begin, end),
+        cmocka_unit_test_setup_teardown(an_interrupt_leaves_no_partial_file, begin, end),
+        cmocka_unit_test_setup_teardown(a_long_run_tells_a_terminal_how_far_it_is, begin, end),
         cmocka_unit_test_setup_teardown(broken_decks_are_refused_with_a_place, begin, end),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

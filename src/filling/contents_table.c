@@ -109,23 +109,29 @@ static void fill_row(const struct sheet_run *run, struct cell *row, const struct
     }
 }
 
-enum answer contents_table_row(const struct sheet_run *run, struct table *table, struct method_run *method, double mass,
-                               double temperature)
+void contents_table_put(const struct sheet_run *run, struct table *table, const struct method_run *method,
+                        double temperature, enum answer answer, const struct contents *contents)
 {
     struct cell *row = table_add_row(run->result, table);
     cell_set(&row[COLUMN_TEMPERATURE], temperature);
     warn_below_triple(run, temperature);
-    struct contents contents;
-    const enum answer answer = contents_at(run, method, mass, temperature, &contents);
     if (answer != ANSWER_OK) {
         cell_set_text(&row[COLUMN_STATE], "no answer");
         result_warn(run->result, CODE_W303, location_line(run->sheet->at), run->number,
                     "%s, %s: no answer for the contents at %s", run->sheet->fluid->name, method->name,
                     temperature_words(run, temperature));
-        return answer;
+        return;
     }
-    fill_row(run, row, &contents, warn_outside_range(run, method, temperature, contents.pressure));
-    return ANSWER_OK;
+    fill_row(run, row, contents, warn_outside_range(run, method, temperature, contents->pressure));
+}
+
+enum answer contents_table_row(const struct sheet_run *run, struct table *table, struct method_run *method, double mass,
+                               double temperature)
+{
+    struct contents contents;
+    const enum answer answer = contents_at(run, method, mass, temperature, &contents);
+    contents_table_put(run, table, method, temperature, answer, &contents);
+    return answer;
 }
 
 static int by_value(const void *left, const void *right)

@@ -19,6 +19,10 @@ struct table *contents_table_begin(const struct sheet_run *run, const char *titl
 enum answer contents_table_row(const struct sheet_run *run, struct table *table, struct method_run *method, double mass,
                                double temperature);
 
+/* The same row for contents found before; `contents` counts for ANSWER_OK only. */
+void contents_table_put(const struct sheet_run *run, struct table *table, const struct method_run *method,
+                        double temperature, enum answer answer, const struct contents *contents);
+
 /* Several temperatures (K), sorted upwards and without repetition; `count` of them are written back. */
 size_t sorted_temperatures(double temperatures[], size_t count);
 

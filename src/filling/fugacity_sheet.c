@@ -3,6 +3,7 @@
 #include "filling/hand_check.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
+#include "filling/sweep.h"
 
 #include <math.h>
 
@@ -128,36 +129,60 @@ static double molar_density_of(const struct sheet_run *run, double swept)
     return run->sheet->densities.is_mass_density ? swept / run->sheet->fluid->molar_mass : swept;
 }
 
-static struct spot solve_spot(const struct sheet_run *run, struct method_run *method, double temperature,
-                              double second)
+/* The states of a sheet as they are solved, temperature by temperature. */
+struct states {
+    const struct sheet_run *run;
+    struct method_run **methods; /* those that serve */
+    struct spot **spots;         /* by each of them */
+};
+
+static void solve_spot(const void *context, struct method_run *method, size_t index, void *answer)
 {
-    struct spot spot = {.temperature = temperature, .is_inside = true};
-    spot.answer = fluid_set_t(method->at_t, method->fluid, temperature);
-    if (spot.answer != ANSWER_OK) {
-        return spot;
+    const struct sheet_run *run = ((const struct states *)context)->run;
+    const struct case_sweep *second = second_sweep(run);
+    struct spot *spot = answer;
+    *spot = (struct spot){.temperature = run->sheet->temperatures.values[index / second->count], .is_inside = true};
+    spot->answer = fluid_set_t(method->at_t, method->fluid, spot->temperature);
+    if (spot->answer != ANSWER_OK) {
+        return;
     }
     if (by_density(run)) {
-        solve_at_density(method, molar_density_of(run, second), &spot);
+        solve_at_density(method, molar_density_of(run, second->values[index % second->count]), spot);
     } else {
-        solve_at_pressure(method, second, &spot);
+        solve_at_pressure(method, second->values[index % second->count], spot);
     }
-    if (spot.answer == ANSWER_OK) {
-        spot.is_inside = warn_outside_range(run, method, temperature, spot.pressure);
-    }
-    return spot;
 }
 
-/* All states, temperature by temperature. */
-static struct spot *solve_spots(const struct sheet_run *run, struct method_run *method)
+static void keep_spot(void *teller, size_t method, size_t index, const void *answer)
 {
-    const struct case_sweep *temperatures = &run->sheet->temperatures, *second = second_sweep(run);
-    struct spot *spots = arena_alloc(run->arena, temperatures->count * second->count, sizeof *spots);
-    for (size_t i = 0; i < temperatures->count; i++) {
-        for (size_t k = 0; k < second->count; k++) {
-            spots[i * second->count + k] = solve_spot(run, method, temperatures->values[i], second->values[k]);
-        }
+    const struct states *states = teller;
+    struct spot *spot = &states->spots[method][index];
+    *spot = *(const struct spot *)answer;
+    if (spot->answer == ANSWER_OK) {
+        spot->is_inside = warn_outside_range(states->run, states->methods[method], spot->temperature, spot->pressure);
     }
-    return spots;
+}
+
+static void solve_spots(struct states *states, size_t method_count)
+{
+    const struct sheet_run *run = states->run;
+    const size_t count = run->sheet->temperatures.count * second_sweep(run)->count;
+    states->spots = arena_alloc(run->arena, method_count, sizeof *states->spots);
+    for (size_t m = 0; m < method_count; m++) {
+        states->spots[m] = arena_alloc(run->arena, count, sizeof **states->spots);
+    }
+    const struct sweep sweep = {
+        .run = run,
+        .point_count = count,
+        .method_count = method_count,
+        .methods = states->methods,
+        .answer_size = sizeof(struct spot),
+        .context = states,
+        .solve = solve_spot,
+        .tell = keep_spot,
+        .teller = states,
+    };
+    sweep_points(&sweep);
 }
 
 /* ---- the table ------------------------------------------------------------------------------------------------- */
@@ -268,10 +293,9 @@ static void work_one_state(const struct sheet_run *run, struct method_run *metho
     const size_t count = run->sheet->temperatures.count * second_sweep(run)->count;
     for (size_t i = 0; i < count; i++) {
         if (is_one_phase(&spots[i])) {
-            const char *title =
-                arena_format(run->arena, "state at %s and %s, %s",
-                             shown_text(run, look_temperature(run), spots[i].temperature),
-                             shown_text(run, look_pressure(run), spots[i].pressure), method->name);
+            const char *title = arena_format(run->arena, "state at %s and %s, %s",
+                                             shown_text(run, look_temperature(run), spots[i].temperature),
+                                             shown_text(run, look_pressure(run), spots[i].pressure), method->name);
             struct hand_check *check = sheet_add_hand_check(run->result, run->out, title);
             hand_check_pressure(run, check, method, spots[i].temperature, spots[i].molar_volume, spots[i].state, true);
             return;
@@ -287,18 +311,14 @@ void answer_fugacity(struct sheet_run *run)
         answer_mixture_fugacity(run);
         return;
     }
-    const struct spot *lead = NULL;
-    for (size_t i = 0; i < run->method_count; i++) {
-        struct method_run *method = &run->methods[i];
-        if (method->fluid == NULL) {
-            run->result->is_undecided |= i == 0;
-            continue;
-        }
-        const struct spot *spots = solve_spots(run, method);
-        add_state_table(run, method, spots, lead);
-        if (lead == NULL) {
-            lead = spots;
-            work_one_state(run, method, spots);
+    size_t count;
+    struct states states = {.run = run, .methods = methods_that_serve(run, &count)};
+    run->result->is_undecided |= run->methods[0].fluid == NULL;
+    solve_spots(&states, count);
+    for (size_t m = 0; m < count; m++) {
+        add_state_table(run, states.methods[m], states.spots[m], m == 0 ? NULL : states.spots[0]);
+        if (m == 0) {
+            work_one_state(run, states.methods[m], states.spots[m]);
         }
     }
 }

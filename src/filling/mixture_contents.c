@@ -1,5 +1,6 @@
 #include "filling/mixture_internal.h"
 
+#include "equilibrium/boundary.h"
 #include "equilibrium/mixture_vessel.h"
 
 #include <math.h>
@@ -23,6 +24,20 @@ static struct method_run create_alone(const struct case_fluid *fluid, size_t i, 
     return method_run_create(alone, method, false, arena);
 }
 
+/* What every thread needs for itself. */
+static void create_own_memory(struct mixture_work *work, size_t kept_count, struct arena *arena)
+{
+    work->ws = equilibrium_workspace_create(work->count, arena);
+    work->split = split_create(work->count, arena);
+    work->vessel = mixture_vessel_create(work->count, arena);
+    work->phase = phase_create(work->count, arena);
+    work->kept_count = kept_count;
+    work->kept = arena_alloc(arena, kept_count, sizeof *work->kept);
+    for (size_t i = 0; i < MOST_EDGES; i++) {
+        work->list.items[i].other = arena_alloc(arena, work->count, sizeof(double));
+    }
+}
+
 struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const char *method, struct arena *arena)
 {
     struct mixture_work *work = arena_alloc(arena, 1, sizeof *work);
@@ -35,18 +50,60 @@ struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const c
     *work = (struct mixture_work){
         .count = fluid->count,
         .molar_masses = molar_masses,
-        .ws = equilibrium_workspace_create(fluid->count, arena),
-        .split = split_create(fluid->count, arena),
-        .vessel = mixture_vessel_create(fluid->count, arena),
-        .phase = phase_create(fluid->count, arena),
-        .kept = arena_alloc(arena, KEPT_TEMPERATURES, sizeof(struct kept_edges)),
         .alone = alone,
         .arena = arena,
     };
-    for (size_t i = 0; i < MOST_EDGES; i++) {
-        work->list.items[i].other = arena_alloc(arena, fluid->count, sizeof(double));
-    }
+    create_own_memory(work, KEPT_TEMPERATURES, arena);
     return work;
+}
+
+/* ---- threads ----------------------------------------------------------------------------------------------------- */
+
+struct mixture_work *mixture_work_for_thread(const struct mixture_work *work, struct arena *arena)
+{
+    struct mixture_work *own = arena_alloc(arena, 1, sizeof *own);
+    *own = (struct mixture_work){.count = work->count, .molar_masses = work->molar_masses, .is_traced = true};
+    create_own_memory(own, KEPT_BY_THREADS, arena);
+    own->points = work->points == NULL ? NULL : boundary_list_create(work->count, arena);
+    return own;
+}
+
+static void forget(struct mixture_work *work)
+{
+    work->has_vessel = false;
+    work->list_temperature = 0.0;
+    for (size_t i = 0; i < work->kept_count; i++) {
+        work->kept[i].temperature = 0.0;
+    }
+}
+
+struct method_run method_run_for_thread(const struct method_run *method, struct arena *arena)
+{
+    struct method_run own = *method;
+    own.at_t = fluid_at_t_create(method->fluid, arena);
+    own.mixture = method->mixture == NULL ? NULL : mixture_work_for_thread(method->mixture, arena);
+    return own;
+}
+
+void method_run_begin_again(struct method_run *own, const struct method_run *method)
+{
+    if (own->mixture != NULL) {
+        forget(own->mixture);
+        own->mixture->envelope = method->mixture->envelope;
+        own->mixture->is_incomplete = method->mixture->is_incomplete;
+    }
+}
+
+bool method_run_gave_up_envelope(const struct method_run *own, const struct method_run *method)
+{
+    return own->mixture != NULL && own->mixture->is_incomplete && !method->mixture->is_incomplete;
+}
+
+void method_run_trace_envelope(struct method_run *method)
+{
+    if (method->mixture != NULL) {
+        mixture_envelope(method);
+    }
 }
 
 struct method_run *mixture_alone(struct method_run *method, size_t i)

@@ -10,6 +10,9 @@
 /* Memory for one method's answers on one mixture. */
 struct mixture_work *mixture_work_create(const struct case_fluid *fluid, const char *method, struct arena *arena);
 
+/* Memory of a thread's own for the same answers; components by themselves are not among them. */
+struct mixture_work *mixture_work_for_thread(const struct mixture_work *work, struct arena *arena);
+
 /* The same method for component i by itself; its `fluid` is NULL where it lacks data. */
 struct method_run *mixture_alone(struct method_run *method, size_t i);
 
@@ -24,6 +27,9 @@ enum answer mixture_split_at_volume(struct method_run *method, double molar_volu
  * where the method has none, or what was traced is not the whole. */
 struct envelope;
 const struct envelope *mixture_envelope(struct method_run *method);
+
+/* From now on the method has no envelope: one that was traced is not the whole boundary. */
+void mixture_give_up_envelope(struct method_run *method);
 
 /* Whether an envelope was traced and given up. */
 bool mixture_envelope_is_incomplete(struct method_run *method);

@@ -225,12 +225,13 @@ static bool is_whole(struct method_run *method)
 
 /* ---- the envelope ------------------------------------------------------------------------------------------------ */
 
-static void give_up_envelope(struct mixture_work *work)
+void mixture_give_up_envelope(struct method_run *method)
 {
+    struct mixture_work *work = method->mixture;
     work->envelope = NULL;
     work->is_incomplete = true;
     work->list_temperature = 0.0;
-    for (size_t i = 0; i < KEPT_TEMPERATURES; i++) {
+    for (size_t i = 0; i < work->kept_count; i++) {
         work->kept[i].temperature = 0.0;
     }
 }
@@ -247,7 +248,7 @@ const struct envelope *mixture_envelope(struct method_run *method)
     if (envelope_trace(method->at_t, method->fluid, method->z, work->ws, envelope) == ANSWER_OK) {
         work->envelope = envelope;
         if (!is_whole(method)) {
-            give_up_envelope(work);
+            mixture_give_up_envelope(method);
         }
     }
     return work->envelope;
@@ -476,7 +477,7 @@ static enum answer lowest_and_highest(struct method_run *method, struct phase_ed
 
 static struct kept_edges *kept_at(const struct mixture_work *work, double temperature)
 {
-    return &work->kept[(size_t)(temperature * 1e3) % KEPT_TEMPERATURES];
+    return &work->kept[(size_t)(temperature * 1e3) % work->kept_count];
 }
 
 enum answer mixture_edges(struct method_run *method, struct phase_edges *out)
@@ -495,7 +496,7 @@ void mixture_distrust_edges(struct method_run *method)
 {
     struct mixture_work *work = method->mixture;
     if (work->envelope != NULL && is_above_envelope(work, method->at_t->temperature)) {
-        give_up_envelope(work);
+        mixture_give_up_envelope(method);
         return;
     }
     work->list_answer = scan_edges(method, &work->list);

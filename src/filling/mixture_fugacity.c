@@ -4,8 +4,10 @@
 #include "filling/hand_check.h"
 #include "filling/mixture_contents.h"
 #include "filling/mixture_sheets.h"
+#include "filling/sweep.h"
 
 #include <math.h>
+#include <string.h>
 
 enum { DIGITS = 6 };
 
@@ -173,15 +175,24 @@ static void add_no_answer(const struct sweeping *at, double temperature, const c
     }
 }
 
-static enum answer solve_state(const struct sweeping *at, double temperature, double second, const struct split **split)
+static const struct case_sweep *second_sweep(const struct sheet_run *run)
 {
-    const struct case_sweep *densities = &at->run->sheet->densities;
-    const enum answer answer = fluid_set_t(at->method->at_t, at->method->fluid, temperature);
-    if (answer != ANSWER_OK || !densities->given) {
-        return answer != ANSWER_OK ? answer : mixture_split(at->method, second, split);
+    return run->sheet->densities.given ? &run->sheet->densities : &run->sheet->pressures;
+}
+
+/* Point `index` of the sweep, temperature by temperature. */
+static enum answer solve_state(const struct sheet_run *run, struct method_run *method, size_t index,
+                               const struct split **split)
+{
+    const struct case_sweep *sweep = second_sweep(run);
+    const double temperature = run->sheet->temperatures.values[index / sweep->count];
+    const double second = sweep->values[index % sweep->count];
+    const enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (answer != ANSWER_OK || !run->sheet->densities.given) {
+        return answer != ANSWER_OK ? answer : mixture_split(method, second, split);
     }
-    const double molar_density = densities->is_mass_density ? second / at->method->molar_mass : second;
-    return mixture_split_at_volume(at->method, 1.0 / molar_density, split);
+    const double molar_density = sweep->is_mass_density ? second / method->molar_mass : second;
+    return mixture_split_at_volume(method, 1.0 / molar_density, split);
 }
 
 static const char *second_words(const struct sheet_run *run, double second)
@@ -208,11 +219,41 @@ static void work_by_hand(const struct sweeping *at, const struct split *split)
     }
 }
 
-static void add_state(const struct sweeping *at, double temperature, double second)
+/* ---- the sweep --------------------------------------------------------------------------------------------------- */
+
+/* A state with the memory for its phases' arrays. */
+struct swept_split {
+    enum answer answer;
+    struct split split;
+    double arrays[]; /* [MOST_PHASES * 2 * components]: x and ln phi of each phase */
+};
+
+static void solve_swept(const void *context, struct method_run *method, size_t index, void *out)
 {
+    const size_t components = method->fluid->count;
+    struct swept_split *state = out;
     const struct split *split;
-    if (solve_state(at, temperature, second, &split) != ANSWER_OK) {
-        add_no_answer(at, temperature, second_words(at->run, second));
+    state->answer = solve_state(context, method, index, &split);
+    if (state->answer != ANSWER_OK) {
+        return;
+    }
+    state->split = *split;
+    for (size_t k = 0; k < split->phase_count; k++) {
+        double *arrays = &state->arrays[2 * k * components];
+        state->split.phase[k].x = memcpy(arrays, split->phase[k].x, components * sizeof *arrays);
+        state->split.phase[k].ln_phi = memcpy(arrays + components, split->phase[k].ln_phi, components * sizeof *arrays);
+    }
+}
+
+static void tell_swept(void *teller, size_t method, size_t index, const void *answer)
+{
+    const struct sweeping *at = &((const struct sweeping *)teller)[method];
+    const struct swept_split *state = answer;
+    const struct split *split = &state->split;
+    const struct case_sweep *second = second_sweep(at->run);
+    const double temperature = at->run->sheet->temperatures.values[index / second->count];
+    if (state->answer != ANSWER_OK) {
+        add_no_answer(at, temperature, second_words(at->run, second->values[index % second->count]));
         return;
     }
     const bool is_inside = warn_outside_range(at->run, at->method, temperature, split->pressure);
@@ -225,38 +266,41 @@ static void add_state(const struct sweeping *at, double temperature, double seco
 
 /* ---- the sheet --------------------------------------------------------------------------------------------------- */
 
-static void sweep_by(const struct sheet_run *run, struct method_run *method, bool is_lead)
+static struct sweeping begin_sweeping(const struct sheet_run *run, struct method_run *method, bool is_lead)
 {
-    const struct case_sweep *temperatures = &run->sheet->temperatures;
-    const struct case_sweep *second = run->sheet->densities.given ? &run->sheet->densities : &run->sheet->pressures;
     struct sweeping at = {.run = run, .method = method};
     at.phases = begin_phases(run, method);
     at.fugacities = begin_fugacities(run, method);
     at.evidence = begin_evidence(run, method);
     at.fugacities->csv = is_lead ? run->sheet->table_csv : NULL;
-    for (size_t i = 0; i < temperatures->count; i++) {
-        for (size_t k = 0; k < second->count; k++) {
-            add_state(&at, temperatures->values[i], second->values[k]);
-        }
-    }
     const struct split *split;
-    if (is_lead && solve_state(&at, temperatures->values[0], second->values[0], &split) == ANSWER_OK) {
+    if (is_lead && solve_state(run, method, 0, &split) == ANSWER_OK) {
         work_by_hand(&at, split);
     }
+    return at;
 }
 
 void answer_mixture_fugacity(struct sheet_run *run)
 {
-    bool has_lead = false;
-    for (size_t i = 0; i < run->method_count; i++) {
-        struct method_run *method = &run->methods[i];
-        if (method->fluid == NULL) {
-            run->result->is_undecided |= i == 0;
-            continue;
-        }
-        sweep_by(run, method, !has_lead);
-        has_lead = true;
+    size_t count;
+    struct method_run **methods = methods_that_serve(run, &count);
+    struct sweeping *each = arena_alloc(run->arena, count, sizeof *each);
+    run->result->is_undecided |= run->methods[0].fluid == NULL;
+    for (size_t m = 0; m < count; m++) {
+        each[m] = begin_sweeping(run, methods[m], m == 0);
     }
+    const struct sweep sweep = {
+        .run = run,
+        .point_count = run->sheet->temperatures.count * second_sweep(run)->count,
+        .method_count = count,
+        .methods = methods,
+        .answer_size = sizeof(struct swept_split) + 2 * MOST_PHASES * run->sheet->fluid->count * sizeof(double),
+        .context = run,
+        .solve = solve_swept,
+        .tell = tell_swept,
+        .teller = each,
+    };
+    sweep_points(&sweep);
     sheet_add_note(run->result, run->out,
                    "K: mole fraction in the lightest phase over that in the phase of the row; tangent-plane distance: "
                    "the least of all trial phases, by RT and mole, negative only by rounding for a stable answer");

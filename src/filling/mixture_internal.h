@@ -5,7 +5,7 @@
 #include "filling/mixture_contents.h"
 
 /* Searches over a range ask for the same temperatures again and again. */
-enum { KEPT_TEMPERATURES = 1024 };
+enum { KEPT_TEMPERATURES = 1024, KEPT_BY_THREADS = 8 };
 
 struct kept_edges {
     double temperature; /* K; 0: none yet */
@@ -24,8 +24,9 @@ struct mixture_work {
     double list_temperature; /* K, of the list below; 0: none yet */
     enum answer list_answer;
     struct edge_list list;
-    struct kept_edges *kept;  /* [KEPT_TEMPERATURES] */
-    struct method_run *alone; /* [count], each component by itself */
+    size_t kept_count;
+    struct kept_edges *kept;  /* [kept_count] */
+    struct method_run *alone; /* [count], each component by itself; NULL in the memory of a further thread */
     struct arena *arena;      /* for the envelope, which not every case asks for */
     bool is_traced;
     struct envelope *envelope; /* NULL: there is none, or it is not the whole boundary */

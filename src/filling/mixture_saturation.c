@@ -5,8 +5,10 @@
 #include "filling/hand_check.h"
 #include "filling/mixture_contents.h"
 #include "filling/mixture_sheets.h"
+#include "filling/sweep.h"
 
 #include <math.h>
+#include <string.h>
 
 enum { DIGITS = 7 };
 
@@ -144,18 +146,45 @@ static const char *no_answer(const struct sweeping *at, double swept)
     return "no answer";
 }
 
-static void add_points_at(const struct sweeping *at, double swept)
+/* ---- the sweep --------------------------------------------------------------------------------------------------- */
+
+/* All points at one temperature or pressure, with the memory for their compositions. */
+struct swept_points {
+    enum answer answer;
+    size_t count;
+    struct boundary_point point[BOUNDARY_MOST];
+    double incipient[]; /* [BOUNDARY_MOST * components] */
+};
+
+static void solve_points(const void *context, struct method_run *method, size_t index, void *out)
 {
+    const struct sheet_run *run = context;
+    const size_t components = method->fluid->count;
+    struct swept_points *points = out;
     const struct boundary_list *list;
-    if (mixture_points(at->method, by_pressure(at->run), swept, &list) != ANSWER_OK) {
+    points->answer = mixture_points(method, by_pressure(run), sweep_of(run)->values[index], &list);
+    points->count = points->answer == ANSWER_OK ? list->count : 0;
+    for (size_t i = 0; i < points->count; i++) {
+        points->point[i] = *list->point[i];
+        points->point[i].incipient =
+            memcpy(&points->incipient[i * components], list->point[i]->incipient, components * sizeof(double));
+    }
+}
+
+static void tell_points(void *teller, size_t method, size_t index, const void *answer)
+{
+    const struct sweeping *at = &((const struct sweeping *)teller)[method];
+    const struct swept_points *points = answer;
+    const double swept = sweep_of(at->run)->values[index];
+    if (points->answer != ANSWER_OK) {
         add_words(at, swept, no_answer(at, swept));
         return;
     }
     size_t told = 0;
-    for (size_t i = 0; i < list->count; i++) {
-        add_evidence(at, list->point[i]);
-        if (list->point[i]->is_stable) {
-            add_point(at, list->point[i]);
+    for (size_t i = 0; i < points->count; i++) {
+        add_evidence(at, &points->point[i]);
+        if (points->point[i].is_stable) {
+            add_point(at, &points->point[i]);
             told++;
         }
     }
@@ -286,32 +315,51 @@ static bool has_liquid(const struct sheet_run *run, const struct method_run *met
     return true;
 }
 
-static void sweep_by(const struct sheet_run *run, struct method_run *method, bool is_lead)
+static struct sweeping begin_sweeping(const struct sheet_run *run, struct method_run *method, bool is_lead)
 {
-    const struct case_sweep *sweep = sweep_of(run);
     struct sweeping at = {.run = run, .method = method, .is_lead = is_lead};
     at.points = begin_points(run, method);
     at.points->csv = is_lead ? run->sheet->table_csv : NULL;
     at.evidence = begin_evidence(run, method);
-    for (size_t i = 0; i < sweep->count; i++) {
-        add_points_at(&at, sweep->values[i]);
-    }
     if (is_lead) {
         work_first_point(&at);
     }
+    return at;
+}
+
+static void sweep_by(const struct sheet_run *run, struct method_run *const methods[], size_t count)
+{
+    struct sweeping *each = arena_alloc(run->arena, count, sizeof *each);
+    for (size_t m = 0; m < count; m++) {
+        each[m] = begin_sweeping(run, methods[m], m == 0);
+    }
+    const struct sweep sweep = {
+        .run = run,
+        .point_count = sweep_of(run)->count,
+        .method_count = count,
+        .methods = methods,
+        .needs_edges = true,
+        .answer_size = sizeof(struct swept_points) + BOUNDARY_MOST * run->sheet->fluid->count * sizeof(double),
+        .context = run,
+        .solve = solve_points,
+        .tell = tell_points,
+        .teller = each,
+    };
+    sweep_points(&sweep);
 }
 
 void answer_mixture_saturation(struct sheet_run *run)
 {
-    bool has_lead = false;
+    struct method_run **methods = arena_alloc(run->arena, run->method_count, sizeof *methods);
+    size_t count = 0;
     for (size_t i = 0; i < run->method_count; i++) {
-        if (!has_liquid(run, &run->methods[i])) {
+        if (has_liquid(run, &run->methods[i])) {
+            methods[count++] = &run->methods[i];
+        } else {
             run->result->is_undecided |= i == 0;
-            continue;
         }
-        sweep_by(run, &run->methods[i], !has_lead);
-        has_lead = true;
     }
+    sweep_by(run, methods, count);
     tell_bounds(run);
     tell_incomplete(run);
     if (run->sheet->show_iteration) {

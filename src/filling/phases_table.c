@@ -48,21 +48,16 @@ static void add_phase(const struct sheet_run *run, struct table *table, const st
     }
 }
 
-void add_phases_table(const struct sheet_run *run, struct method_run *method, double mass, const double temperatures[],
-                      size_t count)
+void add_phases_table(const struct sheet_run *run, const struct method_run *method,
+                      const struct contents *const contents[], size_t count)
 {
-    struct table *table = NULL;
-    if (method->mixture == NULL) {
+    if (count == 0) {
         return;
     }
+    struct table *table = begin_phases(run, method);
     for (size_t t = 0; t < count; t++) {
-        struct contents contents;
-        if (pressure_at(run, method, mass, temperatures[t], &contents) != ANSWER_OK || contents.phase_count < 2) {
-            continue;
-        }
-        table = table != NULL ? table : begin_phases(run, method);
-        for (size_t k = 0; k < contents.phase_count; k++) {
-            add_phase(run, table, &contents, k);
+        for (size_t k = 0; k < contents[t]->phase_count; k++) {
+            add_phase(run, table, contents[t], k);
         }
     }
 }

@@ -5,10 +5,10 @@
 
 #include "filling/sheet.h"
 
-/* A table with a row for each phase at those of the temperatures (K) where there is more than one; none where there
- * never is, and for a pure gas. */
-void add_phases_table(const struct sheet_run *run, struct method_run *method, double mass, const double temperatures[],
-                      size_t count);
+/* A table with a row for each phase of a mixture's contents, [count], each of more than one phase; none without
+ * any. */
+void add_phases_table(const struct sheet_run *run, const struct method_run *method,
+                      const struct contents *const contents[], size_t count);
 
 /* What has condensed at `temperature`, or would condense there in use as the pressure falls: a note and a table with
  * the liquid's composition. Nothing where the fluid has no dew point below its density. */

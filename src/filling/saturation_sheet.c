@@ -3,6 +3,7 @@
 #include "filling/hand_check.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
+#include "filling/sweep.h"
 
 #include <math.h>
 
@@ -68,32 +69,63 @@ static bool latent_heat_of(const struct sheet_run *run, const struct method_run 
     return true;
 }
 
-static struct point solve_point(const struct sheet_run *run, struct method_run *method, double swept)
+/* The lines of a sheet as they are solved. */
+struct lines {
+    const struct sheet_run *run;
+    struct method_run **methods; /* those with a liquid */
+    struct point **points;       /* by each of them, in the order of the sweep */
+};
+
+static void solve_point(const void *context, struct method_run *method, size_t index, void *answer)
 {
-    struct point point = {.is_inside = true};
-    if (by_pressure(run)) {
-        point.answer = saturation_at_p(method->at_t, method->fluid, swept, &point.saturation);
+    const struct lines *lines = context;
+    const double swept = sweep_of(lines->run)->values[index];
+    struct point *point = answer;
+    *point = (struct point){.is_inside = true};
+    if (by_pressure(lines->run)) {
+        point->answer = saturation_at_p(method->at_t, method->fluid, swept, &point->saturation);
     } else {
-        point.answer = fluid_set_t(method->at_t, method->fluid, swept);
-        if (point.answer == ANSWER_OK) {
-            point.answer = saturation_at_t(method->at_t, &point.saturation);
+        point->answer = fluid_set_t(method->at_t, method->fluid, swept);
+        if (point->answer == ANSWER_OK) {
+            point->answer = saturation_at_t(method->at_t, &point->saturation);
         }
     }
-    if (point.answer == ANSWER_OK) {
-        point.is_inside = warn_outside_range(run, method, point.saturation.temperature, point.saturation.pressure);
-        point.has_latent_heat = latent_heat_of(run, method, &point.saturation, &point.latent_heat);
+    if (point->answer == ANSWER_OK) {
+        point->has_latent_heat = latent_heat_of(lines->run, method, &point->saturation, &point->latent_heat);
     }
-    return point;
 }
 
-static struct point *solve_points(const struct sheet_run *run, struct method_run *method)
+static void keep_point(void *teller, size_t method, size_t index, const void *answer)
 {
-    const struct case_sweep *sweep = sweep_of(run);
-    struct point *points = arena_alloc(run->arena, sweep->count, sizeof *points);
-    for (size_t i = 0; i < sweep->count; i++) {
-        points[i] = solve_point(run, method, sweep->values[i]);
+    const struct lines *lines = teller;
+    struct point *point = &lines->points[method][index];
+    *point = *(const struct point *)answer;
+    if (point->answer == ANSWER_OK) {
+        point->is_inside = warn_outside_range(lines->run, lines->methods[method], point->saturation.temperature,
+                                              point->saturation.pressure);
     }
-    return points;
+}
+
+static void solve_lines(struct lines *lines, size_t method_count)
+{
+    const struct sheet_run *run = lines->run;
+    const size_t count = sweep_of(run)->count;
+    lines->points = arena_alloc(run->arena, method_count, sizeof *lines->points);
+    for (size_t m = 0; m < method_count; m++) {
+        lines->points[m] = arena_alloc(run->arena, count, sizeof **lines->points);
+    }
+    const struct sweep sweep = {
+        .run = run,
+        .point_count = count,
+        .method_count = method_count,
+        .methods = lines->methods,
+        .answer_size = sizeof(struct point),
+        .context = lines,
+        .solve = solve_point,
+        .tell = keep_point,
+        .teller = lines,
+    };
+    sweep_points(&sweep);
 }
 
 /* ---- the state in words ---------------------------------------------------------------------------------------- */
@@ -412,19 +444,21 @@ void answer_saturation(struct sheet_run *run)
         answer_mixture_saturation(run);
         return;
     }
-    const struct point *lead = NULL;
+    struct lines lines = {.run = run, .methods = arena_alloc(run->arena, run->method_count, sizeof *lines.methods)};
+    size_t count = 0;
     for (size_t i = 0; i < run->method_count; i++) {
-        struct method_run *method = &run->methods[i];
-        if (!has_liquid(run, method)) {
+        if (has_liquid(run, &run->methods[i])) {
+            lines.methods[count++] = &run->methods[i];
+        } else {
             run->result->is_undecided |= i == 0;
-            continue;
         }
-        const struct point *points = solve_points(run, method);
-        add_line_table(run, method, points, lead);
-        add_evidence_table(run, method, points);
-        if (lead == NULL) {
-            lead = points;
-            work_one_point(run, method, points);
+    }
+    solve_lines(&lines, count);
+    for (size_t m = 0; m < count; m++) {
+        add_line_table(run, lines.methods[m], lines.points[m], m == 0 ? NULL : lines.points[0]);
+        add_evidence_table(run, lines.methods[m], lines.points[m]);
+        if (m == 0) {
+            work_one_point(run, lines.methods[m], lines.points[m]);
         }
     }
 }

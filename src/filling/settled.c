@@ -8,6 +8,7 @@
 #include "filling/requirement.h"
 #include "filling/sensitivities.h"
 #include "filling/stepwise.h"
+#include "filling/sweep.h"
 
 #include <math.h>
 #include <string.h>
@@ -20,7 +21,13 @@ struct settled {
     double mass;
     size_t count; /* of temperatures, rising */
     double *temperatures;
-    bool has_answers; /* by the lead method, in every row */
+    bool has_answers;      /* by the lead method, in every row */
+    struct table **tables; /* of each method that answers, lead first */
+    struct method_run **methods;
+    struct {
+        size_t count, capacity;
+        const struct contents **items;
+    } split; /* the lead's contents of a mixture in two phases or more */
 };
 
 static double hottest(const struct settled *settled)
@@ -60,23 +67,41 @@ static void choose_temperatures(struct settled *settled)
 
 /* ---- tables ------------------------------------------------------------------------------------------------------ */
 
+static void put_contents(void *teller, size_t method, size_t point, const struct swept_contents *found)
+{
+    struct settled *settled = teller;
+    struct sheet_run *run = settled->run;
+    const size_t components = run->sheet->fluid->count;
+    contents_table_put(run, settled->tables[method], settled->methods[method], settled->temperatures[point],
+                       found->answer, &found->contents);
+    if (method > 0) {
+        return;
+    }
+    settled->has_answers = settled->has_answers && found->answer == ANSWER_OK;
+    if (found->answer == ANSWER_OK && components > 1 && found->contents.phase_count > 1) {
+        *ARENA_APPEND(run->arena, &settled->split) = &swept_contents_keep(found, components, run->arena)->contents;
+    }
+}
+
+/* The lead has a fluid, so that it is the first of those that serve. */
 static void add_tables(struct settled *settled)
 {
     struct sheet_run *run = settled->run;
-    for (size_t m = 0; m < run->method_count; m++) {
-        struct method_run *method = &run->methods[m];
-        if (method->fluid == NULL) {
-            continue;
-        }
-        struct table *table = contents_table_begin(run, "settled pressure", method->name);
-        table->csv = m == 0 ? run->sheet->table_csv : NULL;
-        bool has_answers = true;
-        for (size_t i = 0; i < settled->count; i++) {
-            const enum answer answer = contents_table_row(run, table, method, settled->mass, settled->temperatures[i]);
-            has_answers = has_answers && answer == ANSWER_OK;
-        }
-        settled->has_answers = m == 0 ? has_answers : settled->has_answers;
+    struct contents_sweep sweep = {.run = run,
+                                   .mass = settled->mass,
+                                   .count = settled->count,
+                                   .temperatures = settled->temperatures,
+                                   .tell = put_contents,
+                                   .teller = settled};
+    settled->methods = methods_that_serve(run, &sweep.method_count);
+    settled->tables = arena_alloc(run->arena, sweep.method_count, sizeof *settled->tables);
+    settled->has_answers = true;
+    for (size_t m = 0; m < sweep.method_count; m++) {
+        settled->tables[m] = contents_table_begin(run, "settled pressure", settled->methods[m]->name);
+        settled->tables[m]->csv = m == 0 ? run->sheet->table_csv : NULL;
     }
+    sweep.methods = settled->methods;
+    sweep_contents(&sweep);
 }
 
 static void add_quotes(const struct settled *settled)
@@ -242,7 +267,7 @@ void answer_settled_pressure(struct sheet_run *run)
     add_charge_facts(run, lead, settled.mass, basis_of_charge(run));
     add_tables(&settled);
     add_quotes(&settled);
-    add_phases_table(run, lead, settled.mass, settled.temperatures, settled.count);
+    add_phases_table(run, lead, settled.split.items, settled.split.count);
     add_liquid_at(run, lead, settled.mass, coldest(&settled));
     add_found(&settled);
     add_stepwise(run, lead, settled.mass);

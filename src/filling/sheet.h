@@ -11,6 +11,7 @@
 #include "result/result.h"
 
 struct mixture_work;
+struct progress;
 
 /* One method at work on the sheet's fluid. `fluid` is NULL when the method cannot serve it (`lack` says why). */
 struct method_run {
@@ -37,13 +38,27 @@ struct sheet_run {
     struct result_sheet *out;
     size_t number; /* of the sheet, from 1 */
     size_t method_count;
-    struct method_run *methods;   /* lead first */
-    struct listed_ledger *ledger; /* NULL: none is kept */
+    struct method_run *methods;      /* lead first */
+    struct listed_ledger *ledger;    /* NULL: none is kept */
+    const struct progress *progress; /* NULL: nobody waits */
 };
 
 /* A method ready for a fluid, or with `lack` set. Ideal gas is never allowed to govern, whatever `may_govern` says. */
 struct method_run method_run_create(const struct case_fluid *fluid, const char *method, bool may_govern,
                                     struct arena *arena);
+
+/* The same method with memory of its own for another thread. For `method_run_begin_again` to ready it. */
+struct method_run method_run_for_thread(const struct method_run *method, struct arena *arena);
+
+/* Forgets whatever `own` has found, and takes over the envelope of `method`: its next answers depend on nothing that
+ * either was asked before. */
+void method_run_begin_again(struct method_run *own, const struct method_run *method);
+
+/* Whether `own` has since found a state that speaks against that envelope. */
+bool method_run_gave_up_envelope(const struct method_run *own, const struct method_run *method);
+
+/* Traces a mixture's envelope unless that has been done: the one thing that takes memory when it is first needed. */
+void method_run_trace_envelope(struct method_run *method);
 
 /* The looks of a sheet: SI unit, the sheet's display unit and the digits its table deserves. */
 struct look look_temperature(const struct sheet_run *run);

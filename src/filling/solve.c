@@ -129,7 +129,17 @@ struct common {
     struct method_pool pool;
     struct listed_ledger ledger;
     struct basis_list bases;
+    const struct progress *progress;
 };
+
+static void tell_begun(const struct sheet_run *run)
+{
+    if (run->progress != NULL) {
+        const struct progress_state state = {
+            .sheet = run->number, .sheet_count = run->tree->sheet_count, .kind = run->out->kind};
+        run->progress->tell(run->progress->context, &state);
+    }
+}
 
 static void answer_sheet(const struct case_tree *tree, size_t index, struct common *common, struct result *result)
 {
@@ -143,7 +153,9 @@ static void answer_sheet(const struct case_tree *tree, size_t index, struct comm
         .out = result_add_sheet(result, KINDS[sheet->kind].word, sheet->title),
         .number = index + 1,
         .ledger = &common->ledger,
+        .progress = common->progress,
     };
+    tell_begun(run);
     run->out->fluid = sheet->fluid->name;
     run->out->vessel = sheet->vessel == NULL ? NULL : sheet->vessel->name;
     run->out->charge = sheet->charge == NULL ? NULL : sheet->charge->name;
@@ -206,8 +218,14 @@ static void tell_cautions(struct result *result)
 
 struct result *filling_solve(const struct case_tree *tree, const char *version, struct arena *arena)
 {
+    return filling_solve_telling(tree, version, NULL, arena);
+}
+
+struct result *filling_solve_telling(const struct case_tree *tree, const char *version, const struct progress *progress,
+                                     struct arena *arena)
+{
     struct result *result = result_create(arena);
-    struct common common = {.pool = {0}};
+    struct common common = {.progress = progress};
     tell_document(tree, version, result);
     tell_inputs(tree, result);
     for (size_t i = 0; i < tree->sheet_count; i++) {

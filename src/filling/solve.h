@@ -9,8 +9,26 @@
 #include "case/case.h"
 #include "result/result.h"
 
+/* Where a run stands, for somebody who waits for it. */
+struct progress_state {
+    size_t sheet, sheet_count; /* the sheet at work, from 1, and all there are */
+    const char *kind;          /* of the sheet: "settled-pressure" */
+    size_t done, count;        /* states of the sweep at work; both 0 where there is none */
+};
+
+/* Told at each sheet and after every few states of a sweep, on the thread that asked for the result; it may be often,
+ * and is to be quick. What is told depends on the number of threads, the result never does. */
+struct progress {
+    void (*tell)(void *context, const struct progress_state *state);
+    void *context;
+};
+
 /* Every sheet of the case, in order, with document, inputs, data, methods, warnings and cautions filled in. Never NULL:
  * what a method cannot answer is told in the result. */
 struct result *filling_solve(const struct case_tree *tree, const char *version, struct arena *arena);
+
+/* The same for somebody who waits: NULL is nobody. */
+struct result *filling_solve_telling(const struct case_tree *tree, const char *version, const struct progress *progress,
+                                     struct arena *arena);
 
 #endif

@@ -126,7 +126,7 @@ static void name_files_from_deck(const struct deck *deck)
 static bool answer(struct run *run, const struct run_request *request, const struct case_tree *tree)
 {
     name_files_from_deck(tree->deck);
-    return render(run, request, filling_solve(tree, request->version, run->arena));
+    return render(run, request, filling_solve_telling(tree, request->version, request->progress, run->arena));
 }
 
 /* Counts what a deck asks, for the one line of a check. */

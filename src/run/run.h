@@ -9,6 +9,7 @@
 #include "base/arena.h"
 #include "base/text.h"
 #include "deck/deck.h"
+#include "filling/solve.h"
 
 #include <stdbool.h>
 #include <stddef.h>
@@ -35,10 +36,11 @@ struct run_request {
     enum run_mode mode;
     const char *deck_path;
     const struct deck_reader *reader;
-    const char *version;      /* of the program, for the listing */
-    const char *json_path;    /* NULL: none */
-    const char *listing_path; /* NULL: none; the listing is in the output all the same */
-    const char *out_folder;   /* where tables go; NULL: the current folder */
+    const char *version;             /* of the program, for the listing */
+    const char *json_path;           /* NULL: none */
+    const char *listing_path;        /* NULL: none; the listing is in the output all the same */
+    const char *out_folder;          /* where tables go; NULL: the current folder */
+    const struct progress *progress; /* of the answers; NULL: nobody waits */
 };
 
 struct run_file {
