@@ -405,32 +405,59 @@ static const char *missing_rating(const struct predicate *predicate, const struc
     return NULL;
 }
 
-static bool check_rating(struct elaboration *e, const struct case_vessel *vessel, const struct predicate *predicate,
+static void check_rating(struct elaboration *e, const struct case_vessel *vessel, const struct predicate *predicate,
                          struct location at)
 {
     const char *missing = missing_rating(predicate, vessel);
     if (missing == NULL) {
-        return true;
+        return;
     }
     struct diagnostic *said = diagnose(e->out, CODE_E223, at, "'%s' needs the %s of vessel '%s', which has none",
                                        predicate->written, missing, shortened(e, vessel->name));
     diagnostic_hint(e->out, said, "add '%s ... barg' to the vessel", missing);
     said->note = "the vessel";
     said->note_at = vessel->at;
-    return false;
 }
 
-static void check_ratings(struct elaboration *e, const struct sheet_target *target)
+/* A pure gas has no vapour pressure above its critical temperature: a condition on one is of another class of gas. */
+static void check_vapour_pressure(struct elaboration *e, const struct case_fluid *fluid,
+                                  const struct predicate *predicate, struct location at)
 {
-    const struct case_vessel *vessel = target->sheet.vessel;
-    for (size_t i = 0; vessel != NULL && i < target->rules.count; i++) {
+    const bool is_asked = predicate->kind == PREDICATE_COMPARE && predicate->quantity == SYMBOL_VAPOUR_PRESSURE;
+    if (!is_asked || !predicate->has_temperature || fluid->count != 1) {
+        return;
+    }
+    const struct quantity *critical = &fluid->components[0]->critical_temperature;
+    if (!critical->given || !(predicate->to > critical->value)) {
+        return;
+    }
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E231, at, "'%s': %s has no vapour pressure above its critical temperature, %.2f degC",
+                 predicate->written, shortened(e, fluid->name), critical->value - 273.15);
+    diagnostic_hint(e->out, said, "take the rule of the class the gas belongs to, or ask about its pressure");
+}
+
+static void check_condition(struct elaboration *e, const struct sheet_target *target,
+                            const struct predicate *predicate, struct location at)
+{
+    if (target->sheet.vessel != NULL) {
+        check_rating(e, target->sheet.vessel, predicate, at);
+    }
+    if (target->sheet.fluid != NULL) {
+        check_vapour_pressure(e, target->sheet.fluid, predicate, at);
+    }
+}
+
+static void check_conditions(struct elaboration *e, const struct sheet_target *target)
+{
+    for (size_t i = 0; i < target->rules.count; i++) {
         const struct case_rule *rule = target->rules.items[i].rule;
         for (size_t j = 0; j < rule->predicate_count; j++) {
-            check_rating(e, vessel, &rule->predicates[j], target->rules.items[i].at);
+            check_condition(e, target, &rule->predicates[j], target->rules.items[i].at);
         }
     }
-    for (size_t i = 0; vessel != NULL && i < target->requirements.count; i++) {
-        check_rating(e, vessel, &target->requirements.items[i], target->requirements.items[i].at);
+    for (size_t i = 0; i < target->requirements.count; i++) {
+        check_condition(e, target, &target->requirements.items[i], target->requirements.items[i].at);
     }
 }
 
@@ -504,7 +531,7 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
         sheet->charge = make_charge(e, sheet->title == NULL ? "of this sheet" : sheet->title, sheet->fluid,
                                     sheet->vessel, &target->fill);
     }
-    check_ratings(e, target);
+    check_conditions(e, target);
     check_temperatures(e, target);
     if (choose_methods(e, target->methods, sheet->fluid, place_of_fluid(target), &sheet->methods)) {
         check_lead(e, sheet);
@@ -529,7 +556,7 @@ static void check_names(struct elaboration *e, struct sheet_target *target)
     } else if (target->vessel != NULL) {
         sheet->vessel = vessel_of_name(e, target->vessel);
     }
-    check_ratings(e, target);
+    check_conditions(e, target);
 }
 
 static bool build_sheet(struct elaboration *e, const struct statement *statement, size_t number, struct case_sheet *out)

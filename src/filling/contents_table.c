@@ -79,10 +79,11 @@ void warn_below_triple(const struct sheet_run *run, double temperature)
 {
     for (size_t i = 0; i < run->sheet->fluid->count; i++) {
         const struct case_component *component = run->sheet->fluid->components[i];
-        if (component->triple_temperature.given && temperature < component->triple_temperature.value) {
+        const struct quantity *triple = &component->triple_temperature;
+        if (triple->given && temperature < triple->value * (1.0 - TEMPERATURE_ROUNDING)) {
             result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,
                         "below the triple point of %s, %s, a solid may form, which no method here knows",
-                        component->name, temperature_words(run, component->triple_temperature.value));
+                        component->name, temperature_words(run, triple->value));
         }
     }
 }

@@ -252,7 +252,7 @@ static struct predicate_finding no_solid_at(const struct sheet_run *run, double 
         if (!triple->given) {
             return undecided(ANSWER_CANNOT, temperature, "the triple temperature is not given");
         }
-        if (temperature < triple->value) {
+        if (temperature < triple->value * (1.0 - TEMPERATURE_ROUNDING)) {
             return undecided(ANSWER_CANNOT, temperature, "below the triple point, where no method here has a solid");
         }
         distance = fmin(distance, temperature - triple->value);

@@ -143,7 +143,7 @@ static const char *critical_words(const struct sheet_run *run, const struct meth
 static const char *undercooled_words(const struct sheet_run *run, const struct method_run *method, double temperature)
 {
     const struct optional triple = run->sheet->fluid->spec.pure[0]->triple_temperature;
-    if (!triple.given || temperature >= triple.value) {
+    if (!triple.given || temperature >= triple.value * (1.0 - TEMPERATURE_ROUNDING)) {
         return "vapour + liquid";
     }
     result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,

@@ -90,6 +90,10 @@ struct saturation_start {
     double vapour_volume, liquid_volume;  /* m3/mol */
 };
 
+/* Below a limit by no more than this part of it, a temperature is the limit as written: 0.01 degC is not 273.16 K to the
+ * last digit. */
+#define TEMPERATURE_ROUNDING 1e-12
+
 /* Where a state lies relative to a method's published range. */
 enum range_side { RANGE_INSIDE, RANGE_TOO_COLD, RANGE_TOO_HOT, RANGE_TOO_HIGH_PRESSURE };
 

@@ -141,7 +141,7 @@ static double smallest_volume(const struct fluid_at_t *at_t, const double n[])
 static struct range_note range(const struct fluid *fluid, double temperature, double pressure)
 {
     const struct reference_spec *equation = fluid_of(fluid)->equation;
-    if (!(temperature >= equation->smallest_temperature)) {
+    if (!(temperature >= equation->smallest_temperature * (1.0 - TEMPERATURE_ROUNDING))) {
         return (struct range_note){RANGE_TOO_COLD, equation->smallest_temperature};
     }
     if (!(temperature <= equation->largest_temperature)) {
