@@ -327,6 +327,26 @@ static void roots_are_the_first_from_either_end(void **state)
     arena_free(arena);
 }
 
+/* At these pressures this gas has neither a vapour nor a liquid root as one phase: its isotherm has two loops near the
+ * critical density, the ends of the branches at 3.805 and 4.165 MPa (looked at along the isotherm). */
+static void a_feed_between_its_branches_still_splits(void **state)
+{
+    (void)state;
+    static const char *const names[] = {"methane",   "nitrogen", "carbon-dioxide", "ethane", "propane",
+                                        "isobutane", "n-butane", "n-pentane",      "oxygen", "helium"};
+    const double z[] = {0.5, 0.04, 0.03, 0.14, 0.12, 0.04, 0.05, 0.073, 0.003, 0.005};
+    struct arena *arena = arena_create(NULL);
+    const struct measured_mixture m = measured_mixture_create("multi-fluid", names, COUNT(names), arena);
+    struct phase phase = {.ln_phi = NULL};
+    for (double p = 3.85e6; p < 4.15e6; p += 0.07e6) {
+        assert_int_equal(fluid_set_t(m.at_t, m.fluid, 269.0), ANSWER_OK);
+        assert_int_equal(phase_tp(m.at_t, p, z, BRANCH_VAPOUR, 0, &phase), ANSWER_NO_SUCH_ROOT);
+        assert_int_equal(phase_tp(m.at_t, p, z, BRANCH_LIQUID, 0, &phase), ANSWER_NO_SUCH_ROOT);
+        assert_int_equal(measured_phases(&m, 269.0, p, z), 2);
+    }
+    arena_free(arena);
+}
+
 /* Both sides of a vapour-liquid equilibrium from the library, by fugacities that have to be equal. */
 static void a_split_settles_with_equal_fugacities(void **state)
 {
@@ -436,6 +456,7 @@ int main(void)
         cmocka_unit_test(derivatives_are_those_of_the_energy),
         cmocka_unit_test(an_absent_component_is_the_limit_of_a_trace),
         cmocka_unit_test(roots_are_the_first_from_either_end),
+        cmocka_unit_test(a_feed_between_its_branches_still_splits),
         cmocka_unit_test(a_split_settles_with_equal_fugacities),
         cmocka_unit_test(a_pair_turned_round_is_the_same_pair),
         cmocka_unit_test(a_pair_nobody_published_is_estimated_and_says_so),

@@ -1,10 +1,10 @@
 /* Density roots of a multi-fluid mixture at given temperature, pressure and composition.
  *
  * The vapour root is the first mechanically stable one going up from zero density, the liquid root the first going down
- * from the largest density; roots between, which such equations have many of, are never looked at. There is no
- * saturation line to start from as for a pure gas, so each branch is walked from its own end: up from the root of the
- * virial equation with the mixture's own second coefficient, down from a dense liquid. Both ways the isotherm is
- * curved so that Newton's steps fall short of the root, and no step is longer than a loop is wide.
+ * from the largest density; roots between, which such equations have many of, are never looked at while there is one of
+ * these two. There is no saturation line to start from as for a pure gas, so each branch is walked from its own end: up
+ * from the root of the virial equation with the mixture's own second coefficient, down from a dense liquid. Both ways
+ * the isotherm is curved so that Newton's steps fall short of the root, and no step is longer than a loop is wide.
  *
  * All components have their critical points near tau = 1, delta = 1, and so has their sum: well below tau = 1 an
  * isotherm has no loop, and a few points about delta = 1 tell the same nearer to it.
@@ -241,14 +241,15 @@ static bool may_loop(struct multi_fluid_work *w)
 }
 
 /* From the root of p = rho R T (1 + B rho), or from the end of that equation's own vapour branch. */
-static enum answer vapour_root(struct multi_fluid_work *w, double pressure, double largest, struct spot *root)
+static enum answer vapour_root(struct multi_fluid_work *w, double pressure, double largest, struct search *search,
+                               struct spot *root)
 {
     const double B = (spot_at(w->parts, VIRIAL_DELTA).pressure / VIRIAL_DELTA - 1.0) / VIRIAL_DELTA;
     const double square = 1.0 + 4.0 * B * pressure;
     const double start = square > 0.0 ? 2.0 * pressure / (1.0 + sqrt(square)) : -0.5 / B;
-    struct search search = {
+    *search = (struct search){
         .parts = w->parts, .side = SIDE_VAPOUR, .pressure = pressure, .high = largest, .high_is_wall = true};
-    return find_root(&search, fmin(start, 0.9 * largest), GAS_STIFFENING, root);
+    return find_root(search, fmin(start, 0.9 * largest), GAS_STIFFENING, root);
 }
 
 /* A delta above the saturated liquid's, after the rectilinear form of Guggenheim (J. Chem. Phys. 13 (1945) 253). */
@@ -258,9 +259,10 @@ static double dense_start(double tau, double largest)
     return fmin(1.15 * (1.0 + 1.75 * cbrt(theta) + 0.75 * theta), largest);
 }
 
-static enum answer liquid_root(struct multi_fluid_work *w, double pressure, double largest, struct spot *root)
+static enum answer liquid_root(struct multi_fluid_work *w, double pressure, double largest, struct search *search,
+                               struct spot *root)
 {
-    struct search search = {.parts = w->parts, .side = SIDE_LIQUID, .pressure = pressure, .high = 1.001 * largest};
+    *search = (struct search){.parts = w->parts, .side = SIDE_LIQUID, .pressure = pressure, .high = 1.001 * largest};
     double start = dense_start(w->tau, largest);
     struct spot spot = spot_at(w->parts, start);
     if (!(spot.stiffness > 0.0 && spot.pressure >= pressure)) {
@@ -273,9 +275,9 @@ static enum answer liquid_root(struct multi_fluid_work *w, double pressure, doub
     while (!(spot.stiffness > 0.0) && start > 1.0) {
         start *= 1.0 - 0.3 * LIQUID_STEP;
         spot = spot_at(w->parts, start);
-        search.high = start * 1.001;
+        search->high = start * 1.001;
     }
-    return spot.stiffness > 0.0 && spot.pressure >= pressure ? find_root(&search, start, LIQUID_STIFFENING, root)
+    return spot.stiffness > 0.0 && spot.pressure >= pressure ? find_root(search, start, LIQUID_STIFFENING, root)
                                                              : ANSWER_NO_SUCH_ROOT;
 }
 
@@ -317,13 +319,31 @@ static enum answer single_root(const struct multi_fluid *fluid, struct multi_flu
 /* ---- the branches --------------------------------------------------------------------------------------------------
  */
 
+/* A spurious loop near the mixture's own critical density can leave pressures above the vapour branch's highest and
+ * below the liquid branch's lowest. A mixture forms two phases there, but whoever finds them out needs the feed as one
+ * phase to start from: the isotherm rises through the pressure between the two ends, and that root is taken. */
+static enum answer middle_root(const struct search *vapour, const struct search *liquid, struct spot *root)
+{
+    struct search search = {.parts = vapour->parts,
+                            .side = SIDE_SINGLE,
+                            .pressure = vapour->pressure,
+                            .low = vapour->low,
+                            .high = liquid->high,
+                            .far_is_seen = true};
+    return search.low < search.high ? find_root(&search, middle(&search), GAS_STIFFENING, root) : ANSWER_NO_SUCH_ROOT;
+}
+
 /* Of two different roots the one of lower Gibbs energy, ln f = ln rho + alphar + delta dalphar/ddelta + ... */
 static enum answer stable_root(struct multi_fluid_work *w, double pressure, double largest, struct spot *root,
                                int *roots)
 {
     struct spot vapour, liquid;
-    const enum answer has_vapour = vapour_root(w, pressure, largest, &vapour);
-    const enum answer has_liquid = liquid_root(w, pressure, largest, &liquid);
+    struct search up, down;
+    const enum answer has_vapour = vapour_root(w, pressure, largest, &up, &vapour);
+    const enum answer has_liquid = liquid_root(w, pressure, largest, &down, &liquid);
+    if (has_vapour == ANSWER_NO_SUCH_ROOT && has_liquid == ANSWER_NO_SUCH_ROOT) {
+        return middle_root(&up, &down, root);
+    }
     if (has_vapour == ANSWER_OK && has_liquid == ANSWER_OK) {
         *roots = fabs(liquid.delta - vapour.delta) > SAME_ROOT * liquid.delta ? 2 : 1;
         *root = log(vapour.delta) + vapour.log_activity <= log(liquid.delta) + liquid.log_activity ? vapour : liquid;
@@ -341,11 +361,12 @@ static enum answer root_on(const struct multi_fluid *fluid, struct multi_fluid_w
     if (!may_loop(w)) {
         return single_root(fluid, w, pressure, largest, root);
     }
+    struct search search;
     switch (branch) {
     case BRANCH_VAPOUR:
-        return vapour_root(w, pressure, largest, root);
+        return vapour_root(w, pressure, largest, &search, root);
     case BRANCH_LIQUID:
-        return liquid_root(w, pressure, largest, root);
+        return liquid_root(w, pressure, largest, &search, root);
     case BRANCH_STABLE:
         break;
     }
