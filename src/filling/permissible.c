@@ -242,7 +242,7 @@ static void tell_charge(const struct permissible *sheet)
             run->result, run->out, "filling-ratio-unrounded",
             ratio_of_mass(run, sheet->by_method[sheet->governing.index].limits[computed.index].mass), look_ratio(4));
         fact->method = method->name;
-        fact->remark = "of the computed limit";
+        fact->remark = "least of all computed limits";
     }
     add_settled_pressure(sheet);
     sheet_add_words(run->result, run->out, "governed-by", governed_by(sheet, criterion, limit));
