@@ -44,7 +44,7 @@ endif
 
 .DELETE_ON_ERROR:
 .SECONDARY:
-.PHONY: all demo test check asan valgrind coverage fuzz bench lint format install clean help packages packages-extra update
+.PHONY: all demo test check asan valgrind coverage fuzz bench campaign lint format install clean help packages packages-extra update
 
 all: $(PROGRAM) ## build the program
 
@@ -85,7 +85,7 @@ $(BUILD)/tests/test_%: $(BUILD)/tests/test_%.o $(SUPPORT) $(LIBRARY)
 	$(call say,link,$@)
 	$(Q)$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
 
-$(BUILD)/bench: $(BUILD)/tests/bench.o $(SUPPORT) $(LIBRARY)
+$(BUILD)/bench $(BUILD)/campaign: $(BUILD)/%: $(BUILD)/tests/%.o $(SUPPORT) $(LIBRARY)
 	$(call say,link,$@)
 	$(Q)$(CC) $(CFLAGS) $(LDFLAGS) -o $@ $^ -lcmocka $(LDLIBS)
 
@@ -144,6 +144,11 @@ fuzz-parser fuzz-program: fuzz-%: $(BUILD)/tests/fuzz_%.o $(LIBRARY)
 
 bench: $(BUILD)/bench ## operations for each second, and as multiples of one exp call
 	$(BUILD)/bench
+
+STATES ?= 1000000
+SEED   ?= 1
+campaign: $(BUILD)/campaign ## STATES random states of mixtures from SEED, each held against the conditions of equilibrium
+	$(BUILD)/campaign $(STATES) $(SEED)
 
 # ---- care ----------------------------------------------------------------------------------------------------------
 
