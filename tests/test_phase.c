@@ -36,6 +36,14 @@ static void evaluate(const struct subject *subject, struct phase *out)
     assert_int_equal(phase_tp(subject->at_t, subject->p, subject->n, BRANCH_STABLE, ALL_WANTS, out), ANSWER_OK);
 }
 
+/* A method for gases alone may refuse what is too dense for it; the first state never is. */
+static bool is_refused(const struct subject *subject)
+{
+    assert_int_equal(fluid_set_t(subject->at_t, subject->fluid, subject->T), ANSWER_OK);
+    return (subject->fluid->ops->capabilities & CAN_LIQUID) == 0 && subject->p > STATES[0].p &&
+           phase_tp(subject->at_t, subject->p, subject->n, BRANCH_STABLE, 0, subject->phase) == ANSWER_OUT_OF_RANGE;
+}
+
 static void for_each_state(void (*check)(struct subject *subject, struct arena *arena))
 {
     struct arena *arena = arena_create(NULL);
@@ -48,6 +56,9 @@ static void for_each_state(void (*check)(struct subject *subject, struct arena *
             subject.T = STATES[s].T;
             subject.p = STATES[s].p;
             memcpy(subject.n, sample->n, sizeof subject.n);
+            if (is_refused(&subject)) {
+                continue;
+            }
             evaluate(&subject, subject.phase);
             check(&subject, arena);
         }
@@ -238,9 +249,10 @@ static void infinite_dilution_is_finite_and_continuous(void **state)
             double n[MOST];
             memcpy(n, sample->n, sizeof n);
             n[1] = 0.0;
-            assert_int_equal(phase_tp(at_t, 2.9e6, n, BRANCH_STABLE, ALL_WANTS, none), ANSWER_OK);
+            const double p = (fluid->ops->capabilities & CAN_LIQUID) != 0 ? 2.9e6 : 3e5;
+            assert_int_equal(phase_tp(at_t, p, n, BRANCH_STABLE, ALL_WANTS, none), ANSWER_OK);
             n[1] = 1e-11;
-            assert_int_equal(phase_tp(at_t, 2.9e6, n, BRANCH_STABLE, ALL_WANTS, trace), ANSWER_OK);
+            assert_int_equal(phase_tp(at_t, p, n, BRANCH_STABLE, ALL_WANTS, trace), ANSWER_OK);
             for (size_t i = 0; i < sample->count; i++) {
                 assert_near(none->ln_phi[i], trace->ln_phi[i], 1e-9, sample->name);
             }

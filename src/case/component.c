@@ -204,6 +204,7 @@ static struct pure_spec spec_of(struct elaboration *e, const struct case_compone
         .critical_density = optional_of(&component->critical_density),
         .acentric = optional_of(&component->acentric),
         .triple_temperature = optional_of(&component->triple_temperature),
+        .dipole = optional_of(&component->dipole),
         .reference = reference,
         .cubic_set_count = component->cubic_set_count,
         .cubic_sets = plain_sets(e, component->cubic_sets, component->cubic_set_count),

@@ -164,6 +164,8 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_METHOD_MULTI_FLUID, read_reducing_row),
     READ_ONCE(WORD_METHOD_GERG_2008, read_reducing_row),
     READ_ONCE(WORD_METHOD_LEE_KESLER, read_constants),
+    READ_ONCE(WORD_METHOD_VIRIAL_PITZER_ABBOTT, read_constants),
+    READ_ONCE(WORD_METHOD_VIRIAL_TSONOPOULOS, read_constants),
     READ_ONCE(WORD_PAIR_REACTS, read_reacts),
 };
 static const struct block_form PAIR = BLOCK_FORM(BLOCK_PAIR, ROWS);

@@ -19,6 +19,10 @@ static const struct fluid_ops *const METHODS[] = {
     &multi_fluid_ops,
     &gerg_2008_ops,
     &lee_kesler_ops,
+    &virial_pitzer_abbott_ops,
+    &virial_tsonopoulos_ops,
+    &virial_pitzer_abbott_pressure_ops,
+    &virial_tsonopoulos_pressure_ops,
     NULL,
 };
 

@@ -18,5 +18,9 @@ extern const struct fluid_ops reference_ops;
 extern const struct fluid_ops multi_fluid_ops;
 extern const struct fluid_ops gerg_2008_ops;
 extern const struct fluid_ops lee_kesler_ops;
+extern const struct fluid_ops virial_pitzer_abbott_ops;
+extern const struct fluid_ops virial_tsonopoulos_ops;
+extern const struct fluid_ops virial_pitzer_abbott_pressure_ops;
+extern const struct fluid_ops virial_tsonopoulos_pressure_ops;
 
 #endif

@@ -248,9 +248,13 @@ static void set_explicit_slopes(const struct explicit_phase *explicit, const dou
 static struct explicit_phase arrays_of_explicit(unsigned want, const struct phase *out)
 {
     return (struct explicit_phase){
-        .ln_phi = want & PHASE_LN_PHI ? out->ln_phi : want & PHASE_LN_F ? out->ln_f_over_x : NULL,
+        .ln_phi = want & PHASE_LN_PHI ? out->ln_phi
+                  : want & PHASE_LN_F ? out->ln_f_over_x
+                                      : NULL,
         .dln_phi_dn = want & PHASE_DLN_PHI_DN ? out->dln_phi_dn : NULL,
-        .dln_phi_dp = want & PHASE_DLN_PHI_DP ? out->dln_phi_dp : want & PHASE_DP_DN ? out->dp_dn : NULL,
+        .dln_phi_dp = want & PHASE_DLN_PHI_DP ? out->dln_phi_dp
+                      : want & PHASE_DP_DN    ? out->dp_dn
+                                              : NULL,
         .dln_phi_dt = want & PHASE_DLN_PHI_DT ? out->dln_phi_dt : NULL,
         .roots = 1,
     };
@@ -305,8 +309,8 @@ static double next_ln_pressure(const struct pressure_search *search, double newt
     return isfinite(search->low) ? 0.5 * (search->low + search->high) : search->ln_p - 1.0;
 }
 
-/* The change of ln p from V(p) = n R T Z / p to the volume at which the ideal gas has the pressure p / ratio: a vapour's
- * ln V is nearly straight in ln p, a liquid's V in p. */
+/* The change of ln p from V(p) = n R T Z / p to the volume at which the ideal gas has the pressure p / ratio: of a
+ * vapour ln V is nearly straight in ln p, of a liquid V in p. */
 static double ln_pressure_step(const struct explicit_phase *at, double ratio, enum branch branch)
 {
     const double stiffness = at->Z - at->Z_ln_p; /* -p dV/dp / (n R T / p) */
@@ -324,12 +328,14 @@ static enum answer pressure_on_branch(const struct fluid_at_t *at_t, double volu
 {
     const double ideal = total(n, at_t->fluid->count) * at_t->fluid->gas_constant * at_t->temperature / volume;
     struct pressure_search search = {-(double)INFINITY, (double)INFINITY, log(ideal)};
+    enum answer refusal = ANSWER_NO_SUCH_ROOT;
     for (int count = 0; count < MOST_PRESSURES; count++) {
         struct explicit_phase at = {.roots = 1};
         *pressure = exp(search.ln_p);
         const enum answer answer = at_t->fluid->ops->tp(at_t, *pressure, n, branch, &at);
         double newton = (double)NAN;
-        if (answer == ANSWER_NO_SUCH_ROOT) {
+        if (answer == ANSWER_NO_SUCH_ROOT || answer == ANSWER_OUT_OF_RANGE) {
+            refusal = answer;
             *(branch == BRANCH_VAPOUR ? &search.high : &search.low) = search.ln_p;
         } else if (answer != ANSWER_OK || !at.has_slopes) {
             return answer != ANSWER_OK ? answer : ANSWER_CANNOT;
@@ -344,11 +350,11 @@ static enum answer pressure_on_branch(const struct fluid_at_t *at_t, double volu
         const double next = next_ln_pressure(&search, newton);
         if (!(next > search.low && next < search.high)) {
             /* No number is left between the bounds: at a root, or at the end of the branch. */
-            return fabs(*pressure / ideal - at.Z) <= LAST_VOLUME_ERROR * at.Z ? ANSWER_OK : ANSWER_NO_SUCH_ROOT;
+            return fabs(*pressure / ideal - at.Z) <= LAST_VOLUME_ERROR * at.Z ? ANSWER_OK : refusal;
         }
         search.ln_p = next;
     }
-    return ANSWER_NO_SUCH_ROOT;
+    return refusal;
 }
 
 /* The phase of that volume: on the vapour's branch or else the liquid's. */

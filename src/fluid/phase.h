@@ -47,8 +47,8 @@ enum answer phase_tp(const struct fluid_at_t *at_t, double pressure, const doubl
 
 /* The phase at volume (m3); its pressure may be negative (inside a spinodal). With PHASE_LN_PHI, PHASE_DLN_PHI_DP or
  * PHASE_RESIDUAL and a pressure that is not positive the answer is ANSWER_OUT_OF_RANGE; PHASE_LN_F answers there too.
- * A (T, p) method's pressure is solved for, on the vapour's branch and then on the liquid's: ANSWER_NO_SUCH_ROOT between
- * them, ANSWER_CANNOT from one without slopes. */
+ * A (T, p) method's pressure is solved for, on the vapour's branch and then on the liquid's: ANSWER_NO_SUCH_ROOT
+ * between them, ANSWER_CANNOT from one without slopes. */
 enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double n[], unsigned want, struct phase *out);
 
 /* A memory-free home for a pure fluid's arrays: phase_of_pure points a struct phase at it. */

@@ -171,6 +171,7 @@ struct pure_spec {
     struct optional critical_temperature, critical_pressure, critical_density; /* K, Pa, mol/m3 */
     struct optional acentric;
     struct optional triple_temperature;     /* K */
+    struct optional dipole;                 /* C m */
     const struct reference_spec *reference; /* NULL where none is published */
     const struct reference_spec *gerg_2008; /* NULL: not one of the components of GERG-2008 */
     size_t cubic_set_count;

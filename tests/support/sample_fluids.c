@@ -276,6 +276,16 @@ const struct sample_fluid SAMPLE_FLUIDS[] = {
     {"quantum mixture", "quantum-peng-robinson", 3, {NEON, HYDROGEN, HELIUM}, {0.47, 0.59, 0.31}, SAMPLE_CONSTANTS},
     {"Lee-Kesler propane", "lee-kesler", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"Lee-Kesler mixture", "lee-kesler", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
+    {"virial propane", "virial-tsonopoulos", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
+    {"virial mixture", "virial-tsonopoulos", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
+    {"virial mixture by Pitzer and Abbott",
+     "virial-pitzer-abbott",
+     3,
+     {METHANE, PROPANE, HYDROGEN},
+     {0.53, 0.29, 0.13},
+     SAMPLE_INVENTED},
+    {"virial propane in pressure", "virial-pitzer-abbott-pressure", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
+    {"virial mixture in pressure", "virial-tsonopoulos-pressure", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
 };
 const size_t SAMPLE_FLUIDS_COUNT = sizeof SAMPLE_FLUIDS / sizeof *SAMPLE_FLUIDS;
 
