@@ -2,7 +2,10 @@
  * each figure also stands as a multiple of one call of exp measured in the same run. */
 #define _POSIX_C_SOURCE 200809L
 
+#include "equilibrium/boundary.h"
 #include "equilibrium/closed_vessel.h"
+#include "equilibrium/mixture_critical.h"
+#include "equilibrium/mixture_vessel.h"
 #include "equilibrium/saturation.h"
 #include "support/reference_data.h"
 
@@ -333,6 +336,297 @@ static bool measure_fugacities(size_t count, double unit)
     return failed == 0;
 }
 
+/* ---- equilibria of mixtures ------------------------------------------------------------------------------------ */
+
+enum { EQUILIBRIUM_STATES = 450, PASSES = 15 };
+
+struct equilibrium_state {
+    const struct fluid *fluid;
+    double temperature, pressure, volume; /* K, Pa, m3/mol */
+    double z[MOST_COMPONENTS];
+};
+
+/* Fluids of 2 to 10 of the gases from any of them on, and memory for each number. */
+struct mixture_room {
+    const struct fluid *fluid[MOST_COMPONENTS][MOST_COMPONENTS + 1]; /* by first gas and count */
+    struct fluid_at_t *at_t[MOST_COMPONENTS + 1];
+    struct equilibrium_workspace *ws[MOST_COMPONENTS + 1];
+    struct split *split[MOST_COMPONENTS + 1];
+    struct mixture_vessel *vessel[MOST_COMPONENTS + 1];
+    struct envelope *envelope[MOST_COMPONENTS + 1];
+    struct phase *phase[MOST_COMPONENTS + 1];
+    struct boundary_point *point;
+};
+
+/* Of the size fitted to measurements: one for each pairing of air gases, carbon dioxide and hydrocarbons. */
+static double usual_kij(size_t a, size_t b)
+{
+    static const int KIND[MOST_COMPONENTS] = {0, 2, 2, 1, 2, 2, 2, 0, 0, 2};
+    static const double KIJ[3][3] = {{0.0, 0.0, 0.08}, {0.0, 0.0, 0.12}, {0.08, 0.12, 0.0}};
+    return KIJ[KIND[a]][KIND[b]];
+}
+
+static const struct fluid *open_mixture(size_t first, size_t count, struct arena *arena)
+{
+    const struct pure_spec **pure = arena_alloc(arena, count, sizeof *pure);
+    double *kij = arena_alloc(arena, count * count, sizeof *kij);
+    struct fluid_spec *spec = arena_alloc(arena, 1, sizeof *spec);
+    struct fluid_lack_report lack;
+    for (size_t i = 0; i < count; i++) {
+        const size_t gas = (first + i) % MOST_COMPONENTS;
+        pure[i] = &GASES[gas];
+        for (size_t j = 0; j < count; j++) {
+            kij[i * count + j] = usual_kij(gas, (first + j) % MOST_COMPONENTS);
+        }
+    }
+    *spec = (struct fluid_spec){.count = count, .pure = pure, .kij = kij};
+    return fluid_create("peng-robinson", spec, arena, &lack);
+}
+
+static struct mixture_room *open_room(struct arena *arena)
+{
+    struct mixture_room *room = arena_alloc(arena, 1, sizeof *room);
+    for (size_t count = 2; count <= MOST_COMPONENTS; count++) {
+        for (size_t first = 0; first < MOST_COMPONENTS; first++) {
+            room->fluid[first][count] = open_mixture(first, count, arena);
+        }
+        room->at_t[count] = fluid_at_t_create(room->fluid[0][count], arena);
+        room->ws[count] = equilibrium_workspace_create(count, arena);
+        room->split[count] = split_create(count, arena);
+        room->vessel[count] = mixture_vessel_create(count, arena);
+        room->envelope[count] = envelope_create(count, arena);
+        room->phase[count] = phase_create(count, arena);
+    }
+    room->point = boundary_point_create(MOST_COMPONENTS, arena);
+    return room;
+}
+
+static bool set_temperature(const struct mixture_room *room, const struct equilibrium_state *s)
+{
+    return fluid_set_t(room->at_t[s->fluid->count], s->fluid, s->temperature) == ANSWER_OK;
+}
+
+static const struct split *flash(const struct mixture_room *room, const struct equilibrium_state *s, double pressure)
+{
+    const size_t count = s->fluid->count;
+    struct split *split = room->split[count];
+    const enum answer answer = split_at_tp(room->at_t[count], pressure, s->z, room->ws[count], split);
+    return answer == ANSWER_OK ? split : NULL;
+}
+
+/* ---- their sets: each draws again until it is what its name says ----------------------------------------------- */
+
+/* 200 to 400 K, 1 kPa to 60 MPa even in ln p, 2 to 10 gases in turn, compositions even over the simplex. */
+static bool draw_grid(const struct mixture_room *room, size_t index, uint64_t *seed, struct equilibrium_state *s)
+{
+    const size_t count = 2 + index % (MOST_COMPONENTS - 1);
+    double sum = 0.0;
+    s->fluid = room->fluid[(size_t)(MOST_COMPONENTS * draw_uniform(seed))][count];
+    s->temperature = between(200.0, 400.0, draw_uniform(seed));
+    s->pressure = 1e3 * pow(6e4, draw_uniform(seed));
+    for (size_t k = 0; k < count; k++) {
+        sum += s->z[k] = -log(1.0 - draw_uniform(seed));
+    }
+    for (size_t k = 0; k < count; k++) {
+        s->z[k] /= sum;
+    }
+    return set_temperature(room, s);
+}
+
+/* From 1e-2 to 1e-6 of one above or below it, even in the logarithm. */
+static double nearly_one(uint64_t *seed)
+{
+    const double distance = pow(10.0, -2.0 - 4.0 * draw_uniform(seed));
+    return draw_uniform(seed) < 0.5 ? 1.0 - distance : 1.0 + distance;
+}
+
+/* Beside the pressure, between that of the grid and twice, four times ... that, at which phases come or go. */
+static bool draw_near_saturation(const struct mixture_room *room, size_t index, uint64_t *seed,
+                                 struct equilibrium_state *s)
+{
+    const struct split *split = draw_grid(room, index, seed, s) ? flash(room, s, s->pressure) : NULL;
+    const size_t here = split ? split->phase_count : 0;
+    double low = s->pressure, high = s->pressure;
+    do {
+        low = high;
+        high *= 2.0;
+        split = flash(room, s, high);
+    } while (split && split->phase_count == here && high < 6e7);
+    if (!split || split->phase_count == here) {
+        return false;
+    }
+    for (int k = 0; k < 40; k++) {
+        const double middle = sqrt(low * high);
+        split = flash(room, s, middle);
+        *(split && split->phase_count == here ? &low : &high) = middle;
+    }
+    s->pressure = low * nearly_one(seed);
+    return true;
+}
+
+/* Temperature and pressure within 1 % of those of a critical point, evenly. */
+static bool draw_near_critical(const struct mixture_room *room, size_t index, uint64_t *seed,
+                               struct equilibrium_state *s)
+{
+    const bool is_drawn = draw_grid(room, index, seed, s);
+    const size_t count = s->fluid->count;
+    struct envelope *envelope = room->envelope[count];
+    struct mixture_critical critical;
+    if (!is_drawn || envelope_trace(room->at_t[count], s->fluid, s->z, room->ws[count], envelope) != ANSWER_OK ||
+        envelope->critical_count == 0 ||
+        mixture_critical_near(room->at_t[count], s->fluid, s->z, &envelope->critical[0], room->ws[count], &critical) !=
+            ANSWER_OK) {
+        return false;
+    }
+    s->temperature = critical.temperature * between(0.99, 1.01, draw_uniform(seed));
+    s->pressure = critical.pressure * between(0.99, 1.01, draw_uniform(seed));
+    return critical.pressure > 0.0;
+}
+
+/* States of the grid that have a dew point at their temperature. */
+static bool draw_with_dew(const struct mixture_room *room, size_t index, uint64_t *seed, struct equilibrium_state *s)
+{
+    const bool is_drawn = draw_grid(room, index, seed, s);
+    const size_t count = s->fluid->count;
+    return is_drawn && boundary_dew_pressure(room->at_t[count], s->z, room->ws[count], room->point) == ANSWER_OK;
+}
+
+/* States of the grid that are two phases, with the volume these fill. */
+static bool draw_two_phases(const struct mixture_room *room, size_t index, uint64_t *seed, struct equilibrium_state *s)
+{
+    const struct split *split = draw_grid(room, index, seed, s) ? flash(room, s, s->pressure) : NULL;
+    if (!split || split->phase_count != 2) {
+        return false;
+    }
+    s->volume = 0.0;
+    for (size_t k = 0; k < 2; k++) {
+        s->volume += split->phase[k].fraction * split->phase[k].molar_volume;
+    }
+    return true;
+}
+
+/* ---- what is done with them, the temperature set anew each time ------------------------------------------------ */
+
+static bool do_fugacities(const struct mixture_room *room, const struct equilibrium_state *s)
+{
+    const size_t count = s->fluid->count;
+    return set_temperature(room, s) &&
+           phase_tp(room->at_t[count], s->pressure, s->z, BRANCH_STABLE, PHASE_LN_PHI, room->phase[count]) == ANSWER_OK;
+}
+
+static bool do_flash(const struct mixture_room *room, const struct equilibrium_state *s)
+{
+    const struct split *split = set_temperature(room, s) ? flash(room, s, s->pressure) : NULL;
+    return split && split->smallest_tpd >= -SPLIT_LEAST_TPD;
+}
+
+static bool do_dew_pressure(const struct mixture_room *room, const struct equilibrium_state *s)
+{
+    const size_t count = s->fluid->count;
+    return set_temperature(room, s) &&
+           boundary_dew_pressure(room->at_t[count], s->z, room->ws[count], room->point) == ANSWER_OK &&
+           room->point->is_stable;
+}
+
+/* Without a start from a state nearby; the pressure of the flash that gave the volume must come back. */
+static bool do_vessel(const struct mixture_room *room, const struct equilibrium_state *s)
+{
+    const size_t count = s->fluid->count;
+    struct mixture_vessel *vessel = room->vessel[count];
+    return set_temperature(room, s) &&
+           mixture_vessel_at_tv(room->at_t[count], s->volume, s->z, NULL, room->ws[count], vessel) == ANSWER_OK &&
+           vessel->split->phase_count == 2 && fabs(vessel->split->pressure / s->pressure - 1.0) <= 1e-7;
+}
+
+struct equilibrium_bench {
+    const char *operation, *set;
+    bool (*draw)(const struct mixture_room *room, size_t index, uint64_t *seed, struct equilibrium_state *s);
+    bool (*run)(const struct mixture_room *room, const struct equilibrium_state *s);
+};
+
+static const struct equilibrium_bench EQUILIBRIUM_BENCHES[] = {
+    {"flash at T, p with stability", "grid", draw_grid, do_flash},
+    {"flash at T, p with stability", "near-saturation", draw_near_saturation, do_flash},
+    {"flash at T, p with stability", "near-critical", draw_near_critical, do_flash},
+    {"dew pressure at T with stability", "grid-with-dew", draw_with_dew, do_dew_pressure},
+    {"two-phase vessel at T, V, with stability", "grid-two-phase", draw_two_phases, do_vessel},
+};
+
+/* Seconds for each state: the median over passes, each of which goes through all states. */
+static void time_states(const struct equilibrium_bench *bench, const struct mixture_room *room,
+                        const struct equilibrium_state states[], double seconds[], size_t *failed)
+{
+    double samples[EQUILIBRIUM_STATES][PASSES];
+    for (size_t k = 0; k < PASSES; k++) {
+        *failed = 0;
+        for (size_t i = 0; i < EQUILIBRIUM_STATES; i++) {
+            const double start = now();
+            *failed += bench->run(room, &states[i]) ? 0 : 1;
+            samples[i][k] = now() - start;
+        }
+    }
+    for (size_t i = 0; i < EQUILIBRIUM_STATES; i++) {
+        qsort(samples[i], PASSES, sizeof **samples, by_size);
+        seconds[i] = samples[i][PASSES / 2];
+    }
+}
+
+struct summary {
+    double mean, median;
+};
+
+static struct summary summary_of(double seconds[])
+{
+    struct summary summary = {.mean = 0.0};
+    for (size_t i = 0; i < EQUILIBRIUM_STATES; i++) {
+        summary.mean += seconds[i] / EQUILIBRIUM_STATES;
+    }
+    qsort(seconds, EQUILIBRIUM_STATES, sizeof *seconds, by_size);
+    summary.median = seconds[EQUILIBRIUM_STATES / 2];
+    return summary;
+}
+
+/* Prints one row; false when a state failed. The unit is ln phi of the same mixtures at the same states. */
+static bool measure_equilibria(const struct equilibrium_bench *bench, const struct mixture_room *room,
+                               struct equilibrium_state states[])
+{
+    static const struct equilibrium_bench UNIT = {.run = do_fugacities};
+    double seconds[EQUILIBRIUM_STATES];
+    uint64_t seed = 20250917;
+    size_t failed = 0, unit_failed = 0;
+    for (size_t i = 0; i < EQUILIBRIUM_STATES; i++) {
+        while (!bench->draw(room, i, &seed, &states[i])) {}
+    }
+    time_states(&UNIT, room, states, seconds, &unit_failed);
+    const struct summary unit = summary_of(seconds);
+    time_states(bench, room, states, seconds, &failed);
+    const struct summary time = summary_of(seconds);
+    printf("%-42s %-16s %9.2f %9.2f %13.0f %10.1f", bench->operation, bench->set, 1e6 * time.median, 1e6 * time.mean,
+           1.0 / time.median, time.mean / unit.mean);
+    if (failed + unit_failed > 0) {
+        printf("   %zu states failed", failed + unit_failed);
+    }
+    printf("\n");
+    return failed + unit_failed == 0;
+}
+
+static bool measure_all_equilibria(void)
+{
+    struct arena *arena = arena_create(NULL);
+    const struct mixture_room *room = open_room(arena);
+    struct equilibrium_state *states = arena_alloc(arena, EQUILIBRIUM_STATES, sizeof *states);
+    bool good = true;
+    printf("\nmixtures of 2 to 10 components, Peng-Robinson: over %d seeded states, each the median of %d passes\n\n",
+           EQUILIBRIUM_STATES, PASSES);
+    printf("%-42s %-16s %9s %9s %13s %10s\n", "operation", "state set", "median us", "mean us", "operations/s",
+           "ln phi's");
+    for (size_t i = 0; i < sizeof EQUILIBRIUM_BENCHES / sizeof *EQUILIBRIUM_BENCHES; i++) {
+        good = measure_equilibria(&EQUILIBRIUM_BENCHES[i], room, states) && good;
+    }
+    arena_free(arena);
+    return good;
+}
+
 int main(void)
 {
     double unit = 0.0;
@@ -345,5 +639,6 @@ int main(void)
     good = measure_fugacities(2, unit) && good;
     good = measure_fugacities(5, unit) && good;
     good = measure_fugacities(10, unit) && good;
+    good = measure_all_equilibria() && good;
     return good ? EXIT_SUCCESS : EXIT_FAILURE;
 }
