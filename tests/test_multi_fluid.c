@@ -347,6 +347,20 @@ static void a_feed_between_its_branches_still_splits(void **state)
     arena_free(arena);
 }
 
+/* Below 235 K or so the equation of water has no liquid at these pressures; the loops it has instead are no phases. */
+static void a_loop_of_cold_water_is_no_phase(void **state)
+{
+    (void)state;
+    static const char *const names[] = {"nitrogen", "water"};
+    struct arena *arena = arena_create(NULL);
+    const struct measured_mixture m = measured_mixture_create("multi-fluid", names, COUNT(names), arena);
+    const double n[] = {1e-9, 1.0};
+    struct phase phase = {.ln_phi = NULL};
+    assert_int_equal(fluid_set_t(m.at_t, m.fluid, 225.0), ANSWER_OK);
+    assert_int_equal(phase_tp(m.at_t, 2e6, n, BRANCH_STABLE, 0, &phase), ANSWER_NO_SUCH_ROOT);
+    arena_free(arena);
+}
+
 /* Both sides of a vapour-liquid equilibrium from the library, by fugacities that have to be equal. */
 static void a_split_settles_with_equal_fugacities(void **state)
 {
@@ -457,6 +471,7 @@ int main(void)
         cmocka_unit_test(an_absent_component_is_the_limit_of_a_trace),
         cmocka_unit_test(roots_are_the_first_from_either_end),
         cmocka_unit_test(a_feed_between_its_branches_still_splits),
+        cmocka_unit_test(a_loop_of_cold_water_is_no_phase),
         cmocka_unit_test(a_split_settles_with_equal_fugacities),
         cmocka_unit_test(a_pair_turned_round_is_the_same_pair),
         cmocka_unit_test(a_pair_nobody_published_is_estimated_and_says_so),

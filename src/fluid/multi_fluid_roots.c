@@ -34,6 +34,8 @@
 #define SEARCHED_TAU 1.15
 /* The stiffness left at all points looked at, for the isotherm between them to be without loops. */
 #define LEAST_STIFFNESS 0.05
+/* Up to this tau a root between the branches may stand in for a feed; colder, what lies between is a spurious loop. */
+#define MIDDLE_TAU 1.3
 /* The delta at which second virial coefficients are taken. */
 #define VIRIAL_DELTA 1e-5
 /* Two roots nearer than this are one. */
@@ -341,7 +343,7 @@ static enum answer stable_root(struct multi_fluid_work *w, double pressure, doub
     struct search up, down;
     const enum answer has_vapour = vapour_root(w, pressure, largest, &up, &vapour);
     const enum answer has_liquid = liquid_root(w, pressure, largest, &down, &liquid);
-    if (has_vapour == ANSWER_NO_SUCH_ROOT && has_liquid == ANSWER_NO_SUCH_ROOT) {
+    if (has_vapour == ANSWER_NO_SUCH_ROOT && has_liquid == ANSWER_NO_SUCH_ROOT && w->tau <= MIDDLE_TAU) {
         return middle_root(&up, &down, root);
     }
     if (has_vapour == ANSWER_OK && has_liquid == ANSWER_OK) {
