@@ -73,7 +73,8 @@ struct explicit_phase {
     int roots;          /* mechanically stable roots found (1 or 2) */
     /* A method that sets has_slopes gives the two arrays above and all of these as well. */
     bool has_slopes;
-    double Z_ln_p, Z_ln_t; /* p dZ/dp at constant T, T dZ/dT at constant p */
+    double compliance;     /* Z - p dZ/dp at constant T, that is -(p^2 / n R T) dV/dp; for a liquid small beside Z */
+    double Z_ln_t;         /* T dZ/dT at constant p */
     double residual_gibbs_rt;                              /* the mean of ln phi_i by mole */
     double residual_enthalpy_rt, residual_heat_capacity_r; /* as in struct phase */
 };

@@ -214,7 +214,7 @@ static struct pseudocritical mix(const struct lee_kesler_at_t *at, const double 
 
 /* g and its derivatives by lambda (l), pi (p) and omega (w). */
 struct potential {
-    double Z; /* g_p + 1, which a liquid needs with all its digits */
+    double Z, compliance; /* g_p + 1 and Z - g_pp, which a liquid needs with all their digits */
     double g, g_l, g_p, g_w;
     double g_ll, g_lp, g_pp, g_wl, g_wp;
 };
@@ -228,6 +228,7 @@ static struct potential interpolate(const double density[LEE_KESLER_ENDS], doubl
     const double Z = simple.Z + w * (ref.Z - simple.Z);
     return (struct potential){
         .Z = Z,
+        .compliance = simple.compliance + w * (ref.compliance - simple.compliance),
         .g = simple.ln_phi + w * (ref.ln_phi - simple.ln_phi),
         .g_l = -simple.h - w * (ref.h - simple.h),
         .g_p = Z - 1.0,
@@ -345,7 +346,7 @@ static enum answer tp(const struct fluid_at_t *at_t, double pressure, const doub
         return ANSWER_OUT_OF_RANGE; /* the interpolation, drawn out far beyond an end, has no volume left */
     }
     out->has_slopes = true;
-    out->Z_ln_p = g.g_pp;
+    out->compliance = g.compliance;
     out->Z_ln_t = g.g_lp;
     out->residual_gibbs_rt = g.g;
     out->residual_enthalpy_rt = -g.g_l;

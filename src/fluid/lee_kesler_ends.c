@@ -250,6 +250,7 @@ struct lee_kesler_spot lee_kesler_spot_at(enum lee_kesler_end which, double T_r,
         .ln_phi = Z - 1.0 - log(Z) + a,
         .h = Z - 1.0 - a_1,
         .Z_pi = Z * (1.0 - Z / stiffness),
+        .compliance = Z * Z / stiffness,
         .Z_lambda = Z * (thermal / stiffness - 1.0),
         .cp = thermal * thermal / stiffness - 1.0 - a_2 - 2.0 * a_1,
     };

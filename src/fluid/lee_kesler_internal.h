@@ -36,6 +36,7 @@ struct lee_kesler_spot {
     double Z, ln_phi;
     double h;              /* residual enthalpy over R T */
     double Z_pi, Z_lambda; /* derivatives of Z */
+    double compliance;     /* Z - Z_pi without cancelling digits */
     double cp;             /* residual isobaric heat capacity over R */
 };
 

@@ -225,13 +225,13 @@ static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, c
 
 /* ---- methods explicit in T, p, n ------------------------------------------------------------------------------- */
 
-/* From Z and its derivatives, as V = n R T Z / p:  dV/dp = (n R T / p^2) (p dZ/dp - Z),
+/* From Z and its derivatives, as V = n R T Z / p:  dV/dp = -(n R T / p^2) (Z - p dZ/dp),
  * dV/dT = (n R / p) (Z + T dZ/dT),  dp/dT = -(dV/dT) / (dV/dp),  dp/dn_i = -v_i / (dV/dp). */
 static void set_explicit_slopes(const struct explicit_phase *explicit, const double *dln_phi_dp, double gas_constant,
                                 size_t count, unsigned want, struct phase *out)
 {
     const double R = gas_constant, T = out->temperature, p = out->pressure;
-    const double dv_dp = out->amount * R * T / (p * p) * (explicit->Z_ln_p - explicit->Z);
+    const double dv_dp = -out->amount * R * T / (p * p) * explicit->compliance;
     out->dp_dv = 1.0 / dv_dp;
     out->dp_dt = -out->amount * R / p * (explicit->Z + explicit->Z_ln_t) / dv_dp;
     for (size_t i = 0; want & PHASE_DP_DN && i < count; i++) {
@@ -313,11 +313,10 @@ static double next_ln_pressure(const struct pressure_search *search, double newt
  * vapour ln V is nearly straight in ln p, of a liquid V in p. */
 static double ln_pressure_step(const struct explicit_phase *at, double ratio, enum branch branch)
 {
-    const double stiffness = at->Z - at->Z_ln_p; /* -p dV/dp / (n R T / p) */
     if (branch == BRANCH_VAPOUR) {
-        return -log(ratio / at->Z) * at->Z / stiffness;
+        return -log(ratio / at->Z) * at->Z / at->compliance;
     }
-    const double part = (at->Z - ratio) / stiffness;
+    const double part = (at->Z - ratio) / at->compliance;
     return part > -0.5 ? log1p(part) : -0.7;
 }
 

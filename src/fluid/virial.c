@@ -400,7 +400,7 @@ static enum answer tp(const struct fluid_at_t *at_t, double pressure, const doub
     }
     out->roots = 1;
     out->has_slopes = true;
-    out->Z_ln_p = scale * B;
+    out->compliance = 1.0;
     out->Z_ln_t = scale * (T * B_t - B);
     out->residual_gibbs_rt = scale * B;
     out->residual_enthalpy_rt = scale * (B - T * B_t);
