@@ -175,6 +175,38 @@ static void no_pair_is_missed_beside_the_cricondentherm(void **state)
 }
 
 /* Just inside a stable boundary the flash finds two phases, just outside one. */
+/* Lines traced from either end of one curve meet it twice; a point is told once all the same. */
+static void no_point_is_told_twice(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct state_room *room = state_room_create(arena);
+    for (uint64_t seed = 1; seed <= 400; seed++) {
+        struct mixture_state drawn;
+        mixture_state_draw(seed, STATE_GENERAL, room, &drawn);
+        const struct state_place place = mixture_state_place(&drawn, room);
+        struct envelope *envelope = envelope_create(drawn.count, arena);
+        struct boundary_list *list = boundary_list_create(drawn.count, arena);
+        if (envelope_trace(place.at_t, place.fluid, drawn.z, place.ws, envelope) != ANSWER_OK) {
+            continue; /* one component present */
+        }
+        for (size_t i = 1; i < envelope->critical_count; i++) {
+            const struct critical_point *a = &envelope->critical[i - 1], *b = &envelope->critical[i];
+            assert_true(fabs(log(a->temperature / b->temperature)) > 1e-4 ||
+                        fabs(log(a->pressure / b->pressure)) > 1e-3);
+        }
+        if (boundary_at_t(place.at_t, place.fluid, drawn.temperature, drawn.z, envelope, place.ws, list) != ANSWER_OK) {
+            continue;
+        }
+        for (size_t i = 1; i < list->count; i++) {
+            const struct boundary_point *a = list->point[i - 1], *b = list->point[i];
+            assert_true(fabs(log(a->pressure / b->pressure)) > 1e-9 ||
+                        fabs(log(a->incipient_volume / b->incipient_volume)) > 1e-6);
+        }
+    }
+    arena_free(arena);
+}
+
 static void flashes_change_their_phases_at_the_boundary(void **state)
 {
     (void)state;
@@ -220,6 +252,7 @@ int main(void)
         cmocka_unit_test(temperatures_at_a_pressure_lead_back_to_it),
         cmocka_unit_test(extrema_agree_with_an_independent_evaluation),
         cmocka_unit_test(no_pair_is_missed_beside_the_cricondentherm),
+        cmocka_unit_test(no_point_is_told_twice),
         cmocka_unit_test(flashes_change_their_phases_at_the_boundary),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -324,6 +324,21 @@ static bool is_at_end(struct tracer *t, double coldest)
 }
 
 /* The critical point between the last two points, if the ratios pass through one there. */
+/* Two lines may be one curve traced from either end; its critical point is interpolated to about these parts. */
+#define SAME_CRITICAL_TEMPERATURE 1e-3
+#define SAME_CRITICAL_PRESSURE    1e-2
+
+static bool is_noted(const struct envelope *e, const struct critical_point *critical)
+{
+    for (size_t i = 0; i < e->critical_count; i++) {
+        if (fabs(log(e->critical[i].temperature / critical->temperature)) < SAME_CRITICAL_TEMPERATURE &&
+            fabs(log(e->critical[i].pressure / critical->pressure)) < SAME_CRITICAL_PRESSURE) {
+            return true;
+        }
+    }
+    return false;
+}
+
 static void note_critical(struct tracer *t)
 {
     struct envelope *e = t->envelope;
@@ -334,11 +349,14 @@ static void note_critical(struct tracer *t)
         return;
     }
     const double part = before[ratio] / (before[ratio] - after[ratio]);
-    e->critical[e->critical_count++] = (struct critical_point){
+    const struct critical_point critical = {
         .temperature = exp(before[m] + part * (after[m] - before[m])),
         .pressure = exp(before[m + 1] + part * (after[m + 1] - before[m + 1])),
         .molar_volume = 0.5 * (e->feed_volume[last] + e->incipient_volume[last]),
     };
+    if (!is_noted(e, &critical)) {
+        e->critical[e->critical_count++] = critical;
+    }
 }
 
 /* The point at hand, after any extrema before it. */
@@ -610,6 +628,23 @@ static void sort(struct boundary_list *list, bool by_pressure)
     }
 }
 
+/* Parts within which two solutions are one point, met by two lines. */
+#define SAME_POINT_PRESSURE 1e-9
+#define SAME_POINT_VOLUME   1e-6
+
+static bool is_known(const struct boundary_list *list, const struct boundary_point *point)
+{
+    for (size_t i = 0; i < list->count; i++) {
+        const struct boundary_point *known = list->point[i];
+        if (fabs(log(known->pressure / point->pressure)) <= SAME_POINT_PRESSURE &&
+            fabs(log(known->temperature / point->temperature)) <= SAME_POINT_PRESSURE &&
+            fabs(log(known->incipient_volume / point->incipient_volume)) <= SAME_POINT_VOLUME) {
+            return true;
+        }
+    }
+    return false;
+}
+
 static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, size_t offset, double ln_value,
                             const double z[], const struct envelope *e, struct equilibrium_workspace *ws,
                             struct boundary_list *out)
@@ -635,7 +670,7 @@ static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, 
             if (answer != ANSWER_OK) {
                 return answer;
             }
-            out->count++;
+            out->count += !is_known(out, out->point[out->count]);
         }
     }
     sort(out, offset == 0);
