@@ -10,6 +10,7 @@
 #include "support/result_reading.h"
 
 #include <math.h>
+#include <stdio.h>
 
 #define BAR 1e5
 
@@ -87,6 +88,116 @@ static void no_liquid_ends_at_the_lowest_dew_density(void **state)
     table = result_table(answered.sheet, "the first liquid at -25 degC", "peng-robinson");
     assert_close(cell_of(table, 0, "first-liquid"), 0.948984788042, 1e-8, "n-butane: independent");
     assert_close(cell_of(table, 0, "vapour-pressure"), 36095.8226769, 1e-9, "of n-butane by itself: independent");
+    elaborated_end(&answered.it);
+}
+
+/* Fluids whose dew pressures lie below 1 Pa. Their dew points were evaluated independently: the 1976 equation of Peng
+ * and Robinson in 60 digits, by successive substitution for equal fugacities to 1e-40. */
+#define HEAVY_IN_METHANE                                                                                         \
+    "component x-ch4 { molar-mass 16.0425 g/mol; critical-temperature 190.564 K; critical-pressure 4599200 Pa\n" \
+    "  acentric 0.01142 }\n"                                                                                     \
+    "component x-nc16 { molar-mass 226.441 g/mol; critical-temperature 722.1 K; critical-pressure 1479850 Pa\n"  \
+    "  acentric 0.744 }\n"                                                                                       \
+    "pair x-ch4 x-nc16 { peng-robinson kij 0.06 }\n"                                                             \
+    "mixture thin by mole { x-ch4 95 %; x-nc16 5 % }\n"
+#define BUTANE_IN_COLD_NITROGEN                                                                                  \
+    "component x-nc4 { molar-mass 58.1222 g/mol; critical-temperature 425.125 K; critical-pressure 3796000 Pa\n" \
+    "  acentric 0.201 }\n"                                                                                       \
+    "component x-n2 { molar-mass 28.0134 g/mol; critical-temperature 126.192 K; critical-pressure 3395800 Pa\n"  \
+    "  acentric 0.0372 }\n"                                                                                      \
+    "pair x-nc4 x-n2 { peng-robinson kij 0.08 }\n"                                                               \
+    "mixture thin by mole { x-nc4 2 %; x-n2 98 % }\n"
+
+static void a_dew_pressure_below_one_pascal_leaves_practically_no_charge(void **state)
+{
+    (void)state;
+    static const struct {
+        const char *range;
+        double coldest, density;
+    } cases[] = {
+        {"at -25 degC", 248.15, 1.40062229698873e-7},
+        {"from -25 degC to 5 degC", 248.15, 1.40062229698873e-7},
+        {"from -25 degC to 50 degC", 248.15, 1.40062229698873e-7},
+        {"at 5 degC", 278.15, 7.87212679132213e-6},
+    };
+    for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
+        char deck[2000];
+        snprintf(deck, sizeof deck,
+                 "%srule cold { %s no liquid; at 65 degC pressure <= test-pressure }\n"
+                 "sheet permissible-charge { fluid thin; vessel ten; rules cold; assessed \"x\" }\n",
+                 HEAVY_IN_METHANE, cases[i].range);
+        struct answered answered = answer(deck);
+        assert_close(fact_of(&answered, "mass"), 0.01 * cases[i].density, 1e-8, "dew density in 10 L: independent");
+        assert_close(fact_of(&answered, "governing-temperature"), cases[i].coldest, 1e-12, "the coldest is the worst");
+        assert_null(result_fact(answered.sheet, "coldest-above-cricondentherm", NULL));
+        assert_true(result_has_note(answered.sheet, "that is practically no charge"));
+        elaborated_end(&answered.it);
+    }
+}
+
+/* The dew densities at the cold ends, 5.42741192421919e-10 and 1.7065596475794e-7 kg/m3 (independent, as above), lie
+ * between each two charges. */
+static void the_coldest_temperature_is_the_worst_where_dew_pressures_are_tiny(void **state)
+{
+    (void)state;
+    static const struct {
+        const char *density, *range;
+        enum requirement_state state;
+    } cases[] = {
+        {"5.427411e-10", "from 85 K to 110 K", REQUIREMENT_MET},
+        {"5.427412e-10", "from 85 K to 110 K", REQUIREMENT_NOT_MET},
+        {"1.706559e-7", "from 99.13 K to 171.82 K", REQUIREMENT_MET},
+        {"1.706560e-7", "from 99.13 K to 171.82 K", REQUIREMENT_NOT_MET},
+        {"2e-5", "from 99.13 K to 171.82 K", REQUIREMENT_NOT_MET},
+        {"1", "from 85 K to 110 K", REQUIREMENT_NOT_MET},
+    };
+    for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
+        char deck[2000];
+        snprintf(deck, sizeof deck,
+                 "%scharge some { fluid thin; vessel ten; density %s kg/m3 }\n"
+                 "sheet settled-pressure { charge some; sweep temperature 20 degC; require %s no liquid }\n",
+                 BUTANE_IN_COLD_NITROGEN, cases[i].density, cases[i].range);
+        struct answered answered = answer(deck);
+        assert_int_equal(answered.sheet->first_requirement->state, cases[i].state);
+        elaborated_end(&answered.it);
+    }
+}
+
+/* At 119 K its dew pressure is 5.6e-23 Pa: independent, as above; at 60 K it is 6.4e-66 Pa. */
+static void a_fluid_that_is_unstable_however_thin_gets_no_charge(void **state)
+{
+    (void)state;
+    static const char *const ranges[] = {"at 119 K", "at 60 K", "from 60 K to 300 K"};
+    for (size_t i = 0; i < sizeof ranges / sizeof *ranges; i++) {
+        char deck[2000];
+        snprintf(deck, sizeof deck,
+                 "%srule cold { %s no liquid; at 65 degC pressure <= test-pressure }\n"
+                 "sheet permissible-charge { fluid thin; vessel ten; rules cold; assessed \"x\" }\n",
+                 HEAVY_IN_METHANE, ranges[i]);
+        struct answered answered = answer(deck);
+        const struct fact *mass = result_fact(answered.sheet, "mass", NULL);
+        assert_true(mass == NULL || mass->value < 1e-28);
+        assert_null(result_fact(answered.sheet, "coldest-above-cricondentherm", NULL));
+        assert_true(result_has_note(answered.sheet, "no state was found thin enough"));
+        elaborated_end(&answered.it);
+    }
+}
+
+/* The vessel's phases are found on their own, without the edges. */
+static void no_liquid_and_the_table_of_states_agree_where_the_dew_pressure_is_tiny(void **state)
+{
+    (void)state;
+    struct answered answered =
+        answer(HEAVY_IN_METHANE "charge dense { fluid thin; vessel ten; density 100 kg/m3 }\n"
+                                "sheet settled-pressure { charge dense; sweep temperature -25 degC, 0 degC\n"
+                                "  require from -25 degC to 5 degC no liquid; require at 0 degC no liquid\n"
+                                "  require at 0 degC one phase }\n");
+    size_t count = 0;
+    for (const struct requirement *one = answered.sheet->first_requirement; one != NULL; one = one->next) {
+        assert_int_equal(one->state, REQUIREMENT_NOT_MET);
+        count++;
+    }
+    assert_int_equal(count, 3);
     elaborated_end(&answered.it);
 }
 
@@ -369,6 +480,10 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(no_liquid_ends_at_the_lowest_dew_density),
+        cmocka_unit_test(a_dew_pressure_below_one_pascal_leaves_practically_no_charge),
+        cmocka_unit_test(the_coldest_temperature_is_the_worst_where_dew_pressures_are_tiny),
+        cmocka_unit_test(a_fluid_that_is_unstable_however_thin_gets_no_charge),
+        cmocka_unit_test(no_liquid_and_the_table_of_states_agree_where_the_dew_pressure_is_tiny),
         cmocka_unit_test(a_denser_window_is_shown_and_never_permitted),
         cmocka_unit_test(one_phase_asks_about_the_density_of_the_vessel_alone),
         cmocka_unit_test(near_the_cricondentherm_the_jump_of_the_limit_is_warned_of),

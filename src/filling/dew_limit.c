@@ -47,7 +47,7 @@ static bool find_dew_limit(struct method_run *method, double temperature, struct
     const struct edge_list *list;
     struct phase_edges edges;
     if (edges_at(method, temperature, &edges) != ANSWER_OK || !edges.has_low ||
-        mixture_edge_list(method, &list) != ANSWER_OK) {
+        mixture_edge_list(method, &list) != ANSWER_OK || list->is_unstable_at_start) {
         return false;
     }
     *edge = &list->items[0];
@@ -247,6 +247,12 @@ static void tell_far_dew(const struct permissible *sheet, const struct method_li
     }
     const struct boundary_point *highest = envelope->cricondentherm;
     const double distance = coldest - highest->temperature;
+    if (!(distance >= 0.0)) {
+        sheet_add_note(run->result, run->out,
+                       "by the stability test nothing condenses from %s on, though the cricondentherm is %s (%s)",
+                       temperature_words(run, coldest), temperature_words(run, highest->temperature), of->method->name);
+        return;
+    }
     struct fact *fact =
         sheet_add_fact(run->result, run->out, "cricondentherm", highest->temperature, look_temperature(run));
     fact->method = of->method->name;
@@ -255,7 +261,7 @@ static void tell_far_dew(const struct permissible *sheet, const struct method_li
     fact = sheet_add_fact(run->result, run->out, "coldest-above-cricondentherm", distance,
                           (struct look){"K", {"K", 1.0, 0.0}, 2});
     fact->method = of->method->name;
-    if (distance >= 0.0 && distance < NEAR_CRICONDENTHERM) {
+    if (distance < NEAR_CRICONDENTHERM) {
         const double colder = coldest - NEAR_CRICONDENTHERM;
         result_warn(run->result, CODE_W334, location_line(run->sheet->at), run->number,
                     "'%s' by %s: the cricondentherm is only %.2f K colder; the limit jumps there, and at %s %s",
@@ -280,6 +286,42 @@ static void tell_far_dews(const struct permissible *sheet, size_t index)
             has_begun = true;
         }
         tell_far_dew(sheet, of, index);
+    }
+}
+
+/* ---- hardly a state thin enough ---------------------------------------------------------------------------------- */
+
+/* Pa; a dew pressure below this leaves no charge to speak of. */
+#define PRACTICALLY_NOTHING 1.0
+
+static void tell_thin_dew(const struct sheet_run *run, struct method_run *method, const char *written,
+                          double temperature)
+{
+    struct phase_edges edges;
+    if (edges_at(method, temperature, &edges) != ANSWER_OK || !edges.has_low ||
+        !(edges.low_pressure < PRACTICALLY_NOTHING)) {
+        return;
+    }
+    if (isfinite(edges.low_volume)) {
+        sheet_add_note(run->result, run->out,
+                       "'%s': at %s the first liquid forms at %.3g Pa; that is practically no charge (%s)", written,
+                       temperature_words(run, temperature), edges.low_pressure, method->name);
+    } else {
+        sheet_add_note(run->result, run->out,
+                       "'%s': at %s no state was found thin enough, as one phase it is unstable at 1 Pa already; no "
+                       "charge is allowed (%s)",
+                       written, temperature_words(run, temperature), method->name);
+    }
+}
+
+static void tell_thin_dews(const struct permissible *sheet, size_t index)
+{
+    for (size_t m = 0; m < sheet->run->method_count; m++) {
+        const struct method_limits *of = &sheet->by_method[m];
+        if (is_told(of, index)) {
+            tell_thin_dew(sheet->run, of->method, sheet->criteria[index].predicate->written,
+                          of->limits[index].finding.worst_temperature);
+        }
     }
 }
 
@@ -334,6 +376,7 @@ void tell_dew_limits(const struct permissible *sheet)
         if (predicate->kind == PREDICATE_NO_LIQUID) {
             tell_criterion(sheet, i);
             tell_far_dews(sheet, i);
+            tell_thin_dews(sheet, i);
         }
     }
 }

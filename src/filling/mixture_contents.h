@@ -63,15 +63,23 @@ struct phase_edge {
 enum { MOST_EDGES = 8 };
 
 struct edge_list {
-    size_t count; /* by rising density */
+    size_t count;              /* by rising density */
+    bool is_unstable_at_start; /* the thinnest state tried is more than one phase, and no dew point below it was found;
+                                  the first edge, where there is one, then closes */
     struct phase_edge items[MOST_EDGES];
 };
 
 /* All edges at the temperature set, in the method's memory until it is asked at another temperature. */
 enum answer mixture_edge_list(struct method_run *method, const struct edge_list **out);
 
-/* The lowest and the highest of them, kept for many temperatures; without compositions. */
+/* The lowest and the highest of them, kept for many temperatures; without compositions. A fluid that is unstable
+ * however thin has a lowest edge at an infinite volume and no pressure. */
 enum answer mixture_edges(struct method_run *method, struct phase_edges *out);
+
+/* Holds the edges at the temperature set against the stability test at densities below the lowest, and at all where
+ * there is none, `molar_volume` then among them; what they missed is looked for again. ANSWER_FAILED where it is not
+ * found and the test still denies that the fluid is one phase. */
+enum answer mixture_prove_edges(struct method_run *method, double molar_volume);
 
 enum answer mixture_free_volume(struct method_run *method, double pressure, double *molar_volume, bool *holds_liquid);
 

@@ -13,7 +13,8 @@
 
 /* ---- where one phase ends ---------------------------------------------------------------------------------------- */
 
-/* Densities are tried upwards from that of a gas at this pressure, each by this factor above the one before. */
+/* Densities are tried upwards from that of a gas at this pressure, each by this factor above the one before. What is
+ * unstable there already has its dew point below. */
 #define THINNEST_PRESSURE 1.0 /* Pa */
 #define DENSITY_FACTOR    1.12
 /* Pa; far above any vessel's pressure, where looking for edges ends. */
@@ -23,6 +24,8 @@
 #define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
 /* Molar volumes by this factor beside an edge lie clearly on one side of it. */
 #define BESIDE_EDGE 1.3
+/* A dew point below the thinnest pressure is estimated, and looked for within this factor of volume. */
+#define BESIDE_ESTIMATE 1.1
 /* The state tried is the stable root of its pressure when their volumes agree to this part. */
 #define SAME_VOLUME 1e-7
 
@@ -106,6 +109,31 @@ static enum answer close_in(struct edge_search *search, double stable, double un
     return answer;
 }
 
+/* The dew point of a fluid that is unstable at the thinnest pressure. As thin as that the whole is an ideal gas, and
+ * the fugacities in a liquid do not depend on pressure: the smallest distance changes as -ln p, and is zero at p
+ * exp(tpd). Only states on both sides of that, tested, make it an edge; else all that is known is that the start is
+ * unstable. */
+static void find_thin_dew(struct edge_search *search, double thinnest, struct edge_list *list)
+{
+    struct method_run *method = search->method;
+    struct stability found;
+    list->is_unstable_at_start = true;
+    if (stability_at_tp(method->at_t, THINNEST_PRESSURE, method->z, STABILITY_REPORT, method->mixture->ws, &found) !=
+            ANSWER_OK ||
+        !found.has_incipient) {
+        return;
+    }
+    const double estimate = thinnest * exp(-found.smallest_tpd);
+    const double thin = estimate * BESIDE_ESTIMATE, dense = fmax(estimate / BESIDE_ESTIMATE, thinnest);
+    double thin_side, dense_side;
+    if (thin > dense && isfinite(thin) && stable_side(search, thin, &thin_side) == ANSWER_OK && thin_side > 0.0 &&
+        stable_side(search, dense, &dense_side) == ANSWER_OK && dense_side < 0.0 &&
+        close_in(search, thin, dense, &list->items[0]) == ANSWER_OK) {
+        list->count = 1;
+        list->is_unstable_at_start = false;
+    }
+}
+
 /* Without an envelope to go by: densities are tried upwards, and what is two-phase over less than a step is missed. */
 static enum answer scan_edges(struct method_run *method, struct edge_list *list)
 {
@@ -113,7 +141,11 @@ static enum answer scan_edges(struct method_run *method, struct edge_list *list)
     const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
     double before = method->fluid->gas_constant * method->at_t->temperature / THINNEST_PRESSURE, side_before;
     list->count = 0;
+    list->is_unstable_at_start = false;
     enum answer answer = stable_side(&search, before, &side_before);
+    if (answer == ANSWER_OK && side_before < 0.0) {
+        find_thin_dew(&search, before, list);
+    }
     for (double v = before / DENSITY_FACTOR; answer == ANSWER_OK && v > smallest; v /= DENSITY_FACTOR) {
         double side;
         answer = stable_side(&search, v, &side);
@@ -163,7 +195,13 @@ static bool agrees_with_stability(struct method_run *method, const struct edge_l
         if (!(thinner > denser)) {
             return false;
         }
-        if (middle <= smallest || stable_side(&search, middle, &side) != ANSWER_OK) {
+        if (middle <= smallest) {
+            continue;
+        }
+        if (stable_side(&search, middle, &side) != ANSWER_OK) {
+            if (i == 0) {
+                return false; /* that nothing condenses below the first dew point is never taken on trust */
+            }
             continue;
         }
         if ((side > 0.0) != (i % 2 == 0)) {
@@ -194,11 +232,11 @@ static bool is_above_envelope(const struct mixture_work *work, double temperatur
 #define CHECKED_STEP              20.0
 #define CHECKED_FACTOR            1.8
 #define CHECKED_THINNEST_PRESSURE 1e3 /* Pa */
-/* What the stability test cannot say counts for nothing. */
-static bool is_stable_along_isotherm(struct method_run *method)
+/* At molar volumes above `densest`. What the stability test cannot say counts for nothing. */
+static bool is_stable_along_isotherm(struct method_run *method, double densest)
 {
     struct edge_search search = {.method = method};
-    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
+    const double smallest = fmax(densest, smallest_molar_volume(method) / SHORT_OF_DENSEST);
     const double RT = method->fluid->gas_constant * method->at_t->temperature;
     for (double v = RT / CHECKED_THINNEST_PRESSURE; v > smallest; v /= CHECKED_FACTOR) {
         double side;
@@ -216,7 +254,7 @@ static bool is_whole(struct method_run *method)
     struct mixture_work *work = method->mixture;
     for (double T = CHECKED_FROM; T <= CHECKED_TO; T += CHECKED_STEP) {
         if (is_above_envelope(work, T) && fluid_set_t(method->at_t, method->fluid, T) == ANSWER_OK &&
-            !is_stable_along_isotherm(method)) {
+            !is_stable_along_isotherm(method, 0.0)) {
             return false;
         }
     }
@@ -427,6 +465,7 @@ static enum answer find_edges(struct method_run *method, struct edge_list *list)
     const struct envelope *envelope = mixture_envelope(method);
     struct mixture_work *work = method->mixture;
     list->count = 0;
+    list->is_unstable_at_start = false;
     const bool has_points = envelope != NULL && !is_above_envelope(work, temperature) &&
                             points_of_envelope(method, false, temperature) == ANSWER_OK;
     const enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
@@ -460,14 +499,21 @@ static enum answer lowest_and_highest(struct method_run *method, struct phase_ed
     const struct edge_list *list;
     const enum answer answer = mixture_edge_list(method, &list);
     *edges = (struct phase_edges){.is_known = answer == ANSWER_OK};
+    if (answer == ANSWER_OK && list->is_unstable_at_start) {
+        edges->edge_count = 1;
+        edges->has_low = true;
+        edges->low_volume = (double)INFINITY; /* and the pressure zero: no state is known to be thin enough */
+    }
     if (answer != ANSWER_OK || list->count == 0) {
         return answer;
     }
     const struct phase_edge *low = &list->items[0], *high = &list->items[list->count - 1];
-    edges->edge_count = list->count;
-    edges->has_low = low->opens;
-    edges->low_volume = low->molar_volume;
-    edges->low_pressure = low->pressure;
+    edges->edge_count += list->count;
+    if (!list->is_unstable_at_start) {
+        edges->has_low = low->opens;
+        edges->low_volume = low->molar_volume;
+        edges->low_pressure = low->pressure;
+    }
     edges->has_high = !high->opens;
     edges->high_volume = high->molar_volume;
     edges->high_pressure = high->pressure;
@@ -487,9 +533,49 @@ enum answer mixture_edges(struct method_run *method, struct phase_edges *out)
     if (!(fabs(kept->temperature - temperature) <= 0.0)) {
         kept->answer = lowest_and_highest(method, &kept->edges);
         kept->temperature = temperature;
+        kept->is_proved = false;
     }
     *out = kept->edges;
     return kept->answer;
+}
+
+/* ---- whether nothing condenses below the lowest edge ------------------------------------------------------------- */
+
+/* Relative: thinner than the lowest edge by this a state lies clearly outside of it. */
+#define CLEAR_OF_EDGE 0.01
+
+/* Without an edge the state asked about is tested too. */
+static bool is_stable_below(struct method_run *method, const struct phase_edges *edges, double molar_volume,
+                            bool is_proved)
+{
+    struct edge_search search = {.method = method};
+    double side = (double)INFINITY;
+    if (!edges->has_low && stable_side(&search, molar_volume, &side) == ANSWER_OK && side < 0.0) {
+        return false;
+    }
+    return is_proved ||
+           is_stable_along_isotherm(method, edges->has_low ? (1.0 + CLEAR_OF_EDGE) * edges->low_volume : 0.0);
+}
+
+enum answer mixture_prove_edges(struct method_run *method, double molar_volume)
+{
+    const double temperature = method->at_t->temperature;
+    struct phase_edges edges;
+    enum answer answer = mixture_edges(method, &edges);
+    struct kept_edges *kept = kept_at(method->mixture, temperature);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    if (!is_stable_below(method, &edges, molar_volume, kept->is_proved)) {
+        mixture_distrust_edges(method);
+        answer = fluid_set_t(method->at_t, method->fluid, temperature);
+        answer = answer == ANSWER_OK ? mixture_edges(method, &edges) : answer;
+        if (answer == ANSWER_OK && !is_stable_below(method, &edges, molar_volume, false)) {
+            answer = ANSWER_FAILED;
+        }
+    }
+    kept->is_proved = answer == ANSWER_OK;
+    return answer;
 }
 
 void mixture_distrust_edges(struct method_run *method)

@@ -11,6 +11,7 @@ struct kept_edges {
     double temperature; /* K; 0: none yet */
     enum answer answer;
     struct phase_edges edges;
+    bool is_proved; /* states below the lowest edge were found stable */
 };
 
 struct mixture_work {

@@ -1,3 +1,4 @@
+#include "filling/mixture_contents.h"
 #include "filling/predicate_internal.h"
 #include "filling/search.h"
 
@@ -298,12 +299,17 @@ static struct predicate_finding find_contents(const struct sheet_run *run, struc
     return finding;
 }
 
-/* `no liquid` of a mixture asks for its edges only, which saves the work of filling the vessel. */
+/* `no liquid` of a mixture asks for its edges only, which saves the work of filling the vessel. That none was found is
+ * no proof: what would be met by them is held against the stability test. */
 static struct predicate_finding no_liquid_of_mixture(const struct sheet_run *run, struct method_run *method,
                                                      double mass, double temperature, double *score)
 {
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
-    const enum answer answer = density_beside_edges(run, method, mass, temperature, &finding.worst);
+    enum answer answer = density_beside_edges(run, method, mass, temperature, &finding.worst);
+    if (answer == ANSWER_OK && below_dew(&finding.worst) >= 0.0) {
+        answer = mixture_prove_edges(method, finding.worst.molar_volume);
+        answer = answer == ANSWER_OK ? density_beside_edges(run, method, mass, temperature, &finding.worst) : answer;
+    }
     return answer == ANSWER_OK || answer == ANSWER_CANNOT ? phases_at(PREDICATE_NO_LIQUID, false, finding, score)
                                                           : undecided(answer, temperature, "the method gave no answer");
 }
