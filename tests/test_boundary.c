@@ -56,6 +56,24 @@ static const struct known_boundary KNOWN[] = {
      {327072.34338708006, 10812095.907341331},
      {BOUNDARY_DEW, BOUNDARY_BUBBLE},
      0.000708406279931},
+    {"methane and propane, a dew point of less than a kilopascal",
+     2,
+     {METHANE, PROPANE},
+     {0.37, 0.63},
+     135.86,
+     2,
+     {83.2358046263547397, 246224.868226345793},
+     {BOUNDARY_DEW, BOUNDARY_BUBBLE},
+     4.058288857542e-5},
+    {"methane and propane, a dew point of less than a pascal",
+     2,
+     {METHANE, PROPANE},
+     {0.37, 0.63},
+     100.0,
+     2,
+     {0.0658233861184396899, 18122.9092637533688},
+     {BOUNDARY_DEW, BOUNDARY_BUBBLE},
+     4.021290597124e-7},
     {"nothing above the cricondentherm", 2, {NITROGEN, N_BUTANE}, {0.98, 0.02}, 255.4, 0, {0.0}, {BOUNDARY_DEW}, 0.0},
 };
 
@@ -244,6 +262,129 @@ static void flashes_change_their_phases_at_the_boundary(void **state)
     arena_free(arena);
 }
 
+/* ---- what no line from low pressure leads to --------------------------------------------------------------------- */
+
+/* Nitrous oxide, oxygen, methane and hydrogen sulphide, with critical constants rounded for this test. */
+static const struct pure_spec NITROUS_OXIDE = {.name = "nitrous-oxide",
+                                               .molar_mass = 0.0440128,
+                                               .critical_temperature = {true, 309.52},
+                                               .critical_pressure = {true, 7.245e6},
+                                               .acentric = {true, 0.1613}};
+static const struct pure_spec OXYGEN = {.name = "oxygen",
+                                        .molar_mass = 0.0319988,
+                                        .critical_temperature = {true, 154.581},
+                                        .critical_pressure = {true, 5.043e6},
+                                        .acentric = {true, 0.0222}};
+static const struct pure_spec LIGHT = {.name = "methane",
+                                       .molar_mass = 0.0160425,
+                                       .critical_temperature = {true, 190.564},
+                                       .critical_pressure = {true, 4.5992e6},
+                                       .acentric = {true, 0.01142}};
+static const struct pure_spec HYDROGEN_SULFIDE = {.name = "hydrogen-sulfide",
+                                                  .molar_mass = 0.0340809,
+                                                  .critical_temperature = {true, 373.1},
+                                                  .critical_pressure = {true, 9.0e6},
+                                                  .acentric = {true, 0.1005}};
+
+/* Equal parts of two gases by Peng-Robinson 1976, evaluated for this test in 34 digits as above, each from a phase that
+ * a scan of the tangent-plane distance over all compositions found on one side of it. */
+struct known_edge {
+    const char *name;
+    const struct pure_spec *pure[2];
+    double kij, temperature;
+    size_t stable; /* points that are stable */
+    double lowest, highest;
+    enum boundary_kind highest_kind;
+    double first_incipient; /* mole fraction of the first component in the phase that forms at the highest */
+    double tolerance;       /* of that: beside a critical point little tells one composition from the next */
+};
+
+static const struct known_edge EDGES[] = {
+    {"N2O + O2 at 139.23 K",
+     {&NITROUS_OXIDE, &OXYGEN},
+     0.05,
+     139.23,
+     2,
+     5384.02048890769657,
+     12898721.9575023394,
+     BOUNDARY_BUBBLE,
+     0.2509430071744,
+     1e-9},
+    {"N2O + O2 at 116.03 K",
+     {&NITROUS_OXIDE, &OXYGEN},
+     0.05,
+     116.03,
+     2,
+     235.088388705409126,
+     565972042.793378896,
+     BOUNDARY_DEW,
+     0.2789223105978,
+     1e-9},
+    {"N2O + O2 at 150 K, where a third phase takes the bubble point away",
+     {&NITROUS_OXIDE, &OXYGEN},
+     0.05,
+     150.0,
+     2,
+     16053.0318404549944,
+     4960396.2859845217,
+     BOUNDARY_BUBBLE,
+     0.1987622895274,
+     1e-9},
+    {"CH4 + H2S at 241.57 K, lost next to a critical point",
+     {&LIGHT, &HYDROGEN_SULFIDE},
+     0.08,
+     241.57,
+     2,
+     755079.721913484311,
+     17628968.1748560806,
+     BOUNDARY_BUBBLE,
+     0.5009232950967,
+     2e-6},
+};
+
+static void check_edge(const struct known_edge *known, struct arena *arena)
+{
+    static const double z[] = {0.5, 0.5};
+    const double kij[] = {0.0, known->kij, known->kij, 0.0};
+    const struct fluid_spec spec = {.count = 2, .pure = (const struct pure_spec *const *)known->pure, .kij = kij};
+    struct fluid_lack_report lack;
+    const struct fluid *fluid = fluid_create("peng-robinson", &spec, arena, &lack);
+    assert_non_null(fluid);
+    struct fluid_at_t *at_t = sample_at_t(fluid, 300.0, arena);
+    struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
+    struct envelope *envelope = envelope_create(2, arena);
+    struct boundary_list *list = boundary_list_create(2, arena);
+    assert_int_equal(envelope_trace(at_t, fluid, z, ws, envelope), ANSWER_OK);
+    assert_int_equal(boundary_at_t(at_t, fluid, known->temperature, z, envelope, ws, list), ANSWER_OK);
+    assert_int_equal(boundary_complete_at_t(at_t, fluid, known->temperature, z, ws, list), ANSWER_OK);
+    assert_true(list->is_complete);
+    const struct boundary_point *lowest = NULL, *highest = NULL;
+    size_t stable = 0;
+    for (size_t i = 0; i < list->count; i++) {
+        if (list->point[i]->is_stable) {
+            lowest = lowest == NULL ? list->point[i] : lowest;
+            highest = list->point[i];
+            stable++;
+        }
+    }
+    assert_int_equal(stable, known->stable);
+    assert_close(lowest->pressure, known->lowest, 1e-10, known->name);
+    assert_int_equal(lowest->kind, BOUNDARY_DEW);
+    assert_close(highest->pressure, known->highest, 1e-8, known->name); /* the last lies beside a critical point */
+    assert_int_equal(highest->kind, known->highest_kind);
+    assert_close(highest->incipient[0], known->first_incipient, known->tolerance, known->name);
+}
+
+static void edges_that_no_line_leads_to_are_found_by_stability(void **state)
+{
+    (void)state;
+    for (size_t k = 0; k < COUNT(EDGES); k++) {
+        struct arena *arena = arena_create(NULL);
+        check_edge(&EDGES[k], arena);
+        arena_free(arena);
+    }
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -254,6 +395,7 @@ int main(void)
         cmocka_unit_test(no_pair_is_missed_beside_the_cricondentherm),
         cmocka_unit_test(no_point_is_told_twice),
         cmocka_unit_test(flashes_change_their_phases_at_the_boundary),
+        cmocka_unit_test(edges_that_no_line_leads_to_are_found_by_stability),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -364,6 +364,48 @@ static void both_dew_pressures_are_found_and_none_above_the_cricondentherm(void 
     elaborated_end(&answered.it);
 }
 
+static const char *word_of(const struct table *table, size_t row)
+{
+    return result_cell(table, row, "point")->text;
+}
+
+/* The dew pressure at 140 K was evaluated anew in 34 digits as above. At 80 K it is below any that is looked for. */
+static void a_dew_pressure_of_next_to_nothing_is_told(void **state)
+{
+    (void)state;
+    struct answered answered = answer("sheet saturation { fluid span; sweep temperature 140 K, 80 K }\n");
+    const struct table *points =
+        result_table(answered.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
+    assert_string_equal(word_of(points, 0), "dew");
+    assert_close(cell_of(points, 0, "pressure"), 110.267072285179064, 1e-9, "independent");
+    size_t row = 0;
+    while (row < points->row_count && cell_of(points, row, "temperature") > 100.0) {
+        row++;
+    }
+    assert_true(row < points->row_count);
+    assert_string_equal(word_of(points, row), "dew below 0.001 Pa");
+    elaborated_end(&answered.it);
+}
+
+/* Nitrous oxide and oxygen in equal parts at 139.23 K: above the metastable bubble point two liquids part, up to a
+ * pressure evaluated anew in 34 digits. */
+static void an_upper_edge_between_two_liquids_is_told(void **state)
+{
+    (void)state;
+    struct answered answered = answer("component nitrous { molar-mass 44.0128 g/mol; critical-temperature 309.52 K\n"
+                                      "  critical-pressure 72.45 bara; acentric 0.1613 }\n"
+                                      "pair nitrous oxygen { peng-robinson kij 0.05 }\n"
+                                      "mixture even by mole { nitrous 0.5; oxygen 0.5 }\n"
+                                      "sheet saturation { fluid even; sweep temperature 139.23 K }\n");
+    const struct table *points =
+        result_table(answered.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
+    assert_int_equal(points->row_count, 2);
+    assert_close(cell_of(points, 0, "pressure"), 5384.02048890769657, 1e-9, "independent");
+    assert_close(cell_of(points, 1, "pressure"), 12898721.9575023394, 1e-9, "independent");
+    assert_string_equal(word_of(points, 1), "bubble");
+    elaborated_end(&answered.it);
+}
+
 static void a_sweep_of_pressure_finds_the_temperatures_back(void **state)
 {
     (void)state;
@@ -494,6 +536,8 @@ int main(void)
         cmocka_unit_test(a_fill_by_pressure_becomes_mass_once_by_the_lead),
         cmocka_unit_test(a_liquefied_gas_under_a_compressed_one_is_told_step_by_step),
         cmocka_unit_test(both_dew_pressures_are_found_and_none_above_the_cricondentherm),
+        cmocka_unit_test(a_dew_pressure_of_next_to_nothing_is_told),
+        cmocka_unit_test(an_upper_edge_between_two_liquids_is_told),
         cmocka_unit_test(a_sweep_of_pressure_finds_the_temperatures_back),
         cmocka_unit_test(a_trace_that_condenses_early_hides_no_bubble_point),
         cmocka_unit_test(fugacities_of_one_phase_are_those_of_the_equation),

@@ -47,12 +47,15 @@ enum envelope_end {
     ENVELOPE_END_LOST           /* the line could not be followed further */
 };
 
-#define ENVELOPE_LOWEST_PRESSURE  1e3
+/* Pa. Every line is looked for at the first of them, and followed from there both ways. */
+#define ENVELOPE_START_PRESSURE   1e3
+#define ENVELOPE_LOWEST_PRESSURE  1e-3
 #define ENVELOPE_HIGHEST_PRESSURE 1e9
 
-/* A line of points, in the order they were traced. */
+/* A line of points, one beside the other. */
 struct envelope_line {
     size_t first, count;
+    size_t start; /* the point it was traced from: from `first` to here downwards, from here to the end upwards */
     enum envelope_end end;
 };
 
@@ -79,15 +82,26 @@ enum answer envelope_trace(struct fluid_at_t *at_t, const struct fluid *fluid, c
 struct boundary_list {
     size_t count;
     struct boundary_point *point[BOUNDARY_MOST]; /* by rising pressure, or temperature */
+    bool is_complete; /* as far as is known: false when a point that must be there was not found */
+    bool opens_below; /* known of a completed list: two-phase at ENVELOPE_LOWEST_PRESSURE already */
 };
 
 struct boundary_list *boundary_list_create(size_t components, struct arena *arena);
 
-/* Each is solved to BOUNDARY_TOLERANCE and tested for stability; an empty list is an answer: there are none. `at_t` is
- * a workspace and holds the last point's temperature afterwards. */
+/* Each is solved to BOUNDARY_TOLERANCE and tested for stability, and told once; an empty list is an answer: the lines
+ * have none there. Next to a critical point, where a line's own steps fail, those at a temperature are completed as
+ * below; ANSWER_FAILED when that fails too. `at_t` is a workspace and holds the last point's temperature afterwards. */
 enum answer boundary_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature, const double z[],
                           const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out);
 enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
                           const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out);
+
+/* Holds the points at a temperature (K) against the stability test of the feed between ENVELOPE_LOWEST_PRESSURE and
+ * ENVELOPE_HIGHEST_PRESSURE, and adds those that no line led to: a second liquid above a metastable bubble point, for
+ * one. A point with the feed unstable just below and just above it is found to be metastable. What is two-phase over
+ * less than a factor of 1.6 in pressure without any known point beside it is missed. Where the test says that there is
+ * a point and none could be solved for, `is_complete` is false afterwards. */
+enum answer boundary_complete_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature,
+                                   const double z[], struct equilibrium_workspace *ws, struct boundary_list *list);
 
 #endif

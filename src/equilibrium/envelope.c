@@ -78,7 +78,7 @@ static double raoult_excess(struct boundary_state *b, double T, bool is_dew, con
     struct equilibrium_workspace *ws = b->ws;
     double sum = 0.0;
     struct fluid_at_t at = {.fluid = b->at_t->fluid, .temperature = T};
-    workspace_set_pure(ws, &at, ENVELOPE_LOWEST_PRESSURE);
+    workspace_set_pure(ws, &at, ENVELOPE_START_PRESSURE);
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
         if (alone == NULL || *alone == i) {
@@ -88,7 +88,7 @@ static double raoult_excess(struct boundary_state *b, double T, bool is_dew, con
     return is_dew ? 1.0 - sum : sum - 1.0;
 }
 
-/* The temperature where it holds at the lowest pressure, by halving; ws->ln_pure is left for it. */
+/* The temperature where it holds at the first pressure, by halving; ws->ln_pure is left for it. */
 static double raoult_temperature(struct boundary_state *b, bool is_dew, const size_t *alone)
 {
     double low = 1.0, high = 3000.0;
@@ -104,7 +104,7 @@ static bool solve_start(struct boundary_state *b, double T, bool is_dew)
 {
     const size_t m = b->ws->active_count;
     b->X[m] = log(T);
-    b->X[m + 1] = log(ENVELOPE_LOWEST_PRESSURE);
+    b->X[m + 1] = log(ENVELOPE_START_PRESSURE);
     b->is_dew = is_dew;
     b->expected_feed = b->expected_incipient = 0.0;
     return boundary_solve(b, m + 1, MOST_START_STEPS) == ANSWER_OK && (b->feed_volume > b->incipient_volume) == is_dew;
@@ -131,7 +131,7 @@ static bool start_alone(struct boundary_state *b, size_t alone)
         ws->W[i] = i == alone ? 1.0 : 0.0;
     }
     if (fluid_set_t(b->settable, b->at_t->fluid, T) != ANSWER_OK ||
-        phase_tp(b->at_t, ENVELOPE_LOWEST_PRESSURE, ws->W, BRANCH_LIQUID, PHASE_LN_PHI, ws->trial) != ANSWER_OK) {
+        phase_tp(b->at_t, ENVELOPE_START_PRESSURE, ws->W, BRANCH_LIQUID, PHASE_LN_PHI, ws->trial) != ANSWER_OK) {
         return false;
     }
     for (size_t a = 0; a < ws->active_count; a++) {
@@ -409,18 +409,14 @@ static void approach_critical(struct tracer *t)
     boundary_solve(&t->b, t->held, MOST_STEPS);
 }
 
-static void follow(struct tracer *t)
+/* From the point at hand, stored, towards higher pressures or lower. */
+static void follow(struct tracer *t, double direction, double coldest)
 {
     const size_t m = t->b.ws->active_count;
-    const double coldest = t->b.X[m] + log(COLDEST);
-    t->line->end = ENVELOPE_END_LOST;
     t->held = m + 1;
-    t->direction = 1.0;
+    t->direction = direction;
     t->step = 0.1;
     memcpy(t->slope, t->b.slope, t->b.size * sizeof(double));
-    if (!store(t)) {
-        return;
-    }
     do {
         if (!advance(t)) {
             return;
@@ -435,23 +431,69 @@ static void follow(struct tracer *t)
     } while (!is_at_end(t, coldest));
 }
 
+static void swap(double *a, double *b)
+{
+    const double kept = *a;
+    *a = *b;
+    *b = kept;
+}
+
+/* The points of the line at hand, the other way round. */
+static void reverse(struct tracer *t)
+{
+    struct envelope *e = t->envelope;
+    for (size_t k = 0; k < t->line->count / 2; k++) {
+        const size_t one = t->line->first + k, other = t->line->first + t->line->count - 1 - k;
+        for (size_t c = 0; c < t->b.size; c++) {
+            swap(&point_at(e, one)[c], &point_at(e, other)[c]);
+        }
+        swap(&e->feed_volume[one], &e->feed_volume[other]);
+        swap(&e->incipient_volume[one], &e->incipient_volume[other]);
+    }
+}
+
+/* Downwards first, and then on from the same point upwards; how far down it got is seen from the first point. */
+static void follow_both_ways(struct tracer *t)
+{
+    struct envelope *e = t->envelope;
+    const size_t m = t->b.ws->active_count;
+    const double coldest = t->b.X[m] + log(COLDEST);
+    if (!store(t)) {
+        return;
+    }
+    follow(t, -1.0, coldest);
+    reverse(t);
+    t->line->start = t->line->first + t->line->count - 1;
+    t->line->end = ENVELOPE_END_LOST;
+    memcpy(t->b.X, point_at(e, t->line->start), t->b.size * sizeof(double));
+    t->b.expected_feed = e->feed_volume[t->line->start];
+    t->b.expected_incipient = e->incipient_volume[t->line->start];
+    if (boundary_solve(&t->b, m + 1, MOST_STEPS) == ANSWER_OK) {
+        follow(t, 1.0, coldest);
+    }
+    /* Lost where it had come down again: what is left of it lies at lower pressures still. */
+    if (t->line->end == ENVELOPE_END_LOST && point_at(e, e->point_count - 1)[m + 1] < log(ENVELOPE_START_PRESSURE)) {
+        t->line->end = ENVELOPE_END_LOW_PRESSURE;
+    }
+}
+
 /* From the point at hand, unless a line starts there already. */
 static void trace_line(struct tracer *t)
 {
     struct envelope *e = t->envelope;
     const size_t m = t->b.ws->active_count;
     for (size_t l = 0; l < e->line_count; l++) {
-        const size_t first = e->line[l].first;
+        const size_t start = e->line[l].start;
         const bool is_same_side =
-            (e->feed_volume[first] > e->incipient_volume[first]) == (t->b.feed_volume > t->b.incipient_volume);
-        if (is_same_side && fabs(point_at(e, first)[m] - t->b.X[m]) < SAME_TEMPERATURE) {
+            (e->feed_volume[start] > e->incipient_volume[start]) == (t->b.feed_volume > t->b.incipient_volume);
+        if (is_same_side && fabs(point_at(e, start)[m] - t->b.X[m]) < SAME_TEMPERATURE) {
             return;
         }
     }
     if (e->line_count < ENVELOPE_MOST_LINES && e->point_count < ENVELOPE_MOST_POINTS) {
         t->line = &e->line[e->line_count++];
         *t->line = (struct envelope_line){.first = e->point_count};
-        follow(t);
+        follow_both_ways(t);
     }
 }
 
@@ -651,6 +693,8 @@ static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, 
 {
     struct boundary_state b;
     out->count = 0;
+    out->is_complete = true;
+    out->opens_below = false;
     if (!workspace_set_feed(ws, z) || !isfinite(ln_value)) {
         return ANSWER_OUT_OF_RANGE;
     }
@@ -667,10 +711,11 @@ static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, 
                 continue;
             }
             const enum answer answer = solve_between(&b, e, k, a, ln_value, out->point[out->count]);
-            if (answer != ANSWER_OK) {
+            if (answer == ANSWER_CANNOT) {
                 return answer;
             }
-            out->count += !is_known(out, out->point[out->count]);
+            out->is_complete = out->is_complete && answer == ANSWER_OK;
+            out->count += answer == ANSWER_OK && !is_known(out, out->point[out->count]) ? 1 : 0;
         }
     }
     sort(out, offset == 0);
@@ -680,11 +725,22 @@ static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, 
 enum answer boundary_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature, const double z[],
                           const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
 {
-    return find_all(at_t, fluid, 0, log(temperature), z, envelope, ws, out);
+    enum answer answer = find_all(at_t, fluid, 0, log(temperature), z, envelope, ws, out);
+    if (answer == ANSWER_OK && !out->is_complete) {
+        answer = boundary_complete_at_t(at_t, fluid, temperature, z, ws, out);
+    }
+    for (size_t k = 0; answer == ANSWER_OK && k < out->count; k++) {
+        out->point[k]->temperature = temperature; /* not what its logarithm gave back */
+    }
+    return answer == ANSWER_OK && !out->is_complete ? ANSWER_FAILED : answer;
 }
 
 enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
                           const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
 {
-    return find_all(at_t, fluid, 1, log(pressure), z, envelope, ws, out);
+    const enum answer answer = find_all(at_t, fluid, 1, log(pressure), z, envelope, ws, out);
+    for (size_t k = 0; answer == ANSWER_OK && k < out->count; k++) {
+        out->point[k]->pressure = pressure;
+    }
+    return answer == ANSWER_OK && !out->is_complete ? ANSWER_FAILED : answer;
 }

@@ -445,8 +445,14 @@ enum answer mixture_points(struct method_run *method, bool is_pressure, double v
         return ANSWER_CANNOT;
     }
     if (envelope != NULL) {
-        return points_of_envelope(method, is_pressure, value);
+        const enum answer answer = points_of_envelope(method, is_pressure, value);
+        return answer == ANSWER_OK && !is_pressure
+                   ? boundary_complete_at_t(method->at_t, method->fluid, value, method->z, method->mixture->ws,
+                                            method->mixture->points)
+                   : answer;
     }
+    method->mixture->points->is_complete = true;
+    method->mixture->points->opens_below = false;
     return is_pressure ? points_of_splits(method, value) : points_of_edges(method, value);
 }
 

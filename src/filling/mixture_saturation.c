@@ -146,11 +146,20 @@ static const char *no_answer(const struct sweeping *at, double swept)
     return "no answer";
 }
 
+static void warn_incomplete(const struct sweeping *at, double swept)
+{
+    const struct sheet_run *run = at->run;
+    result_warn(run->result, CODE_W352, location_line(run->sheet->at), run->number,
+                "%s, %s: the fluid is two-phase at %s where no point told bounds it; a dew or bubble point is missing",
+                run->sheet->fluid->name, at->method->name, shown_text(run, look_temperature(run), swept));
+}
+
 /* ---- the sweep --------------------------------------------------------------------------------------------------- */
 
 /* All points at one temperature or pressure, with the memory for their compositions. */
 struct swept_points {
     enum answer answer;
+    bool is_complete, opens_below;
     size_t count;
     struct boundary_point point[BOUNDARY_MOST];
     double incipient[]; /* [BOUNDARY_MOST * components] */
@@ -164,6 +173,8 @@ static void solve_points(const void *context, struct method_run *method, size_t 
     const struct boundary_list *list;
     points->answer = mixture_points(method, by_pressure(run), sweep_of(run)->values[index], &list);
     points->count = points->answer == ANSWER_OK ? list->count : 0;
+    points->is_complete = points->answer == ANSWER_OK && list->is_complete;
+    points->opens_below = points->answer == ANSWER_OK && list->opens_below;
     for (size_t i = 0; i < points->count; i++) {
         points->point[i] = *list->point[i];
         points->point[i].incipient =
@@ -181,6 +192,10 @@ static void tell_points(void *teller, size_t method, size_t index, const void *a
         return;
     }
     size_t told = 0;
+    if (points->opens_below) { /* not to be read as a temperature at which nothing condenses */
+        add_words(at, swept, arena_format(at->run->arena, "dew below %g Pa", ENVELOPE_LOWEST_PRESSURE));
+        told++;
+    }
     for (size_t i = 0; i < points->count; i++) {
         add_evidence(at, &points->point[i]);
         if (points->point[i].is_stable) {
@@ -188,7 +203,11 @@ static void tell_points(void *teller, size_t method, size_t index, const void *a
             told++;
         }
     }
-    if (told == 0) {
+    if (!points->is_complete) {
+        warn_incomplete(at, swept);
+        add_words(at, swept, "another not found");
+        at->run->result->is_undecided = at->run->result->is_undecided || at->is_lead;
+    } else if (told == 0) {
         add_words(at, swept, "none");
     }
 }
