@@ -6,6 +6,7 @@
 #include "support/sample_mixture.h"
 
 #include <math.h>
+#include <string.h>
 
 #define COUNT(array) (sizeof(array) / sizeof *(array))
 
@@ -121,6 +122,227 @@ static void the_first_dew_pressure_is_found_without_an_envelope(void **state)
     arena_free(arena);
 }
 
+/* Constants as given here, so that states can be chosen beside their critical points. */
+struct critical_neighbour {
+    const char *name;
+    size_t count;
+    double constants[3][3]; /* K, Pa, acentric factor */
+    double z[3];
+    double kij[3]; /* of the first and second, first and third, second and third */
+    double temperature;
+    size_t points;
+    double pressure; /* of the point next to the critical one */
+    enum boundary_kind kind;
+    double incipient; /* mole fraction of the first component */
+};
+
+/* Peng-Robinson 1976 in 34 digits: equal ln f and pressures by Newton's method in ln w and both ln v. */
+static const struct critical_neighbour NEIGHBOURS[] = {
+    {"methane and n-butane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {425.125, 3796000.0, 0.201}},
+     {0.7, 0.3},
+     {0.02},
+     323.0,
+     2,
+     13511522.1461714567,
+     BOUNDARY_BUBBLE,
+     0.708394822359},
+    {"methane and n-butane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {425.125, 3796000.0, 0.201}},
+     {0.7, 0.3},
+     {0.02},
+     324.4,
+     2,
+     13456753.0891840839,
+     BOUNDARY_BUBBLE,
+     0.700399871928},
+    {"methane and n-butane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {425.125, 3796000.0, 0.201}},
+     {0.7, 0.3},
+     {0.02},
+     324.47,
+     2,
+     13453855.2199547985,
+     BOUNDARY_DEW,
+     0.699993833768},
+    {"methane and n-butane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {425.125, 3796000.0, 0.201}},
+     {0.7, 0.3},
+     {0.02},
+     324.6,
+     2,
+     13448432.5299147402,
+     BOUNDARY_DEW,
+     0.699238138958},
+    {"methane and n-butane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {425.125, 3796000.0, 0.201}},
+     {0.7, 0.3},
+     {0.02},
+     325.03,
+     2,
+     13430114.359497673,
+     BOUNDARY_DEW,
+     0.696723362327},
+    {"methane and propane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {369.89, 4251200.0, 0.1521}},
+     {0.8, 0.2},
+     {0.0},
+     256.21,
+     2,
+     9622024.13728368563,
+     BOUNDARY_BUBBLE,
+     0.800027108096},
+    {"methane and propane",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {369.89, 4251200.0, 0.1521}},
+     {0.8, 0.2},
+     {0.0},
+     256.3,
+     2,
+     9625071.98889033081,
+     BOUNDARY_DEW,
+     0.799418019777},
+    {"methane and hydrogen sulfide",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {373.1, 9000000.0, 0.1005}},
+     {0.5, 0.5},
+     {0.08},
+     241.57,
+     2,
+     17628968.1748560976,
+     BOUNDARY_BUBBLE,
+     0.500923295097},
+    {"methane and hydrogen sulfide",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {373.1, 9000000.0, 0.1005}},
+     {0.5, 0.5},
+     {0.08},
+     245.0,
+     2,
+     16745536.1404188353,
+     BOUNDARY_BUBBLE,
+     0.509185167459},
+    {"methane and hydrogen sulfide",
+     2,
+     {{190.564, 4599200.0, 0.01142}, {373.1, 9000000.0, 0.1005}},
+     {0.5, 0.5},
+     {0.08},
+     281.4,
+     2,
+     14670550.980095739,
+     BOUNDARY_BUBBLE,
+     0.500266012765},
+    {"methane, carbon dioxide and hydrogen sulfide",
+     3,
+     {{190.564, 4599200.0, 0.01142}, {304.1282, 7377300.0, 0.22394}, {373.1, 9000000.0, 0.1005}},
+     {0.5, 0.1, 0.4},
+     {0.1, 0.08, 0.1},
+     234.2,
+     2,
+     10688581.0000462158,
+     BOUNDARY_BUBBLE,
+     0.501180676571},
+    {"difluoromethane, pentafluoroethane and R134a",
+     3,
+     {{351.255, 5782000.0, 0.2769}, {339.173, 3617700.0, 0.3052}, {374.21, 4059280.0, 0.32684}},
+     {0.2, 0.4, 0.4},
+     {0.0, -0.01, 0.0},
+     355.946,
+     2,
+     4201720.43185362185,
+     BOUNDARY_DEW,
+     0.19997578421},
+};
+
+static struct sample_mixture mixture_of(const struct critical_neighbour *known, struct arena *arena)
+{
+    struct pure_spec *pure = arena_alloc(arena, known->count, sizeof *pure);
+    const struct pure_spec **list = arena_alloc(arena, known->count, sizeof *list);
+    double *kij = arena_alloc(arena, known->count * known->count, sizeof *kij);
+    for (size_t i = 0; i < known->count; i++) {
+        pure[i] = SAMPLE_SUBSTANCE[METHANE];
+        pure[i].critical_temperature.value = known->constants[i][0];
+        pure[i].critical_pressure.value = known->constants[i][1];
+        pure[i].acentric.value = known->constants[i][2];
+        list[i] = &pure[i];
+        for (size_t j = 0; j < i; j++) {
+            kij[i * known->count + j] = kij[j * known->count + i] = known->kij[i + j - 1];
+        }
+    }
+    struct fluid_spec *spec = arena_alloc(arena, 1, sizeof *spec);
+    *spec = (struct fluid_spec){.count = known->count, .pure = list, .kij = kij};
+    struct fluid_lack_report lack;
+    struct sample_mixture mixture = {.fluid = fluid_create("peng-robinson", spec, arena, &lack)};
+    assert_non_null(mixture.fluid);
+    mixture.at_t = sample_at_t(mixture.fluid, known->temperature, arena);
+    mixture.ws = equilibrium_workspace_create(known->count, arena);
+    return mixture;
+}
+
+/* Beside a critical point a pressure cannot be had nearer than rounding leaves it, which grows with the inverse square
+ * of the contrast: to 5e-9 and not to the last digits. */
+static void points_beside_a_critical_point_are_found(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    for (size_t k = 0; k < COUNT(NEIGHBOURS); k++) {
+        const struct critical_neighbour *known = &NEIGHBOURS[k];
+        struct sample_mixture m = mixture_of(known, arena);
+        struct envelope *envelope = envelope_create(known->count, arena);
+        struct boundary_list *list = boundary_list_create(known->count, arena);
+        assert_int_equal(envelope_trace(m.at_t, m.fluid, known->z, m.ws, envelope), ANSWER_OK);
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, known->temperature, known->z, envelope, m.ws, list), ANSWER_OK);
+        assert_int_equal(list->count, known->points);
+        const struct boundary_point *point = list->point[list->count - 1];
+        assert_close(point->pressure, known->pressure, 5e-9, known->name);
+        assert_int_equal(point->kind, known->kind);
+        assert_true(point->is_stable && point->residual <= BOUNDARY_TOLERANCE);
+        assert_close(point->incipient[0], known->incipient, 3e-6, known->name);
+        assert_int_equal(boundary_at_p(m.at_t, m.fluid, known->pressure, known->z, envelope, m.ws, list), ANSWER_OK);
+        double nearest = HUGE_VAL;
+        for (size_t i = 0; i < list->count; i++) {
+            nearest = fmin(nearest, fabs(list->point[i]->temperature / known->temperature - 1.0));
+        }
+        assert_near(nearest, 0.0, 1e-7, known->name);
+    }
+    arena_free(arena);
+}
+
+/* Methane and hydrogen sulfide: critical at 281.4681 K and, where a second liquid forms, at 241.1893 K; by the criteria
+ * of Heidemann and Khalil. */
+static void a_line_is_followed_past_two_critical_points_without_turning_back(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct critical_neighbour mixture = {.count = 2, .z = {0.5, 0.5}, .kij = {0.08}, .temperature = 300.0};
+    memcpy(mixture.constants, (const double[3][3]){{190.564, 4599200.0, 0.01142}, {373.1, 9000000.0, 0.1005}},
+           sizeof mixture.constants);
+    struct sample_mixture m = mixture_of(&mixture, arena);
+    struct envelope *envelope = envelope_create(2, arena);
+    struct boundary_list *list = boundary_list_create(2, arena);
+    assert_int_equal(envelope_trace(m.at_t, m.fluid, mixture.z, m.ws, envelope), ANSWER_OK);
+    assert_int_equal(envelope->critical_count, 2);
+    assert_close(envelope->critical[0].temperature, 281.46812666, 1e-4, "the criteria");
+    assert_close(envelope->critical[1].temperature, 241.18930868, 1e-4, "the criteria");
+    assert_int_equal(envelope->line[0].end, ENVELOPE_END_HIGH_PRESSURE);
+    static const struct {
+        double temperature;
+        size_t points;
+    } known[] = {{205.33, 1}, {285.0, 2}, {314.04, 2}};
+    for (size_t k = 0; k < COUNT(known); k++) {
+        const double T = known[k].temperature;
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, T, mixture.z, envelope, m.ws, list), ANSWER_OK);
+        assert_int_equal(list->count, known[k].points);
+    }
+    arena_free(arena);
+}
+
 /* The temperatures found at a pressure lead back to it. */
 static void temperatures_at_a_pressure_lead_back_to_it(void **state)
 {
@@ -222,6 +444,7 @@ static void no_point_is_told_twice(void **state)
                         fabs(log(a->incipient_volume / b->incipient_volume)) > 1e-6);
         }
     }
+    state_room_close(room);
     arena_free(arena);
 }
 
@@ -390,6 +613,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(all_points_at_a_temperature_agree_with_an_independent_evaluation),
         cmocka_unit_test(the_first_dew_pressure_is_found_without_an_envelope),
+        cmocka_unit_test(points_beside_a_critical_point_are_found),
+        cmocka_unit_test(a_line_is_followed_past_two_critical_points_without_turning_back),
         cmocka_unit_test(temperatures_at_a_pressure_lead_back_to_it),
         cmocka_unit_test(extrema_agree_with_an_independent_evaluation),
         cmocka_unit_test(no_pair_is_missed_beside_the_cricondentherm),

@@ -217,6 +217,16 @@ enum answer boundary_solve(struct boundary_state *b, size_t held, int most_steps
     return ANSWER_FAILED;
 }
 
+enum answer boundary_take(struct boundary_state *b)
+{
+    const enum answer answer = evaluate(b);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    set_equations(b);
+    return b->residual <= BOUNDARY_TOLERANCE ? ANSWER_OK : ANSWER_FAILED;
+}
+
 /* ---- reporting ------------------------------------------------------------------------------------------------- */
 
 struct boundary_point *boundary_point_create(size_t count, struct arena *arena)

@@ -18,6 +18,15 @@ enum { MOST_STEPS = 12, MOST_START_STEPS = 60, MOST_RETRIES = 14, MOST_REFINEMEN
 /* Where all ln K, and the logarithm of the ratio of the molar volumes, are smaller than this, a critical point may be
  * near. */
 #define NEAR_CRITICAL 0.2
+/* Across a critical point, how far from the curve through the points before it the next may lie: as a part of the step,
+ * and beside it. */
+#define OFF_COURSE        0.5
+#define SLIGHT_OFF_COURSE 0.01
+/* The ln K of the points traced closest to a critical point: the error of a solution grows with its inverse square,
+ * that of the cubic across with its fourth power, and here neither makes more than some 1e-9 of the pressure. */
+#define BESIDE_CRITICAL 2.5e-3
+/* Points on both sides of a critical point as near to each other as this, in ln K, are joined by a cubic. */
+#define CLOSE_TOGETHER 0.02
 /* Two lines that start as near to each other as this, in ln T, are one. */
 #define SAME_TEMPERATURE 1e-7
 /* A step shorter than this leads nowhere. */
@@ -178,10 +187,10 @@ static void choose_held(struct tracer *t)
     t->step = fmin(t->step, change_limit(t, fastest));
 }
 
-static size_t fastest_ratio(const struct tracer *t, const double *X)
+static size_t fastest_ratio(const struct boundary_state *b, const double *X)
 {
     size_t fastest = 0;
-    for (size_t a = 1; a < t->b.ws->active_count; a++) {
+    for (size_t a = 1; a < b->ws->active_count; a++) {
         if (fabs(X[a]) > fabs(X[fastest])) {
             fastest = a;
         }
@@ -190,16 +199,16 @@ static size_t fastest_ratio(const struct tracer *t, const double *X)
 }
 
 /* Does the line pass a critical point between two of its points? The ratio that is farthest from one turns over. */
-static bool is_across(const struct tracer *t, const double *before, const double *after)
+static bool is_across(const struct boundary_state *b, const double *before, const double *after)
 {
-    const size_t ratio = fastest_ratio(t, before);
+    const size_t ratio = fastest_ratio(b, before);
     return fabs(before[ratio]) < NEAR_CRITICAL && before[ratio] * after[ratio] < 0.0;
 }
 
 /* Is the line about to reach a critical point? Then the phases are alike and growing more so. */
 static bool is_approaching_critical(const struct tracer *t, const double *from)
 {
-    const size_t ratio = fastest_ratio(t, from);
+    const size_t ratio = fastest_ratio(&t->b, from);
     const double towards = -from[ratio] * t->slope[ratio] * t->direction;
     return fabs(from[ratio]) < NEAR_CRITICAL && towards > 0.0 &&
            fabs(log(t->b.expected_feed / t->b.expected_incipient)) < NEAR_CRITICAL;
@@ -216,13 +225,34 @@ static double next_held_value(const struct tracer *t, const double *from, bool i
     return retry == 0 ? -here : here * (1.0 - 0.7 * pow(0.5, retry));
 }
 
-static void predict(struct tracer *t, const double *from, double value)
+/* Along the tangent; next to a critical point, where Newton's method reaches its solution only from nearby, along the
+ * parabola through the point before the last. */
+static void predict(struct tracer *t, const double *from, double value, bool is_near_critical)
 {
     const double change = value - from[t->held];
+    const bool has_earlier = is_near_critical && t->line->count > 1;
+    const double *earlier = has_earlier ? from - (t->envelope->components + 2) : from;
+    const double back = earlier[t->held] - from[t->held];
     for (size_t a = 0; a < t->b.size; a++) {
         t->b.X[a] = from[a] + t->slope[a] * change;
+        if (fabs(back) > SHORTEST_STEP) {
+            t->b.X[a] += (earlier[a] - from[a] - t->slope[a] * back) * (change / back) * (change / back);
+        }
     }
     t->b.X[t->held] = value;
+}
+
+/* Has a step across a critical point led to another one's neighbourhood? */
+static bool is_off_course(const struct tracer *t, const double *from)
+{
+    const double change = t->b.X[t->held] - from[t->held];
+    for (size_t a = t->b.ws->active_count; a < t->b.size; a++) {
+        const double expected = t->slope[a] * change;
+        if (!(fabs(t->b.X[a] - from[a] - expected) <= OFF_COURSE * fabs(expected) + SLIGHT_OFF_COURSE)) {
+            return true;
+        }
+    }
+    return false;
 }
 
 /* Has the solution gone elsewhere than along the line? */
@@ -243,18 +273,35 @@ static bool advance(struct tracer *t)
     choose_held(t);
     const bool is_near_critical = is_approaching_critical(t, from);
     if (is_near_critical) {
-        hold(t, fastest_ratio(t, from));
+        hold(t, fastest_ratio(&t->b, from));
     }
     for (int retry = 0; retry < MOST_RETRIES && t->step > SHORTEST_STEP; retry++) {
         memcpy(t->b.X, from, t->b.size * sizeof(double));
-        predict(t, from, next_held_value(t, from, is_near_critical, retry));
-        if (boundary_solve(&t->b, t->held, MOST_STEPS) == ANSWER_OK && !is_astray(t, from)) {
+        predict(t, from, next_held_value(t, from, is_near_critical, retry), is_near_critical);
+        if (boundary_solve(&t->b, t->held, MOST_STEPS) == ANSWER_OK && !is_astray(t, from) &&
+            !(is_near_critical && is_off_course(t, from))) {
             t->step *= t->b.iterations <= EASY ? 1.5 : t->b.iterations >= HARD ? 0.6 : 1.0;
             return true;
         }
-        t->step *= 0.4;
+        t->step *= is_near_critical ? 1.0 : 0.4;
     }
     return false;
+}
+
+/* ---- between two points ---------------------------------------------------------------------------------------- */
+
+/* `part` of the way from one point to another in the held unknown, by the cubic with the slopes that stand in
+ * slope_before and slope_after. */
+static void curve_between(struct boundary_state *b, size_t held, const double *before, const double *after, double part)
+{
+    const double length = after[held] - before[held], rest = 1.0 - part;
+    for (size_t a = 0; a < b->size; a++) {
+        const double chord = after[a] - before[a];
+        const double bend_before = b->ws->slope_before[a] * length - chord;
+        const double bend_after = b->ws->slope_after[a] * length - chord;
+        b->X[a] = before[a] + part * (chord + rest * (rest * bend_before - part * bend_after));
+    }
+    b->X[held] = before[held] + part * length;
 }
 
 /* ---- extrema of temperature and pressure ----------------------------------------------------------------------- */
@@ -296,7 +343,7 @@ static void store_extrema(struct tracer *t, const double *after, const double *s
 {
     const size_t m = t->b.ws->active_count;
     const double *before = point_at(t->envelope, t->envelope->point_count - 1);
-    for (size_t a = m; a < m + 2 && !is_across(t, before, after); a++) {
+    for (size_t a = m; a < m + 2 && !is_across(&t->b, before, after); a++) {
         if (t->slope[a] * slope_after[a] < 0.0 && find_extremum(t, a, t->slope[a], after, slope_after[a])) {
             memcpy(t->slope, t->b.slope, t->b.size * sizeof(double));
             store(t);
@@ -344,8 +391,8 @@ static void note_critical(struct tracer *t)
     struct envelope *e = t->envelope;
     const size_t m = t->b.ws->active_count, last = e->point_count - 1;
     const double *before = point_at(e, last - 1), *after = point_at(e, last);
-    const size_t ratio = fastest_ratio(t, before);
-    if (!is_across(t, before, after) || e->critical_count == ENVELOPE_MOST_CRITICAL) {
+    const size_t ratio = fastest_ratio(&t->b, before);
+    if (!is_across(&t->b, before, after) || e->critical_count == ENVELOPE_MOST_CRITICAL) {
         return;
     }
     const double part = before[ratio] / (before[ratio] - after[ratio]);
@@ -378,8 +425,12 @@ static bool add(struct tracer *t)
 /* Not far outside the step it was meant to be a part of? Else it belongs to another critical point. */
 static bool is_between(const struct tracer *t, const double *before, const double *after)
 {
+    const double *slope_before = t->b.ws->slope_before, *slope_after = t->b.ws->slope_after;
+    const double length = after[t->held] - before[t->held];
     for (size_t a = 0; a < t->b.size; a++) {
-        const double reach = fabs(after[a] - before[a]) + 1e-3;
+        const double chord = after[a] - before[a];
+        const double bulge = fabs(slope_before[a] * length - chord) + fabs(slope_after[a] * length - chord);
+        const double reach = fabs(chord) + bulge + 1e-3;
         if (!(fabs(t->b.X[a] - 0.5 * (before[a] + after[a])) <= reach)) {
             return false;
         }
@@ -388,18 +439,19 @@ static bool is_between(const struct tracer *t, const double *before, const doubl
 }
 
 /* The step just taken passed a critical point: more points on either side of it, ever closer to it, so that little is
- * left between them where no point can be told from a trivial one. */
+ * left between them where no point can be told from a trivial one. The closest are the ends of the cubic across it. */
 static void approach_critical(struct tracer *t)
 {
-    static const double PARTS[] = {0.2, 0.35, 0.45, 0.49, 0.51, 0.55, 0.65, 0.8};
     struct equilibrium_workspace *ws = t->b.ws;
     const size_t bytes = t->b.size * sizeof(double);
     const double *before = point_at(t->envelope, t->envelope->point_count - 1);
     memcpy(ws->crossed, t->b.X, bytes);
-    for (size_t k = 0; k < sizeof PARTS / sizeof *PARTS; k++) {
-        for (size_t a = 0; a < t->b.size; a++) {
-            t->b.X[a] = before[a] + PARTS[k] * (ws->crossed[a] - before[a]);
-        }
+    memcpy(ws->slope_before, t->slope, bytes);
+    memcpy(ws->slope_after, t->b.slope, bytes);
+    const double beside = fmin(0.04, BESIDE_CRITICAL / fabs(ws->crossed[t->held] - before[t->held]));
+    const double parts[] = {0.2, 0.35, 0.45, 0.5 - beside, 0.5 + beside, 0.55, 0.65, 0.8};
+    for (size_t k = 0; k < sizeof parts / sizeof *parts; k++) {
+        curve_between(&t->b, t->held, before, ws->crossed, parts[k]);
         const enum answer answer = boundary_solve(&t->b, t->held, MOST_STEPS);
         if (answer == ANSWER_OK && is_between(t, before, ws->crossed) && add(t)) {
             note_critical(t);
@@ -421,7 +473,7 @@ static void follow(struct tracer *t, double direction, double coldest)
         if (!advance(t)) {
             return;
         }
-        if (is_across(t, point_at(t->envelope, t->envelope->point_count - 1), t->b.X)) {
+        if (is_across(&t->b, point_at(t->envelope, t->envelope->point_count - 1), t->b.X)) {
             approach_critical(t);
         }
         if (!add(t)) {
@@ -592,6 +644,12 @@ struct boundary_list *boundary_list_create(size_t components, struct arena *aren
     return list;
 }
 
+static void interpolate_volumes(struct boundary_state *b, const struct envelope *e, size_t k, double part)
+{
+    b->expected_feed = e->feed_volume[k] * pow(e->feed_volume[k + 1] / e->feed_volume[k], part);
+    b->expected_incipient = e->incipient_volume[k] * pow(e->incipient_volume[k + 1] / e->incipient_volume[k], part);
+}
+
 /* `part` of the way from point k of the envelope to the next. */
 static void interpolate(struct boundary_state *b, const struct envelope *e, size_t k, double part)
 {
@@ -599,8 +657,7 @@ static void interpolate(struct boundary_state *b, const struct envelope *e, size
     for (size_t c = 0; c < b->size; c++) {
         b->X[c] = before[c] + part * (after[c] - before[c]);
     }
-    b->expected_feed = e->feed_volume[k] * pow(e->feed_volume[k + 1] / e->feed_volume[k], part);
-    b->expected_incipient = e->incipient_volume[k] * pow(e->incipient_volume[k + 1] / e->incipient_volume[k], part);
+    interpolate_volumes(b, e, k, part);
 }
 
 /* The unknown that changes most between the two points. */
@@ -641,14 +698,59 @@ static enum answer approach(struct boundary_state *b, const struct envelope *e, 
     return ANSWER_FAILED;
 }
 
+static bool is_closely_across(const struct boundary_state *b, const double *before, const double *after)
+{
+    const size_t ratio = fastest_ratio(b, before);
+    return is_across(b, before, after) && fabs(after[ratio] - before[ratio]) < CLOSE_TOGETHER;
+}
+
+static bool set_slope_at(struct boundary_state *b, const struct envelope *e, size_t k, size_t held, double *slope)
+{
+    memcpy(b->X, point_at(e, k), b->size * sizeof(double));
+    b->expected_feed = e->feed_volume[k];
+    b->expected_incipient = e->incipient_volume[k];
+    const bool is_solved = boundary_solve(b, held, MOST_STEPS) == ANSWER_OK;
+    memcpy(slope, b->slope, b->size * sizeof(double));
+    return is_solved;
+}
+
+/* The same next to a critical point. Newton's method at a given temperature or pressure gets there only from nearby,
+ * and on both sides of the critical point itself not at all; but in the ratio that is farthest from one the line is as
+ * smooth there as elsewhere, and between two close points of it a cubic is as good as a solution. */
+static enum answer solve_near_critical(struct boundary_state *b, const struct envelope *e, size_t k, size_t a,
+                                       double value)
+{
+    const double *before = point_at(e, k), *after = point_at(e, k + 1);
+    const size_t held = fastest_ratio(b, fabs(before[0]) > fabs(after[0]) ? before : after);
+    if (!set_slope_at(b, e, k, held, b->ws->slope_before) || !set_slope_at(b, e, k + 1, held, b->ws->slope_after)) {
+        return ANSWER_FAILED;
+    }
+    double low = 0.0, high = 1.0;
+    for (int step = 0; step < MOST_REFINEMENTS; step++) {
+        const double middle = 0.5 * (low + high);
+        curve_between(b, held, before, after, middle);
+        *((b->X[a] < value) == (before[a] < value) ? &low : &high) = middle;
+    }
+    interpolate_volumes(b, e, k, low);
+    b->X[a] = value;
+    return is_closely_across(b, before, after) && boundary_take(b) == ANSWER_OK ? ANSWER_OK
+                                                                                : boundary_solve(b, a, MOST_STEPS);
+}
+
 /* Between points k and k + 1 of the envelope unknown `a` passes `value`. */
 static enum answer solve_between(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value,
                                  struct boundary_point *out)
 {
     const double before = point_at(e, k)[a], after = point_at(e, k + 1)[a];
-    interpolate(b, e, k, (value - before) / (after - before));
-    b->X[a] = value;
-    enum answer answer = boundary_solve(b, a, MOST_STEPS);
+    enum answer answer = ANSWER_FAILED;
+    if (!is_closely_across(b, point_at(e, k), point_at(e, k + 1))) {
+        interpolate(b, e, k, (value - before) / (after - before));
+        b->X[a] = value;
+        answer = boundary_solve(b, a, MOST_STEPS);
+    }
+    if (answer != ANSWER_OK) {
+        answer = solve_near_critical(b, e, k, a, value);
+    }
     if (answer != ANSWER_OK) {
         answer = approach(b, e, k, a, value);
     }

@@ -40,6 +40,8 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
     ws->next_unknowns = vector(unknowns, arena);
     ws->next_slope = vector(unknowns, arena);
     ws->crossed = vector(unknowns, arena);
+    ws->slope_before = vector(unknowns, arena);
+    ws->slope_after = vector(unknowns, arena);
     return ws;
 }
 

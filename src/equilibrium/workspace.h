@@ -28,6 +28,7 @@ struct equilibrium_workspace {
     double *W, *ln_W, *g, *kept_W, *kept_ln_W; /* [count] */
     /* Second-order steps: room for (MOST_PHASES - 1) count + 2 unknowns. */
     double *matrix, *step, *scale, *border, *partial_volume, *unknowns, *next_unknowns, *next_slope, *crossed;
+    double *slope_before, *slope_after; /* the same room: at the ends of a step of an envelope */
 };
 
 struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct arena *arena);
