@@ -437,8 +437,8 @@ static void check_vapour_pressure(struct elaboration *e, const struct case_fluid
     diagnostic_hint(e->out, said, "take the rule of the class the gas belongs to, or ask about its pressure");
 }
 
-static void check_condition(struct elaboration *e, const struct sheet_target *target,
-                            const struct predicate *predicate, struct location at)
+static void check_condition(struct elaboration *e, const struct sheet_target *target, const struct predicate *predicate,
+                            struct location at)
 {
     if (target->sheet.vessel != NULL) {
         check_rating(e, target->sheet.vessel, predicate, at);

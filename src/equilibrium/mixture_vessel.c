@@ -206,10 +206,11 @@ struct side {
 static double next_pressure(const struct filling *v, const struct side *low, const struct side *high, int count)
 {
     const double middle = sqrt(low->pressure * high->pressure);
-    if (count % 3 == 2) {
+    const double span = log(low->volume / high->volume);
+    if (count % 3 == 2 || !(fabs(span) > 0.0)) {
         return middle;
     }
-    const double part = log(low->volume / v->volume) / log(low->volume / high->volume);
+    const double part = log(low->volume / v->volume) / span;
     const double next = low->pressure * pow(high->pressure / low->pressure, part);
     return next > low->pressure && next < high->pressure ? next : middle;
 }

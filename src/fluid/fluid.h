@@ -32,8 +32,8 @@ enum capability {
     CAN_LIQUID = 1,
     CAN_MIXTURE = 2,
     CAN_CALORIC = 4,
-    IS_CUBIC = 8,            /* its liquid densities are estimates */
-    IS_FOR_COMPARISON = 16   /* too far from real gases for any charge to rest on it */
+    IS_CUBIC = 8,          /* its liquid densities are estimates */
+    IS_FOR_COMPARISON = 16 /* too far from real gases for any charge to rest on it */
 };
 
 /* What may be asked of a (T, V, n) method, as a set of bits. The value itself and F_V always come. */
@@ -51,16 +51,16 @@ enum helmholtz_want {
  * (Michelsen and Mollerup, Thermodynamic Models, 2nd ed., chapter 2). The arrays are the caller's; one that is
  * wanted must not be NULL, one that is not wanted may be. */
 struct helmholtz {
-    double F;        /* mol */
-    double F_V;      /* mol/m3 */
-    double F_VV;     /* mol/m6 */
-    double F_T;      /* mol/K */
-    double F_TV;     /* mol/(K m3) */
-    double F_TT;     /* mol/K2 */
-    double *F_n;     /* [count], 1 */
-    double *F_Vn;    /* [count], 1/m3 */
-    double *F_Tn;    /* [count], 1/K */
-    double *F_nn;    /* [count * count], 1/mol */
+    double F;     /* mol */
+    double F_V;   /* mol/m3 */
+    double F_VV;  /* mol/m6 */
+    double F_T;   /* mol/K */
+    double F_TV;  /* mol/(K m3) */
+    double F_TT;  /* mol/K2 */
+    double *F_n;  /* [count], 1 */
+    double *F_Vn; /* [count], 1/m3 */
+    double *F_Tn; /* [count], 1/K */
+    double *F_nn; /* [count * count], 1/mol */
 };
 
 /* What a (T, p, n) method gives for one branch. An array that is NULL is not asked for. */
@@ -73,26 +73,26 @@ struct explicit_phase {
     int roots;          /* mechanically stable roots found (1 or 2) */
     /* A method that sets has_slopes gives the two arrays above and all of these as well. */
     bool has_slopes;
-    double compliance;     /* Z - p dZ/dp at constant T, that is -(p^2 / n R T) dV/dp; for a liquid small beside Z */
-    double Z_ln_t;         /* T dZ/dT at constant p */
-    double residual_gibbs_rt;                              /* the mean of ln phi_i by mole */
+    double compliance;        /* Z - p dZ/dp at constant T, that is -(p^2 / n R T) dV/dp; for a liquid small beside Z */
+    double Z_ln_t;            /* T dZ/dT at constant p */
+    double residual_gibbs_rt; /* the mean of ln phi_i by mole */
     double residual_enthalpy_rt, residual_heat_capacity_r; /* as in struct phase */
 };
 
 struct critical_point {
-    double temperature; /* K */
-    double pressure;    /* Pa */
+    double temperature;  /* K */
+    double pressure;     /* Pa */
     double molar_volume; /* m3/mol */
 };
 
 /* First values for a pure fluid's saturation; all greater than zero. */
 struct saturation_start {
-    double pressure;                      /* Pa */
-    double vapour_volume, liquid_volume;  /* m3/mol */
+    double pressure;                     /* Pa */
+    double vapour_volume, liquid_volume; /* m3/mol */
 };
 
-/* Below a limit by no more than this part of it, a temperature is the limit as written: 0.01 degC is not 273.16 K to the
- * last digit. */
+/* Below a limit by no more than this part of it, a temperature is the limit as written: 0.01 degC is not 273.16 K to
+ * the last digit. */
 #define TEMPERATURE_ROUNDING 1e-12
 
 /* Where a state lies relative to a method's published range. */
@@ -106,12 +106,12 @@ struct range_note {
 /* Why a fluid could not be created. */
 enum fluid_lack {
     LACK_NOTHING,
-    LACK_METHOD,          /* no method of that name */
-    LACK_MIXTURE,         /* the method is for pure gases */
-    LACK_CRITICAL_POINT,  /* `component` has no critical temperature or pressure */
-    LACK_ACENTRIC,        /* `component` has no acentric factor */
-    LACK_EQUATION,        /* `component` has no reference equation */
-    LACK_PARAMETERS       /* `component` has no parameters of this method's own */
+    LACK_METHOD,         /* no method of that name */
+    LACK_MIXTURE,        /* the method is for pure gases */
+    LACK_CRITICAL_POINT, /* `component` has no critical temperature or pressure */
+    LACK_ACENTRIC,       /* `component` has no acentric factor */
+    LACK_EQUATION,       /* `component` has no reference equation */
+    LACK_PARAMETERS      /* `component` has no parameters of this method's own */
 };
 
 struct fluid_lack_report {
@@ -144,8 +144,8 @@ enum fluid_form { FLUID_FROM_TV, FLUID_FROM_TP };
 
 /* One method. A member that a form does not have is NULL. */
 struct fluid_ops {
-    const char *name; /* the deck's word for it */
-    const char *title; /* the published name, for listings */
+    const char *name;     /* the deck's word for it */
+    const char *title;    /* the published name, for listings */
     const char *citation; /* the publication; NULL: each component's own */
     const char *validity; /* what is known of its range and accuracy; NULL: each component's own */
     enum fluid_form form;

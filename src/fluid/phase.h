@@ -10,34 +10,34 @@
 
 /* What is asked for beyond pressure, volume, Z and dp/dV, as a set of bits. */
 enum phase_want {
-    PHASE_LN_PHI = 1,      /* ln_phi */
-    PHASE_DLN_PHI_DP = 2,  /* dln_phi_dp */
-    PHASE_DLN_PHI_DT = 4,  /* dln_phi_dt and dp_dt */
-    PHASE_DLN_PHI_DN = 8,  /* dln_phi_dn */
-    PHASE_DP_DN = 16,      /* dp_dn at constant T, V */
-    PHASE_RESIDUAL = 32,   /* residual enthalpy, entropy, heat capacity, and dp_dt */
-    PHASE_LN_F = 64        /* ln_f_over_x */
+    PHASE_LN_PHI = 1,     /* ln_phi */
+    PHASE_DLN_PHI_DP = 2, /* dln_phi_dp */
+    PHASE_DLN_PHI_DT = 4, /* dln_phi_dt and dp_dt */
+    PHASE_DLN_PHI_DN = 8, /* dln_phi_dn */
+    PHASE_DP_DN = 16,     /* dp_dn at constant T, V */
+    PHASE_RESIDUAL = 32,  /* residual enthalpy, entropy, heat capacity, and dp_dt */
+    PHASE_LN_F = 64       /* ln_f_over_x */
 };
 
 struct phase {
-    double temperature;   /* K */
-    double pressure;      /* Pa */
-    double volume;        /* m3, for all of n */
-    double amount;        /* mol, the sum of n */
-    double Z;             /* p V / (n R T) */
-    double dp_dv;         /* Pa/m3 at constant T, n; negative where mechanically stable; 0: no slopes given */
-    double dp_dt;         /* Pa/K at constant V, n */
-    enum branch branch;   /* the branch the root was taken from (phase_tp), else BRANCH_STABLE */
-    int roots;            /* mechanically stable roots found at this T, p (phase_tp); 0 after phase_tv */
+    double temperature; /* K */
+    double pressure;    /* Pa */
+    double volume;      /* m3, for all of n */
+    double amount;      /* mol, the sum of n */
+    double Z;           /* p V / (n R T) */
+    double dp_dv;       /* Pa/m3 at constant T, n; negative where mechanically stable; 0: no slopes given */
+    double dp_dt;       /* Pa/K at constant V, n */
+    enum branch branch; /* the branch the root was taken from (phase_tp), else BRANCH_STABLE */
+    int roots;          /* mechanically stable roots found at this T, p (phase_tp); 0 after phase_tv */
     /* Against the ideal gas at the same T and p, per mole of mixture, divided by RT or R. */
     double residual_enthalpy_rt, residual_entropy_r, residual_heat_capacity_r;
-    double *ln_phi;       /* [count] */
-    double *ln_f_over_x;  /* [count], ln(f_i / x_i) with f in Pa: defined at any volume, also where p <= 0 */
-    double *dln_phi_dp;   /* [count], 1/Pa */
-    double *dln_phi_dt;   /* [count], 1/K at constant p */
-    double *dln_phi_dn;   /* [count * count], 1/mol at constant T, p */
-    double *dp_dn;        /* [count], Pa/mol at constant T, V */
-    double *scratch;      /* [count * (count + 4)], needed for DT, DN and mixtures' DP and DP_DN; else may be NULL */
+    double *ln_phi;      /* [count] */
+    double *ln_f_over_x; /* [count], ln(f_i / x_i) with f in Pa: defined at any volume, also where p <= 0 */
+    double *dln_phi_dp;  /* [count], 1/Pa */
+    double *dln_phi_dt;  /* [count], 1/K at constant p */
+    double *dln_phi_dn;  /* [count * count], 1/mol at constant T, p */
+    double *dp_dn;       /* [count], Pa/mol at constant T, V */
+    double *scratch;     /* [count * (count + 4)], needed for DT, DN and mixtures' DP and DP_DN; else may be NULL */
 };
 
 /* The phase on `branch` at pressure (Pa). BRANCH_STABLE takes the root of lower Gibbs energy. A branch ends where

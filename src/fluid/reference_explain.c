@@ -52,10 +52,11 @@ static struct term_value nonanalytic_at(const struct residual_term *k, double ta
     if (!(D > 0.0)) {
         return (struct term_value){0.0, 0.0}; /* at the critical point itself */
     }
-    const double D_delta = square > 0.0 ? 2.0 / gap *
-                                              (theta * k->A / k->beta * pow(square, 1.0 / (2.0 * k->beta)) +
-                                               k->B * k->a * pow(square, k->a))
-                                        : 0.0;
+    const double D_delta =
+        square > 0.0
+            ? 2.0 / gap *
+                  (theta * k->A / k->beta * pow(square, 1.0 / (2.0 * k->beta)) + k->B * k->a * pow(square, k->a))
+            : 0.0;
     const double value = k->n * delta * pow(D, k->b) * psi;
     return (struct term_value){value, value * (1.0 + delta * (k->b * D_delta / D - 2.0 * k->C * gap))};
 }
@@ -101,8 +102,7 @@ static struct term_value term_at(const struct residual_term *k, double tau, doub
     return (struct term_value){value, value * slope};
 }
 
-static void sum_groups(const struct reference_spec *equation, double tau, double delta,
-                       struct group_sum sums[GROUPS])
+static void sum_groups(const struct reference_spec *equation, double tau, double delta, struct group_sum sums[GROUPS])
 {
     memset(sums, 0, GROUPS * sizeof *sums);
     for (size_t i = 0; i < equation->residual_count; i++) {
@@ -126,12 +126,11 @@ static const struct group_words WORDS[GROUPS] = {
     [GROUP_GAUSSIAN] = {"A_gau", "Gaussian terms, alphar", "D_gau", "Gaussian terms, delta dalphar/ddelta"},
     [GROUP_DOUBLE] = {"A_dbl", "double exponential terms, alphar", "D_dbl",
                       "double exponential terms, delta dalphar/ddelta"},
-    [GROUP_CRITICAL] = {"A_crit", "near-critical terms, alphar", "D_crit",
-                        "near-critical terms, delta dalphar/ddelta"},
+    [GROUP_CRITICAL] = {"A_crit", "near-critical terms, alphar", "D_crit", "near-critical terms, delta dalphar/ddelta"},
 };
 
-static void add(struct explanation *out, const char *symbol, const char *meaning, const char *formula,
-                const char *unit, double value)
+static void add(struct explanation *out, const char *symbol, const char *meaning, const char *formula, const char *unit,
+                double value)
 {
     explanation_add(out, (struct explained_value){symbol, meaning, formula, unit, 0, value, false});
 }
@@ -161,8 +160,7 @@ static void add_sums(const struct group_sum sums[GROUPS], bool is_slope, bool is
         const char *symbol = is_slope ? WORDS[g].slope_symbol : WORDS[g].value_symbol;
         const char *meaning = is_slope ? WORDS[g].slope_meaning : WORDS[g].value_meaning;
         const double value = is_slope ? sums[g].slope : sums[g].value;
-        explanation_add(out, (struct explained_value){symbol, meaning, NULL, "1", sums[g].terms, value,
-                                                      is_cancelling});
+        explanation_add(out, (struct explained_value){symbol, meaning, NULL, "1", sums[g].terms, value, is_cancelling});
         length += (size_t)snprintf(text + length, EXPLAINED_TEXT_BYTES - length, " + %s", symbol);
     }
 }

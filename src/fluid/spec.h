@@ -109,11 +109,11 @@ struct reference_spec {
 /* Parameters of a component that belong to one cubic equation alone. A member set to zero (or not given) is left out
  * of the equation. Method words are those of fluid/methods.c. */
 struct cubic_set {
-    const char *method;                                          /* the method's word */
-    struct optional critical_temperature, critical_pressure;     /* K, Pa, the set's own; absent: the component's */
-    bool has_twu;                                                /* L, M, N are given */
-    double L, M, N;                                              /* alpha = Tr^(N (M - 1)) exp(L (1 - Tr^(N M))) */
-    double shift;                                                /* c, m3/mol, in v = v_eos - c */
+    const char *method;                                      /* the method's word */
+    struct optional critical_temperature, critical_pressure; /* K, Pa, the set's own; absent: the component's */
+    bool has_twu;                                            /* L, M, N are given */
+    double L, M, N;                                          /* alpha = Tr^(N (M - 1)) exp(L (1 - Tr^(N M))) */
+    double shift;                                            /* c, m3/mol, in v = v_eos - c */
     /* K, in b(T) = b ((1 + A / (T + B)) / (1 + A / (Tc + B)))^3 */
     double covolume_A, covolume_B;
 };
@@ -167,7 +167,7 @@ struct reducing_pair {
 /* A pure substance as every method sees it; what a method needs and does not find makes it unable to answer. */
 struct pure_spec {
     const char *name;
-    double molar_mass; /* kg/mol, always given */
+    double molar_mass;                                                         /* kg/mol, always given */
     struct optional critical_temperature, critical_pressure, critical_density; /* K, Pa, mol/m3 */
     struct optional acentric;
     struct optional triple_temperature;     /* K */

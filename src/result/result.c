@@ -97,8 +97,7 @@ struct fact *sheet_add_words(struct result *result, struct result_sheet *sheet, 
     return fact;
 }
 
-struct table *sheet_add_table(struct result *result, struct result_sheet *sheet, const char *title,
-                              const char *method)
+struct table *sheet_add_table(struct result *result, struct result_sheet *sheet, const char *title, const char *method)
 {
     struct table *table = arena_alloc(result->arena, 1, sizeof *table);
     table->title = title;

@@ -17,24 +17,24 @@
 struct look {
     const char *si_unit; /* "Pa", "K", "kg/m3", "1" */
     struct shown_unit shown;
-    int decimals;        /* digits after the point; negative: that many significant digits */
+    int decimals; /* digits after the point; negative: that many significant digits */
 };
 
 struct fact {
-    const char *name;    /* for machines and readers, "filling-ratio" */
-    const char *method;  /* "reference"; NULL: no method involved */
-    const char *source;  /* key of a data source, or the place of the deck that gives it; NULL: computed */
-    const char *text;    /* not NULL: a fact in words, `value` unused */
+    const char *name;   /* for machines and readers, "filling-ratio" */
+    const char *method; /* "reference"; NULL: no method involved */
+    const char *source; /* key of a data source, or the place of the deck that gives it; NULL: computed */
+    const char *text;   /* not NULL: a fact in words, `value` unused */
     double value;
     struct look look;
-    const char *remark;  /* set beside the value: "rounded down"; NULL: none */
+    const char *remark; /* set beside the value: "rounded down"; NULL: none */
 };
 
 enum cell_kind { CELL_NUMBER, CELL_TEXT, CELL_SHEET, CELL_EMPTY };
 
 struct cell {
     enum cell_kind kind;
-    double number;    /* SI; of CELL_SHEET a sheet of the result, from 1 */
+    double number; /* SI; of CELL_SHEET a sheet of the result, from 1 */
     const char *text;
     bool is_outside_range; /* printed with a mark that points at the warning */
 };
@@ -69,14 +69,14 @@ enum requirement_state { REQUIREMENT_MET, REQUIREMENT_NOT_MET, REQUIREMENT_UNDEC
 struct requirement {
     const char *text;
     enum requirement_state state;
-    const char *reason;       /* why undecided, or what a not-comparable predicate found; NULL: none */
-    bool has_margin;          /* compared quantities only */
-    double margin;            /* SI, positive when met */
+    const char *reason; /* why undecided, or what a not-comparable predicate found; NULL: none */
+    bool has_margin;    /* compared quantities only */
+    double margin;      /* SI, positive when met */
     struct look look;
     bool has_worst_temperature;
     double worst_temperature; /* K */
     struct look temperature_look;
-    size_t line;              /* in the deck */
+    size_t line; /* in the deck */
     const char *method;
     struct requirement *next;
 };
@@ -103,8 +103,8 @@ struct sheet_part {
 };
 
 struct result_sheet {
-    const char *kind;  /* "settled-pressure" */
-    const char *title; /* NULL: none */
+    const char *kind;                    /* "settled-pressure" */
+    const char *title;                   /* NULL: none */
     const char *fluid, *vessel, *charge; /* names; NULL: none */
     struct sheet_part *first_part, *last_part;
     struct requirement *first_requirement, *last_requirement;
@@ -143,7 +143,7 @@ struct result {
         size_t count, capacity;
         struct library_row {
             const char *name, *sha256;
-        } *items;
+        } * items;
     } library;
     struct line_list headlines; /* the verdict's lines below the count of requirements */
     struct {
@@ -159,7 +159,7 @@ struct result {
         struct source_row {
             const char *key, *citation;
             bool is_unverified;
-        } *items;
+        } * items;
     } sources;
     struct {
         size_t count, capacity;
@@ -184,8 +184,7 @@ void sheet_begin_facts(struct result *result, struct result_sheet *sheet, const 
 struct fact *sheet_add_fact(struct result *result, struct result_sheet *sheet, const char *name, double value,
                             struct look look);
 struct fact *sheet_add_words(struct result *result, struct result_sheet *sheet, const char *name, const char *text);
-struct table *sheet_add_table(struct result *result, struct result_sheet *sheet, const char *title,
-                              const char *method);
+struct table *sheet_add_table(struct result *result, struct result_sheet *sheet, const char *title, const char *method);
 struct hand_check *sheet_add_hand_check(struct result *result, struct result_sheet *sheet, const char *title);
 void sheet_add_note(struct result *result, struct result_sheet *sheet, const char *format, ...)
     __attribute__((format(printf, 3, 4)));
