@@ -522,7 +522,8 @@ static void add_phase(struct flash *f, const double w[], double tpd)
 {
     double best = f->gibbs, best_taken = 0.0;
     size_t best_source = 0;
-    for (size_t source = 0; source <= f->phases; source++) {
+    /* Of one phase, from it and in proportion is the same. */
+    for (size_t source = f->phases == 1 ? 1 : 0; source <= f->phases; source++) {
         double taken = LARGEST_PART_TAKEN * most_of(f, w, source);
         for (int k = 0; k < MOST_PARTS; k++, taken *= 0.2) {
             const double gibbs = gibbs_with(f, w, source, taken);

@@ -23,6 +23,9 @@ enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 13 }
 #define NO_DECREASE_REPORTED 1e-21
 /* A Newton step shorter than this is the last one. */
 #define LAST_STEP 1e-10
+/* Steps that shrink by less than this each time do not converge quadratically; the shortest to be taken twice. */
+#define SLOWEST_QUADRATIC 0.5
+#define SHORTEST_DOUBLED  1e-5
 /* The longest Newton step, in alpha, whose length is 2 for a normalised trial. */
 #define LONGEST_STEP 0.7
 /* A phase with no more than this part of its volume taken up by molecules is gas enough for no other gas to be looked
@@ -263,11 +266,11 @@ static void keep_trial(struct equilibrium_workspace *ws)
     }
 }
 
-/* Along ws->step downhill; where no part of it leads down, a substitution takes its place. */
-static enum answer descend(struct test *t, struct trial *trial)
+/* Along `multiple` times ws->step downhill; where no part of it leads down, a substitution takes its place. */
+static enum answer descend(struct test *t, double multiple, struct trial *trial)
 {
     const double tm = trial->tm, longest = LONGEST_STEP * fmax(1.0, sqrt(trial->sum));
-    double part = fmin(1.0, longest / length_of_step(t->ws));
+    double part = fmin(multiple, longest / length_of_step(t->ws));
     keep_trial(t->ws);
     for (int k = 0; k < MOST_HALVINGS; k++, part *= 0.4) {
         take_step(t->ws, part);
@@ -288,8 +291,20 @@ static enum answer descend(struct test *t, struct trial *trial)
     return evaluate(t, PHASE_LN_PHI | PHASE_DLN_PHI_DN, trial);
 }
 
+/* Beside a critical point the distance is nearly of fourth order along one direction, and Newton's steps only shrink to
+ * two thirds of the last. Every other step taken twice makes up for that, and cannot leap over a minimum: of a
+ * polynomial with real roots alone a double step leads from outside at most to where the slope changes sign beyond the
+ * first root (Maehly's rule; Stoer and Bulirsch, Introduction to Numerical Analysis, section 5.5). Never twice in a
+ * row: where the distance is of second order after all a double step leads as far to the other side. */
+static double multiple_of(double length, double last_length, double last_multiple)
+{
+    const bool is_linear = length > SLOWEST_QUADRATIC * last_length && length < last_length;
+    return is_linear && last_multiple == 1.0 && length > SHORTEST_DOUBLED ? 2.0 : 1.0;
+}
+
 static enum answer run_newton(struct test *t, struct trial *trial, enum verdict *verdict)
 {
+    double last_length = 0.0, multiple = 1.0;
     for (int step = 0; step < MOST_STEPS; step++) {
         const double decrease = newton_step(t->ws);
         *verdict = judge(t, trial, decrease);
@@ -297,7 +312,8 @@ static enum answer run_newton(struct test *t, struct trial *trial, enum verdict 
             return ANSWER_OK;
         }
         const double length = length_of_step(t->ws);
-        const enum answer answer = descend(t, trial);
+        multiple = decrease < HUGE_VAL ? multiple_of(length, last_length, multiple) : 1.0;
+        const enum answer answer = descend(t, multiple, trial);
         if (answer != ANSWER_OK) {
             return answer;
         }
@@ -305,6 +321,7 @@ static enum answer run_newton(struct test *t, struct trial *trial, enum verdict 
             *verdict = is_known(t, trial) ? KNOWN_PHASE : STATIONARY;
             return ANSWER_OK;
         }
+        last_length = length;
     }
     return ANSWER_FAILED;
 }
