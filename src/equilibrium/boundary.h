@@ -104,4 +104,9 @@ enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, do
 enum answer boundary_complete_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature,
                                    const double z[], struct equilibrium_workspace *ws, struct boundary_list *list);
 
+/* The same question at a pressure (Pa), answered at a few temperatures between and beyond the points: `is_complete` is
+ * false afterwards where they cannot be all. Nothing is added. */
+enum answer boundary_check_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
+                                struct equilibrium_workspace *ws, struct boundary_list *list);
+
 #endif

@@ -216,3 +216,51 @@ enum answer boundary_complete_at_t(struct fluid_at_t *at_t, const struct fluid *
     }
     return ANSWER_OK;
 }
+
+/* ---- at a pressure ----------------------------------------------------------------------------------------------- */
+
+/* Temperatures tried beyond the highest and the lowest point, by parts of theirs; and in K where there is no point. */
+#define BEYOND_HIGHEST 1.02
+static const double BEYOND_LOWEST[] = {0.99, 0.9};
+static const double TRIED_ANYWHERE[] = {100.0, 125.0, 150.0, 200.0, 250.0, 300.0, 350.0};
+
+struct isobar {
+    struct completion completion;
+    struct fluid_at_t *at_t;
+    const struct fluid *fluid;
+    double pressure;
+};
+
+/* What the test cannot say speaks against nothing. */
+static bool is_as_expected(struct isobar *isobar, double temperature, bool is_stable)
+{
+    if (fluid_set_t(isobar->at_t, isobar->fluid, temperature) != ANSWER_OK) {
+        return true;
+    }
+    return verdict_at(&isobar->completion, isobar->pressure) != (is_stable ? VERDICT_UNSTABLE : VERDICT_STABLE);
+}
+
+enum answer boundary_check_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
+                                struct equilibrium_workspace *ws, struct boundary_list *list)
+{
+    struct isobar isobar = {{.at_t = at_t, .z = z, .ws = ws, .list = list}, at_t, fluid, pressure};
+    isobar.completion.effort = STABILITY_DECIDE;
+    double above = 0.0; /* the stable point above the one at hand */
+    bool is_stable = true;
+    for (size_t k = list->count; k > 0; k--) {
+        const struct boundary_point *point = list->point[k - 1];
+        if (point->is_stable) {
+            const double between = above > 0.0 ? sqrt(above * point->temperature) : BEYOND_HIGHEST * point->temperature;
+            list->is_complete = list->is_complete && is_as_expected(&isobar, between, is_stable);
+            is_stable = !is_stable;
+            above = point->temperature;
+        }
+    }
+    const size_t tried =
+        above > 0.0 ? sizeof BEYOND_LOWEST / sizeof *BEYOND_LOWEST : sizeof TRIED_ANYWHERE / sizeof *TRIED_ANYWHERE;
+    for (size_t k = 0; k < tried; k++) {
+        const double temperature = above > 0.0 ? BEYOND_LOWEST[k] * above : TRIED_ANYWHERE[k];
+        list->is_complete = list->is_complete && is_as_expected(&isobar, temperature, is_stable);
+    }
+    return ANSWER_OK;
+}

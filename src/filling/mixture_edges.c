@@ -446,10 +446,13 @@ enum answer mixture_points(struct method_run *method, bool is_pressure, double v
     }
     if (envelope != NULL) {
         const enum answer answer = points_of_envelope(method, is_pressure, value);
-        return answer == ANSWER_OK && !is_pressure
-                   ? boundary_complete_at_t(method->at_t, method->fluid, value, method->z, method->mixture->ws,
-                                            method->mixture->points)
-                   : answer;
+        struct mixture_work *work = method->mixture;
+        if (answer != ANSWER_OK) {
+            return answer;
+        }
+        return is_pressure
+                   ? boundary_check_at_p(method->at_t, method->fluid, value, method->z, work->ws, work->points)
+                   : boundary_complete_at_t(method->at_t, method->fluid, value, method->z, work->ws, work->points);
     }
     method->mixture->points->is_complete = true;
     method->mixture->points->opens_below = false;

@@ -151,7 +151,8 @@ static void warn_incomplete(const struct sweeping *at, double swept)
     const struct sheet_run *run = at->run;
     result_warn(run->result, CODE_W352, location_line(run->sheet->at), run->number,
                 "%s, %s: the fluid is two-phase at %s where no point told bounds it; a dew or bubble point is missing",
-                run->sheet->fluid->name, at->method->name, shown_text(run, look_temperature(run), swept));
+                run->sheet->fluid->name, at->method->name,
+                shown_text(run, by_pressure(run) ? look_pressure(run) : look_temperature(run), swept));
 }
 
 /* ---- the sweep --------------------------------------------------------------------------------------------------- */
@@ -205,7 +206,7 @@ static void tell_points(void *teller, size_t method, size_t index, const void *a
     }
     if (!points->is_complete) {
         warn_incomplete(at, swept);
-        add_words(at, swept, "another not found");
+        add_words(at, swept, told == 0 ? "not found" : "another not found");
         at->run->result->is_undecided = at->run->result->is_undecided || at->is_lead;
     } else if (told == 0) {
         add_words(at, swept, "none");
