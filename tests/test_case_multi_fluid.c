@@ -16,11 +16,12 @@
 #define EQUATIONS  EQUATION("light") EQUATION("heavy")
 #define DEPARTURE  "departure bent { source paper; residual special-exponential { term 0.2 5 1 0.25 0.5 1 0.7 } }\n"
 #define PAPER      "source paper \"a paper\"\n"
-#define PAIR \
-    "pair light heavy { multi-fluid temperature 0.98, 1.1 volume 1.02, 0.9 departure bent 0.7 ref paper }\n"
-#define MIXTURE    "mixture m by mole { heavy 30 %; light rest }\n"
-#define SHEET      "sheet fugacity { fluid m; sweep temperature 400 K; sweep pressure 1 bara }\n"
-#define WHOLE      COMPONENTS EQUATIONS PAPER DEPARTURE
+#define PAIR                                                                 \
+    "pair light heavy { multi-fluid temperature 0.98, 1.1 volume 1.02, 0.9 " \
+    "departure bent 0.7 ref paper }\n"
+#define MIXTURE "mixture m by mole { heavy 30 %; light rest }\n"
+#define SHEET   "sheet fugacity { fluid m; sweep temperature 400 K; sweep pressure 1 bara }\n"
+#define WHOLE   COMPONENTS EQUATIONS PAPER DEPARTURE
 
 static void a_pair_keeps_its_numbers_and_its_order(void **state)
 {

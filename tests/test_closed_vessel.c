@@ -57,8 +57,9 @@ static void the_state_follows_from_density_and_temperature(void **state)
         double T, density;
         enum vessel_state state;
     } cases[] = {
-        {311.0, 300.0, VESSEL_VAPOUR},        {311.0, 5000.0, VESSEL_TWO_PHASE}, {311.0, 12400.0, VESSEL_LIQUID_FULL},
-        {391.0, 5000.0, VESSEL_SUPERCRITICAL}, {391.0, 300.0, VESSEL_SUPERCRITICAL},
+        {311.0, 300.0, VESSEL_VAPOUR},        {311.0, 5000.0, VESSEL_TWO_PHASE},
+        {311.0, 12400.0, VESSEL_LIQUID_FULL}, {391.0, 5000.0, VESSEL_SUPERCRITICAL},
+        {391.0, 300.0, VESSEL_SUPERCRITICAL},
     };
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(METHODS); k++) {
@@ -68,7 +69,7 @@ static void the_state_follows_from_density_and_temperature(void **state)
             assert_int_equal(closed_vessel_at_tv(at_t, VOLUME, cases[c].density * VOLUME, &vessel), ANSWER_OK);
             assert_int_equal(vessel.state, cases[c].state);
             const double fraction = vessel.liquid_fraction;
-            assert_true(cases[c].state == VESSEL_TWO_PHASE ? fraction > 0.0 && fraction < 1.0
+            assert_true(cases[c].state == VESSEL_TWO_PHASE     ? fraction > 0.0 && fraction < 1.0
                         : cases[c].state == VESSEL_LIQUID_FULL ? fraction >= 1.0
                                                                : fraction <= 0.0);
             if (cases[c].state == VESSEL_TWO_PHASE) {

@@ -100,8 +100,8 @@ static void differentiate(struct subject *subject, double *x, double row[MOST_VA
 }
 
 /* Relative to the derivative, or to value over argument where a derivative passes near zero. */
-static void compare(const double analytical[], const double numerical[], const double values[], double x,
-                    size_t count, const char *what)
+static void compare(const double analytical[], const double numerical[], const double values[], double x, size_t count,
+                    const char *what)
 {
     for (size_t k = 0; k < 3 + count; k++) {
         char text[160];

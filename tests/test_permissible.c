@@ -27,8 +27,11 @@ static struct bench *set_up_bench(void)
     bench->it = it;
     bench->predicates[0] = pressure_within_test(it, 338.15, 1.0);
     bench->predicates[0].unless_listed = true;
-    bench->rule = (struct case_rule){.name = "hot-day", .meant_for = CLASS_HIGH_PRESSURE_LIQUEFIED, .round_to = 0.01,
-                                     .predicate_count = 1, .predicates = bench->predicates};
+    bench->rule = (struct case_rule){.name = "hot-day",
+                                     .meant_for = CLASS_HIGH_PRESSURE_LIQUEFIED,
+                                     .round_to = 0.01,
+                                     .predicate_count = 1,
+                                     .predicates = bench->predicates};
     bench->rules[0] = &bench->rule;
     it->sheet.rule_count = 1;
     it->sheet.rules = bench->rules;
@@ -41,8 +44,8 @@ static void list_rows(struct bench *bench, double at_190, double at_250)
     struct filled_vessel *it = bench->it;
     bench->rows[0] = (struct listed_row){.test_pressure = 190.0 * BAR, .filling_ratio = {true, at_190}};
     bench->rows[1] = (struct listed_row){.test_pressure = 250.0 * BAR, .filling_ratio = {true, at_250}};
-    it->entry = (struct case_entry){.name = "UN 1013", .component = &it->component, .row_count = 2,
-                                    .rows = bench->rows};
+    it->entry =
+        (struct case_entry){.name = "UN 1013", .component = &it->component, .row_count = 2, .rows = bench->rows};
     it->entries[0] = &it->entry;
     it->sheet.entry_count = 1;
     it->sheet.entries = it->entries;
@@ -108,8 +111,8 @@ static void a_ratio_that_is_a_multiple_of_the_step_keeps_it(void **state)
     static const double ratios[] = {0.68, 0.57, 0.29, 0.07};
     for (size_t i = 0; i < sizeof ratios / sizeof *ratios; i++) {
         struct bench *bench = set_up_bench();
-        bench->predicates[0] = compared(288.15, 288.15, SYMBOL_FILLING_RATIO, RELATION_AT_MOST,
-                                        formula_number(bench->it, ratios[i]));
+        bench->predicates[0] =
+            compared(288.15, 288.15, SYMBOL_FILLING_RATIO, RELATION_AT_MOST, formula_number(bench->it, ratios[i]));
         filled_vessel_method(bench->it, "peng-robinson");
         assert_close(fact_value(answer(bench), "filling-ratio"), ratios[i], 1e-14, "the ratio of the rule");
         tear_down_bench(bench);
@@ -339,8 +342,8 @@ static void a_replaced_criterion_is_met_by_the_row_with_the_computation_beside_i
     assert_close(one->margin, 250.0 * BAR + GAUGE_ZERO - peng_robinson_pressure(0.77 * 999.1 * 0.0502, 338.15), 1e-9,
                  "test pressure less the 1976 equation");
     assert_true(result_has_note(sheet, "is missed at 65 degC: by"));
-    assert_close(fact_value(sheet, "listed-excess"),
-                 0.77 - fact_value(sheet, "computed-filling-ratio"), 1e-14, "listed less computed");
+    assert_close(fact_value(sheet, "listed-excess"), 0.77 - fact_value(sheet, "computed-filling-ratio"), 1e-14,
+                 "listed less computed");
     assert_non_null(strstr(bench->it->run.result->headlines.items[0], "the listed row (UN 1013, 250 barg)"));
     tear_down_bench(bench);
 }
@@ -487,8 +490,8 @@ static void two_listed_rows_or_more_are_told_together(void **state)
     assert_string_equal(result_cell(table, 0, "agrees")->text, "no");
     assert_true(result_cell(table, 1, "sheet")->number == 1.0); /* set, not computed */
     table = result_table(result->last_sheet, "criteria that listed charges miss", NULL);
-    assert_int_equal(table->row_count, peng_robinson_pressure(0.61 * 999.1 * 0.0502, 338.15) > 190e5 + GAUGE_ZERO
-                                           ? 2 : 1);
+    assert_int_equal(table->row_count,
+                     peng_robinson_pressure(0.61 * 999.1 * 0.0502, 338.15) > 190e5 + GAUGE_ZERO ? 2 : 1);
     tear_down_bench(bench);
 }
 
@@ -696,7 +699,7 @@ static const struct result *run_text(const char *text, struct arena *arena)
     return filling_solve(tree, "0.0.0", arena);
 }
 
-#define REGULATIONS                                                                                                    \
+#define REGULATIONS                                                                      \
     "case \"limits\" { number \"T\" }\nuse \"gases\"\nuse \"rules/model-regulations\"\n" \
     "use \"entries/adr-2025\"\nmethods { lead reference }\n"
 
@@ -727,10 +730,11 @@ static void computed_ratios_agree_with_other_equations_for_the_same_gases(void *
     };
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
         struct arena *arena = arena_create(NULL);
-        const char *text = arena_format(arena, REGULATIONS
-                                        "vessel v { water-capacity 50.2 L; test-pressure %g barg }\n"
-                                        "sheet permissible-charge { fluid %s; vessel v; rules %s; listed compare }\n",
-                                        cases[i].test_bar, cases[i].fluid, cases[i].rule);
+        const char *text =
+            arena_format(arena,
+                         REGULATIONS "vessel v { water-capacity 50.2 L; test-pressure %g barg }\n"
+                                     "sheet permissible-charge { fluid %s; vessel v; rules %s; listed compare }\n",
+                         cases[i].test_bar, cases[i].fluid, cases[i].rule);
         const struct result *result = run_text(text, arena);
         const struct fact *fact = result_fact(result->first_sheet, "filling-ratio-unrounded", "reference");
         assert_non_null(fact);
@@ -751,11 +755,12 @@ static void carbon_dioxide_follows_its_isochores(void **state)
     };
     for (size_t i = 0; i < sizeof cases / sizeof *cases; i++) {
         struct arena *arena = arena_create(NULL);
-        const char *text = arena_format(arena, REGULATIONS
-                                        "vessel v { water-capacity 40 L; test-pressure 300 barg }\n"
-                                        "charge c { fluid carbon-dioxide; vessel v; filling-ratio %g }\n"
-                                        "sheet settled-pressure { charge c; sweep temperature %g degC, 70 degC }\n",
-                                        cases[i].ratio, cases[i].celsius);
+        const char *text =
+            arena_format(arena,
+                         REGULATIONS "vessel v { water-capacity 40 L; test-pressure 300 barg }\n"
+                                     "charge c { fluid carbon-dioxide; vessel v; filling-ratio %g }\n"
+                                     "sheet settled-pressure { charge c; sweep temperature %g degC, 70 degC }\n",
+                         cases[i].ratio, cases[i].celsius);
         const struct result_sheet *sheet = run_text(text, arena)->first_sheet;
         const struct cell *pressure = result_cell(result_table(sheet, "settled pressure", "reference"), 0, "pressure");
         assert_close(pressure->number / BAR, cases[i].bar, 5e-3, "short equation of Span and Wagner (2003)");

@@ -155,8 +155,8 @@ static void the_relations_mean_what_they_say(void **state)
         double bound;
         bool holds;
     } cases[] = {
-        {RELATION_LESS, 0.71, true},     {RELATION_LESS, 0.69, false},    {RELATION_AT_MOST, 0.71, true},
-        {RELATION_AT_MOST, 0.69, false}, {RELATION_EQUAL, 0.7, true},     {RELATION_EQUAL, 0.7001, false},
+        {RELATION_LESS, 0.71, true},     {RELATION_LESS, 0.69, false},     {RELATION_AT_MOST, 0.71, true},
+        {RELATION_AT_MOST, 0.69, false}, {RELATION_EQUAL, 0.7, true},      {RELATION_EQUAL, 0.7001, false},
         {RELATION_AT_LEAST, 0.69, true}, {RELATION_AT_LEAST, 0.71, false}, {RELATION_GREATER, 0.69, true},
         {RELATION_GREATER, 0.71, false},
     };
@@ -196,8 +196,8 @@ static void a_rating_the_vessel_lacks_leaves_the_rule_undecided(void **state)
     (void)state;
     struct filled_vessel *it = filled_vessel_create();
     struct method_run *ideal = filled_vessel_method(it, "ideal-gas");
-    const struct predicate rule = compared(288.15, 288.15, SYMBOL_PRESSURE, RELATION_AT_MOST,
-                                           formula_share(it, 1.0, SYMBOL_WORKING_PRESSURE));
+    const struct predicate rule =
+        compared(288.15, 288.15, SYMBOL_PRESSURE, RELATION_AT_MOST, formula_share(it, 1.0, SYMBOL_WORKING_PRESSURE));
     const struct predicate_finding finding = predicate_check(&it->run, ideal, &rule, 3.0);
     assert_int_equal(finding.answer, ANSWER_CANNOT);
     assert_string_equal(finding.words, "the vessel lacks the rating named");
@@ -291,8 +291,7 @@ static void above_the_critical_temperature_there_is_no_liquid_and_no_vapour_pres
     struct filled_vessel *it = filled_vessel_create();
     struct method_run *method = filled_vessel_method(it, "peng-robinson");
     const struct predicate no_liquid = of_phases(PREDICATE_NO_LIQUID, 310.0, 310.0);
-    const struct predicate level =
-        compared(310.0, 310.0, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
+    const struct predicate level = compared(310.0, 310.0, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
     const struct predicate share =
         compared(310.0, 310.0, SYMBOL_DENSITY, RELATION_AT_MOST, formula_share(it, 0.95, SYMBOL_LIQUID_DENSITY));
     const struct predicate vapour =
@@ -356,8 +355,8 @@ static void what_only_the_densest_state_ends_is_unlimited(void **state)
         double mass;
         bool is_unlimited;
         struct predicate_finding finding;
-        assert_int_equal(
-            predicate_largest_mass(&it->run, method, &rule, 200.0, &mass, &is_unlimited, &finding), ANSWER_OK);
+        assert_int_equal(predicate_largest_mass(&it->run, method, &rule, 200.0, &mass, &is_unlimited, &finding),
+                         ANSWER_OK);
         assert_true(is_unlimited);
         const double densest = 0.0502 * 0.0440098 * 7.3773e6 / (0.077796073903888456 * GAS_CONSTANT * 304.1282);
         assert_true(mass <= densest);
@@ -450,8 +449,7 @@ static void a_worst_temperature_between_the_ends_is_located_to_a_millikelvin(voi
     (void)state;
     struct filled_vessel *it = filled_vessel_create();
     struct method_run *method = filled_vessel_method(it, "peng-robinson");
-    const struct predicate level =
-        compared(250.0, 303.9, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
+    const struct predicate level = compared(250.0, 303.9, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
     const double mass = 0.0502 * 0.0440098 / (1.03 * method->critical.molar_volume);
     const struct predicate_finding finding = predicate_check(&it->run, method, &level, mass);
     assert_int_equal(finding.answer, ANSWER_OK);
@@ -469,8 +467,7 @@ static void liquid_full_just_below_the_critical_temperature_is_seen(void **state
     (void)state;
     struct filled_vessel *it = filled_vessel_create();
     struct method_run *method = filled_vessel_method(it, "peng-robinson");
-    const struct predicate level =
-        compared(280.0, 320.0, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
+    const struct predicate level = compared(280.0, 320.0, SYMBOL_LIQUID_VOLUME, RELATION_LESS, formula_number(it, 1.0));
     assert_int_equal(fluid_set_t(method->at_t, method->fluid, 0.99985 * 304.1282), ANSWER_OK);
     struct saturation saturation;
     assert_int_equal(saturation_at_t(method->at_t, &saturation), ANSWER_OK);

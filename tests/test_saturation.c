@@ -247,8 +247,7 @@ static void the_classical_iteration_ends_at_the_same_pressure(void **state)
     enum { MOST = 60 };
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(METHODS); k++) {
-        struct fluid_at_t *at_t =
-            sample_at_t(sample_pure(METHODS[k], &SAMPLE_SUBSTANCE[PROPANE], arena), 311.0, arena);
+        struct fluid_at_t *at_t = sample_at_t(sample_pure(METHODS[k], &SAMPLE_SUBSTANCE[PROPANE], arena), 311.0, arena);
         struct saturation found;
         struct saturation_pass passes[MOST];
         size_t count;
@@ -272,8 +271,7 @@ static void the_classical_iteration_says_when_a_root_is_lost(void **state)
     (void)state;
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(METHODS); k++) {
-        struct fluid_at_t *at_t =
-            sample_at_t(sample_pure(METHODS[k], &SAMPLE_SUBSTANCE[PROPANE], arena), 345.0, arena);
+        struct fluid_at_t *at_t = sample_at_t(sample_pure(METHODS[k], &SAMPLE_SUBSTANCE[PROPANE], arena), 345.0, arena);
         struct saturation_pass passes[5];
         size_t count;
         assert_int_equal(saturation_passes(at_t, 9e6, 5, passes, &count), ANSWER_NO_SUCH_ROOT);

@@ -79,8 +79,7 @@ static void latent_heat_agrees_with_the_slope_of_the_line(void **state)
     const struct table *line = line_of(&small, 0);
     for (size_t i = 1; i < 6; i += 3) {
         const double slope = (number(line, i + 1, "pressure") - number(line, i - 1, "pressure")) / (2.0 * step);
-        const double expansion =
-            1.0 / number(line, i, "vapour-density") - 1.0 / number(line, i, "liquid-density");
+        const double expansion = 1.0 / number(line, i, "vapour-density") - 1.0 / number(line, i, "liquid-density");
         assert_close(number(line, i, "latent-heat"), slope * temperatures[i] * expansion, 1e-7,
                      "Clausius and Clapeyron, central difference over 0.02 K");
     }

@@ -14,8 +14,12 @@ static const double TEMPERATURES[] = {338.15, 253.15, 288.15, 303.15};
 static struct filled_vessel *set_up_charge(enum fill_kind kind, double amount)
 {
     struct filled_vessel *it = filled_vessel_create();
-    it->charge = (struct case_charge){.name = "lot", .fluid = &it->fluid, .vessel = &it->vessel, .kind = kind,
-                                      .amount = given(amount), .temperature = 293.15};
+    it->charge = (struct case_charge){.name = "lot",
+                                      .fluid = &it->fluid,
+                                      .vessel = &it->vessel,
+                                      .kind = kind,
+                                      .amount = given(amount),
+                                      .temperature = 293.15};
     it->sheet.kind = SHEET_SETTLED_PRESSURE;
     it->sheet.charge = &it->charge;
     it->sheet.temperatures = (struct case_sweep){.given = true, .count = 4, .values = TEMPERATURES};
@@ -165,8 +169,8 @@ static void a_requirement_without_a_temperature_holds_over_the_sweep(void **stat
     const struct requirement *one = answer(it)->first_requirement;
     assert_close(one->worst_temperature, 338.15, 0.0, "the hot end");
     assert_close(one->margin, 250.0 * BAR + GAUGE_ZERO - ideal_pressure(20.0, 338.15), 1e-12, "closed form");
-    assert_int_equal(one->state, ideal_pressure(20.0, 338.15) - GAUGE_ZERO <= 250.0 * BAR ? REQUIREMENT_MET
-                                                                                         : REQUIREMENT_NOT_MET);
+    assert_int_equal(one->state,
+                     ideal_pressure(20.0, 338.15) - GAUGE_ZERO <= 250.0 * BAR ? REQUIREMENT_MET : REQUIREMENT_NOT_MET);
     arena_free(it->arena);
 }
 
@@ -238,8 +242,7 @@ static void liquid_ends_where_a_saturated_density_is_the_vessels(void **state)
             struct saturation saturation;
             assert_int_equal(fluid_set_t(method->at_t, method->fluid, found.temperature), ANSWER_OK);
             assert_int_equal(saturation_at_t(method->at_t, &saturation), ANSWER_OK);
-            const double saturated =
-                found.end == LIQUID_END_FULL ? saturation.liquid_volume : saturation.vapour_volume;
+            const double saturated = found.end == LIQUID_END_FULL ? saturation.liquid_volume : saturation.vapour_volume;
             assert_close(saturated, 0.0502 * 0.0440098 / cases[i].mass, 1e-7, "the vessel's molar volume");
         }
         arena_free(it->arena);

@@ -3,8 +3,8 @@
 
 #include <math.h>
 
-static enum answer single_phase(const struct fluid_at_t *at_t, double volume, double amount,
-                                enum vessel_state state, struct vessel_contents *out)
+static enum answer single_phase(const struct fluid_at_t *at_t, double volume, double amount, enum vessel_state state,
+                                struct vessel_contents *out)
 {
     struct pure_arrays arrays;
     struct phase phase;

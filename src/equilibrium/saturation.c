@@ -21,7 +21,7 @@ enum { MOST_STEPS = 60, MOST_RETREATS = 40, MOST_BISECTIONS = 200, MOST_TEMPERAT
 #define LAST_STEP 1e-9
 /* Close to the critical point rounding alone moves the volumes by more than that, and after this many steps a last one
  * of this part of ln(vV / vL) will do. */
-#define PATIENCE 12
+#define PATIENCE              12
 #define LAST_STEP_OF_CONTRAST 1e-3
 /* And once ln fV - ln fL is this small: ten times better than what is promised. */
 #define LAST_RESIDUAL (0.1 * SATURATION_LN_F_TOLERANCE)
@@ -73,8 +73,8 @@ struct step {
 static struct step step_from(const struct pair *pair, double RT)
 {
     const struct side *V = &pair->vapour, *L = &pair->liquid;
-    const double maxwell = (RT * (L->ln_f - V->ln_f) + V->pressure * V->volume - L->pressure * L->volume) /
-                           (V->volume - L->volume);
+    const double maxwell =
+        (RT * (L->ln_f - V->ln_f) + V->pressure * V->volume - L->pressure * L->volume) / (V->volume - L->volume);
     struct step step;
     /* In ln p rather than p, and so for the vapour's volume: exact where the vapour is an ideal gas, whatever the
      * first values; to first order the same. */
@@ -236,8 +236,7 @@ enum answer saturation_at_t(const struct fluid_at_t *at_t, struct saturation *ou
         return ANSWER_OK;
     }
     struct pair pair;
-    if (bracket_pressure(at_t, &critical, &pair) &&
-        solve_volumes(at_t, pair.vapour.volume, pair.liquid.volume, out)) {
+    if (bracket_pressure(at_t, &critical, &pair) && solve_volumes(at_t, pair.vapour.volume, pair.liquid.volume, out)) {
         return ANSWER_OK;
     }
     return ANSWER_FAILED;
@@ -277,8 +276,7 @@ static double first_temperature(const struct fluid *fluid, const struct critical
     return critical->temperature / (1.0 + log(critical->pressure / pressure) / slope);
 }
 
-enum answer saturation_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure,
-                            struct saturation *out)
+enum answer saturation_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, struct saturation *out)
 {
     struct critical_point critical;
     if (!is_pure_with_liquid(fluid) || fluid->ops->critical(fluid, &critical) != ANSWER_OK) {

@@ -12,7 +12,7 @@ struct saturation {
     double pressure;                     /* Pa */
     double vapour_volume, liquid_volume; /* m3/mol */
     double ln_phi_vapour, ln_phi_liquid;
-    double residual;                     /* ln fV - ln fL of the answer */
+    double residual; /* ln fV - ln fL of the answer */
     int iterations;
 };
 
@@ -33,10 +33,10 @@ enum answer saturation_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, 
 
 /* One pass of the classical correction p_next = p fL(p) / fV(p). */
 struct saturation_pass {
-    double pressure;                           /* Pa, the trial */
+    double pressure; /* Pa, the trial */
     double Z_vapour, Z_liquid;
-    double fugacity_vapour, fugacity_liquid;   /* Pa */
-    double next_pressure;                      /* Pa */
+    double fugacity_vapour, fugacity_liquid; /* Pa */
+    double next_pressure;                    /* Pa */
 };
 
 /* The classical iteration from `start` (Pa), written down pass by pass for a reader who follows it by hand; stops when

@@ -10,11 +10,11 @@
 
 /* How the liquid of a warming vessel ends. */
 enum liquid_end {
-    LIQUID_END_UNKNOWN,  /* the method has no liquid, or gave no answer */
-    LIQUID_END_FULL,     /* the vessel goes liquid-full at the temperature found */
-    LIQUID_END_DRY,      /* the last liquid evaporates at the temperature found */
-    LIQUID_END_BELOW,    /* neither within the range: it is one phase at the lowest temperature already */
-    LIQUID_END_CRITICAL  /* liquid and vapour become one at the critical temperature, within 1e-4 of it */
+    LIQUID_END_UNKNOWN, /* the method has no liquid, or gave no answer */
+    LIQUID_END_FULL,    /* the vessel goes liquid-full at the temperature found */
+    LIQUID_END_DRY,     /* the last liquid evaporates at the temperature found */
+    LIQUID_END_BELOW,   /* neither within the range: it is one phase at the lowest temperature already */
+    LIQUID_END_CRITICAL /* liquid and vapour become one at the critical temperature, within 1e-4 of it */
 };
 
 struct liquid_end_found {

@@ -333,7 +333,7 @@ static void tell_missing_row(const struct permissible *sheet)
 static void tell_letter_o(const struct permissible *sheet)
 {
     const struct sheet_run *run = sheet->run;
-    const char *although = run->sheet->listed == LISTED_COMPARE                ? "the sheet only compares"
+    const char *although = run->sheet->listed == LISTED_COMPARE             ? "the sheet only compares"
                            : !implements_any(sheet, row_in_question(sheet)) ? "no rule of the sheet gives way to it"
                                                                             : NULL;
     if (sheet->listed.entry->is_never_exceeded && although != NULL) {

@@ -16,12 +16,12 @@ enum criterion_kind {
 
 struct criterion {
     enum criterion_kind kind;
-    const char *name; /* of the rule or the entry; "vessel" */
+    const char *name;             /* of the rule or the entry; "vessel" */
     enum filling_class meant_for; /* of the rule */
     bool is_of_listed_rule; /* its rule has a criterion that listed rows replace: rows are held against all of it */
     const struct predicate *predicate;
-    double round_to;  /* filling ratios are rounded down to a multiple of this; 0: not rounded */
-    bool is_replaced; /* by the listed row: computed and shown, but does not bind */
+    double round_to;    /* filling ratios are rounded down to a multiple of this; 0: not rounded */
+    bool is_replaced;   /* by the listed row: computed and shown, but does not bind */
     bool is_shown_only; /* the listed row under `listed compare` */
 };
 
@@ -54,11 +54,11 @@ struct method_limits {
 
 /* The row of the gas's entry that applies to the vessel. */
 struct listed_choice {
-    const struct case_entry *entry; /* NULL: the gas has no rows, or no criterion that a row replaces */
-    const struct listed_row *row;   /* NULL: none at or below the vessel's test pressure, see `lowest` */
-    const struct listed_row *lowest; /* letter o without a row that applies: not above the lowest row */
+    const struct case_entry *entry;    /* NULL: the gas has no rows, or no criterion that a row replaces */
+    const struct listed_row *row;      /* NULL: none at or below the vessel's test pressure, see `lowest` */
+    const struct listed_row *lowest;   /* letter o without a row that applies: not above the lowest row */
     const struct predicate *predicate; /* what the row allows; NULL: it states nothing */
-    double filling_ratio;           /* of the row, where it states one */
+    double filling_ratio;              /* of the row, where it states one */
     bool has_ratio;
 };
 

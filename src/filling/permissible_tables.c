@@ -91,8 +91,7 @@ static void tell_each_criterion(const struct permissible *sheet)
     if (computed < 2) {
         return;
     }
-    struct table *table =
-        sheet_add_table(run->result, run->out, "limit of each criterion, before rounding", NULL);
+    struct table *table = sheet_add_table(run->result, run->out, "limit of each criterion, before rounding", NULL);
     table_add_word_column(run->result, table, "method");
     table_add_word_column(run->result, table, "criterion");
     table_add_column(run->result, table, "temperature", look_temperature(run));
@@ -117,8 +116,14 @@ const char *governed_by(const struct permissible *sheet, size_t criterion, const
                         temperature_words(sheet->run, limit->finding.worst_temperature));
 }
 
-enum summary_column { SUMMARY_METHOD, SUMMARY_DENSITY, SUMMARY_UNROUNDED, SUMMARY_RATIO, SUMMARY_MASS,
-                      SUMMARY_GOVERNED_BY };
+enum summary_column {
+    SUMMARY_METHOD,
+    SUMMARY_DENSITY,
+    SUMMARY_UNROUNDED,
+    SUMMARY_RATIO,
+    SUMMARY_MASS,
+    SUMMARY_GOVERNED_BY
+};
 
 /* A compressed gas is filled to a pressure: its settled pressure at 15 degC stands where the ratio is rounded. */
 static void set_amounts(const struct permissible *sheet, struct cell *row, struct method_run *method, double found,

@@ -110,8 +110,8 @@ static enum answer golden_section(const struct search_function *function, double
     return answer;
 }
 
-enum answer search_least(const struct search_function *function, double from, double to, double step,
-                         double tolerance, double *at, double *value)
+enum answer search_least(const struct search_function *function, double from, double to, double step, double tolerance,
+                         double *at, double *value)
 {
     struct place before = {from, 0.0}, here = {from, 0.0}, best;
     enum answer answer = function->value(function->context, from, &here.y);

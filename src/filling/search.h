@@ -27,7 +27,7 @@ enum answer search_root(const struct search_function *function, double absolute,
 
 /* The place of the least value over [from, to]: every `step` (at most) a value, then a golden-section search around
  * each low place to `tolerance`. Values may be infinite. *at is `from` or `to` exactly when an end is the lowest. */
-enum answer search_least(const struct search_function *function, double from, double to, double step,
-                         double tolerance, double *at, double *value);
+enum answer search_least(const struct search_function *function, double from, double to, double step, double tolerance,
+                         double *at, double *value);
 
 #endif

@@ -27,8 +27,8 @@ bool rise_per_kelvin(const struct sheet_run *run, struct method_run *method, dou
 bool rise_per_percent(const struct sheet_run *run, struct method_run *method, double mass, double temperature,
                       double *rise)
 {
-    return rise_between(run, method, (double[]){mass, mass * (1.0 + ONE_PERCENT)},
-                        (double[]){temperature, temperature}, rise);
+    return rise_between(run, method, (double[]){mass, mass * (1.0 + ONE_PERCENT)}, (double[]){temperature, temperature},
+                        rise);
 }
 
 bool rise_per_bar_of_fill(const struct sheet_run *run, struct method_run *method, double mass, double temperature,

@@ -7,7 +7,7 @@
 
 /* The state at which the vessel was filled, for the rise for 1 bar of fill. */
 struct fill_point {
-    bool is_known; /* false: filled by mass, and that rise is left out */
+    bool is_known;                /* false: filled by mass, and that rise is left out */
     double temperature, pressure; /* K, Pa absolute */
 };
 

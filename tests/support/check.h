@@ -21,6 +21,6 @@ void check_near_at(double actual, double expected, double atol, const char *what
 
 /* Fail the running test at the caller's line, printing both values and `what`: the case and where the value is from. */
 #define assert_close(actual, expected, rtol, what) check_close_at(actual, expected, rtol, what, __FILE__, __LINE__)
-#define assert_near(actual, expected, atol, what) check_near_at(actual, expected, atol, what, __FILE__, __LINE__)
+#define assert_near(actual, expected, atol, what)  check_near_at(actual, expected, atol, what, __FILE__, __LINE__)
 
 #endif

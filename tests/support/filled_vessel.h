@@ -11,9 +11,9 @@
 #include <stdlib.h>
 #include <string.h>
 
-#define BAR 1e5
+#define BAR        1e5
 #define GAUGE_ZERO 101325.0
-#define CELSIUS 273.15
+#define CELSIUS    273.15
 
 struct filled_vessel {
     struct arena *arena;
@@ -49,27 +49,42 @@ static inline struct filled_vessel *filled_vessel_create(void)
         .critical_pressure = given(7.3773e6),
         .acentric = given(0.22394),
         .triple_temperature = given(216.592),
-        .spec = {.name = "carbon-dioxide", .molar_mass = 0.0440098, .critical_temperature = {true, 304.1282},
-                 .critical_pressure = {true, 7.3773e6}, .acentric = {true, 0.22394},
+        .spec = {.name = "carbon-dioxide",
+                 .molar_mass = 0.0440098,
+                 .critical_temperature = {true, 304.1282},
+                 .critical_pressure = {true, 7.3773e6},
+                 .acentric = {true, 0.22394},
                  .triple_temperature = {true, 216.592}},
     };
     it->components[0] = &it->component;
     it->pure[0] = &it->component.spec;
     it->fractions[0] = 1.0;
-    it->fluid = (struct case_fluid){.name = "carbon-dioxide", .count = 1, .components = it->components,
-                                    .fractions = it->fractions, .molar_mass = 0.0440098,
+    it->fluid = (struct case_fluid){.name = "carbon-dioxide",
+                                    .count = 1,
+                                    .components = it->components,
+                                    .fractions = it->fractions,
+                                    .molar_mass = 0.0440098,
                                     .spec = {.count = 1, .pure = it->pure}};
-    it->vessel = (struct case_vessel){.name = "fifty", .water_capacity = given(0.0502),
-                                      .test_pressure = given(250.0 * BAR)};
-    it->sheet = (struct case_sheet){
-        .kind = SHEET_PERMISSIBLE_CHARGE, .fluid = &it->fluid, .vessel = &it->vessel,
-        .units = {.temperature = {"degC", 1.0, CELSIUS}, .pressure = {"bara", BAR, 0.0},
-                  .gauge = {"barg", BAR, GAUGE_ZERO}, .density = {"kg/L", 1000.0, 0.0}, .mass = {"kg", 1.0, 0.0},
-                  .gas_volume = {"m3", 1.0, 0.0}, .volume = {"L", 1e-3, 0.0}}};
+    it->vessel =
+        (struct case_vessel){.name = "fifty", .water_capacity = given(0.0502), .test_pressure = given(250.0 * BAR)};
+    it->sheet = (struct case_sheet){.kind = SHEET_PERMISSIBLE_CHARGE,
+                                    .fluid = &it->fluid,
+                                    .vessel = &it->vessel,
+                                    .units = {.temperature = {"degC", 1.0, CELSIUS},
+                                              .pressure = {"bara", BAR, 0.0},
+                                              .gauge = {"barg", BAR, GAUGE_ZERO},
+                                              .density = {"kg/L", 1000.0, 0.0},
+                                              .mass = {"kg", 1.0, 0.0},
+                                              .gas_volume = {"m3", 1.0, 0.0},
+                                              .volume = {"L", 1e-3, 0.0}}};
     it->tree = (struct case_tree){.ambient_pressure = GAUGE_ZERO, .sheet_count = 1, .sheets = &it->sheet};
     struct result *result = result_create(arena);
-    it->run = (struct sheet_run){.arena = arena, .tree = &it->tree, .sheet = &it->sheet, .result = result,
-                                 .out = result_add_sheet(result, "permissible-charge", NULL), .number = 1,
+    it->run = (struct sheet_run){.arena = arena,
+                                 .tree = &it->tree,
+                                 .sheet = &it->sheet,
+                                 .result = result,
+                                 .out = result_add_sheet(result, "permissible-charge", NULL),
+                                 .number = 1,
                                  .methods = it->methods};
     return it;
 }
@@ -104,15 +119,25 @@ static inline const struct formula *formula_share(struct filled_vessel *it, doub
 static inline struct predicate compared(double from, double to, enum case_symbol quantity, enum relation relation,
                                         const struct formula *bound)
 {
-    return (struct predicate){.kind = PREDICATE_COMPARE, .from = from, .to = to, .has_temperature = true,
-                              .quantity = quantity, .relation = relation, .bound = bound, .gauge_zero = GAUGE_ZERO,
+    return (struct predicate){.kind = PREDICATE_COMPARE,
+                              .from = from,
+                              .to = to,
+                              .has_temperature = true,
+                              .quantity = quantity,
+                              .relation = relation,
+                              .bound = bound,
+                              .gauge_zero = GAUGE_ZERO,
                               .written = "hand-built"};
 }
 
 static inline struct predicate of_phases(enum predicate_kind kind, double from, double to)
 {
-    return (struct predicate){.kind = kind, .from = from, .to = to, .has_temperature = true,
-                              .gauge_zero = GAUGE_ZERO, .written = "hand-built"};
+    return (struct predicate){.kind = kind,
+                              .from = from,
+                              .to = to,
+                              .has_temperature = true,
+                              .gauge_zero = GAUGE_ZERO,
+                              .written = "hand-built"};
 }
 
 /* pressure <= factor * test-pressure, the bound a gauge one */
