@@ -3,6 +3,9 @@
 
 #include <math.h>
 
+/* K: colder than anything; far below, powers of a temperature are lost to underflow. */
+#define COLDEST_TEMPERATURE 1e-6
+
 const struct fluid *fluid_create(const char *method, const struct fluid_spec *spec, struct arena *arena,
                                  struct fluid_lack_report *lack)
 {
@@ -31,7 +34,7 @@ struct fluid_at_t *fluid_at_t_create(const struct fluid *fluid, struct arena *ar
 
 enum answer fluid_set_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature)
 {
-    if (!(temperature > 0.0) || !isfinite(temperature)) {
+    if (!(temperature > COLDEST_TEMPERATURE) || !isfinite(temperature)) {
         return ANSWER_OUT_OF_RANGE;
     }
     at_t->fluid = fluid;
