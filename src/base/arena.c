@@ -47,6 +47,11 @@ struct arena *arena_create(const struct arena_source *source)
     return arena;
 }
 
+struct arena *arena_create_beside(const struct arena *beside)
+{
+    return arena_create(&beside->source);
+}
+
 void arena_free(struct arena *arena)
 {
     if (!arena) {

@@ -24,6 +24,10 @@ struct arena_source {
 /* A new arena fed from `source` (NULL: malloc and free); NULL when there is no memory for it. */
 struct arena *arena_create(const struct arena_source *source);
 
+/* A further arena that takes its memory where `beside` takes it, with a life of its own; NULL when there is none.
+ * Running out of it has to be provided for anew. */
+struct arena *arena_create_beside(const struct arena *beside);
+
 /* Gives back everything taken from the arena and the arena itself; NULL is fine. */
 void arena_free(struct arena *arena);
 

@@ -12,6 +12,7 @@
 
 #include <stdbool.h>
 #include <stddef.h>
+#include <stdint.h>
 
 struct case_source {
     const char *key;
@@ -333,6 +334,8 @@ struct case_sheet {
     const struct case_entry *const *entries;
     size_t note_count;
     const char *const *notes;
+    size_t draws; /* of a Monte Carlo run; 0: none is asked for */
+    uint64_t seed;
 };
 
 /* One line of the listing's inputs: a value as written, in SI, with its place. The place may be in any of the user's
@@ -342,6 +345,24 @@ struct case_input {
     const char *name;  /* "water-capacity" */
     const char *si;    /* "0.0502 m3" */
     struct origin origin;
+};
+
+/* A value written with `+/-`, so that every result that depends on it is uncertain. */
+struct case_spread {
+    const char *group;      /* "vessel ten-litre" */
+    const char *name;       /* "water-capacity" */
+    double value;           /* SI */
+    double uncertainty;     /* expanded, k = 2; above 0 */
+    struct shown_unit unit; /* as the value was written; a gauge unit's offset fits `value` */
+    const char *si_unit;    /* of value and uncertainty; "1" for a number */
+    struct location at;     /* of the value: what a shift names it by */
+    struct origin origin;
+};
+
+/* A value of the deck other than it was written: SI, added to it. */
+struct case_shift {
+    struct location at;
+    double by;
 };
 
 struct case_tree {
@@ -358,11 +379,23 @@ struct case_tree {
     const struct case_input *inputs; /* of the user's own blocks, file by file in the order of the text */
     size_t source_count;             /* sources that values in use name */
     const struct case_source *const *sources;
+    size_t spread_count;
+    const struct case_spread *spreads; /* of the values that were read for the sheets, in the order they were read */
 };
 
 /* The case a deck describes, or NULL when there were errors (all of them are in the diagnostics). Only what the sheets
  * need is built. A deck that was read with errors is looked through too, for the further messages it gives. */
 const struct case_tree *case_elaborate(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics);
+
+/* The same case with some of its values shifted; what follows from them, such as the rest of a mixture or mole
+ * fractions from masses, follows from the shifted ones. Fractions without a rest need no longer add up to 1: they are
+ * brought to a whole. NULL where a shifted value is impossible; the diagnostics are then of no use to anybody. The deck
+ * must have been elaborated before without errors, and is not changed: shifted cases may be made on many threads. */
+const struct case_tree *case_elaborate_shifted(const struct deck *deck, const struct case_shift *shifts, size_t count,
+                                               struct arena *arena, struct diagnostics *diagnostics);
+
+/* Whether the sheet can depend on that value at all, as far as the names of blocks tell. */
+bool case_sheet_may_depend(const struct case_sheet *sheet, const struct case_spread *spread);
 
 /* One library or deck component by name, for showing; NULL when there is none. */
 const struct case_component *case_find_component(const struct deck *deck, const char *name, struct arena *arena,

@@ -74,6 +74,11 @@ struct input_list {
     size_t count, capacity;
 };
 
+struct spread_list {
+    struct case_spread *items;
+    size_t count, capacity;
+};
+
 struct source_list {
     const struct case_source **items;
     size_t count, capacity;
@@ -129,6 +134,9 @@ struct elaboration {
     struct display_units units;
     struct statement_list sheets;
     struct input_list inputs;
+    struct spread_list spreads;
+    const struct case_shift *shifts; /* values to be read as other than they are written */
+    size_t shift_count;
     struct source_list sources;
     struct component_list components;
     struct name_table table_files; /* of the CSV tables, so that no two go into one */
@@ -307,6 +315,25 @@ void use_source(struct elaboration *e, const struct case_source *source);
 struct shown_unit unit_written(struct elaboration *e, const struct expression *expression, struct shown_unit fallback);
 
 struct origin origin_of(struct elaboration *e, struct location at);
+
+/* Whether an SI value lies in the form's range; says so where it does not. */
+bool check_range(struct elaboration *e, const struct quantity_form *form, const char *name,
+                 const struct expression *expression, double si);
+
+/* The expanded uncertainty after `+/-`, where it stands next: absolute in the quantity's own dimension, or `relative`.
+ * *last, the end of what was read, moves on. False after a message. */
+bool take_uncertainty(struct reading *reading, const struct quantity_form *form, const char *name, double value,
+                      double *uncertainty, struct location *last);
+
+/* ---- Uncertain values and shifts: spread.c ---- */
+
+/* Takes down that the value of an expression is uncertain, and moves it by the shift its place has. False where that
+ * leaves the form's range. */
+bool settle_value(struct elaboration *e, const struct quantity_form *form, const char *name,
+                  const struct expression *expression, double uncertainty, const struct origin *origin, double *si);
+
+/* `monte-carlo draws N, seed S`; *draws stays 0 after a message. */
+void read_monte_carlo(struct elaboration *e, const struct statement *statement, size_t *draws, uint64_t *seed);
 
 /* ---- Texts and the echo of inputs: inputs.c ---- */
 

@@ -1,7 +1,7 @@
 /* Charges: what a vessel was filled with, and how far, in the way it was measured. */
 #include "case/case_internal.h"
 
-/* `at T`: the temperature of a fill by pressure. */
+/* `at T`, perhaps `+/- u`: the temperature of a fill by pressure. */
 static bool take_temperature(struct reading *reading, double *temperature)
 {
     const struct item *at = take_item(reading, ITEM_AT);
@@ -9,10 +9,18 @@ static bool take_temperature(struct reading *reading, double *temperature)
         report_missing(reading, "'at' and a temperature");
         return false;
     }
-    if (!read_value(reading->e, &FORM_TEMPERATURE, "the fill temperature", at->value, temperature)) {
+    static const char name[] = "the fill temperature";
+    double uncertainty = 0.0;
+    struct location last = at->at;
+    const bool is_value = read_value(reading->e, &FORM_TEMPERATURE, name, at->value, temperature);
+    if (!take_uncertainty(reading, &FORM_TEMPERATURE, name, *temperature, &uncertainty, &last) || !is_value) {
         return false;
     }
-    const struct origin origin = origin_of(reading->e, at->at);
+    const struct origin origin = origin_of(reading->e, location_span(at->at, last));
+    if (!settle_value(reading->e, &FORM_TEMPERATURE, "fill temperature", at->value, uncertainty, &origin,
+                      temperature)) {
+        return false;
+    }
     add_input(reading->e, "fill temperature", si_text(reading->e, &FORM_TEMPERATURE, *temperature), &origin);
     return true;
 }

@@ -546,13 +546,30 @@ static void mark_own_files(struct elaboration *e)
     }
 }
 
+static void read_all_sheets_need(struct elaboration *e)
+{
+    read_case(e);
+    read_methods_block(e);
+    build_sheets(e);
+    e->tree->spreads = e->spreads.items;
+    e->tree->spread_count = e->spreads.count;
+}
+
+const struct case_tree *case_elaborate_shifted(const struct deck *deck, const struct case_shift *shifts, size_t count,
+                                               struct arena *arena, struct diagnostics *diagnostics)
+{
+    struct elaboration *e = begin(deck, arena, diagnostics);
+    e->shifts = shifts;
+    e->shift_count = count;
+    read_all_sheets_need(e);
+    return diagnostics->errors == 0 ? e->tree : NULL;
+}
+
 const struct case_tree *case_elaborate(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics)
 {
     struct elaboration *e = begin(deck, arena, diagnostics);
     mark_own_files(e);
-    read_case(e);
-    read_methods_block(e);
-    build_sheets(e);
+    read_all_sheets_need(e);
     check_unused(e);
     if (diagnostics->errors != 0) {
         return NULL;

@@ -191,8 +191,8 @@ static const char *range_text(struct elaboration *e, const struct quantity_form 
                         gauge);
 }
 
-static bool check_range(struct elaboration *e, const struct quantity_form *form, const char *name,
-                        const struct expression *expression, double si)
+bool check_range(struct elaboration *e, const struct quantity_form *form, const char *name,
+                 const struct expression *expression, double si)
 {
     const bool is_above = form->is_least_open ? si > form->least : si >= form->least;
     if (is_above && si <= form->most) {
@@ -301,9 +301,8 @@ struct origin origin_of(struct elaboration *e, struct location at)
     };
 }
 
-/* The expanded uncertainty after `+/-`: absolute in the quantity's own dimension, or `relative`. */
-static bool take_uncertainty(struct reading *reading, const struct quantity_form *form, const char *name, double value,
-                             double *uncertainty, struct location *last)
+bool take_uncertainty(struct reading *reading, const struct quantity_form *form, const char *name, double value,
+                      double *uncertainty, struct location *last)
 {
     const struct item *item = take_item(reading, ITEM_PLUS_MINUS);
     if (item == NULL) {
@@ -360,6 +359,9 @@ bool take_quantity(struct reading *reading, const struct quantity_form *form, co
     }
     found.origin = origin_of(reading->e, location_span(item->at, last));
     found.origin.source = source;
+    if (!settle_value(reading->e, form, name, item->value, found.uncertainty, &found.origin, &found.value)) {
+        return false;
+    }
     if (into->given) {
         struct quantity *before = arena_alloc(reading->e->arena, 1, sizeof *before);
         *before = *into;
