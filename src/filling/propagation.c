@@ -1,0 +1,138 @@
+/* First-order propagation of uncertainty by central differences. */
+#include "filling/propagation.h"
+
+#include <math.h>
+#include <string.h>
+
+/* The places the model is tried at, for each input. */
+enum { PLUS_ONE, MINUS_ONE, PLUS_TWO, MINUS_TWO, PLACES };
+
+static const double STEPS[PLACES] = {[PLUS_ONE] = 1.0, [MINUS_ONE] = -1.0, [PLUS_TWO] = 2.0, [MINUS_TWO] = -2.0};
+
+/* First-order propagation under way. */
+struct differences {
+    const struct propagation_model *model;
+    double *base;
+    double *inputs;          /* [input_count] */
+    double *outputs[PLACES]; /* [output_count] each, of the input at work */
+    double *sensitivities, *standard, *deviations;
+    bool *is_one_sided;
+};
+
+static void evaluate(const struct propagation_model *model, const double inputs[], double outputs[])
+{
+    if (model->evaluate(model->context, inputs, outputs) != MODEL_OK) {
+        for (size_t k = 0; k < model->output_count; k++) {
+            outputs[k] = (double)NAN;
+        }
+    }
+}
+
+/* Over the two sides where both have an answer; over the side that has one. */
+static double slope_of(double base, double plus, double minus, double spread)
+{
+    if (isfinite(plus) && isfinite(minus)) {
+        return (plus - minus) / (2.0 * spread);
+    }
+    return isfinite(plus) ? (plus - base) / spread : (base - minus) / spread;
+}
+
+/* How far the results lie from the straight line, at the farther step of each side that has an answer. */
+static double deviation_of(const struct differences *it, size_t i, size_t k, double slope)
+{
+    double largest = 0.0;
+    for (int place = 0; place < PLACES; place++) {
+        const double found = it->outputs[place][k];
+        if (isfinite(found)) {
+            const double line = it->base[k] + slope * STEPS[place] * it->model->spreads[i];
+            largest = fmax(largest, fabs(found - line));
+        }
+    }
+    return largest;
+}
+
+static double resolution_of(const struct propagation_model *model, size_t k)
+{
+    return model->resolutions == NULL ? 0.0 : model->resolutions[k];
+}
+
+static void take_output(struct differences *it, size_t i, size_t k)
+{
+    const struct propagation_model *model = it->model;
+    const double spread = model->spreads[i], resolution = resolution_of(model, k);
+    double slope = slope_of(it->base[k], it->outputs[PLUS_ONE][k], it->outputs[MINUS_ONE][k], spread);
+    double deviation = deviation_of(it, i, k, slope);
+    if (isfinite(slope)) {
+        slope = fabs(slope * spread) > resolution ? slope : 0.0;
+        deviation = deviation > resolution ? deviation : 0.0;
+    }
+    it->sensitivities[i * model->output_count + k] = slope;
+    it->standard[k] = hypot(it->standard[k], slope * spread);
+    it->deviations[k] = fmax(it->deviations[k], deviation);
+}
+
+static bool has_answer(const double outputs[], size_t count)
+{
+    for (size_t k = 0; k < count; k++) {
+        if (isfinite(outputs[k])) {
+            return true;
+        }
+    }
+    return false;
+}
+
+static void take_input(struct differences *it, size_t i)
+{
+    const struct propagation_model *model = it->model;
+    memcpy(it->inputs, model->values, model->input_count * sizeof *it->inputs);
+    for (int place = 0; place < PLACES; place++) {
+        it->inputs[i] = model->values[i] + STEPS[place] * model->spreads[i];
+        evaluate(model, it->inputs, it->outputs[place]);
+    }
+    it->is_one_sided[i] = has_answer(it->outputs[PLUS_ONE], model->output_count) !=
+                          has_answer(it->outputs[MINUS_ONE], model->output_count);
+    for (size_t k = 0; k < model->output_count; k++) {
+        take_output(it, i, k);
+    }
+}
+
+struct first_order propagate_first_order(const struct propagation_model *model, struct arena *arena)
+{
+    const size_t outputs = model->output_count;
+    struct differences it = {
+        .model = model,
+        .base = arena_alloc(arena, outputs, sizeof(double)),
+        .inputs = arena_alloc(arena, model->input_count, sizeof(double)),
+        .sensitivities = arena_alloc(arena, model->input_count * outputs, sizeof(double)),
+        .standard = arena_alloc(arena, outputs, sizeof(double)),
+        .deviations = arena_alloc(arena, outputs, sizeof(double)),
+        .is_one_sided = arena_alloc(arena, model->input_count, sizeof(bool)),
+    };
+    for (int place = 0; place < PLACES; place++) {
+        it.outputs[place] = arena_alloc(arena, outputs, sizeof(double));
+    }
+    evaluate(model, model->values, it.base);
+    const bool is_known = has_answer(it.base, outputs);
+    for (size_t i = 0; is_known && i < model->input_count; i++) {
+        take_input(&it, i);
+    }
+    return (struct first_order){
+        .is_known = is_known,
+        .base = it.base,
+        .sensitivities = it.sensitivities,
+        .is_one_sided = it.is_one_sided,
+        .standard = it.standard,
+        .deviations = it.deviations,
+    };
+}
+
+double first_order_share(const struct propagation_model *model, const struct first_order *first, size_t i, size_t k)
+{
+    const double part = first->sensitivities[i * model->output_count + k] * model->spreads[i] / first->standard[k];
+    return first->standard[k] > 0.0 ? part * part : 0.0;
+}
+
+bool first_order_is_linear(const struct first_order *first, size_t k)
+{
+    return first->deviations[k] <= NEARLY_LINEAR * 2.0 * first->standard[k];
+}
