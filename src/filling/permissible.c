@@ -345,6 +345,8 @@ static void tell_replaced(const struct permissible *sheet, struct requirement *r
 static void tell_requirements(const struct permissible *sheet)
 {
     struct sheet_run *run = sheet->run;
+    const double mass = run->held_mass > 0.0 ? run->held_mass : sheet->mass;
+    run->found_mass = sheet->mass;
     struct method_run *method =
         run->methods[0].fluid != NULL && method_governs(&run->methods[0]) ? &run->methods[0] : governing_method(sheet);
     for (size_t i = 0; i < sheet->criterion_count; i++) {
@@ -354,7 +356,7 @@ static void tell_requirements(const struct permissible *sheet)
         }
         const struct predicate_finding finding = criterion->kind == CRITERION_ENTRY
                                                      ? predicate_check_fluid(run, method, criterion->predicate)
-                                                     : predicate_check(run, method, criterion->predicate, sheet->mass);
+                                                     : predicate_check(run, method, criterion->predicate, mass);
         struct requirement *requirement =
             add_requirement(run, method, requirement_words(sheet, criterion), criterion->predicate, &finding);
         if (criterion->is_replaced) {
@@ -364,7 +366,7 @@ static void tell_requirements(const struct permissible *sheet)
     const struct case_sheet *asked = run->sheet;
     for (size_t i = 0; i < asked->requirement_count; i++) {
         const bool is_swept = asked->temperatures.given && asked->temperatures.count > 0;
-        require_predicate(run, NULL, &asked->requirements[i], sheet->mass,
+        require_predicate(run, NULL, &asked->requirements[i], mass,
                           is_swept ? asked->temperatures.values[0] : SETTLED_TEMPERATURE,
                           is_swept ? asked->temperatures.values[asked->temperatures.count - 1] : SETTLED_TEMPERATURE);
     }

@@ -6,6 +6,7 @@
 #include "filling/listed_ledger.h"
 #include "filling/mixture_basis.h"
 #include "filling/pair_warnings.h"
+#include "filling/uncertainty.h"
 
 #include <string.h>
 
@@ -141,7 +142,8 @@ static void tell_begun(const struct sheet_run *run)
     }
 }
 
-static void answer_sheet(const struct case_tree *tree, size_t index, struct common *common, struct result *result)
+static struct sheet_run *answer_sheet(const struct case_tree *tree, size_t index, double held_mass,
+                                      struct common *common, struct result *result)
 {
     const struct case_sheet *sheet = &tree->sheets[index];
     struct sheet_run *run = arena_alloc(result->arena, 1, sizeof *run);
@@ -154,6 +156,7 @@ static void answer_sheet(const struct case_tree *tree, size_t index, struct comm
         .number = index + 1,
         .ledger = &common->ledger,
         .progress = common->progress,
+        .held_mass = held_mass,
     };
     tell_begun(run);
     run->out->fluid = sheet->fluid->name;
@@ -163,7 +166,7 @@ static void answer_sheet(const struct case_tree *tree, size_t index, struct comm
         sheet_add_note(result, run->out, "%s", sheet->notes[i]);
     }
     if (!take_amounts(run, &common->bases)) {
-        return;
+        return run;
     }
     ready_methods(run, &common->pool);
     tell_lacks(run);
@@ -171,6 +174,14 @@ static void answer_sheet(const struct case_tree *tree, size_t index, struct comm
         warn_pairs(run, &run->methods[i]);
     }
     KINDS[sheet->kind].answer(run);
+    return run;
+}
+
+const struct result_sheet *filling_solve_sheet(const struct case_tree *tree, size_t index, double held_mass,
+                                               struct arena *arena)
+{
+    struct common common = {.progress = NULL};
+    return answer_sheet(tree, index, held_mass, &common, result_create(arena))->out;
 }
 
 /* ---- around the sheets ----------------------------------------------------------------------------------------- */
@@ -229,7 +240,7 @@ struct result *filling_solve_telling(const struct case_tree *tree, const char *v
     tell_document(tree, version, result);
     tell_inputs(tree, result);
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        answer_sheet(tree, i, &common, result);
+        tell_uncertainty(answer_sheet(tree, i, 0.0, &common, result));
     }
     tell_listed_ledger(&common.ledger, result);
     tell_data(tree, &common.pool, result);

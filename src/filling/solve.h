@@ -31,4 +31,9 @@ struct result *filling_solve(const struct case_tree *tree, const char *version, 
 struct result *filling_solve_telling(const struct case_tree *tree, const char *version, const struct progress *progress,
                                      struct arena *arena);
 
+/* One sheet of a case by itself, with nothing around it: for cases with shifted values. Requirements are held against
+ * `held_mass` kg where that is not 0 and the sheet finds a charge. Nothing is told, and no uncertainty carried. */
+const struct result_sheet *filling_solve_sheet(const struct case_tree *tree, size_t index, double held_mass,
+                                               struct arena *arena);
+
 #endif

@@ -95,6 +95,9 @@ static void solve_on_one_thread(const struct block *block)
 
 static size_t threads_for(const struct sweep *sweep)
 {
+    if (omp_in_parallel()) {
+        return 1; /* whoever asks is one of many threads already */
+    }
     const size_t components = sweep->methods[0]->fluid->count;
     const size_t work_of_point = components > 1 ? WORK_OF_COMPONENT * components : 1;
     if (sweep->point_count * sweep->method_count * work_of_point < WORK_WORTH_THREADS) {

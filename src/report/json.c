@@ -53,6 +53,13 @@ static json_t *set(json_t *object, const char *key, json_t *value)
     return object;
 }
 
+/* Expanded, k = 2; null where there is none or it is not known. */
+static json_t *carried_tree(const struct carried *carried)
+{
+    const bool is_told = carried->kind == CARRIED || carried->kind == CARRIED_NOT_LINEAR;
+    return is_told ? number_or_null(carried->expanded) : json_null();
+}
+
 /* Every fact has the same keys, so that a reader need not ask first: words stand as a value without a unit. */
 static json_t *fact_tree(const struct fact *fact)
 {
@@ -60,6 +67,7 @@ static json_t *fact_tree(const struct fact *fact)
     tree = set(tree, "value", fact->text ? words_or_null(fact->text) : si_or_null(&fact->look, fact->value));
     tree = set(tree, "unit", fact->text ? json_null() : words_or_null(fact->look.si_unit));
     tree = set(tree, "method", words_or_null(fact->method));
+    tree = set(tree, "uncertainty", carried_tree(&fact->carried));
     return fact->source ? set(tree, "source", words_or_null(fact->source)) : tree;
 }
 
@@ -89,6 +97,30 @@ static json_t *cell_tree(const struct column *column, const struct cell *cell)
     return json_null();
 }
 
+static bool has_spreads(const struct table *table)
+{
+    for (size_t i = 0; i < table->row_count * table->column_count; i++) {
+        if (table->cells[i].carried.kind != CARRIED_NONE) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* Rows and columns as those of the table. */
+static json_t *spreads_tree(const struct table *table)
+{
+    json_t *rows = json_array();
+    for (size_t r = 0; r < table->row_count; r++) {
+        json_t *row = json_array();
+        for (size_t c = 0; c < table->column_count; c++) {
+            row = append(row, carried_tree(&table->cells[r * table->column_count + c].carried));
+        }
+        rows = append(rows, row);
+    }
+    return rows;
+}
+
 static json_t *table_tree(const struct table *table)
 {
     json_t *columns = json_array();
@@ -108,7 +140,8 @@ static json_t *table_tree(const struct table *table)
     json_t *tree = set(json_object(), "title", words_or_null(table->title));
     tree = set(tree, "method", words_or_null(table->method));
     tree = set(tree, "columns", columns);
-    return set(tree, "rows", rows);
+    tree = set(tree, "rows", rows);
+    return has_spreads(table) ? set(tree, "uncertainties", spreads_tree(table)) : tree;
 }
 
 static json_t *tables_tree(const struct result_sheet *sheet)
@@ -141,8 +174,74 @@ static json_t *requirement_tree(const struct requirement *one)
     tree = set(tree, "met", state_tree(one->state));
     tree = set(tree, "margin", one->has_margin ? number_or_null(one->margin) : json_null());
     tree = set(tree, "unit", one->has_margin ? words_or_null(one->look.si_unit) : json_null());
+    tree = set(tree, "uncertainty", carried_tree(&one->carried));
+    tree = set(tree, "within_uncertainty", json_boolean(one->is_within_uncertainty));
     return set(tree, "worst_temperature",
                one->has_worst_temperature ? number_or_null(one->worst_temperature) : json_null());
+}
+
+static json_t *budget_line_tree(const struct budget_line *line)
+{
+    json_t *tree = set(json_object(), "input", words_or_null(line->input));
+    tree = set(tree, "line", line->line != 0 ? json_integer((json_int_t)line->line) : json_null());
+    tree = set(tree, "value", si_or_null(&line->look, line->value));
+    tree = set(tree, "unit", words_or_null(line->look.si_unit));
+    tree = set(tree, "standard_uncertainty", number_or_null(line->standard));
+    tree = set(tree, "sensitivity", number_or_null(line->sensitivity));
+    tree = set(tree, "contribution", number_or_null(line->contribution));
+    return set(tree, "share", number_or_null(line->share));
+}
+
+static const char *agreement_word(enum agreement agreement)
+{
+    switch (agreement) {
+    case AGREES:
+        return "agrees";
+    case AGREES_NOT:
+        return "does not agree";
+    case AGREEMENT_BLURRED:
+        break;
+    }
+    return "too few draws";
+}
+
+static json_t *drawn_tree(const struct budget *budget)
+{
+    const struct drawn_budget *drawn = &budget->drawn;
+    json_t *tree = set(json_object(), "draws", json_integer((json_int_t)drawn->draws));
+    tree = set(tree, "answered", json_integer((json_int_t)drawn->answered));
+    tree = set(tree, "mean", si_or_null(&budget->look, drawn->mean));
+    tree = set(tree, "standard_uncertainty", number_or_null(drawn->standard));
+    tree = set(tree, "low", si_or_null(&budget->look, drawn->low));
+    tree = set(tree, "high", si_or_null(&budget->look, drawn->high));
+    tree = set(tree, "first_order_low", si_or_null(&budget->look, drawn->first_low));
+    tree = set(tree, "first_order_high", si_or_null(&budget->look, drawn->first_high));
+    tree = set(tree, "tolerance", number_or_null(drawn->tolerance));
+    return set(tree, "first_order", words_or_null(agreement_word(drawn->agreement)));
+}
+
+static json_t *budget_tree(const struct budget *budget)
+{
+    json_t *lines = json_array();
+    for (size_t i = 0; i < budget->line_count; i++) {
+        lines = append(lines, budget_line_tree(&budget->lines[i]));
+    }
+    json_t *tree = set(json_object(), "result", words_or_null(budget->result));
+    tree = set(tree, "method", words_or_null(budget->method));
+    tree = set(tree, "value", si_or_null(&budget->look, budget->value));
+    tree = set(tree, "unit", words_or_null(budget->look.si_unit));
+    tree = set(tree, "standard_uncertainty", number_or_null(budget->standard));
+    tree = set(tree, "inputs", lines);
+    return budget->drawn.given ? set(tree, "draws", drawn_tree(budget)) : tree;
+}
+
+static json_t *budgets_tree(const struct result_sheet *sheet)
+{
+    json_t *budgets = json_array();
+    for (const struct sheet_part *part = sheet->first_part; part; part = part->next) {
+        budgets = part->budget ? append(budgets, budget_tree(part->budget)) : budgets;
+    }
+    return budgets;
 }
 
 static json_t *sheet_tree(const struct result_sheet *sheet)
@@ -155,7 +254,8 @@ static json_t *sheet_tree(const struct result_sheet *sheet)
     tree = set(tree, "title", words_or_null(sheet->title));
     tree = set(tree, "facts", facts_tree(sheet));
     tree = set(tree, "tables", tables_tree(sheet));
-    return set(tree, "requirements", requirements);
+    tree = set(tree, "requirements", requirements);
+    return set(tree, "budgets", budgets_tree(sheet));
 }
 
 static json_t *warning_tree(const struct warning *warning)

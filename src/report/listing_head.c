@@ -95,6 +95,10 @@ static const char *verdict_words(const struct result *result, struct arena *aren
             text_format(&words, "%s %zu met", separator, tally.met);
         }
     }
+    const size_t close = result_close_verdicts(result);
+    if (close != 0) {
+        text_format(&words, "; %zu WITHIN UNCERTAINTY", close);
+    }
     if (result->is_undecided) {
         text_format(&words, "; a question is left undecided, see the sheets");
     }

@@ -25,6 +25,14 @@ const char *counted(struct arena *arena, size_t count, const char *noun);
 /* A number as shown, with its unit behind it unless it is a plain one; a dash stands alone. */
 struct grid_cell number_cell(struct arena *arena, const struct look *look, const char *shown);
 
+/* What stands behind a number whose unit is told: "±0.0044", with a mark where first order does not hold; NULL where
+ * no input is uncertain. */
+const char *spread_words(struct arena *arena, const struct look *look, const struct carried *carried);
+
+/* One line under a table on the uncertainty of its columns, where they have one. */
+void listing_table_spreads(const struct table *table, struct text *out);
+void listing_budget(const struct budget *budget, struct text *out);
+
 /* Document block and verdict. */
 void listing_head(const struct result *result, struct text *out);
 void listing_deck(const struct result *result, struct text *out);

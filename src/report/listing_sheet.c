@@ -4,7 +4,10 @@
 
 #include <string.h>
 
-enum fact_column { FACT_NAME, FACT_VALUE, FACT_METHOD, FACT_REMARK, FACT_COLUMNS };
+enum fact_column { FACT_NAME, FACT_VALUE, FACT_SPREAD, FACT_METHOD, FACT_REMARK, FACT_COLUMNS };
+
+/* A longer remark behind an uncertainty goes below, so that all columns have room on the page. */
+enum { LONGEST_BEHIND_SPREAD = 22 };
 
 static void add_fact(struct grid *grid, const struct fact *fact)
 {
@@ -23,8 +26,12 @@ static void add_fact(struct grid *grid, const struct fact *fact)
         return;
     }
     row->cells[FACT_VALUE] = number_cell(grid->arena, &fact->look, number_shown(grid->arena, &fact->look, fact->value));
+    row->cells[FACT_SPREAD].text = spread_words(grid->arena, &fact->look, &fact->carried);
     row->cells[FACT_METHOD].text = fact->method;
-    row->cells[FACT_REMARK].text = remark.bytes ? page_clean(grid->arena, remark.bytes) : NULL;
+    const char *words = remark.bytes ? page_clean(grid->arena, remark.bytes) : NULL;
+    const bool is_crowded = words && row->cells[FACT_SPREAD].text && page_columns(words) > LONGEST_BEHIND_SPREAD;
+    row->cells[FACT_REMARK].text = is_crowded ? NULL : words;
+    row->below = is_crowded ? words : NULL;
 }
 
 static void draw_facts(const struct sheet_part *part, struct text *out)
@@ -67,6 +74,9 @@ static void draw_part(const struct sheet_part *part, size_t warnings, struct tex
         break;
     case PART_NOTE:
         page_paragraph(out, SECTION_INDENT, part->note);
+        break;
+    case PART_BUDGET:
+        listing_budget(part->budget, out);
         break;
     }
 }

@@ -75,6 +75,7 @@ void listing_table(const struct table *table, size_t warnings, struct text *out)
     } else {
         grid_draw(grid_of_table(table, out->arena), PART_INDENT, out);
     }
+    listing_table_spreads(table, out);
     if (has_outside_range(table)) {
         page_paragraph(out, PART_INDENT,
                        arena_format(out->arena, "%s outside the method's published range, see section %zu",

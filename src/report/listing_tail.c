@@ -38,6 +38,24 @@ static void set_numbers(struct grid *grid, struct grid_row *row, const struct re
     }
 }
 
+/* The reason, the margin's uncertainty, and that the verdict is not certain. */
+static const char *words_below(struct arena *arena, const struct requirement *one)
+{
+    struct text words = {.arena = arena};
+    if (one->reason) {
+        text_format(&words, "%s", one->reason);
+    }
+    const char *spread = one->has_margin ? spread_words(arena, &one->look, &one->carried) : NULL;
+    if (spread) {
+        text_format(&words, "%smargin %s %s", words.length == 0 ? "" : "; ", spread, number_unit(&one->look));
+    }
+    if (one->is_within_uncertainty) {
+        text_format(&words, "%sWITHIN UNCERTAINTY, %s", words.length == 0 ? "" : "; ",
+                    spread ? "as the margin is smaller" : "as the verdict turns within the +/- of an input");
+    }
+    return words.bytes;
+}
+
 static void add_requirement(struct grid *grid, const struct requirement *one, size_t section)
 {
     const size_t number = grid->row_count + 1;
@@ -53,7 +71,7 @@ static void add_requirement(struct grid *grid, const struct requirement *one, si
         text_format(&where, ", line %zu", one->line);
     }
     row->cells[REQUIREMENT_WHERE].text = where.bytes;
-    row->below = one->reason;
+    row->below = words_below(grid->arena, one);
 }
 
 static void name_columns(struct grid *grid)

@@ -9,6 +9,9 @@
 
 enum { MOST_DIGITS = 17, NUMBER_BYTES = 64 };
 
+/* JCGM 100, 7.2.6: at most two significant digits of an uncertainty. */
+enum { SPREAD_DIGITS = 2 };
+
 /* From here on a double's digits before the point are no longer its own. */
 #define LARGEST_FIXED 1e15
 
@@ -72,6 +75,11 @@ const char *number_shown(struct arena *arena, const struct look *look, double si
 const char *number_shown_difference(struct arena *arena, const struct look *look, double si)
 {
     return show(arena, si / look->shown.factor, look->decimals);
+}
+
+const char *number_spread(struct arena *arena, const struct look *look, double si)
+{
+    return show(arena, si / look->shown.factor, -SPREAD_DIGITS);
 }
 
 const char *number_unit(const struct look *look)

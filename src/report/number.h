@@ -15,6 +15,9 @@ const char *number_shown(struct arena *arena, const struct look *look, double si
 /* As number_shown for a difference of two values: the unit's zero plays no part. */
 const char *number_shown_difference(struct arena *arena, const struct look *look, double si);
 
+/* An uncertainty in the look's unit, with the two significant digits it deserves. */
+const char *number_spread(struct arena *arena, const struct look *look, double si);
+
 /* The unit's symbol as a reader sees it; "1" for a plain number. */
 const char *number_unit(const struct look *look);
 

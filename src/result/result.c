@@ -122,6 +122,14 @@ void sheet_add_note(struct result *result, struct result_sheet *sheet, const cha
     va_end(arguments);
 }
 
+struct budget *sheet_add_budget(struct result *result, struct result_sheet *sheet, const char *name)
+{
+    struct budget *budget = arena_alloc(result->arena, 1, sizeof *budget);
+    budget->result = name;
+    add_part(result, sheet, PART_BUDGET, NULL)->budget = budget;
+    return budget;
+}
+
 struct requirement *sheet_add_requirement(struct result *result, struct result_sheet *sheet, const char *text)
 {
     struct requirement *requirement = arena_alloc(result->arena, 1, sizeof *requirement);
@@ -234,6 +242,37 @@ enum verdict result_verdict(const struct result *result)
         }
     }
     return result->is_undecided ? VERDICT_UNDECIDED : verdict;
+}
+
+size_t result_close_verdicts(const struct result *result)
+{
+    size_t close = 0;
+    for (const struct result_sheet *sheet = result->first_sheet; sheet; sheet = sheet->next) {
+        for (const struct requirement *each = sheet->first_requirement; each; each = each->next) {
+            close += each->is_within_uncertainty;
+        }
+    }
+    return close;
+}
+
+struct look look_of_steps(struct look look)
+{
+    static const struct {
+        const char *point, *step;
+    } STEPS[] = {
+        {"bara", "bar"}, {"barg", "bar"}, {"psia", "psi"}, {"psig", "psi"}, {"kPaa", "kPa"},
+        {"kPag", "kPa"}, {"MPaa", "MPa"}, {"MPag", "MPa"}, {"degC", "K"},
+    };
+    look.shown.offset = 0.0;
+    if (look.shown.symbol && strcmp(look.shown.symbol, "degF") == 0) {
+        look.shown = (struct shown_unit){"K", 1.0, 0.0};
+    }
+    for (size_t i = 0; look.shown.symbol && i < sizeof STEPS / sizeof *STEPS; i++) {
+        if (strcmp(look.shown.symbol, STEPS[i].point) == 0) {
+            look.shown.symbol = STEPS[i].step;
+        }
+    }
+    return look;
 }
 
 double look_shown(const struct look *look, double si)

@@ -20,6 +20,19 @@ struct look {
     int decimals; /* digits after the point; negative: that many significant digits */
 };
 
+/* What is known of a result's uncertainty. */
+enum carried_kind {
+    CARRIED_NONE,       /* no input is uncertain that it depends on */
+    CARRIED,            /* first order holds */
+    CARRIED_NOT_LINEAR, /* the result is not nearly linear within the inputs' uncertainty */
+    CARRIED_UNKNOWN     /* there was no answer at shifted inputs */
+};
+
+struct carried {
+    enum carried_kind kind;
+    double expanded; /* SI, k = 2; above 0 unless unknown */
+};
+
 struct fact {
     const char *name;   /* for machines and readers, "filling-ratio" */
     const char *method; /* "reference"; NULL: no method involved */
@@ -28,6 +41,7 @@ struct fact {
     double value;
     struct look look;
     const char *remark; /* set beside the value: "rounded down"; NULL: none */
+    struct carried carried;
 };
 
 enum cell_kind { CELL_NUMBER, CELL_TEXT, CELL_SHEET, CELL_EMPTY };
@@ -36,7 +50,8 @@ struct cell {
     enum cell_kind kind;
     double number; /* SI; of CELL_SHEET a sheet of the result, from 1 */
     const char *text;
-    bool is_outside_range; /* printed with a mark that points at the warning */
+    bool is_outside_range;  /* printed with a mark that points at the warning */
+    struct carried carried; /* of CELL_NUMBER */
 };
 
 struct column {
@@ -78,7 +93,47 @@ struct requirement {
     struct look temperature_look;
     size_t line; /* in the deck */
     const char *method;
+    struct carried carried;     /* of the margin */
+    bool is_within_uncertainty; /* the verdict might be the other one, for all that is known of the inputs */
     struct requirement *next;
+};
+
+/* One input's part in a result's uncertainty. */
+struct budget_line {
+    const char *input;          /* "n-butane of mixture span-gas" */
+    size_t line;                /* in the deck; 0: in another file */
+    double value, standard;     /* SI; standard uncertainty, k = 1 */
+    struct look look;           /* of the value */
+    struct look step_look;      /* of the uncertainty */
+    double sensitivity;         /* SI of the result over SI of the input */
+    double contribution, share; /* SI, sensitivity times uncertainty; of the variance, 0 to 1 */
+    bool is_one_sided;          /* the input cannot be varied to both sides */
+};
+
+/* Random draws of a result beside its uncertainty by first order. */
+enum agreement { AGREES, AGREES_NOT, AGREEMENT_BLURRED };
+
+struct drawn_budget {
+    bool given;
+    size_t draws, answered;
+    double mean, standard, low, high; /* SI; the ends hold 95 % */
+    double first_low, first_high;     /* the same ends by first order */
+    double tolerance;
+    enum agreement agreement;
+};
+
+struct budget {
+    const char *result; /* the name of the fact, "margin of requirement 2" */
+    const char *method; /* NULL: several or none */
+    double value;
+    struct look look;
+    struct look step_look; /* of differences of it */
+    double standard;       /* combined, k = 1 */
+    double deviation;      /* from the straight line at the ends of the inputs' intervals, the largest */
+    bool is_linear;
+    size_t line_count;
+    const struct budget_line *lines;
+    struct drawn_budget drawn;
 };
 
 struct note_line { /* free text within a sheet: a method cannot answer, a listed row's explanation */
@@ -87,7 +142,7 @@ struct note_line { /* free text within a sheet: a method cannot answer, a listed
 };
 
 /* What a sheet says, in order. */
-enum part_kind { PART_FACTS, PART_TABLE, PART_HAND_CHECK, PART_NOTE };
+enum part_kind { PART_FACTS, PART_TABLE, PART_HAND_CHECK, PART_NOTE, PART_BUDGET };
 
 struct sheet_part {
     enum part_kind kind;
@@ -99,6 +154,7 @@ struct sheet_part {
     struct table *table;
     struct hand_check *hand_check;
     const char *note;
+    struct budget *budget;
     struct sheet_part *next;
 };
 
@@ -188,6 +244,7 @@ struct table *sheet_add_table(struct result *result, struct result_sheet *sheet,
 struct hand_check *sheet_add_hand_check(struct result *result, struct result_sheet *sheet, const char *title);
 void sheet_add_note(struct result *result, struct result_sheet *sheet, const char *format, ...)
     __attribute__((format(printf, 3, 4)));
+struct budget *sheet_add_budget(struct result *result, struct result_sheet *sheet, const char *name);
 struct requirement *sheet_add_requirement(struct result *result, struct result_sheet *sheet, const char *text);
 
 /* Columns first, then rows; table_add_row gives the row's cells, all CELL_EMPTY. */
@@ -207,8 +264,14 @@ void line_list_add(struct result *result, struct line_list *lines, const char *f
 void result_warn(struct result *result, enum code code, size_t line, size_t sheet, const char *format, ...)
     __attribute__((format(printf, 5, 6)));
 
+/* Requirements whose verdict might be the other one, over all sheets. */
+size_t result_close_verdicts(const struct result *result);
+
 /* Over all sheets' requirements: not met, else undecided, else met, or none. */
 enum verdict result_verdict(const struct result *result);
+
+/* The look of differences of a quantity: "bar" for "barg", "K" for "degC". */
+struct look look_of_steps(struct look look);
 
 /* Shown number of a look. */
 double look_shown(const struct look *look, double si);

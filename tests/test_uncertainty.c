@@ -1,0 +1,334 @@
+/* What a deck writes with `+/-` reaches every result of its sheets: ideal gases, whose uncertainties have closed forms.
+ */
+#include "filling/solve.h"
+
+#include "support/elaborated.h"
+#include "support/result_reading.h"
+
+#include <math.h>
+
+#define LITRE 1e-3
+#define BAR   1e5
+
+/* M = 20 g/mol, by the gas law. */
+#define HEAD    "use \"small\"\nmethods { lead ideal-gas }\n"
+#define VESSEL  "vessel ten { water-capacity 10.2 L +/- 0.06 L; test-pressure 300 barg; tare 13.4 kg +/- 0.01 kg }\n"
+#define BY_MASS "charge lot { fluid vapid; vessel ten; mass 1.31 kg +/- 0.02 kg }\n"
+#define BY_FILL "charge lot { fluid vapid; vessel ten; fill 151 bara +/- 1.3 bar at 288.15 K +/- 1.1 K }\n"
+#define SHEET   "sheet settled-pressure { charge lot; sweep temperature 288.15 K, 338.15 K; "
+
+struct solved {
+    struct elaborated deck;
+    const struct result *result;
+    const struct result_sheet *sheet;
+};
+
+static struct solved solve(const char *text)
+{
+    struct solved it = {.deck = elaborate_well(text)};
+    it.result = filling_solve(it.deck.tree, "0.0.0", it.deck.arena);
+    it.sheet = it.result->first_sheet;
+    return it;
+}
+
+static void end(struct solved *it)
+{
+    elaborated_end(&it->deck);
+}
+
+static double expanded_of(const struct solved *it, const char *fact)
+{
+    const struct fact *found = result_fact(it->sheet, fact, NULL);
+    assert_non_null(found);
+    assert_int_equal(found->carried.kind, CARRIED);
+    return found->carried.expanded;
+}
+
+static const struct budget *budget_of(const struct solved *it, const char *result)
+{
+    for (const struct sheet_part *part = it->sheet->first_part; part != NULL; part = part->next) {
+        if (part->kind == PART_BUDGET && strstr(part->budget->result, result) != NULL) {
+            return part->budget;
+        }
+    }
+    return NULL;
+}
+
+static const struct budget_line *line_of(const struct budget *budget, const char *input)
+{
+    for (size_t i = 0; budget != NULL && i < budget->line_count; i++) {
+        if (strncmp(budget->lines[i].input, input, strlen(input)) == 0) {
+            return &budget->lines[i];
+        }
+    }
+    return NULL;
+}
+
+static bool has_warning(const struct solved *it, enum code code)
+{
+    for (size_t i = 0; i < it->result->warnings.count; i++) {
+        if (it->result->warnings.items[i].code == code) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* ---- facts and cells --------------------------------------------------------------------------------------------- */
+
+/* p = m R T / (M V): relative uncertainties 0.02 / 1.31 and 0.06 / 10.2 add in squares. Central differences of 1 / V
+ * over u are off by (u / V)^2, a hundred-thousandth. */
+static void a_mass_and_a_volume_reach_the_pressure(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_MASS SHEET "}\n");
+    const struct table *table = result_table(it.sheet, "settled pressure", "ideal-gas");
+    const double relative = sqrt(pow(0.02 / 1.31, 2.0) + pow(0.06 / 10.2, 2.0));
+    for (size_t row = 0; row < 2; row++) {
+        const struct cell *cell = result_cell(table, row, "pressure");
+        assert_int_equal(cell->carried.kind, CARRIED);
+        assert_close(cell->carried.expanded, cell->number * relative, 1e-5, "product of powers");
+        assert_int_equal(result_cell(table, row, "temperature")->carried.kind, CARRIED_NONE);
+    }
+    assert_close(expanded_of(&it, "mass"), 0.02, 1e-9, "as written");
+    assert_close(expanded_of(&it, "gross-weight"), hypot(0.02, 0.01), 1e-9, "a sum");
+    assert_close(expanded_of(&it, "density"), 1.31 / 0.0102 * relative, 1e-5, "m / V");
+    end(&it);
+}
+
+/* m = p V M / (R T): the settled pressure at T2 is p T2 / T1, in which the volume has no part. */
+static void a_fill_pressure_becomes_mass_once(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_FILL SHEET "}\n");
+    const struct table *table = result_table(it.sheet, "settled pressure", "ideal-gas");
+    const struct cell *cell = result_cell(table, 1, "pressure");
+    const double of_pressure = sqrt(pow(1.3 / 151.0, 2.0) + pow(1.1 / 288.15, 2.0));
+    assert_close(cell->carried.expanded, cell->number * of_pressure, 1e-5, "p T2 / T1");
+    const struct fact *mass = result_fact(it.sheet, "mass", NULL);
+    assert_close(mass->carried.expanded, mass->value * hypot(of_pressure, 0.06 / 10.2), 1e-5, "p V M / (R T)");
+    const struct budget *budget = budget_of(&it, "mass");
+    assert_non_null(budget);
+    assert_int_equal(budget->line_count, 3);
+    const struct budget_line *line = line_of(budget, "fill temperature");
+    assert_close(line->standard, 0.55, 1e-12, "k = 2 is halved");
+    assert_close(line->sensitivity, -mass->value / 288.15, 1e-5, "dm / dT");
+    assert_close(line->contribution, line->sensitivity * 0.55, 1e-14, "c u");
+    assert_close(line->value, 288.15, 1e-14, "as written");
+    assert_close(budget->standard, mass->carried.expanded / 2.0, 1e-14, "combined");
+    end(&it);
+}
+
+static void shares_of_a_budget_are_the_whole(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_FILL SHEET "}\n");
+    const struct budget *budget = budget_of(&it, "mass");
+    double sum = 0.0;
+    for (size_t i = 0; i < budget->line_count; i++) {
+        sum += budget->lines[i].share;
+    }
+    assert_close(sum, 1.0, 1e-14, "parts of the variance");
+    end(&it);
+}
+
+/* ---- mixtures ---------------------------------------------------------------------------------------------------- */
+
+#define MIXED_SHEET  "sheet settled-pressure { fluid blend; vessel ten; mass 1.31 kg; sweep temperature 288.15 K }\n"
+#define PLAIN_VESSEL "vessel ten { water-capacity 10.2 L; test-pressure 300 barg }\n"
+
+/* What one part gains the rest loses: M = x 39.948 + (1 - x) 20, dM/dx = 19.948 g/mol; the amount is m / M. */
+static void the_rest_of_a_mixture_gives_way(void **state)
+{
+    (void)state;
+    struct solved it =
+        solve(HEAD PLAIN_VESSEL "mixture blend by mole { argon 30 % +/- 0.4 %; vapid rest }\n" MIXED_SHEET);
+    const double molar_mass = 0.3 * 39.948 + 0.7 * 20.0;
+    assert_close(expanded_of(&it, "amount"), 1310.0 / molar_mass * 0.004 * 19.948 / molar_mass, 1e-5, "m / M");
+    end(&it);
+}
+
+/* Without a rest, x = a / (a + b): dx = (b da - a db) / (a + b)^2, here 0.7 0.004 and 0.3 0.005 in squares. */
+static void fractions_without_a_rest_are_brought_to_a_whole(void **state)
+{
+    (void)state;
+    struct solved it =
+        solve(HEAD PLAIN_VESSEL "mixture blend by mole { argon 30 % +/- 0.4 %; vapid 70 % +/- 0.5 % }\n" MIXED_SHEET);
+    const double molar_mass = 0.3 * 39.948 + 0.7 * 20.0;
+    const double of_fraction = hypot(0.7 * 0.004, 0.3 * 0.005);
+    assert_close(expanded_of(&it, "amount"), 1310.0 / molar_mass * of_fraction * 19.948 / molar_mass, 1e-4,
+                 "m / M, to second order in u / a");
+    end(&it);
+}
+
+/* By mass, n / m = w / Ma + (1 - w) / Mb: linear in w. */
+static void fractions_of_mass_become_amounts(void **state)
+{
+    (void)state;
+    struct solved it =
+        solve(HEAD PLAIN_VESSEL "mixture blend by mass { argon 30 % +/- 2 % relative; vapid rest }\n" MIXED_SHEET);
+    assert_close(expanded_of(&it, "amount"), 1310.0 * 0.006 * (1.0 / 20.0 - 1.0 / 39.948), 1e-9, "linear");
+    end(&it);
+}
+
+static void molar_masses_count_too(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD PLAIN_VESSEL "component vapid { molar-mass 21 g/mol +/- 0.03 g/mol }\n"
+                                               "sheet settled-pressure { fluid vapid; vessel ten; mass 1.31 kg }\n");
+    assert_close(expanded_of(&it, "amount"), 1310.0 / 21.0 * 0.03 / 21.0, 1e-5, "m / M");
+    end(&it);
+}
+
+/* ---- verdicts ---------------------------------------------------------------------------------------------------- */
+
+/* 1.31 kg in 10.2 L at 338.15 K are 180.55 bara; U = 180.55 sqrt((0.02 / 1.31)^2 + (0.06 / 10.2)^2) = 2.95 bar. */
+static void a_margin_smaller_than_its_uncertainty_is_marked(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_MASS SHEET "require at 338.15 K pressure <= 182.5 bara\n"
+                                                       "require at 338.15 K pressure <= 178.6 bara\n"
+                                                       "require at 338.15 K pressure <= 185 bara }\n");
+    const struct requirement *one = it.sheet->first_requirement;
+    assert_int_equal(one->state, REQUIREMENT_MET);
+    assert_close(one->carried.expanded, 2.955 * BAR, 1e-2, "see above");
+    assert_true(one->is_within_uncertainty);
+    assert_int_equal(one->next->state, REQUIREMENT_NOT_MET);
+    assert_true(one->next->is_within_uncertainty);
+    assert_false(one->next->next->is_within_uncertainty);
+    assert_int_equal(result_close_verdicts(it.result), 2);
+    assert_true(has_warning(&it, CODE_W345));
+    end(&it);
+}
+
+/* ---- decks without --------------------------------------------------------------------------------------------- */
+
+static void a_deck_without_uncertainties_says_nothing_of_them(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD PLAIN_VESSEL "sheet settled-pressure { fluid vapid; vessel ten; mass 1.31 kg }\n");
+    assert_int_equal(it.deck.tree->spread_count, 0);
+    assert_null(budget_of(&it, ""));
+    assert_int_equal(result_fact(it.sheet, "mass", NULL)->carried.kind, CARRIED_NONE);
+    end(&it);
+}
+
+static void another_vessel_is_no_matter_of_this_sheet(void **state)
+{
+    (void)state;
+    struct solved it =
+        solve(HEAD VESSEL "vessel other { water-capacity 10.2 L; test-pressure 300 barg }\n" BY_MASS SHEET "}\n"
+                          "sheet settled-pressure { fluid vapid; vessel other; mass 1.31 kg }\n");
+    it.sheet = it.sheet->next;
+    assert_int_equal(result_fact(it.sheet, "density", NULL)->carried.kind, CARRIED_NONE);
+    assert_false(case_sheet_may_depend(&it.deck.tree->sheets[1], &it.deck.tree->spreads[0]));
+    end(&it);
+}
+
+static void draws_need_something_uncertain(void **state)
+{
+    (void)state;
+    struct solved it = solve(
+        HEAD PLAIN_VESSEL "sheet settled-pressure { fluid vapid; vessel ten; mass 1.31 kg; monte-carlo draws 200 }\n");
+    bool is_said = false;
+    for (const struct sheet_part *part = it.sheet->first_part; part != NULL; part = part->next) {
+        is_said = is_said || (part->note != NULL && strstr(part->note, "nothing to draw") != NULL);
+    }
+    assert_true(is_said);
+    end(&it);
+}
+
+/* ---- draws ------------------------------------------------------------------------------------------------------- */
+
+static void draws_agree_where_the_gas_law_is_nearly_linear(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_FILL SHEET "monte-carlo draws 4000, seed 3 }\n");
+    const struct budget *budget = budget_of(&it, "mass");
+    assert_true(budget->drawn.given);
+    assert_int_equal(budget->drawn.answered, 4000);
+    assert_close(budget->drawn.mean, budget->value, 0.001, "the estimate");
+    assert_close(budget->drawn.standard, budget->standard, 0.06, "first order, within 5 sqrt(1 / 8000)");
+    assert_int_not_equal(budget->drawn.agreement, AGREES_NOT);
+    end(&it);
+}
+
+/* A share of 0.1 % with a standard uncertainty as large as itself: a sixth of all draws would be below nothing. */
+static void a_share_is_never_drawn_below_nothing(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD PLAIN_VESSEL "mixture blend by mole { argon 0.1 % +/- 0.2 %; vapid rest }\n"
+                                               "sheet settled-pressure { fluid blend; vessel ten; fill 100 bara at "
+                                               "288.15 K; monte-carlo draws 1000 }\n");
+    const struct budget *budget = budget_of(&it, "mass");
+    assert_non_null(budget);
+    const double least = 100.0 * BAR * 10.2 * LITRE * 0.020 / (8.31446261815324 * 288.15);
+    assert_true(budget->drawn.low >= least * (1.0 - 1e-12));
+    assert_int_equal(budget->drawn.agreement, AGREES_NOT);
+    assert_true(has_warning(&it, CODE_W348));
+    end(&it);
+}
+
+static void the_words_of_draws_are_checked(void **state)
+{
+    (void)state;
+#define IN_SHEET(words) \
+    HEAD PLAIN_VESSEL "sheet settled-pressure { fluid vapid; vessel ten; mass 1.31 kg; " words " }\n"
+    assert_refused(IN_SHEET("monte-carlo draws 99"), CODE_E209);
+    assert_refused(IN_SHEET("monte-carlo draws 3000000"), CODE_E209);
+    assert_refused(IN_SHEET("monte-carlo draws 200.5"), CODE_E209);
+    assert_refused(IN_SHEET("monte-carlo draws 200, seed -1"), CODE_E209);
+    assert_refused(IN_SHEET("monte-carlo draws"), CODE_E203);
+    assert_refused(IN_SHEET("monte-carlo seed 7"), CODE_E203);
+    assert_refused(IN_SHEET("monte-carlo draws 200, 7"), CODE_E203);
+    assert_refused(IN_SHEET("monte-carlo draws 200, seed 7, 8"), CODE_E204);
+    assert_refused(IN_SHEET("monte-carlo draws 200; monte-carlo draws 300"), CODE_E207);
+}
+
+/* ---- shifted cases ----------------------------------------------------------------------------------------------- */
+
+static void a_shifted_value_is_checked_and_carried_on(void **state)
+{
+    (void)state;
+    struct elaborated it = elaborate_well(HEAD VESSEL BY_FILL SHEET "}\n");
+    assert_int_equal(it.tree->spread_count, 4);
+    const struct case_spread *capacity = NULL;
+    for (size_t i = 0; i < it.tree->spread_count; i++) {
+        capacity = strcmp(it.tree->spreads[i].name, "water-capacity") == 0 ? &it.tree->spreads[i] : capacity;
+    }
+    assert_non_null(capacity);
+    assert_string_equal(capacity->group, "vessel ten");
+    assert_string_equal(capacity->si_unit, "m3");
+    assert_close(capacity->uncertainty, 0.06 * LITRE, 1e-12, "as written");
+    struct case_shift shift = {.at = capacity->at, .by = 0.3 * LITRE};
+    struct diagnostics unheard = {.arena = it.arena};
+    const struct case_tree *tree = case_elaborate_shifted(it.deck, &shift, 1, it.arena, &unheard);
+    assert_non_null(tree);
+    assert_close(tree->sheets[0].vessel->water_capacity.value, 10.5 * LITRE, 1e-14, "10.2 L and 0.3 L");
+    assert_int_equal(tree->spread_count, 0);
+    shift.by = -11.0 * LITRE;
+    assert_null(case_elaborate_shifted(it.deck, &shift, 1, it.arena, &unheard));
+    elaborated_end(&it);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(a_mass_and_a_volume_reach_the_pressure),
+        cmocka_unit_test(a_fill_pressure_becomes_mass_once),
+        cmocka_unit_test(shares_of_a_budget_are_the_whole),
+        cmocka_unit_test(the_rest_of_a_mixture_gives_way),
+        cmocka_unit_test(fractions_without_a_rest_are_brought_to_a_whole),
+        cmocka_unit_test(fractions_of_mass_become_amounts),
+        cmocka_unit_test(molar_masses_count_too),
+        cmocka_unit_test(a_margin_smaller_than_its_uncertainty_is_marked),
+        cmocka_unit_test(a_deck_without_uncertainties_says_nothing_of_them),
+        cmocka_unit_test(another_vessel_is_no_matter_of_this_sheet),
+        cmocka_unit_test(draws_need_something_uncertain),
+        cmocka_unit_test(draws_agree_where_the_gas_law_is_nearly_linear),
+        cmocka_unit_test(a_share_is_never_drawn_below_nothing),
+        cmocka_unit_test(the_words_of_draws_are_checked),
+        cmocka_unit_test(a_shifted_value_is_checked_and_carried_on),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}
