@@ -5,6 +5,9 @@
 #include "support/elaborated.h"
 #include "support/result_reading.h"
 
+#include "report/report.h"
+
+#include <jansson.h>
 #include <math.h>
 
 #define LITRE 1e-3
@@ -285,6 +288,119 @@ static void the_words_of_draws_are_checked(void **state)
     assert_refused(IN_SHEET("monte-carlo draws 200; monte-carlo draws 300"), CODE_E207);
 }
 
+/* The same sheet by the quick way and, where an acentric factor counts among its inputs, by answering the sheet for
+ * each draw. In the place of that factor the first has a tare, so that all other inputs are drawn alike. */
+#define TWO_WAYS(component, tare)                                                                                  \
+    "use \"small\"\nmethods { lead peng-robinson }\n" component                                                    \
+    "mixture blend by mole { carbon-dioxide 30 % +/- 2 %; argon rest }\n"                                          \
+    "vessel ten { " tare "water-capacity 10.2 L +/- 0.06 L; test-pressure 300 barg; working-pressure 200 barg }\n" \
+    "sheet settled-pressure { fluid blend; vessel ten; fill 91 bara +/- 1.3 bar at 288.15 K +/- 1.1 K;\n"          \
+    "sweep temperature 338.15 K; monte-carlo draws 120, seed 5 }\n"
+
+static void the_quick_draws_are_those_of_the_sheet(void **state)
+{
+    (void)state;
+    struct solved quick = solve(TWO_WAYS("", "tare 13 kg +/- 2e-9 kg; "));
+    struct solved whole = solve(TWO_WAYS("component argon { acentric -0.00219 +/- 2e-9 }\n", ""));
+    assert_int_equal(quick.deck.tree->spread_count, 5);
+    assert_string_equal(quick.deck.tree->spreads[3].name, "tare");
+    assert_string_equal(whole.deck.tree->spreads[3].name, "acentric");
+    static const char *const results[] = {"mass", "margin of"};
+    for (size_t i = 0; i < 2; i++) {
+        const struct budget *one = budget_of(&quick, results[i]), *other = budget_of(&whole, results[i]);
+        assert_non_null(one);
+        assert_non_null(other);
+        assert_int_equal(one->drawn.answered, 120);
+        assert_int_equal(other->drawn.answered, 120);
+        assert_close(one->drawn.mean, other->drawn.mean, 1e-7, "two ways");
+        assert_close(one->drawn.standard, other->drawn.standard, 1e-6, "two ways");
+        assert_close(one->drawn.low, other->drawn.low, 1e-7, "two ways");
+        assert_close(one->drawn.high, other->drawn.high, 1e-7, "two ways");
+    }
+    end(&quick);
+    end(&whole);
+}
+
+/* Fractions of mass, a charge by filling ratio: m = ratio 999.1 V, n = m (w / Ma + (1 - w) / Mb). */
+static void quick_draws_know_fractions_of_mass_and_filling_ratios(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL "mixture blend by mass { argon 30 % +/- 1 %; vapid rest }\n"
+                                         "sheet settled-pressure { fluid blend; vessel ten; filling-ratio 0.11 +/- "
+                                         "0.002; monte-carlo draws 4000, seed 9 }\n");
+    const struct budget *budget = budget_of(&it, "mass");
+    const double mass = 0.11 * 999.1 * 10.2 * LITRE;
+    assert_close(budget->value, mass, 1e-12, "ratio 999.1 V");
+    assert_close(budget->drawn.standard, mass * hypot(0.001 / 0.11, 0.03 / 10.2), 5.0 / sqrt(8000.0), "product");
+    end(&it);
+}
+
+/* ---- reports ----------------------------------------------------------------------------------------------------- */
+
+static void the_listing_shows_what_is_uncertain(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_MASS SHEET "require at 338.15 K pressure <= 182.5 bara;\n"
+                                                       "monte-carlo draws 400 }\n");
+    struct text listing = {.arena = it.deck.arena};
+    report_listing(it.result, &listing);
+    static const char *const words[] = {
+        "1 requirement: met; 1 WITHIN UNCERTAINTY",
+        "\u00b10.020   ",
+        "uncertainty budget: mass",
+        "mass of charge lot",
+        "U = 2 u = 0.02 kg",
+        "400 random draws (JCGM 101), 400 with an answer",
+        "WITHIN UNCERTAINTY, as the margin is smaller",
+        "expanded uncertainty U, k = 2",
+    };
+    for (size_t i = 0; i < sizeof words / sizeof *words; i++) {
+        if (strstr(listing.bytes, words[i]) == NULL) {
+            print_error("not in the listing: %s\n%s\n", words[i], listing.bytes);
+            fail();
+        }
+    }
+    end(&it);
+}
+
+static double real_of(const json_t *tree, const char *key)
+{
+    const json_t *value = json_object_get(tree, key);
+    assert_true(json_is_number(value));
+    return json_number_value(value);
+}
+
+static void programs_get_the_same_in_si(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_MASS SHEET "require at 338.15 K pressure <= 182.5 bara }\n");
+    struct text json = {.arena = it.deck.arena};
+    assert_true(report_json(it.result, &json));
+    json_t *tree = json_loads(json.bytes, 0, NULL);
+    assert_non_null(tree);
+    const json_t *sheet = json_array_get(json_object_get(tree, "sheets"), 0);
+    const json_t *mass = json_array_get(json_object_get(sheet, "facts"), 0);
+    assert_string_equal(json_string_value(json_object_get(mass, "name")), "mass");
+    assert_close(real_of(mass, "uncertainty"), 0.02, 1e-9, "as written");
+    const json_t *requirement = json_array_get(json_object_get(sheet, "requirements"), 0);
+    assert_true(json_is_true(json_object_get(requirement, "within_uncertainty")));
+    assert_close(real_of(requirement, "uncertainty"), it.sheet->first_requirement->carried.expanded, 1e-15, "the same");
+    const json_t *table = json_array_get(json_object_get(sheet, "tables"), 0);
+    const json_t *row = json_array_get(json_object_get(table, "uncertainties"), 1);
+    assert_int_equal(json_array_size(row), json_array_size(json_array_get(json_object_get(table, "rows"), 1)));
+    assert_true(json_is_null(json_array_get(row, 0)));
+    assert_true(json_is_real(json_array_get(row, 1)));
+    const json_t *budget = json_array_get(json_object_get(sheet, "budgets"), 0);
+    assert_string_equal(json_string_value(json_object_get(budget, "result")), "mass");
+    assert_close(real_of(budget, "standard_uncertainty"), 0.01, 1e-9, "half of U");
+    const json_t *line = json_array_get(json_object_get(budget, "inputs"), 0);
+    assert_close(real_of(line, "sensitivity"), 1.0, 1e-9, "the mass is the input");
+    assert_close(real_of(line, "share"), 1.0, 1e-12, "the only one");
+    assert_null(json_object_get(budget, "draws"));
+    json_decref(tree);
+    end(&it);
+}
+
 /* ---- shifted cases ----------------------------------------------------------------------------------------------- */
 
 static void a_shifted_value_is_checked_and_carried_on(void **state)
@@ -327,6 +443,10 @@ int main(void)
         cmocka_unit_test(draws_need_something_uncertain),
         cmocka_unit_test(draws_agree_where_the_gas_law_is_nearly_linear),
         cmocka_unit_test(a_share_is_never_drawn_below_nothing),
+        cmocka_unit_test(the_quick_draws_are_those_of_the_sheet),
+        cmocka_unit_test(quick_draws_know_fractions_of_mass_and_filling_ratios),
+        cmocka_unit_test(the_listing_shows_what_is_uncertain),
+        cmocka_unit_test(programs_get_the_same_in_si),
         cmocka_unit_test(the_words_of_draws_are_checked),
         cmocka_unit_test(a_shifted_value_is_checked_and_carried_on),
     };

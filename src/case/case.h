@@ -275,6 +275,7 @@ struct case_charge {
     enum fill_kind kind;
     struct quantity amount;       /* absolute Pa, kg, 1, kg/m3, mol or m3 by kind */
     double temperature, pressure; /* K, Pa absolute: the state of FILL_PRESSURE (temperature) and FILL_VOLUME (both) */
+    struct location temperature_at; /* of FILL_PRESSURE */
     struct origin origin;
 };
 
@@ -393,6 +394,9 @@ const struct case_tree *case_elaborate(const struct deck *deck, struct arena *ar
  * must have been elaborated before without errors, and is not changed: shifted cases may be made on many threads. */
 const struct case_tree *case_elaborate_shifted(const struct deck *deck, const struct case_shift *shifts, size_t count,
                                                struct arena *arena, struct diagnostics *diagnostics);
+
+/* Whether a value at `at` is the one that a spread or shift names. */
+bool case_is_same_place(struct location a, struct location b);
 
 /* Whether the sheet can depend on that value at all, as far as the names of blocks tell. */
 bool case_sheet_may_depend(const struct case_sheet *sheet, const struct case_spread *spread);

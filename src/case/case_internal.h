@@ -424,6 +424,7 @@ struct fill {
     enum fill_kind kind;
     struct quantity amount;
     double temperature, pressure;
+    struct location temperature_at;
     struct location at;
 };
 void read_fill(struct elaboration *e, const struct statement *statement, struct fill *fill);

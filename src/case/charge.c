@@ -2,7 +2,7 @@
 #include "case/case_internal.h"
 
 /* `at T`, perhaps `+/- u`: the temperature of a fill by pressure. */
-static bool take_temperature(struct reading *reading, double *temperature)
+static bool take_temperature(struct reading *reading, double *temperature, struct location *place)
 {
     const struct item *at = take_item(reading, ITEM_AT);
     if (at == NULL) {
@@ -21,6 +21,7 @@ static bool take_temperature(struct reading *reading, double *temperature)
                       temperature)) {
         return false;
     }
+    *place = at->value->at;
     add_input(reading->e, "fill temperature", si_text(reading->e, &FORM_TEMPERATURE, *temperature), &origin);
     return true;
 }
@@ -75,7 +76,7 @@ static bool take_state_of(struct reading *reading, struct fill *fill)
 {
     switch (fill->kind) {
     case FILL_PRESSURE:
-        return take_temperature(reading, &fill->temperature);
+        return take_temperature(reading, &fill->temperature, &fill->temperature_at);
     case FILL_VOLUME:
         return take_state(reading, "volume stated", &fill->temperature, &fill->pressure);
     case FILL_MASS:
@@ -174,6 +175,7 @@ const struct case_charge *make_charge(struct elaboration *e, const char *name, c
         .amount = fill->amount,
         .temperature = fill->temperature,
         .pressure = fill->pressure,
+        .temperature_at = fill->temperature_at,
         .origin = origin_of(e, fill->at),
     };
     return charge;

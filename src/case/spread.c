@@ -4,7 +4,7 @@
 #include <math.h>
 #include <string.h>
 
-static bool is_same_place(struct location a, struct location b)
+bool case_is_same_place(struct location a, struct location b)
 {
     return a.file == b.file && a.begin == b.begin;
 }
@@ -13,7 +13,7 @@ static double shift_at(const struct elaboration *e, struct location at)
 {
     double sum = 0.0;
     for (size_t i = 0; i < e->shift_count; i++) {
-        sum += is_same_place(e->shifts[i].at, at) ? e->shifts[i].by : 0.0;
+        sum += case_is_same_place(e->shifts[i].at, at) ? e->shifts[i].by : 0.0;
     }
     return sum;
 }
@@ -35,7 +35,7 @@ static struct shown_unit value_unit(struct elaboration *e, const struct quantity
 static bool is_taken_down(const struct elaboration *e, struct location at)
 {
     for (size_t i = 0; i < e->spreads.count; i++) {
-        if (is_same_place(e->spreads.items[i].at, at)) {
+        if (case_is_same_place(e->spreads.items[i].at, at)) {
             return true;
         }
     }

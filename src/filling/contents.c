@@ -138,6 +138,17 @@ enum answer free_volume_at(struct method_run *method, double temperature, double
     return answer;
 }
 
+enum answer free_volume_alone_at(struct method_run *method, double temperature, double pressure, double *molar_volume)
+{
+    bool holds_liquid;
+    const enum answer answer = set_temperature(method, temperature);
+    if (answer != ANSWER_OK || method->mixture == NULL) {
+        return answer != ANSWER_OK ? answer
+                                   : free_volume_at(method, temperature, pressure, molar_volume, &holds_liquid);
+    }
+    return mixture_free_volume_alone(method, pressure, molar_volume);
+}
+
 double smallest_molar_volume(const struct method_run *method)
 {
     return phase_smallest_volume(method->at_t, method->z);

@@ -94,6 +94,15 @@ void method_run_begin_again(struct method_run *own, const struct method_run *met
     }
 }
 
+void method_run_change_mixture(struct method_run *own)
+{
+    if (own->mixture != NULL) {
+        forget(own->mixture);
+        own->mixture->is_traced = true; /* the envelope of another composition says nothing of this one */
+        own->mixture->envelope = NULL;
+    }
+}
+
 bool method_run_gave_up_envelope(const struct method_run *own, const struct method_run *method)
 {
     return own->mixture != NULL && own->mixture->is_incomplete && !method->mixture->is_incomplete;
@@ -242,14 +251,21 @@ enum answer mixture_contents(struct method_run *method, double volume, double am
     return ANSWER_OK;
 }
 
+enum answer mixture_free_volume_alone(struct method_run *method, double pressure, double *molar_volume)
+{
+    const struct split *split;
+    const enum answer answer = mixture_split(method, pressure, &split);
+    *molar_volume = answer == ANSWER_OK ? split_volume(split) : 0.0;
+    return answer;
+}
+
 enum answer mixture_free_volume(struct method_run *method, double pressure, double *molar_volume, bool *holds_liquid)
 {
-    struct mixture_work *work = method->mixture;
-    const enum answer answer = split_at_tp(method->at_t, pressure, method->z, work->ws, work->split);
+    const struct mixture_work *work = method->mixture;
+    const enum answer answer = mixture_free_volume_alone(method, pressure, molar_volume);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *molar_volume = split_volume(work->split);
     struct phase_edges edges = {.is_known = false};
     if (work->split->phase_count == 1) {
         mixture_edges(method, &edges);

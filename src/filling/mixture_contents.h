@@ -83,6 +83,9 @@ enum answer mixture_prove_edges(struct method_run *method, double molar_volume);
 
 enum answer mixture_free_volume(struct method_run *method, double pressure, double *molar_volume, bool *holds_liquid);
 
+/* The same without asking whether it is a liquid, which saves most of the work. */
+enum answer mixture_free_volume_alone(struct method_run *method, double pressure, double *molar_volume);
+
 /* kg/mol of a phase with these mole fractions. */
 double mixture_molar_mass(const struct method_run *method, const double x[]);
 

@@ -179,6 +179,26 @@ static enum answer lead_molar_volume(const struct sheet_run *run, double tempera
     return answer;
 }
 
+double charge_mass_of(const struct case_charge *charge, double molar_volume, double molar_mass)
+{
+    const double amount = charge->amount.value, capacity = charge->vessel->water_capacity.value;
+    switch (charge->kind) {
+    case FILL_PRESSURE:
+        return capacity / molar_volume * molar_mass;
+    case FILL_VOLUME:
+        return amount / molar_volume * molar_mass;
+    case FILL_MASS:
+        break;
+    case FILL_RATIO:
+        return amount * WATER_DENSITY_15C * capacity;
+    case FILL_DENSITY:
+        return amount * capacity;
+    case FILL_MOLES:
+        return amount * molar_mass;
+    }
+    return amount;
+}
+
 static enum answer mass_by_pressure(const struct sheet_run *run, const struct case_charge *charge, double *mass)
 {
     double molar_volume;
@@ -188,7 +208,7 @@ static enum answer mass_by_pressure(const struct sheet_run *run, const struct ca
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *mass = charge->vessel->water_capacity.value / molar_volume * run->sheet->fluid->molar_mass;
+    *mass = charge_mass_of(charge, molar_volume, run->sheet->fluid->molar_mass);
     if (holds_liquid) {
         warn_of_liquid(run, charge, CODE_W304, charge->amount.value,
                        run->sheet->fluid->count == 1 ? "a liquid, and the vessel is taken as full of it"
@@ -206,7 +226,7 @@ static enum answer mass_by_volume(const struct sheet_run *run, const struct case
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *mass = charge->amount.value / molar_volume * run->sheet->fluid->molar_mass;
+    *mass = charge_mass_of(charge, molar_volume, run->sheet->fluid->molar_mass);
     if (holds_liquid) {
         warn_of_liquid(run, charge, CODE_W305, charge->pressure,
                        run->sheet->fluid->count == 1 ? "a liquid; its volume is taken as liquid volume"
@@ -217,26 +237,19 @@ static enum answer mass_by_volume(const struct sheet_run *run, const struct case
 
 enum answer charge_mass(const struct sheet_run *run, const struct case_charge *charge, double *mass)
 {
-    const double amount = charge->amount.value;
     switch (charge->kind) {
     case FILL_PRESSURE:
         return mass_by_pressure(run, charge, mass);
     case FILL_VOLUME:
         return mass_by_volume(run, charge, mass);
     case FILL_MASS:
-        *mass = amount;
-        return ANSWER_OK;
     case FILL_RATIO:
-        *mass = amount * WATER_DENSITY_15C * charge->vessel->water_capacity.value;
-        return ANSWER_OK;
     case FILL_DENSITY:
-        *mass = amount * charge->vessel->water_capacity.value;
-        return ANSWER_OK;
     case FILL_MOLES:
-        *mass = amount * run->sheet->fluid->molar_mass;
-        return ANSWER_OK;
+        break;
     }
-    return ANSWER_CANNOT;
+    *mass = charge_mass_of(charge, 0.0, run->sheet->fluid->molar_mass);
+    return ANSWER_OK;
 }
 
 double ratio_rounded_down(double ratio, double step)

@@ -56,6 +56,9 @@ struct method_run method_run_for_thread(const struct method_run *method, struct 
  * either was asked before. */
 void method_run_begin_again(struct method_run *own, const struct method_run *method);
 
+/* Forgets whatever `own` has found, as its mole fractions are about to change: it then has no envelope. */
+void method_run_change_mixture(struct method_run *own);
+
 /* Whether `own` has since found a state that speaks against that envelope. */
 bool method_run_gave_up_envelope(const struct method_run *own, const struct method_run *method);
 
@@ -107,8 +110,15 @@ enum answer edges_at(struct method_run *method, double temperature, struct phase
 enum answer free_volume_at(struct method_run *method, double temperature, double pressure, double *molar_volume,
                            bool *holds_liquid);
 
+/* The same without asking whether it is a liquid. */
+enum answer free_volume_alone_at(struct method_run *method, double temperature, double pressure, double *molar_volume);
+
 /* The smallest volume (m3) that the method knows for one mole at the temperature set last; 0 where there is none. */
 double smallest_molar_volume(const struct method_run *method);
+
+/* A charge's mass in kg for a molar volume at the charge's state (m3/mol), which counts where it is given by pressure
+ * or by volume, and a molar mass. */
+double charge_mass_of(const struct case_charge *charge, double molar_volume, double molar_mass);
 
 /* A charge's mass in kg, by the lead method where it was given by pressure or by volume. */
 enum answer charge_mass(const struct sheet_run *run, const struct case_charge *charge, double *mass);

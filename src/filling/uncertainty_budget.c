@@ -1,5 +1,5 @@
 /* Budgets of the results that govern a sheet: which input contributes how much, and what random draws say of it. */
-#include "filling/uncertainty_internal.h"
+#include "filling/settled_draws.h"
 
 #include <math.h>
 #include <string.h>
@@ -250,11 +250,16 @@ static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, 
     model.evaluate = evaluate_picked;
     model.context = &context;
     model.context_for_thread = picked_for_thread;
+    const bool is_quick = settled_quick_model(it, chosen->items, chosen->count, &model);
     const struct first_order first = picked_first(it, chosen);
     const struct drawn drawn = propagate_draws(&model, &first, run->sheet->draws, run->sheet->seed, 0, run->arena);
     for (size_t i = 0; i < chosen->count; i++) {
         budgets[i]->drawn = drawn_budget_of(&drawn, &first, i);
         tell_disagreement(it, budgets[i]);
+    }
+    if (is_quick) {
+        sheet_add_note(run->result, run->out,
+                       "draws of margins: at the temperature that is worst at the values as written");
     }
     if (drawn.impossible > 0) {
         sheet_add_note(run->result, run->out,
