@@ -350,7 +350,7 @@ static void the_listing_shows_what_is_uncertain(void **state)
         "uncertainty budget: mass",
         "mass of charge lot",
         "U = 2 u = 0.02 kg",
-        "400 random draws (JCGM 101), 400 with an answer",
+        "400 random draws (JCGM 101, seed 1), 400 with an answer",
         "WITHIN UNCERTAINTY, as the margin is smaller",
         "expanded uncertainty U, k = 2",
     };

@@ -212,13 +212,15 @@ static struct first_order picked_first(const struct uncertain_sheet *it, const s
     return (struct first_order){.is_known = true, .base = base, .standard = standard};
 }
 
-static struct drawn_budget drawn_budget_of(const struct drawn *drawn, const struct first_order *first, size_t i)
+static struct drawn_budget drawn_budget_of(const struct drawn *drawn, const struct first_order *first, size_t i,
+                                           uint64_t seed)
 {
     const struct drawn_output *output = &drawn->outputs[i];
     return (struct drawn_budget){
         .given = true,
         .draws = drawn->draws,
         .answered = output->count,
+        .seed = seed,
         .mean = output->mean,
         .standard = output->standard,
         .low = output->low,
@@ -254,7 +256,7 @@ static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, 
     const struct first_order first = picked_first(it, chosen);
     const struct drawn drawn = propagate_draws(&model, &first, run->sheet->draws, run->sheet->seed, 0, run->arena);
     for (size_t i = 0; i < chosen->count; i++) {
-        budgets[i]->drawn = drawn_budget_of(&drawn, &first, i);
+        budgets[i]->drawn = drawn_budget_of(&drawn, &first, i, run->sheet->seed);
         tell_disagreement(it, budgets[i]);
     }
     if (is_quick) {

@@ -209,6 +209,7 @@ static json_t *drawn_tree(const struct budget *budget)
 {
     const struct drawn_budget *drawn = &budget->drawn;
     json_t *tree = set(json_object(), "draws", json_integer((json_int_t)drawn->draws));
+    tree = set(tree, "seed", json_integer((json_int_t)drawn->seed));
     tree = set(tree, "answered", json_integer((json_int_t)drawn->answered));
     tree = set(tree, "mean", si_or_null(&budget->look, drawn->mean));
     tree = set(tree, "standard_uncertainty", number_or_null(drawn->standard));

@@ -3,6 +3,7 @@
 #include "report/number.h"
 #include "report/page.h"
 
+#include <inttypes.h>
 #include <math.h>
 #include <string.h>
 
@@ -172,6 +173,9 @@ static void draw_combined(const struct budget *budget, struct text *out)
     page_paragraph(out, PART_INDENT, words.bytes);
 }
 
+/* Of results whose look has no fixed decimals; of others one more than usual. */
+enum { DRAWN_DIGITS = 6 };
+
 static const char *agreement_words(enum agreement agreement)
 {
     switch (agreement) {
@@ -195,12 +199,13 @@ static void draw_draws(const struct budget *budget, struct text *out)
         return;
     }
     struct look shown = budget->look;
-    shown.decimals = -6;
+    shown.decimals = shown.decimals < 0 ? -DRAWN_DIGITS : shown.decimals + 1;
     page_paragraph(out, PART_INDENT,
                    arena_format(arena,
-                                "%zu random draws (JCGM 101), %zu with an answer: mean %s, u %s, 95 %% from %s to %s "
+                                "%zu random draws (JCGM 101, seed %" PRIu64
+                                "), %zu with an answer: mean %s, u %s, 95 %% from %s to %s "
                                 "%s; by first order from %s to %s %s; %s %s",
-                                drawn->draws, drawn->answered, number_shown(arena, &shown, drawn->mean),
+                                drawn->draws, drawn->seed, drawn->answered, number_shown(arena, &shown, drawn->mean),
                                 in_unit(arena, look, drawn->standard), number_shown(arena, &shown, drawn->low),
                                 number_shown(arena, &shown, drawn->high), number_unit(&shown),
                                 number_shown(arena, &shown, drawn->first_low),

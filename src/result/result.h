@@ -12,6 +12,7 @@
 
 #include <stdbool.h>
 #include <stddef.h>
+#include <stdint.h>
 
 /* What is shown of a number: SI unit for machines, chosen unit and digits for readers. */
 struct look {
@@ -116,6 +117,7 @@ enum agreement { AGREES, AGREES_NOT, AGREEMENT_BLURRED };
 struct drawn_budget {
     bool given;
     size_t draws, answered;
+    uint64_t seed;
     double mean, standard, low, high; /* SI; the ends hold 95 % */
     double first_low, first_high;     /* the same ends by first order */
     double tolerance;
