@@ -11,13 +11,16 @@
  * 158-160 (1999) 617).
  *
  * First values come from a state nearby, or from substitution with the pressure that fills the volume in each pass.
- * Failing that the pressure is bracketed by flashes: at equilibrium the volume only falls with rising pressure.
+ * Failing that the pressure is bracketed by flashes: at equilibrium the volume only falls with rising pressure. Where
+ * it falls at once, as at the vapour pressure of a pure fluid or where a binary has three phases, the phases of both
+ * sides together are first values for all that are there.
  */
 #include "equilibrium/mixture_vessel.h"
 #include "equilibrium/linear.h"
 #include "equilibrium/split_internal.h"
 
 #include <math.h>
+#include <string.h>
 
 enum { MOST_STEPS = 30, MOST_SHIFTS = 12, MOST_PARTS = 12, PASSES = 4, MOST_PRESSURES = 80, MOST_FLASHES = 200 };
 
@@ -30,6 +33,11 @@ enum { MOST_STEPS = 30, MOST_SHIFTS = 12, MOST_PARTS = 12, PASSES = 4, MOST_PRES
 #define LARGEST_PRESSURE_STEP 0.5
 /* A molar volume of liquids by their smallest one, for first values. */
 #define LIQUID_BY_SMALLEST 1.25
+/* Phases on two sides of a pressure that differ by less, in a mole fraction or by part of the volume, are one. */
+#define MOST_TWINS_DIFFER 0.05
+/* How near the two sides are, by part of the pressure, when they are first joined, and by what factor again. */
+#define FIRST_NEAR 1e-2
+#define NEARER     1e-2
 
 struct filling {
     struct flash flash;
@@ -197,9 +205,10 @@ static bool solve_and_prove(struct filling *v)
 
 /* ---- pressures between two others ------------------------------------------------------------------------------- */
 
-/* A pressure too low or too high, with the volume there. */
+/* A pressure too low or too high, with the volume and the phases there. */
 struct side {
     double pressure, volume;
+    struct split *split; /* of a flash, in memory of the vessel's own */
 };
 
 /* By false position in the logarithms of pressure and volume, and every third time by halving. */
@@ -264,7 +273,7 @@ static double guessed_volume(struct filling *v, const struct guess *guess, doubl
  * logarithms; false where they then are one phase. */
 static bool guess_pressure(struct filling *v, const struct guess *guess)
 {
-    struct side low = {v->flash.pressure, 0.0}, high;
+    struct side low = {v->flash.pressure, 0.0, NULL}, high;
     low.volume = guessed_volume(v, guess, low.pressure);
     high = low;
     double factor = 1.5;
@@ -281,9 +290,9 @@ static bool guess_pressure(struct filling *v, const struct guess *guess)
     for (int k = 0; k < MOST_PRESSURES && high.pressure > low.pressure * (1.0 + 1e-3); k++) {
         const double pressure = next_pressure(v, &low, &high, k);
         const double volume = guessed_volume(v, guess, pressure);
-        *(volume > v->volume ? &low : &high) = (struct side){pressure, volume};
+        *(volume > v->volume ? &low : &high) = (struct side){pressure, volume, NULL};
         if (fabs(volume / v->volume - 1.0) < 1e-3) {
-            low = high = (struct side){pressure, volume};
+            low = high = (struct side){pressure, volume, NULL};
         }
     }
     v->flash.pressure = sqrt(low.pressure * high.pressure);
@@ -375,63 +384,153 @@ static bool finish_from_flash(struct filling *v)
     return v->flash.phases > 1 && solve_and_prove(v);
 }
 
-/* One phase on either side of a pressure: between them lies a pure fluid's saturation, or an azeotrope. Both phases
- * with the feed's composition, in the amounts that fill the vessel. */
-static bool finish_between(struct filling *v, const struct side *low, const struct side *high)
+static void copy_phase(struct split_phase *to, const struct split_phase *from, size_t count)
+{
+    to->fraction = from->fraction;
+    to->molar_volume = from->molar_volume;
+    memcpy(to->x, from->x, count * sizeof *to->x);
+}
+
+/* The flash at hand becomes one side of the pressure looked for. */
+static void set_side(struct filling *v, struct side *side, double volume)
+{
+    const struct split *found = v->flash.out;
+    side->pressure = v->flash.pressure;
+    side->volume = volume;
+    side->split->phase_count = found->phase_count;
+    for (size_t k = 0; k < found->phase_count; k++) {
+        copy_phase(&side->split->phase[k], &found->phase[k], v->flash.ws->count);
+    }
+}
+
+static double difference_of(const struct split_phase *one, const struct split_phase *other, size_t count)
+{
+    double largest = fabs(one->molar_volume / other->molar_volume - 1.0);
+    for (size_t i = 0; i < count; i++) {
+        largest = fmax(largest, fabs(one->x[i] - other->x[i]));
+    }
+    return largest;
+}
+
+/* Which phase of the other side goes on as this one; its phase count where none does. */
+static size_t twin_of(const struct split_phase *phase, const struct split *other, size_t count)
+{
+    size_t twin = other->phase_count;
+    double least = MOST_TWINS_DIFFER;
+    for (size_t k = 0; k < other->phase_count; k++) {
+        const double difference = difference_of(phase, &other->phase[k], count);
+        if (difference < least) {
+            least = difference;
+            twin = k;
+        }
+    }
+    return twin;
+}
+
+static void add_phase(struct filling *v, size_t k, double part, const struct split_phase *phase)
+{
+    struct equilibrium_workspace *ws = v->flash.ws;
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
+        ws->amounts[k][i] += part * phase->fraction * phase->x[i];
+    }
+}
+
+static void clear_amounts(struct equilibrium_workspace *ws)
+{
+    for (size_t k = 0; k < MOST_PHASES; k++) {
+        for (size_t i = 0; i < ws->count; i++) {
+            ws->amounts[k][i] = 0.0;
+        }
+    }
+}
+
+/* The phases of both sides in the parts that fill the vessel, those that go on from one side to the other once. False
+ * where nothing is new on either side, or there are too many. */
+static bool join_sides(struct filling *v, const struct side *low, const struct side *high, bool are_both_single)
 {
     struct flash *f = &v->flash;
     const double light = (v->volume - high->volume) / (low->volume - high->volume);
-    f->phases = 2;
-    f->pressure = 0.5 * (low->pressure + high->pressure);
-    for (size_t i = 0; i < f->ws->count; i++) {
-        f->ws->amounts[0][i] = light * f->ws->feed[i];
-        f->ws->amounts[1][i] = (1.0 - light) * f->ws->feed[i];
+    size_t lasting = 0;
+    if (!(light > 0.0 && light < 1.0)) {
+        return false;
     }
-    f->is_gas_over_liquid = true;
-    const bool is_solved = light > 0.0 && light < 1.0 && solve_and_prove(v);
+    clear_amounts(f->ws);
+    f->phases = low->split->phase_count;
+    f->pressure = sqrt(low->pressure * high->pressure);
+    for (size_t k = 0; k < f->phases; k++) {
+        add_phase(v, k, light, &low->split->phase[k]);
+    }
+    for (size_t k = 0; k < high->split->phase_count; k++) {
+        const struct split_phase *phase = &high->split->phase[k];
+        size_t place = are_both_single ? 1 : twin_of(phase, low->split, f->ws->count);
+        if (place < low->split->phase_count) {
+            lasting++;
+        } else if (f->phases == MOST_PHASES) {
+            return false;
+        } else {
+            place = f->phases++;
+        }
+        add_phase(v, place, 1.0 - light, phase);
+    }
+    return f->phases > low->split->phase_count || lasting < low->split->phase_count;
+}
+
+/* Different phases on either side of a pressure: at it there are all of them. One phase on either side is a pure
+ * fluid's saturation, or an azeotrope; three of a binary stand between two sides of two, or of two and one. */
+static bool finish_between(struct filling *v, const struct side *low, const struct side *high)
+{
+    struct flash *f = &v->flash;
+    const bool are_both_single = low->split->phase_count == 1 && high->split->phase_count == 1;
+    if (!join_sides(v, low, high, are_both_single)) {
+        return false;
+    }
+    f->is_gas_over_liquid = are_both_single;
+    const bool is_solved = solve_and_prove(v);
     f->is_gas_over_liquid = false;
     return is_solved;
 }
 
 static enum answer bracket(struct filling *v, struct side *low, struct side *high)
 {
-    const double start = v->RT / v->volume;
-    *low = *high = (struct side){start, 0.0};
-    enum answer answer = flash_at(v, start);
+    enum answer answer = flash_at(v, v->RT / v->volume);
     double volume = volume_of_split(v->flash.out);
     const bool is_low = volume > v->volume;
     for (int k = 0; answer == ANSWER_OK && k < MOST_PRESSURES; k++) {
-        struct side *here = is_low ? low : high;
         if ((volume > v->volume) != is_low) {
-            *(is_low ? high : low) = (struct side){v->flash.pressure, volume};
+            set_side(v, is_low ? high : low, volume);
             return ANSWER_OK;
         }
-        *here = (struct side){v->flash.pressure, volume};
+        set_side(v, is_low ? low : high, volume);
         answer = flash_at(v, v->flash.pressure * (is_low ? 3.0 : 1.0 / 3.0));
         volume = volume_of_split(v->flash.out);
     }
     return answer == ANSWER_OK ? ANSWER_FAILED : answer;
 }
 
-static enum answer search(struct filling *v)
+static enum answer search(struct filling *v, struct mixture_vessel *vessel)
 {
-    struct side low, high;
+    struct side low = {.split = vessel->below}, high = {.split = vessel->above};
+    double near = FIRST_NEAR;
     enum answer answer = bracket(v, &low, &high);
     for (int k = 0; answer == ANSWER_OK && k < MOST_FLASHES; k++) {
+        if (high.pressure < low.pressure * (1.0 + near)) {
+            near *= NEARER;
+            if (finish_between(v, &low, &high)) {
+                return ANSWER_OK;
+            }
+        }
         const double pressure = next_pressure(v, &low, &high, k);
         if (!(pressure > low.pressure && pressure < high.pressure) || high.pressure < low.pressure * (1.0 + 1e-14)) {
-            return finish_between(v, &low, &high) ? ANSWER_OK : ANSWER_FAILED;
+            return ANSWER_FAILED;
         }
         answer = flash_at(v, pressure);
         if (answer != ANSWER_OK) {
             return answer;
         }
         const double volume = volume_of_split(v->flash.out);
+        set_side(v, volume > v->volume ? &low : &high, volume);
         if (finish_from_flash(v)) {
-            return ANSWER_OK;
-        }
-        *(volume > v->volume ? &low : &high) = (struct side){pressure, volume};
-        if (high.pressure < low.pressure * (1.0 + 1e-9) && finish_between(v, &low, &high)) {
             return ANSWER_OK;
         }
     }
@@ -489,6 +588,8 @@ struct mixture_vessel *mixture_vessel_create(size_t count, struct arena *arena)
 {
     struct mixture_vessel *vessel = arena_alloc(arena, 1, sizeof *vessel);
     vessel->split = split_create(count, arena);
+    vessel->below = split_create(count, arena);
+    vessel->above = split_create(count, arena);
     return vessel;
 }
 
@@ -553,7 +654,7 @@ enum answer mixture_vessel_at_tv(const struct fluid_at_t *at_t, double volume, c
     bool is_single;
     enum answer answer = try_single_phase(&v, STABILITY_ROUNDING, &is_single);
     if (answer == ANSWER_OK && !is_single && !(start_by_substitution(&v) && solve_and_prove(&v))) {
-        answer = search(&v);
+        answer = search(&v, out);
         /* Below the plane by less than any split gains: one phase after all. */
         if (answer == ANSWER_FAILED && try_single_phase(&v, SPLIT_LEAST_TPD, &is_single) == ANSWER_OK && is_single) {
             answer = ANSWER_OK;

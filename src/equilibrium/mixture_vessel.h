@@ -13,6 +13,7 @@ struct mixture_vessel {
     double volume; /* m3 */
     double amount; /* mol */
     struct split *split;
+    struct split *below, *above; /* for mixture_vessel_at_tv alone: flashes on either side of the pressure */
 };
 
 struct mixture_vessel *mixture_vessel_create(size_t count, struct arena *arena);

@@ -273,23 +273,49 @@ static bool descend(struct flash *f, double decrease, unsigned want)
 
 /* ---- phases that come and go ----------------------------------------------------------------------------------- */
 
-static void remove_phase(struct flash *f, size_t gone)
+/* A phase that can go, and the one that takes what it holds; that is f->phases where all others do, in proportion. */
+struct removal {
+    size_t gone, into;
+};
+
+/* What phase l holds of component i without the one that goes. */
+static double amount_without(const struct flash *f, struct removal r, size_t l, size_t i)
+{
+    double *const *amounts = f->ws->amounts;
+    const double moved = amounts[r.gone][i];
+    if (r.into < f->phases) {
+        return amounts[l][i] + (l == r.into ? moved : 0.0);
+    }
+    double remaining = 0.0;
+    for (size_t k = 0; k < f->phases; k++) {
+        remaining += k == r.gone ? 0.0 : amounts[k][i];
+    }
+    return amounts[l][i] * f->ws->feed[i] / remaining;
+}
+
+/* The amounts without it, in ws->candidate. */
+static void set_candidate_without(const struct flash *f, struct removal r)
 {
     struct equilibrium_workspace *ws = f->ws;
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
-        const double moved = ws->amounts[gone][i];
-        ws->amounts[gone][i] = 0.0;
-        for (size_t k = 0; k < f->phases; k++) {
-            ws->amounts[k][i] *= ws->feed[i] / (ws->feed[i] - moved);
+        for (size_t l = 0; l < f->phases; l++) {
+            ws->candidate[l][i] = l == r.gone ? 0.0 : amount_without(f, r, l, i);
         }
     }
-    double *const amounts = ws->amounts[gone];
-    struct phase *const phase = ws->phase[gone];
+}
+
+static void remove_phase(struct flash *f, struct removal r)
+{
+    struct equilibrium_workspace *ws = f->ws;
+    set_candidate_without(f, r);
+    flash_accept_candidate(ws, f->phases);
+    double *const amounts = ws->amounts[r.gone];
+    struct phase *const phase = ws->phase[r.gone];
     f->phases--;
-    ws->amounts[gone] = ws->amounts[f->phases];
+    ws->amounts[r.gone] = ws->amounts[f->phases];
     ws->amounts[f->phases] = amounts;
-    ws->phase[gone] = ws->phase[f->phases];
+    ws->phase[r.gone] = ws->phase[f->phases];
     ws->phase[f->phases] = phase;
 }
 
@@ -317,48 +343,63 @@ static double growth_of(const struct flash *f, size_t k)
     return change;
 }
 
-/* Does the Gibbs energy rise by no more than the allowance when the phase's content joins the others, in proportion? */
-static bool can_do_without(struct flash *f, size_t k, double allowance)
+/* Does the Gibbs energy rise by no more than the allowance without the phase? The others are evaluated where that moves
+ * them. */
+static bool is_no_higher_without(struct flash *f, struct removal r, double allowance)
 {
     struct equilibrium_workspace *ws = f->ws;
     double gibbs = 0.0;
-    for (size_t a = 0; a < ws->active_count; a++) {
-        const size_t i = ws->active[a];
-        double remaining = 0.0;
-        for (size_t l = 0; l < f->phases; l++) {
-            remaining += l == k ? 0.0 : ws->amounts[l][i];
-        }
-        for (size_t l = 0; l < f->phases; l++) {
-            ws->candidate[l][i] = l == k ? 0.0 : ws->amounts[l][i] * ws->feed[i] / remaining;
-        }
-    }
+    set_candidate_without(f, r);
     for (size_t l = 0; l < f->phases; l++) {
-        if (l != k && evaluate_phase(f, l, PHASE_LN_PHI, ws->candidate[l]) != ANSWER_OK) {
+        if (l != r.gone && evaluate_phase(f, l, PHASE_LN_PHI, ws->candidate[l]) != ANSWER_OK) {
             return false;
         }
-        gibbs += l == k ? 0.0 : gibbs_of(ws, l, ws->candidate[l]);
+        gibbs += l == r.gone ? 0.0 : gibbs_of(ws, l, ws->candidate[l]);
     }
     return gibbs <= f->gibbs + allowance;
 }
 
-/* The first phase that is vanishing, or is better left out, or is the same as another; f->phases without one. */
-static size_t superfluous_phase(struct flash *f)
+/* The same, with the phases evaluated where they stand again unless one can go. */
+static bool can_do_without(struct flash *f, struct removal r, double allowance)
+{
+    double gibbs;
+    return is_no_higher_without(f, r, allowance) ||
+           (flash_evaluate(f, PHASE_LN_PHI, f->ws->amounts, &gibbs) == ANSWER_OK && false);
+}
+
+/* Is phase k the same as l, or similar and better joined with it? */
+static bool is_one_with(struct flash *f, size_t k, size_t l)
+{
+    const double difference = difference_of(f->ws, k, l);
+    return difference < SAME_PHASE ||
+           (difference < SIMILAR_PHASE && can_do_without(f, (struct removal){k, l}, -10.0 * GIBBS_ROUNDING));
+}
+
+/* Is it vanishing, or better left out? */
+static bool is_vanishing(struct flash *f, size_t k)
+{
+    const double amount = f->ws->phase[k]->amount;
+    return amount < SMALL_PHASE && growth_of(f, k) < -0.3 * amount &&
+           (amount < VANISHING ||
+            (f->phases > 2 && can_do_without(f, (struct removal){k, f->phases}, -10.0 * GIBBS_ROUNDING)));
+}
+
+/* Finds the first phase that can go; false without one. */
+static bool find_superfluous(struct flash *f, struct removal *out)
 {
     for (size_t k = 0; k < f->phases; k++) {
         for (size_t l = 0; l < k; l++) {
-            const double difference = difference_of(f->ws, k, l);
-            if (difference < SAME_PHASE ||
-                (difference < SIMILAR_PHASE && can_do_without(f, k, -10.0 * GIBBS_ROUNDING))) {
-                return k;
+            if (is_one_with(f, k, l)) {
+                *out = (struct removal){k, l};
+                return true;
             }
         }
-        const double amount = f->ws->phase[k]->amount;
-        if (amount < SMALL_PHASE && growth_of(f, k) < -0.3 * amount &&
-            (amount < VANISHING || (f->phases > 2 && can_do_without(f, k, -10.0 * GIBBS_ROUNDING)))) {
-            return k;
+        if (is_vanishing(f, k)) {
+            *out = (struct removal){k, f->phases};
+            return true;
         }
     }
-    return f->phases;
+    return false;
 }
 
 /* ---- the minimum of the Gibbs energy --------------------------------------------------------------------------- */
@@ -383,8 +424,8 @@ static enum answer minimise(struct flash *f)
     for (int step = 0; step < MOST_STEPS && answer == ANSWER_OK; step++) {
         f->out->steps++;
         const double decrease = newton_step(f);
-        const size_t superfluous = superfluous_phase(f);
-        if (superfluous < f->phases) {
+        struct removal superfluous;
+        if (find_superfluous(f, &superfluous)) {
             remove_phase(f, superfluous);
             if (f->phases == 1) {
                 return ANSWER_OK;
@@ -417,8 +458,9 @@ static bool merge_phases(struct flash *f)
 {
     for (size_t k = 0; k < f->phases && f->phases > 2; k++) {
         for (size_t l = 0; l < k; l++) {
-            if (difference_of(f->ws, k, l) < SIMILAR_PHASE && can_do_without(f, k, 10.0 * GIBBS_ROUNDING)) {
-                remove_phase(f, k);
+            const struct removal joined = {k, l};
+            if (difference_of(f->ws, k, l) < SIMILAR_PHASE && can_do_without(f, joined, 10.0 * GIBBS_ROUNDING)) {
+                remove_phase(f, joined);
                 return true;
             }
         }

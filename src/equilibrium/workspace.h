@@ -8,7 +8,7 @@
 
 #include "fluid/phase.h"
 
-enum { MOST_PHASES = 4 };
+enum { MOST_PHASES = 6 };
 
 struct equilibrium_workspace {
     size_t count;        /* components of the fluid */
