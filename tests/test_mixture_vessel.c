@@ -174,7 +174,7 @@ static void one_component_behaves_as_the_pure_fluid(void **state)
  * same. */
 struct three_phases {
     const char *name;
-    double critical_temperature[2], critical_pressure[2], acentric[2], kij;
+    struct sample_binary binary;
     double temperature, z; /* K; mole fraction of the first */
     double pressure;       /* Pa */
     double x[3];           /* mole fraction of the first in vapour, light and heavy liquid by molar volume */
@@ -183,57 +183,27 @@ struct three_phases {
 
 static const struct three_phases THREE_PHASES[] = {
     {"nitrogen and n-butane",
-     {126.192, 425.125},
-     {3395800.0, 3796000.0},
-     {0.0372, 0.201},
-     0.08,
+     {{126.192, 425.125}, {3395800.0, 3796000.0}, {0.0372, 0.201}, 0.08},
      100.0,
      0.98,
      780039.44461176163588,
      {0.999999999382490457, 0.108938641837246459, 0.999522991208258043},
      {0.0008686740874684531, 0.0000707913275967814064, 0.0000370247032090962421}},
     {"carbon dioxide and n-hexadecane",
-     {304.1282, 722.0},
-     {7377300.0, 1400000.0},
-     {0.22394, 0.718},
-     0.125,
+     {{304.1282, 722.0}, {7377300.0, 1400000.0}, {0.22394, 0.718}, 0.125},
      262.9,
      0.9,
      2614353.1398665974762,
      {0.999999952545774914, 0.548534349167094184, 0.999496630868977777},
      {0.000627507866556042703, 0.000185249043392700522, 0.0000447765661296681261}},
     {"methane and n-hexadecane",
-     {190.564, 722.0},
-     {4599200.0, 1400000.0},
-     {0.01142, 0.718},
-     0.06,
+     {{190.564, 722.0}, {4599200.0, 1400000.0}, {0.01142, 0.718}, 0.06},
      165.03,
      0.95,
      1952456.9467660945246,
      {0.999999999999999718, 0.582330214254204321, 0.999830573417521994},
      {0.000497336812677171824, 0.000164854680625505863, 0.0000473222906158510515}},
 };
-
-static struct fluid_at_t *three_phases_at_t(const struct three_phases *known, struct arena *arena)
-{
-    struct pure_spec *pure = arena_alloc(arena, 2, sizeof *pure);
-    const struct pure_spec **list = arena_alloc(arena, 2, sizeof *list);
-    double *kij = arena_alloc(arena, 4, sizeof *kij);
-    struct fluid_spec *spec = arena_alloc(arena, 1, sizeof *spec);
-    for (size_t i = 0; i < 2; i++) {
-        pure[i] = (struct pure_spec){.name = known->name,
-                                     .molar_mass = 0.03,
-                                     .critical_temperature = {true, known->critical_temperature[i]},
-                                     .critical_pressure = {true, known->critical_pressure[i]},
-                                     .acentric = {true, known->acentric[i]}};
-        list[i] = &pure[i];
-    }
-    kij[0] = kij[3] = 0.0;
-    kij[1] = kij[2] = known->kij;
-    *spec = (struct fluid_spec){.count = 2, .pure = list, .kij = kij};
-    struct fluid_lack_report lack;
-    return sample_at_t(fluid_create("peng-robinson", spec, arena, &lack), known->temperature, arena);
-}
 
 /* The volume of a mole with the given part of it in the vapour, the rest divided between the liquids by the balance of
  * the first component. Zero where a liquid would have to be less than nothing. */
@@ -266,7 +236,7 @@ static void three_phases_keep_one_pressure(void **state)
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(THREE_PHASES); k++) {
         const struct three_phases *known = &THREE_PHASES[k];
-        struct fluid_at_t *at_t = three_phases_at_t(known, arena);
+        struct fluid_at_t *at_t = sample_binary_at_t(&known->binary, known->temperature, arena);
         struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
         struct mixture_vessel *cold = mixture_vessel_create(2, arena), *warm = mixture_vessel_create(2, arena);
         const double n[] = {known->z, 1.0 - known->z};
@@ -297,7 +267,7 @@ static void beside_their_pressure_two_phases_are_left(void **state)
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(THREE_PHASES); k++) {
         const struct three_phases *known = &THREE_PHASES[k];
-        struct fluid_at_t *at_t = three_phases_at_t(known, arena);
+        struct fluid_at_t *at_t = sample_binary_at_t(&known->binary, known->temperature, arena);
         struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
         struct split *split = split_create(2, arena);
         for (double z = 0.05; z < 1.0; z += 0.05) {
@@ -319,18 +289,12 @@ static void beside_their_pressure_two_phases_are_left(void **state)
  * twin. Only what they are of stands here; the answer is checked by its residual and its proof. */
 static const struct three_phases TWINS_ON_THE_WAY[] = {
     {.name = "oxygen and nitrogen",
-     .critical_temperature = {154.58, 126.192},
-     .critical_pressure = {5043000.0, 3395800.0},
-     .acentric = {0.0222, 0.0372},
-     .kij = 0.2,
+     .binary = {{154.58, 126.192}, {5043000.0, 3395800.0}, {0.0222, 0.0372}, 0.2},
      .temperature = 100.26,
      .z = 0.65129547375,
      .pressure = 869397.7385},
     {.name = "water and propane",
-     .critical_temperature = {647.096, 369.89},
-     .critical_pressure = {22064000.0, 4251200.0},
-     .acentric = {0.3443, 0.1521},
-     .kij = 0.1,
+     .binary = {{647.096, 369.89}, {22064000.0, 4251200.0}, {0.3443, 0.1521}, 0.1},
      .temperature = 361.06,
      .z = 0.128578546,
      .pressure = 3591379.663},
@@ -342,7 +306,7 @@ static void twins_on_the_way_become_one(void **state)
     struct arena *arena = arena_create(NULL);
     for (size_t k = 0; k < COUNT(TWINS_ON_THE_WAY); k++) {
         const struct three_phases *known = &TWINS_ON_THE_WAY[k];
-        struct fluid_at_t *at_t = three_phases_at_t(known, arena);
+        struct fluid_at_t *at_t = sample_binary_at_t(&known->binary, known->temperature, arena);
         struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
         struct split *split = split_create(2, arena);
         const double feed[] = {known->z, 1.0 - known->z};

@@ -123,6 +123,57 @@ static void the_usual_trials_miss_nothing(void **state)
     arena_free(arena);
 }
 
+static void assert_usual_trials_agree(const struct fluid_at_t *at_t, double pressure, const double z[],
+                                      struct equilibrium_workspace *ws)
+{
+    struct stability usual, exhaustive;
+    assert_int_equal(stability_at_tp(at_t, pressure, z, STABILITY_EXHAUSTIVE, ws, &exhaustive), ANSWER_OK);
+    assert_int_equal(stability_at_tp(at_t, pressure, z, STABILITY_REPORT, ws, &usual), ANSWER_OK);
+    assert_int_equal(usual.is_stable, exhaustive.is_stable);
+    assert_int_equal(stability_at_tp(at_t, pressure, z, STABILITY_DECIDE, ws, &usual), ANSWER_OK);
+    assert_int_equal(usual.is_stable, exhaustive.is_stable);
+}
+
+/* A liquid rich in oxygen, close to where oxygen alone has no liquid any more, beside one of nitrous oxide and oxygen:
+ * between 3.65 and 4.9 MPa only trials of a liquid with some of both find it. */
+static void a_liquid_that_its_main_component_does_not_form_is_found(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const struct sample_binary nitrous_oxide_oxygen = {
+        {309.52, 154.58}, {7245000.0, 5043000.0}, {0.1613, 0.0222}, 0.05};
+    struct fluid_at_t *at_t = sample_binary_at_t(&nitrous_oxide_oxygen, 150.0, arena);
+    struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
+    size_t unstable = 0;
+    for (double z = 0.1; z < 0.95; z += 0.1) {
+        const double feed[] = {z, 1.0 - z};
+        for (double pressure = 3.4e6; pressure < 5.2e6; pressure += 2e4) {
+            assert_usual_trials_agree(at_t, pressure, feed, ws);
+            struct stability found;
+            (void)stability_at_tp(at_t, pressure, feed, STABILITY_DECIDE, ws, &found);
+            unstable += !found.is_stable;
+        }
+    }
+    assert_in_range(unstable, 100, 800);
+    arena_free(arena);
+}
+
+/* Beside a spinodal close to a critical point: coming from one side a trial comes to rest right next to the feed, from
+ * the other it looks as if it ran into the feed while a phase lies on the way. */
+static void a_phase_in_a_flat_valley_is_found(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const struct sample_binary valley = {{227.51, 416.3}, {3750000.0, 6671690.0}, {0.1785, 0.1501}, 0.0};
+    struct fluid_at_t *at_t = sample_binary_at_t(&valley, 277.2690953, arena);
+    struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
+    static const double feed[] = {0.305936606, 0.1};
+    for (double pressure = 7.30e6; pressure < 7.32e6; pressure += 41.7) {
+        assert_usual_trials_agree(at_t, pressure, feed, ws);
+    }
+    arena_free(arena);
+}
+
 /* A symmetric matrix made of known eigenvalues and of the reflection I - 2 u u' / u'u. */
 static void linear_solvers_invert_a_known_matrix(void **state)
 {
@@ -177,6 +228,8 @@ int main(void)
         cmocka_unit_test(the_verdict_turns_at_the_boundary),
         cmocka_unit_test(an_incipient_phase_is_a_stationary_point),
         cmocka_unit_test(the_usual_trials_miss_nothing),
+        cmocka_unit_test(a_liquid_that_its_main_component_does_not_form_is_found),
+        cmocka_unit_test(a_phase_in_a_flat_valley_is_found),
         cmocka_unit_test(linear_solvers_invert_a_known_matrix),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

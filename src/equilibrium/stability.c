@@ -10,7 +10,7 @@
 
 #include <math.h>
 
-enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 13 };
+enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 13, MANY_STEPS = 8 };
 
 /* Below this a trial in progress has proved instability beyond doubt, and is good enough to start a split from. */
 #define CLEARLY_UNSTABLE (-1e-3)
@@ -33,12 +33,22 @@ enum { SUBSTITUTIONS = 4, MOST_STEPS = 80, MOST_HALVINGS = 8, MOST_SHIFTS = 13 }
 #define LARGEST_PACKING_OF_GAS 0.1
 /* A component this prevalent in a phase need not be tried alone. */
 #define PREVALENT 0.9
+/* So much of a component, the rest feed, for a liquid that it does not form alone. */
+#define RICH 0.75
 /* ln W is kept within what exp can take. */
 #define LARGEST_LN_W 600.0
 /* A trial this near to a known phase, in ln W and ln v, is that phase. */
 #define SAME_PHASE 1e-6
 /* And one whose distance is this nearly a quadratic form about a known phase is on its way there. */
 #define LIKE_A_KNOWN_PHASE 0.03
+/* A form of less than this part of an ideal phase's is flat, and has to be that near. */
+#define FLAT         0.2
+#define NEAR_IF_FLAT 1e-3
+/* A distance that may hide a phase on the other side of a known one, and how far away that is tried, in alpha. */
+#define HARDLY_OFF 1e-8
+#define MIRRORED   0.1
+/* A distance too small to have a direction. */
+#define NO_DISTANCE 1e-10
 /* A pure trial is worth its cost from this activity of the component upwards, against its own pure phase; and that
  * phase is worth evaluating when its estimate leaves the activity above the second value. */
 #define LEAST_LN_ACTIVITY           (-1.5)
@@ -60,6 +70,7 @@ struct trial {
     double sum;     /* of W */
     double norm;    /* sqrt(sum W g^2) */
     double largest; /* max sqrt(W_i) |g_i| */
+    int newton_steps;
 };
 
 enum verdict { GOING_ON, STATIONARY, BELOW_PLANE, NOT_BELOW, KNOWN_PHASE };
@@ -86,7 +97,7 @@ static enum answer evaluate(struct test *t, unsigned want, struct trial *trial)
     if (answer != ANSWER_OK) {
         return answer;
     }
-    *trial = (struct trial){.tm = 1.0};
+    *trial = (struct trial){.tm = 1.0, .newton_steps = trial->newton_steps};
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
         const double W = ws->W[i];
@@ -150,8 +161,22 @@ static bool is_same(const struct equilibrium_workspace *ws, const double amounts
     return fabs(molar_volume_of(ws->trial) / molar_volume - 1.0) <= SAME_PHASE;
 }
 
+/* How far the trial stands from a known phase, in alpha by that of a normalised trial. */
+static double distance_in_alpha(const struct equilibrium_workspace *ws, const double amounts[])
+{
+    const double scale = 1.0 / sum_of(amounts, ws->count);
+    double square = 0.0;
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
+        const double change = 2.0 * (sqrt(ws->W[i]) - sqrt(scale * amounts[i]));
+        square += change * change;
+    }
+    return sqrt(square);
+}
+
 /* Near a known phase x the distance is a quadratic form, so that 2 tm = sum (W - x) g; far from it that would be
- * chance (Michelsen 1982, eq. 27 and 28). */
+ * chance (Michelsen 1982, eq. 27 and 28). So it would where the form is much flatter than that of an ideal phase, as
+ * beside a critical point: there a trial has to come nearer. */
 static bool runs_into(const struct equilibrium_workspace *ws, const double amounts[], const struct trial *trial)
 {
     const double scale = 1.0 / sum_of(amounts, ws->count);
@@ -160,7 +185,11 @@ static bool runs_into(const struct equilibrium_workspace *ws, const double amoun
         const size_t i = ws->active[a];
         slope += (ws->W[i] - scale * amounts[i]) * ws->g[i];
     }
-    return fabs(2.0 * trial->tm - slope) < LIKE_A_KNOWN_PHASE * fabs(slope);
+    if (!(fabs(2.0 * trial->tm - slope) < LIKE_A_KNOWN_PHASE * fabs(slope))) {
+        return false;
+    }
+    const double distance = distance_in_alpha(ws, amounts);
+    return distance < NEAR_IF_FLAT || 2.0 * trial->tm > FLAT * distance * distance;
 }
 
 static bool is_known(const struct test *t, const struct trial *trial)
@@ -311,6 +340,7 @@ static enum answer run_newton(struct test *t, struct trial *trial, enum verdict 
         if (*verdict != GOING_ON) {
             return ANSWER_OK;
         }
+        trial->newton_steps++;
         const double length = length_of_step(t->ws);
         multiple = decrease < HUGE_VAL ? multiple_of(length, last_length, multiple) : 1.0;
         const enum answer answer = descend(t, multiple, trial);
@@ -370,20 +400,70 @@ static void record(struct test *t, const struct trial *trial)
     out->is_stable = !(tpd < -STABILITY_ROUNDING);
 }
 
+static enum answer follow_trial(struct test *t, struct trial *trial, enum verdict *verdict)
+{
+    *verdict = GOING_ON;
+    *trial = (struct trial){.newton_steps = 0};
+    t->out->trials++;
+    enum answer answer = run_substitution(t, trial, verdict);
+    if (answer == ANSWER_OK && *verdict == GOING_ON) {
+        answer = run_newton(t, trial, verdict);
+    }
+    if (answer == ANSWER_OK && *verdict != KNOWN_PHASE) {
+        record(t, trial);
+    }
+    return answer;
+}
+
+/* To the other side of a known phase, MIRRORED away from it. */
+static void mirror_trial(struct equilibrium_workspace *ws, const double amounts[], double distance)
+{
+    const double scale = 1.0 / sum_of(amounts, ws->count);
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
+        const double ln_known = log(scale * amounts[i]);
+        set_ln_W(ws, i, ln_known - MIRRORED / distance * (ws->ln_W[i] - ln_known));
+    }
+}
+
+/* A trial that comes to rest hardly off the plane and right beside a known phase without being that phase, or that took
+ * many steps to become it, stood in the flat valley of a spinodal: the valley's other end may lie lower. */
+static bool is_in_valley(const struct trial *trial, enum verdict verdict)
+{
+    return (verdict == STATIONARY && fabs(trial->tm) < HARDLY_OFF) ||
+           (verdict == KNOWN_PHASE && trial->newton_steps >= MANY_STEPS);
+}
+
+/* The valley is so flat that nothing short of its end tells; where that is not found within rounding, the other trials
+ * have to do. */
+static void try_other_end(struct test *t, const double amounts[], double distance)
+{
+    const enum stability_effort effort = t->effort;
+    struct trial trial;
+    enum verdict verdict;
+    mirror_trial(t->ws, amounts, distance);
+    t->effort = effort == STABILITY_DECIDE ? STABILITY_REPORT : effort;
+    (void)follow_trial(t, &trial, &verdict);
+    t->effort = effort;
+}
+
 /* From ws->W and ws->ln_W. */
 static enum answer run_trial(struct test *t)
 {
     struct trial trial;
-    enum verdict verdict = GOING_ON;
-    t->out->trials++;
-    enum answer answer = run_substitution(t, &trial, &verdict);
-    if (answer == ANSWER_OK && verdict == GOING_ON) {
-        answer = run_newton(t, &trial, &verdict);
+    enum verdict verdict;
+    const enum answer answer = follow_trial(t, &trial, &verdict);
+    if (answer != ANSWER_OK || !is_in_valley(&trial, verdict)) {
+        return answer;
     }
-    if (answer == ANSWER_OK && verdict != KNOWN_PHASE) {
-        record(t, &trial);
+    for (size_t k = 0; k < t->known->count; k++) {
+        const double distance = distance_in_alpha(t->ws, t->known->amounts[k]);
+        if (distance > NO_DISTANCE && distance < MIRRORED) {
+            try_other_end(t, t->known->amounts[k], distance);
+            break;
+        }
     }
-    return answer;
+    return ANSWER_OK;
 }
 
 /* ---- where trials start ---------------------------------------------------------------------------------------- */
@@ -498,6 +578,15 @@ static bool is_in_known_phase(const struct test *t, size_t i, double molar_volum
     return false;
 }
 
+/* A liquid rich in i that i alone does not form: some of the feed with it. */
+static enum answer try_rich(struct test *t, size_t i)
+{
+    for (size_t k = 0; k < t->ws->count; k++) {
+        t->ws->W[k] = (k == i ? RICH : 0.0) + (1.0 - RICH) * t->ws->feed[k];
+    }
+    return try_coefficients(t);
+}
+
 /* Could there be a phase rich in i? Only if i is present at a good part of the fugacity it has alone. */
 static enum answer try_pure(struct test *t, size_t i)
 {
@@ -515,6 +604,9 @@ static enum answer try_pure(struct test *t, size_t i)
     if (!is_exhaustive &&
         (ws->d[i] - ws->trial->ln_phi[i] < LEAST_LN_ACTIVITY || is_in_known_phase(t, i, molar_volume_of(ws->trial)))) {
         return ANSWER_OK;
+    }
+    if (t->branch == BRANCH_STABLE && !is_exhaustive) {
+        return try_rich(t, i);
     }
     substitute(ws);
     return run_trial(t);

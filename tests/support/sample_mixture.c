@@ -32,3 +32,24 @@ struct sample_mixture sample_mixture_create(size_t count, const enum sample_subs
     mixture.ws = equilibrium_workspace_create(count, arena);
     return mixture;
 }
+
+struct fluid_at_t *sample_binary_at_t(const struct sample_binary *binary, double temperature, struct arena *arena)
+{
+    struct pure_spec *pure = arena_alloc(arena, 2, sizeof *pure);
+    const struct pure_spec **list = arena_alloc(arena, 2, sizeof *list);
+    double *kij = arena_alloc(arena, 4, sizeof *kij);
+    struct fluid_spec *spec = arena_alloc(arena, 1, sizeof *spec);
+    for (size_t i = 0; i < 2; i++) {
+        pure[i] = (struct pure_spec){.name = "sample",
+                                     .molar_mass = 0.03,
+                                     .critical_temperature = {true, binary->critical_temperature[i]},
+                                     .critical_pressure = {true, binary->critical_pressure[i]},
+                                     .acentric = {true, binary->acentric[i]}};
+        list[i] = &pure[i];
+    }
+    kij[0] = kij[3] = 0.0;
+    kij[1] = kij[2] = binary->kij;
+    *spec = (struct fluid_spec){.count = 2, .pure = list, .kij = kij};
+    struct fluid_lack_report lack;
+    return sample_at_t(fluid_create("peng-robinson", spec, arena, &lack), temperature, arena);
+}

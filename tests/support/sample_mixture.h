@@ -18,4 +18,10 @@ struct sample_mixture {
 struct sample_mixture sample_mixture_create(size_t count, const enum sample_substance *substance, double temperature,
                                             struct arena *arena);
 
+/* Two substances given by their constants (K, Pa, 1), by Peng-Robinson at a temperature (K), from the arena. */
+struct sample_binary {
+    double critical_temperature[2], critical_pressure[2], acentric[2], kij;
+};
+struct fluid_at_t *sample_binary_at_t(const struct sample_binary *binary, double temperature, struct arena *arena);
+
 #endif
