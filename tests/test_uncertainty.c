@@ -183,6 +183,39 @@ static void molar_masses_count_too(void **state)
     end(&it);
 }
 
+/* A let's uncertainty is one input, however often it is named: V and m double together and leave the density alone. */
+static void what_a_let_names_moves_together(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD "let size = 5.1 L +/- 0.03 L\n"
+                                  "let reading = 90 barg +/- 2 % relative\n"
+                                  "vessel ten { water-capacity 2 * size; test-pressure 300 barg }\n"
+                                  "sheet settled-pressure { fluid vapid; vessel ten; fill reading at 288.15 K }\n");
+    assert_int_equal(it.deck.tree->spread_count, 2);
+    const struct fact *mass = result_fact(it.sheet, "mass", NULL);
+    /* 2 % of the 90 bar above the atmosphere */
+    const double relative = hypot(0.03 / 5.1, 1.8 / (90.0 + 1.01325));
+    assert_close(mass->carried.expanded, mass->value * relative, 1e-6, "p V M / (R T)");
+    assert_string_equal(budget_of(&it, "mass")->lines[0].input, "size of let");
+    assert_close(expanded_of(&it, "density"), result_fact(it.sheet, "density", NULL)->value * 1.8 / 91.01325, 1e-6,
+                 "p M / (R T)");
+    end(&it);
+    assert_refused(HEAD "let size = 5.1 L +/- 0.03 kg\n", CODE_E208);
+    assert_refused(HEAD "let hall = 18 degC +/- 2 degC\n", CODE_E208);
+    assert_refused(HEAD "let size = 5.1 L +/- 0.03 L relative\n", CODE_E208);
+}
+
+/* A gauge reading of 90 bar in an air of 0.97 bar. */
+static void the_air_at_the_gauge_is_an_input(void **state)
+{
+    (void)state;
+    struct solved it = solve("case \"hill\" { ambient-pressure 0.97 bara +/- 0.03 bar }\n" HEAD PLAIN_VESSEL
+                             "sheet settled-pressure { fluid vapid; vessel ten; fill 90 barg at 288.15 K }\n");
+    const struct fact *mass = result_fact(it.sheet, "mass", NULL);
+    assert_close(mass->carried.expanded, mass->value * 0.03 / 90.97, 1e-6, "p V M / (R T)");
+    end(&it);
+}
+
 /* ---- verdicts ---------------------------------------------------------------------------------------------------- */
 
 /* 1.31 kg in 10.2 L at 338.15 K are 180.55 bara; U = 180.55 sqrt((0.02 / 1.31)^2 + (0.06 / 10.2)^2) = 2.95 bar. */
@@ -437,6 +470,8 @@ int main(void)
         cmocka_unit_test(fractions_without_a_rest_are_brought_to_a_whole),
         cmocka_unit_test(fractions_of_mass_become_amounts),
         cmocka_unit_test(molar_masses_count_too),
+        cmocka_unit_test(what_a_let_names_moves_together),
+        cmocka_unit_test(the_air_at_the_gauge_is_an_input),
         cmocka_unit_test(a_margin_smaller_than_its_uncertainty_is_marked),
         cmocka_unit_test(a_deck_without_uncertainties_says_nothing_of_them),
         cmocka_unit_test(another_vessel_is_no_matter_of_this_sheet),

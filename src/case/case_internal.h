@@ -332,6 +332,11 @@ bool take_uncertainty(struct reading *reading, const struct quantity_form *form,
 bool settle_value(struct elaboration *e, const struct quantity_form *form, const char *name,
                   const struct expression *expression, double uncertainty, const struct origin *origin, double *si);
 
+/* The same of a let, with the `+/- u` or `+/- u relative` that may stand next: the values that name it move together.
+ * False after a message. */
+bool settle_let(struct reading *reading, const char *name, const struct expression *expression, struct let_value *let,
+                struct location *last);
+
 /* `monte-carlo draws N, seed S`; *draws stays 0 after a message. */
 void read_monte_carlo(struct elaboration *e, const struct statement *statement, size_t *draws, uint64_t *seed);
 

@@ -329,12 +329,18 @@ static bool read_let(struct elaboration *e, const struct statement *statement, s
         report_missing(&reading, "'=' and a value");
         return false;
     }
-    if (!value_of(e, item->value, &let->value) || !finish_items(&reading) || !forbid_block(e, statement)) {
+    const char *name = statement->items->value->name;
+    struct location last = item->value->at;
+    if (!value_of(e, item->value, &let->value)) {
         return false;
     }
     let->unit = unit_written(e, item->value, (struct shown_unit){NULL, 1.0, 0.0});
-    const struct origin origin = origin_of(e, item->value->at);
-    add_input(e, statement->items->value->name, si_value_text(e, &let->value), &origin);
+    if (!settle_let(&reading, name, item->value, let, &last) || !finish_items(&reading) ||
+        !forbid_block(e, statement)) {
+        return false;
+    }
+    const struct origin origin = origin_of(e, location_span(item->value->at, last));
+    add_input(e, name, si_value_text(e, &let->value), &origin);
     return true;
 }
 
@@ -397,9 +403,17 @@ static void read_ambient_pressure(struct elaboration *e, const struct statement 
         report_missing(&reading, "an absolute pressure");
         return;
     }
-    if (read_air_pressure(e, item->value, "ambient-pressure", &e->tree->ambient_pressure) && finish_items(&reading)) {
-        const struct origin origin = origin_of(e, item->at);
-        add_input(e, "ambient-pressure", si_text(e, &FORM_PRESSURE, e->tree->ambient_pressure), &origin);
+    static const char name[] = "ambient-pressure";
+    double pressure, uncertainty = 0.0;
+    struct location last = item->at;
+    if (!read_air_pressure(e, item->value, name, &pressure) ||
+        !take_uncertainty(&reading, &FORM_PRESSURE, name, pressure, &uncertainty, &last) || !finish_items(&reading)) {
+        return;
+    }
+    const struct origin origin = origin_of(e, location_span(item->at, last));
+    if (settle_value(e, &FORM_PRESSURE, name, item->value, uncertainty, &origin, &pressure)) {
+        e->tree->ambient_pressure = pressure;
+        add_input(e, name, si_text(e, &FORM_PRESSURE, pressure), &origin);
     }
 }
 
@@ -512,12 +526,15 @@ static void check_unused(struct elaboration *e)
 
 /* ---- The whole ---- */
 
-static struct elaboration *begin(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics)
+static struct elaboration *begin_shifted(const struct deck *deck, const struct case_shift *shifts, size_t count,
+                                         struct arena *arena, struct diagnostics *diagnostics)
 {
     struct elaboration *e = arena_alloc(arena, 1, sizeof *e);
     e->deck = deck;
     e->arena = arena;
     e->out = diagnostics;
+    e->shifts = shifts;
+    e->shift_count = count;
     e->tree = arena_alloc(arena, 1, sizeof *e->tree);
     e->tree->deck = deck;
     e->tree->ambient_pressure = STANDARD_ATMOSPHERE;
@@ -526,6 +543,11 @@ static struct elaboration *begin(const struct deck *deck, struct arena *arena, s
     index_deck(e);
     evaluate_lets(e);
     return e;
+}
+
+static struct elaboration *begin(const struct deck *deck, struct arena *arena, struct diagnostics *diagnostics)
+{
+    return begin_shifted(deck, NULL, 0, arena, diagnostics);
 }
 
 static void warn_no_sheet(struct elaboration *e)
@@ -558,9 +580,7 @@ static void read_all_sheets_need(struct elaboration *e)
 const struct case_tree *case_elaborate_shifted(const struct deck *deck, const struct case_shift *shifts, size_t count,
                                                struct arena *arena, struct diagnostics *diagnostics)
 {
-    struct elaboration *e = begin(deck, arena, diagnostics);
-    e->shifts = shifts;
-    e->shift_count = count;
+    struct elaboration *e = begin_shifted(deck, shifts, count, arena, diagnostics);
     read_all_sheets_need(e);
     return diagnostics->errors == 0 ? e->tree : NULL;
 }

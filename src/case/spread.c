@@ -42,6 +42,26 @@ static bool is_taken_down(const struct elaboration *e, struct location at)
     return false;
 }
 
+/* Whether the value at `at` is to be taken down as uncertain: once, and only where sheets are read for. */
+static bool is_news(const struct elaboration *e, double uncertainty, struct location at)
+{
+    return uncertainty > 0.0 && !e->is_checking && e->shift_count == 0 && !is_taken_down(e, at);
+}
+
+static void take_down(struct elaboration *e, const struct case_spread *spread)
+{
+    struct spread_list *list = &e->spreads;
+    struct case_spread *added = ARENA_APPEND(e->arena, list);
+    *added = *spread;
+    added->group = e->group;
+}
+
+static const char *si_unit_of(struct elaboration *e, struct dimension dimension)
+{
+    const char *base = base_unit(dimension, e->arena);
+    return *base == '\0' ? "1" : base;
+}
+
 bool settle_value(struct elaboration *e, const struct quantity_form *form, const char *name,
                   const struct expression *expression, double uncertainty, const struct origin *origin, double *si)
 {
@@ -50,22 +70,79 @@ bool settle_value(struct elaboration *e, const struct quantity_form *form, const
         *si += shift;
         return check_range(e, form, name, expression, *si);
     }
-    if (!(uncertainty > 0.0) || e->is_checking || e->shift_count > 0 || is_taken_down(e, expression->at)) {
+    if (is_news(e, uncertainty, expression->at)) {
+        const char *si_unit = si_unit_of(e, measure_dimension(form->measure));
+        take_down(e, &(struct case_spread){
+                         .name = name,
+                         .value = *si,
+                         .uncertainty = uncertainty,
+                         .unit = value_unit(e, form, expression, si_unit),
+                         .si_unit = si_unit,
+                         .at = expression->at,
+                         .origin = *origin,
+                     });
+    }
+    return true;
+}
+
+/* ---- values with names of their own ------------------------------------------------------------------------------ */
+
+static bool report_spread(struct elaboration *e, const char *name, const struct expression *spread,
+                          const struct value *value)
+{
+    struct diagnostic *said =
+        diagnose(e->out, CODE_E208, spread->at, "the uncertainty of %s: expected a difference, %s, 0 or more", name,
+                 dimension_name(value->dimension, e->arena));
+    diagnostic_hint(e->out, said, "as in: let hall = 18 degC +/- 2 K");
+    return false;
+}
+
+static bool take_let_uncertainty(struct reading *reading, const char *name, const struct value *value,
+                                 double *uncertainty, struct location *last)
+{
+    const struct item *item = take_item(reading, ITEM_PLUS_MINUS);
+    if (item == NULL) {
         return true;
     }
-    const char *base = base_unit(measure_dimension(form->measure), e->arena);
-    const char *si_unit = *base == '\0' ? "1" : base;
-    struct spread_list *list = &e->spreads;
-    *ARENA_APPEND(e->arena, list) = (struct case_spread){
-        .group = e->group,
-        .name = name,
-        .value = *si,
-        .uncertainty = uncertainty,
-        .unit = value_unit(e, form, expression, si_unit),
-        .si_unit = si_unit,
-        .at = expression->at,
-        .origin = *origin,
-    };
+    *last = item->at;
+    const struct item *next = reading->item;
+    const bool is_relative = take_word(reading, vocabulary_rows()[WORD_SPREAD_RELATIVE].word);
+    struct value spread;
+    if (!value_of(reading->e, item->value, &spread)) {
+        return false;
+    }
+    *last = is_relative ? next->at : *last;
+    const struct dimension expected = is_relative ? DIMENSION_NONE : value->dimension;
+    if (!dimension_equal(spread.dimension, expected) || spread.sort != SORT_PLAIN || !(spread.si >= 0.0)) {
+        return report_spread(reading->e, name, item->value, value);
+    }
+    *uncertainty = is_relative ? spread.si * fabs(value->si) : spread.si;
+    return true;
+}
+
+bool settle_let(struct reading *reading, const char *name, const struct expression *expression, struct let_value *let,
+                struct location *last)
+{
+    struct elaboration *e = reading->e;
+    double uncertainty = 0.0;
+    if (!take_let_uncertainty(reading, name, &let->value, &uncertainty, last)) {
+        return false;
+    }
+    if (is_news(e, uncertainty, expression->at)) {
+        const char *si_unit = si_unit_of(e, let->value.dimension);
+        struct shown_unit unit = let->unit.symbol == NULL ? (struct shown_unit){si_unit, 1.0, 0.0} : let->unit;
+        unit.offset = let->value.sort == SORT_GAUGE ? 0.0 : unit.offset; /* kept as gauge */
+        take_down(e, &(struct case_spread){
+                         .name = name,
+                         .value = let->value.si,
+                         .uncertainty = uncertainty,
+                         .unit = unit,
+                         .si_unit = si_unit,
+                         .at = expression->at,
+                         .origin = origin_of(e, location_span(expression->at, *last)),
+                     });
+    }
+    let->value.si += shift_at(e, expression->at);
     return true;
 }
 
