@@ -8,6 +8,7 @@
 #include "equilibrium/mixture_vessel.h"
 #include "equilibrium/saturation.h"
 #include "support/reference_data.h"
+#include "support/timed_draws.h"
 
 #include <math.h>
 #include <stdint.h>
@@ -627,6 +628,16 @@ static bool measure_all_equilibria(void)
     return good;
 }
 
+/* Whole runs of random draws: seconds for each, not medians. */
+static bool measure_draws(void)
+{
+    const double blend = time_blend_draws(1000000), settled = time_settled_draws(10000);
+    printf("\n1 000 000 draws of a weighed blend's composition, one thread: %.3f s\n", blend);
+    printf("10 000 draws of its settled pressure with phase check, all threads, at 50 and at -25 degC: %.3f s\n",
+           settled);
+    return settled >= 0.0;
+}
+
 int main(void)
 {
     double unit = 0.0;
@@ -640,5 +651,6 @@ int main(void)
     good = measure_fugacities(5, unit) && good;
     good = measure_fugacities(10, unit) && good;
     good = measure_all_equilibria() && good;
+    good = measure_draws() && good;
     return good ? EXIT_SUCCESS : EXIT_FAILURE;
 }

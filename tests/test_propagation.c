@@ -2,6 +2,7 @@
 #include "filling/propagation.h"
 
 #include "support/check.h"
+#include "support/weighed_blend.h"
 
 #include <math.h>
 
@@ -229,6 +230,53 @@ static void the_end_gauge_of_the_guide_has_its_uncertainty(void **state)
     arena_free(it->arena);
 }
 
+/* ---- a blend off the scales -------------------------------------------------------------------------------------- */
+
+/* By hand: the parents' molar masses are 0.9996 58.124 + 0.0004 28.014 = 58.111956 g/mol and 28.014 + 3e-6 30.11 =
+ * 28.01409 g/mol, their amounts 77 / 58.111956 = 1.3250285 and 1818.6 / 28.01409 = 64.917332 mol; of n-butane there are
+ * 0.9996 1.3250285 + 3e-6 64.917332 = 1.3246933 mol in 66.2423605 mol: x = 0.01999768. */
+static void a_weighed_blend_has_its_composition(void **state)
+{
+    (void)state;
+    const struct propagation_model model = weighed_blend();
+    double y[BLEND_OUTPUTS];
+    assert_int_equal(model.evaluate(NULL, BLEND_VALUES, y), MODEL_OK);
+    assert_close(y[BLEND_BUTANE], 0.01999768, 3e-7, "by hand, see above");
+    assert_close(y[BLEND_BUTANE] + y[BLEND_NITROGEN], 1.0, 1e-15, "a whole");
+}
+
+static void known_derivatives_are_those_of_differences(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    struct propagation_model model = weighed_blend();
+    const struct first_order known = propagate_first_order(&model, arena);
+    model.differentiate = NULL;
+    const struct first_order found = propagate_first_order(&model, arena);
+    for (size_t i = 0; i < BLEND_INPUTS * BLEND_OUTPUTS; i++) {
+        assert_close(known.sensitivities[i], found.sensitivities[i], 1e-5, "analytic beside central differences");
+    }
+    for (size_t k = 0; k < BLEND_OUTPUTS; k++) {
+        assert_close(known.standard[k], found.standard[k], 1e-6, "the same");
+        assert_true(first_order_is_linear(&known, k));
+    }
+    arena_free(arena);
+}
+
+static void draws_of_a_weighed_blend_agree_with_first_order(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    const struct propagation_model model = weighed_blend();
+    const struct first_order first = propagate_first_order(&model, arena);
+    const struct drawn drawn = propagate_draws(&model, &first, 100000, 17, 0, arena);
+    /* A fortieth of the draws of the trace of 3e-6 with u = 1.5e-6 is below nothing, and is drawn anew. */
+    assert_near((double)drawn.impossible, 100000.0 * 0.02275 / (1.0 - 0.02275), 300.0, "normal distribution at -2 u");
+    assert_true(drawn.outputs[BLEND_BUTANE].agrees);
+    assert_close(drawn.outputs[BLEND_BUTANE].standard, first.standard[BLEND_BUTANE], 0.03, "nearly linear");
+    arena_free(arena);
+}
+
 /* ---- draws ------------------------------------------------------------------------------------------------------- */
 
 static void tolerances_are_half_of_the_last_place(void **state)
@@ -348,6 +396,9 @@ int main(void)
         cmocka_unit_test(what_is_below_the_resolution_is_none),
         cmocka_unit_test(no_answer_beside_the_estimate_is_not_no_uncertainty),
         cmocka_unit_test(the_end_gauge_of_the_guide_has_its_uncertainty),
+        cmocka_unit_test(a_weighed_blend_has_its_composition),
+        cmocka_unit_test(known_derivatives_are_those_of_differences),
+        cmocka_unit_test(draws_of_a_weighed_blend_agree_with_first_order),
         cmocka_unit_test(tolerances_are_half_of_the_last_place),
         cmocka_unit_test(draws_of_a_linear_model_agree_with_first_order),
         cmocka_unit_test(draws_of_a_bent_model_disagree_with_first_order),

@@ -17,6 +17,7 @@ struct differences {
     double *outputs[PLACES]; /* [output_count] each, of the input at work */
     double *sensitivities, *standard, *deviations;
     bool *is_one_sided;
+    bool has_derivatives; /* they lie in `sensitivities` */
 };
 
 static void evaluate(const struct propagation_model *model, const double inputs[], double outputs[])
@@ -60,7 +61,9 @@ static void take_output(struct differences *it, size_t i, size_t k)
 {
     const struct propagation_model *model = it->model;
     const double spread = model->spreads[i], resolution = resolution_of(model, k);
-    double slope = slope_of(it->base[k], it->outputs[PLUS_ONE][k], it->outputs[MINUS_ONE][k], spread);
+    double slope = it->has_derivatives
+                       ? it->sensitivities[i * model->output_count + k]
+                       : slope_of(it->base[k], it->outputs[PLUS_ONE][k], it->outputs[MINUS_ONE][k], spread);
     double deviation = deviation_of(it, i, k, slope);
     if (isfinite(slope)) {
         slope = fabs(slope * spread) > resolution ? slope : 0.0;
@@ -85,14 +88,22 @@ static void take_input(struct differences *it, size_t i)
 {
     const struct propagation_model *model = it->model;
     memcpy(it->inputs, model->values, model->input_count * sizeof *it->inputs);
-    for (int place = 0; place < PLACES; place++) {
+    for (int place = it->has_derivatives ? PLUS_TWO : PLUS_ONE; place < PLACES; place++) {
         it->inputs[i] = model->values[i] + STEPS[place] * model->spreads[i];
         evaluate(model, it->inputs, it->outputs[place]);
     }
-    it->is_one_sided[i] = has_answer(it->outputs[PLUS_ONE], model->output_count) !=
-                          has_answer(it->outputs[MINUS_ONE], model->output_count);
+    it->is_one_sided[i] = !it->has_derivatives && has_answer(it->outputs[PLUS_ONE], model->output_count) !=
+                                                      has_answer(it->outputs[MINUS_ONE], model->output_count);
     for (size_t k = 0; k < model->output_count; k++) {
         take_output(it, i, k);
+    }
+}
+
+/* Where the derivatives are known nothing is evaluated there. */
+static void forget_near_places(struct differences *it)
+{
+    for (size_t k = 0; it->has_derivatives && k < it->model->output_count; k++) {
+        it->outputs[PLUS_ONE][k] = it->outputs[MINUS_ONE][k] = (double)NAN;
     }
 }
 
@@ -113,6 +124,9 @@ struct first_order propagate_first_order(const struct propagation_model *model, 
     }
     evaluate(model, model->values, it.base);
     const bool is_known = has_answer(it.base, outputs);
+    it.has_derivatives = is_known && model->differentiate != NULL &&
+                         model->differentiate(model->context, model->values, it.sensitivities);
+    forget_near_places(&it);
     for (size_t i = 0; is_known && i < model->input_count; i++) {
         take_input(&it, i);
     }

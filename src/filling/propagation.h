@@ -26,6 +26,9 @@ struct propagation_model {
     const double *resolutions; /* [output_count], changes below these are rounding; NULL: none */
     /* One evaluation; outputs that it does not have are NaN. */
     enum model_answer (*evaluate)(void *context, const double inputs[], double outputs[]);
+    /* Derivatives at the best estimates, [input_count * output_count], where the model knows them: sensitivities are
+     * then theirs. False, or NULL: they are found by differences. */
+    bool (*differentiate)(void *context, const double inputs[], double derivatives[]);
     void *context;
     /* A context of a further thread's own, made before the threads begin; NULL: `context` serves all of them. */
     void *(*context_for_thread)(void *context, struct arena *arena);
@@ -36,8 +39,8 @@ struct propagation_model {
 struct first_order {
     bool is_known;      /* the model answers at the best estimates */
     const double *base; /* [output_count], the results there */
-    /* [input_count * output_count]: c_i = dy/dx_i by central differences over one standard uncertainty to either side;
-     * over one side only where the other is impossible. NaN where neither has an answer. */
+    /* [input_count * output_count]: c_i = dy/dx_i, by central differences over one standard uncertainty to either side
+     * unless the model knows it; over one side only where the other is impossible. NaN where neither has an answer. */
     const double *sensitivities;
     const bool *is_one_sided; /* [input_count] */
     const double *standard;   /* [output_count], u(y) = sqrt(sum (c_i u_i)^2); NaN: not known */
@@ -46,7 +49,8 @@ struct first_order {
     const double *deviations;
 };
 
-/* 4 evaluations for each input, on the caller's thread, and one at the best estimates. */
+/* 4 evaluations for each input, 2 where derivatives are known, and one at the best estimates, on the caller's thread.
+ */
 struct first_order propagate_first_order(const struct propagation_model *model, struct arena *arena);
 
 /* Input i's part of the variance of output k, from 0 to 1. */

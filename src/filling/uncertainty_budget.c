@@ -242,6 +242,20 @@ static void tell_disagreement(const struct uncertain_sheet *it, const struct bud
     }
 }
 
+/* Models that give a kind of sheet's results without answering all of it: each says whether it serves. */
+static bool make_quick(const struct uncertain_sheet *it, const struct chosen *chosen, struct propagation_model *model)
+{
+    static bool (*const QUICK[])(const struct uncertain_sheet *, const size_t[], size_t, struct propagation_model *) = {
+        settled_quick_model,
+    };
+    for (size_t i = 0; i < sizeof QUICK / sizeof *QUICK; i++) {
+        if (QUICK[i](it, chosen->items, chosen->count, model)) {
+            return true;
+        }
+    }
+    return false;
+}
+
 static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, struct budget **budgets)
 {
     struct sheet_run *run = it->run;
@@ -252,14 +266,14 @@ static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, 
     model.evaluate = evaluate_picked;
     model.context = &context;
     model.context_for_thread = picked_for_thread;
-    const bool is_quick = settled_quick_model(it, chosen->items, chosen->count, &model);
+    const bool is_quick = make_quick(it, chosen, &model);
     const struct first_order first = picked_first(it, chosen);
     const struct drawn drawn = propagate_draws(&model, &first, run->sheet->draws, run->sheet->seed, 0, run->arena);
     for (size_t i = 0; i < chosen->count; i++) {
         budgets[i]->drawn = drawn_budget_of(&drawn, &first, i, run->sheet->seed);
         tell_disagreement(it, budgets[i]);
     }
-    if (is_quick) {
+    if (is_quick && run->sheet->kind == SHEET_SETTLED_PRESSURE) {
         sheet_add_note(run->result, run->out,
                        "draws of margins: at the temperature that is worst at the values as written");
     }
