@@ -135,6 +135,31 @@ static void shares_of_a_budget_are_the_whole(void **state)
     end(&it);
 }
 
+static void every_row_is_shown_where_it_is_asked_for(void **state)
+{
+    (void)state;
+    static const char title[] = "U (k = 2) in the rows of the table above";
+    struct solved brief = solve(HEAD VESSEL BY_MASS SHEET "}\n");
+    assert_null(result_table(brief.sheet, title, NULL));
+    end(&brief);
+    struct solved it = solve(HEAD VESSEL BY_MASS SHEET "uncertainty every-row }\n");
+    const struct table *table = result_table(it.sheet, "settled pressure", "ideal-gas");
+    const struct table *spreads = result_table(it.sheet, title, "ideal-gas");
+    assert_non_null(spreads);
+    assert_int_equal(spreads->row_count, 2);
+    for (size_t row = 0; row < 2; row++) {
+        assert_close(result_cell(spreads, row, "temperature")->number, result_cell(table, row, "temperature")->number,
+                     0.0, "tells the row");
+        assert_close(result_cell(spreads, row, "margin")->number, result_cell(table, row, "margin")->carried.expanded,
+                     0.0, "the same");
+    }
+    assert_null(result_cell(spreads, 0, "state"));
+    for (const struct sheet_part *part = it.sheet->first_part; part != NULL; part = part->next) {
+        assert_true(part->table != table || part->next->table == spreads);
+    }
+    end(&it);
+}
+
 /* ---- mixtures ---------------------------------------------------------------------------------------------------- */
 
 #define MIXED_SHEET  "sheet settled-pressure { fluid blend; vessel ten; mass 1.31 kg; sweep temperature 288.15 K }\n"
@@ -318,6 +343,7 @@ static void the_words_of_draws_are_checked(void **state)
     assert_refused(IN_SHEET("monte-carlo seed 7"), CODE_E203);
     assert_refused(IN_SHEET("monte-carlo draws 200, 7"), CODE_E203);
     assert_refused(IN_SHEET("monte-carlo draws 200, seed 7, 8"), CODE_E204);
+    assert_refused(IN_SHEET("uncertainty all"), CODE_E213);
     assert_refused(IN_SHEET("monte-carlo draws 200; monte-carlo draws 300"), CODE_E207);
 }
 
@@ -466,6 +492,7 @@ int main(void)
         cmocka_unit_test(a_mass_and_a_volume_reach_the_pressure),
         cmocka_unit_test(a_fill_pressure_becomes_mass_once),
         cmocka_unit_test(shares_of_a_budget_are_the_whole),
+        cmocka_unit_test(every_row_is_shown_where_it_is_asked_for),
         cmocka_unit_test(the_rest_of_a_mixture_gives_way),
         cmocka_unit_test(fractions_without_a_rest_are_brought_to_a_whole),
         cmocka_unit_test(fractions_of_mass_become_amounts),

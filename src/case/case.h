@@ -335,7 +335,8 @@ struct case_sheet {
     const struct case_entry *const *entries;
     size_t note_count;
     const char *const *notes;
-    size_t draws; /* of a Monte Carlo run; 0: none is asked for */
+    bool shows_every_uncertainty; /* of tables, row by row */
+    size_t draws;                 /* of a Monte Carlo run; 0: none is asked for */
     uint64_t seed;
 };
 

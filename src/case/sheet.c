@@ -126,6 +126,14 @@ static void read_draws(struct elaboration *e, const struct statement *statement,
     read_monte_carlo(e, statement, &into->sheet.draws, &into->sheet.seed);
 }
 
+static void read_uncertainty(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct sheet_target *into = target;
+    struct reading reading = read_items(e, statement);
+    into->sheet.shows_every_uncertainty =
+        take_choice(&reading, BLOCK_UNCERTAINTY, "'every-row'") != NULL && finish_items(&reading);
+}
+
 static void add_rule(struct elaboration *e, const struct expression *name, struct rule_use_list *rules)
 {
     const struct case_rule *rule = rule_of_name(e, name);
@@ -263,6 +271,7 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_SHEET_UNITS, read_sheet_units),
     READ_ONCE(WORD_SHEET_TABLE, read_table),
     READ_EACH(WORD_SHEET_NOTE, read_note),
+    READ_ONCE(WORD_SHEET_UNCERTAINTY, read_uncertainty),
     READ_ONCE(WORD_SHEET_MONTE_CARLO, read_draws),
     READ_ONCE(WORD_PERMISSIBLE_CHARGE_VESSEL, read_vessel),
     READ_ONCE(WORD_PERMISSIBLE_CHARGE_RULES, read_rules),

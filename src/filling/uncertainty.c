@@ -229,6 +229,9 @@ void tell_uncertainty(struct sheet_run *run)
         carry(&it, k);
     }
     warn_of_verdicts(&it);
+    if (run->sheet->shows_every_uncertainty) {
+        tell_every_row(&it);
+    }
     tell_budgets(&it);
     tell_how_carried(&it);
     if (atomic_load(&is_exhausted)) {

@@ -53,6 +53,9 @@ struct uncertain_sheet {
 /* Budgets of the results that govern, each with its draws where the sheet asks for them. */
 void tell_budgets(struct uncertain_sheet *it);
 
+/* A table of uncertainties under each table: uncertainty_tables.c. */
+void tell_every_row(const struct uncertain_sheet *it);
+
 /* What has to be known to read them. */
 void tell_how_carried(struct uncertain_sheet *it);
 

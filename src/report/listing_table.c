@@ -23,7 +23,7 @@ static void set_cell(struct grid *grid, struct grid_cell *to, const struct colum
         to->text = PAGE_DASH;
         break;
     }
-    to->mark = cell->is_outside_range && cell->kind != CELL_EMPTY ? OUTSIDE_MARK : NULL;
+    to->mark = cell->kind == CELL_EMPTY ? NULL : cell->is_outside_range ? OUTSIDE_MARK : cell->is_bent ? "~" : NULL;
 }
 
 static struct grid *grid_of_table(const struct table *table, struct arena *arena)

@@ -106,6 +106,25 @@ struct table *sheet_add_table(struct result *result, struct result_sheet *sheet,
     return table;
 }
 
+struct table *sheet_add_table_behind(struct result *result, struct result_sheet *sheet, const struct table *before,
+                                     const char *title, const char *method)
+{
+    struct sheet_part *at = sheet->first_part;
+    while (at && at->table != before) {
+        at = at->next;
+    }
+    if (!at || !at->next) {
+        return sheet_add_table(result, sheet, title, method);
+    }
+    struct table *table = arena_alloc(result->arena, 1, sizeof *table);
+    struct sheet_part *part = arena_alloc(result->arena, 1, sizeof *part);
+    table->title = title;
+    table->method = method;
+    *part = (struct sheet_part){.kind = PART_TABLE, .table = table, .next = at->next};
+    at->next = part;
+    return table;
+}
+
 struct hand_check *sheet_add_hand_check(struct result *result, struct result_sheet *sheet, const char *title)
 {
     struct hand_check *check = arena_alloc(result->arena, 1, sizeof *check);

@@ -52,6 +52,7 @@ struct cell {
     double number; /* SI; of CELL_SHEET a sheet of the result, from 1 */
     const char *text;
     bool is_outside_range;  /* printed with a mark that points at the warning */
+    bool is_bent;           /* an uncertainty of a result that is not nearly linear; printed with a mark */
     struct carried carried; /* of CELL_NUMBER */
 };
 
@@ -243,6 +244,9 @@ struct fact *sheet_add_fact(struct result *result, struct result_sheet *sheet, c
                             struct look look);
 struct fact *sheet_add_words(struct result *result, struct result_sheet *sheet, const char *name, const char *text);
 struct table *sheet_add_table(struct result *result, struct result_sheet *sheet, const char *title, const char *method);
+/* A table right behind another one of the sheet. */
+struct table *sheet_add_table_behind(struct result *result, struct result_sheet *sheet, const struct table *before,
+                                     const char *title, const char *method);
 struct hand_check *sheet_add_hand_check(struct result *result, struct result_sheet *sheet, const char *title);
 void sheet_add_note(struct result *result, struct result_sheet *sheet, const char *format, ...)
     __attribute__((format(printf, 3, 4)));
