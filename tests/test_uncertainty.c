@@ -3,6 +3,7 @@
 #include "filling/solve.h"
 
 #include "support/elaborated.h"
+#include "support/rationing.h"
 #include "support/result_reading.h"
 
 #include "report/report.h"
@@ -157,6 +158,19 @@ static void every_row_is_shown_where_it_is_asked_for(void **state)
     for (const struct sheet_part *part = it.sheet->first_part; part != NULL; part = part->next) {
         assert_true(part->table != table || part->next->table == spreads);
     }
+    end(&it);
+}
+
+/* Without a requirement the last of the lead's pressures has a budget: p T2 / T1, so that no volume is in it. */
+static void a_sheet_without_margins_has_a_budget_of_its_last_pressure(void **state)
+{
+    (void)state;
+    struct solved it = solve(HEAD VESSEL BY_FILL SHEET "monte-carlo draws 4000 }\n");
+    const struct budget *budget = budget_of(&it, "pressure in row 2 of 'settled pressure'");
+    assert_non_null(budget);
+    assert_int_equal(budget->line_count, 2);
+    assert_close(line_of(budget, "fill of")->sensitivity, 338.15 / 288.15, 1e-9, "T2 / T1");
+    assert_close(budget->drawn.standard, budget->standard, 5.0 / sqrt(8000.0), "nearly linear");
     end(&it);
 }
 
@@ -460,6 +474,28 @@ static void programs_get_the_same_in_si(void **state)
     end(&it);
 }
 
+/* ---- memory ------------------------------------------------------------------------------------------------------ */
+
+static void solve_in(struct arena *arena, void *context)
+{
+    struct elaborated it = elaborate_in(arena, arena_copy_text(arena, context, strlen(context)));
+    assert_non_null(it.tree);
+    assert_non_null(filling_solve(it.tree, "0.0.0", arena));
+}
+
+/* However few blocks there are, it ends there and gives all of them back. */
+static void running_out_of_memory_ends_the_run(void **state)
+{
+    (void)state;
+    static char quick[] = HEAD VESSEL BY_MASS SHEET "monte-carlo draws 100 }\n";
+    static char whole[] = HEAD "let mass = 1.3 kg +/- 0.02 kg\n" PLAIN_VESSEL
+                               "sheet settled-pressure { fluid vapid; vessel ten; mass mass; monte-carlo draws 100 }\n";
+    assert_true(ration_until_done(solve_in, quick) > 10);
+    for (size_t blocks = 3; blocks < 200; blocks += 7) {
+        ration_run(blocks, solve_in, whole);
+    }
+}
+
 /* ---- shifted cases ----------------------------------------------------------------------------------------------- */
 
 static void a_shifted_value_is_checked_and_carried_on(void **state)
@@ -493,6 +529,7 @@ int main(void)
         cmocka_unit_test(a_fill_pressure_becomes_mass_once),
         cmocka_unit_test(shares_of_a_budget_are_the_whole),
         cmocka_unit_test(every_row_is_shown_where_it_is_asked_for),
+        cmocka_unit_test(a_sheet_without_margins_has_a_budget_of_its_last_pressure),
         cmocka_unit_test(the_rest_of_a_mixture_gives_way),
         cmocka_unit_test(fractions_without_a_rest_are_brought_to_a_whole),
         cmocka_unit_test(fractions_of_mass_become_amounts),
@@ -510,6 +547,7 @@ int main(void)
         cmocka_unit_test(the_listing_shows_what_is_uncertain),
         cmocka_unit_test(programs_get_the_same_in_si),
         cmocka_unit_test(the_words_of_draws_are_checked),
+        cmocka_unit_test(running_out_of_memory_ends_the_run),
         cmocka_unit_test(a_shifted_value_is_checked_and_carried_on),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -19,11 +19,12 @@ struct input_role {
     size_t share; /* of ROLE_SHARE */
 };
 
-/* What an output is: the mass, or the base margin plus `sign` times the change of the pressure. */
+/* What an output is: the mass, or the base value, of a margin or a pressure, plus `sign` times the change of the
+ * pressure. */
 struct quick_output {
     bool is_mass;
     size_t method;
-    double temperature, sign, base_margin, base_pressure;
+    double temperature, sign, base_value, base_pressure;
 };
 
 struct settled_quick {
@@ -202,7 +203,7 @@ static enum model_answer evaluate(void *context, const double inputs[], double o
         if (find_pressure(quick, output, mass, &pressure) != ANSWER_OK) {
             return MODEL_NO_ANSWER;
         }
-        outputs[k] = output->base_margin + output->sign * (pressure - output->base_pressure);
+        outputs[k] = output->base_value + output->sign * (pressure - output->base_pressure);
     }
     return MODEL_OK;
 }
@@ -287,22 +288,43 @@ static bool find_method(const struct sheet_run *run, const char *name, size_t *m
     return false;
 }
 
-static bool take_output(struct settled_quick *quick, const struct outlet *outlet, struct quick_output *out)
+static bool take_margin(const struct sheet_run *run, const struct outlet *outlet, struct quick_output *out)
 {
-    const struct sheet_run *run = quick->it->run;
-    *out = (struct quick_output){.is_mass = outlet->kind == OUTLET_FACT};
-    if (outlet->kind == OUTLET_FACT) {
-        return strcmp(outlet->fact->name, "mass") == 0;
-    }
-    if (outlet->kind != OUTLET_MARGIN) {
-        return false;
-    }
     const struct requirement *requirement = outlet->requirement;
     out->temperature = requirement->worst_temperature;
-    out->base_margin = requirement->margin;
+    out->base_value = requirement->margin;
     out->sign = sign_of_requirement(run, outlet->place);
     return fabs(out->sign) > 0.0 && requirement->has_worst_temperature &&
            find_method(run, requirement->method, &out->method);
+}
+
+/* A pressure in a table of settled pressures, whose rows begin with their temperature. */
+static bool take_cell(const struct sheet_run *run, const struct outlet *outlet, struct quick_output *out)
+{
+    const struct table *table = outlet->table;
+    const struct cell *temperature = &table->cells[outlet->place - outlet->place % table->column_count];
+    out->temperature = temperature->number;
+    out->base_value = outlet->cell->number;
+    out->sign = 1.0;
+    return table->title != NULL && strcmp(table->title, "settled pressure") == 0 &&
+           strcmp(table->columns[outlet->place % table->column_count].name, "pressure") == 0 &&
+           temperature->kind == CELL_NUMBER && find_method(run, table->method, &out->method);
+}
+
+static bool take_output(struct settled_quick *quick, const struct outlet *outlet, struct quick_output *out)
+{
+    *out = (struct quick_output){.is_mass = outlet->kind == OUTLET_FACT};
+    switch (outlet->kind) {
+    case OUTLET_FACT:
+        return strcmp(outlet->fact->name, "mass") == 0;
+    case OUTLET_CELL:
+        return take_cell(quick->it->run, outlet, out);
+    case OUTLET_MARGIN:
+        return take_margin(quick->it->run, outlet, out);
+    case OUTLET_STATE:
+        break;
+    }
+    return false;
 }
 
 static bool find_base_pressures(struct settled_quick *quick)

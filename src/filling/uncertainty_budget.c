@@ -4,7 +4,8 @@
 #include <math.h>
 #include <string.h>
 
-/* Facts that a sheet is about, by its kind; of other kinds the tightest margin stands for them, or the last row. */
+/* Facts that a sheet is about, by its kind, beside the tightest margin; the last row stands for what a sheet has not of
+ * them. */
 static const struct {
     enum sheet_kind kind;
     const char *fact;
@@ -49,8 +50,8 @@ static void choose_facts(struct uncertain_sheet *it, struct chosen *chosen)
     }
 }
 
-/* The margin that is smallest against its own uncertainty. */
-static void choose_margin(struct uncertain_sheet *it, struct chosen *chosen)
+/* The margin that is smallest against its own uncertainty. False where there is none. */
+static bool choose_margin(struct uncertain_sheet *it, struct chosen *chosen)
 {
     size_t tightest = it->outlets.count;
     double least = INFINITY;
@@ -66,15 +67,23 @@ static void choose_margin(struct uncertain_sheet *it, struct chosen *chosen)
     if (tightest < it->outlets.count) {
         choose(it, chosen, tightest);
     }
+    return tightest < it->outlets.count;
 }
 
-/* The first uncertain number in the last row of the first table that has one. */
-static void choose_cell(struct uncertain_sheet *it, struct chosen *chosen)
+static bool is_in_column(const struct outlet *outlet, const char *column)
+{
+    const struct table *table = outlet->table;
+    return column == NULL || strcmp(table->columns[outlet->place % table->column_count].name, column) == 0;
+}
+
+/* The first uncertain number in the last row of the first table that has one, in that column (NULL: in any). False
+ * where there is none. */
+static bool choose_cell(struct uncertain_sheet *it, const char *column, struct chosen *chosen)
 {
     size_t first = it->outlets.count, table = 0, row = 0;
     for (size_t k = 0; k < it->outlets.count; k++) {
         const struct outlet *outlet = &it->outlets.items[k];
-        if (outlet->kind != OUTLET_CELL || !is_uncertain(it, k)) {
+        if (outlet->kind != OUTLET_CELL || !is_uncertain(it, k) || !is_in_column(outlet, column)) {
             continue;
         }
         const size_t its_row = outlet->place / outlet->table->column_count;
@@ -86,6 +95,15 @@ static void choose_cell(struct uncertain_sheet *it, struct chosen *chosen)
     }
     if (first < it->outlets.count) {
         choose(it, chosen, first);
+    }
+    return first < it->outlets.count;
+}
+
+/* What a sheet without margins comes to: its last pressure, or else the last row of what it tells. */
+static void choose_last(struct uncertain_sheet *it, struct chosen *chosen)
+{
+    if (!choose_cell(it, "pressure", chosen)) {
+        choose_cell(it, NULL, chosen);
     }
 }
 
@@ -289,9 +307,9 @@ void tell_budgets(struct uncertain_sheet *it)
 {
     struct chosen chosen = {.count = 0};
     choose_facts(it, &chosen);
-    choose_margin(it, &chosen);
-    if (chosen.count == 0) {
-        choose_cell(it, &chosen);
+    const bool has_margin = choose_margin(it, &chosen);
+    if (!has_margin && (chosen.count == 0 || it->run->sheet->kind == SHEET_SETTLED_PRESSURE)) {
+        choose_last(it, &chosen);
     }
     struct budget **budgets = arena_alloc(it->run->arena, chosen.count, sizeof *budgets);
     for (size_t i = 0; i < chosen.count; i++) {

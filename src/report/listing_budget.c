@@ -98,10 +98,19 @@ enum budget_column {
     BUDGET_COLUMNS
 };
 
-static const char *with_unit(struct arena *arena, double number, const char *unit)
+/* Significant digits: enough to follow the sums with a calculator, and all that a deck is likely to write. */
+enum { BUDGET_DIGITS = 4, VALUE_DIGITS = 9 };
+
+static const char *with_digits(struct arena *arena, double number, int digits, const char *unit)
 {
     const bool is_plain = strcmp(unit, "1") == 0;
-    return is_plain ? arena_format(arena, "%.4g", number) : arena_format(arena, "%.4g %s", number, unit);
+    return is_plain ? arena_format(arena, "%.*g", digits, number)
+                    : arena_format(arena, "%.*g %s", digits, number, unit);
+}
+
+static const char *with_unit(struct arena *arena, double number, const char *unit)
+{
+    return with_digits(arena, number, BUDGET_DIGITS, unit);
 }
 
 /* Result over input, "bar/K"; a unit that is itself a quotient stands in parentheses. */
@@ -128,7 +137,7 @@ static void add_budget_line(struct grid *grid, const struct budget *budget, cons
     row->cells[BUDGET_INPUT].text = page_clean(arena, line->input);
     row->cells[BUDGET_LINE].text = line->line == 0 ? NULL : arena_format(arena, "%zu", line->line);
     set_number(&row->cells[BUDGET_VALUE],
-               with_unit(arena, look_shown(&line->look, line->value), number_unit(&line->look)));
+               with_digits(arena, look_shown(&line->look, line->value), VALUE_DIGITS, number_unit(&line->look)));
     set_number(&row->cells[BUDGET_STANDARD],
                with_unit(arena, line->standard / line->step_look.shown.factor, number_unit(&line->step_look)));
     set_number(&row->cells[BUDGET_SENSITIVITY],
