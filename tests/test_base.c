@@ -3,6 +3,7 @@
 #include "base/arena.h"
 #include "base/codes.h"
 #include "base/file.h"
+#include "base/parallel.h"
 #include "base/text.h"
 #include "support/check.h"
 #include "support/rationing.h"
@@ -351,6 +352,46 @@ static void each_code_has_its_name_meaning_and_advice(void **state)
     assert_null(code_row(CODE_NONE));
 }
 
+/* ---- threads ----------------------------------------------------------------------------------------------------- */
+
+enum { TASKS = 57 };
+
+struct tasks {
+    int done[TASKS];
+    size_t by_thread[TASKS], told;
+};
+
+static void do_task(void *context, size_t thread, size_t task)
+{
+    struct tasks *it = context;
+    it->done[task]++;
+    it->by_thread[task] = thread;
+}
+
+static void tell_task(void *context, size_t done)
+{
+    ((struct tasks *)context)->told = done;
+}
+
+static void every_task_is_done_once_on_any_number_of_threads(void **state)
+{
+    (void)state;
+    for (size_t wanted = 0; wanted <= 3; wanted++) {
+        struct tasks it = {.told = 0};
+        const size_t threads = parallel_threads(wanted, TASKS);
+        assert_true(threads >= 1 && (wanted == 0 || threads <= wanted));
+        parallel_run(&(struct parallel){do_task, &it, tell_task}, threads, TASKS);
+        for (size_t task = 0; task < TASKS; task++) {
+            assert_int_equal(it.done[task], 1);
+            assert_true(it.by_thread[task] < threads);
+        }
+        assert_true(it.told >= (threads == 1 ? TASKS : 0) && it.told <= TASKS);
+    }
+    assert_int_equal(parallel_threads(8, 1), 1);
+    assert_int_equal(parallel_threads(8, 0), 1);
+    parallel_run(&(struct parallel){.work = do_task}, 1, 0);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -370,6 +411,7 @@ int main(void)
         cmocka_unit_test(digests_are_those_of_the_standard),
         cmocka_unit_test(codes_rise_within_their_list_and_are_unique),
         cmocka_unit_test(each_code_has_its_name_meaning_and_advice),
+        cmocka_unit_test(every_task_is_done_once_on_any_number_of_threads),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -14,7 +14,8 @@
 
 struct arena;
 
-/* Where blocks come from; tests pass one that fails at the i-th call. Both members as malloc and free. */
+/* Where blocks come from; tests pass one that fails at the i-th call. Both members as malloc and free, also in that
+ * several threads may call them at once. */
 struct arena_source {
     void *(*take)(void *context, size_t bytes);
     void (*give_back)(void *context, void *block);

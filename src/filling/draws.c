@@ -1,15 +1,12 @@
 /* Propagation of distributions by random draws. Each chunk of draws has a generator of its own and its own part of the
  * results, which are summed up afterwards in their order: nothing depends on which thread did what. */
+#include "base/parallel.h"
 #include "filling/propagation.h"
 
 #include <gsl/gsl_randist.h>
 #include <gsl/gsl_rng.h>
 #include <math.h>
 #include <stdlib.h>
-
-#ifdef _OPENMP
-#include <omp.h>
-#endif
 
 enum { CHUNK_DRAWS = 250, TRIES_MOST = 100 };
 
@@ -82,8 +79,9 @@ static enum model_answer draw_possible(const struct propagation_model *model, st
     return MODEL_NO_ANSWER;
 }
 
-static void draw_chunk(const struct drawing *it, size_t thread, size_t chunk)
+static void draw_chunk(void *context, size_t thread, size_t chunk)
 {
+    const struct drawing *it = context;
     struct drawer *drawer = &it->drawers[thread];
     struct chunk_tally tally = {0, 0};
     gsl_rng_set(&drawer->generator, chunk_seed(it->seed, chunk));
@@ -98,34 +96,10 @@ static void draw_chunk(const struct drawing *it, size_t thread, size_t chunk)
     it->tallies[chunk] = tally;
 }
 
-static void draw_all(const struct drawing *it, size_t threads)
+static void tell(void *context, size_t done)
 {
-#ifdef _OPENMP
-    if (threads > 1) {
-#pragma omp parallel for schedule(dynamic, 1) num_threads((int)threads)
-        for (size_t chunk = 0; chunk < it->chunks; chunk++) {
-            draw_chunk(it, (size_t)omp_get_thread_num(), chunk);
-        }
-        omp_pause_resource_all(omp_pause_soft);
-        return;
-    }
-#endif
-    (void)threads;
-    for (size_t chunk = 0; chunk < it->chunks; chunk++) {
-        draw_chunk(it, 0, chunk);
-    }
-}
-
-static size_t threads_for(const struct drawing *it, size_t wanted)
-{
-#ifdef _OPENMP
-    const size_t most = wanted == 0 ? (size_t)omp_get_max_threads() : wanted;
-    return most < it->chunks ? most : (it->chunks > 0 ? it->chunks : 1);
-#else
-    (void)it;
-    (void)wanted;
-    return 1;
-#endif
+    const struct drawing *it = context;
+    it->model->tell(it->model->tell_context, done, it->chunks);
 }
 
 static struct drawer *drawers_create(const struct propagation_model *model, size_t threads, struct arena *arena)
@@ -245,9 +219,10 @@ struct drawn propagate_draws(const struct propagation_model *model, const struct
     it.chunks = (draws + CHUNK_DRAWS - 1) / CHUNK_DRAWS;
     it.results = arena_alloc(arena, model->output_count * draws, sizeof *it.results);
     it.tallies = arena_alloc(arena, it.chunks, sizeof *it.tallies);
-    const size_t used = threads_for(&it, threads);
+    const size_t used = parallel_threads(threads, it.chunks);
     it.drawers = drawers_create(model, used, arena);
-    draw_all(&it, used);
+    parallel_run(&(struct parallel){.work = draw_chunk, .context = &it, .tell = model->tell == NULL ? NULL : tell},
+                 used, it.chunks);
     struct drawn_output *outputs = arena_alloc(arena, model->output_count, sizeof *outputs);
     for (size_t k = 0; k < model->output_count; k++) {
         outputs[k] = sum_up_output(&it, first, k);

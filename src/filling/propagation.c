@@ -1,6 +1,8 @@
 /* First-order propagation of uncertainty by central differences. */
 #include "filling/propagation.h"
 
+#include "base/parallel.h"
+
 #include <math.h>
 #include <string.h>
 
@@ -13,16 +15,18 @@ static const double STEPS[PLACES] = {[PLUS_ONE] = 1.0, [MINUS_ONE] = -1.0, [PLUS
 struct differences {
     const struct propagation_model *model;
     double *base;
-    double *inputs;          /* [input_count] */
+    size_t input;            /* the one at work */
+    void *contexts[PLACES];  /* of the threads, at most one for each place */
+    double *inputs[PLACES];  /* [input_count] each, likewise */
     double *outputs[PLACES]; /* [output_count] each, of the input at work */
     double *sensitivities, *standard, *deviations;
     bool *is_one_sided;
     bool has_derivatives; /* they lie in `sensitivities` */
 };
 
-static void evaluate(const struct propagation_model *model, const double inputs[], double outputs[])
+static void evaluate(const struct propagation_model *model, void *context, const double inputs[], double outputs[])
 {
-    if (model->evaluate(model->context, inputs, outputs) != MODEL_OK) {
+    if (model->evaluate(context, inputs, outputs) != MODEL_OK) {
         for (size_t k = 0; k < model->output_count; k++) {
             outputs[k] = (double)NAN;
         }
@@ -84,19 +88,50 @@ static bool has_answer(const double outputs[], size_t count)
     return false;
 }
 
-static void take_input(struct differences *it, size_t i)
+/* The places that are tried for an input: the near ones only where the derivatives are not known. */
+static int first_place(const struct differences *it)
+{
+    return it->has_derivatives ? PLUS_TWO : PLUS_ONE;
+}
+
+static void evaluate_place(void *context, size_t thread, size_t task)
+{
+    const struct differences *it = context;
+    const struct propagation_model *model = it->model;
+    const size_t place = (size_t)first_place(it) + task;
+    double *inputs = it->inputs[thread];
+    memcpy(inputs, model->values, model->input_count * sizeof *inputs);
+    inputs[it->input] += STEPS[place] * model->spreads[it->input];
+    evaluate(model, it->contexts[thread], inputs, it->outputs[place]);
+}
+
+static void take_input(struct differences *it, size_t i, size_t threads)
 {
     const struct propagation_model *model = it->model;
-    memcpy(it->inputs, model->values, model->input_count * sizeof *it->inputs);
-    for (int place = it->has_derivatives ? PLUS_TWO : PLUS_ONE; place < PLACES; place++) {
-        it->inputs[i] = model->values[i] + STEPS[place] * model->spreads[i];
-        evaluate(model, it->inputs, it->outputs[place]);
-    }
+    it->input = i;
+    parallel_run(&(struct parallel){.work = evaluate_place, .context = it}, threads,
+                 (size_t)(PLACES - first_place(it)));
     it->is_one_sided[i] = !it->has_derivatives && has_answer(it->outputs[PLUS_ONE], model->output_count) !=
                                                       has_answer(it->outputs[MINUS_ONE], model->output_count);
     for (size_t k = 0; k < model->output_count; k++) {
         take_output(it, i, k);
     }
+    if (model->tell != NULL) {
+        model->tell(model->tell_context, i + 1, model->input_count);
+    }
+}
+
+/* One context for each thread, of which the first is the model's own. */
+static size_t ready_threads(struct differences *it, struct arena *arena)
+{
+    const struct propagation_model *model = it->model;
+    const size_t threads = parallel_threads(0, (size_t)(PLACES - first_place(it)));
+    for (size_t t = 0; t < threads; t++) {
+        const bool is_shared = t == 0 || model->context_for_thread == NULL;
+        it->contexts[t] = is_shared ? model->context : model->context_for_thread(model->context, arena);
+        it->inputs[t] = arena_alloc(arena, model->input_count, sizeof(double));
+    }
+    return threads;
 }
 
 /* Where the derivatives are known nothing is evaluated there. */
@@ -113,7 +148,6 @@ struct first_order propagate_first_order(const struct propagation_model *model, 
     struct differences it = {
         .model = model,
         .base = arena_alloc(arena, outputs, sizeof(double)),
-        .inputs = arena_alloc(arena, model->input_count, sizeof(double)),
         .sensitivities = arena_alloc(arena, model->input_count * outputs, sizeof(double)),
         .standard = arena_alloc(arena, outputs, sizeof(double)),
         .deviations = arena_alloc(arena, outputs, sizeof(double)),
@@ -122,13 +156,14 @@ struct first_order propagate_first_order(const struct propagation_model *model, 
     for (int place = 0; place < PLACES; place++) {
         it.outputs[place] = arena_alloc(arena, outputs, sizeof(double));
     }
-    evaluate(model, model->values, it.base);
+    evaluate(model, model->context, model->values, it.base);
     const bool is_known = has_answer(it.base, outputs);
     it.has_derivatives = is_known && model->differentiate != NULL &&
                          model->differentiate(model->context, model->values, it.sensitivities);
     forget_near_places(&it);
+    const size_t threads = ready_threads(&it, arena);
     for (size_t i = 0; is_known && i < model->input_count; i++) {
-        take_input(&it, i);
+        take_input(&it, i, threads);
     }
     return (struct first_order){
         .is_known = is_known,

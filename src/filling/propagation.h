@@ -32,6 +32,9 @@ struct propagation_model {
     void *context;
     /* A context of a further thread's own, made before the threads begin; NULL: `context` serves all of them. */
     void *(*context_for_thread)(void *context, struct arena *arena);
+    /* Told how far the work is, on the caller's thread; NULL: nobody waits. */
+    void (*tell)(void *tell_context, size_t done, size_t count);
+    void *tell_context;
 };
 
 /* ---- first order ---- */

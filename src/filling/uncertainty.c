@@ -72,6 +72,19 @@ static void *shifted_for_thread(void *context, struct arena *arena)
     return own;
 }
 
+static void tell_progress(void *context, size_t done, size_t count)
+{
+    const struct sheet_run *run = context;
+    if (run->progress != NULL) {
+        const struct progress_state state = {.sheet = run->number,
+                                             .sheet_count = run->tree->sheet_count,
+                                             .kind = run->out->kind,
+                                             .done = done,
+                                             .count = count};
+        run->progress->tell(run->progress->context, &state);
+    }
+}
+
 /* ---- the model --------------------------------------------------------------------------------------------------- */
 
 static void collect_inputs(struct uncertain_sheet *it)
@@ -139,7 +152,9 @@ static void set_up_model(struct uncertain_sheet *it, atomic_bool *is_exhausted)
                                            .resolutions = resolutions,
                                            .evaluate = evaluate_sheet,
                                            .context = context,
-                                           .context_for_thread = shifted_for_thread};
+                                           .context_for_thread = shifted_for_thread,
+                                           .tell = tell_progress,
+                                           .tell_context = it->run};
 }
 
 /* ---- what is carried to where ------------------------------------------------------------------------------------ */

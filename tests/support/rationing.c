@@ -9,10 +9,9 @@ enum { BLOCKS_MOST = 100000 };
 static void *take(void *context, size_t bytes)
 {
     struct ration *ration = context;
-    void *block = ration->left > 0 ? malloc(bytes) : NULL;
+    void *block = atomic_fetch_sub(&ration->left, 1) > 0 ? malloc(bytes) : NULL;
     if (block) {
-        ration->left--;
-        ration->held++;
+        atomic_fetch_add(&ration->held, 1);
     }
     return block;
 }
@@ -20,7 +19,9 @@ static void *take(void *context, size_t bytes)
 static void give_back(void *context, void *block)
 {
     struct ration *ration = context;
-    ration->held -= block != NULL;
+    if (block) {
+        atomic_fetch_sub(&ration->held, 1);
+    }
     free(block);
 }
 
@@ -31,7 +32,9 @@ struct arena_source ration_source(struct ration *ration)
 
 bool ration_run(size_t blocks, void (*work)(struct arena *arena, void *context), void *context)
 {
-    struct ration ration = {.left = blocks};
+    struct ration ration;
+    atomic_init(&ration.left, (long)blocks);
+    atomic_init(&ration.held, 0);
     const struct arena_source source = ration_source(&ration);
     struct arena *arena = arena_create(&source);
     volatile bool is_done = false;
@@ -42,7 +45,7 @@ bool ration_run(size_t blocks, void (*work)(struct arena *arena, void *context),
         is_done = true;
     }
     arena_free(arena);
-    assert_int_equal(ration.held, 0);
+    assert_int_equal(atomic_load(&ration.held), 0);
     return is_done;
 }
 

@@ -5,11 +5,13 @@
 
 #include "base/arena.h"
 
+#include <stdatomic.h>
 #include <stdbool.h>
 
+/* Threads may ask at once. */
 struct ration {
-    size_t left; /* blocks still given */
-    size_t held; /* blocks given and not given back */
+    atomic_long left; /* blocks still given; below 0 for each that was asked for in vain */
+    atomic_long held; /* blocks given and not given back */
 };
 
 struct arena_source ration_source(struct ration *ration);
