@@ -307,6 +307,18 @@ static void draws_of_a_linear_model_agree_with_first_order(void **state)
     /* sqrt(0.025 0.975 / N) over the density there, 0.05845 / u */
     assert_close(drawn.outputs[0].low_blur, sqrt(0.025 * 0.975 / 200000.0) / 0.05845 * u, 0.1, "normal distribution");
     assert_true(drawn.outputs[0].agrees);
+    assert_close(drawn.outputs[0].part_not_below_zero, 1.0, 0.0, "11 u above zero");
+    arena_free(it->arena);
+}
+
+/* 0.3 u above zero: Phi(0.3) = 0.617911 of the draws (tables of the normal distribution, from memory), known to
+ * sqrt(0.236 / 100 000) = 0.0015. */
+static void draws_tell_how_often_a_margin_is_kept(void **state)
+{
+    (void)state;
+    struct subject *it = subject(linear, 3, 1, (double[]){0.5, 0.75, 0.6}, (double[]){1.0 / 3.0, 1e-9, 1e-9});
+    assert_close(it->first.base[0], 0.3, 1e-12, "3 0.5 - 2 0.75 + 0.5 0.6");
+    assert_near(draw(it, 100000, 23, 0).outputs[0].part_not_below_zero, 0.617911, 0.0075, "normal distribution");
     arena_free(it->arena);
 }
 
@@ -401,6 +413,7 @@ int main(void)
         cmocka_unit_test(draws_of_a_weighed_blend_agree_with_first_order),
         cmocka_unit_test(tolerances_are_half_of_the_last_place),
         cmocka_unit_test(draws_of_a_linear_model_agree_with_first_order),
+        cmocka_unit_test(draws_tell_how_often_a_margin_is_kept),
         cmocka_unit_test(draws_of_a_bent_model_disagree_with_first_order),
         cmocka_unit_test(the_mass_calibration_of_the_supplement_is_told_apart),
         cmocka_unit_test(any_number_of_threads_draws_the_same),

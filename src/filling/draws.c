@@ -158,9 +158,12 @@ static void sum_up(const double results[], size_t count, struct drawn_output *ou
     }
     out->mean = origin + sum / (double)count;
     double squares = 0.0;
+    size_t kept = 0;
     for (size_t j = 0; j < count; j++) {
         squares += (results[j] - out->mean) * (results[j] - out->mean);
+        kept += results[j] >= 0.0;
     }
+    out->part_not_below_zero = (double)kept / (double)count;
     out->standard = sqrt(squares / (double)(count - 1));
 }
 

@@ -73,6 +73,7 @@ bool first_order_is_linear(const struct first_order *first, size_t k);
 struct drawn_output {
     size_t count;                     /* draws with an answer */
     double mean, standard, low, high; /* of them; NaN below two */
+    double part_not_below_zero;       /* of them, 0 to 1: of a margin, how often it is kept */
     double tolerance;                 /* numerical tolerance of u(y) by first order */
     double low_off, high_off;         /* | end of the interval - (y -+ COVERAGE_FACTOR u) | */
     double low_blur, high_blur;       /* standard uncertainties of the ends themselves, from the number of draws */

@@ -245,6 +245,7 @@ static struct drawn_budget drawn_budget_of(const struct drawn *drawn, const stru
         .high = output->high,
         .first_low = first->base[i] - COVERAGE_FACTOR * first->standard[i],
         .first_high = first->base[i] + COVERAGE_FACTOR * first->standard[i],
+        .part_met = output->part_not_below_zero,
         .tolerance = output->tolerance,
         .agreement = output->agrees       ? AGREES
                      : output->is_blurred ? AGREEMENT_BLURRED
@@ -289,6 +290,7 @@ static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, 
     const struct drawn drawn = propagate_draws(&model, &first, run->sheet->draws, run->sheet->seed, 0, run->arena);
     for (size_t i = 0; i < chosen->count; i++) {
         budgets[i]->drawn = drawn_budget_of(&drawn, &first, i, run->sheet->seed);
+        budgets[i]->drawn.has_part_met = it->outlets.items[chosen->items[i]].kind == OUTLET_MARGIN;
         tell_disagreement(it, budgets[i]);
     }
     if (is_quick && run->sheet->kind == SHEET_SETTLED_PRESSURE) {

@@ -218,6 +218,7 @@ static json_t *drawn_tree(const struct budget *budget)
     tree = set(tree, "first_order_low", si_or_null(&budget->look, drawn->first_low));
     tree = set(tree, "first_order_high", si_or_null(&budget->look, drawn->first_high));
     tree = set(tree, "tolerance", number_or_null(drawn->tolerance));
+    tree = set(tree, "part_met", drawn->has_part_met ? number_or_null(drawn->part_met) : json_null());
     return set(tree, "first_order", words_or_null(agreement_word(drawn->agreement)));
 }
 

@@ -220,6 +220,9 @@ static void draw_draws(const struct budget *budget, struct text *out)
                                 number_shown(arena, &shown, drawn->first_low),
                                 number_shown(arena, &shown, drawn->first_high), number_unit(&shown),
                                 agreement_words(drawn->agreement), in_unit(arena, look, drawn->tolerance)));
+    if (drawn->has_part_met) {
+        page_paragraph(out, PART_INDENT, arena_format(arena, "met in %.2f %% of the draws", 100.0 * drawn->part_met));
+    }
 }
 
 void listing_budget(const struct budget *budget, struct text *out)

@@ -123,6 +123,8 @@ struct drawn_budget {
     double first_low, first_high;     /* the same ends by first order */
     double tolerance;
     enum agreement agreement;
+    bool has_part_met; /* of a margin */
+    double part_met;   /* of the draws with an answer, 0 to 1 */
 };
 
 struct budget {
