@@ -54,7 +54,7 @@ static void choose_facts(struct uncertain_sheet *it, struct chosen *chosen)
 static bool choose_margin(struct uncertain_sheet *it, struct chosen *chosen)
 {
     size_t tightest = it->outlets.count;
-    double least = INFINITY;
+    double least = (double)INFINITY;
     for (size_t k = 0; k < it->outlets.count; k++) {
         if (it->outlets.items[k].kind == OUTLET_MARGIN && is_uncertain(it, k)) {
             const double distance = fabs(it->outlets.items[k].requirement->margin) / it->first.standard[k];

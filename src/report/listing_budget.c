@@ -34,7 +34,7 @@ struct column_spread {
 
 static struct column_spread spread_of_column(const struct table *table, size_t c)
 {
-    struct column_spread spread = {.least = INFINITY};
+    struct column_spread spread = {.least = (double)INFINITY};
     for (size_t r = 0; r < table->row_count; r++) {
         const struct carried *carried = &table->cells[r * table->column_count + c].carried;
         spread.unknown += carried->kind == CARRIED_UNKNOWN;
