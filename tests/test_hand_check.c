@@ -4,6 +4,7 @@
 
 #include "base/text.h"
 #include "fluid/reference_explain.h"
+#include "fluid/reference_internal.h"
 #include "fluid/reference_residual.h"
 #include "support/arithmetic.h"
 #include "support/check.h"
@@ -383,7 +384,8 @@ static void the_explained_sums_of_every_kind_of_term_agree_with_the_solver(void 
     const struct pure_spec *const list[] = {&pure};
     const struct fluid_spec spec = {.count = 1, .pure = list};
     const struct fluid_ops ops = {.explain = reference_explain};
-    const struct fluid fluid = {.ops = &ops, .spec = &spec, .count = 1, .gas_constant = 8.3};
+    const struct reference fluid = {.head = {.ops = &ops, .spec = &spec, .count = 1, .gas_constant = 8.3},
+                                    .equation = &equation};
     const struct {
         double tau, delta;
     } states[] = {{0.87, 0.013}, {1.03, 0.97}, {0.991, 1.09}, {1.21, 2.3}};
@@ -392,7 +394,7 @@ static void the_explained_sums_of_every_kind_of_term_agree_with_the_solver(void 
     const struct residual *residual = residual_create(&equation, arena);
     struct residual_at_t *coefficients = arena_alloc(arena, residual_at_t_size(residual), 1);
     for (size_t i = 0; i < sizeof states / sizeof *states; i++) {
-        const struct fluid_at_t at_t = {.fluid = &fluid, .temperature = 310.0 / states[i].tau};
+        const struct fluid_at_t at_t = {.fluid = &fluid.head, .temperature = 310.0 / states[i].tau};
         const double one = 1.0;
         struct explanation numbers;
         assert_int_equal(fluid_explain(&at_t, 1.0 / (states[i].delta * 9000.0), &one, false, &numbers), ANSWER_OK);

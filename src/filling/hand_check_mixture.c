@@ -382,8 +382,28 @@ void hand_check_mixture_components(const struct sheet_run *run, struct hand_chec
 {
     struct mixture_check it = {.run = run, .check = check, .method = method, .state = state};
     struct explanation form;
+    if (method->fluid->ops->explain_whole != NULL) {
+        return; /* it needs nothing of its components beyond what the data section shows */
+    }
     hand_check_line(run->result, check, "the components by themselves, by %s:", method->name);
     begin(&it, &form, true);
+}
+
+/* A method that sets out mixtures itself. */
+static void add_own_explanation(const struct mixture_check *it, bool with_fugacity)
+{
+    struct explanation numbers = {.count = 0};
+    enum answer answer = fluid_set_t(it->method->at_t, it->method->fluid, it->state->temperature);
+    if (answer == ANSWER_OK) {
+        answer = fluid_explain(it->method->at_t, it->state->molar_volume, it->state->x, with_fugacity, &numbers);
+    }
+    if (answer != ANSWER_OK) {
+        hand_check_line(it->run->result, it->check, "  %s does not set out its numbers for this state",
+                        it->method->name);
+        return;
+    }
+    hand_check_numbers(it->run, it->check, &numbers);
+    hand_check_pressure_shown(it->run, it->check, number_of(&numbers, "p"));
 }
 
 void hand_check_mixture_phase(const struct sheet_run *run, struct hand_check *check, struct method_run *method,
@@ -392,6 +412,10 @@ void hand_check_mixture_phase(const struct sheet_run *run, struct hand_check *ch
     struct mixture_check it = {.run = run, .check = check, .method = method, .state = state};
     struct explanation form, numbers = {.count = 0};
     hand_check_line(run->result, check, "%s by %s:", phase, method->name);
+    if (method->fluid->ops->explain_whole != NULL) {
+        add_own_explanation(&it, with_fugacity);
+        return;
+    }
     if (!begin(&it, &form, false)) {
         return;
     }

@@ -182,6 +182,9 @@ struct fluid_ops {
     /* Pure fluids only: the numbers behind the pressure of one phase (fluid/explanation.h). NULL: not explained. */
     enum answer (*explain)(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
                            struct explanation *out);
+    /* The same by a method that explains mixtures too, in `volume` m3 for all of n. NULL: see `explain`. */
+    enum answer (*explain_whole)(const struct fluid_at_t *at_t, double volume, const double n[], bool with_fugacity,
+                                 struct explanation *out);
 };
 
 /* The common head of every method's fluid; a method's own struct has it as first member. */

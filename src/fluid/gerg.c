@@ -40,4 +40,5 @@ const struct fluid_ops gerg_2008_ops = {
     .smallest_volume = multi_fluid_smallest_volume,
     .range = multi_fluid_range,
     .reducing = multi_fluid_reducing,
+    .explain_whole = multi_fluid_explain,
 };

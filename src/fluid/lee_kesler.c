@@ -16,8 +16,10 @@
  *   Tc = Vc^-eta sum sum x_i x_j Vc_ij^eta Tc_ij,   Tc_ij = kappa_ij sqrt(Tc_i Tc_j),   eta = 0.25
  *   omega = sum x_i omega_i,  pc = zc R Tc / Vc,  zc = 0.2905 - 0.085 omega
  */
+#include "fluid/explanation.h"
 #include "fluid/lee_kesler_internal.h"
 #include "fluid/methods_internal.h"
+#include "fluid/phase.h"
 
 #include <math.h>
 #include <string.h>
@@ -415,6 +417,129 @@ static enum answer saturation_start(const struct fluid_at_t *at_t, struct satura
     return answer;
 }
 
+/* ---- for a reader with a calculator ------------------------------------------------------------------------------ */
+
+/* The two ends at the root that the volume was found on. */
+struct both_ends {
+    struct lee_kesler_spot simple, reference;
+};
+
+static double between(double simple, double reference, double acentric)
+{
+    return simple + acentric / LEE_KESLER_REFERENCE_ACENTRIC * (reference - simple);
+}
+
+static struct both_ends ends_on(const struct lee_kesler_roots *simple, const struct lee_kesler_roots *reference,
+                                double T_r, double p_r, bool is_liquid)
+{
+    const bool simple_liquid = is_liquid ? simple->has_liquid : !simple->has_vapour;
+    const bool reference_liquid = is_liquid ? reference->has_liquid : !reference->has_vapour;
+    return (struct both_ends){
+        lee_kesler_spot_at(LEE_KESLER_SIMPLE, T_r, p_r, simple_liquid ? simple->liquid : simple->vapour),
+        lee_kesler_spot_at(LEE_KESLER_REFERENCE, T_r, p_r, reference_liquid ? reference->liquid : reference->vapour),
+    };
+}
+
+/* The roots that Z comes from. */
+static bool find_ends(double T_r, double p_r, double acentric, double Z, struct both_ends *out)
+{
+    struct lee_kesler_roots simple, reference;
+    if (!lee_kesler_find_roots(LEE_KESLER_SIMPLE, T_r, p_r, BRANCH_STABLE, &simple) ||
+        !lee_kesler_find_roots(LEE_KESLER_REFERENCE, T_r, p_r, BRANCH_STABLE, &reference)) {
+        return false;
+    }
+    const struct both_ends vapour = ends_on(&simple, &reference, T_r, p_r, false);
+    const struct both_ends liquid = ends_on(&simple, &reference, T_r, p_r, true);
+    const double vapour_miss = fabs(between(vapour.simple.Z, vapour.reference.Z, acentric) - Z);
+    const double liquid_miss = fabs(between(liquid.simple.Z, liquid.reference.Z, acentric) - Z);
+    *out = liquid_miss < vapour_miss ? liquid : vapour;
+    return true;
+}
+
+static void tell_reduced(const struct fluid_at_t *at_t, const struct pseudocritical *c, const double x[], double v,
+                         double pressure, struct explanation *out)
+{
+    const bool is_pure = at_t->fluid->count == 1;
+    explanation_put(out, "R", "gas constant", NULL, "J/mol/K", GAS_CONSTANT);
+    explanation_put(out, "T", "temperature", NULL, "K", at_t->temperature);
+    explanation_put(out, "v", "molar volume", NULL, "m3/mol", v);
+    explanation_put_fractions(out, at_t->fluid->spec, x);
+    explanation_put(out, "T_c", is_pure ? "critical temperature" : "of the whole by the mixing rules", NULL, "K", c->T);
+    explanation_put(out, "p_c", is_pure ? "critical pressure" : "of the whole by the mixing rules", NULL, "Pa", c->p);
+    explanation_put(out, "omega", is_pure ? "acentric factor" : "of the whole, sum x_i omega_i", NULL, "1",
+                    c->acentric);
+    explanation_put(out, "omega_r", "acentric factor of the reference fluid", NULL, "1", LEE_KESLER_REFERENCE_ACENTRIC);
+    explanation_put(out, "T_r", "reduced temperature", "T / T_c", "1", at_t->temperature / c->T);
+    explanation_put(out, "p_r", "reduced pressure, p / p_c", NULL, "1", pressure / c->p);
+}
+
+static void tell_compressibility(const struct both_ends *ends, double acentric, double RT, double v,
+                                 struct explanation *out)
+{
+    const double Z = between(ends->simple.Z, ends->reference.Z, acentric);
+    explanation_put(out, "Z_0", "of the simple fluid at T_r, p_r", NULL, "1", ends->simple.Z);
+    explanation_put(out, "Z_r", "of the reference fluid at T_r, p_r", NULL, "1", ends->reference.Z);
+    explanation_put(out, "Z_1", "departure from the simple fluid", "(Z_r - Z_0) / omega_r", "1",
+                    (ends->reference.Z - ends->simple.Z) / LEE_KESLER_REFERENCE_ACENTRIC);
+    explanation_put(out, "Z", "compressibility factor", "Z_0 + omega * Z_1", "1", Z);
+    explanation_put(out, "p", "pressure", "Z * R * T / v", "Pa", Z * RT / v);
+}
+
+static void tell_fugacity(const struct both_ends *ends, double acentric, bool is_pure, struct explanation *out)
+{
+    const double simple = ends->simple.ln_phi, reference = ends->reference.ln_phi;
+    explanation_put(out, "L_0", "ln phi of the simple fluid", NULL, "1", simple);
+    explanation_put(out, "L_r", "ln phi of the reference fluid", NULL, "1", reference);
+    explanation_put(out, "L_1", "departure from the simple fluid", "(L_r - L_0) / omega_r", "1",
+                    (reference - simple) / LEE_KESLER_REFERENCE_ACENTRIC);
+    explanation_put(out, is_pure ? "ln_phi" : "L",
+                    is_pure ? "ln fugacity coefficient" : "of the whole, sum x_i ln phi_i", "L_0 + omega * L_1", "1",
+                    between(simple, reference, acentric));
+}
+
+/* Components' coefficients follow from L by its slopes in the mixing rules: too long to be written out. */
+static void tell_components(size_t count, const double x[], const double ln_phi[], double pressure,
+                            struct explanation *out)
+{
+    for (size_t i = 0; i < count; i++) {
+        explanation_put(out, explanation_text(out, "ln_phi_%zu", i + 1), "L and its slopes by amount", NULL, "1",
+                        ln_phi[i]);
+        explanation_put_fugacity(out, count, i, x[i], ln_phi[i], pressure);
+    }
+}
+
+static enum answer explain_whole(const struct fluid_at_t *at_t, double volume, const double n[], bool with_fugacity,
+                                 struct explanation *out)
+{
+    const struct lee_kesler_at_t *at = (const struct lee_kesler_at_t *)(const void *)at_t;
+    const size_t count = at_t->fluid->count;
+    double ln_phi[EXPLAINED_COMPONENTS], x[EXPLAINED_COMPONENTS], scratch[EXPLAINED_COMPONENTS];
+    const bool is_told = count <= EXPLAINED_COMPONENTS;
+    struct phase phase = {.ln_phi = ln_phi, .ln_f_over_x = scratch};
+    enum answer answer = phase_tv(at_t, volume, n, is_told && with_fugacity ? PHASE_LN_PHI : 0U, &phase);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    const struct pseudocritical c = mix(at, n);
+    const double T = at_t->temperature, v = volume / c.n;
+    for (size_t i = 0; is_told && i < count; i++) {
+        x[i] = n[i] / c.n;
+    }
+    struct both_ends ends;
+    if (!find_ends(T / c.T, phase.pressure / c.p, c.acentric, phase.Z, &ends)) {
+        return ANSWER_FAILED;
+    }
+    tell_reduced(at_t, &c, x, v, phase.pressure, out);
+    tell_compressibility(&ends, c.acentric, GAS_CONSTANT * T, v, out);
+    if (with_fugacity) {
+        tell_fugacity(&ends, c.acentric, count == 1, out);
+    }
+    if (with_fugacity && is_told && count > 1) {
+        tell_components(count, x, ln_phi, phase.pressure, out);
+    }
+    return ANSWER_OK;
+}
+
 static enum answer pair_at(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out)
 {
     *out = lee_kesler_of(at_t->fluid)->pair[i * at_t->fluid->count + j];
@@ -437,4 +562,5 @@ const struct fluid_ops lee_kesler_ops = {
     .critical = critical,
     .saturation_start = saturation_start,
     .pair = pair_at,
+    .explain_whole = explain_whole,
 };

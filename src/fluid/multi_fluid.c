@@ -34,4 +34,5 @@ const struct fluid_ops multi_fluid_ops = {
     .smallest_volume = multi_fluid_smallest_volume,
     .range = multi_fluid_range,
     .reducing = multi_fluid_reducing,
+    .explain_whole = multi_fluid_explain,
 };

@@ -154,4 +154,11 @@ enum answer multi_fluid_set_t(struct fluid_at_t *at_t);
 struct range_note multi_fluid_range(const struct fluid *fluid, double temperature, double pressure);
 enum answer multi_fluid_reducing(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out);
 
+/* ---- multi_fluid_explain.c -----------------------------------------------------------------------------------------
+ */
+
+/* struct fluid_ops' explain_whole. */
+enum answer multi_fluid_explain(const struct fluid_at_t *at_t, double volume, const double n[], bool with_fugacity,
+                                struct explanation *out);
+
 #endif

@@ -1,6 +1,7 @@
 /* The reference equations' numbers for a reader with a calculator: the sums over each group of terms, taken term by
  * term as published. The solver's regrouped sums (reference_residual.c) are a second, independent way to the same. */
 #include "fluid/reference_explain.h"
+#include "fluid/reference_internal.h"
 
 #include <math.h>
 #include <stdio.h>
@@ -168,7 +169,7 @@ static void add_sums(const struct group_sum sums[GROUPS], bool is_slope, bool is
 enum answer reference_explain(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
                               struct explanation *out)
 {
-    const struct reference_spec *equation = at_t->fluid->spec->pure[0]->reference;
+    const struct reference_spec *equation = reference_of((const struct reference_at_t *)(const void *)at_t)->equation;
     const double v = molar_volume, RT = equation->gas_constant * at_t->temperature;
     if (!(v > 0.0)) {
         return ANSWER_OUT_OF_RANGE;

@@ -7,7 +7,9 @@
  * refused beyond three quarters of the critical density, the one in pressure beyond p = (T / 2) sum x_i pc_i / sum x_i
  * Tc_i: the usual rules (Prausnitz, Lichtenthaler, de Azevedo, Molecular Thermodynamics, chapter 5; from memory).
  */
+#include "fluid/explanation.h"
 #include "fluid/methods_internal.h"
+#include "fluid/phase.h"
 #include "fluid/virial_internal.h"
 
 #include <math.h>
@@ -420,6 +422,133 @@ static struct range_note range(const struct fluid *fluid, double temperature, do
     return (struct range_note){.side = RANGE_INSIDE};
 }
 
+/* ---- for a reader with a calculator ------------------------------------------------------------------------------ */
+
+/* B of a pair taken apart: of a simple fluid, by the acentric factor, and of a polar one. */
+static void tell_parts(const struct virial *fluid, double T, struct explanation *out)
+{
+    struct virial_constants of = fluid->pair[0];
+    const double B = virial_second(fluid->correlation, &of, T).value;
+    const double acentric = of.acentric;
+    of.polar = 0.0;
+    const double without_polar = virial_second(fluid->correlation, &of, T).value;
+    of.acentric = 0.0;
+    const double simple = virial_second(fluid->correlation, &of, T).value;
+    of.acentric = 1.0;
+    const double shape = virial_second(fluid->correlation, &of, T).value - simple;
+    explanation_put(out, "T_c", "critical temperature", NULL, "K", of.critical_temperature);
+    explanation_put(out, "omega", "acentric factor", NULL, "1", acentric);
+    explanation_put(out, "B_0", "of a simple fluid at T / T_c", NULL, "m3/mol", simple);
+    explanation_put(out, "B_1", "by the acentric factor", NULL, "m3/mol", shape);
+    explanation_put(out, "B_polar", "by the dipole", NULL, "m3/mol", B - without_polar);
+    explanation_put(out, "B", "second virial coefficient", "B_0 + omega * B_1 + B_polar", "m3/mol", B);
+}
+
+/* "x_1 ^ 2 * B_11 + 2 * x_1 * x_2 * B_12 + ..." and the coefficients in it. */
+static const char *tell_pairs(const struct virial_at_t *at, struct explanation *out)
+{
+    const size_t count = at->head.fluid->count;
+    const char *sum = "";
+    for (size_t i = 0; i < count; i++) {
+        for (size_t j = i; j < count; j++) {
+            explanation_put(out, explanation_text(out, "B_%zu%zu", i + 1, j + 1),
+                            i == j ? "second virial coefficient" : "of the unlike pair", NULL, "m3/mol",
+                            at->B[i * count + j]);
+            sum = i == j
+                      ? explanation_text(out, "%s%sx_%zu ^ 2 * B_%zu%zu", sum, i == 0 ? "" : " + ", i + 1, i + 1, i + 1)
+                      : explanation_text(out, "%s + 2 * x_%zu * x_%zu * B_%zu%zu", sum, i + 1, j + 1, i + 1, j + 1);
+        }
+    }
+    return sum;
+}
+
+static void tell_second(const struct virial_at_t *at, const double x[], double B, struct explanation *out)
+{
+    const struct virial *fluid = virial_of(at->head.fluid);
+    const size_t count = fluid->head.count;
+    explanation_put_fractions(out, fluid->head.spec, x);
+    if (count == 1) {
+        tell_parts(fluid, at->head.temperature, out);
+        return;
+    }
+    const char *formula = count <= EXPLAINED_COMPONENTS ? tell_pairs(at, out) : NULL;
+    explanation_put(out, "B", "of the whole, sum x_i x_j B_ij", formula, "m3/mol", B);
+}
+
+/* 2 sum x_j B_ij, and from it and the third coefficients ln phi_i. */
+static void tell_component(const struct virial_at_t *at, size_t i, double x, const struct phase *phase,
+                           struct explanation *out)
+{
+    const struct virial *fluid = virial_of(at->head.fluid);
+    const size_t count = fluid->head.count;
+    const char *S = explanation_text(out, "S_%zu", i + 1), *ln_phi = explanation_text(out, "ln_phi_%zu", i + 1);
+    explanation_put(out, S, "2 sum x_j B_ij", NULL, "m3/mol", at->B_n[i]);
+    if (fluid->has_third) {
+        const char *Q = explanation_text(out, "Q_%zu", i + 1);
+        explanation_put(out, Q, "3 sum x_j x_k C_ijk", NULL, "m6/mol2", at->C_n[i]);
+        explanation_put(out, ln_phi, "ln fugacity coefficient",
+                        explanation_text(out, "%s / v + %s / (2 * v ^ 2) - ln(Z)", S, Q), "1", phase->ln_phi[i]);
+    } else {
+        explanation_put(out, ln_phi, "ln fugacity coefficient", explanation_text(out, "(%s - B) * p / (R * T)", S), "1",
+                        phase->ln_phi[i]);
+    }
+    explanation_put_fugacity(out, count, i, x, phase->ln_phi[i], phase->pressure);
+}
+
+static void tell_pure_fugacity(bool has_third, double ln_phi, struct explanation *out)
+{
+    explanation_put(out, "ln_phi", "ln fugacity coefficient",
+                    has_third ? "2 * B / v + 3 * C / (2 * v ^ 2) - ln(Z)" : "B * p / (R * T)", "1", ln_phi);
+}
+
+static void tell_pressure(const struct virial_at_t *at, double C, const struct phase *phase, double v,
+                          struct explanation *out)
+{
+    if (virial_of(at->head.fluid)->has_third) {
+        explanation_put(out, "C", "third virial coefficient", NULL, "m6/mol2", C);
+        explanation_put(out, "Z", "compressibility factor", "1 + B / v + C / v ^ 2", "1", phase->Z);
+        explanation_put(out, "p", "pressure", "Z * R * T / v", "Pa",
+                        phase->Z * GAS_CONSTANT * at->head.temperature / v);
+    } else {
+        explanation_put(out, "p", "pressure, of v = R T / p + B", "R * T / (v - B)", "Pa", phase->pressure);
+        explanation_put(out, "Z", "compressibility factor", "1 + B * p / (R * T)", "1", phase->Z);
+    }
+}
+
+static enum answer explain_whole(const struct fluid_at_t *at_t, double volume, const double n[], bool with_fugacity,
+                                 struct explanation *out)
+{
+    const struct virial_at_t *at = at_of(at_t);
+    const size_t count = at_t->fluid->count;
+    double ln_phi[EXPLAINED_COMPONENTS], scratch[EXPLAINED_COMPONENTS], x[EXPLAINED_COMPONENTS];
+    const bool is_told = count <= EXPLAINED_COMPONENTS, has_third = virial_of(at_t->fluid)->has_third;
+    const double amount = total(n, count), v = volume / amount;
+    struct phase phase = {.ln_phi = ln_phi, .ln_f_over_x = scratch};
+    const enum answer answer = phase_tv(at_t, volume, n, is_told && with_fugacity ? PHASE_LN_PHI : 0U, &phase);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    for (size_t i = 0; is_told && i < count; i++) {
+        x[i] = n[i] / amount;
+    }
+    /* B_n and C_n become slopes by amount at one mole: of mole fractions where those are told. */
+    const double *of = is_told ? x : n, scale = is_told ? 1.0 : 1.0 / amount;
+    const double B = double_sum(at->B, count, of, 2.0, at->B_n) * scale * scale;
+    const double C = has_third ? triple_sum(at->C, count, of, at->contracted, at->C_n) * scale * scale * scale : 0.0;
+    explanation_put(out, "R", "gas constant", NULL, "J/mol/K", GAS_CONSTANT);
+    explanation_put(out, "T", "temperature", NULL, "K", at_t->temperature);
+    explanation_put(out, "v", "molar volume", NULL, "m3/mol", v);
+    tell_second(at, x, B, out);
+    tell_pressure(at, C, &phase, v, out);
+    if (with_fugacity && count == 1) {
+        tell_pure_fugacity(has_third, ln_phi[0], out);
+    }
+    for (size_t i = 0; with_fugacity && is_told && count > 1 && i < count; i++) {
+        tell_component(at, i, x[i], &phase, out);
+    }
+    return ANSWER_OK;
+}
+
 static enum answer pair_at(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out)
 {
     *out = virial_of(at_t->fluid)->parameter[i * at_t->fluid->count + j];
@@ -429,12 +558,13 @@ static enum answer pair_at(const struct fluid_at_t *at_t, size_t i, size_t j, st
 #define DENSITY_OPS                                                                                               \
     .form = FLUID_FROM_TV, .capabilities = CAN_MIXTURE | CAN_CALORIC, .at_t_size = at_t_size, .set_t = set_t,     \
     .tv = tv, .volume = volume_at, .smallest_volume = smallest_volume, .range = range, .pair = pair_at,           \
+    .explain_whole = explain_whole,                                                                               \
     .validity = "gases to three quarters of the critical density, where it stops; no liquid; not for gases with " \
                 "hydrogen bonds"
 
 #define PRESSURE_OPS                                                                                          \
     .form = FLUID_FROM_TP, .capabilities = CAN_MIXTURE | CAN_CALORIC, .at_t_size = at_t_size, .set_t = set_t, \
-    .tp = tp, .range = range, .pair = pair_at,                                                                \
+    .tp = tp, .range = range, .pair = pair_at, .explain_whole = explain_whole,                                \
     .validity = "gases to p = (T / 2) pc / Tc, where it stops; no liquid; not for gases with hydrogen bonds"
 
 static struct fluid *create_pitzer_abbott(const struct fluid_spec *spec, struct arena *arena,
