@@ -22,10 +22,10 @@ int main(int argc, char **argv)
     for (size_t k = 0; k < sizeof SHARES / sizeof *SHARES; k++) {
         struct campaign_tally t;
         campaign_run(seed, SHARES[k].tenths * states / 10, SHARES[k].kind, 100, &t);
-        printf("%-14s %8ld states: %ld / %ld / %ld / %ld of 1 / 2 / 3 / 4 phases, %ld refused, %ld wrong, "
+        printf("%-14s %8ld states: %ld / %ld / %ld / %ld of 1 / 2 / 3 / more phases, %ld refused, %ld wrong, "
                "%ld of %ld searched miss a phase\n",
                campaign_kind_name(SHARES[k].kind), t.states, t.by_phases[1], t.by_phases[2], t.by_phases[3],
-               t.by_phases[4], t.refused, t.wrong, t.missed, t.searched);
+               t.by_phases[4] + t.by_phases[5] + t.by_phases[6], t.refused, t.wrong, t.missed, t.searched);
         printf("               balance %.1e, ln f %.1e, gain %.1e, tpd %.1e, first bad seed %llu\n", t.worst_balance,
                t.worst_residual, t.worst_gain, t.lowest_tpd, (unsigned long long)t.first_bad);
         is_good = is_good && t.wrong == 0 && t.missed == 0 && t.refused * SHARES[k].one_refusal_in <= t.states;

@@ -1,6 +1,7 @@
 /* The sheet `fugacity`: the stable state, compressibility, density and fugacity over swept temperature and pressure,
  * or over swept temperature and density, method beside method. */
 #include "filling/hand_check.h"
+#include "filling/method_spread.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
 #include "filling/sweep.h"
@@ -305,6 +306,37 @@ static void work_one_state(const struct sheet_run *run, struct method_run *metho
 
 /* ---- the sheet ------------------------------------------------------------------------------------------------- */
 
+/* Two phases at a density: p V / (n R T) of both together. */
+static double compressibility_of(const struct method_run *method, const struct spot *spot)
+{
+    return spot->is_two_phase ? spot->pressure * spot->molar_volume / (method->fluid->gas_constant * spot->temperature)
+                              : spot->Z;
+}
+
+static void tell_spread(const struct states *states, size_t method_count)
+{
+    const struct sheet_run *run = states->run;
+    const struct case_sweep *second = second_sweep(run);
+    const size_t count = run->sheet->temperatures.count * second->count;
+    struct method_spread *spread = method_spread_create(run, states->methods, method_count, count);
+    for (size_t m = 0; m < method_count; m++) {
+        for (size_t i = 0; i < count; i++) {
+            const struct spot *spot = &states->spots[m][i];
+            if (spot->answer == ANSWER_OK) {
+                method_spread_note(spread, m, i, compressibility_of(states->methods[m], spot), spot->is_inside);
+            }
+        }
+    }
+    const struct look look = !by_density(run)          ? look_pressure(run)
+                             : second->is_mass_density ? look_density(run)
+                                                       : look_molar_density();
+    const struct spread_axis axis = {!by_density(run)          ? "pressure"
+                                     : second->is_mass_density ? "density"
+                                                               : "molar-density",
+                                     look_significant(look, FUGACITY_DIGITS), second->count, second->values};
+    method_spread_tell(spread, &axis);
+}
+
 void answer_fugacity(struct sheet_run *run)
 {
     if (run->sheet->fluid->count > 1) {
@@ -321,4 +353,5 @@ void answer_fugacity(struct sheet_run *run)
             work_one_state(run, states.methods[m], states.spots[m]);
         }
     }
+    tell_spread(&states, count);
 }

@@ -2,10 +2,12 @@
  * the tangent-plane evidence that no phase is missing. */
 #include "equilibrium/split.h"
 #include "filling/hand_check.h"
+#include "filling/method_spread.h"
 #include "filling/mixture_contents.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sweep.h"
 
+#include <assert.h>
 #include <math.h>
 #include <string.h>
 
@@ -15,7 +17,9 @@ enum { DIGITS = 6 };
 struct sweeping {
     const struct sheet_run *run;
     struct method_run *method;
+    size_t index; /* of the method */
     struct table *phases, *fugacities, *evidence;
+    struct method_spread *spread; /* of all methods */
 };
 
 /* ---- columns ----------------------------------------------------------------------------------------------------- */
@@ -106,7 +110,8 @@ static struct table *begin_evidence(const struct sheet_run *run, const struct me
 
 static const char *phase_name(const struct sweeping *at, const struct split *split, size_t k)
 {
-    static const char *const liquids[] = {"liquid", "liquid 2", "liquid 3", "liquid 4"};
+    static const char *const liquids[] = {"liquid", "liquid 2", "liquid 3", "liquid 4", "liquid 5", "liquid 6"};
+    static_assert(sizeof liquids / sizeof *liquids == MOST_PHASES, "a name for every phase");
     if (split->phase_count == 1) {
         return "one phase";
     }
@@ -245,6 +250,18 @@ static void solve_swept(const void *context, struct method_run *method, size_t i
     }
 }
 
+/* The axis that stands beside the temperature. */
+static struct spread_axis second_axis(const struct sheet_run *run)
+{
+    const struct case_sweep *second = second_sweep(run);
+    struct spread_axis axis = {"pressure", significant(look_pressure(run)), second->count, second->values};
+    if (run->sheet->densities.given) {
+        axis.name = second->is_mass_density ? "density" : "molar-density";
+        axis.look = significant(second->is_mass_density ? look_density(run) : look_molar_density());
+    }
+    return axis;
+}
+
 static void tell_swept(void *teller, size_t method, size_t index, const void *answer)
 {
     const struct sweeping *at = &((const struct sweeping *)teller)[method];
@@ -257,10 +274,13 @@ static void tell_swept(void *teller, size_t method, size_t index, const void *an
         return;
     }
     const bool is_inside = warn_outside_range(at->run, at->method, temperature, split->pressure);
+    double Z = 0.0;
     for (size_t k = 0; k < split->phase_count; k++) {
         add_phase(at, split, k, is_inside);
         add_fugacities(at, split, k);
+        Z += split->phase[k].fraction * split->phase[k].Z;
     }
+    method_spread_note(at->spread, at->index, index, Z, is_inside);
     add_evidence(at, split);
 }
 
@@ -286,12 +306,16 @@ void answer_mixture_fugacity(struct sheet_run *run)
     struct method_run **methods = methods_that_serve(run, &count);
     struct sweeping *each = arena_alloc(run->arena, count, sizeof *each);
     run->result->is_undecided |= run->methods[0].fluid == NULL;
+    const size_t points = run->sheet->temperatures.count * second_sweep(run)->count;
+    struct method_spread *spread = method_spread_create(run, methods, count, points);
     for (size_t m = 0; m < count; m++) {
         each[m] = begin_sweeping(run, methods[m], m == 0);
+        each[m].index = m;
+        each[m].spread = spread;
     }
     const struct sweep sweep = {
         .run = run,
-        .point_count = run->sheet->temperatures.count * second_sweep(run)->count,
+        .point_count = points,
         .method_count = count,
         .methods = methods,
         .answer_size = sizeof(struct swept_split) + 2 * MOST_PHASES * run->sheet->fluid->count * sizeof(double),
@@ -301,6 +325,8 @@ void answer_mixture_fugacity(struct sheet_run *run)
         .teller = each,
     };
     sweep_points(&sweep);
+    const struct spread_axis second = second_axis(run);
+    method_spread_tell(spread, &second);
     sheet_add_note(run->result, run->out,
                    "K: mole fraction in the lightest phase over that in the phase of the row; tangent-plane distance: "
                    "the least of all trial phases, by RT and mole, negative only by rounding for a stable answer");
