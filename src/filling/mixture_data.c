@@ -364,6 +364,59 @@ static void tell_pairs(const struct case_tree *tree, const struct pooled_method 
     warn_of_unverified(&telling);
 }
 
+/* ---- reducing parameters ----------------------------------------------------------------------------------------- */
+
+static const char *reducing_source(struct pairs_telling *telling, size_t i, size_t j, bool is_of_volume)
+{
+    const struct case_fluid *fluid = telling->pooled->fluid;
+    const struct case_pair *pair = case_pair_of(fluid, fluid->components[i]->name, fluid->components[j]->name);
+    const struct case_reducing *reducing = pair == NULL ? NULL : case_reducing_of(pair, telling->pooled->run.name);
+    struct places places = {.words = {.arena = telling->to.result->arena}};
+    if (reducing == NULL) {
+        return "none published: estimated";
+    }
+    add_place(telling, is_of_volume ? &reducing->gamma_V.origin : &reducing->gamma_T.origin, &places);
+    return places.words.bytes;
+}
+
+/* A row for the reducing temperature, one for the reducing volume, one for the departure function where there is one.
+ */
+static void tell_reducing_pair(struct pairs_telling *telling, size_t i, size_t j)
+{
+    const struct case_fluid *fluid = telling->pooled->fluid;
+    struct arena *arena = telling->to.result->arena;
+    struct reducing_parameter found;
+    if (!(fluid->fractions[i] > 0.0) || !(fluid->fractions[j] > 0.0) ||
+        fluid_reducing(telling->pooled->run.fluid, i, j, &found) != ANSWER_OK) {
+        return;
+    }
+    add_row(&telling->to, arena_format(arena, "%s: T_r", pair_name(telling, i, j)),
+            arena_format(arena, "%.6g, %.6g", found.beta_T, found.gamma_T))
+        ->source = reducing_source(telling, i, j, false);
+    add_row(&telling->to, "  v_r", arena_format(arena, "%.6g, %.6g", found.beta_V, found.gamma_V))->source =
+        reducing_source(telling, i, j, true);
+    if (found.departure != NULL) {
+        add_row(&telling->to, arena_format(arena, "  F of %s", found.departure),
+                arena_format(arena, "%.6g", found.weight));
+    }
+}
+
+/* beta and gamma of the reducing temperature and volume of each pair, and the weight F of its departure function. */
+static void tell_reducing(const struct case_tree *tree, const struct pooled_method *pooled, struct result *result)
+{
+    const struct case_fluid *fluid = pooled->fluid;
+    struct pairs_telling telling = {
+        .to = {tree, result, arena_format(result->arena, "beta, gamma of %s, %s", fluid->name, pooled->run.name)},
+        .pooled = pooled,
+    };
+    for (size_t i = 0; i < fluid->count; i++) {
+        for (size_t j = i + 1; j < fluid->count; j++) {
+            tell_reducing_pair(&telling, i, j);
+        }
+    }
+    warn_of_unverified(&telling);
+}
+
 /* ---- the section ------------------------------------------------------------------------------------------------- */
 
 static bool is_first_of_fluid(const struct method_pool *pool, size_t index)
@@ -388,6 +441,7 @@ void tell_mixtures(const struct case_tree *tree, const struct method_pool *pool,
         const struct pooled_method *pooled = &pool->items[i];
         if (pooled->run.fluid != NULL && pooled->fluid->count > 1) {
             tell_pairs(tree, pooled, result);
+            tell_reducing(tree, pooled, result);
         }
     }
 }

@@ -17,8 +17,12 @@ static bool has_share(const struct method_run *method, size_t i)
 static bool is_unknown(const struct method_run *method, size_t i, size_t j)
 {
     struct pair_parameter pair;
-    return has_share(method, i) && has_share(method, j) && fluid_pair(method->at_t, i, j, &pair) == ANSWER_OK &&
-           pair.origin == PAIR_FROM_NOTHING;
+    struct reducing_parameter reducing;
+    if (!has_share(method, i) || !has_share(method, j)) {
+        return false;
+    }
+    return (fluid_pair(method->at_t, i, j, &pair) == ANSWER_OK && pair.origin == PAIR_FROM_NOTHING) ||
+           (fluid_reducing(method->fluid, i, j, &reducing) == ANSWER_OK && reducing.origin == PAIR_FROM_NOTHING);
 }
 
 /* "a with b, c; b with c": each pair once, and a name once for all its pairs. */
@@ -49,7 +53,12 @@ static void warn_of_unknown(const struct sheet_run *run, const struct method_run
         return;
     }
     list_unknown(run, method, &names);
-    if (names.length > 0) {
+    if (names.length > 0 && method->fluid->ops->reducing != NULL) {
+        result_warn(run->result, CODE_W370, location_line(run->sheet->at), run->number,
+                    "%s, %s: no reducing parameters are published, and beta = gamma = 1 without a departure function "
+                    "is an estimate of unknown accuracy, of %s",
+                    run->sheet->fluid->name, method->name, names.bytes);
+    } else if (names.length > 0) {
         result_warn(run->result, CODE_W306, location_line(run->sheet->at), run->number,
                     "%s, %s: no interaction is known, and none is taken, of %s", run->sheet->fluid->name, method->name,
                     names.bytes);
