@@ -276,6 +276,33 @@ static void a_margin_smaller_than_its_uncertainty_is_marked(void **state)
     end(&it);
 }
 
+#define HOT_DAY                                                                                                      \
+    "use \"small\"\nmethods { lead peng-robinson }\n" VESSEL "rule hot-day { at 338.15 K pressure <= test-pressure " \
+                                                             "}\n"
+
+/* The limit less its U: filled with that, the margin is just its own U. The permitted mass itself stands at the bound,
+ * so that its verdict is within the uncertainty. */
+static void the_guarded_mass_keeps_the_limit_by_its_uncertainty(void **state)
+{
+    (void)state;
+    struct solved it = solve(HOT_DAY "sheet permissible-charge { fluid argon; vessel ten; rules hot-day }\n");
+    const struct fact *mass = result_fact(it.sheet, "mass", NULL),
+                      *guarded = result_fact(it.sheet, "guarded-mass", NULL);
+    assert_non_null(guarded);
+    assert_close(guarded->value, mass->value - mass->carried.expanded, 1e-14, "the mass less its U");
+    assert_true(it.sheet->first_requirement->is_within_uncertainty);
+    char *text = arena_format(it.deck.arena,
+                              HOT_DAY "charge lot { fluid argon; vessel ten; mass %.17g kg }\n"
+                                      "sheet settled-pressure { charge lot; require at 338.15 K pressure <= "
+                                      "test-pressure }\n",
+                              guarded->value);
+    struct solved filled = solve(text);
+    const struct requirement *kept = filled.sheet->first_requirement;
+    assert_close(kept->margin, kept->carried.expanded, 0.02, "to second order");
+    end(&filled);
+    end(&it);
+}
+
 /* ---- decks without --------------------------------------------------------------------------------------------- */
 
 static void a_deck_without_uncertainties_says_nothing_of_them(void **state)
@@ -537,6 +564,7 @@ int main(void)
         cmocka_unit_test(what_a_let_names_moves_together),
         cmocka_unit_test(the_air_at_the_gauge_is_an_input),
         cmocka_unit_test(a_margin_smaller_than_its_uncertainty_is_marked),
+        cmocka_unit_test(the_guarded_mass_keeps_the_limit_by_its_uncertainty),
         cmocka_unit_test(a_deck_without_uncertainties_says_nothing_of_them),
         cmocka_unit_test(another_vessel_is_no_matter_of_this_sheet),
         cmocka_unit_test(draws_need_something_uncertain),

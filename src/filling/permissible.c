@@ -347,6 +347,7 @@ static void tell_requirements(const struct permissible *sheet)
     struct sheet_run *run = sheet->run;
     const double mass = run->held_mass > 0.0 ? run->held_mass : sheet->mass;
     run->found_mass = sheet->mass;
+    run->found_is_limit = !sheet->is_by_ratio && governing_criterion(sheet)->kind != CRITERION_LISTED;
     struct method_run *method =
         run->methods[0].fluid != NULL && method_governs(&run->methods[0]) ? &run->methods[0] : governing_method(sheet);
     for (size_t i = 0; i < sheet->criterion_count; i++) {

@@ -42,7 +42,8 @@ struct sheet_run {
     struct listed_ledger *ledger;    /* NULL: none is kept */
     const struct progress *progress; /* NULL: nobody waits */
     double found_mass;               /* kg, the charge a sheet found and holds its requirements against; 0: none */
-    double held_mass; /* kg; not 0: the requirements are held against this charge, whatever the sheet finds */
+    bool found_is_limit; /* that charge is where a criterion ends, and no rounded or listed value below it */
+    double held_mass;    /* kg; not 0: the requirements are held against this charge, whatever the sheet finds */
 };
 
 /* A method ready for a fluid, or with `lack` set. Ideal gas is never allowed to govern, whatever `may_govern` says. */

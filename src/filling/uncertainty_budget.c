@@ -305,6 +305,26 @@ static void tell_draws(struct uncertain_sheet *it, const struct chosen *chosen, 
     }
 }
 
+/* A limit lower by its own uncertainty holds for nearly all that the inputs may be: a guard band of U, as JCGM
+ * 106:2012, 8.3.2 (from memory), has it. */
+static void tell_guarded_mass(const struct uncertain_sheet *it, const struct chosen *chosen)
+{
+    struct sheet_run *run = it->run;
+    for (size_t i = 0; i < chosen->count && run->found_is_limit; i++) {
+        const struct outlet *outlet = &it->outlets.items[chosen->items[i]];
+        if (outlet->kind == OUTLET_FACT && strcmp(outlet->fact->name, "mass") == 0 &&
+            outlet->fact->carried.kind == CARRIED && outlet->fact->carried.expanded < outlet->fact->value) {
+            sheet_begin_facts(run->result, run->out, "with the uncertainty of the inputs");
+            struct fact *fact =
+                sheet_add_fact(run->result, run->out, "guarded-mass",
+                               outlet->fact->value - outlet->fact->carried.expanded, outlet->fact->look);
+            fact->method = outlet->fact->method;
+            fact->remark = "the permitted mass less its U";
+            return;
+        }
+    }
+}
+
 void tell_budgets(struct uncertain_sheet *it)
 {
     struct chosen chosen = {.count = 0};
@@ -320,6 +340,7 @@ void tell_budgets(struct uncertain_sheet *it)
     if (it->run->sheet->draws > 0 && chosen.count > 0) {
         tell_draws(it, &chosen, budgets);
     }
+    tell_guarded_mass(it, &chosen);
 }
 
 /* ---- what has to be known to read them --------------------------------------------------------------------------- */
