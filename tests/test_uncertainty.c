@@ -278,7 +278,7 @@ static void a_margin_smaller_than_its_uncertainty_is_marked(void **state)
 
 #define HOT_DAY                                                                                                      \
     "use \"small\"\nmethods { lead peng-robinson }\n" VESSEL "rule hot-day { at 338.15 K pressure <= test-pressure " \
-                                                             "}\n"
+    "}\n"
 
 /* The limit less its U: filled with that, the margin is just its own U. The permitted mass itself stands at the bound,
  * so that its verdict is within the uncertainty. */
@@ -501,6 +501,105 @@ static void programs_get_the_same_in_si(void **state)
     end(&it);
 }
 
+/* ---- whatever is written ----------------------------------------------------------------------------------------- */
+
+/* A linear congruential generator (Knuth's MMIX constants). */
+static double draw(uint64_t *seed)
+{
+    *seed = *seed * UINT64_C(6364136223846793005) + UINT64_C(1442695040888963407);
+    return (double)(*seed >> 11) / 9007199254740992.0;
+}
+
+/* From a millionth to nearly all of a value, even in the logarithm. */
+static double draw_part(uint64_t *seed)
+{
+    return pow(10.0, -6.0 + 5.95 * draw(seed));
+}
+
+static const char *random_deck(uint64_t *seed, struct arena *arena)
+{
+    static const char *const methods[] = {"ideal-gas", "peng-robinson", "soave-redlich-kwong"};
+    static const char *const fluids[] = {"argon", "carbon-dioxide", "blend"};
+    static const double most[] = {280.0, 6.0, 0.7};
+    const size_t method = (size_t)(3.0 * draw(seed)), fluid = (size_t)(3.0 * draw(seed)),
+                 fill = (size_t)(3.0 * draw(seed));
+    const double share = draw(seed), amount = most[fill] * (0.01 + draw(seed));
+    struct text text = {.arena = arena};
+    text_format(&text, "use \"small\"\nmethods { lead %s }\n", methods[method]);
+    text_format(&text, "mixture blend by %s { carbon-dioxide %.4g %% +/- %.3g %% relative; argon rest }\n",
+                draw(seed) < 0.5 ? "mole" : "mass", 100.0 * share, 100.0 * draw_part(seed));
+    text_format(&text, "vessel ten { water-capacity 10.2 L +/- %.3g %% relative; test-pressure 300 barg }\n",
+                100.0 * draw_part(seed));
+    text_format(&text, "sheet settled-pressure { fluid %s; vessel ten; ", fluids[fluid]);
+    text_format(&text, "%s %.4g%s",
+                fill == 0   ? "fill"
+                : fill == 1 ? "mass"
+                            : "filling-ratio",
+                amount,
+                fill == 0   ? " bara"
+                : fill == 1 ? " kg"
+                            : "");
+    text_format(&text, " +/- %.3g %% relative", 100.0 * draw_part(seed));
+    if (fill == 0) {
+        text_format(&text, " at 288.15 K +/- %.3g K", 60.0 * draw(seed));
+    }
+    text_format(&text, "; sweep temperature 268.15 K, 338.15 K; require at 338.15 K pressure <= test-pressure;\n");
+    text_format(&text, "require at 268.15 K one phase; uncertainty every-row; monte-carlo draws 100 }\n");
+    return text.bytes;
+}
+
+static void check_carried(const struct carried *carried, const char *deck)
+{
+    const bool is_told = carried->kind == CARRIED || carried->kind == CARRIED_NOT_LINEAR;
+    if (is_told && !(carried->expanded > 0.0 && isfinite(carried->expanded))) {
+        print_error("an uncertainty of %g in:\n%s\n", carried->expanded, deck);
+        fail();
+    }
+}
+
+static void check_part(const struct sheet_part *part, const char *deck)
+{
+    for (size_t i = 0; i < part->facts.count; i++) {
+        check_carried(&part->facts.items[i].carried, deck);
+    }
+    for (size_t i = 0; part->table != NULL && i < part->table->row_count * part->table->column_count; i++) {
+        check_carried(&part->table->cells[i].carried, deck);
+    }
+    if (part->budget != NULL) {
+        double sum = 0.0;
+        for (size_t i = 0; i < part->budget->line_count; i++) {
+            sum += part->budget->lines[i].share;
+        }
+        assert_close(sum, 1.0, 1e-12, "shares of the whole");
+        assert_true(part->budget->drawn.answered <= 100);
+    }
+}
+
+/* Uncertainties up to nine tenths of the value, charges that are liquid, shares close to nothing: every number is one,
+ * or is told as unknown. */
+static void no_uncertainty_is_ever_not_a_number(void **state)
+{
+    (void)state;
+    uint64_t seed = 2027;
+    for (int i = 0; i < 24; i++) {
+        struct arena *arena = arena_create(NULL);
+        const char *deck = random_deck(&seed, arena);
+        struct solved it = solve(deck);
+        for (const struct sheet_part *part = it.sheet->first_part; part != NULL; part = part->next) {
+            check_part(part, deck);
+        }
+        for (const struct requirement *one = it.sheet->first_requirement; one != NULL; one = one->next) {
+            check_carried(&one->carried, deck);
+        }
+        struct text listing = {.arena = arena};
+        report_listing(it.result, &listing);
+        assert_null(strstr(listing.bytes, "nan"));
+        assert_null(strstr(listing.bytes, " inf"));
+        end(&it);
+        arena_free(arena);
+    }
+}
+
 /* ---- memory ------------------------------------------------------------------------------------------------------ */
 
 static void solve_in(struct arena *arena, void *context)
@@ -575,6 +674,7 @@ int main(void)
         cmocka_unit_test(the_listing_shows_what_is_uncertain),
         cmocka_unit_test(programs_get_the_same_in_si),
         cmocka_unit_test(the_words_of_draws_are_checked),
+        cmocka_unit_test(no_uncertainty_is_ever_not_a_number),
         cmocka_unit_test(running_out_of_memory_ends_the_run),
         cmocka_unit_test(a_shifted_value_is_checked_and_carried_on),
     };
