@@ -1,18 +1,13 @@
 /* Each thread has a method_run of its own for each method. They are made before the threads begin, as the arena serves
- * one thread only. Where the compiler knows no OpenMP, or a sweep is too small to be worth threads, the caller's thread
- * takes chunk after chunk, in the same way. */
-#define _POSIX_C_SOURCE 200809L
+ * one thread only. Where a sweep is too small to be worth threads, the caller's thread takes chunk after chunk, in the
+ * same way. */
 #include "filling/sweep.h"
 
+#include "base/parallel.h"
 #include "filling/mixture_contents.h"
 #include "filling/solve.h"
 
-#include <signal.h>
 #include <string.h>
-
-#ifdef _OPENMP
-#include <omp.h>
-#endif
 
 /* Points that share what they found: enough for a warm start to pay, few enough for many threads. */
 enum { CHUNK_POINTS = 16 };
@@ -62,8 +57,9 @@ static void tell_progress(const struct sweep *sweep, size_t done)
 
 /* ---- one chunk --------------------------------------------------------------------------------------------------- */
 
-static void solve_chunk(const struct block *block, size_t thread, size_t task)
+static void solve_chunk(void *context, size_t thread, size_t task)
 {
+    const struct block *block = context;
     const struct sweep *sweep = block->sweep;
     const size_t method = task / block->chunks, chunk = task % block->chunks;
     const size_t first = chunk * CHUNK_POINTS, end = smaller(first + CHUNK_POINTS, block->count);
@@ -75,97 +71,23 @@ static void solve_chunk(const struct block *block, size_t thread, size_t task)
     block->speaks_against[task] = method_run_gave_up_envelope(own, sweep->methods[method]);
 }
 
-static size_t points_before(const struct block *block)
+static void tell_chunks(void *context, size_t done)
 {
-    return block->first * block->sweep->method_count;
+    const struct block *block = context;
+    const size_t methods = block->sweep->method_count;
+    tell_progress(block->sweep, block->first * methods + smaller(done * CHUNK_POINTS, methods * block->count));
 }
-
-static void solve_on_one_thread(const struct block *block)
-{
-    for (size_t task = 0; task < block->sweep->method_count * block->chunks; task++) {
-        solve_chunk(block, 0, task);
-        tell_progress(block->sweep, points_before(block) +
-                                        smaller((task + 1) * CHUNK_POINTS, block->sweep->method_count * block->count));
-    }
-}
-
-/* ---- threads ----------------------------------------------------------------------------------------------------- */
-
-#ifdef _OPENMP
 
 static size_t threads_for(const struct sweep *sweep)
 {
-    if (omp_in_parallel()) {
-        return 1; /* whoever asks is one of many threads already */
-    }
     const size_t components = sweep->methods[0]->fluid->count;
     const size_t work_of_point = components > 1 ? WORK_OF_COMPONENT * components : 1;
     if (sweep->point_count * sweep->method_count * work_of_point < WORK_WORTH_THREADS) {
         return 1;
     }
     const size_t chunks = (smaller(sweep->point_count, BLOCK_POINTS) + CHUNK_POINTS - 1) / CHUNK_POINTS;
-    return smaller((size_t)omp_get_max_threads(), chunks * sweep->method_count);
+    return parallel_threads(0, chunks * sweep->method_count);
 }
-
-/* Signals are a matter of the thread that asked for the answers. */
-static void leave_signals_to_caller(void)
-{
-    sigset_t all;
-    sigfillset(&all);
-    pthread_sigmask(SIG_BLOCK, &all, NULL);
-}
-
-static void solve_on_threads(const struct block *block)
-{
-    const size_t tasks = block->sweep->method_count * block->chunks;
-    size_t done = 0;
-#pragma omp parallel num_threads((int)block->thread_count)
-    {
-        const size_t thread = (size_t)omp_get_thread_num();
-        if (thread > 0) {
-            leave_signals_to_caller();
-        }
-#pragma omp for schedule(dynamic, 1)
-        for (size_t task = 0; task < tasks; task++) {
-            size_t so_far;
-            solve_chunk(block, thread, task);
-#pragma omp atomic capture
-            so_far = ++done;
-            if (thread == 0) {
-                tell_progress(block->sweep, points_before(block) + smaller(so_far * CHUNK_POINTS,
-                                                                           block->sweep->method_count * block->count));
-            }
-        }
-    }
-}
-
-/* Threads that wait for the next sweep would use up time waiting. */
-static void dismiss_threads(size_t thread_count)
-{
-    if (thread_count > 1) {
-        omp_pause_resource_all(omp_pause_soft);
-    }
-}
-
-#else
-
-static size_t threads_for(const struct sweep *sweep)
-{
-    (void)sweep;
-    return 1;
-}
-
-static void solve_on_threads(const struct block *block)
-{
-    solve_on_one_thread(block);
-}
-
-static void dismiss_threads(size_t thread_count)
-{
-    (void)thread_count;
-}
-
-#endif
 
 /* ---- blocks ------------------------------------------------------------------------------------------------------ */
 
@@ -219,15 +141,11 @@ void sweep_points(const struct sweep *sweep)
     for (block.first = 0; block.first < sweep->point_count; block.first += block.count) {
         block.count = smaller(sweep->point_count - block.first, BLOCK_POINTS);
         block.chunks = (block.count + CHUNK_POINTS - 1) / CHUNK_POINTS;
-        if (block.thread_count > 1) {
-            solve_on_threads(&block);
-        } else {
-            solve_on_one_thread(&block);
-        }
+        parallel_run(&(struct parallel){.work = solve_chunk, .context = &block, .tell = tell_chunks},
+                     block.thread_count, sweep->method_count * block.chunks);
         learn_of_envelopes(&block);
         tell_block(&block);
     }
-    dismiss_threads(block.thread_count);
 }
 
 struct method_run **methods_that_serve(const struct sheet_run *run, size_t *count)
