@@ -400,6 +400,13 @@ static void record(struct test *t, const struct trial *trial)
     out->is_stable = !(tpd < -STABILITY_ROUNDING);
 }
 
+/* Where a method has no phase at all, as some equations have no cold liquid of a component by itself, none lies below the
+ * plane: such a trial is passed over. */
+static enum answer unless_there_is_none(enum answer answer)
+{
+    return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;
+}
+
 static enum answer follow_trial(struct test *t, struct trial *trial, enum verdict *verdict)
 {
     *verdict = GOING_ON;
@@ -454,7 +461,7 @@ static enum answer run_trial(struct test *t)
     enum verdict verdict;
     const enum answer answer = follow_trial(t, &trial, &verdict);
     if (answer != ANSWER_OK || !is_in_valley(&trial, verdict)) {
-        return answer;
+        return unless_there_is_none(answer);
     }
     for (size_t k = 0; k < t->known->count; k++) {
         const double distance = distance_in_alpha(t->ws, t->known->amounts[k]);
@@ -539,7 +546,7 @@ static enum answer try_coefficients(struct test *t)
     t->branch = BRANCH_LIQUID;
     const enum answer answer = evaluate_phase(t, PHASE_LN_PHI);
     if (answer != ANSWER_OK) {
-        return answer;
+        return unless_there_is_none(answer);
     }
     substitute(t->ws);
     return run_trial(t);
@@ -599,7 +606,7 @@ static enum answer try_pure(struct test *t, size_t i)
     t->branch = BRANCH_LIQUID;
     const enum answer answer = evaluate_phase(t, PHASE_LN_PHI);
     if (answer != ANSWER_OK) {
-        return answer;
+        return unless_there_is_none(answer);
     }
     if (!is_exhaustive &&
         (ws->d[i] - ws->trial->ln_phi[i] < LEAST_LN_ACTIVITY || is_in_known_phase(t, i, molar_volume_of(ws->trial)))) {
