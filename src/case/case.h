@@ -64,6 +64,14 @@ struct case_group {
     double number;
 };
 
+/* A substance as a solid. */
+struct case_solid {
+    const struct case_source *source; /* of the sublimation line; NULL: none named */
+    struct location at;
+    struct quantity molar_volume;
+    struct solid_spec spec;
+};
+
 struct case_component {
     const char *name;
     const char *title;   /* NULL: none */
@@ -78,6 +86,7 @@ struct case_component {
     const struct case_source *equation_source; /* NULL where it has no reference equation */
     const struct case_source *gerg_source;     /* likewise of GERG-2008 */
     struct location gerg_at;
+    const struct case_solid *solid; /* NULL: nothing is known of it as a solid */
     size_t cubic_set_count;
     const struct case_cubic_set *cubic_sets;
     size_t group_count;
@@ -329,6 +338,7 @@ struct case_sheet {
     bool show_iteration;
     struct optional iteration_at; /* K */
     enum listed_policy listed;
+    bool asks_of_solids;   /* a rule or a requirement says `no solid` */
     const char *assessed;  /* NULL: none */
     const char *table_csv; /* NULL: none */
     size_t entry_count;    /* entries of the fluid that are in use */

@@ -27,6 +27,7 @@ enum name_kind {
     NAMES_EQUATION,
     NAMES_GERG_EQUATION,
     NAMES_DEPARTURE,
+    NAMES_SOLID,
     NAMES_ENTRY,
     NAMES_VESSEL,
     NAMES_CHARGE,
@@ -408,6 +409,23 @@ void use_reducing(struct elaboration *e, const struct case_pair *pair, const cha
 void use_own_equation(struct elaboration *e, const struct case_component *component, const char *method);
 
 const struct case_departure *build_departure(struct elaboration *e, struct named *named);
+
+/* What is known of a substance as a solid; NULL after a message. Counts as used once use_solid says so. */
+const struct case_solid *build_solid(struct elaboration *e, struct named *named);
+void use_solid(struct elaboration *e, const struct case_component *component);
+
+/* A block of `reducing-temperature`, `reducing-value` and rows `term n t`: a guess, or a sublimation line; `what` as in
+ * "the guess". False after a message. */
+struct power_terms {
+    double temperature, value; /* K; SI */
+    size_t count;
+    const double (*terms)[2]; /* n, t */
+};
+bool read_power_terms(struct elaboration *e, const struct statement *statement, const char *what,
+                      const struct quantity_form *value_form, struct power_terms *out);
+
+/* `from T to T` of valid-temperature; false after a message. */
+bool read_temperature_range(struct elaboration *e, const struct statement *statement, double *least, double *most);
 
 /* `residual KIND { term ... }` of an equation or a departure, added to the list. */
 void read_residual_terms(struct elaboration *e, const struct statement *statement, struct residual_list *list);

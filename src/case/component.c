@@ -340,6 +340,9 @@ const struct case_component *build_component(struct elaboration *e, struct named
     target->component.equation_source = reference == NULL ? NULL : source;
     target->component.spec = spec_of(e, &target->component, reference);
     target->component.spec.gerg_2008 = gerg_equation_of(e, &target->component);
+    struct named *solid = names_find(&e->tables[NAMES_SOLID], named->name);
+    target->component.solid = solid == NULL ? NULL : build_solid(e, solid);
+    target->component.spec.solid = target->component.solid == NULL ? NULL : &target->component.solid->spec;
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? &target->component : NULL;
     return named->built;

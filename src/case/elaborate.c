@@ -160,6 +160,7 @@ static void index_statement(struct elaboration *e, const struct statement *state
     } blocks[] = {
         {WORD_FILE_COMPONENT, NAMES_COMPONENT, "the name of the component"},
         {WORD_FILE_DEPARTURE, NAMES_DEPARTURE, "the name of the departure"},
+        {WORD_FILE_SOLID, NAMES_SOLID, "the name of the solid's component"},
         {WORD_FILE_VESSEL, NAMES_VESSEL, "the name of the vessel"},
         {WORD_FILE_CHARGE, NAMES_CHARGE, "the name of the charge"},
         {WORD_FILE_RULE, NAMES_RULE, "the name of the rule"},
@@ -481,6 +482,9 @@ static void check_named(struct elaboration *e, enum name_kind kind, struct named
         break;
     case NAMES_DEPARTURE:
         build_departure(e, named);
+        break;
+    case NAMES_SOLID:
+        build_solid(e, named);
         break;
     case NAMES_ENTRY:
         build_entry(e, named);

@@ -266,6 +266,23 @@ static void report_incomplete(struct elaboration *e, struct location at, const c
     diagnose(e->out, CODE_E216, at, "%s lacks its %s", what, lacks);
 }
 
+bool read_power_terms(struct elaboration *e, const struct statement *statement, const char *what,
+                      const struct quantity_form *value_form, struct power_terms *out)
+{
+    struct guess guess = {.value_form = value_form};
+    read_block(e, &GUESS, e->group, statement, &guess);
+    if (!guess.temperature.given || !guess.value.given || guess.terms.count == 0) {
+        report_incomplete(e, statement->at, what,
+                          !guess.temperature.given ? "reducing-temperature"
+                          : !guess.value.given     ? "reducing-value"
+                                                   : "terms");
+        return false;
+    }
+    *out = (struct power_terms){guess.temperature.value, guess.value.value, guess.terms.count,
+                                (const double(*)[2])guess.terms.items};
+    return true;
+}
+
 static void read_guess(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct equation *equation = target;
@@ -273,26 +290,19 @@ static void read_guess(struct elaboration *e, const struct statement *statement,
     const struct vocabulary_row *what = take_choice(&reading, BLOCK_GUESSED, "a quantity to guess");
     const struct vocabulary_row *form =
         what == NULL ? NULL : take_choice(&reading, BLOCK_FORM, "the form of the guess");
-    if (form == NULL || !finish_items(&reading) || !require_block(e, statement)) {
-        return;
-    }
-    struct guess guess = {
-        .value_form = what->id == WORD_GUESSED_SATURATION_PRESSURE ? &FORM_PRESSURE : &FORM_MOLAR_DENSITY,
-    };
-    read_block(e, &GUESS, e->group, statement, &guess);
-    if (!guess.temperature.given || !guess.value.given || guess.terms.count == 0) {
-        report_incomplete(e, statement->at, "the guess",
-                          !guess.temperature.given ? "reducing-temperature"
-                          : !guess.value.given     ? "reducing-value"
-                                                   : "terms");
+    struct power_terms terms;
+    if (form == NULL || !finish_items(&reading) || !require_block(e, statement) ||
+        !read_power_terms(e, statement, "the guess",
+                          what->id == WORD_GUESSED_SATURATION_PRESSURE ? &FORM_PRESSURE : &FORM_MOLAR_DENSITY,
+                          &terms)) {
         return;
     }
     *guess_of(equation, what->id) = (struct saturation_guess){
         .form = form_of(form->id),
-        .reducing_temperature = guess.temperature.value,
-        .reducing_value = guess.value.value,
-        .count = guess.terms.count,
-        .terms = (const double(*)[2])guess.terms.items,
+        .reducing_temperature = terms.temperature,
+        .reducing_value = terms.value,
+        .count = terms.count,
+        .terms = terms.terms,
     };
 }
 
@@ -309,29 +319,31 @@ static void read_source(struct elaboration *e, const struct statement *statement
     finish_items(&reading);
 }
 
-static void read_valid_temperature(struct elaboration *e, const struct statement *statement, void *target)
+bool read_temperature_range(struct elaboration *e, const struct statement *statement, double *least, double *most)
 {
-    struct equation *equation = target;
     struct reading reading = read_items(e, statement);
     const struct item *from = take_item(&reading, ITEM_FROM);
     const struct item *to = take_item(&reading, ITEM_TO);
     if (from == NULL || to == NULL) {
         report_missing(&reading, "a range, from a temperature to a temperature,");
-        return;
+        return false;
     }
-    double least;
-    double most;
-    if (!read_value(e, &FORM_TEMPERATURE, "valid-temperature", from->value, &least) ||
-        !read_value(e, &FORM_TEMPERATURE, "valid-temperature", to->value, &most) || !finish_items(&reading)) {
-        return;
+    if (!read_value(e, &FORM_TEMPERATURE, "valid-temperature", from->value, least) ||
+        !read_value(e, &FORM_TEMPERATURE, "valid-temperature", to->value, most) || !finish_items(&reading)) {
+        return false;
     }
-    if (!(least < most)) {
+    if (!(*least < *most)) {
         diagnose(e->out, CODE_E209, statement->at, "valid-temperature: the range ends before it begins");
-        return;
+        return false;
     }
-    equation->has_range = true;
-    equation->smallest_temperature = least;
-    equation->largest_temperature = most;
+    return true;
+}
+
+static void read_valid_temperature(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct equation *equation = target;
+    equation->has_range =
+        read_temperature_range(e, statement, &equation->smallest_temperature, &equation->largest_temperature);
 }
 
 #define QUANTITY(word, member) READ_QUANTITY(WORD_EQUATION_##word, NULL, struct equation, member)

@@ -532,6 +532,29 @@ static void attach_lists(struct elaboration *e, struct sheet_target *target)
     }
 }
 
+static bool any_no_solid(const struct predicate *predicates, size_t count)
+{
+    for (size_t i = 0; i < count; i++) {
+        if (predicates[i].kind == PREDICATE_NO_SOLID) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* What is known of solids counts as used where a condition speaks of them. */
+static void use_solids(struct elaboration *e, struct case_sheet *sheet)
+{
+    sheet->asks_of_solids = any_no_solid(sheet->requirements, sheet->requirement_count);
+    for (size_t i = 0; i < sheet->rule_count; i++) {
+        sheet->asks_of_solids =
+            sheet->asks_of_solids || any_no_solid(sheet->rules[i]->predicates, sheet->rules[i]->predicate_count);
+    }
+    for (size_t i = 0; sheet->asks_of_solids && i < sheet->fluid->count; i++) {
+        use_solid(e, sheet->fluid->components[i]);
+    }
+}
+
 static struct location place_of_fluid(const struct sheet_target *target)
 {
     return target->fluid != NULL ? target->fluid->at : target->charge->at;
@@ -556,6 +579,7 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
         }
     }
     attach_lists(e, target);
+    use_solids(e, sheet);
 }
 
 /* A sheet with a mistake in it is not put together, but what it names is looked up, so that one run tells of every

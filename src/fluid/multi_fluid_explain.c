@@ -77,10 +77,13 @@ static void tell_sums(const struct parts_told *told)
     }
     tell_components(told);
     const char *formula = components_formula(told);
-    explanation_add(told->out, (struct explained_value){
-                                   told->is_slope ? "D_comp" : "A_comp",
-                                   explanation_text(told->out, "the components, %s", value_words(told)), formula, "1",
-                                   formula == NULL ? terms_of_components(told->fluid) : 0, components, false});
+    explanation_add(
+        told->out,
+        (struct explained_value){
+            told->is_slope ? "D_comp" : "A_comp",
+            explanation_text(told->out, formula == NULL ? "terms of the components, %s" : "the components, %s",
+                             value_words(told)),
+            formula, "1", formula == NULL ? terms_of_components(told->fluid) : 0, components, false});
     explanation_put(
         told->out, told->is_slope ? "D_dep" : "A_dep",
         terms == 0 ? "no departure function belongs to these pairs"

@@ -106,6 +106,22 @@ struct reference_spec {
     struct saturation_guess pressure_guess, liquid_guess, vapour_guess;
 };
 
+/* The sublimation line of a pure solid, with theta = T / T_r:
+ *   REDUCED_SERIES     ln(p / p_r) = (1 / theta) sum n theta^t
+ *   GAP_SERIES         ln(p / p_r) = (1 / theta) sum n (1 - theta)^t
+ *   POWER_DIFFERENCES  ln(p / p_r) = sum n (1 - theta^t)
+ *   INVERSE_POWERS     ln(p / p_r) = sum n theta^-t */
+enum sublimation_form { REDUCED_SERIES, GAP_SERIES, POWER_DIFFERENCES, INVERSE_POWERS };
+
+struct solid_spec {
+    enum sublimation_form form;
+    double reducing_temperature, reducing_pressure; /* K, Pa */
+    size_t count;
+    const double (*terms)[2];                         /* n, t */
+    double smallest_temperature, largest_temperature; /* K, of the line; the latter is the triple point */
+    double molar_volume;                              /* m3/mol */
+};
+
 /* Parameters of a component that belong to one cubic equation alone. A member set to zero (or not given) is left out
  * of the equation. Method words are those of fluid/methods.c. */
 struct cubic_set {
@@ -174,6 +190,7 @@ struct pure_spec {
     struct optional dipole;                 /* C m */
     const struct reference_spec *reference; /* NULL where none is published */
     const struct reference_spec *gerg_2008; /* NULL: not one of the components of GERG-2008 */
+    const struct solid_spec *solid;         /* NULL: nothing is known of it as a solid */
     size_t cubic_set_count;
     const struct cubic_set *cubic_sets; /* at most one for each method */
     size_t group_count;                 /* 0: no assignment to groups */

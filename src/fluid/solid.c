@@ -1,0 +1,84 @@
+#include "fluid/solid.h"
+
+#include <math.h>
+
+/* ---- the sublimation line ---------------------------------------------------------------------------------------- */
+
+/* ln(p / p_r) and its derivative by theta. */
+struct line_value {
+    double ln_p, slope;
+};
+
+static struct line_value term_at(enum sublimation_form form, double n, double t, double theta)
+{
+    const double gap = 1.0 - theta;
+    switch (form) {
+    case REDUCED_SERIES:
+        return (struct line_value){n * pow(theta, t - 1.0), n * (t - 1.0) * pow(theta, t - 2.0)};
+    case GAP_SERIES: {
+        /* Above the triple point, where the gap is negative, the series goes on as an odd function of it. */
+        const double size = fabs(gap), power = pow(size, t);
+        const double value = gap < 0.0 ? -n * power : n * power;
+        const double slope = -n * t * pow(size, t - 1.0);
+        return (struct line_value){value / theta, slope / theta - value / (theta * theta)};
+    }
+    case POWER_DIFFERENCES:
+        return (struct line_value){n * (1.0 - pow(theta, t)), -n * t * pow(theta, t - 1.0)};
+    case INVERSE_POWERS:
+        return (struct line_value){n * pow(theta, -t), -n * t * pow(theta, -t - 1.0)};
+    }
+    return (struct line_value){0.0, 0.0};
+}
+
+double solid_sublimation_pressure(const struct solid_spec *solid, double temperature, double *slope)
+{
+    const double theta = temperature / solid->reducing_temperature;
+    struct line_value sum = {0.0, 0.0};
+    for (size_t i = 0; i < solid->count; i++) {
+        const struct line_value term = term_at(solid->form, solid->terms[i][0], solid->terms[i][1], theta);
+        sum.ln_p += term.ln_p;
+        sum.slope += term.slope;
+    }
+    *slope = sum.slope / solid->reducing_temperature;
+    return solid->reducing_pressure * exp(sum.ln_p);
+}
+
+bool solid_exists_at(const struct solid_spec *solid, double temperature)
+{
+    return temperature <= solid->largest_temperature * (1.0 + SOLID_ABOVE_TRIPLE);
+}
+
+/* ---- its fugacity ------------------------------------------------------------------------------------------------ */
+
+enum answer solid_at(const struct solid_spec *solid, const struct fluid_at_t *pure, double pressure,
+                     struct solid_state *out)
+{
+    const double T = pure->temperature, one = 1.0;
+    if (!solid_exists_at(solid, T)) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    double slope;
+    const double p_sub = solid_sublimation_pressure(solid, T, &slope);
+    const double RT = pure->fluid->gas_constant * T, v = solid->molar_volume;
+    struct pure_arrays arrays;
+    struct phase vapour;
+    phase_of_pure(&vapour, &arrays);
+    const enum answer answer =
+        phase_tp(pure, p_sub, &one, BRANCH_VAPOUR, PHASE_LN_PHI | PHASE_DLN_PHI_DT | PHASE_DLN_PHI_DP, &vapour);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    const double exponent = v * (pressure - p_sub) / RT;
+    /* dln f/dT = dln p_sub/dT (1 + p_sub dln phi/dp) + dln phi/dT - v (p - p_sub) / (R T^2) - v p_sub/(R T) dln
+     * p_sub/dT */
+    const double by_t = slope * (1.0 + p_sub * arrays.dln_phi_dp - v * p_sub / RT) + arrays.dln_phi_dt - exponent / T;
+    *out = (struct solid_state){
+        .sublimation_pressure = p_sub,
+        .ln_phi = arrays.ln_phi,
+        .poynting = exp(exponent),
+        .ln_fugacity = log(p_sub) + arrays.ln_phi + exponent,
+        .molar_volume = v,
+        .departure_enthalpy = -RT * T * by_t,
+    };
+    return isfinite(out->ln_fugacity) ? ANSWER_OK : ANSWER_FAILED;
+}
