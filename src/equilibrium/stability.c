@@ -400,8 +400,8 @@ static void record(struct test *t, const struct trial *trial)
     out->is_stable = !(tpd < -STABILITY_ROUNDING);
 }
 
-/* Where a method has no phase at all, as some equations have no cold liquid of a component by itself, none lies below the
- * plane: such a trial is passed over. */
+/* Where a method has no phase at all, as some equations have no cold liquid of a component by itself, none lies below
+ * the plane: such a trial is passed over. */
 static enum answer unless_there_is_none(enum answer answer)
 {
     return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;

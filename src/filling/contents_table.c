@@ -82,7 +82,8 @@ void warn_below_triple(const struct sheet_run *run, double temperature)
         const struct quantity *triple = &component->triple_temperature;
         if (triple->given && temperature < triple->value * (1.0 - TEMPERATURE_ROUNDING)) {
             result_warn(run->result, CODE_W350, location_line(run->sheet->at), run->number,
-                        "below the triple point of %s, %s, a solid may form, which no method here knows",
+                        "below the triple point of %s, %s, a solid may form beside the fluid phases told: "
+                        "`no solid` asks for it",
                         component->name, temperature_words(run, triple->value));
         }
     }

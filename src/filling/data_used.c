@@ -220,6 +220,34 @@ static void tell_equation(const struct telling *telling, const struct case_compo
     warn_unverified(telling, row->name, source);
 }
 
+static bool any_sheet_asks_of_solids(const struct case_tree *tree, const struct case_component *component)
+{
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        if (tree->sheets[i].asks_of_solids && contains(tree->sheets[i].fluid, component)) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* What is known of it as a solid. */
+static void tell_solid(const struct telling *telling, const struct case_component *component)
+{
+    const struct case_solid *solid = component->solid;
+    struct arena *arena = telling->result->arena;
+    if (solid == NULL) {
+        add_row(telling, "solid", "nothing is known of it")->source = "–";
+        return;
+    }
+    struct data_row *row = add_row(telling, "sublimation-line",
+                                   arena_format(arena, "%zu terms, %g to %g K", solid->spec.count,
+                                                solid->spec.smallest_temperature, solid->spec.largest_temperature));
+    row->source = solid->source == NULL ? "given in this deck" : solid->source->key;
+    row->remark = solid->source != NULL && solid->source->is_unverified ? "unverified" : NULL;
+    warn_unverified(telling, row->name, solid->source);
+    tell_quantity(telling, "solid molar-volume", &solid->molar_volume, "m3/mol", true);
+}
+
 static bool is_in_use(const struct method_pool *pool, const struct case_component *component, const char *method)
 {
     for (size_t i = 0; i < pool->count; i++) {
@@ -297,6 +325,9 @@ static void tell_component(const struct case_tree *tree, const struct method_poo
     }
     if (any_method(pool, component, false, uses_equation)) {
         tell_equation(&telling, component);
+    }
+    if (any_sheet_asks_of_solids(tree, component)) {
+        tell_solid(&telling, component);
     }
 }
 

@@ -3,6 +3,7 @@
 #include "filling/classify.h"
 #include "filling/contents_table.h"
 #include "filling/dew_limit.h"
+#include "filling/frost_told.h"
 #include "filling/hand_check.h"
 #include "filling/permissible_internal.h"
 #include "filling/requirement.h"
@@ -449,6 +450,7 @@ void answer_permissible_charge(struct sheet_run *run)
     tell_rules(&sheet);
     tell_limits(&sheet);
     tell_dew_limits(&sheet);
+    tell_frost_limits(&sheet);
     tell_listed_row(&sheet);
     if (!sheet.governing.given) {
         tell_undecided(&sheet);

@@ -1,3 +1,4 @@
+#include "filling/frost.h"
 #include "filling/mixture_contents.h"
 #include "filling/predicate_internal.h"
 #include "filling/search.h"
@@ -243,22 +244,45 @@ static struct predicate_finding phases_at(enum predicate_kind kind, bool is_pure
     return finding;
 }
 
-/* No method here has a solid: the triple point alone decides, and below it nothing can be said. */
-static struct predicate_finding no_solid_at(const struct sheet_run *run, double temperature, double *score)
+static struct predicate_finding solid_unknown(const struct sheet_run *run, const struct case_component *component,
+                                              double temperature)
 {
+    return undecided(
+        ANSWER_CANNOT, temperature,
+        !component->triple_temperature.given
+            ? "the triple temperature is not given"
+            : arena_format(run->arena, "below the triple point of %s, of which no solid is known", component->name));
+}
+
+/* As with liquids, every density up to the vessel's counts: its density is held against the lowest that freezes. */
+static struct predicate_finding no_solid_at(const struct sheet_run *run, struct method_run *method, double mass,
+                                            double temperature, double *score)
+{
+    const struct case_fluid *fluid = run->sheet->fluid;
     struct predicate_finding finding = {.answer = ANSWER_OK, .worst_temperature = temperature};
-    double distance = (double)INFINITY;
-    for (size_t i = 0; i < run->sheet->fluid->count; i++) {
-        const struct quantity *triple = &run->sheet->fluid->components[i]->triple_temperature;
-        if (!triple->given) {
-            return undecided(ANSWER_CANNOT, temperature, "the triple temperature is not given");
-        }
-        if (temperature < triple->value * (1.0 - TEMPERATURE_ROUNDING)) {
-            return undecided(ANSWER_CANNOT, temperature, "below the triple point, where no method here has a solid");
-        }
-        distance = fmin(distance, temperature - triple->value);
+    const struct case_component *unknown = frost_unknown(fluid, temperature);
+    struct frost_limit limit;
+    if (unknown != NULL) {
+        return solid_unknown(run, unknown, temperature);
     }
-    decide(&finding, true, distance, "above the triple point", score);
+    if (!frost_is_possible(fluid, temperature)) {
+        decide(&finding, true, (double)INFINITY, "above the triple point", score);
+        return finding;
+    }
+    const enum answer answer = frost_limit_at(fluid, method, temperature, &limit);
+    if (answer != ANSWER_OK) {
+        return undecided(answer, temperature, "the method gave no answer");
+    }
+    if (!limit.forms) {
+        decide(&finding, true, limit.clearance, "no frost at any density", score);
+        return finding;
+    }
+    const double molar_volume = run->sheet->vessel->water_capacity.value * method->molar_mass / mass;
+    const double below = log(molar_volume / limit.molar_volume);
+    decide(&finding, below >= 0.0, below,
+           arena_format(run->arena, below >= 0.0 ? "short of frost of %s" : "frost of %s",
+                        fluid->components[limit.at.component]->name),
+           score);
     return finding;
 }
 
@@ -319,7 +343,7 @@ struct predicate_finding predicate_at(const struct sheet_run *run, struct method
 {
     *score = 0.0;
     if (predicate->kind == PREDICATE_NO_SOLID) {
-        return no_solid_at(run, temperature, score);
+        return no_solid_at(run, method, mass, temperature, score);
     }
     if (predicate->kind == PREDICATE_NO_LIQUID && method->mixture != NULL) {
         return no_liquid_of_mixture(run, method, mass, temperature, score);

@@ -1,5 +1,6 @@
 /* The settled-pressure sheet: pressure, phases and level of a charge over temperature, the temperatures at which it
  * changes, and what 1 K, 1 % and 1 bar of fill do to it. */
+#include "filling/frost_told.h"
 #include "filling/charge_facts.h"
 #include "filling/classify.h"
 #include "filling/contents_table.h"
@@ -269,6 +270,7 @@ void answer_settled_pressure(struct sheet_run *run)
     add_quotes(&settled);
     add_phases_table(run, lead, settled.split.items, settled.split.count);
     add_liquid_at(run, lead, settled.mass, coldest(&settled));
+    tell_frost_line(run);
     add_found(&settled);
     add_stepwise(run, lead, settled.mass);
     const struct fill_point fill = fill_point_of(run, lead, settled.mass);

@@ -73,8 +73,8 @@ static bool read_root_or_library(void *context, struct arena *arena, const char 
 }
 
 /* Naming the method makes the library bring in its parameters. */
-static const struct fluid_spec *library_mixture(const char *method, const char *const names[], size_t count,
-                                                struct arena *arena)
+const struct case_fluid *measured_case_fluid(const char *method, const char *const names[], size_t count,
+                                             struct arena *arena)
 {
     struct text root = {.arena = arena};
     struct diagnostics diagnostics = {.arena = arena};
@@ -89,13 +89,13 @@ static const struct fluid_spec *library_mixture(const char *method, const char *
     const struct case_fluid *fluid = case_find_mixture(deck, "measured", arena, &diagnostics);
     assert_non_null(fluid);
     assert_int_equal(fluid->count, count);
-    return &fluid->spec;
+    return fluid;
 }
 
 struct measured_mixture measured_mixture_create(const char *method, const char *const names[], size_t count,
                                                 struct arena *arena)
 {
-    struct measured_mixture mixture = {.spec = library_mixture(method, names, count, arena)};
+    struct measured_mixture mixture = {.spec = &measured_case_fluid(method, names, count, arena)->spec};
     struct fluid_lack_report lack;
     mixture.fluid = fluid_create(method, mixture.spec, arena, &lack);
     assert_non_null(mixture.fluid);

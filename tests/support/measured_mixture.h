@@ -40,6 +40,11 @@ struct measured_mixture {
     struct boundary_list *boundaries;
 };
 
+/* The same as a deck's mixture, 1 % of each component but the last. */
+struct case_fluid;
+const struct case_fluid *measured_case_fluid(const char *method, const char *const names[], size_t count,
+                                             struct arena *arena);
+
 /* `names` are the library's words; fails the test where the method cannot be had. */
 struct measured_mixture measured_mixture_create(const char *method, const char *const names[], size_t count,
                                                 struct arena *arena);

@@ -1,0 +1,44 @@
+/* Where a fluid freezes: which of its components forms a solid, and at what density.
+ *
+ * A solid is pure; it forms where the fugacity of its component in the fluid reaches its own (fluid/solid.h). Nothing
+ * is allocated.
+ */
+#ifndef TAREWRIGHT_FILLING_FROST_H
+#define TAREWRIGHT_FILLING_FROST_H
+
+#include "filling/sheet.h"
+#include "fluid/solid.h"
+
+/* A component that is present, below its triple temperature, and of which nothing is known as a solid: nothing can be
+ * said of frost then. NULL: none. One whose triple temperature is not given counts where it is not known to be
+ * a solid either. */
+const struct case_component *frost_unknown(const struct case_fluid *fluid, double temperature);
+
+/* Whether any component can be a solid at this temperature at all. */
+bool frost_is_possible(const struct case_fluid *fluid, double temperature);
+
+/* A state of the fluid held against the solids. */
+struct frost_margin {
+    double value;     /* largest ln f_fluid - ln f_solid of any component; above 0 it freezes */
+    size_t component; /* that it is of */
+    double pressure;  /* Pa, of the fluid */
+    struct solid_state solid;
+};
+
+/* At the fluid's overall composition and molar volume (m3/mol), solids apart, in equilibrium with itself. `method` has
+ * any temperature set, and `temperature` afterwards. ANSWER_CANNOT: no component can be a solid. */
+enum answer frost_margin_at(const struct case_fluid *fluid, struct method_run *method, double temperature,
+                            double molar_volume, struct frost_margin *out);
+
+/* The lowest density at which frost forms out of the fluid as one phase, be it stable against liquids or not. */
+struct frost_limit {
+    bool forms;          /* false: at no density the method knows; only the next is then given */
+    double clearance;    /* the least ln f_solid - ln f_fluid at the densities without frost */
+    double molar_volume; /* m3/mol, of the whole */
+    struct frost_margin at;
+    double ideal_pressure; /* Pa: the sublimation pressure over the component's mole fraction */
+};
+enum answer frost_limit_at(const struct case_fluid *fluid, struct method_run *method, double temperature,
+                           struct frost_limit *out);
+
+#endif
