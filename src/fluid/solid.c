@@ -11,23 +11,28 @@ struct line_value {
 
 static struct line_value term_at(enum sublimation_form form, double n, double t, double theta)
 {
-    const double gap = 1.0 - theta;
+    struct line_value term = {0.0, 0.0};
+    const double size = fabs(1.0 - theta);
     switch (form) {
     case REDUCED_SERIES:
-        return (struct line_value){n * pow(theta, t - 1.0), n * (t - 1.0) * pow(theta, t - 2.0)};
-    case GAP_SERIES: {
-        /* Above the triple point, where the gap is negative, the series goes on as an odd function of it. */
-        const double size = fabs(gap), power = pow(size, t);
-        const double value = gap < 0.0 ? -n * power : n * power;
-        const double slope = -n * t * pow(size, t - 1.0);
-        return (struct line_value){value / theta, slope / theta - value / (theta * theta)};
-    }
+        term.ln_p = n * pow(theta, t - 1.0);
+        term.slope = (t - 1.0) * term.ln_p / theta;
+        break;
+    case GAP_SERIES:
+        /* Above the triple point, where 1 - theta is negative, the series goes on as an odd function of it. */
+        term.ln_p = (theta > 1.0 ? -n : n) * pow(size, t) / theta;
+        term.slope = -n * t * pow(size, t - 1.0) / theta - term.ln_p / theta;
+        break;
     case POWER_DIFFERENCES:
-        return (struct line_value){n * (1.0 - pow(theta, t)), -n * t * pow(theta, t - 1.0)};
+        term.ln_p = n * (1.0 - pow(theta, t));
+        term.slope = -n * t * pow(theta, t - 1.0);
+        break;
     case INVERSE_POWERS:
-        return (struct line_value){n * pow(theta, -t), -n * t * pow(theta, -t - 1.0)};
+        term.ln_p = n * pow(theta, -t);
+        term.slope = -t * term.ln_p / theta;
+        break;
     }
-    return (struct line_value){0.0, 0.0};
+    return term;
 }
 
 double solid_sublimation_pressure(const struct solid_spec *solid, double temperature, double *slope)
