@@ -8,6 +8,7 @@
 #include "filling/phases_table.h"
 #include "filling/requirement.h"
 #include "filling/sensitivities.h"
+#include "filling/solid_contents.h"
 #include "filling/stepwise.h"
 #include "filling/sweep.h"
 
@@ -271,6 +272,7 @@ void answer_settled_pressure(struct sheet_run *run)
     add_phases_table(run, lead, settled.split.items, settled.split.count);
     add_liquid_at(run, lead, settled.mass, coldest(&settled));
     tell_frost_line(run);
+    tell_solid_contents(run, lead, settled.mass, settled.temperatures, settled.count);
     add_found(&settled);
     add_stepwise(run, lead, settled.mass);
     const struct fill_point fill = fill_point_of(run, lead, settled.mass);
