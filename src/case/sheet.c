@@ -542,7 +542,21 @@ static bool any_no_solid(const struct predicate *predicates, size_t count)
     return false;
 }
 
-/* What is known of solids counts as used where a condition speaks of them. */
+/* A settled-pressure sheet tells the solids at rest at the temperatures it sweeps. */
+static bool sweeps_below(const struct case_sheet *sheet, const struct case_component *component)
+{
+    if (sheet->kind != SHEET_SETTLED_PRESSURE || component->solid == NULL) {
+        return false;
+    }
+    for (size_t i = 0; i < sheet->temperatures.count; i++) {
+        if (sheet->temperatures.values[i] < component->solid->spec.largest_temperature) {
+            return true;
+        }
+    }
+    return false;
+}
+
+/* What is known of solids counts as used where a condition speaks of them, or a table tells them. */
 static void use_solids(struct elaboration *e, struct case_sheet *sheet)
 {
     sheet->asks_of_solids = any_no_solid(sheet->requirements, sheet->requirement_count);
@@ -550,8 +564,10 @@ static void use_solids(struct elaboration *e, struct case_sheet *sheet)
         sheet->asks_of_solids =
             sheet->asks_of_solids || any_no_solid(sheet->rules[i]->predicates, sheet->rules[i]->predicate_count);
     }
-    for (size_t i = 0; sheet->asks_of_solids && i < sheet->fluid->count; i++) {
-        use_solid(e, sheet->fluid->components[i]);
+    for (size_t i = 0; i < sheet->fluid->count; i++) {
+        if (sheet->asks_of_solids || sweeps_below(sheet, sheet->fluid->components[i])) {
+            use_solid(e, sheet->fluid->components[i]);
+        }
     }
 }
 

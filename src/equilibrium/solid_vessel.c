@@ -29,7 +29,8 @@ enum answer former_at(const struct solid_spec *solid, const struct fluid_at_t *p
 {
     struct solid_state state;
     const enum answer answer = solid_at(solid, pure, 0.0, &state);
-    *out = (struct former){component, state.ln_fugacity, state.molar_volume};
+    *out = (struct former){component, state.ln_fugacity, state.molar_volume,
+                           state.molar_volume / (pure->fluid->gas_constant * pure->temperature)};
     return answer;
 }
 
@@ -64,14 +65,14 @@ struct freezing {
 static void set_gaps(const struct freezing *z, double gap[])
 {
     const struct split *split = z->out->fluid->split;
-    const double p = split->pressure, RT = z->at_t->fluid->gas_constant * z->at_t->temperature;
+    const double p = split->pressure;
     for (size_t j = 0; j < z->out->former_count; j++) {
         const struct former *former = &z->out->formers[j];
         const size_t i = former->component;
         gap[j] = -HUGE_VAL;
         if (split->phase[0].x[i] > 0.0) {
-            gap[j] = log(split->phase[0].x[i] * p) + split->phase[0].ln_phi[i] - former->ln_fugacity -
-                     former->molar_volume * p / RT;
+            gap[j] =
+                log(split->phase[0].x[i] * p) + split->phase[0].ln_phi[i] - former->ln_fugacity - former->poynting * p;
         }
     }
 }
@@ -316,20 +317,19 @@ static const double ONE_MOLE = 1.0;
 static enum answer equal_pressure(const struct fluid_at_t *at_t, const struct former *former, struct phase *vapour,
                                   double *pressure, double *gap)
 {
-    const double RT = at_t->fluid->gas_constant * at_t->temperature;
     double p = exp(former->ln_fugacity);
     for (int step = 0; step < MOST_STEPS; step++) {
         const enum answer answer = phase_tp(at_t, p, &ONE_MOLE, BRANCH_VAPOUR, PHASE_LN_PHI, vapour);
         if (answer != ANSWER_OK) {
             return answer;
         }
-        *gap = log(p) + vapour->ln_phi[0] - former->ln_fugacity - former->molar_volume * p / RT;
+        *gap = log(p) + vapour->ln_phi[0] - former->ln_fugacity - former->poynting * p;
         *pressure = p;
         if (fabs(*gap) <= AIM) {
             return ANSWER_OK;
         }
         /* d gap / d ln p = p (v_vapour - v_solid) / (R T) */
-        p *= exp(-*gap / (vapour->Z - former->molar_volume * p / RT));
+        p *= exp(-*gap / (vapour->Z - former->poynting * p));
     }
     return fabs(*gap) <= SOLID_LN_F_TOLERANCE ? ANSWER_OK : ANSWER_FAILED;
 }
@@ -349,6 +349,7 @@ enum answer pure_solid_vessel_at_tv(const struct fluid_at_t *at_t, double volume
         return answer;
     }
     out->vapour_volume = vapour.volume;
+    out->phi = exp(vapour.ln_phi[0]);
     if (volume <= amount * former->molar_volume) {
         return ANSWER_OUT_OF_RANGE;
     }

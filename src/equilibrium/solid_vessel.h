@@ -14,11 +14,12 @@ enum { MOST_FORMERS = 8 };
  * may exceed it. */
 #define SOLID_LN_F_TOLERANCE 1e-10
 
-/* A component that can be a solid, at one temperature: ln f = ln_fugacity + molar_volume p / (R T). */
+/* A component that can be a solid, at one temperature: ln f = ln_fugacity + poynting p. */
 struct former {
     size_t component;
     double ln_fugacity;  /* ln(f / Pa) of the solid, drawn out to p = 0 */
     double molar_volume; /* m3/mol */
+    double poynting;     /* molar_volume / (R T), 1/Pa, with the gas constant of the pure fluid */
 };
 
 /* The former of `component`, of which `pure` is the fluid alone, by the same method and at the temperature wanted.
@@ -51,6 +52,7 @@ struct pure_solid_vessel {
     double pressure;                    /* Pa, where both have one fugacity */
     double vapour_amount, solid_amount; /* mol; no solid: the vapour alone does not reach that pressure */
     double vapour_volume, solid_volume; /* m3/mol; vapour_volume of the vapour that is there */
+    double phi;                         /* fugacity coefficient of the vapour at that pressure */
     double residual;                    /* ln f_vapour - ln f_solid; 0 without a solid */
 };
 

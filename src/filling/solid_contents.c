@@ -2,6 +2,7 @@
 #include "filling/solid_contents.h"
 
 #include "equilibrium/solid_vessel.h"
+#include "filling/hand_check.h"
 #include "filling/mixture_contents.h"
 #include "filling/requirement.h"
 
@@ -28,6 +29,7 @@ struct frozen {
     size_t solid_count;
     struct former formers[MOST_FORMERS];
     double solid[MOST_FORMERS], left[MOST_FORMERS]; /* mol; mole fraction in the lightest phase */
+    double phi[MOST_FORMERS];                       /* fugacity coefficient in the lightest phase */
 };
 
 static struct freezer freezer_create(const struct sheet_run *run, struct method_run *method, double mass)
@@ -91,6 +93,7 @@ static enum answer freeze_pure(const struct freezer *f, const struct former *for
         out->formers[0] = *former;
         out->solid[0] = vessel.solid_amount;
         out->left[0] = 1.0;
+        out->phi[0] = vessel.phi;
     }
     return ANSWER_OK;
 }
@@ -110,7 +113,8 @@ static enum answer freeze_mixture(const struct freezer *f, const struct former f
             const size_t i = formers[j].component;
             out->formers[out->solid_count] = formers[j];
             out->solid[out->solid_count] = f->vessel->solid[j];
-            out->left[out->solid_count++] = split->phase[0].x[i];
+            out->left[out->solid_count] = split->phase[0].x[i];
+            out->phi[out->solid_count++] = exp(split->phase[0].ln_phi[i]);
         }
     }
     return ANSWER_OK;
@@ -171,7 +175,9 @@ static struct table *begin_table(const struct sheet_run *run, const struct metho
     table_add_column(result, table, "solid-mass", look_significant(look_mass(run), 4));
     table_add_column(result, table, "solid-share", look_percent(1));
     table_add_column(result, table, "solid-volume", look_percent(2));
-    table_add_column(result, table, "left-in-gas", look_significant(look_percent(0), 4));
+    if (method->mixture != NULL) {
+        table_add_column(result, table, "left-in-gas", look_significant(look_percent(0), 4));
+    }
     return table;
 }
 
@@ -192,21 +198,60 @@ static void add_rows(const struct freezer *f, struct table *table, double temper
         cell_set(&row[SOLID_MASS], frozen->solid[j] * component->molar_mass.value);
         cell_set(&row[SOLID_SHARE], frozen->solid[j] / f->n[former->component]);
         cell_set(&row[SOLID_VOLUME], frozen->solid[j] * former->molar_volume / f->volume);
-        cell_set(&row[SOLID_LEFT], frozen->left[j]);
+        if (table->column_count > SOLID_LEFT) {
+            cell_set(&row[SOLID_LEFT], frozen->left[j]);
+        }
     }
 }
 
-static void tell_first_frost(const struct freezer *f, double cold, double warm)
+/* `warm` NULL: a solid is there at every temperature asked about. */
+static void tell_first_frost(const struct freezer *f, double cold, const double *warm)
 {
     const struct sheet_run *run = f->run;
-    const double first = first_frost(f, cold, warm);
-    sheet_begin_facts(run->result, run->out, "solids at the filled density");
-    struct fact *fact = sheet_add_fact(run->result, run->out, "first-frost-temperature", first, look_temperature(run));
-    fact->method = f->method->name;
+    const char *from = "at every temperature asked about";
+    if (warm != NULL) {
+        const double first = first_frost(f, cold, *warm);
+        sheet_begin_facts(run->result, run->out, "solids at the filled density");
+        sheet_add_fact(run->result, run->out, "first-frost-temperature", first, look_temperature(run))->method =
+            f->method->name;
+        from = arena_format(run->arena, "from %s down", temperature_words(run, first));
+    }
     result_warn(run->result, CODE_W363, location_line(run->sheet->at), run->number,
-                "%s, %s: from %s down a solid is there; the table of settled pressures has the fluid alone, the table "
-                "'with solids, at rest' what settles in the end",
-                run->sheet->fluid->name, f->method->name, temperature_words(run, first));
+                "%s, %s: %s a solid is there; the table of settled pressures has the fluid alone, the table 'with "
+                "solids, at rest' what settles in the end",
+                run->sheet->fluid->name, f->method->name, from);
+}
+
+/* The first solid's fugacity and that of its component in the gas, of which both are the answer's. */
+static void add_hand_check(const struct freezer *f, double temperature, const struct frozen *frozen)
+{
+    const struct sheet_run *run = f->run;
+    const struct former *former = &frozen->formers[0];
+    const struct method_run *alone = f->ws == NULL ? f->method : mixture_alone(f->method, former->component);
+    const double p = frozen->pressure, x = frozen->left[0], phi = frozen->phi[0];
+    struct solid_state solid;
+    if (fluid_set_t(alone->at_t, alone->fluid, temperature) != ANSWER_OK ||
+        solid_at(alone->fluid->spec->pure[0]->solid, alone->at_t, p, &solid) != ANSWER_OK) {
+        return;
+    }
+    struct explanation numbers = {.count = 0};
+    struct hand_check *check = sheet_add_hand_check(run->result, run->out,
+                                                    arena_format(run->arena, "solid %s at %s, %s",
+                                                                 run->sheet->fluid->components[former->component]->name,
+                                                                 temperature_words(run, temperature), f->method->name));
+    hand_check_put(&numbers, "R", "gas constant", NULL, "J/mol/K", alone->fluid->gas_constant);
+    hand_check_put(&numbers, "T", "temperature", NULL, "K", temperature);
+    hand_check_put(&numbers, "p", "settled pressure, with solids", NULL, "Pa", p);
+    hand_check_put(&numbers, "p_sub", "sublimation pressure", NULL, "Pa", solid.sublimation_pressure);
+    hand_check_put(&numbers, "phi_sub", "of its vapour at p_sub", NULL, "1", exp(solid.ln_phi));
+    hand_check_put(&numbers, "v", "molar volume of the solid", NULL, "m3/mol", solid.molar_volume);
+    hand_check_put(&numbers, "poynting", "Poynting factor", "exp(v * (p - p_sub) / (R * T))", "1", solid.poynting);
+    hand_check_put(&numbers, "f_solid", "fugacity of the solid", "p_sub * phi_sub * poynting", "Pa",
+                   exp(solid.ln_fugacity));
+    hand_check_put(&numbers, "x", "mole fraction left in the gas", NULL, "1", x);
+    hand_check_put(&numbers, "phi", "its fugacity coefficient there", NULL, "1", phi);
+    hand_check_put(&numbers, "f_gas", "fugacity in the gas", "x * p * phi", "Pa", x * p * phi);
+    hand_check_numbers(run, check, &numbers);
 }
 
 void tell_solid_contents(const struct sheet_run *run, struct method_run *method, double mass,
@@ -214,7 +259,8 @@ void tell_solid_contents(const struct sheet_run *run, struct method_run *method,
 {
     struct table *table = NULL;
     const struct freezer freezer = freezer_create(run, method, mass);
-    size_t last = 0;
+    struct frozen coldest = {.solid_count = 0};
+    size_t first = 0, last = 0;
     for (size_t t = 0; t < count; t++) {
         struct frozen frozen;
         const enum answer answer = freeze_at(&freezer, temperatures[t], &frozen);
@@ -226,11 +272,16 @@ void tell_solid_contents(const struct sheet_run *run, struct method_run *method,
         if (answer != ANSWER_OK || frozen.solid_count == 0) {
             continue;
         }
-        table = table == NULL ? begin_table(run, method) : table;
+        if (table == NULL) {
+            table = begin_table(run, method);
+            coldest = frozen;
+            first = t;
+        }
         add_rows(&freezer, table, temperatures[t], &frozen);
         last = t;
     }
-    if (table != NULL && last + 1 < count) {
-        tell_first_frost(&freezer, temperatures[last], temperatures[last + 1]);
+    if (table != NULL) {
+        tell_first_frost(&freezer, temperatures[last], last + 1 < count ? &temperatures[last + 1] : NULL);
+        add_hand_check(&freezer, temperatures[first], &coldest);
     }
 }
