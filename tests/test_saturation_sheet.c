@@ -66,6 +66,45 @@ static void rows_are_the_saturations_at_exactly_the_swept_temperatures(void **st
     small_case_tear_down(&small);
 }
 
+/* An invented solid of propane, with a triple point where its vapour is no ideal gas: conditions of equilibrium ask for
+ * no real one. ln(p / 2 bar) = 11 (1 - 260 K / T). */
+static const double INVENTED_TERMS[][2] = {{11.0, -1.0}};
+static const struct solid_spec INVENTED_SOLID = {.form = POWER_DIFFERENCES,
+                                                 .reducing_temperature = 260.0,
+                                                 .reducing_pressure = 2e5,
+                                                 .count = 1,
+                                                 .terms = INVENTED_TERMS,
+                                                 .smallest_temperature = 230.0,
+                                                 .largest_temperature = 260.0,
+                                                 .molar_volume = 60e-6};
+
+/* Clapeyron: heat of sublimation = T (v_V - v_S) dp/dT, which the sheet has from departures and the line alone. */
+static void sublimation_heat_agrees_with_the_slope_of_the_line(void **state)
+{
+    (void)state;
+    const double temperatures[] = {225.0, 231.0, 245.0, 259.9, 265.0};
+    const double M = 0.04409562;
+    struct small_case small;
+    small_case_set_up(&small, SHEET_SATURATION);
+    small.pure.solid = &INVENTED_SOLID;
+    small.sheet.temperatures = sweep(temperatures, 5);
+    answer(&small, CUBICS);
+    const struct table *line = small_case_table(&small, 2);
+    assert_string_equal(line->title, "sublimation line");
+    assert_int_equal(line->row_count, 4);
+    for (size_t i = 0; i < 4; i++) {
+        const double T = temperatures[i], p = 2e5 * exp(11.0 * (1.0 - 260.0 / T));
+        const double slope = p * 11.0 * 260.0 / (T * T);
+        const double swell = M / number(line, i, "vapour-density") - M / number(line, i, "solid-density");
+        assert_close(number(line, i, "pressure"), p, 1e-13, "the line as published");
+        assert_close(number(line, i, "solid-density"), M / 60e-6, 1e-13, "M / v");
+        assert_close(number(line, i, "sublimation-heat") * M, T * swell * slope, 1e-10, "Clapeyron");
+        assert_int_equal(small_case_cell(line, i, "pressure")->is_outside_range, T < 230.0);
+    }
+    assert_int_equal(warnings_of(&small, CODE_W365), 1);
+    small_case_tear_down(&small);
+}
+
 /* Clausius and Clapeyron: dp/dT = latent heat / (T (v_V - v_L)), all per kilogram. */
 static void latent_heat_agrees_with_the_slope_of_the_line(void **state)
 {
@@ -258,6 +297,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(rows_are_the_saturations_at_exactly_the_swept_temperatures),
+        cmocka_unit_test(sublimation_heat_agrees_with_the_slope_of_the_line),
         cmocka_unit_test(latent_heat_agrees_with_the_slope_of_the_line),
         cmocka_unit_test(the_evidence_shows_equal_fugacities_and_consistent_compressibilities),
         cmocka_unit_test(a_temperature_above_the_critical_one_is_a_row_of_words),

@@ -339,6 +339,7 @@ struct case_sheet {
     struct optional iteration_at; /* K */
     enum listed_policy listed;
     bool asks_of_solids;   /* a rule or a requirement says `no solid` */
+    bool tells_solids;     /* so it is, or temperatures are swept at which a solid is told */
     const char *assessed;  /* NULL: none */
     const char *table_csv; /* NULL: none */
     size_t entry_count;    /* entries of the fluid that are in use */

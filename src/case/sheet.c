@@ -542,10 +542,13 @@ static bool any_no_solid(const struct predicate *predicates, size_t count)
     return false;
 }
 
-/* A settled-pressure sheet tells the solids at rest at the temperatures it sweeps. */
+/* A settled-pressure sheet tells the solids at rest at the temperatures it sweeps; a saturation sheet, of a pure gas,
+ * the sublimation line. */
 static bool sweeps_below(const struct case_sheet *sheet, const struct case_component *component)
 {
-    if (sheet->kind != SHEET_SETTLED_PRESSURE || component->solid == NULL) {
+    const bool tells =
+        sheet->kind == SHEET_SETTLED_PRESSURE || (sheet->kind == SHEET_SATURATION && sheet->fluid->count == 1);
+    if (!tells || component->solid == NULL) {
         return false;
     }
     for (size_t i = 0; i < sheet->temperatures.count; i++) {
@@ -564,10 +567,12 @@ static void use_solids(struct elaboration *e, struct case_sheet *sheet)
         sheet->asks_of_solids =
             sheet->asks_of_solids || any_no_solid(sheet->rules[i]->predicates, sheet->rules[i]->predicate_count);
     }
+    sheet->tells_solids = sheet->asks_of_solids;
     for (size_t i = 0; i < sheet->fluid->count; i++) {
-        if (sheet->asks_of_solids || sweeps_below(sheet, sheet->fluid->components[i])) {
-            use_solid(e, sheet->fluid->components[i]);
-        }
+        sheet->tells_solids = sheet->tells_solids || sweeps_below(sheet, sheet->fluid->components[i]);
+    }
+    for (size_t i = 0; sheet->tells_solids && i < sheet->fluid->count; i++) {
+        use_solid(e, sheet->fluid->components[i]);
     }
 }
 

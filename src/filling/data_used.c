@@ -220,10 +220,13 @@ static void tell_equation(const struct telling *telling, const struct case_compo
     warn_unverified(telling, row->name, source);
 }
 
-static bool any_sheet_asks_of_solids(const struct case_tree *tree, const struct case_component *component)
+/* A sheet that only tells solids does so of those that are known. */
+static bool any_sheet_tells_solids(const struct case_tree *tree, const struct case_component *component)
 {
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        if (tree->sheets[i].asks_of_solids && contains(tree->sheets[i].fluid, component)) {
+        const bool is_told =
+            tree->sheets[i].asks_of_solids || (tree->sheets[i].tells_solids && component->solid != NULL);
+        if (is_told && contains(tree->sheets[i].fluid, component)) {
             return true;
         }
     }
@@ -326,7 +329,7 @@ static void tell_component(const struct case_tree *tree, const struct method_poo
     if (any_method(pool, component, false, uses_equation)) {
         tell_equation(&telling, component);
     }
-    if (any_sheet_asks_of_solids(tree, component)) {
+    if (any_sheet_tells_solids(tree, component)) {
         tell_solid(&telling, component);
     }
 }

@@ -3,6 +3,7 @@
 #include "filling/hand_check.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
+#include "filling/sublimation_line.h"
 #include "filling/sweep.h"
 
 #include <math.h>
@@ -457,6 +458,7 @@ void answer_saturation(struct sheet_run *run)
     for (size_t m = 0; m < count; m++) {
         add_line_table(run, lines.methods[m], lines.points[m], m == 0 ? NULL : lines.points[0]);
         add_evidence_table(run, lines.methods[m], lines.points[m]);
+        tell_sublimation_line(run, lines.methods[m]);
         if (m == 0) {
             work_one_point(run, lines.methods[m], lines.points[m]);
         }
