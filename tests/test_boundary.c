@@ -1,5 +1,6 @@
 /* Dew and bubble points, envelopes and their extrema: against an independent evaluation and by what they mean. */
 #include "equilibrium/boundary.h"
+#include "equilibrium/mixture_critical.h"
 #include "equilibrium/split.h"
 #include "support/check.h"
 #include "support/mixture_states.h"
@@ -314,6 +315,49 @@ static void points_beside_a_critical_point_are_found(void **state)
     arena_free(arena);
 }
 
+/* From a part in a hundred to one in a million to either side of its critical temperature a mixture has points, one of
+ * them close to the critical one; at it there is an answer too. Mixtures of two to five substances in parts drawn from
+ * a seed. */
+static void no_temperature_beside_a_critical_point_is_without_points(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const enum sample_substance all[] = {NITROGEN, METHANE, CARBON_DIOXIDE, PROPANE, N_BUTANE};
+    size_t tried = 0;
+    uint64_t seed = 20261201;
+    for (size_t k = 0; k < 24; k++) {
+        const size_t first = k % 3, count = 2 + k % 4 > 5 - first ? 5 - first : 2 + k % 4;
+        struct sample_mixture m = sample_mixture_create(count, &all[first], 300.0, arena);
+        struct envelope *envelope = envelope_create(count, arena);
+        struct boundary_list *list = boundary_list_create(count, arena);
+        double z[5];
+        for (size_t i = 0; i < count; i++) {
+            seed = seed * 6364136223846793005U + 1442695040888963407U;
+            z[i] = 0.1 + (double)(seed >> 11) / 9007199254740992.0;
+        }
+        struct mixture_critical critical;
+        assert_int_equal(envelope_trace(m.at_t, m.fluid, z, m.ws, envelope), ANSWER_OK);
+        if (envelope->critical_count == 0 ||
+            mixture_critical_near(m.at_t, m.fluid, z, &envelope->critical[0], m.ws, &critical) != ANSWER_OK) {
+            continue;
+        }
+        tried++;
+        static const double off[] = {-1e-2, -1e-3, -1e-4, -1e-5, -1e-6, 0.0, 1e-6, 1e-5, 1e-4, 1e-3};
+        for (size_t j = 0; j < COUNT(off); j++) {
+            const double T = critical.temperature * (1.0 + off[j]);
+            double nearest = HUGE_VAL;
+            assert_int_equal(boundary_at_t(m.at_t, m.fluid, T, z, envelope, m.ws, list), ANSWER_OK);
+            for (size_t i = 0; i < list->count; i++) {
+                nearest = fmin(nearest, fabs(list->point[i]->pressure / critical.pressure - 1.0));
+            }
+            /* At the critical temperature itself rounding decides whether the point where nothing opens is told. */
+            assert_true(nearest <= 30.0 * fabs(off[j]) + 1e-7 || !(fabs(off[j]) > 0.0));
+        }
+    }
+    assert_true(tried >= 15);
+    arena_free(arena);
+}
+
 /* Methane and hydrogen sulfide: critical at 281.4681 K and, where a second liquid forms, at 241.1893 K; by the criteria
  * of Heidemann and Khalil. */
 static void a_line_is_followed_past_two_critical_points_without_turning_back(void **state)
@@ -614,6 +658,7 @@ int main(void)
         cmocka_unit_test(all_points_at_a_temperature_agree_with_an_independent_evaluation),
         cmocka_unit_test(the_first_dew_pressure_is_found_without_an_envelope),
         cmocka_unit_test(points_beside_a_critical_point_are_found),
+        cmocka_unit_test(no_temperature_beside_a_critical_point_is_without_points),
         cmocka_unit_test(a_line_is_followed_past_two_critical_points_without_turning_back),
         cmocka_unit_test(temperatures_at_a_pressure_lead_back_to_it),
         cmocka_unit_test(extrema_agree_with_an_independent_evaluation),

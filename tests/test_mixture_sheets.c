@@ -406,21 +406,23 @@ static void an_upper_edge_between_two_liquids_is_told(void **state)
     elaborated_end(&answered.it);
 }
 
-/* The same gases at 200 bar: below some 135 K they are two liquids, as the edges evaluated in 34 digits at 116.03 K
- * (5660 bar) and 139.23 K (129 bar) say, and no line leads there. */
-static void a_sweep_of_pressure_does_not_say_none_where_two_liquids_part(void **state)
+/* The same edge from the other side: at that pressure no line leads to it, and the temperature is found by stability.
+ */
+static void a_sweep_of_pressure_finds_where_two_liquids_part(void **state)
 {
     (void)state;
     struct answered answered = answer("component nitrous { molar-mass 44.0128 g/mol; critical-temperature 309.52 K\n"
                                       "  critical-pressure 72.45 bara; acentric 0.1613 }\n"
                                       "pair nitrous oxygen { peng-robinson kij 0.05 }\n"
                                       "mixture even by mole { nitrous 0.5; oxygen 0.5 }\n"
-                                      "sheet saturation { fluid even; sweep pressure 200 bara }\n");
+                                      "sheet saturation { fluid even; sweep pressure 12898721.9575023394 Pa }\n");
     const struct table *points =
         result_table(answered.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
-    assert_int_equal(points->row_count, 1);
-    assert_string_equal(word_of(points, 0), "not found");
-    assert_true(answered.result->is_undecided);
+    size_t found = 0;
+    for (size_t row = 0; row < points->row_count; row++) {
+        found += fabs(cell_of(points, row, "temperature") / 139.23 - 1.0) < 1e-9;
+    }
+    assert_int_equal(found, 1);
     elaborated_end(&answered.it);
 }
 
@@ -459,8 +461,12 @@ static void a_trace_that_condenses_early_hides_no_bubble_point(void **state)
                             "sheet saturation { fluid damp; sweep pressure %.17g Pa }\n",
                             cell_of(points, last, "pressure")));
     points = result_table(back.sheet, "dew and bubble points, and mole fractions of the phase that forms", NULL);
-    assert_string_equal(result_cell(points, 0, "point")->text, "bubble");
-    assert_near(cell_of(points, 0, "temperature") - 293.15, 0.0, 1e-6, "the bubble point's own temperature");
+    size_t bubble = 0; /* further down the water parts from the liquid propane */
+    while (bubble < points->row_count && strcmp(result_cell(points, bubble, "point")->text, "bubble") != 0) {
+        bubble++;
+    }
+    assert_true(bubble < points->row_count);
+    assert_near(cell_of(points, bubble, "temperature") - 293.15, 0.0, 1e-6, "the bubble point's own temperature");
     elaborated_end(&back.it);
     arena_free(arena);
     elaborated_end(&answered.it);
@@ -556,7 +562,7 @@ int main(void)
         cmocka_unit_test(both_dew_pressures_are_found_and_none_above_the_cricondentherm),
         cmocka_unit_test(a_dew_pressure_of_next_to_nothing_is_told),
         cmocka_unit_test(an_upper_edge_between_two_liquids_is_told),
-        cmocka_unit_test(a_sweep_of_pressure_does_not_say_none_where_two_liquids_part),
+        cmocka_unit_test(a_sweep_of_pressure_finds_where_two_liquids_part),
         cmocka_unit_test(a_sweep_of_pressure_finds_the_temperatures_back),
         cmocka_unit_test(a_trace_that_condenses_early_hides_no_bubble_point),
         cmocka_unit_test(fugacities_of_one_phase_are_those_of_the_equation),

@@ -217,14 +217,14 @@ enum answer boundary_solve(struct boundary_state *b, size_t held, int most_steps
     return ANSWER_FAILED;
 }
 
-enum answer boundary_take(struct boundary_state *b)
+enum answer boundary_take(struct boundary_state *b, double tolerance)
 {
     const enum answer answer = evaluate(b);
     if (answer != ANSWER_OK) {
         return answer;
     }
     set_equations(b);
-    return b->residual <= BOUNDARY_TOLERANCE ? ANSWER_OK : ANSWER_FAILED;
+    return b->residual <= tolerance ? ANSWER_OK : ANSWER_FAILED;
 }
 
 /* ---- reporting ------------------------------------------------------------------------------------------------- */
@@ -234,6 +234,24 @@ struct boundary_point *boundary_point_create(size_t count, struct arena *arena)
     struct boundary_point *point = arena_alloc(arena, 1, sizeof *point);
     point->incipient = arena_alloc(arena, count, sizeof(double));
     return point;
+}
+
+/* At a critical point itself a trial phase may not converge: the feed a hair beside speaks for it, on the side where it
+ * is one phase. */
+static enum answer test_beside(struct boundary_state *b, const struct boundary_point *point, struct stability *out)
+{
+    static const double nudges[] = {1e-8, -1e-8, 1e-7, -1e-7, 1e-6, -1e-6};
+    enum answer answer = ANSWER_FAILED;
+    for (size_t k = 0; k < sizeof nudges / sizeof *nudges; k++) {
+        struct stability found;
+        const double pressure = point->pressure * (1.0 + nudges[k]);
+        if (stability_at_tp(b->at_t, pressure, b->ws->feed, STABILITY_DECIDE, b->ws, &found) == ANSWER_OK &&
+            (answer != ANSWER_OK || found.smallest_tpd > out->smallest_tpd)) {
+            *out = found;
+            answer = ANSWER_OK;
+        }
+    }
+    return answer;
 }
 
 enum answer boundary_report(struct boundary_state *b, struct boundary_point *out)
@@ -261,7 +279,8 @@ enum answer boundary_report(struct boundary_state *b, struct boundary_point *out
     };
     struct stability found;
     workspace_set_pure(ws, b->at_t, out->pressure);
-    const enum answer answer = stability_of_plane(b->at_t, out->pressure, &known, STABILITY_DECIDE, ws, &found);
+    enum answer answer = stability_of_plane(b->at_t, out->pressure, &known, STABILITY_DECIDE, ws, &found);
+    answer = answer == ANSWER_FAILED ? test_beside(b, out, &found) : answer;
     out->smallest_tpd = found.has_incipient ? found.smallest_tpd : 0.0;
     out->is_stable = out->smallest_tpd >= -BOUNDARY_TOLERANCE;
     return answer;

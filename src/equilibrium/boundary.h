@@ -88,9 +88,10 @@ struct boundary_list {
 
 struct boundary_list *boundary_list_create(size_t components, struct arena *arena);
 
-/* Each is solved to BOUNDARY_TOLERANCE and tested for stability, and told once; an empty list is an answer: the lines
- * have none there. Next to a critical point, where a line's own steps fail, those at a temperature are completed as
- * below; ANSWER_FAILED when that fails too. `at_t` is a workspace and holds the last point's temperature afterwards. */
+/* Each is solved to BOUNDARY_TOLERANCE (right at a critical point, whose two phases are one, interpolated to 2e-9) and
+ * tested for stability, and told once; an empty list is an answer: the lines have none there. Next to a critical point,
+ * where a line's own steps fail, those at a temperature are completed as below; ANSWER_FAILED when that fails too.
+ * `at_t` is a workspace and holds the last point's temperature afterwards. */
 enum answer boundary_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature, const double z[],
                           const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out);
 enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
@@ -104,9 +105,10 @@ enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, do
 enum answer boundary_complete_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature,
                                    const double z[], struct equilibrium_workspace *ws, struct boundary_list *list);
 
-/* The same question at a pressure (Pa), answered at a few temperatures between and beyond the points: `is_complete` is
- * false afterwards where they cannot be all. Nothing is added. */
-enum answer boundary_check_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
-                                struct equilibrium_workspace *ws, struct boundary_list *list);
+/* The same of the points at a pressure (Pa), along temperatures from about a third of the highest point's to a little
+ * above it (70 to 700 K without any): what is two-phase over less than 4 % in temperature is missed. `at_t` holds some
+ * temperature afterwards. */
+enum answer boundary_complete_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure,
+                                   const double z[], struct equilibrium_workspace *ws, struct boundary_list *list);
 
 #endif

@@ -29,8 +29,8 @@ void boundary_begin(struct boundary_state *b, const struct fluid_at_t *at_t, str
 enum answer boundary_solve(struct boundary_state *b, size_t held, int most_steps);
 
 /* The equations at X as it stands, for where Newton's matrix is as good as singular: ANSWER_OK with volumes and
- * residual where that is within BOUNDARY_TOLERANCE, even if all K are one. */
-enum answer boundary_take(struct boundary_state *b);
+ * residual where that is within the tolerance, even if all K are one. */
+enum answer boundary_take(struct boundary_state *b, double tolerance);
 
 /* Copies the point out, and tests its feed for stability. */
 enum answer boundary_report(struct boundary_state *b, struct boundary_point *out);

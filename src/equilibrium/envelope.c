@@ -27,6 +27,11 @@ enum { MOST_STEPS = 12, MOST_START_STEPS = 60, MOST_RETRIES = 14, MOST_REFINEMEN
 #define BESIDE_CRITICAL 2.5e-3
 /* Points on both sides of a critical point as near to each other as this, in ln K, are joined by a cubic. */
 #define CLOSE_TOGETHER 0.02
+/* And so close to a critical point that they are hardly two, but still solved for. */
+#define HARDLY_APART 2e-3
+/* Between such points the line is interpolated, to this difference of ln f: what is left of a pressure's error then is
+ * far less, as beside a critical point ln f hardly tells two phases apart. */
+#define CRITICAL_TOLERANCE 2e-9
 /* Two lines that start as near to each other as this, in ln T, are one. */
 #define SAME_TEMPERATURE 1e-7
 /* A step shorter than this leads nowhere. */
@@ -714,6 +719,50 @@ static bool set_slope_at(struct boundary_state *b, const struct envelope *e, siz
     return is_solved;
 }
 
+/* The part of the way on the cubic between two points at which unknown `a` has the value; leaves the point there. */
+static double curve_to(struct boundary_state *b, size_t held, const double *before, const double *after, size_t a,
+                       double value)
+{
+    double low = 0.0, high = 1.0;
+    for (int step = 0; step < MOST_REFINEMENTS; step++) {
+        const double middle = 0.5 * (low + high);
+        curve_between(b, held, before, after, middle);
+        *((b->X[a] < value) == (before[a] < value) ? &low : &high) = middle;
+    }
+    return low;
+}
+
+/* Right at the critical point itself Newton's method has nothing to hold on to. Between two points solved for close on
+ * either side of it, the cubic is as good as a solution. */
+static enum answer solve_at_critical(struct boundary_state *b, size_t held, const double *before, const double *after,
+                                     size_t a, double value)
+{
+    struct equilibrium_workspace *ws = b->ws;
+    const size_t bytes = b->size * sizeof(double);
+    const double sign = after[held] > before[held] ? 1.0 : -1.0, length = after[held] - before[held];
+    curve_between(b, held, before, after, (-sign * HARDLY_APART - before[held]) / length);
+    memcpy(ws->next_unknowns, b->X, bytes);
+    curve_between(b, held, before, after, (sign * HARDLY_APART - before[held]) / length);
+    if (boundary_solve(b, held, MOST_STEPS) != ANSWER_OK) {
+        return ANSWER_FAILED;
+    }
+    memcpy(ws->crossed, b->X, bytes);
+    memcpy(ws->next_slope, b->slope, bytes);
+    memcpy(b->X, ws->next_unknowns, bytes);
+    if (boundary_solve(b, held, MOST_STEPS) != ANSWER_OK) {
+        return ANSWER_FAILED;
+    }
+    memcpy(ws->next_unknowns, b->X, bytes);
+    memcpy(ws->slope_before, b->slope, bytes);
+    memcpy(ws->slope_after, ws->next_slope, bytes);
+    if ((ws->next_unknowns[a] < value) == (ws->crossed[a] < value)) {
+        return ANSWER_FAILED;
+    }
+    curve_to(b, held, ws->next_unknowns, ws->crossed, a, value);
+    b->X[a] = value;
+    return boundary_take(b, CRITICAL_TOLERANCE);
+}
+
 /* The same next to a critical point. Newton's method at a given temperature or pressure gets there only from nearby,
  * and on both sides of the critical point itself not at all; but in the ratio that is farthest from one the line is as
  * smooth there as elsewhere, and between two close points of it a cubic is as good as a solution. */
@@ -725,16 +774,14 @@ static enum answer solve_near_critical(struct boundary_state *b, const struct en
     if (!set_slope_at(b, e, k, held, b->ws->slope_before) || !set_slope_at(b, e, k + 1, held, b->ws->slope_after)) {
         return ANSWER_FAILED;
     }
-    double low = 0.0, high = 1.0;
-    for (int step = 0; step < MOST_REFINEMENTS; step++) {
-        const double middle = 0.5 * (low + high);
-        curve_between(b, held, before, after, middle);
-        *((b->X[a] < value) == (before[a] < value) ? &low : &high) = middle;
-    }
-    interpolate_volumes(b, e, k, low);
+    const double part = curve_to(b, held, before, after, a, value);
+    interpolate_volumes(b, e, k, part);
     b->X[a] = value;
-    return is_closely_across(b, before, after) && boundary_take(b) == ANSWER_OK ? ANSWER_OK
-                                                                                : boundary_solve(b, a, MOST_STEPS);
+    if (is_closely_across(b, before, after) && boundary_take(b, BOUNDARY_TOLERANCE) == ANSWER_OK) {
+        return ANSWER_OK;
+    }
+    return boundary_solve(b, a, MOST_STEPS) == ANSWER_OK ? ANSWER_OK
+                                                         : solve_at_critical(b, held, before, after, a, value);
 }
 
 /* Between points k and k + 1 of the envelope unknown `a` passes `value`. */

@@ -451,7 +451,7 @@ enum answer mixture_points(struct method_run *method, bool is_pressure, double v
             return answer;
         }
         return is_pressure
-                   ? boundary_check_at_p(method->at_t, method->fluid, value, method->z, work->ws, work->points)
+                   ? boundary_complete_at_p(method->at_t, method->fluid, value, method->z, work->ws, work->points)
                    : boundary_complete_at_t(method->at_t, method->fluid, value, method->z, work->ws, work->points);
     }
     method->mixture->points->is_complete = true;
