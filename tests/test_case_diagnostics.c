@@ -229,7 +229,8 @@ static void each_word_of_the_vocabulary_is_at_home_in_some_reader(void **state)
                                         "sheet permissible-charge",
                                         "sheet settled-pressure",
                                         "sheet saturation",
-                                        "sheet fugacity"};
+                                        "sheet fugacity",
+                                        "sheet draw-down"};
     const struct vocabulary_row *rows = vocabulary_rows();
     for (size_t i = 0; i < sizeof heads / sizeof *heads; i++) {
         for (size_t j = 0; j < WORDS; j++) {

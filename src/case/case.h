@@ -309,7 +309,14 @@ struct case_sweep {
     struct origin origin;
 };
 
-enum sheet_kind { SHEET_PERMISSIBLE_CHARGE, SHEET_SETTLED_PRESSURE, SHEET_SATURATION, SHEET_FUGACITY, SHEET_KINDS };
+enum sheet_kind {
+    SHEET_PERMISSIBLE_CHARGE,
+    SHEET_SETTLED_PRESSURE,
+    SHEET_SATURATION,
+    SHEET_FUGACITY,
+    SHEET_DRAW_DOWN,
+    SHEET_KINDS
+};
 
 enum listed_policy { LISTED_GOVERNS, LISTED_CHECK_GOVERNS, LISTED_COMPARE };
 
@@ -347,7 +354,12 @@ struct case_sheet {
     size_t note_count;
     const char *const *notes;
     bool shows_every_uncertainty; /* of tables, row by row */
-    size_t draws;                 /* of a Monte Carlo run; 0: none is asked for */
+    struct {
+        bool given, is_liquid;
+        struct quantity temperature;    /* K */
+        struct quantity least_pressure; /* Pa */
+    } drawing;                          /* of a draw-down sheet */
+    size_t draws;                       /* of a Monte Carlo run; 0: none is asked for */
     uint64_t seed;
 };
 

@@ -212,6 +212,18 @@ static void read_sweep_row(struct elaboration *e, const struct statement *statem
     read_sweep(e, statement, &sheet->temperatures, &sheet->pressures, &sheet->densities);
 }
 
+/* `draw vapour` */
+static void read_draw(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct sheet_target *into = target;
+    struct reading reading = read_items(e, statement);
+    const struct vocabulary_row *row = take_choice(&reading, BLOCK_PHASE_DRAWN, "'vapour' or 'liquid'");
+    if (row != NULL && finish_items(&reading)) {
+        into->sheet.drawing.given = true;
+        into->sheet.drawing.is_liquid = row->id == WORD_PHASE_DRAWN_LIQUID;
+    }
+}
+
 static void read_show(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
@@ -285,6 +297,10 @@ static const struct block_row ROWS[] = {
     READ_EACH(WORD_SETTLED_PRESSURE_SWEEP, read_sweep_row),
     READ_EACH(WORD_SETTLED_PRESSURE_REQUIRE, read_require),
     READ_EACH(WORD_SETTLED_PRESSURE_QUOTE, read_quote),
+    READ_ONCE(WORD_DRAW_DOWN_CHARGE, read_charge),
+    READ_ONCE(WORD_DRAW_DOWN_DRAW, read_draw),
+    READ_QUANTITY(WORD_DRAW_DOWN_TEMPERATURE, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.temperature),
+    READ_QUANTITY(WORD_DRAW_DOWN_LEAST_PRESSURE, &FORM_PRESSURE, struct sheet_target, sheet.drawing.least_pressure),
     READ_ONCE(WORD_CHARGE_VESSEL, read_vessel),
     READ_ONCE(WORD_CHARGE_FILL, read_fill_row),
     READ_ONCE(WORD_CHARGE_MASS, read_fill_row),
@@ -302,6 +318,7 @@ static const struct block_form SHEETS[SHEET_KINDS] = {
     [SHEET_SETTLED_PRESSURE] = BLOCK_FORM(BLOCK_SETTLED_PRESSURE, ROWS),
     [SHEET_SATURATION] = BLOCK_FORM(BLOCK_SATURATION, ROWS),
     [SHEET_FUGACITY] = BLOCK_FORM(BLOCK_FUGACITY, ROWS),
+    [SHEET_DRAW_DOWN] = BLOCK_FORM(BLOCK_DRAW_DOWN, ROWS),
 };
 
 static enum sheet_kind kind_of(enum vocabulary_word word)
@@ -309,6 +326,7 @@ static enum sheet_kind kind_of(enum vocabulary_word word)
     return word == WORD_SHEET_KIND_PERMISSIBLE_CHARGE ? SHEET_PERMISSIBLE_CHARGE
            : word == WORD_SHEET_KIND_SETTLED_PRESSURE ? SHEET_SETTLED_PRESSURE
            : word == WORD_SHEET_KIND_SATURATION       ? SHEET_SATURATION
+           : word == WORD_SHEET_KIND_DRAW_DOWN        ? SHEET_DRAW_DOWN
                                                       : SHEET_FUGACITY;
 }
 
@@ -348,8 +366,9 @@ static bool resolve(struct elaboration *e, struct sheet_target *target)
         }
         return sheet->charge != NULL;
     }
-    const bool needs_vessel = sheet->kind == SHEET_PERMISSIBLE_CHARGE || sheet->kind == SHEET_SETTLED_PRESSURE;
-    if (sheet->kind == SHEET_SETTLED_PRESSURE && target->fluid == NULL && !target->fill.given) {
+    const bool needs_fill = sheet->kind == SHEET_SETTLED_PRESSURE || sheet->kind == SHEET_DRAW_DOWN;
+    const bool needs_vessel = sheet->kind == SHEET_PERMISSIBLE_CHARGE || needs_fill;
+    if (needs_fill && target->fluid == NULL && !target->fill.given) {
         return report_lack(e, sheet, "charge", "charge bench-lot");
     }
     if (target->fluid == NULL) {
@@ -363,7 +382,7 @@ static bool resolve(struct elaboration *e, struct sheet_target *target)
         return report_lack(e, sheet, "vessel", "vessel fifty");
     }
     sheet->vessel = vessel_of_name(e, target->vessel);
-    if (sheet->kind == SHEET_SETTLED_PRESSURE && !target->fill.given) {
+    if (needs_fill && !target->fill.given) {
         return report_lack(e, sheet, "amount filled", "filling-ratio 0.68, or: charge bench-lot");
     }
     return sheet->fluid != NULL && sheet->vessel != NULL;
@@ -395,6 +414,11 @@ static bool check_complete(struct elaboration *e, const struct sheet_target *tar
         }
         return sheet->pressures.given || sheet->densities.given ||
                report_lack(e, sheet, "sweep of pressure or density", "sweep pressure 1 bara, 10 bara");
+    case SHEET_DRAW_DOWN:
+        if (!sheet->drawing.given) {
+            return report_lack(e, sheet, "phase to draw", "draw vapour");
+        }
+        return sheet->drawing.temperature.given || report_lack(e, sheet, "temperature", "temperature 15 degC");
     case SHEET_SETTLED_PRESSURE:
     case SHEET_KINDS:
         break;

@@ -217,7 +217,7 @@ static bool has_component(const struct case_fluid *fluid, const char *name)
 static bool has_one_fluid(enum sheet_kind kind)
 {
     return kind == SHEET_PERMISSIBLE_CHARGE || kind == SHEET_SETTLED_PRESSURE || kind == SHEET_SATURATION ||
-           kind == SHEET_FUGACITY;
+           kind == SHEET_FUGACITY || kind == SHEET_DRAW_DOWN;
 }
 
 bool case_sheet_may_depend(const struct case_sheet *sheet, const struct case_spread *spread)

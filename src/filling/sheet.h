@@ -138,5 +138,6 @@ void answer_permissible_charge(struct sheet_run *run);
 void answer_settled_pressure(struct sheet_run *run);
 void answer_saturation(struct sheet_run *run);
 void answer_fugacity(struct sheet_run *run);
+void answer_draw_down(struct sheet_run *run);
 
 #endif

@@ -123,6 +123,7 @@ static const struct {
     [SHEET_SETTLED_PRESSURE] = {"settled-pressure", answer_settled_pressure},
     [SHEET_SATURATION] = {"saturation", answer_saturation},
     [SHEET_FUGACITY] = {"fugacity", answer_fugacity},
+    [SHEET_DRAW_DOWN] = {"draw-down", answer_draw_down},
 };
 
 /* What all sheets of a case share. */

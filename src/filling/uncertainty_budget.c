@@ -13,6 +13,7 @@ static const struct {
     {SHEET_PERMISSIBLE_CHARGE, "mass"},
     {SHEET_PERMISSIBLE_CHARGE, "settled-gauge-pressure"},
     {SHEET_SETTLED_PRESSURE, "mass"},
+    {SHEET_DRAW_DOWN, "usable-mass"},
 };
 
 /* Outlets that get a budget. */
