@@ -1,5 +1,5 @@
 /* gerg-2008 from the library: the published check mixture, and what tells it from multi-fluid. */
-#include "fluid/multi_fluid_caloric.h"
+#include "fluid/caloric.h"
 #include "fluid/phase.h"
 #include "support/measured_mixture.h"
 
@@ -31,7 +31,7 @@ static void the_published_check_mixture_is_reproduced_in_every_listed_property(v
     assert_int_equal(fluid_set_t(m.at_t, m.fluid, 400.0), ANSWER_OK);
     assert_int_equal(phase_tp(m.at_t, 50e6, CHECK_X, BRANCH_STABLE, PHASE_DLN_PHI_DT, phase), ANSWER_OK);
     const double V = phase->volume;
-    assert_int_equal(multi_fluid_caloric(m.at_t, V, CHECK_X, &caloric), ANSWER_OK);
+    assert_int_equal(caloric_at_volume(m.at_t, V, CHECK_X, &caloric), ANSWER_OK);
     assert_close(1.0 / V, 12798.28626082062, 1e-13, source);
     assert_close(phase->Z, 1.174690666383717, 1e-13, source);
     assert_close(-phase->dp_dv * V * V, 7000.694030193327, 1e-12, source);

@@ -1,7 +1,7 @@
 /* The multi-fluid methods with the library's data: independent values, derivatives, roots, pairs. */
 #define _POSIX_C_SOURCE 200809L
 #include "base/file.h"
-#include "fluid/multi_fluid_caloric.h"
+#include "fluid/caloric.h"
 #include "fluid/phase.h"
 #include "support/measured_mixture.h"
 
@@ -458,7 +458,7 @@ static void questions_without_meaning_are_out_of_range(void **state)
     assert_int_equal(phase_tp(m.at_t, (double)NAN, air, BRANCH_STABLE, 0, phase), ANSWER_OUT_OF_RANGE);
     assert_int_equal(phase_tp(m.at_t, 1e14, air, BRANCH_STABLE, 0, phase), ANSWER_OUT_OF_RANGE);
     assert_int_equal(phase_tv(m.at_t, 1e-6, air, 0, phase), ANSWER_OUT_OF_RANGE);
-    assert_int_equal(multi_fluid_caloric(m.at_t, -1.0, air, &caloric), ANSWER_OUT_OF_RANGE);
+    assert_int_equal(caloric_at_volume(m.at_t, -1.0, air, &caloric), ANSWER_OUT_OF_RANGE);
     assert_int_equal(m.fluid->ops->range(m.fluid, 50.0, 1e5).side, RANGE_TOO_COLD);
     arena_free(arena);
 }

@@ -179,6 +179,9 @@ struct fluid_ops {
     enum answer (*pair)(const struct fluid_at_t *at_t, size_t i, size_t j, struct pair_parameter *out);
     /* The reducing parameters of components i and j. NULL: not a multi-fluid method. */
     enum answer (*reducing)(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out);
+    /* The equation whose ideal terms component i takes, and by what its alpha0 is multiplied; NULL: none. NULL for the
+     * operation: the component's reference equation, by its gas constant over the method's. */
+    const struct reference_spec *(*ideal_of)(const struct fluid *fluid, size_t i, double *scale);
     /* Pure fluids only: the numbers behind the pressure of one phase (fluid/explanation.h). NULL: not explained. */
     enum answer (*explain)(const struct fluid_at_t *at_t, double molar_volume, bool with_fugacity,
                            struct explanation *out);

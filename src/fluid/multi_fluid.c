@@ -35,4 +35,5 @@ const struct fluid_ops multi_fluid_ops = {
     .range = multi_fluid_range,
     .reducing = multi_fluid_reducing,
     .explain_whole = multi_fluid_explain,
+    .ideal_of = multi_fluid_ideal_of,
 };

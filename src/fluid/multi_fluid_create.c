@@ -279,6 +279,14 @@ struct range_note multi_fluid_range(const struct fluid *head, double temperature
     return (struct range_note){RANGE_INSIDE, 0.0};
 }
 
+const struct reference_spec *multi_fluid_ideal_of(const struct fluid *head, size_t i, double *scale)
+{
+    const struct multi_fluid *fluid = (const struct multi_fluid *)(const void *)head;
+    const struct reference_spec *equation = fluid->equation[i];
+    *scale = fluid->ideal_scale_of_all > 0.0 ? fluid->ideal_scale_of_all : equation->gas_constant / head->gas_constant;
+    return equation;
+}
+
 enum answer multi_fluid_reducing(const struct fluid *head, size_t i, size_t j, struct reducing_parameter *out)
 {
     const struct multi_fluid *fluid = (const struct multi_fluid *)(const void *)head;

@@ -152,6 +152,7 @@ double multi_fluid_node_tau(size_t node);
 size_t multi_fluid_at_t_size(const struct fluid *fluid);
 enum answer multi_fluid_set_t(struct fluid_at_t *at_t);
 struct range_note multi_fluid_range(const struct fluid *fluid, double temperature, double pressure);
+const struct reference_spec *multi_fluid_ideal_of(const struct fluid *fluid, size_t i, double *scale);
 enum answer multi_fluid_reducing(const struct fluid *fluid, size_t i, size_t j, struct reducing_parameter *out);
 
 /* ---- multi_fluid_explain.c -----------------------------------------------------------------------------------------

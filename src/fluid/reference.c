@@ -175,6 +175,13 @@ static enum answer saturation_start(const struct fluid_at_t *at_t, struct satura
     return ANSWER_OK;
 }
 
+static const struct reference_spec *ideal_of(const struct fluid *fluid, size_t i, double *scale)
+{
+    (void)i;
+    *scale = 1.0;
+    return ((const struct reference *)(const void *)fluid)->equation;
+}
+
 const struct fluid_ops reference_ops = {
     .name = "reference",
     .title = "multiparameter Helmholtz equation of state",
@@ -190,4 +197,5 @@ const struct fluid_ops reference_ops = {
     .critical = critical,
     .saturation_start = saturation_start,
     .explain = reference_explain,
+    .ideal_of = ideal_of,
 };
