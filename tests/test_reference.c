@@ -469,7 +469,8 @@ static void caloric_values_need_ideal_terms_and_a_stable_phase(void **state)
     close_gas(&gas);
     open_gas(&gas, "propane");
     set_temperature(&gas, 300.0);
-    assert_int_equal(caloric_at_volume(gas.at_t, 3e-4, (const double[]){1.0}, &caloric), ANSWER_OUT_OF_RANGE); /* between the spinodals */
+    /* Between the spinodals. */
+    assert_int_equal(caloric_at_volume(gas.at_t, 3e-4, (const double[]){1.0}, &caloric), ANSWER_OUT_OF_RANGE);
     assert_int_equal(caloric_at_volume(gas.at_t, 0.0, (const double[]){1.0}, &caloric), ANSWER_OUT_OF_RANGE);
     close_gas(&gas);
 }

@@ -342,7 +342,7 @@ struct case_sheet {
     const struct predicate *requirements;
     size_t quote_count;
     const double *quotes; /* K: temperatures the pressure is quoted at */
-    bool show_iteration;
+    bool show_iteration, show_caloric;
     struct optional iteration_at; /* K */
     enum listed_policy listed;
     bool asks_of_solids;   /* a rule or a requirement says `no solid` */

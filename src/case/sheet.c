@@ -224,11 +224,21 @@ static void read_draw(struct elaboration *e, const struct statement *statement, 
     }
 }
 
+/* What one kind of sheet can show; false after a message. */
+static bool take_shown(struct reading *reading, enum vocabulary_word shown)
+{
+    const struct vocabulary_row *row = take_choice(reading, BLOCK_SHOWN, "what to show");
+    if (row != NULL && row->id != shown) {
+        diagnose(reading->e->out, CODE_E213, reading->of->at, "this sheet has no '%s' to show", row->word);
+    }
+    return row != NULL && row->id == shown;
+}
+
 static void read_show(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
     struct reading reading = read_items(e, statement);
-    if (take_choice(&reading, BLOCK_SHOWN, "what to show") == NULL) {
+    if (!take_shown(&reading, WORD_SHOWN_ITERATION)) {
         return;
     }
     const struct item *at = take_item(&reading, ITEM_AT);
@@ -237,6 +247,13 @@ static void read_show(struct elaboration *e, const struct statement *statement, 
         where->given = read_value(e, &FORM_TEMPERATURE, "the temperature to show", at->value, &where->value);
     }
     into->sheet.show_iteration = finish_items(&reading);
+}
+
+static void read_show_caloric(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct sheet_target *into = target;
+    struct reading reading = read_items(e, statement);
+    into->sheet.show_caloric = take_shown(&reading, WORD_SHOWN_CALORIC) && finish_items(&reading);
 }
 
 static void read_listed(struct elaboration *e, const struct statement *statement, void *target)
@@ -311,6 +328,7 @@ static const struct block_row ROWS[] = {
     READ_EACH(WORD_SATURATION_SWEEP, read_sweep_row),
     READ_ONCE(WORD_SATURATION_SHOW, read_show),
     READ_EACH(WORD_FUGACITY_SWEEP, read_sweep_row),
+    READ_ONCE(WORD_FUGACITY_SHOW, read_show_caloric),
 };
 
 static const struct block_form SHEETS[SHEET_KINDS] = {

@@ -1,5 +1,6 @@
 /* The sheet `fugacity`: the stable state, compressibility, density and fugacity over swept temperature and pressure,
  * or over swept temperature and density, method beside method. */
+#include "filling/caloric_table.h"
 #include "filling/hand_check.h"
 #include "filling/method_spread.h"
 #include "filling/mixture_sheets.h"
@@ -313,6 +314,20 @@ static double compressibility_of(const struct method_run *method, const struct s
                               : spot->Z;
 }
 
+static void tell_caloric(const struct sheet_run *run, struct method_run *method, const struct spot *spots)
+{
+    const size_t count = run->sheet->temperatures.count * second_sweep(run)->count;
+    struct caloric_table *table = caloric_table_begin(run, method);
+    for (size_t i = 0; table != NULL && i < count; i++) {
+        const struct spot *spot = &spots[i];
+        if (is_one_phase(spot)) {
+            const struct caloric_state state = {spot->state, spot->temperature, spot->pressure, spot->molar_volume,
+                                                NULL,        spot->is_inside};
+            caloric_table_add(table, &state);
+        }
+    }
+}
+
 static void tell_spread(const struct states *states, size_t method_count)
 {
     const struct sheet_run *run = states->run;
@@ -352,6 +367,8 @@ void answer_fugacity(struct sheet_run *run)
         if (m == 0) {
             work_one_state(run, states.methods[m], states.spots[m]);
         }
+        tell_caloric(run, states.methods[m], states.spots[m]);
     }
+    caloric_table_explain(run);
     tell_spread(&states, count);
 }

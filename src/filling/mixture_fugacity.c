@@ -1,6 +1,7 @@
 /* The sheet `fugacity` for a mixture: at each state its stable phases, what every component's fugacity is in each, and
  * the tangent-plane evidence that no phase is missing. */
 #include "equilibrium/split.h"
+#include "filling/caloric_table.h"
 #include "filling/hand_check.h"
 #include "filling/method_spread.h"
 #include "filling/mixture_contents.h"
@@ -19,7 +20,8 @@ struct sweeping {
     struct method_run *method;
     size_t index; /* of the method */
     struct table *phases, *fugacities, *evidence;
-    struct method_spread *spread; /* of all methods */
+    struct caloric_table *caloric; /* NULL: not asked for */
+    struct method_spread *spread;  /* of all methods */
 };
 
 /* ---- columns ----------------------------------------------------------------------------------------------------- */
@@ -278,6 +280,10 @@ static void tell_swept(void *teller, size_t method, size_t index, const void *an
     for (size_t k = 0; k < split->phase_count; k++) {
         add_phase(at, split, k, is_inside);
         add_fugacities(at, split, k);
+        const struct split_phase *phase = &split->phase[k];
+        const struct caloric_state caloric = {phase_name(at, split, k), temperature, split->pressure,
+                                              phase->molar_volume,      phase->x,    is_inside};
+        caloric_table_add(at->caloric, &caloric);
         Z += split->phase[k].fraction * split->phase[k].Z;
     }
     method_spread_note(at->spread, at->index, index, Z, is_inside);
@@ -292,6 +298,7 @@ static struct sweeping begin_sweeping(const struct sheet_run *run, struct method
     at.phases = begin_phases(run, method);
     at.fugacities = begin_fugacities(run, method);
     at.evidence = begin_evidence(run, method);
+    at.caloric = caloric_table_begin(run, method);
     at.fugacities->csv = is_lead ? run->sheet->table_csv : NULL;
     const struct split *split;
     if (is_lead && solve_state(run, method, 0, &split) == ANSWER_OK) {
@@ -326,6 +333,7 @@ void answer_mixture_fugacity(struct sheet_run *run)
     };
     sweep_points(&sweep);
     const struct spread_axis second = second_axis(run);
+    caloric_table_explain(run);
     method_spread_tell(spread, &second);
     sheet_add_note(run->result, run->out,
                    "K: mole fraction in the lightest phase over that in the phase of the row; tangent-plane distance: "
