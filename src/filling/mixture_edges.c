@@ -24,8 +24,10 @@
 #define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
 /* Molar volumes by this factor beside an edge lie clearly on one side of it. */
 #define BESIDE_EDGE 1.3
-/* A dew point below the thinnest pressure is estimated, and looked for within this factor of volume. */
-#define BESIDE_ESTIMATE 1.1
+/* A dew point below the thinnest pressure is estimated, and looked for within these parts of its volume: where the
+ * whole is as good as ideal there, and where it is not quite. */
+#define AT_ESTIMATE     1e-8
+#define BESIDE_ESTIMATE 0.1
 /* The state tried is the stable root of its pressure when their volumes agree to this part. */
 #define SAME_VOLUME 1e-7
 
@@ -109,6 +111,22 @@ static enum answer close_in(struct edge_search *search, double stable, double un
     return answer;
 }
 
+static double thinnest_molar_volume(const struct method_run *method)
+{
+    return method->fluid->gas_constant * method->at_t->temperature / THINNEST_PRESSURE;
+}
+
+/* Closes in on a dew point estimated to be at that molar volume, if states so near to it, tested, lie on both sides. */
+static bool close_in_on_thin_dew(struct edge_search *search, double estimate, double nearness, double thinnest,
+                                 struct phase_edge *edge)
+{
+    const double thin = estimate * (1.0 + nearness), dense = fmax(estimate / (1.0 + nearness), thinnest);
+    double thin_side, dense_side;
+    return thin > dense && isfinite(thin) && stable_side(search, thin, &thin_side) == ANSWER_OK && thin_side > 0.0 &&
+           stable_side(search, dense, &dense_side) == ANSWER_OK && dense_side < 0.0 &&
+           close_in(search, thin, dense, edge) == ANSWER_OK;
+}
+
 /* The dew point of a fluid that is unstable at the thinnest pressure. As thin as that the whole is an ideal gas, and
  * the fugacities in a liquid do not depend on pressure: the smallest distance changes as -ln p, and is zero at p
  * exp(tpd). Only states on both sides of that, tested, make it an edge; else all that is known is that the start is
@@ -124,11 +142,8 @@ static void find_thin_dew(struct edge_search *search, double thinnest, struct ed
         return;
     }
     const double estimate = thinnest * exp(-found.smallest_tpd);
-    const double thin = estimate * BESIDE_ESTIMATE, dense = fmax(estimate / BESIDE_ESTIMATE, thinnest);
-    double thin_side, dense_side;
-    if (thin > dense && isfinite(thin) && stable_side(search, thin, &thin_side) == ANSWER_OK && thin_side > 0.0 &&
-        stable_side(search, dense, &dense_side) == ANSWER_OK && dense_side < 0.0 &&
-        close_in(search, thin, dense, &list->items[0]) == ANSWER_OK) {
+    if (close_in_on_thin_dew(search, estimate, AT_ESTIMATE, thinnest, &list->items[0]) ||
+        close_in_on_thin_dew(search, estimate, BESIDE_ESTIMATE, thinnest, &list->items[0])) {
         list->count = 1;
         list->is_unstable_at_start = false;
     }
@@ -139,7 +154,7 @@ static enum answer scan_edges(struct method_run *method, struct edge_list *list)
 {
     struct edge_search search = {.method = method};
     const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
-    double before = method->fluid->gas_constant * method->at_t->temperature / THINNEST_PRESSURE, side_before;
+    double before = thinnest_molar_volume(method), side_before;
     list->count = 0;
     list->is_unstable_at_start = false;
     enum answer answer = stable_side(&search, before, &side_before);
@@ -160,10 +175,9 @@ static enum answer scan_edges(struct method_run *method, struct edge_list *list)
 }
 
 /* The stable points of the envelope, lowest pressure first: one phase ends at the first, begins again at the second,
- * and so on. */
-static void edges_of_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
+ * and so on. They follow what the list holds. */
+static void append_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
 {
-    list->count = 0;
     for (size_t i = 0; i < points->count && list->count < MOST_EDGES; i++) {
         const struct boundary_point *point = points->point[i];
         if (!point->is_stable) {
@@ -178,6 +192,25 @@ static void edges_of_points(const struct mixture_work *work, const struct bounda
         memcpy(edge->other, point->incipient, work->count * sizeof *edge->other);
         list->count++;
     }
+}
+
+/* The envelope of a heavy fluid in the cold begins with a bubble point, as its dew point lies at no pressure to speak
+ * of: that one is found by itself. */
+static void edges_of_points(struct method_run *method, const struct boundary_list *points, struct edge_list *list)
+{
+    struct edge_search search = {.method = method};
+    const double thinnest = thinnest_molar_volume(method);
+    size_t first = 0;
+    double side;
+    while (first < points->count && !points->point[first]->is_stable) {
+        first++;
+    }
+    if (first < points->count && points->point[first]->kind == BOUNDARY_BUBBLE &&
+        stable_side(&search, thinnest, &side) == ANSWER_OK && side < 0.0) {
+        find_thin_dew(&search, thinnest, list);
+        list->is_unstable_at_start = false; /* if no dew point was found, the list will not agree with stability */
+    }
+    append_points(method->mixture, points, list);
 }
 
 /* Whether the fluid is one phase below, between and above the edges just where they say: a state of each stretch is
@@ -482,7 +515,7 @@ static enum answer find_edges(struct method_run *method, struct edge_list *list)
         return answer;
     }
     if (has_points && work->points->count > 0) {
-        edges_of_points(work, work->points, list);
+        edges_of_points(method, work->points, list);
         if (list->count > 0 && agrees_with_stability(method, list)) {
             return ANSWER_OK;
         }
