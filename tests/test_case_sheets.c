@@ -120,6 +120,36 @@ static void a_sweep_is_laid_out_in_si(void **state)
     }
 }
 
+/* Each value is the number that its decimal, as anybody would write it, is read as: bit by bit, not nearly. */
+static void swept_values_are_the_decimals_meant(void **state)
+{
+    (void)state;
+    static const struct {
+        const char *written;
+        double first, step; /* of the decimals, in thousandths: whole numbers, so that k / 1000 is rounded once */
+        size_t count;
+    } rows[] = {
+        {"temperature from 250 K to 200 K by -5 K", 250000.0, -5000.0, 11},
+        {"temperature from 250.3 K to 180 K by -0.1 K", 250300.0, -100.0, 704},
+        {"temperature from 273.15 K to 310 K by 0.7 K", 273150.0, 700.0, 53},
+        {"temperature from 300.1 K to 310.1 K in 1000 steps", 300100.0, 10.0, 1001},
+        {"pressure from 100100 Pa to 100200 Pa by 0.1 Pa", 100100000.0, 100.0, 1001},
+    };
+    for (size_t i = 0; i < sizeof rows / sizeof *rows; i++) {
+        char text[300];
+        const bool is_pressure = rows[i].written[0] == 'p';
+        snprintf(text, sizeof text, "use \"small\"\nsheet fugacity { fluid carbon-dioxide; sweep %s%s }\n",
+                 rows[i].written, is_pressure ? "; sweep temperature 300 K" : "; sweep pressure 1 bara");
+        struct elaborated it = elaborate_well(text);
+        const struct case_sweep *sweep = is_pressure ? &first_sheet(&it)->pressures : &first_sheet(&it)->temperatures;
+        assert_int_equal(sweep->count, rows[i].count);
+        for (size_t k = 0; k < sweep->count; k++) {
+            assert_close(sweep->values[k], (rows[i].first + (double)k * rows[i].step) / 1000.0, 0.0, "the decimal");
+        }
+        elaborated_end(&it);
+    }
+}
+
 static void a_density_sweep_is_per_mass_or_per_amount_as_written(void **state)
 {
     (void)state;
@@ -387,6 +417,7 @@ int main(void)
         cmocka_unit_test(a_method_without_its_data_is_refused),
         cmocka_unit_test(a_method_that_is_the_default_lead_stands_once),
         cmocka_unit_test(a_sweep_is_laid_out_in_si),
+        cmocka_unit_test(swept_values_are_the_decimals_meant),
         cmocka_unit_test(a_density_sweep_is_per_mass_or_per_amount_as_written),
         cmocka_unit_test(swept_gauge_pressures_count_from_the_ambient_pressure),
         cmocka_unit_test(the_iteration_is_shown_on_request),

@@ -1,6 +1,7 @@
 /* Sweeps: `from A to B by STEP`, `from A to B in N steps`, or a list of values. */
 #include "case/case_internal.h"
 
+#include <float.h>
 #include <math.h>
 
 enum { SWEEP_MOST = 100000 };
@@ -30,13 +31,31 @@ static bool report_count(struct elaboration *e, struct location at, double count
     return false;
 }
 
+/* Digits that a swept value is taken to have been meant with, and ulps of the largest by which sums may miss them. */
+enum { MEANT_DIGITS = 12, MISSED_ULPS = 4 };
+
+/* The number next to the short decimal that `value` misses by rounding only, else `value`: a step of 0.1 is no binary
+ * fraction, and so its multiples are not those that anybody would write. Powers of ten up to the 22nd and the integers
+ * here are exact, and the one division or product is rounded correctly. */
+static double as_meant(double value, double largest)
+{
+    const double places = MEANT_DIGITS - ceil(log10(largest));
+    if (!(fabs(places) <= 22.0)) {
+        return value;
+    }
+    const double power = pow(10.0, fabs(places));
+    const double decimal = places < 0.0 ? round(value / power) * power : round(value * power) / power;
+    return fabs(decimal - value) <= MISSED_ULPS * DBL_EPSILON * largest ? decimal : value;
+}
+
 /* from + i step for i = 0 ... count - 1; the last is `to` exactly where the grid meets it. */
 static void lay_grid(struct elaboration *e, struct swept *swept, double from, double to, double step, size_t count,
                      bool meets_end)
 {
     double *values = arena_alloc(e->arena, count, sizeof *values);
-    for (size_t i = 0; i < count; i++) {
-        values[i] = from + (double)i * step;
+    values[0] = from;
+    for (size_t i = 1; i < count; i++) {
+        values[i] = as_meant(from + (double)i * step, fmax(fabs(from), fabs(to)));
     }
     if (meets_end) {
         values[count - 1] = to;
