@@ -199,8 +199,11 @@ enum answer multi_fluid_energy(const struct fluid_at_t *at_t, double volume, uns
     const struct multi_fluid *fluid = multi_fluid_of(at_t);
     struct multi_fluid_work *w = multi_fluid_work_of(at_t);
     const double T = at_t->temperature, n = w->amount;
-    const double delta = n * w->reducing_volume / volume;
+    const double delta = n * w->reducing_volume / volume, square = volume * volume;
     struct residual_sums A;
+    if (!(square > 0.0)) {
+        return ANSWER_OUT_OF_RANGE; /* so small that its square is lost: no state has that volume */
+    }
     if (w->stage == STAGE_SLOPES) {
         parts_by_both(w->parts, delta, &A);
     } else {
@@ -208,7 +211,7 @@ enum answer multi_fluid_energy(const struct fluid_at_t *at_t, double volume, uns
     }
     out->F = n * A.value;
     out->F_V = -n * A.d / volume;
-    out->F_VV = n * (2.0 * A.d + A.dd) / (volume * volume);
+    out->F_VV = n * (2.0 * A.d + A.dd) / square;
     if (w->stage == STAGE_SLOPES) {
         out->F_T = -n * A.t / T;
         out->F_TV = n * A.dt / (volume * T);
