@@ -7,14 +7,18 @@
 #include <string.h>
 
 enum {
-    MOST_STEPS = 20000,   /* of one call */
-    MOST_HALVINGS = 60,   /* of a step that cannot be made */
-    MOST_BISECTIONS = 60, /* of an event's place */
-    FIRST_PARTS = 1000    /* the first step is that part of the mass */
+    MOST_STEPS = 20000,    /* of one call */
+    MOST_SOLUTIONS = 6000, /* of the vessel, from the start: some ten times what is usual */
+    MOST_HALVINGS = 60,    /* of a step that cannot be made */
+    MOST_BISECTIONS = 60,  /* of an event's place */
+    FIRST_PARTS = 1000     /* the first step is that part of the mass */
 };
 
 /* An event is placed to this part of the mass at the start. */
 #define EVENT_PLACE 1e-12
+
+/* No step that has to be smaller than this part of the mass is worth its work: the vessel's solution is not smooth. */
+#define LEAST_STEP 1e-9
 
 struct draw_down {
     const struct fluid_at_t *at_t;
@@ -26,6 +30,7 @@ struct draw_down {
     struct mixture_vessel *vessel; /* NULL: a pure fluid */
     struct equilibrium_workspace *ws;
     bool has_vessel;
+    int solutions;                  /* of the vessel, since the start */
     double *trial, *error, *before; /* [count], mol */
     gsl_odeiv2_step *stepper;
     gsl_odeiv2_system system;
@@ -118,9 +123,12 @@ static enum answer solve_mixture(struct draw_down *draw, const double n[], struc
     return ANSWER_OK;
 }
 
-/* The contents with n[] mol; a negative amount has none. */
+/* The contents with n[] mol; a negative amount has none. Work is limited, so that every draw comes to an end. */
 static enum answer solve(struct draw_down *draw, const double n[], struct draw_state *out)
 {
+    if (draw->solutions++ >= MOST_SOLUTIONS) {
+        return ANSWER_FAILED;
+    }
     for (size_t i = 0; i < draw->count; i++) {
         if (!(n[i] >= 0.0)) {
             return ANSWER_OUT_OF_RANGE;
@@ -229,7 +237,7 @@ static enum answer one_step(struct draw_down *draw, double most, enum draw_event
 {
     memcpy(draw->before, draw->state.amounts, draw->count * sizeof *draw->before);
     double h = fmin(draw->step, most);
-    for (int i = 0; i < MOST_HALVINGS; i++) {
+    for (int i = 0; i < MOST_HALVINGS && draw->solutions < MOST_SOLUTIONS; i++) {
         const bool is_made = step_and_solve(draw, h);
         const double error = is_made ? step_error(draw) : HUGE_VAL;
         if (error <= 1.0) {
@@ -241,6 +249,12 @@ static enum answer one_step(struct draw_down *draw, double most, enum draw_event
             }
             keep(draw, draw->state.delivered + h);
             return ANSWER_OK;
+        }
+        if (!(h > LEAST_STEP * draw->mass)) {
+            /* what is drawn may jump at an event, and no step across it has a small error: the event itself is placed
+             * by steps up to it */
+            *event = is_made ? event_between(draw, &draw->state, &draw->other) : DRAW_NO_EVENT;
+            return *event == DRAW_NO_EVENT ? ANSWER_FAILED : place_event(draw, h, event);
         }
         h *= is_made ? fmax(0.2, 0.9 * pow(error, -1.0 / 8.0)) : 0.5;
         draw->step = h;
@@ -301,6 +315,7 @@ enum answer draw_down_begin(struct draw_down *draw)
 {
     memcpy(draw->trial, draw->task.start, draw->count * sizeof *draw->trial);
     draw->has_vessel = false;
+    draw->solutions = 0;
     draw->step = draw->mass / FIRST_PARTS;
     const enum answer answer = solve(draw, draw->trial, &draw->other);
     if (answer == ANSWER_OK) {

@@ -59,7 +59,7 @@ const struct draw_state *draw_down_state(const struct draw_down *draw);
 
 /* Draws until `delivered` kg in all, or until the next event before, whichever is first. An event is placed to 1e-12 of
  * the mass at the start; the state is the one right behind it, of DRAW_LIQUID_IS_GONE the one right before. The end
- * comes again when asked again. ANSWER_FAILED where the vessel has no solution on the way. */
+ * comes again when asked again. ANSWER_FAILED where the vessel has no solution on the way, or it takes too many. */
 enum answer draw_down_to(struct draw_down *draw, double delivered, enum draw_event *event);
 
 #endif
