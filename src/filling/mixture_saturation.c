@@ -249,6 +249,9 @@ static void add_state(const struct sheet_run *run, const struct method_run *meth
 /* A line lost at a temperature colder than any asked about takes nothing from the answer. */
 static bool matters(const struct sheet_run *run, const struct envelope *envelope, const struct envelope_line *line)
 {
+    if (line->count == 0) {
+        return false;
+    }
     const size_t last = line->first + line->count - 1;
     const double temperature = exp(envelope->X[last * (envelope->components + 2) + envelope->components]);
     double coldest = COLDER_THAN_ANY_YARD;
@@ -258,7 +261,7 @@ static bool matters(const struct sheet_run *run, const struct envelope *envelope
             coldest = fmin(coldest, run->sheet->temperatures.values[i]);
         }
     }
-    return line->count > 0 && temperature > coldest;
+    return temperature > coldest;
 }
 
 static void add_open_ends(const struct sheet_run *run, const struct method_run *method, const struct envelope *envelope)
@@ -288,6 +291,33 @@ static void tell_incomplete(const struct sheet_run *run)
     }
 }
 
+/* Parts within which two solutions are one critical point, passed by two lines or interpolated from two starts. */
+#define SAME_CRITICAL 1e-6
+
+static bool is_same_critical(const struct mixture_critical *a, const struct mixture_critical *b)
+{
+    return fabs(log(a->temperature / b->temperature)) <= SAME_CRITICAL &&
+           fabs(log(a->pressure / b->pressure)) <= SAME_CRITICAL;
+}
+
+/* Each of them once. */
+static void add_critical_points(const struct sheet_run *run, struct method_run *method, size_t starts)
+{
+    struct mixture_critical told[ENVELOPE_MOST_CRITICAL];
+    size_t count = 0;
+    for (size_t i = 0; i < starts; i++) {
+        struct mixture_critical *critical = &told[count];
+        bool is_new = mixture_critical_point(method, i, critical) == ANSWER_OK;
+        for (size_t k = 0; is_new && k < count; k++) {
+            is_new = !is_same_critical(critical, &told[k]);
+        }
+        if (is_new) {
+            add_state(run, method, "critical", critical->temperature, critical->pressure);
+            count++;
+        }
+    }
+}
+
 static void tell_bounds(const struct sheet_run *run)
 {
     sheet_begin_facts(run->result, run->out, "what bounds the two-phase states");
@@ -305,12 +335,7 @@ static void tell_bounds(const struct sheet_run *run)
             add_state(run, method, "cricondenbar", envelope->cricondenbar->temperature,
                       envelope->cricondenbar->pressure);
         }
-        struct mixture_critical critical;
-        for (size_t i = 0; i < envelope->critical_count; i++) {
-            if (mixture_critical_point(method, i, &critical) == ANSWER_OK) {
-                add_state(run, method, "critical", critical.temperature, critical.pressure);
-            }
-        }
+        add_critical_points(run, method, envelope->critical_count);
     }
     for (size_t m = 0; m < run->method_count; m++) {
         struct method_run *method = &run->methods[m];
