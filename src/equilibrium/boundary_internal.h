@@ -35,4 +35,22 @@ enum answer boundary_take(struct boundary_state *b, double tolerance);
 /* Copies the point out, and tests its feed for stability. */
 enum answer boundary_report(struct boundary_state *b, struct boundary_point *out);
 
+/* ---- lines of an envelope: shared by its tracing and by what is read from it ------------------------------------- */
+
+enum { ENVELOPE_MOST_STEPS = 12 }; /* of Newton's method, from one point of a line to another */
+
+/* The unknowns of point k, [components + 2]. */
+double *envelope_point_at(const struct envelope *envelope, size_t k);
+
+/* The component whose ratio is farthest from one at X. */
+size_t envelope_fastest_ratio(const struct boundary_state *b, const double *X);
+
+/* Does the line pass a critical point between two of its points? The ratio that is farthest from one turns over. */
+bool envelope_is_across(const struct boundary_state *b, const double *before, const double *after);
+
+/* Sets b->X `part` of the way from one point to another in the held unknown, by the cubic with the slopes that stand in
+ * slope_before and slope_after of the workspace. */
+void envelope_curve_between(struct boundary_state *b, size_t held, const double *before, const double *after,
+                            double part);
+
 #endif

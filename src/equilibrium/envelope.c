@@ -10,7 +10,14 @@
 #include <math.h>
 #include <string.h>
 
-enum { MOST_STEPS = 12, MOST_START_STEPS = 60, MOST_RETRIES = 14, MOST_REFINEMENTS = 60, EASY = 4, HARD = 6 };
+enum {
+    MOST_STEPS = ENVELOPE_MOST_STEPS,
+    MOST_START_STEPS = 60,
+    MOST_RETRIES = 14,
+    MOST_REFINEMENTS = 60,
+    EASY = 4,
+    HARD = 6
+};
 
 /* Largest changes in one step of ln K and ln p, and of ln T. */
 #define LARGEST_CHANGE             0.5
@@ -25,13 +32,6 @@ enum { MOST_STEPS = 12, MOST_START_STEPS = 60, MOST_RETRIES = 14, MOST_REFINEMEN
 /* The ln K of the points traced closest to a critical point: the error of a solution grows with its inverse square,
  * that of the cubic across with its fourth power, and here neither makes more than some 1e-9 of the pressure. */
 #define BESIDE_CRITICAL 2.5e-3
-/* Points on both sides of a critical point as near to each other as this, in ln K, are joined by a cubic. */
-#define CLOSE_TOGETHER 0.02
-/* And so close to a critical point that they are hardly two, but still solved for. */
-#define HARDLY_APART 2e-3
-/* Between such points the line is interpolated, to this difference of ln f: what is left of a pressure's error then is
- * far less, as beside a critical point ln f hardly tells two phases apart. */
-#define CRITICAL_TOLERANCE 2e-9
 /* Two lines that start as near to each other as this, in ln T, are one. */
 #define SAME_TEMPERATURE 1e-7
 /* A step shorter than this leads nowhere. */
@@ -63,7 +63,7 @@ struct envelope *envelope_create(size_t components, struct arena *arena)
     return envelope;
 }
 
-static double *point_at(const struct envelope *envelope, size_t k)
+double *envelope_point_at(const struct envelope *envelope, size_t k)
 {
     return envelope->X + k * (envelope->components + 2);
 }
@@ -74,7 +74,7 @@ static bool store(struct tracer *t)
     if (e->point_count == ENVELOPE_MOST_POINTS) {
         return false;
     }
-    memcpy(point_at(e, e->point_count), t->b.X, t->b.size * sizeof(double));
+    memcpy(envelope_point_at(e, e->point_count), t->b.X, t->b.size * sizeof(double));
     e->feed_volume[e->point_count] = t->b.feed_volume;
     e->incipient_volume[e->point_count] = t->b.incipient_volume;
     e->point_count++;
@@ -192,7 +192,7 @@ static void choose_held(struct tracer *t)
     t->step = fmin(t->step, change_limit(t, fastest));
 }
 
-static size_t fastest_ratio(const struct boundary_state *b, const double *X)
+size_t envelope_fastest_ratio(const struct boundary_state *b, const double *X)
 {
     size_t fastest = 0;
     for (size_t a = 1; a < b->ws->active_count; a++) {
@@ -204,16 +204,16 @@ static size_t fastest_ratio(const struct boundary_state *b, const double *X)
 }
 
 /* Does the line pass a critical point between two of its points? The ratio that is farthest from one turns over. */
-static bool is_across(const struct boundary_state *b, const double *before, const double *after)
+bool envelope_is_across(const struct boundary_state *b, const double *before, const double *after)
 {
-    const size_t ratio = fastest_ratio(b, before);
+    const size_t ratio = envelope_fastest_ratio(b, before);
     return fabs(before[ratio]) < NEAR_CRITICAL && before[ratio] * after[ratio] < 0.0;
 }
 
 /* Is the line about to reach a critical point? Then the phases are alike and growing more so. */
 static bool is_approaching_critical(const struct tracer *t, const double *from)
 {
-    const size_t ratio = fastest_ratio(&t->b, from);
+    const size_t ratio = envelope_fastest_ratio(&t->b, from);
     const double towards = -from[ratio] * t->slope[ratio] * t->direction;
     return fabs(from[ratio]) < NEAR_CRITICAL && towards > 0.0 &&
            fabs(log(t->b.expected_feed / t->b.expected_incipient)) < NEAR_CRITICAL;
@@ -274,11 +274,11 @@ static bool is_astray(const struct tracer *t, const double *from)
 /* One more point from the last one; false when no step, however short, leads to one. */
 static bool advance(struct tracer *t)
 {
-    const double *from = point_at(t->envelope, t->envelope->point_count - 1);
+    const double *from = envelope_point_at(t->envelope, t->envelope->point_count - 1);
     choose_held(t);
     const bool is_near_critical = is_approaching_critical(t, from);
     if (is_near_critical) {
-        hold(t, fastest_ratio(&t->b, from));
+        hold(t, envelope_fastest_ratio(&t->b, from));
     }
     for (int retry = 0; retry < MOST_RETRIES && t->step > SHORTEST_STEP; retry++) {
         memcpy(t->b.X, from, t->b.size * sizeof(double));
@@ -297,7 +297,8 @@ static bool advance(struct tracer *t)
 
 /* `part` of the way from one point to another in the held unknown, by the cubic with the slopes that stand in
  * slope_before and slope_after. */
-static void curve_between(struct boundary_state *b, size_t held, const double *before, const double *after, double part)
+void envelope_curve_between(struct boundary_state *b, size_t held, const double *before, const double *after,
+                            double part)
 {
     const double length = after[held] - before[held], rest = 1.0 - part;
     for (size_t a = 0; a < b->size; a++) {
@@ -315,7 +316,7 @@ static void curve_between(struct boundary_state *b, size_t held, const double *b
  * vanishes, by false position in the held unknown (the Illinois way). False when it was not found. */
 static bool find_extremum(struct tracer *t, size_t a, double slope_before, const double *after, double slope_after)
 {
-    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
+    const double *before = envelope_point_at(t->envelope, t->envelope->point_count - 1);
     double low = 0.0, high = 1.0, at_low = slope_before, at_high = slope_after;
     for (int k = 0; k < MOST_REFINEMENTS; k++) {
         const double part = low + (high - low) * at_low / (at_low - at_high);
@@ -347,8 +348,8 @@ static bool find_extremum(struct tracer *t, size_t a, double slope_before, const
 static void store_extrema(struct tracer *t, const double *after, const double *slope_after)
 {
     const size_t m = t->b.ws->active_count;
-    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
-    for (size_t a = m; a < m + 2 && !is_across(&t->b, before, after); a++) {
+    const double *before = envelope_point_at(t->envelope, t->envelope->point_count - 1);
+    for (size_t a = m; a < m + 2 && !envelope_is_across(&t->b, before, after); a++) {
         if (t->slope[a] * slope_after[a] < 0.0 && find_extremum(t, a, t->slope[a], after, slope_after[a])) {
             memcpy(t->slope, t->b.slope, t->b.size * sizeof(double));
             store(t);
@@ -375,7 +376,6 @@ static bool is_at_end(struct tracer *t, double coldest)
     return true;
 }
 
-/* The critical point between the last two points, if the ratios pass through one there. */
 /* Two lines may be one curve traced from either end; its critical point is interpolated to about these parts. */
 #define SAME_CRITICAL_TEMPERATURE 1e-3
 #define SAME_CRITICAL_PRESSURE    1e-2
@@ -391,13 +391,14 @@ static bool is_noted(const struct envelope *e, const struct critical_point *crit
     return false;
 }
 
+/* The critical point between the last two points, if the ratios pass through one there. */
 static void note_critical(struct tracer *t)
 {
     struct envelope *e = t->envelope;
     const size_t m = t->b.ws->active_count, last = e->point_count - 1;
-    const double *before = point_at(e, last - 1), *after = point_at(e, last);
-    const size_t ratio = fastest_ratio(&t->b, before);
-    if (!is_across(&t->b, before, after) || e->critical_count == ENVELOPE_MOST_CRITICAL) {
+    const double *before = envelope_point_at(e, last - 1), *after = envelope_point_at(e, last);
+    const size_t ratio = envelope_fastest_ratio(&t->b, before);
+    if (!envelope_is_across(&t->b, before, after) || e->critical_count == ENVELOPE_MOST_CRITICAL) {
         return;
     }
     const double part = before[ratio] / (before[ratio] - after[ratio]);
@@ -449,14 +450,14 @@ static void approach_critical(struct tracer *t)
 {
     struct equilibrium_workspace *ws = t->b.ws;
     const size_t bytes = t->b.size * sizeof(double);
-    const double *before = point_at(t->envelope, t->envelope->point_count - 1);
+    const double *before = envelope_point_at(t->envelope, t->envelope->point_count - 1);
     memcpy(ws->crossed, t->b.X, bytes);
     memcpy(ws->slope_before, t->slope, bytes);
     memcpy(ws->slope_after, t->b.slope, bytes);
     const double beside = fmin(0.04, BESIDE_CRITICAL / fabs(ws->crossed[t->held] - before[t->held]));
     const double parts[] = {0.2, 0.35, 0.45, 0.5 - beside, 0.5 + beside, 0.55, 0.65, 0.8};
     for (size_t k = 0; k < sizeof parts / sizeof *parts; k++) {
-        curve_between(&t->b, t->held, before, ws->crossed, parts[k]);
+        envelope_curve_between(&t->b, t->held, before, ws->crossed, parts[k]);
         const enum answer answer = boundary_solve(&t->b, t->held, MOST_STEPS);
         if (answer == ANSWER_OK && is_between(t, before, ws->crossed) && add(t)) {
             note_critical(t);
@@ -478,7 +479,7 @@ static void follow(struct tracer *t, double direction, double coldest)
         if (!advance(t)) {
             return;
         }
-        if (is_across(&t->b, point_at(t->envelope, t->envelope->point_count - 1), t->b.X)) {
+        if (envelope_is_across(&t->b, envelope_point_at(t->envelope, t->envelope->point_count - 1), t->b.X)) {
             approach_critical(t);
         }
         if (!add(t)) {
@@ -502,7 +503,7 @@ static void reverse(struct tracer *t)
     for (size_t k = 0; k < t->line->count / 2; k++) {
         const size_t one = t->line->first + k, other = t->line->first + t->line->count - 1 - k;
         for (size_t c = 0; c < t->b.size; c++) {
-            swap(&point_at(e, one)[c], &point_at(e, other)[c]);
+            swap(&envelope_point_at(e, one)[c], &envelope_point_at(e, other)[c]);
         }
         swap(&e->feed_volume[one], &e->feed_volume[other]);
         swap(&e->incipient_volume[one], &e->incipient_volume[other]);
@@ -522,14 +523,15 @@ static void follow_both_ways(struct tracer *t)
     reverse(t);
     t->line->start = t->line->first + t->line->count - 1;
     t->line->end = ENVELOPE_END_LOST;
-    memcpy(t->b.X, point_at(e, t->line->start), t->b.size * sizeof(double));
+    memcpy(t->b.X, envelope_point_at(e, t->line->start), t->b.size * sizeof(double));
     t->b.expected_feed = e->feed_volume[t->line->start];
     t->b.expected_incipient = e->incipient_volume[t->line->start];
     if (boundary_solve(&t->b, m + 1, MOST_STEPS) == ANSWER_OK) {
         follow(t, 1.0, coldest);
     }
     /* Lost where it had come down again: what is left of it lies at lower pressures still. */
-    if (t->line->end == ENVELOPE_END_LOST && point_at(e, e->point_count - 1)[m + 1] < log(ENVELOPE_START_PRESSURE)) {
+    if (t->line->end == ENVELOPE_END_LOST &&
+        envelope_point_at(e, e->point_count - 1)[m + 1] < log(ENVELOPE_START_PRESSURE)) {
         t->line->end = ENVELOPE_END_LOW_PRESSURE;
     }
 }
@@ -543,7 +545,7 @@ static void trace_line(struct tracer *t)
         const size_t start = e->line[l].start;
         const bool is_same_side =
             (e->feed_volume[start] > e->incipient_volume[start]) == (t->b.feed_volume > t->b.incipient_volume);
-        if (is_same_side && fabs(point_at(e, start)[m] - t->b.X[m]) < SAME_TEMPERATURE) {
+        if (is_same_side && fabs(envelope_point_at(e, start)[m] - t->b.X[m]) < SAME_TEMPERATURE) {
             return;
         }
     }
@@ -591,7 +593,7 @@ static bool report_highest(struct tracer *t, size_t a, struct boundary_point *ou
     for (size_t l = 0; l < e->line_count; l++) {
         for (size_t k = 0; k < e->line[l].count; k++) {
             const size_t here = e->line[l].first + k;
-            if (here == 0 || point_at(e, here)[a] > point_at(e, highest)[a]) {
+            if (here == 0 || envelope_point_at(e, here)[a] > envelope_point_at(e, highest)[a]) {
                 highest = here;
                 is_inside = k > 0 && k + 1 < e->line[l].count;
             }
@@ -600,7 +602,7 @@ static bool report_highest(struct tracer *t, size_t a, struct boundary_point *ou
     if (!is_inside) {
         return false;
     }
-    memcpy(t->b.X, point_at(e, highest), t->b.size * sizeof(double));
+    memcpy(t->b.X, envelope_point_at(e, highest), t->b.size * sizeof(double));
     t->b.expected_feed = e->feed_volume[highest];
     t->b.expected_incipient = e->incipient_volume[highest];
     const size_t m = t->b.ws->active_count;
@@ -636,260 +638,4 @@ enum answer envelope_trace(struct fluid_at_t *at_t, const struct fluid *fluid, c
     out->has_cricondentherm = report_highest(&t, ws->active_count, out->cricondentherm);
     out->has_cricondenbar = report_highest(&t, ws->active_count + 1, out->cricondenbar);
     return ANSWER_OK;
-}
-
-/* ---- points of the envelope ------------------------------------------------------------------------------------ */
-
-struct boundary_list *boundary_list_create(size_t components, struct arena *arena)
-{
-    struct boundary_list *list = arena_alloc(arena, 1, sizeof *list);
-    for (size_t k = 0; k < BOUNDARY_MOST; k++) {
-        list->point[k] = boundary_point_create(components, arena);
-    }
-    return list;
-}
-
-static void interpolate_volumes(struct boundary_state *b, const struct envelope *e, size_t k, double part)
-{
-    b->expected_feed = e->feed_volume[k] * pow(e->feed_volume[k + 1] / e->feed_volume[k], part);
-    b->expected_incipient = e->incipient_volume[k] * pow(e->incipient_volume[k + 1] / e->incipient_volume[k], part);
-}
-
-/* `part` of the way from point k of the envelope to the next. */
-static void interpolate(struct boundary_state *b, const struct envelope *e, size_t k, double part)
-{
-    const double *before = point_at(e, k), *after = point_at(e, k + 1);
-    for (size_t c = 0; c < b->size; c++) {
-        b->X[c] = before[c] + part * (after[c] - before[c]);
-    }
-    interpolate_volumes(b, e, k, part);
-}
-
-/* The unknown that changes most between the two points. */
-static size_t most_changed(const struct boundary_state *b, const struct envelope *e, size_t k)
-{
-    size_t most = 0;
-    for (size_t c = 1; c < b->size; c++) {
-        if (fabs(point_at(e, k + 1)[c] - point_at(e, k)[c]) > fabs(point_at(e, k + 1)[most] - point_at(e, k)[most])) {
-            most = c;
-        }
-    }
-    return most;
-}
-
-/* Where unknown `a` passes `value`, by false position in the one that changes most: the way the line was traced. */
-static enum answer approach(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value)
-{
-    const size_t held = most_changed(b, e, k);
-    double low = 0.0, high = 1.0, at_low = point_at(e, k)[a] - value, at_high = point_at(e, k + 1)[a] - value;
-    for (int step = 0; step < MOST_REFINEMENTS; step++) {
-        const double part = low + (high - low) * at_low / (at_low - at_high);
-        interpolate(b, e, k, part);
-        const enum answer answer = boundary_solve(b, held, MOST_STEPS);
-        const double miss = b->X[a] - value;
-        if (answer != ANSWER_OK || fabs(miss) < 1e-11) {
-            return answer;
-        }
-        if ((miss < 0.0) == (at_low < 0.0)) {
-            low = part;
-            at_low = miss;
-            at_high *= 0.5;
-        } else {
-            high = part;
-            at_high = miss;
-            at_low *= 0.5;
-        }
-    }
-    return ANSWER_FAILED;
-}
-
-static bool is_closely_across(const struct boundary_state *b, const double *before, const double *after)
-{
-    const size_t ratio = fastest_ratio(b, before);
-    return is_across(b, before, after) && fabs(after[ratio] - before[ratio]) < CLOSE_TOGETHER;
-}
-
-static bool set_slope_at(struct boundary_state *b, const struct envelope *e, size_t k, size_t held, double *slope)
-{
-    memcpy(b->X, point_at(e, k), b->size * sizeof(double));
-    b->expected_feed = e->feed_volume[k];
-    b->expected_incipient = e->incipient_volume[k];
-    const bool is_solved = boundary_solve(b, held, MOST_STEPS) == ANSWER_OK;
-    memcpy(slope, b->slope, b->size * sizeof(double));
-    return is_solved;
-}
-
-/* The part of the way on the cubic between two points at which unknown `a` has the value; leaves the point there. */
-static double curve_to(struct boundary_state *b, size_t held, const double *before, const double *after, size_t a,
-                       double value)
-{
-    double low = 0.0, high = 1.0;
-    for (int step = 0; step < MOST_REFINEMENTS; step++) {
-        const double middle = 0.5 * (low + high);
-        curve_between(b, held, before, after, middle);
-        *((b->X[a] < value) == (before[a] < value) ? &low : &high) = middle;
-    }
-    return low;
-}
-
-/* Right at the critical point itself Newton's method has nothing to hold on to. Between two points solved for close on
- * either side of it, the cubic is as good as a solution. */
-static enum answer solve_at_critical(struct boundary_state *b, size_t held, const double *before, const double *after,
-                                     size_t a, double value)
-{
-    struct equilibrium_workspace *ws = b->ws;
-    const size_t bytes = b->size * sizeof(double);
-    const double sign = after[held] > before[held] ? 1.0 : -1.0, length = after[held] - before[held];
-    curve_between(b, held, before, after, (-sign * HARDLY_APART - before[held]) / length);
-    memcpy(ws->next_unknowns, b->X, bytes);
-    curve_between(b, held, before, after, (sign * HARDLY_APART - before[held]) / length);
-    if (boundary_solve(b, held, MOST_STEPS) != ANSWER_OK) {
-        return ANSWER_FAILED;
-    }
-    memcpy(ws->crossed, b->X, bytes);
-    memcpy(ws->next_slope, b->slope, bytes);
-    memcpy(b->X, ws->next_unknowns, bytes);
-    if (boundary_solve(b, held, MOST_STEPS) != ANSWER_OK) {
-        return ANSWER_FAILED;
-    }
-    memcpy(ws->next_unknowns, b->X, bytes);
-    memcpy(ws->slope_before, b->slope, bytes);
-    memcpy(ws->slope_after, ws->next_slope, bytes);
-    if ((ws->next_unknowns[a] < value) == (ws->crossed[a] < value)) {
-        return ANSWER_FAILED;
-    }
-    curve_to(b, held, ws->next_unknowns, ws->crossed, a, value);
-    b->X[a] = value;
-    return boundary_take(b, CRITICAL_TOLERANCE);
-}
-
-/* The same next to a critical point. Newton's method at a given temperature or pressure gets there only from nearby,
- * and on both sides of the critical point itself not at all; but in the ratio that is farthest from one the line is as
- * smooth there as elsewhere, and between two close points of it a cubic is as good as a solution. */
-static enum answer solve_near_critical(struct boundary_state *b, const struct envelope *e, size_t k, size_t a,
-                                       double value)
-{
-    const double *before = point_at(e, k), *after = point_at(e, k + 1);
-    const size_t held = fastest_ratio(b, fabs(before[0]) > fabs(after[0]) ? before : after);
-    if (!set_slope_at(b, e, k, held, b->ws->slope_before) || !set_slope_at(b, e, k + 1, held, b->ws->slope_after)) {
-        return ANSWER_FAILED;
-    }
-    const double part = curve_to(b, held, before, after, a, value);
-    interpolate_volumes(b, e, k, part);
-    b->X[a] = value;
-    if (is_closely_across(b, before, after) && boundary_take(b, BOUNDARY_TOLERANCE) == ANSWER_OK) {
-        return ANSWER_OK;
-    }
-    return boundary_solve(b, a, MOST_STEPS) == ANSWER_OK ? ANSWER_OK
-                                                         : solve_at_critical(b, held, before, after, a, value);
-}
-
-/* Between points k and k + 1 of the envelope unknown `a` passes `value`. */
-static enum answer solve_between(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value,
-                                 struct boundary_point *out)
-{
-    const double before = point_at(e, k)[a], after = point_at(e, k + 1)[a];
-    enum answer answer = ANSWER_FAILED;
-    if (!is_closely_across(b, point_at(e, k), point_at(e, k + 1))) {
-        interpolate(b, e, k, (value - before) / (after - before));
-        b->X[a] = value;
-        answer = boundary_solve(b, a, MOST_STEPS);
-    }
-    if (answer != ANSWER_OK) {
-        answer = solve_near_critical(b, e, k, a, value);
-    }
-    if (answer != ANSWER_OK) {
-        answer = approach(b, e, k, a, value);
-    }
-    return answer == ANSWER_OK ? boundary_report(b, out) : answer;
-}
-
-/* By rising pressure, or temperature. */
-static void sort(struct boundary_list *list, bool by_pressure)
-{
-    for (size_t k = 1; k < list->count; k++) {
-        for (size_t l = k; l > 0; l--) {
-            struct boundary_point *lower = list->point[l - 1], *upper = list->point[l];
-            if (by_pressure ? lower->pressure <= upper->pressure : lower->temperature <= upper->temperature) {
-                break;
-            }
-            list->point[l - 1] = upper;
-            list->point[l] = lower;
-        }
-    }
-}
-
-/* Parts within which two solutions are one point, met by two lines. */
-#define SAME_POINT_PRESSURE 1e-9
-#define SAME_POINT_VOLUME   1e-6
-
-static bool is_known(const struct boundary_list *list, const struct boundary_point *point)
-{
-    for (size_t i = 0; i < list->count; i++) {
-        const struct boundary_point *known = list->point[i];
-        if (fabs(log(known->pressure / point->pressure)) <= SAME_POINT_PRESSURE &&
-            fabs(log(known->temperature / point->temperature)) <= SAME_POINT_PRESSURE &&
-            fabs(log(known->incipient_volume / point->incipient_volume)) <= SAME_POINT_VOLUME) {
-            return true;
-        }
-    }
-    return false;
-}
-
-static enum answer find_all(struct fluid_at_t *at_t, const struct fluid *fluid, size_t offset, double ln_value,
-                            const double z[], const struct envelope *e, struct equilibrium_workspace *ws,
-                            struct boundary_list *out)
-{
-    struct boundary_state b;
-    out->count = 0;
-    out->is_complete = true;
-    out->opens_below = false;
-    if (!workspace_set_feed(ws, z) || !isfinite(ln_value)) {
-        return ANSWER_OUT_OF_RANGE;
-    }
-    const enum answer set = fluid_set_t(at_t, fluid, at_t->temperature > 0.0 ? at_t->temperature : 300.0);
-    if (set != ANSWER_OK) {
-        return set;
-    }
-    boundary_begin(&b, at_t, at_t, ws, ws->unknowns, ws->partial_volume);
-    const size_t a = ws->active_count + offset;
-    for (size_t l = 0; l < e->line_count; l++) {
-        for (size_t k = e->line[l].first; k + 1 < e->line[l].first + e->line[l].count; k++) {
-            const double before = point_at(e, k)[a] - ln_value, after = point_at(e, k + 1)[a] - ln_value;
-            if (!((before < 0.0) != (after < 0.0)) || out->count == BOUNDARY_MOST) {
-                continue;
-            }
-            const enum answer answer = solve_between(&b, e, k, a, ln_value, out->point[out->count]);
-            if (answer == ANSWER_CANNOT) {
-                return answer;
-            }
-            out->is_complete = out->is_complete && answer == ANSWER_OK;
-            out->count += answer == ANSWER_OK && !is_known(out, out->point[out->count]) ? 1 : 0;
-        }
-    }
-    sort(out, offset == 0);
-    return ANSWER_OK;
-}
-
-enum answer boundary_at_t(struct fluid_at_t *at_t, const struct fluid *fluid, double temperature, const double z[],
-                          const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
-{
-    enum answer answer = find_all(at_t, fluid, 0, log(temperature), z, envelope, ws, out);
-    if (answer == ANSWER_OK && !out->is_complete) {
-        answer = boundary_complete_at_t(at_t, fluid, temperature, z, ws, out);
-    }
-    for (size_t k = 0; answer == ANSWER_OK && k < out->count; k++) {
-        out->point[k]->temperature = temperature; /* not what its logarithm gave back */
-    }
-    return answer == ANSWER_OK && !out->is_complete ? ANSWER_FAILED : answer;
-}
-
-enum answer boundary_at_p(struct fluid_at_t *at_t, const struct fluid *fluid, double pressure, const double z[],
-                          const struct envelope *envelope, struct equilibrium_workspace *ws, struct boundary_list *out)
-{
-    const enum answer answer = find_all(at_t, fluid, 1, log(pressure), z, envelope, ws, out);
-    for (size_t k = 0; answer == ANSWER_OK && k < out->count; k++) {
-        out->point[k]->pressure = pressure;
-    }
-    return answer == ANSWER_OK && !out->is_complete ? ANSWER_FAILED : answer;
 }
