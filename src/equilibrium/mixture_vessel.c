@@ -215,7 +215,7 @@ struct side {
 static double next_pressure(const struct filling *v, const struct side *low, const struct side *high, int count)
 {
     const double middle = sqrt(low->pressure * high->pressure);
-    const double span = log(low->volume / high->volume);
+    const double span = high->volume > 0.0 ? log(low->volume / high->volume) : 0.0;
     if (count % 3 == 2 || !(fabs(span) > 0.0)) {
         return middle;
     }
