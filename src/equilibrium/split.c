@@ -45,6 +45,8 @@ enum {
  * is. */
 #define SMALL_PHASE 0.05
 #define VANISHING   1e-22
+/* Of less than this no method can tell the properties: the squares of amounts are lost to underflow. */
+#define LEAST_PHASE 1e-100
 /* Two phases that differ by no more than this part in everything are one; by no more than the second, they may be. */
 #define SAME_PHASE    1e-7
 #define SIMILAR_PHASE 0.05
@@ -68,6 +70,9 @@ static double molar_volume_of(const struct phase *phase)
 static enum answer evaluate_phase(struct flash *f, size_t k, unsigned want, const double amounts[])
 {
     f->out->evaluations++;
+    if (!(sum_of(amounts, f->ws->count) > LEAST_PHASE)) {
+        return ANSWER_FAILED;
+    }
     if (f->is_gas_over_liquid) {
         const enum branch branch = k == 0 ? BRANCH_VAPOUR : BRANCH_LIQUID;
         const enum answer answer = phase_tp(f->at_t, f->pressure, amounts, branch, want, f->ws->phase[k]);
