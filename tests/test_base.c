@@ -1,5 +1,5 @@
 /* The base: arena, growing text, files, codes. */
-#define _POSIX_C_SOURCE 200809L
+#define _XOPEN_SOURCE 700
 #include "base/arena.h"
 #include "base/codes.h"
 #include "base/file.h"
@@ -184,7 +184,7 @@ static void columns_are_characters(void **state)
 /* A fresh folder for one test; its path in `path`. */
 static void make_folder(char path[64])
 {
-    snprintf(path, 64, "/tmp/tarewright-test-XXXXXX");
+    snprintf(path, 64, P_tmpdir "/tarewright-test-XXXXXX");
     assert_non_null(mkdtemp(path));
 }
 

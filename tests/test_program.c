@@ -41,7 +41,7 @@ static int begin(void **state)
     struct arena *arena = arena_create(NULL);
     struct scene *scene = arena_alloc(arena, 1, sizeof *scene);
     scene->arena = arena;
-    strcpy(scene->folder, "/tmp/tarewright-test-XXXXXX");
+    strcpy(scene->folder, P_tmpdir "/tarewright-test-XXXXXX");
     if (!mkdtemp(scene->folder)) {
         return -1;
     }

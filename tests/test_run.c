@@ -1,5 +1,5 @@
 /* The pipeline from a deck's text to listing, JSON, tables and status, with files held in memory. */
-#define _POSIX_C_SOURCE 200809L
+#define _XOPEN_SOURCE 700
 #include "base/file.h"
 #include "run/help.h"
 #include "run/library.h"
@@ -192,7 +192,7 @@ static void files_are_named_by_deck_and_command_line(void **state)
 
 static char *scratch_folder(char folder[64])
 {
-    strcpy(folder, "/tmp/tarewright-test-XXXXXX");
+    strcpy(folder, P_tmpdir "/tarewright-test-XXXXXX");
     assert_non_null(mkdtemp(folder));
     return folder;
 }

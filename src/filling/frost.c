@@ -5,7 +5,6 @@
  * dissolves its own frost: the first crossing counts. */
 #include "filling/frost.h"
 
-#include "equilibrium/split.h"
 #include "filling/mixture_contents.h"
 #include "filling/mixture_internal.h"
 #include "filling/search.h"
@@ -110,36 +109,6 @@ static enum answer pure_margin(const struct case_fluid *fluid, struct method_run
     }
     const struct fluid_fugacity f = {phase.pressure, NULL, &arrays.ln_phi};
     return hold_against_solids(fluid, method, temperature, &f, out);
-}
-
-/* A split's components have equal fugacities in all phases: the first one's serve, but where it has none of one. */
-static enum answer split_margin(const struct case_fluid *fluid, struct method_run *method, double temperature,
-                                double molar_volume, struct frost_margin *out)
-{
-    const struct split *split;
-    enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
-    answer = answer == ANSWER_OK ? mixture_split_at_volume(method, molar_volume, &split) : answer;
-    if (answer != ANSWER_OK) {
-        return answer;
-    }
-    *out = (struct frost_margin){.value = -(double)INFINITY};
-    for (size_t k = 0; k < split->phase_count; k++) {
-        const struct fluid_fugacity f = {split->pressure, split->phase[k].x, split->phase[k].ln_phi};
-        struct frost_margin margin;
-        answer = hold_against_solids(fluid, method, temperature, &f, &margin);
-        if (answer != ANSWER_OK) {
-            return answer;
-        }
-        *out = margin.value > out->value ? margin : *out;
-    }
-    return ANSWER_OK;
-}
-
-enum answer frost_margin_at(const struct case_fluid *fluid, struct method_run *method, double temperature,
-                            double molar_volume, struct frost_margin *out)
-{
-    return method->mixture == NULL ? pure_margin(fluid, method, temperature, molar_volume, out)
-                                   : split_margin(fluid, method, temperature, molar_volume, out);
 }
 
 /* ---- the lowest density ------------------------------------------------------------------------------------------ */

@@ -25,11 +25,6 @@ struct frost_margin {
     struct solid_state solid;
 };
 
-/* At the fluid's overall composition and molar volume (m3/mol), solids apart, in equilibrium with itself. `method` has
- * any temperature set, and `temperature` afterwards. ANSWER_CANNOT: no component can be a solid. */
-enum answer frost_margin_at(const struct case_fluid *fluid, struct method_run *method, double temperature,
-                            double molar_volume, struct frost_margin *out);
-
 /* The lowest density at which frost forms out of the fluid as one phase, be it stable against liquids or not. */
 struct frost_limit {
     bool forms;          /* false: at no density the method knows; only the next is then given */
