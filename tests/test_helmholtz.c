@@ -76,11 +76,12 @@ static void row_by_amount(const struct evaluation *e, size_t count, size_t j, do
     }
 }
 
-/* d(row)/dx by (45 (f1 - f-1) - 9 (f2 - f-2) + (f3 - f-3)) / 60 h: truncation h^6, about 1e-13 here. */
+/* d(row)/dx by (45 (f1 - f-1) - 9 (f2 - f-2) + (f3 - f-3)) / 60 h: truncation h^6, about 1e-10 where a Gaussian term is
+ * narrow. */
 static void differentiate(struct subject *subject, double *x, double row[MOST_VALUES])
 {
     static const double weight[] = {45.0 / 60.0, -9.0 / 60.0, 1.0 / 60.0};
-    const double at = *x, h = 2e-3 * at;
+    const double at = *x, h = 5e-4 * at;
     for (size_t k = 0; k < MOST_VALUES; k++) {
         row[k] = 0.0;
     }

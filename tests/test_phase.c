@@ -69,7 +69,7 @@ static void for_each_state(void (*check)(struct subject *subject, struct arena *
 /* ---- derivatives ----------------------------------------------------------------------------------------------- */
 
 struct differences {
-    double ln_phi[MOST], enthalpy;
+    double ln_phi[MOST], enthalpy, entropy; /* of H / R and S / R */
 };
 
 /* By (45 (f1 - f-1) - 9 (f2 - f-2) + (f3 - f-3)) / 60 h. */
@@ -87,6 +87,7 @@ static struct differences differentiate(struct subject *subject, double *x, stru
                 sum.ln_phi[i] += w * work->ln_phi[i];
             }
             sum.enthalpy += w * work->residual_enthalpy_rt * subject->T;
+            sum.entropy += w * work->residual_entropy_r;
         }
     }
     *x = at;
@@ -101,6 +102,12 @@ static void derivatives_agree(struct subject *subject, struct arena *arena)
     const struct differences by_p = differentiate(subject, &subject->p, work);
     const struct differences by_T = differentiate(subject, &subject->T, work);
     assert_near(phase->residual_heat_capacity_r, by_T.enthalpy, 1e-8 * (1.0 + fabs(by_T.enthalpy)), subject->name);
+    assert_near(phase->residual_heat_capacity_r, by_T.entropy * subject->T, 1e-8 * (1.0 + fabs(by_T.enthalpy)),
+                "dS/dT = cp / T");
+    /* (dS/dp)_T = -(dV/dT)_p; of the ideal gas both are R / p. */
+    const double swelling = -phase->dp_dt / phase->dp_dv / (phase->amount * subject->fluid->gas_constant);
+    assert_near(by_p.entropy * subject->p, 1.0 - swelling * subject->p, 1e-8 * (1.0 + fabs(by_p.entropy * subject->p)),
+                "Maxwell, S and V");
     for (size_t i = 0; i < count; i++) {
         const double scale = 1.0 + fabs(phase->ln_phi[i]);
         assert_near(phase->dln_phi_dp[i] * subject->p, by_p.ln_phi[i] * subject->p, 1e-9 * scale, subject->name);
@@ -164,6 +171,23 @@ static void derivatives_of_pressure_agree_with_differences(void **state)
 
 /* ---- identities ------------------------------------------------------------------------------------------------ */
 
+/* dln phi_i/dp = V_i / R T - 1 / p with the partial volume V_i = (dV/dn_i) of the pressure's own derivatives, which is
+ * dmu_i/dp = dV/dn_i; Euler: sum n_i V_i = V. */
+static void partial_volumes_agree(const struct subject *subject)
+{
+    const struct phase *phase = subject->phase;
+    const double RT = subject->fluid->gas_constant * subject->T, p = subject->p;
+    double sum = 0.0, size = 0.0;
+    for (size_t i = 0; i < subject->fluid->count; i++) {
+        const double partial = -phase->dp_dn[i] / phase->dp_dv;
+        const double reduced = partial * p / RT;
+        assert_near(phase->dln_phi_dp[i] * p, reduced - 1.0, 1e-12 * (1.0 + fabs(reduced)), "Maxwell, mu and V");
+        sum += subject->n[i] * partial;
+        size += fabs(subject->n[i] * partial);
+    }
+    assert_near(sum, phase->volume, 1e-12 * size, "Euler, sum n_i V_i = V");
+}
+
 static void identities_hold(struct subject *subject, struct arena *arena)
 {
     (void)arena;
@@ -189,6 +213,7 @@ static void identities_hold(struct subject *subject, struct arena *arena)
     assert_near(gibbs, phase->residual_enthalpy_rt - phase->residual_entropy_r, 1e-11, "G = H - T S");
     assert_near(enthalpy, phase->residual_enthalpy_rt, 1e-11, "Gibbs and Helmholtz");
     assert_near(volume, phase->Z - 1.0, 1e-11, "d(sum x ln phi)/dp = (Z - 1) / p");
+    partial_volumes_agree(subject);
 }
 
 static void thermodynamic_identities_hold(void **state)
@@ -214,6 +239,23 @@ static void temperature_and_volume_give_back_the_pressure(void **state)
 {
     (void)state;
     for_each_state(the_volume_form_agrees);
+}
+
+/* A new method is tested by a row of SAMPLE_FLUIDS, and has one for mixtures too where it takes them. */
+static void every_method_has_a_row(void **state)
+{
+    (void)state;
+    for (const struct fluid_ops *const *method = fluid_methods(); *method != NULL; method++) {
+        size_t pure = 0, mixed = 0;
+        for (size_t k = 0; k < SAMPLE_FLUIDS_COUNT; k++) {
+            if (strcmp(SAMPLE_FLUIDS[k].method, (*method)->name) == 0) {
+                *(SAMPLE_FLUIDS[k].count == 1 ? &pure : &mixed) += 1;
+            }
+        }
+        if (pure + mixed == 0 || (((*method)->capabilities & CAN_MIXTURE) != 0 && mixed == 0)) {
+            fail_msg("%s has no row of SAMPLE_FLUIDS, or none for a mixture", (*method)->name);
+        }
+    }
 }
 
 static void at_vanishing_pressure_every_method_is_the_ideal_gas(void **state)
@@ -460,6 +502,7 @@ int main(void)
         cmocka_unit_test(derivatives_at_constant_pressure_agree_with_differences),
         cmocka_unit_test(derivatives_of_pressure_agree_with_differences),
         cmocka_unit_test(thermodynamic_identities_hold),
+        cmocka_unit_test(every_method_has_a_row),
         cmocka_unit_test(temperature_and_volume_give_back_the_pressure),
         cmocka_unit_test(at_vanishing_pressure_every_method_is_the_ideal_gas),
         cmocka_unit_test(infinite_dilution_is_finite_and_continuous),

@@ -1,5 +1,7 @@
 #include "support/sample_fluids.h"
+#include "case/case.h"
 #include "support/check.h"
+#include "support/measured_mixture.h"
 
 /* Lemmon, McLinden and Wagner, J. Chem. Eng. Data 54 (2009) 3141, tables 4 and 5. The fits for starting values are
  * its ancillary equations, from memory. */
@@ -276,6 +278,17 @@ const struct sample_fluid SAMPLE_FLUIDS[] = {
     {"quantum mixture", "quantum-peng-robinson", 3, {NEON, HYDROGEN, HELIUM}, {0.47, 0.59, 0.31}, SAMPLE_CONSTANTS},
     {"Lee-Kesler propane", "lee-kesler", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"Lee-Kesler mixture", "lee-kesler", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
+    {"multi-fluid propane", "multi-fluid", 1, {PROPANE}, {1.37}, SAMPLE_LIBRARY},
+    {"multi-fluid mixture", "multi-fluid", 5, FIVE, FIVE_AMOUNTS, SAMPLE_LIBRARY},
+    {"multi-fluid with a nonanalytic part alone",
+     "multi-fluid",
+     2,
+     {CARBON_DIOXIDE, NEON},
+     {0.83, 0.41},
+     SAMPLE_LIBRARY},
+    {"GERG-2008 propane", "gerg-2008", 1, {PROPANE}, {1.37}, SAMPLE_LIBRARY},
+    {"GERG-2008 mixture", "gerg-2008", 5, FIVE, FIVE_AMOUNTS, SAMPLE_LIBRARY},
+    {"GERG-2008 with light gases", "gerg-2008", 3, {METHANE, HYDROGEN, HELIUM}, {0.71, 0.31, 0.17}, SAMPLE_LIBRARY},
     {"virial propane", "virial-tsonopoulos", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"virial mixture", "virial-tsonopoulos", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
     {"virial mixture by Pitzer and Abbott",
@@ -285,6 +298,12 @@ const struct sample_fluid SAMPLE_FLUIDS[] = {
      {0.53, 0.29, 0.13},
      SAMPLE_INVENTED},
     {"virial propane in pressure", "virial-pitzer-abbott-pressure", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
+    {"virial mixture by Pitzer and Abbott in pressure",
+     "virial-pitzer-abbott-pressure",
+     3,
+     {METHANE, PROPANE, HYDROGEN},
+     {0.53, 0.29, 0.13},
+     SAMPLE_INVENTED},
     {"virial mixture in pressure", "virial-tsonopoulos-pressure", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
 };
 const size_t SAMPLE_FLUIDS_COUNT = sizeof SAMPLE_FLUIDS / sizeof *SAMPLE_FLUIDS;
@@ -336,9 +355,22 @@ static void add_quantum_pairs(const struct sample_fluid *sample, struct fluid_sp
     spec->pairs = pairs;
 }
 
+/* The components and pairs that a deck gets. */
+static const struct fluid *create_from_library(const struct sample_fluid *sample, struct arena *arena)
+{
+    const char *names[SAMPLE_MOST];
+    for (size_t i = 0; i < sample->count; i++) {
+        names[i] = SAMPLE_SUBSTANCE[sample->substance[i]].name;
+    }
+    return create(sample->method, &measured_case_fluid(sample->method, names, sample->count, arena)->spec, arena);
+}
+
 const struct fluid *sample_fluid_create(const struct sample_fluid *sample, struct arena *arena)
 {
     const size_t count = sample->count;
+    if (sample->pairs == SAMPLE_LIBRARY) {
+        return create_from_library(sample, arena);
+    }
     const struct pure_spec **pure = arena_alloc(arena, count, sizeof *pure);
     for (size_t i = 0; i < count; i++) {
         pure[i] = &SAMPLE_SUBSTANCE[sample->substance[i]];
@@ -355,6 +387,8 @@ const struct fluid *sample_fluid_create(const struct sample_fluid *sample, struc
         break;
     case SAMPLE_CONSTANTS:
         add_quantum_pairs(sample, spec, arena);
+        break;
+    case SAMPLE_LIBRARY:
         break;
     }
     return create(sample->method, spec, arena);

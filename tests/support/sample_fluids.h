@@ -30,6 +30,7 @@ enum sample_pairs {
     SAMPLE_INVENTED,  /* every kij invented */
     SAMPLE_GROUPS,    /* the groups of E-PPR78 */
     SAMPLE_CONSTANTS, /* kij and lij as published for the method, zero where nothing is */
+    SAMPLE_LIBRARY,   /* components and pairs as a deck gets them from the library */
 };
 
 struct sample_fluid {
