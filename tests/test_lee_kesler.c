@@ -2,6 +2,7 @@
  * composition derivatives on both branches, the branches' ends, and saturation. The identities that every method meets
  * are in test_phase.c. */
 #include "equilibrium/saturation.h"
+#include "equilibrium/split.h"
 #include "fluid/lee_kesler_internal.h"
 #include "fluid/phase.h"
 #include "support/check.h"
@@ -330,6 +331,39 @@ static void its_range_is_told(void **state)
     arena_free(arena);
 }
 
+/* A liquid's molecules take up a good part of its volume, a gas's do not: without that nobody would look for a gas
+ * beside a liquid feed, whose pressure is below that of its bubble point here. */
+static void a_liquid_below_its_bubble_pressure_gives_off_gas(void **state)
+{
+    (void)state;
+    static const struct mixture methane_butane = {2, {METHANE, N_BUTANE}, {1.171}};
+    static const double n[] = {0.0015, 0.9985};
+    struct arena *arena = arena_create(NULL);
+    const struct fluid *fluid = create(&methane_butane, PAIR_FROM_LIBRARY, arena);
+    struct fluid_at_t *at_t = sample_at_t(fluid, 230.0, arena);
+    struct equilibrium_workspace *ws = equilibrium_workspace_create(2, arena);
+    struct split *split = split_create(2, arena);
+    size_t two = 0;
+    double vapour = 1.0;
+    for (double p = 1.5e4; p < 1e5; p *= 1.01) {
+        assert_int_equal(split_at_tp(at_t, p, n, ws, split), ANSWER_OK);
+        two += split->phase_count == 2;
+        vapour = split->phase_count == 2 ? split->phase[0].fraction : vapour;
+        /* Once one phase, with rising pressure, one phase for good. */
+        assert_true(split->phase_count == 1 || p < 1.5e4 * pow(1.01, (double)two));
+    }
+    /* Each step of pressure takes off 1.6e-5 of it at the end. */
+    assert_in_range(two, 40, 110);
+    assert_true(vapour > 0.0 && vapour < 1.6e-5);
+    struct phase phase = {.ln_phi = NULL};
+    const double smallest = phase_smallest_volume(at_t, n), big = phase_smallest_volume(at_t, (double[]){0.003, 1.997});
+    assert_close(big, 2.0 * smallest, 1e-14, "extensive");
+    assert_int_equal(phase_tp(at_t, 4e7, n, BRANCH_STABLE, 0, &phase), ANSWER_OK);
+    assert_true(smallest < phase.volume && phase.volume < 4.0 * smallest);
+    assert_int_equal(phase_tv(at_t, smallest, n, 0, &phase), ANSWER_OUT_OF_RANGE);
+    arena_free(arena);
+}
+
 /* ---- at a volume, at saturation ---------------------------------------------------------------------------------- */
 
 static void a_volume_gives_back_its_pressure_on_both_branches(void **state)
@@ -389,6 +423,7 @@ int main(void)
         cmocka_unit_test(pairs_come_from_the_deck_then_the_library),
         cmocka_unit_test(near_the_critical_point_only_the_stable_state_answers_everywhere),
         cmocka_unit_test(its_range_is_told),
+        cmocka_unit_test(a_liquid_below_its_bubble_pressure_gives_off_gas),
         cmocka_unit_test(a_volume_gives_back_its_pressure_on_both_branches),
         cmocka_unit_test(saturation_is_near_the_vapour_pressure_equation),
     };

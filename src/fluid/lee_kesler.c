@@ -31,6 +31,10 @@
 #define LARGEST_REDUCED_TEMPERATURE 4.0
 #define LARGEST_REDUCED_PRESSURE    10.0
 
+/* No state is denser: of R Tc / pc, a quarter to a third of the volume of the coldest liquids in the paper's tables.
+ * Pressures there are hundreds to thousands of times pc. */
+#define SMALLEST_REDUCED_VOLUME 0.04
+
 struct lee_kesler {
     struct fluid head;
     const double *acentric;            /* [count] */
@@ -344,7 +348,7 @@ static enum answer tp(const struct fluid_at_t *at_t, double pressure, const doub
         return answer;
     }
     out->Z = g.Z;
-    if (!(out->Z > 0.0)) {
+    if (!(out->Z * T_r > SMALLEST_REDUCED_VOLUME * p_r)) {
         return ANSWER_OUT_OF_RANGE; /* the interpolation, drawn out far beyond an end, has no volume left */
     }
     out->has_slopes = true;
@@ -361,6 +365,12 @@ static enum answer tp(const struct fluid_at_t *at_t, double pressure, const doub
         set_matrix(at, &c, &g, out->dln_phi_dn);
     }
     return ANSWER_OK;
+}
+
+static double smallest_volume(const struct fluid_at_t *at_t, const double n[])
+{
+    const struct pseudocritical c = mix((const struct lee_kesler_at_t *)(const void *)at_t, n);
+    return SMALLEST_REDUCED_VOLUME * c.n * GAS_CONSTANT * c.T / c.p;
 }
 
 /* For a mixture the state is outside for certain where it would be so for each of the components. */
@@ -558,6 +568,7 @@ const struct fluid_ops lee_kesler_ops = {
     .at_t_size = at_t_size,
     .set_t = set_t,
     .tp = tp,
+    .smallest_volume = smallest_volume,
     .range = range,
     .critical = critical,
     .saturation_start = saturation_start,
