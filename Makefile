@@ -147,8 +147,9 @@ bench: $(BUILD)/bench ## operations for each second, and as multiples of one exp
 
 STATES ?= 1000000
 SEED   ?= 1
-campaign: $(BUILD)/campaign ## STATES random states of mixtures from SEED, each held against the conditions of equilibrium
-	$(BUILD)/campaign $(STATES) $(SEED)
+METHOD ?= peng-robinson
+campaign: $(BUILD)/campaign ## STATES random states of mixtures from SEED by METHOD, each held against the conditions of equilibrium
+	$(BUILD)/campaign $(STATES) $(SEED) $(METHOD)
 
 # ---- care ----------------------------------------------------------------------------------------------------------
 

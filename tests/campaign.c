@@ -1,5 +1,6 @@
 /* The campaign: a million random states of mixtures of library gases, or as many as the first argument says, from seed
- * 1 or the second. Prints a tally for each kind of state and fails when one breaks its bounds. */
+ * 1 or the second, by Peng-Robinson or the method that is the third. Prints a tally for each kind of state and fails
+ * when one breaks its bounds. */
 #include "support/campaign.h"
 
 #include <stdio.h>
@@ -18,10 +19,11 @@ int main(int argc, char **argv)
 {
     const long states = argc > 1 ? strtol(argv[1], NULL, 10) : 1000000;
     const uint64_t seed = argc > 2 ? strtoull(argv[2], NULL, 10) : 1;
+    const char *method = argc > 3 ? argv[3] : "peng-robinson";
     bool is_good = true;
     for (size_t k = 0; k < sizeof SHARES / sizeof *SHARES; k++) {
         struct campaign_tally t;
-        campaign_run(seed, SHARES[k].tenths * states / 10, SHARES[k].kind, 100, &t);
+        campaign_run(method, seed, SHARES[k].tenths * states / 10, SHARES[k].kind, 100, &t);
         printf("%-14s %8ld states: %ld / %ld / %ld / %ld of 1 / 2 / 3 / more phases, %ld refused, %ld wrong, "
                "%ld of %ld searched miss a phase\n",
                campaign_kind_name(SHARES[k].kind), t.states, t.by_phases[1], t.by_phases[2], t.by_phases[3],

@@ -114,10 +114,11 @@ static void judge(const struct state_place *place, const struct mixture_state *s
     }
 }
 
-void campaign_run(uint64_t first, long count, enum state_kind kind, long searched_every, struct campaign_tally *out)
+void campaign_run(const char *method, uint64_t first, long count, enum state_kind kind, long searched_every,
+                  struct campaign_tally *out)
 {
     struct arena *arena = arena_create(NULL);
-    struct state_room *room = state_room_create(arena);
+    struct state_room *room = state_room_create_for(method, arena);
     *out = (struct campaign_tally){.states = count, .worst_gain = -HUGE_VAL};
     for (long k = 0; k < count; k++) {
         const uint64_t seed = first + (uint64_t)k;

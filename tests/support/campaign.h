@@ -16,8 +16,10 @@ struct campaign_tally {
     uint64_t first_bad;    /* a seed that was refused, wrong or missed something; 0: none */
 };
 
-/* The states of seeds first .. first + count - 1 of one kind; every `searched_every`-th answer is searched. */
-void campaign_run(uint64_t first, long count, enum state_kind kind, long searched_every, struct campaign_tally *out);
+/* The states of seeds first .. first + count - 1 of one kind by a method; every `searched_every`-th answer is searched.
+ */
+void campaign_run(const char *method, uint64_t first, long count, enum state_kind kind, long searched_every,
+                  struct campaign_tally *out);
 
 /* A word for each kind. */
 const char *campaign_kind_name(enum state_kind kind);

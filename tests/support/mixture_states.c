@@ -1,12 +1,31 @@
 #include "support/mixture_states.h"
+#include "case/case.h"
 #include "equilibrium/boundary.h"
 #include "equilibrium/mixture_critical.h"
 #include "support/check.h"
 #include "support/library_gases.h"
+#include "support/measured_mixture.h"
 
 #include <math.h>
+#include <string.h>
+
+/* A state of fewer gases than were to be drawn, where so many draws find none that has a pair with each of the others.
+ */
+enum { MOST_DRAWS = 300 };
+
+/* K. Below about 235 K the reference equation of water has no liquid (water is ice there): mixtures with water are
+ * drawn at this temperature and above by the methods that take the equation. */
+#define LEAST_TEMPERATURE_WITH_WATER 240.0
+
+/* The gases a method's mixtures are drawn from. */
+struct state_pool {
+    const char *method;
+    size_t count;
+    const struct fluid_spec *library; /* of all gases as one mixture; NULL: LIBRARY_GAS, with no pairs */
+};
 
 struct state_room {
+    struct state_pool pool;
     struct arena *arena; /* of the current fluid alone */
     struct fluid_spec spec;
     const struct pure_spec *pure[STATE_MOST_COMPONENTS];
@@ -16,9 +35,125 @@ struct state_room {
     struct boundary_point *point;
 };
 
+/* Gases with a reference equation and published pairs. */
+static const char *const MULTI_FLUID_GASES[] = {"carbon-dioxide",
+                                                "propane",
+                                                "n-butane",
+                                                "isobutane",
+                                                "n-hexane",
+                                                "n-pentane",
+                                                "ethane",
+                                                "n-heptane",
+                                                "propylene",
+                                                "r32",
+                                                "n-octane",
+                                                "ethanol",
+                                                "n-nonane",
+                                                "r134a",
+                                                "methane",
+                                                "benzene",
+                                                "n-decane",
+                                                "nitrogen",
+                                                "r22",
+                                                "r152a",
+                                                "hydrogen-sulfide",
+                                                "argon",
+                                                "acetone",
+                                                "carbon-monoxide",
+                                                "r23",
+                                                "toluene",
+                                                "cyclohexane",
+                                                "water",
+                                                "r125",
+                                                "isopentane",
+                                                "oxygen",
+                                                "hydrogen",
+                                                "methanol",
+                                                "helium",
+                                                "ethylene",
+                                                "dimethyl-ether",
+                                                "r1234yf",
+                                                "r12",
+                                                "r143a",
+                                                "m-xylene",
+                                                "ammonia",
+                                                "r1234ze-e",
+                                                "p-xylene",
+                                                "r227ea",
+                                                "ethylbenzene",
+                                                "o-xylene",
+                                                "r114",
+                                                "hydrogen-chloride",
+                                                "xenon",
+                                                "isobutene",
+                                                "sulfur-dioxide",
+                                                "r116",
+                                                "diethyl-ether",
+                                                "r142b",
+                                                "r14",
+                                                "r218",
+                                                "r245fa",
+                                                "r13",
+                                                "r161",
+                                                "r1243zf",
+                                                "r13i1",
+                                                "1-butene",
+                                                "r236fa",
+                                                "krypton",
+                                                "neopentane",
+                                                "isohexane",
+                                                "r1233zd-e",
+                                                "r41",
+                                                "r40",
+                                                "r115",
+                                                "rc318",
+                                                "r123",
+                                                "r124",
+                                                "cis-2-butene",
+                                                "trans-2-butene",
+                                                "cyclopentane",
+                                                "carbonyl-sulfide",
+                                                "cyclopropane",
+                                                "neon",
+                                                "sulfur-hexafluoride",
+                                                "r11",
+                                                "deuterium",
+                                                "r21",
+                                                "r141b",
+                                                "nitrous-oxide",
+                                                "propyne",
+                                                "chlorine"};
+
+static const char *const GERG_GASES[] = {
+    "methane",    "nitrogen",  "carbon-dioxide",  "ethane",    "propane",          "isobutane", "n-butane",
+    "isopentane", "n-pentane", "n-hexane",        "n-heptane", "n-octane",         "n-nonane",  "n-decane",
+    "hydrogen",   "oxygen",    "carbon-monoxide", "water",     "hydrogen-sulfide", "helium",    "argon",
+};
+
+#define COUNT(array) (sizeof(array) / sizeof *(array))
+
+static struct state_pool open_pool(const char *method, struct arena *arena)
+{
+    if (strcmp(method, "multi-fluid") == 0) {
+        const size_t count = COUNT(MULTI_FLUID_GASES);
+        return (struct state_pool){method, count, &measured_case_fluid(method, MULTI_FLUID_GASES, count, arena)->spec};
+    }
+    if (strcmp(method, "gerg-2008") == 0) {
+        const size_t count = COUNT(GERG_GASES);
+        return (struct state_pool){method, count, &measured_case_fluid(method, GERG_GASES, count, arena)->spec};
+    }
+    return (struct state_pool){method, LIBRARY_GASES, NULL};
+}
+
 struct state_room *state_room_create(struct arena *arena)
 {
+    return state_room_create_for("peng-robinson", arena);
+}
+
+struct state_room *state_room_create_for(const char *method, struct arena *arena)
+{
     struct state_room *room = arena_alloc(arena, 1, sizeof *room);
+    room->pool = open_pool(method, arena);
     for (size_t count = 1; count <= STATE_MOST_COMPONENTS; count++) {
         room->ws[count] = equilibrium_workspace_create(count, arena);
         room->split[count] = split_create(count, arena);
@@ -54,18 +189,41 @@ static size_t one_of(uint64_t *state, size_t count)
     return (size_t)(next(state) % count);
 }
 
-static void draw_gases(uint64_t *state, struct mixture_state *out)
+static const struct reducing_pair *pair_of(const struct fluid_spec *library, size_t a, size_t b)
+{
+    for (size_t k = 0; k < library->reducing_pair_count; k++) {
+        const struct reducing_pair *pair = &library->reducing_pairs[k];
+        if ((pair->first == a && pair->second == b) || (pair->first == b && pair->second == a)) {
+            return pair;
+        }
+    }
+    return NULL;
+}
+
+/* Whether a gas may join those before it: another one, and each pair with them published where pairs matter. */
+static bool may_join(const struct state_pool *pool, const struct mixture_state *out, size_t i)
+{
+    for (size_t j = 0; j < i; j++) {
+        if (out->gas[j] == out->gas[i] ||
+            (pool->library != NULL && pair_of(pool->library, out->gas[j], out->gas[i]) == NULL)) {
+            return false;
+        }
+    }
+    return true;
+}
+
+static void draw_gases(uint64_t *state, const struct state_pool *pool, struct mixture_state *out)
 {
     out->count = 1 + one_of(state, STATE_MOST_COMPONENTS);
     for (size_t i = 0; i < out->count; i++) {
-        bool is_new;
+        size_t draws = 0;
         do {
-            out->gas[i] = one_of(state, LIBRARY_GASES);
-            is_new = true;
-            for (size_t j = 0; j < i; j++) {
-                is_new = is_new && out->gas[j] != out->gas[i];
+            if (draws++ == MOST_DRAWS) {
+                out->count = i;
+                return;
             }
-        } while (!is_new);
+            out->gas[i] = one_of(state, pool->count);
+        } while (!may_join(pool, out, i));
     }
 }
 
@@ -86,6 +244,25 @@ static void draw_parts(uint64_t *state, enum state_kind kind, struct mixture_sta
 
 /* ---- fluids ---------------------------------------------------------------------------------------------------- */
 
+/* The pairs of the gases drawn, numbered as these are. */
+static void take_pairs(const struct mixture_state *state, struct state_room *room)
+{
+    struct reducing_pair *pairs = arena_alloc(room->arena, state->count * state->count, sizeof *pairs);
+    size_t count = 0;
+    for (size_t i = 0; i < state->count; i++) {
+        for (size_t j = 0; j < i; j++) {
+            const struct reducing_pair *pair = pair_of(room->pool.library, state->gas[i], state->gas[j]);
+            if (pair != NULL) {
+                pairs[count] = *pair;
+                pairs[count].first = pair->first == state->gas[i] ? i : j;
+                pairs[count++].second = pair->first == state->gas[i] ? j : i;
+            }
+        }
+    }
+    room->spec.reducing_pairs = pairs;
+    room->spec.reducing_pair_count = count;
+}
+
 struct state_place mixture_state_place(const struct mixture_state *state, struct state_room *room)
 {
     struct fluid_lack_report lack;
@@ -94,11 +271,15 @@ struct state_place mixture_state_place(const struct mixture_state *state, struct
     }
     room->arena = arena_create(NULL);
     for (size_t i = 0; i < state->count; i++) {
-        room->pure[i] = &LIBRARY_GAS[state->gas[i]];
+        const size_t gas = state->gas[i];
+        room->pure[i] = room->pool.library != NULL ? room->pool.library->pure[gas] : &LIBRARY_GAS[gas];
     }
     room->spec = (struct fluid_spec){.count = state->count, .pure = room->pure};
+    if (room->pool.library != NULL) {
+        take_pairs(state, room);
+    }
     struct state_place place = {.ws = room->ws[state->count], .split = room->split[state->count]};
-    place.fluid = fluid_create("peng-robinson", &room->spec, room->arena, &lack);
+    place.fluid = fluid_create(room->pool.method, &room->spec, room->arena, &lack);
     assert_non_null(place.fluid);
     place.at_t = fluid_at_t_create(place.fluid, room->arena);
     assert_int_equal(fluid_set_t(place.at_t, place.fluid, state->temperature), ANSWER_OK);
@@ -145,6 +326,27 @@ static double draw_distance(uint64_t *state, double decades)
     return one_of(state, 2) == 0 ? distance : -distance;
 }
 
+/* K; by the methods that take reference equations none colder. */
+static double least_temperature(const struct state_pool *pool, const struct mixture_state *out)
+{
+    double least = 0.0;
+    for (size_t i = 0; pool->library != NULL && i < out->count; i++) {
+        if (strcmp(pool->library->pure[out->gas[i]]->name, "water") == 0) {
+            least = LEAST_TEMPERATURE_WITH_WATER;
+        }
+    }
+    return least;
+}
+
+/* Reference equations have no meaning far above their published pressures, where the lines of an open envelope end. */
+static bool is_inside(const struct state_room *room, const struct state_place *place, const struct mixture_state *state,
+                      const struct mixture_critical *critical)
+{
+    return room->pool.library == NULL ||
+           (critical->temperature >= least_temperature(&room->pool, state) &&
+            place->fluid->ops->range(place->fluid, critical->temperature, critical->pressure).side == RANGE_INSIDE);
+}
+
 /* A mixture without a critical point that is found stays where it is. */
 static void move_to_critical(uint64_t *state, struct state_room *room, struct mixture_state *out)
 {
@@ -155,7 +357,7 @@ static void move_to_critical(uint64_t *state, struct state_room *room, struct mi
         envelope->critical_count > 0 &&
         mixture_critical_near(place.at_t, place.fluid, out->z, &envelope->critical[0], place.ws, &critical) ==
             ANSWER_OK &&
-        critical.pressure > 0.0) {
+        critical.pressure > 0.0 && is_inside(room, &place, out, &critical)) {
         out->temperature = critical.temperature * (1.0 + draw_distance(state, 5.0));
         out->pressure = critical.pressure * (1.0 + draw_distance(state, 5.0));
     }
@@ -199,9 +401,10 @@ static void move_to_azeotrope(uint64_t *state, struct state_room *room, struct m
 void mixture_state_draw(uint64_t seed, enum state_kind kind, struct state_room *room, struct mixture_state *out)
 {
     uint64_t state = seed * 1000003U + (uint64_t)kind;
-    draw_gases(&state, out);
+    draw_gases(&state, &room->pool, out);
     draw_parts(&state, kind, out);
-    out->temperature = 200.0 + 200.0 * uniform(&state);
+    const double coldest = fmax(200.0, least_temperature(&room->pool, out));
+    out->temperature = coldest + (400.0 - coldest) * uniform(&state);
     out->pressure = 1e3 * pow(6e4, uniform(&state));
     if (kind == STATE_NEAR_BOUNDARY) {
         move_to_boundary(&state, room, out);

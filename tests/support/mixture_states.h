@@ -1,4 +1,5 @@
-/* Random states of mixtures of library gases, by Peng-Robinson with all pair parameters zero, from seeds. */
+/* Random states of mixtures of library gases from seeds, by Peng-Robinson with all pair parameters zero or by a method
+ * named. */
 #ifndef TAREWRIGHT_TESTS_MIXTURE_STATES_H
 #define TAREWRIGHT_TESTS_MIXTURE_STATES_H
 
@@ -19,7 +20,7 @@ enum state_kind {
 
 struct mixture_state {
     size_t count;
-    size_t gas[STATE_MOST_COMPONENTS]; /* indices into LIBRARY_GAS */
+    size_t gas[STATE_MOST_COMPONENTS]; /* indices into LIBRARY_GAS, or into the multi-fluid method's own gases */
     double z[STATE_MOST_COMPONENTS];
     double temperature, pressure; /* K, Pa */
 };
@@ -27,6 +28,10 @@ struct mixture_state {
 /* Memory for states of any size: fluids with 1 to 10 components share it. */
 struct state_room;
 struct state_room *state_room_create(struct arena *arena);
+
+/* The same for another method. A cubic or `lee-kesler` takes all pair parameters zero; `multi-fluid` and `gerg-2008`
+ * take the library's equations, and mixtures of gases each pair of which is published. */
+struct state_room *state_room_create_for(const char *method, struct arena *arena);
 
 /* Gives back the current fluid, which has an arena of its own; the room itself belongs to the arena it came from. */
 void state_room_close(struct state_room *room);
