@@ -22,7 +22,9 @@ OPTIMISE ?= -O2
 # No contraction into fused operations and no fast maths: two builds print the same digits.
 # Threads by OpenMP where it comes with the compiler; elsewhere its pragmas are passed over, and answers are the same.
 THREADS  := $(if $(findstring clang,$(CC)),-Wno-unknown-pragmas,-fopenmp)
-CFLAGS   += -std=c17 $(OPTIMISE) -g -ffp-contract=off $(WARNINGS) $(THREADS) $(EXTRA_CFLAGS)
+# Nobody reads errno after mathematics, or traps: square roots and choices need no calls. No digit depends on it.
+ARITHMETIC := -ffp-contract=off -fno-math-errno -fno-trapping-math
+CFLAGS   += -std=c17 $(OPTIMISE) -g $(ARITHMETIC) $(WARNINGS) $(THREADS) $(EXTRA_CFLAGS)
 CPPFLAGS += -Isrc -Itests -I. -I$(BUILD)/generated -DTAREWRIGHT_VERSION='"$(VERSION)"' -MMD -MP
 LDLIBS   := -lgsl -lgslcblas -ljansson -lnettle -lm
 LDFLAGS  += $(EXTRA_CFLAGS)

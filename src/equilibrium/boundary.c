@@ -47,14 +47,9 @@ static enum answer evaluate_branch(const struct boundary_state *b, const double 
     return answer == ANSWER_NO_SUCH_ROOT ? phase_tp(b->at_t, p, n, BRANCH_STABLE, want, out) : answer;
 }
 
-static double molar_volume_of(const struct phase *phase)
-{
-    return phase->volume / phase->amount;
-}
-
 static double surprise_of(const struct phase *phase, double expected)
 {
-    return fabs(log(molar_volume_of(phase) / expected));
+    return fabs(log(phase_molar_volume(phase) / expected));
 }
 
 /* Of two roots the one nearer to the expected volume. */
@@ -100,8 +95,8 @@ static enum answer evaluate(struct boundary_state *b)
         answer = evaluate_phase(b, ws->W, !feed_is_light, b->expected_incipient, want | PHASE_DLN_PHI_DN, ws->trial);
     }
     if (answer == ANSWER_OK) {
-        b->feed_volume = molar_volume_of(ws->reference);
-        b->incipient_volume = molar_volume_of(ws->trial);
+        b->feed_volume = phase_molar_volume(ws->reference);
+        b->incipient_volume = phase_molar_volume(ws->trial);
     }
     return answer;
 }
@@ -327,7 +322,7 @@ static bool substitute_dew(struct boundary_state *b)
         sum += ws->feed[i] * exp(b->X[a]);
     }
     /* d ln(sum) / d ln p is roughly the difference of the compressibilities. */
-    slope = ws->reference->Z - p * molar_volume_of(ws->trial) / (b->at_t->fluid->gas_constant * T);
+    slope = ws->reference->Z - p * phase_molar_volume(ws->trial) / (b->at_t->fluid->gas_constant * T);
     const double change = fmax(-1.0, fmin(1.0, -log(sum) / fmax(slope, 0.1)));
     b->X[m + 1] += change;
     for (size_t a = 0; a < m; a++) {

@@ -18,6 +18,7 @@ enum {
     MOST_ROUNDS = 12,
     MOST_HALVINGS = 18,
     MOST_SHIFTS = 14,
+    FIRST_SUBSTITUTIONS = 2,
     SUBSTITUTIONS = 3,
     MOST_PARTS = 14,
     MOST_SUBSTITUTION_ROUNDS = 4
@@ -53,24 +54,10 @@ enum {
 
 /* ---- the phases at hand ---------------------------------------------------------------------------------------- */
 
-static double sum_of(const double n[], size_t count)
-{
-    double sum = 0.0;
-    for (size_t i = 0; i < count; i++) {
-        sum += n[i];
-    }
-    return sum;
-}
-
-static double molar_volume_of(const struct phase *phase)
-{
-    return phase->volume / phase->amount;
-}
-
 static enum answer evaluate_phase(struct flash *f, size_t k, unsigned want, const double amounts[])
 {
     f->out->evaluations++;
-    if (!(sum_of(amounts, f->ws->count) > LEAST_PHASE)) {
+    if (!(amount_of(amounts, f->ws->count) > LEAST_PHASE)) {
         return ANSWER_FAILED;
     }
     if (f->is_gas_over_liquid) {
@@ -141,7 +128,8 @@ static bool substitute(struct flash *f, int passes)
 static bool substitute_to_gain(struct flash *f)
 {
     struct equilibrium_workspace *ws = f->ws;
-    for (int round = 0; round < MOST_SUBSTITUTION_ROUNDS && substitute(f, SUBSTITUTIONS); round++) {
+    for (int round = 0;
+         round < MOST_SUBSTITUTION_ROUNDS && substitute(f, round == 0 ? FIRST_SUBSTITUTIONS : SUBSTITUTIONS); round++) {
         const double first = gibbs_of(ws, 0, ws->amounts[0]), second = gibbs_of(ws, 1, ws->amounts[1]);
         f->gibbs = first + second;
         if (f->gibbs < -CLEAR_GAIN) {
@@ -258,6 +246,26 @@ void flash_accept_candidate(struct equilibrium_workspace *ws, size_t phases)
     }
 }
 
+/* The largest difference of ln f between the phases as evaluated. */
+static double residual_of(const struct flash *f)
+{
+    double largest = 0.0;
+    for (size_t a = 0; a < flash_unknowns_of(f); a++) {
+        const struct unknown u = flash_unknown_at(f, a);
+        largest = fmax(largest, fabs(f->ws->phase[u.phase]->ln_f_over_x[u.i] - f->ws->phase[u.rest]->ln_f_over_x[u.i]));
+    }
+    return largest;
+}
+
+/* Is the step good? Where it promises less than the Gibbs energy can show, and the split is no matter of rounding, the
+ * fugacities may say so instead. */
+static bool leads_down(const struct flash *f, double gibbs, double decrease)
+{
+    const bool is_below_rounding = decrease < GIBBS_ROUNDING;
+    return gibbs <= f->gibbs + (is_below_rounding ? 10.0 : 1.0) * GIBBS_ROUNDING ||
+           (is_below_rounding && gibbs < -CLEAR_GAIN && residual_of(f) < 0.5 * f->residual);
+}
+
 /* Along the step downhill. False when no part of it leads there; the phases are then evaluated where they were. */
 static bool descend(struct flash *f, double decrease, unsigned want)
 {
@@ -267,7 +275,7 @@ static bool descend(struct flash *f, double decrease, unsigned want)
         if (!flash_take_step(f, part) || flash_evaluate(f, want, f->ws->candidate, &gibbs) != ANSWER_OK) {
             continue;
         }
-        if (gibbs <= f->gibbs + (decrease < GIBBS_ROUNDING ? 10.0 : 1.0) * GIBBS_ROUNDING) {
+        if (leads_down(f, gibbs, decrease)) {
             f->gibbs = gibbs;
             flash_accept_candidate(f->ws, f->phases);
             return true;
@@ -328,7 +336,7 @@ static void remove_phase(struct flash *f, struct removal r)
 static double difference_of(const struct equilibrium_workspace *ws, size_t k, size_t l)
 {
     const double scale = ws->phase[k]->amount / ws->phase[l]->amount;
-    double largest = fabs(molar_volume_of(ws->phase[k]) / molar_volume_of(ws->phase[l]) - 1.0);
+    double largest = fabs(phase_molar_volume(ws->phase[k]) / phase_molar_volume(ws->phase[l]) - 1.0);
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
         largest = fmax(largest, fabs(ws->amounts[k][i] / (scale * ws->amounts[l][i]) - 1.0));
@@ -493,7 +501,7 @@ enum answer flash_prove(struct flash *f, struct stability *found)
     struct known_phases known = {.count = f->phases};
     for (size_t k = 0; k < f->phases; k++) {
         known.amounts[k] = ws->amounts[k];
-        known.molar_volume[k] = molar_volume_of(ws->phase[k]);
+        known.molar_volume[k] = phase_molar_volume(ws->phase[k]);
     }
     for (size_t a = 0; a < ws->active_count; a++) {
         const size_t i = ws->active[a];
@@ -678,9 +686,9 @@ static void report_phase(const struct flash *f, size_t k, struct split_phase *ou
 {
     const struct equilibrium_workspace *ws = f->ws;
     const struct phase *phase = ws->phase[k];
-    const double amount = sum_of(ws->amounts[k], ws->count);
+    const double amount = amount_of(ws->amounts[k], ws->count);
     out->fraction = amount;
-    out->molar_volume = molar_volume_of(phase);
+    out->molar_volume = phase_molar_volume(phase);
     out->Z = phase->Z;
     for (size_t i = 0; i < ws->count; i++) {
         out->x[i] = ws->amounts[k][i] / amount;
@@ -695,7 +703,7 @@ void flash_report(const struct flash *f)
     size_t order[MOST_PHASES];
     for (size_t k = 0; k < f->phases; k++) {
         size_t place = k;
-        for (; place > 0 && molar_volume_of(f->ws->phase[order[place - 1]]) < molar_volume_of(f->ws->phase[k]);
+        for (; place > 0 && phase_molar_volume(f->ws->phase[order[place - 1]]) < phase_molar_volume(f->ws->phase[k]);
              place--) {
             order[place] = order[place - 1];
         }

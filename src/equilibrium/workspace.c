@@ -9,9 +9,9 @@ static double *vector(size_t count, struct arena *arena)
 
 static void create_trial_vectors(struct equilibrium_workspace *ws, struct arena *arena)
 {
-    double **const vectors[] = {&ws->feed, &ws->ln_feed,     &ws->ln_pure,     &ws->d, &ws->feed_d,
-                                &ws->ln_K, &ws->ln_K_change, &ws->last_change, &ws->W, &ws->ln_W,
-                                &ws->g,    &ws->kept_W,      &ws->kept_ln_W};
+    double **const vectors[] = {&ws->feed, &ws->ln_feed,     &ws->ln_pure,     &ws->d,     &ws->feed_d,
+                                &ws->ln_K, &ws->ln_K_change, &ws->last_change, &ws->W,     &ws->ln_W,
+                                &ws->g,    &ws->kept_W,      &ws->kept_ln_W,   &ws->offset};
     for (size_t k = 0; k < sizeof vectors / sizeof *vectors; k++) {
         *vectors[k] = vector(ws->count, arena);
     }
@@ -26,10 +26,14 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
     create_trial_vectors(ws, arena);
     ws->reference = phase_create(count, arena);
     ws->trial = phase_create(count, arena);
+    ws->known = phase_create(count, arena);
+    ws->known_factor = vector(count * count, arena);
     for (size_t k = 0; k < MOST_PHASES; k++) {
         ws->phase[k] = phase_create(count, arena);
         ws->amounts[k] = vector(count, arena);
         ws->candidate[k] = vector(count, arena);
+        ws->known_hessian[k] = vector(count * count, arena);
+        ws->valley[k] = vector(count, arena);
     }
     ws->matrix = vector(unknowns * unknowns, arena);
     ws->step = vector(unknowns, arena);
@@ -43,6 +47,15 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
     ws->slope_before = vector(unknowns, arena);
     ws->slope_after = vector(unknowns, arena);
     return ws;
+}
+
+double amount_of(const double n[], size_t count)
+{
+    double sum = 0.0;
+    for (size_t i = 0; i < count; i++) {
+        sum += n[i];
+    }
+    return sum;
 }
 
 bool workspace_set_feed(struct equilibrium_workspace *ws, const double z[])

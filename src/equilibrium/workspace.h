@@ -25,7 +25,10 @@ struct equilibrium_workspace {
     double *candidate[MOST_PHASES];           /* [count], the same for a step on trial */
     double *ln_K, *ln_K_change, *last_change; /* [count] */
     /* Trial phases of the stability test. */
-    double *W, *ln_W, *g, *kept_W, *kept_ln_W; /* [count] */
+    double *W, *ln_W, *g, *kept_W, *kept_ln_W, *offset; /* [count] */
+    struct phase *known;                                /* one of the known phases, for its curvature: */
+    double *known_hessian[MOST_PHASES], *known_factor;  /* [count][count] */
+    double *valley[MOST_PHASES];                        /* [count] */
     /* Second-order steps: room for (MOST_PHASES - 1) count + 2 unknowns. */
     double *matrix, *step, *scale, *border, *partial_volume, *unknowns, *next_unknowns, *next_slope, *crossed;
     double *slope_before, *slope_after; /* the same room: at the ends of a step of an envelope */
@@ -36,6 +39,9 @@ struct equilibrium_workspace *equilibrium_workspace_create(size_t count, struct 
 /* Takes the composition z (any positive sum, [count]) as feed: mole fractions, their logarithms, the list of those
  * present. False unless every amount is zero or more, finite, and one is positive. */
 bool workspace_set_feed(struct equilibrium_workspace *ws, const double z[]);
+
+/* The sum of n[count], mol. */
+double amount_of(const double n[], size_t count);
 
 /* Fills ws->ln_pure: ln(f/p) of each component's pure condensed phase at the temperature set and `pressure` (Pa),
  * roughly: the vapour pressure of Lee and Kesler, AIChE J. 21 (1975) 510, below the critical temperature and of Wilson

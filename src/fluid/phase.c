@@ -424,3 +424,8 @@ enum answer phase_tv(const struct fluid_at_t *at_t, double volume, const double 
     out->roots = 0;
     return phase_from_tv(at_t, volume, NULL, n, &F, want, out);
 }
+
+double phase_molar_volume(const struct phase *phase)
+{
+    return phase->volume / phase->amount;
+}

@@ -64,4 +64,7 @@ struct phase *phase_create(size_t count, struct arena *arena);
 /* No state has a volume at or below this (m3, for all of n). */
 double phase_smallest_volume(const struct fluid_at_t *at_t, const double n[]);
 
+/* m3/mol of a phase evaluated before. */
+double phase_molar_volume(const struct phase *phase);
+
 #endif
