@@ -1,6 +1,7 @@
 /* Warnings of pairs without data and of light gases by the acentric factor. */
 #include "filling/pair_warnings.h"
 
+#include "support/measured_mixture.h"
 #include "support/result_reading.h"
 #include "support/small_mixture.h"
 
@@ -97,7 +98,7 @@ static void light_gases_by_the_acentric_factor_are_named(void **state)
     static const struct {
         const char *method;
         size_t warnings;
-    } cases[] = {{"soave-redlich-kwong", 1}, {"peng-robinson", 1}, {"peng-robinson-1978", 1},
+    } cases[] = {{"soave-redlich-kwong", 1}, {"peng-robinson", 1}, {"peng-robinson-1978", 1}, {"lee-kesler", 1},
                  {"redlich-kwong", 0},       {"van-der-waals", 0}, {"ideal-gas", 0}};
     for (size_t k = 0; k < sizeof cases / sizeof *cases; k++) {
         const struct result *result = warned(*state, cases[k].method);
@@ -107,6 +108,39 @@ static void light_gases_by_the_acentric_factor_are_named(void **state)
             assert_null(strstr(text_of(result, CODE_W307), "nitrogen"));
         }
     }
+}
+
+static void corresponding_states_are_told_from_an_attraction(void **state)
+{
+    assert_string_equal(text_of(warned(*state, "lee-kesler"), CODE_W307),
+                        "blend, lee-kesler: all properties follow the acentric factor, which says little of a gas as "
+                        "light as hydrogen");
+}
+
+/* Nothing is published of xenon with nitrogen or neon; nitrogen with argon is, and neon with argon. */
+static void estimated_pairs_of_reference_equations_are_named_in_one_warning(void **state)
+{
+    static const char *const names[] = {"nitrogen", "xenon", "argon", "neon"};
+    struct small_mixture *mixture = *state;
+    struct arena *arena = mixture->small.arena;
+    mixture->small.sheet.fluid = measured_case_fluid("multi-fluid", names, 4, arena);
+    const struct result *result = warned(mixture, "multi-fluid");
+    assert_int_equal(result_warnings(result, CODE_W370), 1);
+    assert_int_equal(result_warnings(result, CODE_W306), 0);
+    assert_int_equal(result_warnings(result, CODE_W307), 0);
+    assert_string_equal(text_of(result, CODE_W370),
+                        "measured, multi-fluid: no reducing parameters are published, and beta = gamma = 1 without a "
+                        "departure function is an estimate of unknown accuracy, of nitrogen with xenon, neon; xenon "
+                        "with argon, neon");
+}
+
+static void published_pairs_of_reference_equations_need_no_warning(void **state)
+{
+    static const char *const names[] = {"nitrogen", "oxygen", "argon"};
+    struct small_mixture *mixture = *state;
+    mixture->small.sheet.fluid = measured_case_fluid("multi-fluid", names, 3, mixture->small.arena);
+    assert_int_equal(warned(mixture, "multi-fluid")->warnings.count, 0);
+    assert_int_equal(warned(mixture, "gerg-2008")->warnings.count, 0);
 }
 
 static void a_light_gas_by_itself_is_named_too(void **state)
@@ -137,10 +171,17 @@ static void a_method_that_cannot_serve_says_so_elsewhere(void **state)
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        TEST(pairs_without_data_are_named_in_one_warning),      TEST(pairs_by_groups_or_from_the_deck_are_known),
-        TEST(a_missing_pair_of_groups_leaves_the_pair_unknown), TEST(a_component_without_a_share_is_not_named),
-        TEST(a_known_interaction_of_zero_is_no_want_of_data),   TEST(a_method_without_interactions_warns_of_none),
-        TEST(light_gases_by_the_acentric_factor_are_named),     TEST(a_light_gas_by_itself_is_named_too),
+        TEST(pairs_without_data_are_named_in_one_warning),
+        TEST(pairs_by_groups_or_from_the_deck_are_known),
+        TEST(a_missing_pair_of_groups_leaves_the_pair_unknown),
+        TEST(a_component_without_a_share_is_not_named),
+        TEST(a_known_interaction_of_zero_is_no_want_of_data),
+        TEST(a_method_without_interactions_warns_of_none),
+        TEST(corresponding_states_are_told_from_an_attraction),
+        TEST(estimated_pairs_of_reference_equations_are_named_in_one_warning),
+        TEST(published_pairs_of_reference_equations_need_no_warning),
+        TEST(light_gases_by_the_acentric_factor_are_named),
+        TEST(a_light_gas_by_itself_is_named_too),
         TEST(a_method_that_cannot_serve_says_so_elsewhere),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -3,6 +3,8 @@
 #include "base/text.h"
 #include "filling/method_parameters.h"
 
+#include <string.h>
+
 /* K: which parameters a pair has does not depend on the temperature; that of a yard serves. */
 #define ANY_TEMPERATURE 288.15
 /* K: helium, hydrogen, deuterium and neon are critical below this, and nothing else is: the heaviest of them, neon, at
@@ -65,7 +67,16 @@ static void warn_of_unknown(const struct sheet_run *run, const struct method_run
     }
 }
 
-static void warn_of_light_gases(const struct sheet_run *run, const struct method_run *method)
+/* What the acentric factor is to a method; NULL where it is nothing. */
+static const char *use_of_acentric(const char *method)
+{
+    if (strcmp(method, "lee-kesler") == 0) {
+        return "all properties follow the acentric factor";
+    }
+    return method_takes_acentric(method) ? "the attraction follows the acentric factor" : NULL;
+}
+
+static void warn_of_light_gases(const struct sheet_run *run, const struct method_run *method, const char *use)
 {
     struct text names = {.arena = run->arena};
     for (size_t i = 0; i < run->sheet->fluid->count; i++) {
@@ -77,8 +88,8 @@ static void warn_of_light_gases(const struct sheet_run *run, const struct method
     }
     if (names.length > 0) {
         result_warn(run->result, CODE_W307, location_line(run->sheet->at), run->number,
-                    "%s, %s: the attraction follows the acentric factor, which says little of a gas as light as %s",
-                    run->sheet->fluid->name, method->name, names.bytes);
+                    "%s, %s: %s, which says little of a gas as light as %s", run->sheet->fluid->name, method->name, use,
+                    names.bytes);
     }
 }
 
@@ -90,7 +101,8 @@ void warn_pairs(struct sheet_run *run, struct method_run *method)
     if (run->sheet->fluid->count > 1) {
         warn_of_unknown(run, method);
     }
-    if (method_takes_acentric(method->name)) {
-        warn_of_light_gases(run, method);
+    const char *use = use_of_acentric(method->name);
+    if (use != NULL) {
+        warn_of_light_gases(run, method, use);
     }
 }
