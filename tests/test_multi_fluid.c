@@ -361,6 +361,26 @@ static void a_loop_of_cold_water_is_no_phase(void **state)
     arena_free(arena);
 }
 
+/* Trials of a stability test spread over hundreds of decades. */
+static void traces_too_small_to_divide_by_are_as_good_as_absent(void **state)
+{
+    (void)state;
+    static const char *const names[] = {"methane", "n-decane", "water", "helium"};
+    struct arena *arena = arena_create(NULL);
+    const struct measured_mixture m = measured_mixture_create("gerg-2008", names, COUNT(names), arena);
+    struct phase *absent = phase_create(COUNT(names), arena), *trace = phase_create(COUNT(names), arena);
+    const double none[] = {1.0, 0.0, 0.0, 0.0}, least[] = {1.0, 1e-312, 1e-310, 1e-160};
+    const unsigned want = PHASE_LN_PHI | PHASE_DLN_PHI_DN;
+    assert_int_equal(fluid_set_t(m.at_t, m.fluid, 520.0), ANSWER_OK);
+    assert_int_equal(phase_tp(m.at_t, 9e6, none, BRANCH_STABLE, want, absent), ANSWER_OK);
+    assert_int_equal(phase_tp(m.at_t, 9e6, least, BRANCH_STABLE, want, trace), ANSWER_OK);
+    for (size_t i = 0; i < COUNT(names); i++) {
+        assert_close(trace->ln_phi[i], absent->ln_phi[i], 1e-13, names[i]);
+        assert_close(trace->dln_phi_dn[i], absent->dln_phi_dn[i], 1e-12, names[i]);
+    }
+    arena_free(arena);
+}
+
 /* Both sides of a vapour-liquid equilibrium from the library, by fugacities that have to be equal. */
 static void a_split_settles_with_equal_fugacities(void **state)
 {
@@ -472,6 +492,7 @@ int main(void)
         cmocka_unit_test(roots_are_the_first_from_either_end),
         cmocka_unit_test(a_feed_between_its_branches_still_splits),
         cmocka_unit_test(a_loop_of_cold_water_is_no_phase),
+        cmocka_unit_test(traces_too_small_to_divide_by_are_as_good_as_absent),
         cmocka_unit_test(a_split_settles_with_equal_fugacities),
         cmocka_unit_test(a_pair_turned_round_is_the_same_pair),
         cmocka_unit_test(a_pair_nobody_published_is_estimated_and_says_so),

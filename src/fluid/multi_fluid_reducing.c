@@ -10,6 +10,9 @@
 
 #include <math.h>
 
+/* Two fractions that sum to no more than this are as good as absent: their reciprocal's square would be no number. */
+#define LEAST_SUM 1e-150
+
 struct reducing_term reducing_term_of(double beta, double gamma, double mean)
 {
     return (struct reducing_term){.c = 2.0 * beta * gamma * mean, .b = beta * beta};
@@ -41,7 +44,7 @@ void multi_fluid_reduce(const struct multi_fluid *fluid, struct multi_fluid_work
 static void add_slopes(const struct reducing_term *term, double x, double y, double *by_x, double *by_y)
 {
     const double q = term->b * x + y;
-    if (!(q > 0.0)) {
+    if (!(q > LEAST_SUM)) {
         return; /* both absent: f is of second order in the two */
     }
     const double r = 1.0 / q, u = (x + y) * r;
@@ -73,7 +76,7 @@ void multi_fluid_reduce_slopes(const struct multi_fluid *fluid, struct multi_flu
 static void put_bends(const struct reducing_term *term, double x, double y, size_t i, size_t j, size_t count,
                       double *bent)
 {
-    if (!(term->b * x + y > 0.0)) {
+    if (!(term->b * x + y > LEAST_SUM)) {
         x = y = 1.0;
     }
     const double r = 1.0 / (term->b * x + y), u = (x + y) * r;
