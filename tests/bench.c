@@ -9,6 +9,7 @@
 #include "equilibrium/saturation.h"
 #include "support/reference_data.h"
 #include "support/timed_draws.h"
+#include "support/timed_multi_fluid.h"
 
 #include <math.h>
 #include <stdint.h>
@@ -651,6 +652,7 @@ int main(void)
     good = measure_fugacities(5, unit) && good;
     good = measure_fugacities(10, unit) && good;
     good = measure_all_equilibria() && good;
+    good = time_multi_fluid() && good;
     good = measure_draws() && good;
     return good ? EXIT_SUCCESS : EXIT_FAILURE;
 }
