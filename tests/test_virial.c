@@ -140,8 +140,8 @@ static const struct {
 };
 
 /* Tsonopoulos 1974 states a few cm3/mol, growing as B does at low temperatures: here 3 cm3/mol and 3 per cent, twice
- * that below T_r = 0.75, for hydrogen 5 cm3/mol. Abbott's form with two terms parts from that of four by 1 to 2 per cent
- * of B near T_r = 0.8. The scatter of the measurements among each other is in it. */
+ * that below T_r = 0.75, for hydrogen 5 cm3/mol. Abbott's form with two terms parts from that of four by 1 to 2 per
+ * cent of B near T_r = 0.8. The scatter of the measurements among each other is in it. */
 static double stated_error(enum virial_correlation which, enum gas gas, double T, double B)
 {
     if (gas == HYDROGEN_) {

@@ -19,10 +19,17 @@ static bool is_one_of(const char *method, const char *const methods[], size_t co
     return false;
 }
 
+/* The virial methods' words begin alike. */
+static bool is_virial(const char *method)
+{
+    static const char beginning[] = "virial-";
+    return strncmp(method, beginning, sizeof beginning - 1) == 0;
+}
+
 bool method_takes_acentric(const char *method)
 {
-    static const char *const methods[] = {"soave-redlich-kwong", "peng-robinson", "peng-robinson-1978"};
-    return is_one_of(method, methods, sizeof methods / sizeof *methods);
+    static const char *const methods[] = {"soave-redlich-kwong", "peng-robinson", "peng-robinson-1978", "lee-kesler"};
+    return is_one_of(method, methods, sizeof methods / sizeof *methods) || is_virial(method);
 }
 
 static bool is_cubic(const char *method)
@@ -206,14 +213,15 @@ static struct pair_counts count_pairs(const struct pooled_method *pooled)
     return counts;
 }
 
-static void add_pairs(const struct pooled_method *pooled, struct text *text)
+/* `rule` says what kij does. */
+static void add_pairs(const struct pooled_method *pooled, const char *rule, struct text *text)
 {
     if (pooled->fluid->count < 2 || fluid_set_t(pooled->run.at_t, pooled->run.fluid, ANY_TEMPERATURE) != ANSWER_OK) {
         return;
     }
     const struct pair_counts counts = count_pairs(pooled);
     const char *before = ": ";
-    text_format(text, "; a_ij = (1 - kij) sqrt(a_i a_j), kij of %zu pair%s", counts.all, counts.all == 1 ? "" : "s");
+    text_format(text, "; %s, kij of %zu pair%s", rule, counts.all, counts.all == 1 ? "" : "s");
     for (size_t origin = 0; origin <= PAIR_FROM_NOTHING; origin++) {
         if (counts.of[origin] > 0) {
             text_format(text, "%s%zu %s", before, counts.of[origin], origin_words((enum pair_origin)origin));
@@ -234,16 +242,31 @@ static void add_translation(const struct pooled_method *pooled, struct text *tex
     }
 }
 
+static void add_components_own(const struct pooled_method *pooled, struct text *text)
+{
+    if (pooled->fluid->count == 1) {
+        add_values(pooled, text);
+    } else {
+        add_names(pooled, text);
+    }
+}
+
 static const char *cubic_parameters(const struct pooled_method *pooled, struct arena *arena)
 {
     struct text text = {.arena = arena};
-    if (pooled->fluid->count == 1) {
-        add_values(pooled, &text);
-    } else {
-        add_names(pooled, &text);
-    }
-    add_pairs(pooled, &text);
+    add_components_own(pooled, &text);
+    add_pairs(pooled, "a_ij = (1 - kij) sqrt(a_i a_j)", &text);
     add_translation(pooled, &text);
+    text_format(&text, "; R = %.15g J/(mol K)", pooled->run.fluid->gas_constant);
+    return text.bytes;
+}
+
+/* Corresponding states: Lee and Kesler with Ploecker's kappa, the virial equations with a pair's own Tc. */
+static const char *corresponding_parameters(const struct pooled_method *pooled, struct arena *arena)
+{
+    struct text text = {.arena = arena};
+    add_components_own(pooled, &text);
+    add_pairs(pooled, "Tc_ij = (1 - kij) sqrt(Tc_i Tc_j)", &text);
     text_format(&text, "; R = %.15g J/(mol K)", pooled->run.fluid->gas_constant);
     return text.bytes;
 }
@@ -255,6 +278,15 @@ const char *method_parameters(const struct pooled_method *pooled, struct arena *
     }
     if (is_cubic(pooled->run.name)) {
         return cubic_parameters(pooled, arena);
+    }
+    if (method_takes_acentric(pooled->run.name)) {
+        return corresponding_parameters(pooled, arena);
+    }
+    if (pooled->run.fluid->ops->reducing != NULL) {
+        return arena_format(arena,
+                            "%s: the equation of each component, beta, gamma and departure of each pair as in the data "
+                            "used; R = %.15g J/(mol K)",
+                            pooled->fluid->name, pooled->run.fluid->gas_constant);
     }
     return arena_format(arena, "%s: R = %.15g J/(mol K)", pooled->fluid->name, pooled->run.fluid->gas_constant);
 }

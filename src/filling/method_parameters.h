@@ -7,7 +7,7 @@
 
 #include "filling/data_used.h"
 
-/* Whether a method's attraction follows the acentric factor. */
+/* Whether a method takes the acentric factor. */
 bool method_takes_acentric(const char *method);
 
 /* What the component has for a cubic method beyond its constants; NULL: nothing. */

@@ -67,13 +67,16 @@ static void warn_of_unknown(const struct sheet_run *run, const struct method_run
     }
 }
 
-/* What the acentric factor is to a method; NULL where it is nothing. */
-static const char *use_of_acentric(const char *method)
+/* What the acentric factor is to a method; NULL where it is nothing, or where light gases have constants of their own,
+ * as the virial methods' have. */
+static const char *use_of_acentric(const struct fluid_ops *ops)
 {
-    if (strcmp(method, "lee-kesler") == 0) {
+    if (strcmp(ops->name, "lee-kesler") == 0) {
         return "all properties follow the acentric factor";
     }
-    return method_takes_acentric(method) ? "the attraction follows the acentric factor" : NULL;
+    return method_takes_acentric(ops->name) && (ops->capabilities & IS_CUBIC) != 0
+               ? "the attraction follows the acentric factor"
+               : NULL;
 }
 
 static void warn_of_light_gases(const struct sheet_run *run, const struct method_run *method, const char *use)
@@ -101,7 +104,7 @@ void warn_pairs(struct sheet_run *run, struct method_run *method)
     if (run->sheet->fluid->count > 1) {
         warn_of_unknown(run, method);
     }
-    const char *use = use_of_acentric(method->name);
+    const char *use = use_of_acentric(method->fluid->ops);
     if (use != NULL) {
         warn_of_light_gases(run, method, use);
     }
