@@ -560,8 +560,9 @@ const struct fluid_ops lee_kesler_ops = {
     .name = "lee-kesler",
     .title = "Lee and Kesler (1975), mixtures by Ploecker, Knapp and Prausnitz (1978)",
     .citation = "B. I. Lee, M. G. Kesler, AIChE J. 21 (1975) 510",
-    .validity = "Tr from 0.3 to 4, pr to 10, acentric factors from 0 to 0.4; not meant for strongly polar gases, nor "
-                "for helium, hydrogen and neon",
+    .validity =
+        "Tr from 0.3 to 4, pr to 10, acentric factors from 0 to 0.4; saturation to Tr = 0.97 to 0.99; not meant "
+        "for strongly polar gases, nor for helium, hydrogen and neon",
     .form = FLUID_FROM_TP,
     .capabilities = CAN_LIQUID | CAN_MIXTURE | CAN_CALORIC,
     .create = create,
