@@ -230,7 +230,8 @@ static void each_word_of_the_vocabulary_is_at_home_in_some_reader(void **state)
                                         "sheet settled-pressure",
                                         "sheet saturation",
                                         "sheet fugacity",
-                                        "sheet draw-down"};
+                                        "sheet draw-down",
+                                        "sheet preparation"};
     const struct vocabulary_row *rows = vocabulary_rows();
     for (size_t i = 0; i < sizeof heads / sizeof *heads; i++) {
         for (size_t j = 0; j < WORDS; j++) {

@@ -141,6 +141,7 @@ enum fraction_basis { BASIS_MOLE, BASIS_MASS, BASIS_VOLUME };
 struct case_share {
     struct quantity given; /* part of the whole on the mixture's basis; of the rest, what completes the whole */
     bool is_rest;
+    bool is_beside; /* no line of the mixture: it may come with a parent gas the mixture is made from */
 };
 
 /* What is filled: a component by itself with fraction 1, or a mixture. */
@@ -315,7 +316,41 @@ enum sheet_kind {
     SHEET_SATURATION,
     SHEET_FUGACITY,
     SHEET_DRAW_DOWN,
+    SHEET_PREPARATION,
     SHEET_KINDS
+};
+
+/* A parent gas put into the vessel. */
+struct case_addition {
+    const char *name;
+    struct location at;
+    const struct case_fluid *parent;
+    const size_t *places;            /* [parent->count], of its components among those of the sheet's fluid */
+    struct quantity temperature;     /* K, of the vessel after it */
+    struct quantity supply_pressure; /* Pa */
+    struct quantity balance;         /* kg, expanded uncertainty of its mass */
+    struct quantity weighed;         /* kg */
+};
+
+/* Further vessels filled with the same mixture. */
+struct case_further {
+    const struct case_vessel *vessel;
+    size_t number;
+};
+
+/* How a mixture is made. The fluid of such a sheet has the components of the target and of all that goes into it. */
+struct case_preparation {
+    const struct case_fluid *target; /* as it was named */
+    bool is_by_pressure, is_order_proposed;
+    size_t addition_count;
+    const struct case_addition *additions;
+    const struct case_charge *heel; /* NULL: the vessel is evacuated */
+    const size_t *heel_places;      /* as those of a parent */
+    struct quantity balance, gauge; /* kg, Pa: expanded uncertainties of one reading */
+    struct quantity tolerance;
+    size_t together;
+    size_t further_count;
+    const struct case_further *further;
 };
 
 enum listed_policy { LISTED_GOVERNS, LISTED_CHECK_GOVERNS, LISTED_COMPARE };
@@ -356,10 +391,11 @@ struct case_sheet {
     bool shows_every_uncertainty; /* of tables, row by row */
     struct {
         bool given, is_liquid;
-        struct quantity temperature;    /* K */
-        struct quantity least_pressure; /* Pa */
-    } drawing;                          /* of a draw-down sheet */
-    size_t draws;                       /* of a Monte Carlo run; 0: none is asked for */
+        struct quantity temperature;            /* K */
+        struct quantity least_pressure;         /* Pa */
+    } drawing;                                  /* of a draw-down sheet */
+    const struct case_preparation *preparation; /* NULL: another kind of sheet */
+    size_t draws;                               /* of a Monte Carlo run; 0: none is asked for */
     uint64_t seed;
 };
 

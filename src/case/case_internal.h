@@ -120,6 +120,11 @@ struct entry_list {
     size_t count, capacity;
 };
 
+struct fluid_list {
+    const struct case_fluid **items;
+    size_t count, capacity;
+};
+
 struct methods_block; /* methods.c */
 
 struct elaboration {
@@ -140,6 +145,7 @@ struct elaboration {
     size_t shift_count;
     struct source_list sources;
     struct component_list components;
+    struct fluid_list blends;      /* of preparation sheets, each set of components of a target once */
     struct name_table table_files; /* of the CSV tables, so that no two go into one */
     const char *group;             /* whose values are being read, as "vessel fifty" */
     enum vocabulary_block block;   /* what is being read */
@@ -238,7 +244,7 @@ struct block_form {
     }
 
 /* At most this many words in one kind of block. */
-enum { BLOCK_ROWS_MOST = 40 };
+enum { BLOCK_ROWS_MOST = 80 };
 
 /* Reads every statement of a block by the form's rows: unknown words, words of other blocks and words given twice are
  * reported. `group` names the block in the listing's inputs, as "vessel fifty". */
@@ -460,6 +466,43 @@ const struct case_charge *make_charge(struct elaboration *e, const char *name, c
 
 /* A statement that is a word and one name (`fluid propane`): the name, or NULL after a message. */
 const struct expression *read_one_name(struct elaboration *e, const struct statement *statement, const char *what);
+
+/* The lines of a preparation sheet: preparation.c. */
+struct addition_list {
+    struct case_addition *items;
+    size_t count, capacity;
+};
+
+struct further_list {
+    struct case_further *items;
+    size_t count, capacity;
+};
+
+struct weighing {
+    const struct expression *name;
+    struct quantity mass;
+};
+
+struct weighing_list {
+    struct weighing *items;
+    size_t count, capacity;
+};
+
+struct preparation_lines {
+    struct case_preparation preparation;
+    bool is_way_given;
+    struct addition_list additions;
+    struct further_list further;
+    struct weighing_list weighed;
+    const struct expression *heel; /* as named */
+};
+
+/* One statement whose word only such a sheet has. */
+void read_preparation_line(struct elaboration *e, const struct statement *statement, struct preparation_lines *lines);
+
+/* The recipe of a sheet that has its target, vessel and charge: gives it the fluid of all components that may be in the
+ * vessel. False after a message. */
+bool complete_preparation(struct elaboration *e, struct preparation_lines *lines, struct case_sheet *sheet);
 
 const struct case_rule *build_rule(struct elaboration *e, struct named *named);
 const struct case_rule *rule_of_name(struct elaboration *e, const struct expression *name);

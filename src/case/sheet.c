@@ -33,6 +33,7 @@ struct sheet_target {
     struct predicate_list requirements;
     struct quote_list quotes;
     struct note_list notes;
+    struct preparation_lines preparation;
 };
 
 static void read_fluid(struct elaboration *e, const struct statement *statement, void *target)
@@ -293,6 +294,12 @@ static void read_require(struct elaboration *e, const struct statement *statemen
     }
 }
 
+static void read_preparation(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct sheet_target *into = target;
+    read_preparation_line(e, statement, &into->preparation);
+}
+
 /* The words of all kinds of sheet; which of them a kind takes, its block of the vocabulary says. */
 static const struct block_row ROWS[] = {
     READ_ONCE(WORD_SHEET_FLUID, read_fluid),
@@ -318,6 +325,19 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_DRAW_DOWN_DRAW, read_draw),
     READ_QUANTITY(WORD_DRAW_DOWN_TEMPERATURE, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.temperature),
     READ_QUANTITY(WORD_DRAW_DOWN_LEAST_PRESSURE, &FORM_PRESSURE, struct sheet_target, sheet.drawing.least_pressure),
+    READ_ONCE(WORD_PREPARATION_CHARGE, read_charge),
+    READ_ONCE(WORD_PREPARATION_MAKE, read_preparation),
+    READ_EACH(WORD_PREPARATION_ADD, read_preparation),
+    READ_ONCE(WORD_PREPARATION_ORDER, read_preparation),
+    READ_ONCE(WORD_PREPARATION_HEEL, read_preparation),
+    READ_QUANTITY(WORD_PREPARATION_BALANCE, &FORM_MASS, struct sheet_target, preparation.preparation.balance),
+    READ_ONCE(WORD_PREPARATION_GAUGE, read_preparation),
+    READ_QUANTITY(WORD_PREPARATION_TOLERANCE, &FORM_FRACTION, struct sheet_target, preparation.preparation.tolerance),
+    READ_ONCE(WORD_PREPARATION_TOGETHER, read_preparation),
+    READ_EACH(WORD_PREPARATION_ALSO, read_preparation),
+    READ_EACH(WORD_PREPARATION_WEIGHED, read_preparation),
+    READ_ONCE(WORD_PREPARATION_ASSESSED, read_assessed),
+    READ_EACH(WORD_PREPARATION_REQUIRE, read_require),
     READ_ONCE(WORD_CHARGE_VESSEL, read_vessel),
     READ_ONCE(WORD_CHARGE_FILL, read_fill_row),
     READ_ONCE(WORD_CHARGE_MASS, read_fill_row),
@@ -337,6 +357,7 @@ static const struct block_form SHEETS[SHEET_KINDS] = {
     [SHEET_SATURATION] = BLOCK_FORM(BLOCK_SATURATION, ROWS),
     [SHEET_FUGACITY] = BLOCK_FORM(BLOCK_FUGACITY, ROWS),
     [SHEET_DRAW_DOWN] = BLOCK_FORM(BLOCK_DRAW_DOWN, ROWS),
+    [SHEET_PREPARATION] = BLOCK_FORM(BLOCK_PREPARATION, ROWS),
 };
 
 static enum sheet_kind kind_of(enum vocabulary_word word)
@@ -345,6 +366,7 @@ static enum sheet_kind kind_of(enum vocabulary_word word)
            : word == WORD_SHEET_KIND_SETTLED_PRESSURE ? SHEET_SETTLED_PRESSURE
            : word == WORD_SHEET_KIND_SATURATION       ? SHEET_SATURATION
            : word == WORD_SHEET_KIND_DRAW_DOWN        ? SHEET_DRAW_DOWN
+           : word == WORD_SHEET_KIND_PREPARATION      ? SHEET_PREPARATION
                                                       : SHEET_FUGACITY;
 }
 
@@ -384,7 +406,8 @@ static bool resolve(struct elaboration *e, struct sheet_target *target)
         }
         return sheet->charge != NULL;
     }
-    const bool needs_fill = sheet->kind == SHEET_SETTLED_PRESSURE || sheet->kind == SHEET_DRAW_DOWN;
+    const bool needs_fill =
+        sheet->kind == SHEET_SETTLED_PRESSURE || sheet->kind == SHEET_DRAW_DOWN || sheet->kind == SHEET_PREPARATION;
     const bool needs_vessel = sheet->kind == SHEET_PERMISSIBLE_CHARGE || needs_fill;
     if (needs_fill && target->fluid == NULL && !target->fill.given) {
         return report_lack(e, sheet, "charge", "charge bench-lot");
@@ -437,6 +460,11 @@ static bool check_complete(struct elaboration *e, const struct sheet_target *tar
             return report_lack(e, sheet, "phase to draw", "draw vapour");
         }
         return sheet->drawing.temperature.given || report_lack(e, sheet, "temperature", "temperature 15 degC");
+    case SHEET_PREPARATION:
+        if (!target->preparation.is_way_given) {
+            return report_lack(e, sheet, "way to make the mixture", "make by weight");
+        }
+        return target->preparation.additions.count > 0 || report_lack(e, sheet, "addition", "add nitrogen at 20 degC");
     case SHEET_SETTLED_PRESSURE:
     case SHEET_KINDS:
         break;
@@ -632,6 +660,9 @@ static void complete_sheet(struct elaboration *e, struct sheet_target *target)
     if (target->fill.given) {
         sheet->charge = make_charge(e, sheet->title == NULL ? "of this sheet" : sheet->title, sheet->fluid,
                                     sheet->vessel, &target->fill);
+    }
+    if (sheet->kind == SHEET_PREPARATION && !complete_preparation(e, &target->preparation, sheet)) {
+        return;
     }
     check_conditions(e, target);
     check_temperatures(e, target);

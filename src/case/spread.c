@@ -220,8 +220,26 @@ static bool has_one_fluid(enum sheet_kind kind)
            kind == SHEET_FUGACITY || kind == SHEET_DRAW_DOWN;
 }
 
+/* A recipe makes up for what is known of its parents; what is not known of them, and the masses found, are carried to
+ * the composition by the gravimetric equation. Everything else moves masses and pressures. */
+static bool recipe_may_depend(const struct case_sheet *sheet, const struct case_spread *spread)
+{
+    const char *vessel = name_in_group(spread->group, "vessel ");
+    const char *charge = name_in_group(spread->group, "charge ");
+    if (vessel != NULL) {
+        return sheet->vessel != NULL && strcmp(sheet->vessel->name, vessel) == 0;
+    }
+    if (charge != NULL) {
+        return sheet->charge != NULL && strcmp(sheet->charge->name, charge) == 0;
+    }
+    return name_in_group(spread->group, "sheet ") != NULL && strncmp(spread->name, "weighed", 7) != 0;
+}
+
 bool case_sheet_may_depend(const struct case_sheet *sheet, const struct case_spread *spread)
 {
+    if (sheet->kind == SHEET_PREPARATION) {
+        return recipe_may_depend(sheet, spread);
+    }
     if (sheet->fluid == NULL || !has_one_fluid(sheet->kind)) {
         return true;
     }

@@ -265,6 +265,7 @@ static void read_statement(struct elaboration *e, const struct block_form *form,
 void read_block(struct elaboration *e, const struct block_form *form, const char *group, const struct statement *owner,
                 void *target)
 {
+    assert(form->count <= BLOCK_ROWS_MOST);
     const struct statement *seen[BLOCK_ROWS_MOST] = {NULL};
     const char *outer_group = e->group;
     const enum vocabulary_block outer_block = e->block;

@@ -63,6 +63,9 @@ static const char *share_remark(const struct case_share *share, struct arena *ar
     if (share->given.uncertainty > 0.0) {
         return arena_format(arena, "+/- %.6g", share->given.uncertainty);
     }
+    if (share->is_beside) {
+        return "of parent gases";
+    }
     return share->is_rest ? "rest" : NULL;
 }
 

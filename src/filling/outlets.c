@@ -41,7 +41,7 @@ static void collect_facts(const struct result_sheet *sheet, struct sheet_part *p
 
 static void collect_cells(struct table *table, struct outlet_list *list, struct arena *arena)
 {
-    for (size_t i = 0; i < table->row_count * table->column_count; i++) {
+    for (size_t i = 0; i < table->row_count * table->column_count && !table->has_own_uncertainty; i++) {
         if (table->cells[i].kind == CELL_NUMBER) {
             *ARENA_APPEND(arena, list) = (struct outlet){.kind = OUTLET_CELL,
                                                          .place = i,

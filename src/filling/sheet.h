@@ -139,5 +139,6 @@ void answer_settled_pressure(struct sheet_run *run);
 void answer_saturation(struct sheet_run *run);
 void answer_fugacity(struct sheet_run *run);
 void answer_draw_down(struct sheet_run *run);
+void answer_preparation(struct sheet_run *run);
 
 #endif

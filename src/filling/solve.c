@@ -124,6 +124,7 @@ static const struct {
     [SHEET_SATURATION] = {"saturation", answer_saturation},
     [SHEET_FUGACITY] = {"fugacity", answer_fugacity},
     [SHEET_DRAW_DOWN] = {"draw-down", answer_draw_down},
+    [SHEET_PREPARATION] = {"preparation", answer_preparation},
 };
 
 /* What all sheets of a case share. */

@@ -218,7 +218,7 @@ static void warn_of_verdicts(const struct uncertain_sheet *it)
 /* Draws that were asked for and have nothing to be drawn of. */
 static void tell_nothing_to_draw(struct sheet_run *run)
 {
-    if (run->sheet->draws > 0) {
+    if (run->sheet->draws > 0 && run->sheet->kind != SHEET_PREPARATION) { /* which draws its composition itself */
         sheet_add_note(run->result, run->out, "nothing to draw: nothing this sheet depends on is written with +/-");
     }
 }

@@ -231,8 +231,7 @@ static struct first_order picked_first(const struct uncertain_sheet *it, const s
     return (struct first_order){.is_known = true, .base = base, .standard = standard};
 }
 
-static struct drawn_budget drawn_budget_of(const struct drawn *drawn, const struct first_order *first, size_t i,
-                                           uint64_t seed)
+struct drawn_budget drawn_budget_of(const struct drawn *drawn, const struct first_order *first, size_t i, uint64_t seed)
 {
     const struct drawn_output *output = &drawn->outputs[i];
     return (struct drawn_budget){

@@ -50,6 +50,10 @@ struct uncertain_sheet {
 
 /* ---- budgets and draws: uncertainty_budget.c ---- */
 
+/* Output i of a run of draws, beside first order with the same outputs. */
+struct drawn_budget drawn_budget_of(const struct drawn *drawn, const struct first_order *first, size_t i,
+                                    uint64_t seed);
+
 /* Budgets of the results that govern, each with its draws where the sheet asks for them. */
 void tell_budgets(struct uncertain_sheet *it);
 

@@ -67,8 +67,9 @@ struct table {
     size_t column_count, column_capacity;
     struct column *columns;
     size_t row_count, cell_capacity;
-    struct cell *cells; /* [row_count * column_count], row by row */
-    const char *csv;    /* file to write; NULL: none */
+    struct cell *cells;       /* [row_count * column_count], row by row */
+    const char *csv;          /* file to write; NULL: none */
+    bool has_own_uncertainty; /* a column tells it, or none is meant: none is carried to its cells */
     struct table *next;
 };
 
