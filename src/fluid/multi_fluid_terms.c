@@ -2,6 +2,19 @@
 
 #include "fluid/residual_parts.h"
 
+/* Whole powers of tau below this one come from a table of products. Beside exp(t ln tau) for each t that is faster, and
+ * for a large t better by a digit: rounding in t ln tau is a relative error of the power. */
+#define WHOLE_POWERS 64
+/* Exponents whose fractions differ by no more than this are of the same one: 2.65 less 2 is not 0.65 to the last bit.
+ */
+#define SAME_FRACTION 1e-12
+
+/* tau^t = tau^whole tau^fraction; by itself where `whole` is WHOLE_POWERS. */
+struct tau_power {
+    double t;
+    unsigned whole, fraction;
+};
+
 /* E(delta) delta^d, shared by all terms that have it. */
 struct slot {
     double d;
@@ -28,16 +41,18 @@ struct nonanalytic_part {
 };
 
 struct parts {
-    size_t count, term_count, slot_count, envelope_count, power_count, factor_count, nonanalytic_count;
+    size_t count, term_count, slot_count, envelope_count, power_count, fraction_count, factor_count, nonanalytic_count;
     size_t *first_term; /* [count + 1] */
     struct term *terms;
     struct slot *slots;
     struct envelope *envelopes;
-    double *powers;
+    struct tau_power *powers;
+    double *fractions; /* the first is none */
     struct residual_factor *factors;
     struct nonanalytic_part *nonanalytic;
     size_t nonanalytic_bytes;
     unsigned table_end; /* powers of delta needed from the table, one past the last */
+    unsigned whole_end; /* the same of tau */
 };
 
 /* A slot's weighted coefficient and its derivatives by tau. */
@@ -58,6 +73,7 @@ struct parts_state {
     struct basis *basis;           /* [slot_count], at `delta` */
     struct factor_value *factors;  /* [factor_count] */
     double *powers;                /* [power_count] */
+    double *fractions;             /* [fraction_count] */
     double *nonanalytic_weight;    /* [nonanalytic_count] */
     struct residual_sums *special; /* [nonanalytic_count], at `delta` */
     unsigned char *tail;           /* states of the nonanalytic residuals */
@@ -83,14 +99,31 @@ static size_t envelope_index(struct parts *parts, const struct residual_envelope
     return parts->envelope_count++;
 }
 
-static unsigned power_index(struct parts *parts, double t)
+static unsigned fraction_index(struct parts *parts, double fraction)
 {
-    for (size_t i = 0; i < parts->power_count; i++) {
-        if (parts->powers[i] == t) {
+    for (size_t i = 0; i < parts->fraction_count; i++) {
+        if (fabs(parts->fractions[i] - fraction) <= SAME_FRACTION) {
             return (unsigned)i;
         }
     }
-    parts->powers[parts->power_count] = t;
+    parts->fractions[parts->fraction_count] = fraction;
+    return (unsigned)parts->fraction_count++;
+}
+
+static unsigned power_index(struct parts *parts, double t)
+{
+    for (size_t i = 0; i < parts->power_count; i++) {
+        if (parts->powers[i].t == t) {
+            return (unsigned)i;
+        }
+    }
+    struct tau_power *power = &parts->powers[parts->power_count];
+    *power = (struct tau_power){.t = t, .whole = WHOLE_POWERS};
+    if (t >= 0.0 && t < WHOLE_POWERS) {
+        power->whole = (unsigned)t;
+        power->fraction = fraction_index(parts, t - power->whole);
+        parts->whole_end = power->whole >= parts->whole_end ? power->whole + 1 : parts->whole_end;
+    }
     return (unsigned)parts->power_count++;
 }
 
@@ -195,11 +228,14 @@ const struct parts *parts_create(const struct part_terms *terms, size_t count, s
         .count = count,
         .factor_count = 1, /* the first factor is W = 1, all zero */
         .table_end = 2,
+        .whole_end = 2,
+        .fraction_count = 1,
         .first_term = arena_alloc(arena, count + 1, sizeof *parts->first_term),
         .terms = arena_alloc(arena, total, sizeof *parts->terms),
         .slots = arena_alloc(arena, total, sizeof *parts->slots),
         .envelopes = arena_alloc(arena, total, sizeof *parts->envelopes),
         .powers = arena_alloc(arena, total, sizeof *parts->powers),
+        .fractions = arena_alloc(arena, total + 1, sizeof *parts->fractions),
         .factors = arena_alloc(arena, total, sizeof *parts->factors),
         .nonanalytic = arena_alloc(arena, count, sizeof *parts->nonanalytic),
     };
@@ -220,7 +256,8 @@ size_t parts_state_size(const struct parts *parts)
 {
     return sizeof(struct parts_state) + parts->term_count * sizeof(double) +
            parts->slot_count * (sizeof(struct blended) + sizeof(struct basis)) +
-           parts->factor_count * sizeof(struct factor_value) + parts->power_count * sizeof(double) +
+           parts->factor_count * sizeof(struct factor_value) +
+           (parts->power_count + parts->fraction_count) * sizeof(double) +
            parts->nonanalytic_count * (sizeof(double) + sizeof(struct residual_sums)) + parts->nonanalytic_bytes;
 }
 
@@ -232,7 +269,8 @@ void parts_state_place(struct parts_state *state, const struct parts *parts)
     state->basis = (struct basis *)(void *)(state->blended + parts->slot_count);
     state->factors = (struct factor_value *)(void *)(state->basis + parts->slot_count);
     state->powers = (double *)(void *)(state->factors + parts->factor_count);
-    state->nonanalytic_weight = state->powers + parts->power_count;
+    state->fractions = state->powers + parts->power_count;
+    state->nonanalytic_weight = state->fractions + parts->fraction_count;
     state->special = (struct residual_sums *)(void *)(state->nonanalytic_weight + parts->nonanalytic_count);
     state->tail = (unsigned char *)(void *)(state->special + parts->nonanalytic_count);
 }
@@ -242,14 +280,28 @@ static struct residual_at_t *nonanalytic_state(const struct parts_state *state, 
     return (struct residual_at_t *)(void *)(state->tail + state->parts->nonanalytic[i].state_offset);
 }
 
+static void set_powers(struct parts_state *state, double tau, double log_tau)
+{
+    const struct parts *parts = state->parts;
+    double table[WHOLE_POWERS];
+    residual_fill_powers(table, parts->whole_end, tau);
+    state->fractions[0] = 1.0;
+    for (size_t i = 1; i < parts->fraction_count; i++) {
+        state->fractions[i] = exp(parts->fractions[i] * log_tau);
+    }
+    for (size_t i = 0; i < parts->power_count; i++) {
+        const struct tau_power *power = &parts->powers[i];
+        state->powers[i] = power->whole < WHOLE_POWERS ? table[power->whole] * state->fractions[power->fraction]
+                                                       : exp(power->t * log_tau);
+    }
+}
+
 void parts_set_tau(struct parts_state *state, double tau)
 {
     const struct parts *parts = state->parts;
     const double log_tau = log(tau);
     state->tau = tau;
-    for (size_t i = 0; i < parts->power_count; i++) {
-        state->powers[i] = exp(parts->powers[i] * log_tau);
-    }
+    set_powers(state, tau, log_tau);
     for (size_t i = 0; i < parts->factor_count; i++) {
         state->factors[i] = residual_factor_at(&parts->factors[i], tau, log_tau);
     }
