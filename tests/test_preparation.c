@@ -5,6 +5,7 @@
 #include "filling/solve.h"
 
 #include "support/elaborated.h"
+#include "support/library_deck.h"
 #include "support/result_reading.h"
 
 #include <gsl/gsl_rng.h>
@@ -240,16 +241,6 @@ static const char *const GASES[] = {"nitrogen", "argon",   "helium",         "ox
                                     "ethylene", "ethane",  "carbon-monoxide"};
 enum { GAS_COUNT = sizeof GASES / sizeof *GASES };
 
-static bool read_text(void *context, struct arena *arena, const char *path, char **text, size_t *length)
-{
-    if (strcmp(path, "random.deck") == 0) {
-        *text = context;
-        *length = strlen(*text);
-        return true;
-    }
-    return deck_read_file(NULL, arena, path, text, length);
-}
-
 static const char *random_deck(unsigned long seed, struct arena *arena)
 {
     gsl_rng *rng = gsl_rng_alloc(gsl_rng_mt19937);
@@ -318,15 +309,7 @@ static void random_recipes_end_with_a_verdict_or_a_reason(void **state)
     for (unsigned long seed = 1; seed <= count; seed++) {
         struct arena *arena = arena_create(NULL);
         const char *text = random_deck(seed, arena);
-        const struct deck_reader reader = {.read = read_text,
-                                           .context = arena_copy_text(arena, text, strlen(text)),
-                                           .library_folder = "decks/library"};
-        struct diagnostics diagnostics = {.arena = arena};
-        const struct deck *deck = deck_load("random.deck", &reader, arena, &diagnostics);
-        const struct case_tree *tree = deck == NULL ? NULL : case_elaborate(deck, arena, &diagnostics);
-        if (tree == NULL) {
-            fail_msg("seed %lu is no deck: %s\n%s", seed, diagnostics.items[0].message, text);
-        }
+        const struct case_tree *tree = library_deck(text, arena);
         const struct result *result = filling_solve(tree, "0.0.0", arena);
         undecided += result->is_undecided;
         if (!is_told_rightly(result)) {

@@ -181,6 +181,7 @@ struct case_vessel {
     const char *name;
     struct location at;
     struct quantity water_capacity, tare;
+    struct quantity wall_heat_capacity, wall_conductance;              /* J/K, W/K; both or none */
     struct quantity test_pressure, working_pressure, service_pressure; /* gauge */
     size_t fitting_count;
     const struct case_rating *fittings;
@@ -391,11 +392,14 @@ struct case_sheet {
     bool shows_every_uncertainty; /* of tables, row by row */
     struct {
         bool given, is_liquid;
-        struct quantity temperature;            /* K */
-        struct quantity least_pressure;         /* Pa */
-    } drawing;                                  /* of a draw-down sheet */
-    const struct case_preparation *preparation; /* NULL: another kind of sheet */
-    size_t draws;                               /* of a Monte Carlo run; 0: none is asked for */
+        struct quantity temperature;                                     /* K */
+        struct quantity least_pressure;                                  /* Pa */
+        struct quantity rate;                                            /* kg/s; not given: slow, at one temperature */
+        struct quantity ambient, ambient_conductance, least_temperature; /* K, W/K, K */
+        struct quantity time, least_content;                             /* s, kg */
+    } drawing;                                                           /* of a draw-down sheet */
+    const struct case_preparation *preparation;                          /* NULL: another kind of sheet */
+    size_t draws; /* of a Monte Carlo run; 0: none is asked for */
     uint64_t seed;
 };
 

@@ -325,6 +325,13 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_DRAW_DOWN_DRAW, read_draw),
     READ_QUANTITY(WORD_DRAW_DOWN_TEMPERATURE, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.temperature),
     READ_QUANTITY(WORD_DRAW_DOWN_LEAST_PRESSURE, &FORM_PRESSURE, struct sheet_target, sheet.drawing.least_pressure),
+    READ_QUANTITY(WORD_DRAW_DOWN_RATE, NULL, struct sheet_target, sheet.drawing.rate),
+    READ_QUANTITY(WORD_DRAW_DOWN_AMBIENT, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.ambient),
+    READ_QUANTITY(WORD_DRAW_DOWN_AMBIENT_CONDUCTANCE, NULL, struct sheet_target, sheet.drawing.ambient_conductance),
+    READ_QUANTITY(WORD_DRAW_DOWN_LEAST_TEMPERATURE, &FORM_TEMPERATURE, struct sheet_target,
+                  sheet.drawing.least_temperature),
+    READ_QUANTITY(WORD_DRAW_DOWN_TIME, NULL, struct sheet_target, sheet.drawing.time),
+    READ_QUANTITY(WORD_DRAW_DOWN_LEAST_CONTENT, &FORM_MASS, struct sheet_target, sheet.drawing.least_content),
     READ_ONCE(WORD_PREPARATION_CHARGE, read_charge),
     READ_ONCE(WORD_PREPARATION_MAKE, read_preparation),
     READ_EACH(WORD_PREPARATION_ADD, read_preparation),
@@ -458,6 +465,10 @@ static bool check_complete(struct elaboration *e, const struct sheet_target *tar
     case SHEET_DRAW_DOWN:
         if (!sheet->drawing.given) {
             return report_lack(e, sheet, "phase to draw", "draw vapour");
+        }
+        if (!sheet->drawing.rate.given && (sheet->drawing.ambient.given || sheet->drawing.ambient_conductance.given ||
+                                           sheet->drawing.least_temperature.given || sheet->drawing.time.given)) {
+            return report_lack(e, sheet, "rate, without which it is drawn at one temperature", "rate 2 kg/h");
         }
         return sheet->drawing.temperature.given || report_lack(e, sheet, "temperature", "temperature 15 degC");
     case SHEET_PREPARATION:
@@ -616,6 +627,9 @@ static bool any_no_solid(const struct predicate *predicates, size_t count)
  * the sublimation line. */
 static bool sweeps_below(const struct case_sheet *sheet, const struct case_component *component)
 {
+    if (sheet->kind == SHEET_DRAW_DOWN && sheet->drawing.rate.given && sheet->fluid->count == 1) {
+        return component->solid != NULL;
+    }
     const bool tells =
         sheet->kind == SHEET_SETTLED_PRESSURE || (sheet->kind == SHEET_SATURATION && sheet->fluid->count == 1);
     if (!tells || component->solid == NULL) {

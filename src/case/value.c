@@ -46,6 +46,15 @@ static const struct quantity_form FORM_MOLAR_HEAT = {.measure = MEASURE_MOLAR_HE
 static const struct quantity_form FORM_DIPOLE = {
     .measure = MEASURE_DIPOLE, .reading = READ_NUMBER, .least = 0.0, .most = 1e-28};
 
+static const struct quantity_form FORM_TIME = {
+    .measure = MEASURE_TIME, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e9};
+static const struct quantity_form FORM_MASS_FLOW = {
+    .measure = MEASURE_MASS_FLOW, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e4};
+static const struct quantity_form FORM_HEAT_CAPACITY = {
+    .measure = MEASURE_HEAT_CAPACITY, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e10};
+static const struct quantity_form FORM_CONDUCTANCE = {
+    .measure = MEASURE_CONDUCTANCE, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e7};
+
 const struct quantity_form *form_of_measure(enum measure measure)
 {
     switch (measure) {
@@ -73,6 +82,14 @@ const struct quantity_form *form_of_measure(enum measure measure)
         return &FORM_MOLAR_HEAT;
     case MEASURE_DIPOLE:
         return &FORM_DIPOLE;
+    case MEASURE_TIME:
+        return &FORM_TIME;
+    case MEASURE_MASS_FLOW:
+        return &FORM_MASS_FLOW;
+    case MEASURE_HEAT_CAPACITY:
+        return &FORM_HEAT_CAPACITY;
+    case MEASURE_CONDUCTANCE:
+        return &FORM_CONDUCTANCE;
     case MEASURE_NONE:
     case MEASURE_NUMBER:
     case MEASURES:
@@ -130,6 +147,10 @@ static const char *usual_unit(const struct quantity_form *form)
         [MEASURE_MOLAR_MASS] = "g/mol",
         [MEASURE_MOLAR_HEAT] = "J/mol/K",
         [MEASURE_DIPOLE] = "D",
+        [MEASURE_TIME] = "min",
+        [MEASURE_MASS_FLOW] = "kg/h",
+        [MEASURE_HEAT_CAPACITY] = "kJ/K",
+        [MEASURE_CONDUCTANCE] = "W/K",
     };
     if (form->reading == READ_RATING) {
         return units[MEASURE_GAUGE];

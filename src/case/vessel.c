@@ -42,6 +42,8 @@ static const struct block_row ROWS[] = {
     QUANTITY(WORKING_PRESSURE, NULL, working_pressure),
     QUANTITY(SERVICE_PRESSURE, NULL, service_pressure),
     QUANTITY(TARE, NULL, tare),
+    QUANTITY(WALL_HEAT_CAPACITY, NULL, wall_heat_capacity),
+    QUANTITY(WALL_CONDUCTANCE, NULL, wall_conductance),
     READ_EACH(WORD_VESSEL_FITTING, read_fitting),
 };
 static const struct block_form VESSEL = BLOCK_FORM(BLOCK_VESSEL, ROWS);
@@ -77,6 +79,13 @@ const struct case_vessel *build_vessel(struct elaboration *e, struct named *name
         struct diagnostic *said =
             diagnose(e->out, CODE_E214, named->at, "vessel '%s' has no water-capacity", shortened(e, named->name));
         diagnostic_hint(e->out, said, "as in: water-capacity 50.2 L");
+    }
+    const struct quantity *heat = &target->vessel.wall_heat_capacity, *passes = &target->vessel.wall_conductance;
+    if (trouble_so_far(e) == before && heat->given != passes->given) {
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E214, named->at, "the wall of vessel '%s' has no %s", shortened(e, named->name),
+                     heat->given ? "wall-conductance" : "wall-heat-capacity");
+        diagnostic_hint(e->out, said, "as in: wall-heat-capacity 25 kJ/K; wall-conductance 30 W/K");
     }
     const struct quantity *test = &target->vessel.test_pressure;
     check_below_test(e, "working-pressure", &target->vessel.working_pressure, test);

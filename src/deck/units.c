@@ -191,6 +191,9 @@ static const struct named_dimension names[] = {
     {{1, 2, -3, 0, 0, 0}, "power"},
     {{1, 1, -2, 0, 0, 0}, "force"},
     {{0, 1, 1, 0, 0, 1}, "dipole moment"},
+    {{1, 0, -1, 0, 0, 0}, "mass per time"},
+    {{1, 2, -2, -1, 0, 0}, "heat per kelvin"},
+    {{1, 2, -3, -1, 0, 0}, "power per kelvin"},
 };
 
 const char *dimension_name(struct dimension dimension, struct arena *arena)

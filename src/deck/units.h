@@ -66,5 +66,9 @@ const char *dimension_name(struct dimension dimension, struct arena *arena);
 #define DIMENSION_MOLAR_MASS    ((struct dimension){1, 0, 0, 0, -1, 0})
 #define DIMENSION_MOLAR_HEAT    ((struct dimension){1, 2, -2, -1, -1, 0})
 #define DIMENSION_DIPOLE        ((struct dimension){0, 1, 1, 0, 0, 1})
+#define DIMENSION_TIME          ((struct dimension){0, 0, 1, 0, 0, 0})
+#define DIMENSION_MASS_FLOW     ((struct dimension){1, 0, -1, 0, 0, 0})
+#define DIMENSION_HEAT_CAPACITY ((struct dimension){1, 2, -2, -1, 0, 0})
+#define DIMENSION_CONDUCTANCE   ((struct dimension){1, 2, -3, -1, 0, 0})
 
 #endif

@@ -116,6 +116,14 @@ struct dimension measure_dimension(enum measure measure)
         return DIMENSION_MOLAR_HEAT;
     case MEASURE_DIPOLE:
         return DIMENSION_DIPOLE;
+    case MEASURE_TIME:
+        return DIMENSION_TIME;
+    case MEASURE_MASS_FLOW:
+        return DIMENSION_MASS_FLOW;
+    case MEASURE_HEAT_CAPACITY:
+        return DIMENSION_HEAT_CAPACITY;
+    case MEASURE_CONDUCTANCE:
+        return DIMENSION_CONDUCTANCE;
     case MEASURE_NONE:
     case MEASURE_NUMBER:
     case MEASURES:

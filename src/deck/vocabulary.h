@@ -48,6 +48,10 @@ enum measure {
     MEASURE_MOLAR_MASS,
     MEASURE_MOLAR_HEAT,
     MEASURE_DIPOLE,
+    MEASURE_TIME,
+    MEASURE_MASS_FLOW,
+    MEASURE_HEAT_CAPACITY, /* energy per kelvin, of a thing */
+    MEASURE_CONDUCTANCE,   /* power per kelvin */
     MEASURES
 };
 

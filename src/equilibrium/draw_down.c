@@ -1,5 +1,8 @@
-/* Vapour or liquid drawn slowly from a closed vessel at one temperature: integration, and the events on the way. */
+/* Vapour or liquid drawn from a closed vessel, at one temperature or with its energy: integration, and the events on
+ * the way. */
 #include "equilibrium/draw_down.h"
+
+#include "equilibrium/energy_vessel.h"
 
 #include <gsl/gsl_errno.h>
 #include <gsl/gsl_odeiv2.h>
@@ -7,15 +10,19 @@
 #include <string.h>
 
 enum {
-    MOST_STEPS = 20000,    /* of one call */
-    MOST_SOLUTIONS = 6000, /* of the vessel, from the start: some ten times what is usual */
-    MOST_HALVINGS = 60,    /* of a step that cannot be made */
-    MOST_BISECTIONS = 60,  /* of an event's place */
-    FIRST_PARTS = 1000     /* the first step is that part of the mass */
+    MOST_STEPS = 20000,               /* of one call */
+    MOST_SOLUTIONS = 6000,            /* of the vessel, from the start: some ten times what is usual */
+    MOST_SOLUTIONS_WITH_HEAT = 60000, /* heat that comes fast holds the steps down to its own time */
+    MOST_HALVINGS = 60,               /* of a step that cannot be made */
+    MOST_BISECTIONS = 60,             /* of an event's place */
+    FIRST_PARTS = 1000                /* the first step is that part of the mass */
 };
 
 /* An event is placed to this part of the mass at the start. */
 #define EVENT_PLACE 1e-12
+
+/* What is integrated behind the amounts of a draw at a rate. */
+enum { ENERGY, WALL_TEMPERATURE, ENTHALPY_DELIVERED, HEAT_TAKEN, HEAT_UNKNOWNS };
 
 /* No step that has to be smaller than this part of the mass is worth its work: the vessel's solution is not smooth. */
 #define LEAST_STEP 1e-9
@@ -23,9 +30,12 @@ enum {
 struct draw_down {
     const struct fluid_at_t *at_t;
     struct draw_task task;
-    size_t count;
+    size_t count, size;  /* components; unknowns */
     double mass, amount; /* kg and mol at the start */
-    double step;         /* kg, for the next step */
+    struct draw_heat heat;
+    struct energy_vessel *energies; /* NULL: at one temperature */
+    double energy_scale;            /* J */
+    double step;                    /* kg, for the next step */
     struct draw_state state, other;
     struct mixture_vessel *vessel; /* NULL: a pure fluid */
     struct equilibrium_workspace *ws;
@@ -42,6 +52,7 @@ struct draw_down {
 struct part {
     double amount, molar_volume; /* mol, m3/mol */
     const double *x;             /* NULL: pure */
+    double enthalpy;             /* J/mol, of a draw at a rate */
 };
 
 static double molar_mass_of(const struct draw_down *draw, const double x[])
@@ -83,6 +94,7 @@ static void take_parts(const struct draw_down *draw, const struct part parts[], 
     }
     out->liquid_fraction = liquid / draw->task.volume;
     const struct part *drawn = drawn_part(draw, parts, count);
+    out->drawn_enthalpy = drawn->enthalpy;
     for (size_t i = 0; i < draw->count; i++) {
         out->drawn[i] = drawn->x == NULL ? 1.0 : drawn->x[i];
     }
@@ -95,8 +107,8 @@ static enum answer solve_pure(const struct draw_down *draw, double amount, struc
     if (answer != ANSWER_OK) {
         return answer;
     }
-    const struct part vapour = {contents.vapour_amount, contents.vapour_molar_volume, NULL};
-    const struct part liquid = {contents.liquid_amount, contents.liquid_molar_volume, NULL};
+    const struct part vapour = {contents.vapour_amount, contents.vapour_molar_volume, NULL, 0.0};
+    const struct part liquid = {contents.liquid_amount, contents.liquid_molar_volume, NULL, 0.0};
     if (contents.state == VESSEL_TWO_PHASE) {
         take_parts(draw, (struct part[]){vapour, liquid}, 2, contents.pressure, out);
     } else {
@@ -117,16 +129,46 @@ static enum answer solve_mixture(struct draw_down *draw, const double n[], struc
     struct part parts[MOST_PHASES];
     for (size_t k = 0; k < vessel->split->phase_count; k++) {
         const struct split_phase *phase = &vessel->split->phase[k];
-        parts[k] = (struct part){vessel->amount * phase->fraction, phase->molar_volume, phase->x};
+        parts[k] = (struct part){vessel->amount * phase->fraction, phase->molar_volume, phase->x, 0.0};
     }
     take_parts(draw, parts, vessel->split->phase_count, vessel->split->pressure, out);
+    return ANSWER_OK;
+}
+
+static int most_solutions(const struct draw_down *draw)
+{
+    return draw->energies == NULL ? MOST_SOLUTIONS : MOST_SOLUTIONS_WITH_HEAT;
+}
+
+/* The contents as their energy has them: y[count + ENERGY]. */
+static enum answer solve_with_energy(struct draw_down *draw, const double y[], struct draw_state *out)
+{
+    struct energy_state energy;
+    struct part parts[MOST_PHASES];
+    const enum answer answer =
+        energy_vessel_at_u(draw->energies, y[draw->count + ENERGY], y, draw->state.temperature, &energy);
+    if (answer != ANSWER_OK) {
+        return answer;
+    }
+    for (size_t k = 0; k < energy.phase_count; k++) {
+        const struct energy_part *part = &energy.parts[k];
+        parts[k] = (struct part){part->amount, part->molar_volume, part->x, part->enthalpy};
+    }
+    take_parts(draw, parts, energy.phase_count, energy.pressure, out);
+    out->filled += energy.solid_amount * energy.solid_molar_volume;
+    out->temperature = energy.temperature;
+    out->wall_temperature = y[draw->count + WALL_TEMPERATURE];
+    out->solid_amount = energy.solid_amount;
+    out->energy = energy.internal_energy;
+    out->enthalpy_delivered = y[draw->count + ENTHALPY_DELIVERED];
+    out->heat_taken = y[draw->count + HEAT_TAKEN];
     return ANSWER_OK;
 }
 
 /* The contents with n[] mol; a negative amount has none. Work is limited, so that every draw comes to an end. */
 static enum answer solve(struct draw_down *draw, const double n[], struct draw_state *out)
 {
-    if (draw->solutions++ >= MOST_SOLUTIONS) {
+    if (draw->solutions++ >= most_solutions(draw)) {
         return ANSWER_FAILED;
     }
     for (size_t i = 0; i < draw->count; i++) {
@@ -134,10 +176,28 @@ static enum answer solve(struct draw_down *draw, const double n[], struct draw_s
             return ANSWER_OUT_OF_RANGE;
         }
     }
+    if (draw->energies != NULL) {
+        return solve_with_energy(draw, n, out);
+    }
     return draw->vessel == NULL ? solve_pure(draw, n[0], out) : solve_mixture(draw, n, out);
 }
 
 /* ---- steps ------------------------------------------------------------------------------------------------------- */
+
+/* By the mass delivered: all powers over the rate. */
+static void set_heat_slopes(const struct draw_down *draw, const double y[], double molar_mass, double slope[])
+{
+    const struct draw_heat *heat = &draw->heat;
+    const double T = draw->other.temperature, T_w = y[draw->count + WALL_TEMPERATURE];
+    const bool has_wall = heat->wall_heat_capacity > 0.0;
+    const double outside = heat->ambient_conductance * (heat->ambient - (has_wall ? T_w : T)) / heat->rate;
+    const double inside = has_wall ? heat->wall_conductance * (T_w - T) / heat->rate : outside;
+    const double enthalpy = draw->other.drawn_enthalpy / molar_mass;
+    slope[draw->count + ENERGY] = inside - enthalpy;
+    slope[draw->count + WALL_TEMPERATURE] = has_wall ? (outside - inside) / heat->wall_heat_capacity : 0.0;
+    slope[draw->count + ENTHALPY_DELIVERED] = enthalpy;
+    slope[draw->count + HEAT_TAKEN] = outside;
+}
 
 static int slopes(double delivered, const double n[], double slope[], void *context)
 {
@@ -150,13 +210,16 @@ static int slopes(double delivered, const double n[], double slope[], void *cont
     for (size_t i = 0; i < draw->count; i++) {
         slope[i] = -draw->other.drawn[i] / molar_mass;
     }
+    if (draw->energies != NULL) {
+        set_heat_slopes(draw, n, molar_mass, slope);
+    }
     return GSL_SUCCESS;
 }
 
 /* draw->trial after a step of h kg from draw->before; false where it cannot be made. */
 static bool make_step(struct draw_down *draw, double h)
 {
-    memcpy(draw->trial, draw->before, draw->count * sizeof *draw->trial);
+    memcpy(draw->trial, draw->before, draw->size * sizeof *draw->trial);
     gsl_odeiv2_step_reset(draw->stepper);
     return gsl_odeiv2_step_apply(draw->stepper, draw->state.delivered, h, draw->trial, draw->error, NULL, NULL,
                                  &draw->system) == GSL_SUCCESS;
@@ -169,7 +232,12 @@ static double step_error(const struct draw_down *draw)
     for (size_t i = 0; i < draw->count; i++) {
         largest = fmax(largest, fabs(draw->error[i]));
     }
-    return largest / (draw->task.tolerance * draw->amount);
+    largest /= draw->amount;
+    for (size_t i = draw->count; i < draw->size; i++) {
+        const double scale = i == draw->count + WALL_TEMPERATURE ? draw->heat.temperature : draw->energy_scale;
+        largest = fmax(largest, fabs(draw->error[i]) / scale);
+    }
+    return largest / draw->task.tolerance;
 }
 
 static enum draw_event event_between(const struct draw_down *draw, const struct draw_state *before,
@@ -181,6 +249,12 @@ static enum draw_event event_between(const struct draw_down *draw, const struct 
     if (!(after->pressure > draw->task.least_pressure)) {
         return DRAW_LEAST_PRESSURE;
     }
+    if (draw->energies != NULL && !(after->temperature > draw->heat.least_temperature)) {
+        return DRAW_LEAST_TEMPERATURE;
+    }
+    if ((after->solid_amount > 0.0) != (before->solid_amount > 0.0)) {
+        return after->solid_amount > 0.0 ? DRAW_SOLID_COMES : DRAW_SOLID_GOES;
+    }
     return after->phase_count > before->phase_count   ? DRAW_PHASE_COMES
            : after->phase_count < before->phase_count ? DRAW_PHASE_GOES
                                                       : DRAW_NO_EVENT;
@@ -190,7 +264,7 @@ static void keep(struct draw_down *draw, double delivered)
 {
     struct draw_state *state = &draw->state, *other = &draw->other;
     double *amounts = state->amounts, *drawn = state->drawn;
-    memcpy(amounts, draw->trial, draw->count * sizeof *amounts);
+    memcpy(amounts, draw->trial, draw->size * sizeof *amounts);
     memcpy(drawn, other->drawn, draw->count * sizeof *drawn);
     *state = *other;
     state->amounts = amounts;
@@ -235,9 +309,9 @@ static enum answer place_event(struct draw_down *draw, double h, enum draw_event
 /* One accepted step of at most `most` kg. */
 static enum answer one_step(struct draw_down *draw, double most, enum draw_event *event)
 {
-    memcpy(draw->before, draw->state.amounts, draw->count * sizeof *draw->before);
+    memcpy(draw->before, draw->state.amounts, draw->size * sizeof *draw->before);
     double h = fmin(draw->step, most);
-    for (int i = 0; i < MOST_HALVINGS && draw->solutions < MOST_SOLUTIONS; i++) {
+    for (int i = 0; i < MOST_HALVINGS && draw->solutions < most_solutions(draw); i++) {
         const bool is_made = step_and_solve(draw, h);
         const double error = is_made ? step_error(draw) : HUGE_VAL;
         if (error <= 1.0) {
@@ -285,14 +359,19 @@ struct draw_down *draw_down_create(const struct fluid_at_t *at_t, size_t count, 
 {
     struct draw_down *draw = arena_alloc(arena, 1, sizeof *draw);
     *draw = (struct draw_down){.at_t = at_t, .task = *task, .count = count};
-    double *rooms = arena_alloc(arena, 7 * count, sizeof *rooms);
+    draw->size = count + (task->heat != NULL ? (size_t)HEAT_UNKNOWNS : 0);
+    double *rooms = arena_alloc(arena, 7 * draw->size, sizeof *rooms);
     draw->state.amounts = rooms;
-    draw->state.drawn = rooms + count;
-    draw->other.drawn = rooms + 2 * count;
-    draw->trial = rooms + 3 * count;
-    draw->error = rooms + 4 * count;
-    draw->before = rooms + 5 * count;
-    draw->other.amounts = rooms + 6 * count;
+    draw->state.drawn = rooms + draw->size;
+    draw->other.drawn = rooms + 2 * draw->size;
+    draw->trial = rooms + 3 * draw->size;
+    draw->error = rooms + 4 * draw->size;
+    draw->before = rooms + 5 * draw->size;
+    draw->other.amounts = rooms + 6 * draw->size;
+    if (task->heat != NULL) {
+        draw->heat = *task->heat;
+        draw->energies = energy_vessel_create(draw->heat.fluid, draw->heat.at_t, task->volume, draw->heat.solid, arena);
+    }
     if (count > 1) {
         draw->vessel = mixture_vessel_create(count, arena);
         draw->ws = equilibrium_workspace_create(count, arena);
@@ -301,8 +380,8 @@ struct draw_down *draw_down_create(const struct fluid_at_t *at_t, size_t count, 
         draw->amount += task->start[i];
         draw->mass += task->start[i] * task->molar_masses[i];
     }
-    draw->system = (gsl_odeiv2_system){slopes, NULL, count, draw};
-    draw->stepper = gsl_odeiv2_step_alloc(gsl_odeiv2_step_rk8pd, count);
+    draw->system = (gsl_odeiv2_system){slopes, NULL, draw->size, draw};
+    draw->stepper = gsl_odeiv2_step_alloc(gsl_odeiv2_step_rk8pd, draw->size);
     return draw->stepper == NULL ? NULL : draw;
 }
 
@@ -311,13 +390,28 @@ void draw_down_free(struct draw_down *draw)
     gsl_odeiv2_step_free(draw->stepper);
 }
 
+/* The energy of the start, at its temperature. */
+static enum answer begin_energy(struct draw_down *draw)
+{
+    struct energy_state energy;
+    const double temperature = draw->heat.temperature;
+    const enum answer answer = energy_vessel_at_t(draw->energies, temperature, draw->trial, &energy);
+    memset(draw->trial + draw->count, 0, HEAT_UNKNOWNS * sizeof *draw->trial);
+    draw->trial[draw->count + ENERGY] = energy.internal_energy;
+    draw->trial[draw->count + WALL_TEMPERATURE] = temperature;
+    draw->state.temperature = temperature;
+    draw->energy_scale = draw->amount * draw->heat.fluid->gas_constant * temperature;
+    return answer;
+}
+
 enum answer draw_down_begin(struct draw_down *draw)
 {
     memcpy(draw->trial, draw->task.start, draw->count * sizeof *draw->trial);
     draw->has_vessel = false;
     draw->solutions = 0;
     draw->step = draw->mass / FIRST_PARTS;
-    const enum answer answer = solve(draw, draw->trial, &draw->other);
+    enum answer answer = draw->energies == NULL ? ANSWER_OK : begin_energy(draw);
+    answer = answer == ANSWER_OK ? solve(draw, draw->trial, &draw->other) : answer;
     if (answer == ANSWER_OK) {
         keep(draw, 0.0);
     }

@@ -1,5 +1,5 @@
-/* The draw-down sheet: what a charge delivers while vapour or liquid is drawn slowly at one temperature, how pressure,
- * level and composition go, and what stays behind. */
+/* The draw-down sheet: what a charge delivers while vapour or liquid is drawn, slowly at one temperature or at a rate
+ * with its cooling, how pressure, level and composition go, and what stays behind. */
 #include "equilibrium/draw_down.h"
 
 #include "filling/mixture_internal.h"
@@ -12,9 +12,14 @@ enum { PARTS = 10, MOST_EVENTS = 16, FRACTION_DIGITS = 5 };
 
 /* Of the amount at the start, at each step: some thousand steps at the most leave the printed digits alone. */
 #define TOLERANCE 1e-11
+/* The same at a rate, where a temperature is searched for at every step. */
+#define TOLERANCE_WITH_HEAT 1e-9
 
 /* The mass delivered and left is the mass at the start to this part of it. */
 #define MASS_CLOSURE 1e-12
+
+/* The energy likewise, of what was exchanged. */
+#define ENERGY_CLOSURE 1e-8
 
 /* The state at which contents are sold by volume. */
 #define VOLUME_TEMPERATURE 288.15
@@ -26,13 +31,17 @@ struct drawing {
     struct method_run *method;
     bool is_lead;
     double mass;                  /* kg at the start */
+    double most;                  /* kg, delivered when the time is over; all of it where none is given */
+    const struct draw_heat *heat; /* NULL: at one temperature */
+    bool has_solid;               /* at some moment */
     double *start, *molar_masses; /* [components] */
     struct draw_down *draw;
     struct draw_state first; /* its arrays are not kept */
-    struct table *course, *drawn, *left;
+    struct table *course, *heats, *drawn, *left;
 };
 
 enum course_column { COURSE_DELIVERED, COURSE_LEFT, COURSE_PRESSURE, COURSE_LEVEL, COURSE_LIQUID, COURSE_EVENT };
+enum heat_column { HEAT_DELIVERED, HEAT_TIME, HEAT_TEMPERATURE, HEAT_REST };
 
 /* ---- tables ------------------------------------------------------------------------------------------------------ */
 
@@ -48,6 +57,27 @@ static struct table *begin_fractions(const struct drawing *it, const char *title
     return table;
 }
 
+static struct look look_time(void)
+{
+    return (struct look){"s", {"min", 60.0, 0.0}, 2};
+}
+
+/* Time and temperatures, beside the course. */
+static void begin_heats(struct drawing *it)
+{
+    const struct sheet_run *run = it->run;
+    it->heats = sheet_add_table(run->result, run->out, "time and temperatures", it->method->name);
+    table_add_column(run->result, it->heats, "delivered", look_mass(run));
+    table_add_column(run->result, it->heats, "time", look_time());
+    table_add_column(run->result, it->heats, "temperature", look_temperature(run));
+    if (it->heat->wall_heat_capacity > 0.0) {
+        table_add_column(run->result, it->heats, "wall", look_temperature(run));
+    }
+    if (it->has_solid) {
+        table_add_column(run->result, it->heats, "solid", look_mass(run));
+    }
+}
+
 static void begin_tables(struct drawing *it)
 {
     const struct sheet_run *run = it->run;
@@ -59,6 +89,9 @@ static void begin_tables(struct drawing *it)
     table_add_column(run->result, it->course, "liquid-level", look_percent(2));
     table_add_column(run->result, it->course, "liquid", look_amount());
     table_add_word_column(run->result, it->course, "event");
+    if (it->heat != NULL) {
+        begin_heats(it);
+    }
     if (run->sheet->fluid->count > 1) {
         it->drawn = begin_fractions(it, "mole fractions of what is being drawn");
         it->left = begin_fractions(it, "mole fractions of all that is left");
@@ -78,6 +111,12 @@ static const char *event_words(enum draw_event event)
         return "liquid is gone";
     case DRAW_LEAST_PRESSURE:
         return "least pressure";
+    case DRAW_SOLID_COMES:
+        return "first solid";
+    case DRAW_SOLID_GOES:
+        return "solid is gone";
+    case DRAW_LEAST_TEMPERATURE:
+        return "least temperature";
     }
     return "";
 }
@@ -105,11 +144,37 @@ static void put_fractions(const struct drawing *it, struct table *table, double 
     }
 }
 
+static double temperature_of(const struct drawing *it)
+{
+    return it->heat == NULL ? it->run->sheet->drawing.temperature.value : draw_down_state(it->draw)->temperature;
+}
+
+/* Only a pure substance has a solid here. */
+static double solid_mass(const struct drawing *it)
+{
+    return draw_down_state(it->draw)->solid_amount * it->molar_masses[0];
+}
+
+static void put_heat_row(const struct drawing *it)
+{
+    const struct draw_state *state = draw_down_state(it->draw);
+    struct cell *row = table_add_row(it->run->result, it->heats);
+    cell_set(&row[HEAT_DELIVERED], state->delivered);
+    cell_set(&row[HEAT_TIME], state->delivered / it->heat->rate);
+    cell_set(&row[HEAT_TEMPERATURE], state->temperature);
+    size_t column = HEAT_REST;
+    if (it->heat->wall_heat_capacity > 0.0) {
+        cell_set(&row[column++], state->wall_temperature);
+    }
+    if (it->has_solid) {
+        cell_set(&row[column], solid_mass(it));
+    }
+}
+
 static void put_row(const struct drawing *it, enum draw_event event)
 {
     const struct draw_state *state = draw_down_state(it->draw);
-    const bool is_inside =
-        warn_outside_range(it->run, it->method, it->run->sheet->drawing.temperature.value, state->pressure);
+    const bool is_inside = warn_outside_range(it->run, it->method, temperature_of(it), state->pressure);
     struct cell *row = table_add_row(it->run->result, it->course);
     cell_set(&row[COURSE_DELIVERED], state->delivered);
     cell_set(&row[COURSE_LEFT], mass_of(it, state->amounts));
@@ -120,6 +185,9 @@ static void put_row(const struct drawing *it, enum draw_event event)
         cell_set(&row[COURSE_LIQUID], state->liquid_amount);
     }
     cell_set_text(&row[COURSE_EVENT], event_words(event));
+    if (it->heats != NULL) {
+        put_heat_row(it);
+    }
     if (it->drawn != NULL) {
         put_fractions(it, it->drawn, state->delivered, state->drawn);
         put_fractions(it, it->left, state->delivered, state->amounts);
@@ -130,16 +198,23 @@ static void put_row(const struct drawing *it, enum draw_event event)
 
 static bool is_end(enum draw_event event)
 {
-    return event == DRAW_LIQUID_IS_GONE || event == DRAW_LEAST_PRESSURE;
+    return event == DRAW_LIQUID_IS_GONE || event == DRAW_LEAST_PRESSURE || event == DRAW_LEAST_TEMPERATURE;
+}
+
+/* Has everything been drawn that the time allows? */
+static bool is_over(const struct drawing *it, enum draw_event event)
+{
+    return event == DRAW_NO_EVENT && !(draw_down_state(it->draw)->delivered < it->most * (1.0 - MASS_CLOSURE));
 }
 
 /* To the end, which tells how far the rows of the table lie apart. */
-static enum answer find_end(const struct drawing *it, enum draw_event *end)
+static enum answer find_end(struct drawing *it, enum draw_event *end)
 {
     *end = DRAW_NO_EVENT;
     for (int i = 0; i < MOST_EVENTS; i++) {
-        const enum answer answer = draw_down_to(it->draw, it->mass, end);
-        if (answer != ANSWER_OK || is_end(*end)) {
+        const enum answer answer = draw_down_to(it->draw, it->most, end);
+        it->has_solid = it->has_solid || draw_down_state(it->draw)->solid_amount > 0.0;
+        if (answer != ANSWER_OK || is_end(*end) || is_over(it, *end)) {
             return answer;
         }
     }
@@ -157,7 +232,7 @@ static enum answer tell_course(struct drawing *it, double delivered)
     put_row(it, DRAW_NO_EVENT);
     for (int part = 1, events = 0; part <= PARTS && events < MOST_EVENTS;) {
         /* the last part ends at the end's own event, a little further than it was found */
-        const double target = part == PARTS ? it->mass : delivered * part / PARTS;
+        const double target = part == PARTS ? it->most : delivered * part / PARTS;
         enum draw_event event;
         answer = draw_down_to(it->draw, target, &event);
         if (answer != ANSWER_OK) {
@@ -166,7 +241,7 @@ static enum answer tell_course(struct drawing *it, double delivered)
         put_row(it, event);
         events += event != DRAW_NO_EVENT;
         part += event == DRAW_NO_EVENT;
-        if (is_end(event)) {
+        if (is_end(event) || is_over(it, event)) {
             return ANSWER_OK;
         }
     }
@@ -234,6 +309,12 @@ static const char *reason_words(const struct drawing *it, enum draw_event end)
     if (end == DRAW_LIQUID_IS_GONE) {
         return "the liquid is gone";
     }
+    if (end == DRAW_LEAST_TEMPERATURE) {
+        return "the least temperature is reached";
+    }
+    if (end == DRAW_NO_EVENT) {
+        return "the time is over";
+    }
     return state->delivered > 0.0 ? "the least pressure is reached"
                                   : "the charge is at or below the least pressure from the start";
 }
@@ -246,9 +327,35 @@ static void tell_facts(const struct drawing *it, enum draw_event end)
     add_number(it, "start-gauge-pressure", it->first.pressure, look_gauge(run));
     add_words(it, "end", reason_words(it, end));
     add_number(it, "end-gauge-pressure", state->pressure, look_gauge(run));
+    if (it->heat != NULL) {
+        add_number(it, "end-temperature", state->temperature, look_temperature(run));
+        add_number(it, "duration", state->delivered / it->heat->rate, look_time());
+    }
     add_number(it, "usable-mass", state->delivered, look_mass(run));
     tell_volume(it);
     add_number(it, "residue-mass", mass_of(it, state->amounts), look_mass(run));
+    if (it->has_solid) {
+        add_number(it, "solid-residue", solid_mass(it), look_mass(run));
+    }
+}
+
+static void require_content(const struct drawing *it)
+{
+    const struct sheet_run *run = it->run;
+    const struct quantity *least = &run->sheet->drawing.least_content;
+    if (!least->given || !it->is_lead) {
+        return;
+    }
+    const double margin = draw_down_state(it->draw)->delivered - least->value;
+    struct requirement *requirement = sheet_add_requirement(
+        run->result, run->out,
+        arena_format(run->arena, "usable mass >= %s", shown_text(run, look_mass(run), least->value)));
+    requirement->state = margin >= 0.0 ? REQUIREMENT_MET : REQUIREMENT_NOT_MET;
+    requirement->has_margin = true;
+    requirement->margin = margin;
+    requirement->look = look_mass(run);
+    requirement->line = deck_line(run, least->origin.at);
+    requirement->method = it->method->name;
 }
 
 /* ---- the hand check ---------------------------------------------------------------------------------------------- */
@@ -269,6 +376,16 @@ static void add_hand_check(const struct drawing *it)
                         it->run->sheet->fluid->components[i]->name, n, M, n * M);
     }
     hand_check_line(result, check, "  sum %.6f kg", mass_of(it, state->amounts));
+    if (it->heat != NULL) {
+        const double C = it->heat->wall_heat_capacity;
+        hand_check_line(result, check, "U + C_w T_w = U_start + C_w T_start - H_delivered + Q from outside:");
+        hand_check_line(result, check, "  %.10g J + %.6g J/K x %.6f K = %.10g J", state->energy, C,
+                        state->wall_temperature, state->energy + C * state->wall_temperature);
+        hand_check_line(result, check, "  %.10g J + %.6g J/K x %.6f K - %.10g J + %.10g J = %.10g J", it->first.energy,
+                        C, it->first.wall_temperature, state->enthalpy_delivered, state->heat_taken,
+                        it->first.energy + C * it->first.wall_temperature - state->enthalpy_delivered +
+                            state->heat_taken);
+    }
 }
 
 /* ---- the sheet --------------------------------------------------------------------------------------------------- */
@@ -282,9 +399,22 @@ static void tell_trouble(const struct drawing *it, const char *what)
     run->result->is_undecided = run->result->is_undecided || it->is_lead;
 }
 
+/* The energies of contents and wall, of the start less what left and with what came: of what was exchanged. */
+static bool closes_in_energy(const struct drawing *it)
+{
+    const struct draw_state *state = draw_down_state(it->draw);
+    const double wall = it->heat->wall_heat_capacity * (state->wall_temperature - it->first.wall_temperature);
+    const double gain = state->energy - it->first.energy, out = state->enthalpy_delivered, in = state->heat_taken;
+    const double exchanged = fabs(gain) + fabs(wall) + fabs(out) + fabs(in);
+    return fabs(gain + wall + out - in) <= ENERGY_CLOSURE * exchanged;
+}
+
 static bool closes(const struct drawing *it)
 {
     const struct draw_state *state = draw_down_state(it->draw);
+    if (it->heat != NULL && !closes_in_energy(it)) {
+        return false;
+    }
     return fabs(it->mass - state->delivered - mass_of(it, state->amounts)) <= MASS_CLOSURE * it->mass;
 }
 
@@ -300,6 +430,7 @@ static void draw_by(struct drawing *it)
         (it->run->sheet->drawing.least_pressure.given &&
          !(it->first.pressure > it->run->sheet->drawing.least_pressure.value))) {
         tell_facts(it, DRAW_LEAST_PRESSURE);
+        require_content(it);
         return;
     }
     if (find_end(it, &end) != ANSWER_OK) {
@@ -315,6 +446,7 @@ static void draw_by(struct drawing *it)
         add_hand_check(it);
     }
     tell_facts(it, end);
+    require_content(it);
 }
 
 static void begin_amounts(struct drawing *it)
@@ -327,6 +459,31 @@ static void begin_amounts(struct drawing *it)
         it->molar_masses[i] = fluid->components[i]->molar_mass.value;
     }
     it->mass = mass_of(it, it->start);
+}
+
+/* Contents and wall at a rate; NULL: slowly. */
+static const struct draw_heat *heat_of(const struct drawing *it)
+{
+    const struct sheet_run *run = it->run;
+    const struct case_sheet *sheet = run->sheet;
+    if (!sheet->drawing.rate.given) {
+        return NULL;
+    }
+    struct draw_heat *heat = arena_alloc(run->arena, 1, sizeof *heat);
+    const struct quantity *ambient = &sheet->drawing.ambient;
+    *heat = (struct draw_heat){
+        .fluid = it->method->fluid,
+        .at_t = it->method->at_t,
+        .solid = sheet->fluid->count == 1 ? sheet->fluid->components[0]->spec.solid : NULL,
+        .temperature = sheet->drawing.temperature.value,
+        .rate = sheet->drawing.rate.value,
+        .wall_heat_capacity = sheet->vessel->wall_heat_capacity.value,
+        .wall_conductance = sheet->vessel->wall_conductance.value,
+        .ambient = ambient->given ? ambient->value : sheet->drawing.temperature.value,
+        .ambient_conductance = sheet->drawing.ambient_conductance.value,
+        .least_temperature = sheet->drawing.least_temperature.value,
+    };
+    return heat;
 }
 
 static bool is_below_triple_point(const struct sheet_run *run)
@@ -342,12 +499,18 @@ static void answer_by(struct sheet_run *run, size_t index, double mass)
     struct method_run *method = &run->methods[index];
     struct drawing it = {.run = run, .method = method, .is_lead = index == 0, .mass = mass};
     begin_amounts(&it);
+    it.heat = heat_of(&it);
+    it.most = it.mass;
+    if (it.heat != NULL && run->sheet->drawing.time.given) {
+        it.most = fmin(it.mass, it.heat->rate * run->sheet->drawing.time.value);
+    }
     const struct draw_task task = {
         .drawn = run->sheet->drawing.is_liquid ? DRAWN_LIQUID : DRAWN_VAPOUR,
         .volume = run->sheet->vessel->water_capacity.value,
         .least_pressure = run->sheet->drawing.least_pressure.given ? run->sheet->drawing.least_pressure.value
                                                                    : run->tree->ambient_pressure,
-        .tolerance = TOLERANCE,
+        .tolerance = it.heat == NULL ? TOLERANCE : TOLERANCE_WITH_HEAT,
+        .heat = it.heat,
         .molar_masses = it.molar_masses,
         .start = it.start,
     };
@@ -375,7 +538,7 @@ void answer_draw_down(struct sheet_run *run)
         tell_trouble(&it, "the mass of the charge was not found");
         return;
     }
-    if (is_below_triple_point(run)) {
+    if (!run->sheet->drawing.rate.given && is_below_triple_point(run)) {
         result_warn(run->result, CODE_W391, location_line(run->sheet->at), run->number,
                     "%s: %s lies below the triple point", run->sheet->fluid->name,
                     temperature_words(run, run->sheet->drawing.temperature.value));
@@ -384,7 +547,13 @@ void answer_draw_down(struct sheet_run *run)
     }
     sheet_begin_facts(run->result, run->out, NULL);
     sheet_add_fact(run->result, run->out, "charge-mass", mass, look_mass(run));
-    sheet_add_fact(run->result, run->out, "held-at", run->sheet->drawing.temperature.value, look_temperature(run));
+    const bool is_slow = !run->sheet->drawing.rate.given;
+    sheet_add_fact(run->result, run->out, is_slow ? "held-at" : "start-temperature",
+                   run->sheet->drawing.temperature.value, look_temperature(run));
+    if (!is_slow) {
+        sheet_add_fact(run->result, run->out, "rate", run->sheet->drawing.rate.value,
+                       (struct look){"kg/s", {"kg/h", 1.0 / 3600.0, 0.0}, 3});
+    }
     sheet_add_words(run->result, run->out, "drawn", run->sheet->drawing.is_liquid ? "liquid" : "vapour");
     for (size_t m = 0; m < run->method_count; m++) {
         if (run->methods[m].fluid != NULL) {

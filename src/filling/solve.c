@@ -216,8 +216,8 @@ static const char *const CAUTIONS[] = {
     "filled.",
     "Gas, liquid and wall are taken to share one temperature. Filling warms the gas: a pressure read before the "
     "vessel has settled is not a settled pressure.",
-    "Cooling by fast withdrawal, and what it condenses or freezes, is not covered; neither are reaction and "
-    "decomposition.",
+    "Cooling by fast withdrawal, and what it condenses or freezes, is covered where a draw-down sheet has a rate and "
+    "nowhere else; reaction and decomposition are not.",
     "The vessel is taken as rigid and as large as its stated water capacity; whether it is sound and fit for the "
     "gas is not examined here.",
 };
