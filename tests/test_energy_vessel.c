@@ -1,6 +1,7 @@
 /* Closed vessels at given energy, and draws at a rate: round trips, balances, textbook answers, dry ice. */
 #include "equilibrium/draw_down.h"
 #include "equilibrium/energy_vessel.h"
+#include "equilibrium/fast_fill.h"
 #include "filling/sheet.h"
 #include "filling/solve.h"
 
@@ -293,6 +294,45 @@ static void energy_closes_and_the_tolerance_does_not_show(void **state)
     arena_free(arena);
 }
 
+/* ---- fast fills -------------------------------------------------------------------------------------------------- */
+
+/* An empty rigid vessel filled with an ideal gas: n u(T) = n h(T_s), so that cv T = cp T_s and T = gamma T_s, 5/3 of
+ * the supply's for argon (any textbook; the gas constant of argon's ideal term is 6e-6 more than the others'). With a
+ * wall that takes all there is to take gas and wall end at one temperature: n cv (T - ...) + C (T - T_w) = n R T_s. */
+static void an_empty_vessel_fills_to_gamma_times_the_supply(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    const struct subject subject = subject_of(PURE("argon"), "ideal-gas", arena);
+    struct energy_vessel *vessel = energy_vessel_create(subject.method.fluid, subject.method.at_t, 0.01, NULL, arena);
+    const double empty[] = {0.0}, added[] = {50.0};
+    struct energy_state warm, cold;
+    assert_int_equal(energy_vessel_at_t(vessel, 300.0, added, &cold), ANSWER_OK);
+    struct fast_fill fill = {.before = empty,
+                             .added = added,
+                             .temperature = 290.0,
+                             .enthalpy = cold.internal_energy + 50.0 * R * 300.0,
+                             .time = 60.0};
+    struct fast_fill_end end;
+    assert_int_equal(fast_fill_adiabatic(vessel, 1, &fill, arena, &end), ANSWER_OK);
+    assert_close(end.temperature, 5.0 / 3.0 * 300.0, 1e-5, "gamma T");
+    assert_close(end.pressure, 50.0 * R * end.temperature / 0.01, 1e-12, "n R T / V");
+
+    fill.wall_heat_capacity = 4e3;
+    fill.wall_conductance = 1e-6; /* next to nothing: as without a wall */
+    assert_int_equal(fast_fill_with_wall(vessel, 1, &fill, arena, &end), ANSWER_OK);
+    assert_close(end.temperature, 5.0 / 3.0 * 300.0, 1e-5, "gamma T");
+    fill.wall_conductance = 2000.0; /* next to all of it: one temperature, which the energies of both give */
+    assert_int_equal(fast_fill_with_wall(vessel, 1, &fill, arena, &end), ANSWER_OK);
+    const double cv = 1.5 * R, one = (50.0 * 2.5 * R * 300.0 + 4e3 * 290.0) / (50.0 * cv + 4e3);
+    assert_near(end.temperature, one, 1.0, "by hand, but for what is still on its way to the wall");
+    assert_near(end.wall_temperature, one, 0.2, "by hand");
+    /* nothing is lost: U + C T_w = H + C T_w at the start */
+    assert_int_equal(energy_vessel_at_t(vessel, end.temperature, added, &warm), ANSWER_OK);
+    assert_close(warm.internal_energy + 4e3 * end.wall_temperature, fill.enthalpy + 4e3 * 290.0, 1e-8, "closed");
+    arena_free(arena);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -302,6 +342,7 @@ int main(void)
         cmocka_unit_test(much_heat_from_outside_keeps_one_temperature),
         cmocka_unit_test(carbon_dioxide_leaves_the_dry_ice_an_energy_balance_gives),
         cmocka_unit_test(the_dry_ice_is_that_of_three_linear_equations),
+        cmocka_unit_test(an_empty_vessel_fills_to_gamma_times_the_supply),
         cmocka_unit_test(energy_closes_and_the_tolerance_does_not_show),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

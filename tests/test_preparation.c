@@ -217,9 +217,7 @@ static void a_recipe_that_cannot_be_put_together_is_refused(void **state)
          CODE_E232},
         {"sheet preparation { charge lot; make by weight; add light at 300 K; weighed heavy 1 kg }\n", CODE_E232},
         {"sheet preparation { charge lot; make by weight; heel elsewhere; add light at 300 K }\n", CODE_E232},
-        {"charge alone { fluid light; vessel ten; mass 1 kg }\n"
-         "sheet preparation { charge alone; make by weight; add light at 300 K }\n",
-         CODE_E232},
+        {"sheet preparation { charge lot; make by weight; add light at 300 K { fill-time 3 min } }\n", CODE_E214},
         {"mixture real by volume at (300 K, 1 bara) { light 50 %; heavy rest }\n"
          "sheet preparation { charge lot; make by weight; add light at 300 K; add real at 300 K }\n",
          CODE_E232},

@@ -326,11 +326,13 @@ struct case_addition {
     const char *name;
     struct location at;
     const struct case_fluid *parent;
-    const size_t *places;            /* [parent->count], of its components among those of the sheet's fluid */
-    struct quantity temperature;     /* K, of the vessel after it */
-    struct quantity supply_pressure; /* Pa */
-    struct quantity balance;         /* kg, expanded uncertainty of its mass */
-    struct quantity weighed;         /* kg */
+    const size_t *places;               /* [parent->count], of its components among those of the sheet's fluid */
+    struct quantity temperature;        /* K, of the vessel after it */
+    struct quantity supply_pressure;    /* Pa */
+    struct quantity balance;            /* kg, expanded uncertainty of its mass */
+    struct quantity weighed;            /* kg */
+    struct quantity fill_time;          /* s; not given: slow enough to keep the temperature */
+    struct quantity supply_temperature; /* K */
 };
 
 /* Further vessels filled with the same mixture. */

@@ -43,6 +43,8 @@ static void read_order(struct elaboration *e, const struct statement *statement,
 static const struct block_row ADDITION_ROWS[] = {
     READ_QUANTITY(WORD_ADDITION_SUPPLY_PRESSURE, &FORM_PRESSURE, struct case_addition, supply_pressure),
     READ_QUANTITY(WORD_ADDITION_BALANCE, &FORM_MASS, struct case_addition, balance),
+    READ_QUANTITY(WORD_ADDITION_FILL_TIME, NULL, struct case_addition, fill_time),
+    READ_QUANTITY(WORD_ADDITION_SUPPLY_TEMPERATURE, &FORM_TEMPERATURE, struct case_addition, supply_temperature),
 };
 static const struct block_form ADDITION = BLOCK_FORM(BLOCK_ADDITION, ADDITION_ROWS);
 
@@ -102,6 +104,12 @@ static void read_addition(struct elaboration *e, const struct statement *stateme
     add_input(e, what, si_text(e, &FORM_TEMPERATURE, temperature->value), &temperature->origin);
     if (statement->block != NULL) {
         read_block(e, &ADDITION, arena_format(e->arena, "%s, %s", e->group, name->name), statement, &addition);
+    }
+    if (addition.fill_time.given && !addition.supply_pressure.given) {
+        struct diagnostic *said =
+            diagnose(e->out, CODE_E214, addition.at, "the fast addition of '%s' has no supply-pressure",
+                     shortened(e, name->name));
+        diagnostic_hint(e->out, said, "the energy of the gas follows from it, as in: supply-pressure 300 barg");
     }
     struct addition_list *list = &lines->additions;
     *ARENA_APPEND(e->arena, list) = addition;
@@ -296,7 +304,7 @@ static const struct case_fluid *make_blend(struct elaboration *e, const struct c
                                  .components = all->items,
                                  .fractions = fractions,
                                  .basis = target->basis,
-                                 .shares = shares};
+                                 .shares = all->count > 1 ? shares : NULL};
     finish_fluid(e, blend);
     struct fluid_list *blends = &e->blends;
     *ARENA_APPEND(e->arena, blends) = blend;
@@ -408,10 +416,6 @@ bool complete_preparation(struct elaboration *e, struct preparation_lines *lines
         lines->additions.items[i].places = places_in(e, &all, lines->additions.items[i].parent);
     }
     made->heel_places = made->heel == NULL ? NULL : places_in(e, &all, made->heel->fluid);
-    if (all.count < 2) {
-        diagnose(e->out, CODE_E232, sheet->at, "a single pure gas needs no recipe");
-        return false;
-    }
     made->addition_count = lines->additions.count;
     made->additions = lines->additions.items;
     made->further_count = lines->further.count;

@@ -2,6 +2,7 @@
  * it has then made. What cannot be made is told with what would make it possible. */
 #include "filling/preparation_internal.h"
 
+#include "equilibrium/saturation.h"
 #include "equilibrium/split.h"
 #include "filling/mixture_internal.h"
 #include "filling/search.h"
@@ -122,11 +123,16 @@ static enum answer heel_molar_volume(const struct preparation *it, const double 
     if (!is_by_pressure && heel->kind != FILL_VOLUME) {
         return ANSWER_OK;
     }
-    struct split *split = split_create(it->count, it->run->arena);
+    const double pressure = is_by_pressure ? heel->amount.value : heel->pressure;
     enum answer answer = fluid_set_t(method->at_t, method->fluid, heel->temperature);
-    answer = answer != ANSWER_OK ? answer
-                                 : split_at_tp(method->at_t, is_by_pressure ? heel->amount.value : heel->pressure, z,
-                                               method->mixture->ws, split);
+    if (it->count == 1) {
+        struct phase *phase = phase_create(1, it->run->arena);
+        answer = answer == ANSWER_OK ? stable_phase_tp(method->at_t, pressure, z, 0, phase) : answer;
+        *molar_volume = phase->volume / z[0];
+        return answer;
+    }
+    struct split *split = split_create(it->count, it->run->arena);
+    answer = answer != ANSWER_OK ? answer : split_at_tp(method->at_t, pressure, z, method->mixture->ws, split);
     for (size_t k = 0; answer == ANSWER_OK && k < split->phase_count; k++) {
         *molar_volume += split->phase[k].fraction * split->phase[k].molar_volume;
     }
@@ -425,9 +431,10 @@ static void answer_recipe(struct preparation *it)
             continue;
         }
         tell_steps(it, &run->methods[m], steps);
+        tell_fast_fills(it, &run->methods[m], steps);
         lead = m == 0 ? steps : lead;
     }
-    if (it->made->is_by_pressure) {
+    if (it->made->is_by_pressure && it->count > 1) {
         tell_ideal_recipe(it, &run->methods[0], lead);
     }
     tell_all_vessels(it);

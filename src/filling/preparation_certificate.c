@@ -509,8 +509,10 @@ void tell_certificate(const struct preparation *it, const struct filled_step ste
         of.model = gravimetric_model(&of.equation, arena);
         of.first = propagate_first_order(&of.model, arena);
     }
-    tell_composition(&of);
-    add_hand_check(&of);
+    if (it->count > 1) {
+        tell_composition(&of);
+        add_hand_check(&of);
+    }
     if (of.equation.input_count > 0) {
         tell_budgets_of(&of);
     }

@@ -2,6 +2,7 @@
  * it, and the masses for every vessel. */
 #include "filling/preparation_internal.h"
 
+#include "equilibrium/closed_vessel.h"
 #include "equilibrium/mixture_vessel.h"
 #include "filling/mixture_internal.h"
 #include "filling/search.h"
@@ -17,6 +18,20 @@ enum { LOOKS = 8 };
 
 /* ---- the vessel -------------------------------------------------------------------------------------------------- */
 
+static enum answer pure_filled_at(const struct preparation *it, const struct method_run *method, double amount,
+                                  struct filled_state *out)
+{
+    struct vessel_contents contents;
+    const enum answer answer = closed_vessel_at_tv(method->at_t, it->volume, amount, &contents);
+    if (answer == ANSWER_OK) {
+        out->pressure = contents.pressure;
+        out->phase_count = contents.state == VESSEL_TWO_PHASE ? 2 : 1;
+        out->has_liquid = contents.liquid_amount > 0.0;
+        out->liquid_amount = contents.liquid_amount;
+    }
+    return answer;
+}
+
 enum answer filled_at(const struct preparation *it, struct method_run *method, double temperature, const double n[],
                       struct filled_state *out)
 {
@@ -25,6 +40,9 @@ enum answer filled_at(const struct preparation *it, struct method_run *method, d
         return ANSWER_OK;
     }
     enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
+    if (it->count == 1) {
+        return answer == ANSWER_OK ? pure_filled_at(it, method, n[0], out) : answer;
+    }
     struct mixture_vessel *vessel = method->mixture->vessel;
     method->mixture->has_vessel = false;
     answer = answer != ANSWER_OK ? answer

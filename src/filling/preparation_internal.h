@@ -34,7 +34,7 @@ struct filled_state {
 struct filled_step {
     struct filled_state before, after; /* at the temperature of the step */
     bool has_liquid_between;           /* while it goes in */
-    double peak_pressure;              /* Pa, the highest of the step */
+    double peak_pressure;              /* Pa, the highest of the step: what its supply has to reach */
 };
 
 /* Amounts in the vessel at a temperature, by one method. */
@@ -50,6 +50,9 @@ enum answer follow_steps(const struct preparation *it, struct method_run *method
 
 /* Steps by one method as a table. */
 void tell_steps(const struct preparation *it, const struct method_run *method, const struct filled_step steps[]);
+
+/* Temperatures and pressures at the end of additions that have a time; the steps' peak pressures become those. */
+void tell_fast_fills(const struct preparation *it, struct method_run *method, struct filled_step steps[]);
 
 /* The recipe by ideal partial pressures beside the real one, and what would come of it. */
 void tell_ideal_recipe(const struct preparation *it, struct method_run *method, const struct filled_step steps[]);
