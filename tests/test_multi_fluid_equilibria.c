@@ -9,7 +9,7 @@
 #include <stdlib.h>
 #include <string.h>
 
-enum { MOST = 10, ROWS = 44 };
+enum { MOST = 10, ROWS = 45 };
 
 /* Relative; both solutions converge far below this. */
 #define AGREEMENT 1e-9

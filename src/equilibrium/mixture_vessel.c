@@ -539,12 +539,17 @@ static enum answer search(struct filling *v, struct mixture_vessel *vessel)
 
 /* ---- one phase ------------------------------------------------------------------------------------------------- */
 
-/* By how much the stable root lies below the one that fills the vessel, at the same pressure and composition. */
+/* By how much the stable root lies below the one that fills the vessel, at the same pressure and composition. Inside a
+ * loop that an equation has between its gas and its liquid the pressure may be one that no phase of it has. */
 static enum answer distance_to_stable_root(const struct filling *v, double *distance)
 {
     struct equilibrium_workspace *ws = v->flash.ws;
     const enum answer answer =
         phase_tp(v->flash.at_t, v->flash.pressure, ws->feed, BRANCH_STABLE, PHASE_LN_PHI, ws->trial);
+    if (answer == ANSWER_OUT_OF_RANGE || answer == ANSWER_NO_SUCH_ROOT) {
+        *distance = -HUGE_VAL;
+        return ANSWER_OK;
+    }
     *distance = 0.0;
     for (size_t i = 0; i < ws->count; i++) {
         *distance += ws->feed[i] * (ws->trial->ln_phi[i] - ws->reference->ln_phi[i]);
