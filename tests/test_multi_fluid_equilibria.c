@@ -88,10 +88,32 @@ static void boundaries_and_vessels_agree_with_independent_solutions(void **state
     arena_free(arena);
 }
 
+/* Equations have boundaries of their own making at thousands of bar: none is looked for there, as none is told. */
+static void boundaries_are_looked_for_as_far_as_the_equations_are_meant_to_go(void **state)
+{
+    (void)state;
+    static const char *const names[] = {"methane",   "nitrogen", "carbon-dioxide", "ethane",   "propane",
+                                        "isobutane", "n-butane", "n-pentane",      "n-hexane", "oxygen"};
+    static const double z[] = {0.80, 0.03, 0.02, 0.07, 0.04, 0.01, 0.015, 0.008, 0.004, 0.003};
+    struct arena *arena = arena_create(NULL);
+    const struct measured_mixture m = measured_mixture_create("multi-fluid", names, MOST, arena);
+    assert_int_equal(envelope_trace(m.at_t, m.fluid, z, m.ws, m.envelope), ANSWER_OK);
+    for (double T = 193.15; T < 240.0; T += 10.0) {
+        assert_int_equal(boundary_at_t(m.at_t, m.fluid, T, z, m.envelope, m.ws, m.boundaries), ANSWER_OK);
+        assert_int_equal(boundary_complete_at_t(m.at_t, m.fluid, T, z, m.ws, m.boundaries), ANSWER_OK);
+        assert_int_equal(m.boundaries->count, 2);
+        assert_true(m.boundaries->is_complete);
+        assert_int_equal(m.boundaries->point[0]->kind, BOUNDARY_DEW);
+        assert_int_equal(m.boundaries->point[1]->kind, BOUNDARY_BUBBLE);
+    }
+    arena_free(arena);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(boundaries_and_vessels_agree_with_independent_solutions),
+        cmocka_unit_test(boundaries_are_looked_for_as_far_as_the_equations_are_meant_to_go),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -26,6 +26,8 @@ enum { MOST_PLACES = 80, FEW = 4, MOST_HALVINGS = 60, HALVINGS_A_NEWTON = 4, MOS
 #define THIN_FACTOR  10.0
 #define DENSE_FACTOR 1.6
 #define DENSE_FROM   1e5
+/* Tried pressures end at so many times the method's published limit. */
+#define BEYOND_RANGE 2.0
 /* Each point known is held against the test this far on either side. */
 #define BESIDE_POINT 1e-5
 /* Two places this near, relative, are one. */
@@ -88,9 +90,21 @@ static size_t insert(double places[], size_t count, double place)
     return count + 1;
 }
 
-static size_t add_pressures(double places[], size_t count)
+/* Far above the pressures it is published for an equation has boundaries of its own making. */
+static double highest_pressure(const struct completion *c)
 {
-    for (double p = ENVELOPE_LOWEST_PRESSURE; p <= ENVELOPE_HIGHEST_PRESSURE;) {
+    const struct fluid_ops *ops = c->fluid->ops;
+    struct range_note note = {.side = RANGE_INSIDE};
+    if (ops->range != NULL) {
+        note = ops->range(c->fluid, c->at_t->temperature, ENVELOPE_HIGHEST_PRESSURE);
+    }
+    return note.side == RANGE_TOO_HIGH_PRESSURE ? BEYOND_RANGE * note.limit : ENVELOPE_HIGHEST_PRESSURE;
+}
+
+static size_t add_pressures(const struct completion *c, double places[], size_t count)
+{
+    const double highest = highest_pressure(c);
+    for (double p = ENVELOPE_LOWEST_PRESSURE; p <= highest;) {
         count = insert(places, count, p);
         p *= p < DENSE_FROM ? THIN_FACTOR : DENSE_FACTOR;
     }
@@ -118,7 +132,7 @@ static size_t set_places(const struct completion *c, double places[])
         count = insert(places, count, place_of(c, c->list->point[i]) * (1.0 - BESIDE_POINT));
         count = insert(places, count, place_of(c, c->list->point[i]) * (1.0 + BESIDE_POINT));
     }
-    return c->is_isobar ? add_temperatures(c->list, places, count) : add_pressures(places, count);
+    return c->is_isobar ? add_temperatures(c->list, places, count) : add_pressures(c, places, count);
 }
 
 static size_t stable_points_between(const struct completion *c, double low, double high)
