@@ -88,7 +88,7 @@ static int slopes(double part, const double y[], double slope[], void *context)
     struct filling *of = context;
     const struct fast_fill *fill = of->fill;
     if (state_after(of, part, y[CONTENTS]) != ANSWER_OK) {
-        return GSL_EBADFUNC;
+        return GSL_FAILURE; /* a shorter step may do */
     }
     const double heat = fill->wall_conductance * (of->state.temperature - y[WALL]) * fill->time;
     slope[CONTENTS] = fill->enthalpy - heat;
