@@ -306,6 +306,15 @@ static const char *supply_words(const struct preparation *it, size_t k, double s
     return words;
 }
 
+/* Of an addition that a slow fill could make. */
+static const char *fast_words(const struct preparation *it, const struct filled_step *step)
+{
+    const struct look look = look_gauge(it->run);
+    return arena_format(it->run->arena, "needs %s while the gas is warm, %s when it has settled: fill more slowly",
+                        shown_text(it->run, look, step->peak_pressure),
+                        shown_text(it->run, look, step->after.pressure));
+}
+
 static void require_supplies(const struct preparation *it, const struct filled_step steps[])
 {
     const struct sheet_run *run = it->run;
@@ -316,11 +325,14 @@ static void require_supplies(const struct preparation *it, const struct filled_s
             continue;
         }
         const double margin = supply->value - steps[k].peak_pressure;
+        const bool is_enough_slowly = addition->fill_time.given && supply->value >= steps[k].after.pressure;
         require_margin(it,
                        arena_format(run->arena, "supply of %s, %s, suffices", addition->name,
                                     shown_text(run, look_gauge(run), supply->value)),
                        margin, look_pressure_difference(run), deck_line(run, addition->at),
-                       margin < 0.0 ? supply_words(it, k, supply->value, steps[k].peak_pressure) : NULL);
+                       margin >= 0.0      ? NULL
+                       : is_enough_slowly ? fast_words(it, &steps[k])
+                                          : supply_words(it, k, supply->value, steps[k].peak_pressure));
     }
 }
 
