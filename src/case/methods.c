@@ -141,7 +141,8 @@ static bool takes_acentric(enum vocabulary_word method)
     return method == WORD_METHOD_PENG_ROBINSON || method == WORD_METHOD_PENG_ROBINSON_1978 ||
            method == WORD_METHOD_SOAVE_REDLICH_KWONG || method == WORD_METHOD_LEE_KESLER ||
            method == WORD_METHOD_VIRIAL_PITZER_ABBOTT || method == WORD_METHOD_VIRIAL_TSONOPOULOS ||
-           method == WORD_METHOD_VIRIAL_PITZER_ABBOTT_PRESSURE || method == WORD_METHOD_VIRIAL_TSONOPOULOS_PRESSURE;
+           method == WORD_METHOD_VIRIAL_PITZER_ABBOTT_PRESSURE || method == WORD_METHOD_VIRIAL_TSONOPOULOS_PRESSURE ||
+           method == WORD_METHOD_POYNTING;
 }
 
 static bool goes_by_reference(enum vocabulary_word method)

@@ -28,7 +28,8 @@ static bool is_virial(const char *method)
 
 bool method_takes_acentric(const char *method)
 {
-    static const char *const methods[] = {"soave-redlich-kwong", "peng-robinson", "peng-robinson-1978", "lee-kesler"};
+    static const char *const methods[] = {"soave-redlich-kwong", "peng-robinson", "peng-robinson-1978", "lee-kesler",
+                                          "poynting"};
     return is_one_of(method, methods, sizeof methods / sizeof *methods) || is_virial(method);
 }
 

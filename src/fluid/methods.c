@@ -23,6 +23,7 @@ static const struct fluid_ops *const METHODS[] = {
     &virial_tsonopoulos_ops,
     &virial_pitzer_abbott_pressure_ops,
     &virial_tsonopoulos_pressure_ops,
+    &poynting_ops,
     NULL,
 };
 

@@ -22,5 +22,6 @@ extern const struct fluid_ops virial_pitzer_abbott_ops;
 extern const struct fluid_ops virial_tsonopoulos_ops;
 extern const struct fluid_ops virial_pitzer_abbott_pressure_ops;
 extern const struct fluid_ops virial_tsonopoulos_pressure_ops;
+extern const struct fluid_ops poynting_ops;
 
 #endif

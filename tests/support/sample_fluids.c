@@ -304,6 +304,7 @@ const struct sample_fluid SAMPLE_FLUIDS[] = {
      {METHANE, PROPANE, HYDROGEN},
      {0.53, 0.29, 0.13},
      SAMPLE_INVENTED},
+    {"liquid and vapour by Poynting", "poynting", 1, {PROPANE}, {1.37}, SAMPLE_INVENTED},
     {"virial mixture in pressure", "virial-tsonopoulos-pressure", 5, FIVE, FIVE_AMOUNTS, SAMPLE_INVENTED},
 };
 const size_t SAMPLE_FLUIDS_COUNT = sizeof SAMPLE_FLUIDS / sizeof *SAMPLE_FLUIDS;
