@@ -473,6 +473,8 @@ static void tell_coldest_use(const struct preparation *it)
     fact->remark = part_there < 1.0
                        ? arena_format(run->arena, "first liquid, %.0f %% of the content left", 100.0 * part_there)
                        : "first liquid of the full vessel; none as it empties";
+    sheet_add_words(run->result, run->out, "minimum-use-pressure",
+                    "none: above that temperature it stays one phase down to empty");
 }
 
 static void tell_label(const struct preparation *it, const struct filled_step steps[])

@@ -215,6 +215,9 @@ static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, c
         set_fugacities(F->F_n, count, RT, want, out);
     }
     if (want & (PHASE_DLN_PHI_DP | PHASE_DLN_PHI_DT | PHASE_DLN_PHI_DN | PHASE_DP_DN)) {
+        if (!(fabs(out->dp_dv) > 0.0)) {
+            return ANSWER_FAILED; /* so thin that 1 / V^2 is lost to underflow */
+        }
         set_derivatives(F->F_Vn, count, RT, want, out);
     }
     if (want & PHASE_RESIDUAL) {
@@ -227,11 +230,14 @@ static enum answer phase_from_tv(const struct fluid_at_t *at_t, double volume, c
 
 /* From Z and its derivatives, as V = n R T Z / p:  dV/dp = -(n R T / p^2) (Z - p dZ/dp),
  * dV/dT = (n R / p) (Z + T dZ/dT),  dp/dT = -(dV/dT) / (dV/dp),  dp/dn_i = -v_i / (dV/dp). */
-static void set_explicit_slopes(const struct explicit_phase *explicit, const double *dln_phi_dp, double gas_constant,
-                                size_t count, unsigned want, struct phase *out)
+static enum answer set_explicit_slopes(const struct explicit_phase *explicit, const double *dln_phi_dp,
+                                       double gas_constant, size_t count, unsigned want, struct phase *out)
 {
     const double R = gas_constant, T = out->temperature, p = out->pressure;
-    const double dv_dp = -out->amount * R * T / (p * p) * explicit->compliance;
+    const double dv_dp = -out->amount * R * T / p / p * explicit->compliance;
+    if (!(fabs(dv_dp) > 0.0) || !isfinite(dv_dp)) {
+        return ANSWER_FAILED; /* an amount or pressure whose products are lost to underflow */
+    }
     out->dp_dv = 1.0 / dv_dp;
     out->dp_dt = -out->amount * R / p * (explicit->Z + explicit->Z_ln_t) / dv_dp;
     for (size_t i = 0; want & PHASE_DP_DN && i < count; i++) {
@@ -242,6 +248,7 @@ static void set_explicit_slopes(const struct explicit_phase *explicit, const dou
         out->residual_entropy_r = explicit->residual_enthalpy_rt - explicit->residual_gibbs_rt;
         out->residual_heat_capacity_r = explicit->residual_heat_capacity_r;
     }
+    return ANSWER_OK;
 }
 
 /* Where tp puts what is wanted; PHASE_DP_DN needs the derivative by p. */
@@ -282,7 +289,11 @@ static enum answer phase_from_tp(const struct fluid_at_t *at_t, double pressure,
     out->branch = branch;
     out->roots = explicit.roots;
     if (explicit.has_slopes) {
-        set_explicit_slopes(&explicit, explicit.dln_phi_dp, fluid->gas_constant, count, want, out);
+        const enum answer slopes =
+            set_explicit_slopes(&explicit, explicit.dln_phi_dp, fluid->gas_constant, count, want, out);
+        if (slopes != ANSWER_OK) {
+            return slopes;
+        }
     }
     for (size_t i = 0; want & PHASE_LN_F && i < count; i++) {
         out->ln_f_over_x[i] = explicit.ln_phi[i] + log(pressure);
