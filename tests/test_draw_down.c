@@ -254,6 +254,11 @@ static void a_sheet_needs_a_phase_and_a_temperature(void **state)
         {"sheet draw-down { charge lot; temperature 300 K; methods ideal-gas }\n", CODE_E214},
         {"sheet draw-down { charge lot; draw vapour; methods ideal-gas }\n", CODE_E214},
         {"sheet draw-down { draw vapour; temperature 300 K; methods ideal-gas }\n", CODE_E214},
+        {"sheet draw-down { charge lot; draw vapour; temperature 300 K; methods ideal-gas; stop-when argon <= 5 % }\n",
+         CODE_E205},
+        {"sheet draw-down { charge lot; draw vapour; temperature 300 K; methods ideal-gas; stop-at noon }\n",
+         CODE_E213},
+        {"sheet draw-down { charge lot; draw vapour; temperature 300 K; methods ideal-gas; time 3 min }\n", CODE_E214},
         {"sheet draw-down { charge lot; draw foam; temperature 300 K; methods ideal-gas }\n", CODE_E213},
     };
     for (size_t i = 0; i < sizeof decks / sizeof *decks; i++) {

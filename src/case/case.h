@@ -394,6 +394,10 @@ struct case_sheet {
     bool shows_every_uncertainty; /* of tables, row by row */
     struct {
         bool given, is_liquid;
+        bool stops_at_liquid, stops_at_solid;
+        const char *limited;      /* component whose fraction in what is drawn ends it; NULL: none */
+        bool is_limit_from_above; /* it ends once the fraction is no more than the limit */
+        struct quantity limit;
         struct quantity temperature;                                     /* K */
         struct quantity least_pressure;                                  /* Pa */
         struct quantity rate;                                            /* kg/s; not given: slow, at one temperature */

@@ -240,6 +240,13 @@ static double step_error(const struct draw_down *draw)
     return largest / draw->task.tolerance;
 }
 
+static bool is_at_limit(const struct draw_down *draw, const struct draw_state *state)
+{
+    const struct draw_task *task = &draw->task;
+    const double fraction = state->drawn[task->limited];
+    return task->has_limit && (task->is_limit_from_above ? fraction <= task->limit : fraction >= task->limit);
+}
+
 static enum draw_event event_between(const struct draw_down *draw, const struct draw_state *before,
                                      const struct draw_state *after)
 {
@@ -251,6 +258,9 @@ static enum draw_event event_between(const struct draw_down *draw, const struct 
     }
     if (draw->energies != NULL && !(after->temperature > draw->heat.least_temperature)) {
         return DRAW_LEAST_TEMPERATURE;
+    }
+    if (is_at_limit(draw, after)) {
+        return DRAW_COMPOSITION;
     }
     if ((after->solid_amount > 0.0) != (before->solid_amount > 0.0)) {
         return after->solid_amount > 0.0 ? DRAW_SOLID_COMES : DRAW_SOLID_GOES;

@@ -28,8 +28,9 @@ enum draw_event {
     DRAW_LIQUID_IS_GONE, /* an end: liquid is drawn, and the phase drawn disappears */
     DRAW_SOLID_COMES,
     DRAW_SOLID_GOES,
-    DRAW_LEAST_PRESSURE,   /* an end */
-    DRAW_LEAST_TEMPERATURE /* an end */
+    DRAW_LEAST_PRESSURE,    /* an end */
+    DRAW_LEAST_TEMPERATURE, /* an end */
+    DRAW_COMPOSITION        /* an end: the fraction that the task limits is reached */
 };
 
 /* At a rate. */
@@ -47,11 +48,15 @@ struct draw_heat {
 
 struct draw_task {
     enum drawn_phase drawn;
-    double volume;                /* m3 */
-    double least_pressure;        /* Pa, above 0 */
-    double tolerance;             /* of the amounts, against the amount at the start, at each step */
-    const double *molar_masses;   /* [count], kg/mol */
-    const double *start;          /* [count], mol, zeros allowed */
+    double volume;              /* m3 */
+    double least_pressure;      /* Pa, above 0 */
+    double tolerance;           /* of the amounts, against the amount at the start, at each step */
+    const double *molar_masses; /* [count], kg/mol */
+    const double *start;        /* [count], mol, zeros allowed */
+    bool has_limit;             /* of a component's fraction in what is drawn */
+    bool is_limit_from_above;   /* it ends at the limit or below, else at it or above */
+    size_t limited;
+    double limit;
     const struct draw_heat *heat; /* NULL: at one temperature */
 };
 

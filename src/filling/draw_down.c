@@ -117,6 +117,8 @@ static const char *event_words(enum draw_event event)
         return "solid is gone";
     case DRAW_LEAST_TEMPERATURE:
         return "least temperature";
+    case DRAW_COMPOSITION:
+        return "limit of composition";
     }
     return "";
 }
@@ -196,9 +198,12 @@ static void put_row(const struct drawing *it, enum draw_event event)
 
 /* ---- the two ways down ------------------------------------------------------------------------------------------- */
 
-static bool is_end(enum draw_event event)
+static bool is_end(const struct drawing *it, enum draw_event event)
 {
-    return event == DRAW_LIQUID_IS_GONE || event == DRAW_LEAST_PRESSURE || event == DRAW_LEAST_TEMPERATURE;
+    const struct case_sheet *sheet = it->run->sheet;
+    return event == DRAW_LIQUID_IS_GONE || event == DRAW_LEAST_PRESSURE || event == DRAW_LEAST_TEMPERATURE ||
+           event == DRAW_COMPOSITION || (event == DRAW_PHASE_COMES && sheet->drawing.stops_at_liquid) ||
+           (event == DRAW_SOLID_COMES && sheet->drawing.stops_at_solid);
 }
 
 /* Has everything been drawn that the time allows? */
@@ -214,7 +219,7 @@ static enum answer find_end(struct drawing *it, enum draw_event *end)
     for (int i = 0; i < MOST_EVENTS; i++) {
         const enum answer answer = draw_down_to(it->draw, it->most, end);
         it->has_solid = it->has_solid || draw_down_state(it->draw)->solid_amount > 0.0;
-        if (answer != ANSWER_OK || is_end(*end) || is_over(it, *end)) {
+        if (answer != ANSWER_OK || is_end(it, *end) || is_over(it, *end)) {
             return answer;
         }
     }
@@ -241,7 +246,7 @@ static enum answer tell_course(struct drawing *it, double delivered)
         put_row(it, event);
         events += event != DRAW_NO_EVENT;
         part += event == DRAW_NO_EVENT;
-        if (is_end(event) || is_over(it, event)) {
+        if (is_end(it, event) || is_over(it, event)) {
             return ANSWER_OK;
         }
     }
@@ -314,6 +319,12 @@ static const char *reason_words(const struct drawing *it, enum draw_event end)
     }
     if (end == DRAW_NO_EVENT) {
         return "the time is over";
+    }
+    if (end == DRAW_COMPOSITION) {
+        return "the limit of composition is reached";
+    }
+    if (end == DRAW_PHASE_COMES || end == DRAW_SOLID_COMES) {
+        return end == DRAW_SOLID_COMES ? "the first solid comes" : "a second phase comes";
     }
     return state->delivered > 0.0 ? "the least pressure is reached"
                                   : "the charge is at or below the least pressure from the start";
@@ -461,6 +472,15 @@ static void begin_amounts(struct drawing *it)
     it->mass = mass_of(it, it->start);
 }
 
+static size_t limited_component(const struct case_sheet *sheet)
+{
+    size_t i = 0;
+    while (sheet->drawing.limited != NULL && strcmp(sheet->fluid->components[i]->name, sheet->drawing.limited) != 0) {
+        i++;
+    }
+    return i;
+}
+
 /* Contents and wall at a rate; NULL: slowly. */
 static const struct draw_heat *heat_of(const struct drawing *it)
 {
@@ -511,6 +531,10 @@ static void answer_by(struct sheet_run *run, size_t index, double mass)
                                                                    : run->tree->ambient_pressure,
         .tolerance = it.heat == NULL ? TOLERANCE : TOLERANCE_WITH_HEAT,
         .heat = it.heat,
+        .has_limit = run->sheet->drawing.limited != NULL,
+        .is_limit_from_above = run->sheet->drawing.is_limit_from_above,
+        .limited = limited_component(run->sheet),
+        .limit = run->sheet->drawing.limit.value,
         .molar_masses = it.molar_masses,
         .start = it.start,
     };
