@@ -149,6 +149,13 @@ static void draws_agree_with_first_order(void **state)
     const struct drawn drawn = propagate_draws(&model, &first, 40000, 3, 1, arena);
     assert_close(drawn.outputs[C4].standard, first.standard[C4], 0.02, "u by draws, 40000 of them");
     assert_true(first_order_is_linear(&first, C4));
+    /* one output alone is drawn as it is among the others */
+    const size_t told[] = {C4};
+    const struct propagation_model alone = gravimetric_model_of(&of, told, 1, arena);
+    const struct first_order first_alone = propagate_first_order(&alone, arena);
+    const struct drawn drawn_alone = propagate_draws(&alone, &first_alone, 40000, 3, 2, arena);
+    assert_true(drawn_alone.outputs[0].mean == drawn.outputs[C4].mean);
+    assert_true(drawn_alone.outputs[0].high == drawn.outputs[C4].high);
     double inputs[INPUT_COUNT], outputs[COUNT_OF_GASES];
     memcpy(inputs, model.values, sizeof inputs);
     inputs[5] = -1e-6;

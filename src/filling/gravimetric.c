@@ -130,6 +130,9 @@ struct moved {
     double *masses;      /* [parts] */
     double *fractions;   /* [parts * count] */
     double *molar_masses;
+    const size_t *told; /* [told_count]; NULL: all */
+    size_t told_count;
+    double *all; /* [count] */
 };
 
 static struct moved *create_moved(const struct gravimetric *of, struct arena *arena)
@@ -139,14 +142,18 @@ static struct moved *create_moved(const struct gravimetric *of, struct arena *ar
                             .arena = arena,
                             .masses = arena_alloc(arena, of->parts, sizeof(double)),
                             .fractions = arena_alloc(arena, of->parts * of->count, sizeof(double)),
-                            .molar_masses = arena_alloc(arena, of->count, sizeof(double))};
+                            .molar_masses = arena_alloc(arena, of->count, sizeof(double)),
+                            .all = arena_alloc(arena, of->count, sizeof(double))};
     return moved;
 }
 
 static void *moved_for_thread(void *context, struct arena *arena)
 {
     const struct moved *from = context;
-    return create_moved(from->of, arena);
+    struct moved *own = create_moved(from->of, arena);
+    own->told = from->told;
+    own->told_count = from->told_count;
+    return own;
 }
 
 static void take_as_written(struct moved *it)
@@ -217,6 +224,16 @@ static enum model_answer evaluate(void *context, const double inputs[], double o
     return MODEL_OK;
 }
 
+static enum model_answer evaluate_told(void *context, const double inputs[], double outputs[])
+{
+    struct moved *it = context;
+    const enum model_answer answer = evaluate(context, inputs, it->all);
+    for (size_t k = 0; answer == MODEL_OK && k < it->told_count; k++) {
+        outputs[k] = it->all[it->told[k]];
+    }
+    return answer;
+}
+
 static bool differentiate(void *context, const double inputs[], double derivatives[])
 {
     const struct moved *it = context;
@@ -243,4 +260,17 @@ struct propagation_model gravimetric_model(const struct gravimetric *of, struct 
                                       .differentiate = differentiate,
                                       .context = create_moved(of, arena),
                                       .context_for_thread = moved_for_thread};
+}
+
+struct propagation_model gravimetric_model_of(const struct gravimetric *of, const size_t told[], size_t told_count,
+                                              struct arena *arena)
+{
+    struct propagation_model model = gravimetric_model(of, arena);
+    struct moved *moved = model.context;
+    moved->told = told;
+    moved->told_count = told_count;
+    model.output_count = told_count;
+    model.evaluate = evaluate_told;
+    model.differentiate = NULL;
+    return model;
 }

@@ -45,4 +45,9 @@ void gravimetric_derivatives(const struct gravimetric *of, const struct gravimet
 /* Inputs to outputs, which are the mole fractions. The model's memory is in the arena. */
 struct propagation_model gravimetric_model(const struct gravimetric *of, struct arena *arena);
 
+/* The same for the fractions of some components alone, told[told_count], and without derivatives: for random draws,
+ * whose cost lies in putting each output in order. */
+struct propagation_model gravimetric_model_of(const struct gravimetric *of, const size_t told[], size_t told_count,
+                                              struct arena *arena);
+
 #endif

@@ -359,23 +359,38 @@ static struct budget *tell_budget(const struct certificate *of, size_t i)
     return budget;
 }
 
+static void draw_told(const struct certificate *of, const size_t told[], size_t count, struct budget *const budgets[])
+{
+    struct arena *arena = of->it->run->arena;
+    const struct case_sheet *sheet = of->it->run->sheet;
+    double *base = arena_alloc(arena, 2 * count, sizeof *base), *standard = base + count;
+    for (size_t k = 0; k < count; k++) {
+        base[k] = of->first.base[told[k]];
+        standard[k] = of->first.standard[told[k]];
+    }
+    const struct first_order first = {.is_known = true, .base = base, .standard = standard};
+    const struct propagation_model model = gravimetric_model_of(&of->equation, told, count, arena);
+    const struct drawn drawn = propagate_draws(&model, &first, sheet->draws, sheet->seed, 0, arena);
+    for (size_t k = 0; k < count; k++) {
+        budgets[k]->drawn = drawn_budget_of(&drawn, &first, k, sheet->seed);
+    }
+}
+
 /* Of the target's components but the rest, whose uncertainty is theirs together. */
 static void tell_budgets_of(const struct certificate *of)
 {
     const struct preparation *it = of->it;
     const struct case_sheet *sheet = it->run->sheet;
-    struct drawn drawn = {.draws = 0};
-    if (sheet->draws > 0) {
-        drawn = propagate_draws(&of->model, &of->first, sheet->draws, sheet->seed, 0, it->run->arena);
-    }
+    size_t *told = arena_alloc(it->run->arena, it->count, sizeof *told), count = 0;
+    struct budget **budgets = arena_alloc(it->run->arena, it->count, sizeof *budgets);
     for (size_t i = 0; i < it->count; i++) {
-        if (i == it->task.rest || !(sheet->fluid->fractions[i] > 0.0) || !(of->first.standard[i] > 0.0)) {
-            continue;
+        if (i != it->task.rest && sheet->fluid->fractions[i] > 0.0 && of->first.standard[i] > 0.0) {
+            budgets[count] = tell_budget(of, i);
+            told[count++] = i;
         }
-        struct budget *budget = tell_budget(of, i);
-        if (sheet->draws > 0) {
-            budget->drawn = drawn_budget_of(&drawn, &of->first, i, sheet->seed);
-        }
+    }
+    if (sheet->draws > 0 && count > 0) {
+        draw_told(of, told, count, budgets);
     }
 }
 
