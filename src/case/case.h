@@ -67,6 +67,7 @@ struct case_group {
 /* A substance as a solid. */
 struct case_solid {
     const struct case_source *source; /* of the sublimation line; NULL: none named */
+    const struct case_source *melting_source;
     struct location at;
     struct quantity molar_volume;
     struct solid_spec spec;
@@ -380,7 +381,7 @@ struct case_sheet {
     const struct predicate *requirements;
     size_t quote_count;
     const double *quotes; /* K: temperatures the pressure is quoted at */
-    bool show_iteration, show_caloric;
+    bool show_iteration, show_caloric, show_melting;
     struct optional iteration_at; /* K */
     enum listed_policy listed;
     bool asks_of_solids;   /* a rule or a requirement says `no solid` */

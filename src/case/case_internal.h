@@ -419,6 +419,7 @@ const struct case_departure *build_departure(struct elaboration *e, struct named
 /* What is known of a substance as a solid; NULL after a message. Counts as used once use_solid says so. */
 const struct case_solid *build_solid(struct elaboration *e, struct named *named);
 void use_solid(struct elaboration *e, const struct case_component *component);
+void use_melting(struct elaboration *e, const struct case_component *component);
 
 /* A block of `reducing-temperature`, `reducing-value` and rows `term n t`: a guess, or a sublimation line; `what` as in
  * "the guess". False after a message. */

@@ -261,20 +261,32 @@ static void read_stop_when(struct elaboration *e, const struct statement *statem
 }
 
 /* What one kind of sheet can show; false after a message. */
-static bool take_shown(struct reading *reading, enum vocabulary_word shown)
+static bool is_shown(struct reading *reading, const struct vocabulary_row *row, enum vocabulary_word shown)
 {
-    const struct vocabulary_row *row = take_choice(reading, BLOCK_SHOWN, "what to show");
     if (row != NULL && row->id != shown) {
         diagnose(reading->e->out, CODE_E213, reading->of->at, "this sheet has no '%s' to show", row->word);
     }
     return row != NULL && row->id == shown;
 }
 
+static bool take_shown(struct reading *reading, enum vocabulary_word shown)
+{
+    return is_shown(reading, take_choice(reading, BLOCK_SHOWN, "what to show"), shown);
+}
+
 static void read_show(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
     struct reading reading = read_items(e, statement);
-    if (!take_shown(&reading, WORD_SHOWN_ITERATION)) {
+    const struct vocabulary_row *row = take_choice(&reading, BLOCK_SHOWN, "what to show");
+    if (row == NULL) {
+        return;
+    }
+    if (row->id == WORD_SHOWN_MELTING) {
+        into->sheet.show_melting = finish_items(&reading);
+        return;
+    }
+    if (!is_shown(&reading, row, WORD_SHOWN_ITERATION)) {
         return;
     }
     const struct item *at = take_item(&reading, ITEM_AT);
@@ -390,7 +402,7 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_CHARGE_MOLES, read_fill_row),
     READ_ONCE(WORD_CHARGE_VOLUME, read_fill_row),
     READ_EACH(WORD_SATURATION_SWEEP, read_sweep_row),
-    READ_ONCE(WORD_SATURATION_SHOW, read_show),
+    READ_EACH(WORD_SATURATION_SHOW, read_show),
     READ_EACH(WORD_FUGACITY_SWEEP, read_sweep_row),
     READ_ONCE(WORD_FUGACITY_SHOW, read_show_caloric),
 };
@@ -672,6 +684,9 @@ static bool sweeps_below(const struct case_sheet *sheet, const struct case_compo
     if (!tells || component->solid == NULL) {
         return false;
     }
+    if (sheet->show_melting) {
+        return true;
+    }
     for (size_t i = 0; i < sheet->temperatures.count; i++) {
         if (sheet->temperatures.values[i] < component->solid->spec.largest_temperature) {
             return true;
@@ -694,6 +709,9 @@ static void use_solids(struct elaboration *e, struct case_sheet *sheet)
     }
     for (size_t i = 0; sheet->tells_solids && i < sheet->fluid->count; i++) {
         use_solid(e, sheet->fluid->components[i]);
+        if (sheet->show_melting) {
+            use_melting(e, sheet->fluid->components[i]);
+        }
     }
 }
 

@@ -11,6 +11,11 @@ struct solid_target {
     double smallest_temperature, largest_temperature;
     enum sublimation_form form;
     struct power_terms line;
+    const struct case_source *melting_source;
+    struct melting_list {
+        struct melting_part *items;
+        size_t count, capacity;
+    } melting;
 };
 
 static void read_source(struct elaboration *e, const struct statement *statement, void *target)
@@ -45,11 +50,56 @@ static void read_sublimation(struct elaboration *e, const struct statement *stat
     }
 }
 
+static void read_melting_source(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct solid_target *into = target;
+    const struct expression *key = read_one_name(e, statement, "the key of a source");
+    into->melting_source = key == NULL ? NULL : source_of_name(e, key);
+}
+
+static enum melting_form melting_form_of(enum vocabulary_word word)
+{
+    return word == WORD_MELTING_GAP_POWERS ? MELTING_GAP_POWERS
+           : word == WORD_MELTING_SIMON    ? MELTING_SIMON
+                                           : MELTING_POWERS;
+}
+
+/* `melting gap-powers from 216.592 K to 330 K { ... }` */
+static void read_melting(struct elaboration *e, const struct statement *statement, void *target)
+{
+    struct solid_target *into = target;
+    struct reading reading = read_items(e, statement);
+    const struct vocabulary_row *form = take_choice(&reading, BLOCK_MELTING, "the form of the melting line");
+    const struct item *from = take_item(&reading, ITEM_FROM), *to = take_item(&reading, ITEM_TO);
+    struct power_terms line;
+    double least, most;
+    if (form == NULL) {
+        return;
+    }
+    if (from == NULL || to == NULL) {
+        report_missing(&reading, "a range, from a temperature to a temperature,");
+        return;
+    }
+    if (!read_value(e, &FORM_TEMPERATURE, "melting", from->value, &least) ||
+        !read_value(e, &FORM_TEMPERATURE, "melting", to->value, &most) || !finish_items(&reading) ||
+        !require_block(e, statement) || !read_power_terms(e, statement, "the melting line", &FORM_PRESSURE, &line)) {
+        return;
+    }
+    if (!(least < most)) {
+        diagnose(e->out, CODE_E209, statement->at, "melting: the range ends before it begins");
+        return;
+    }
+    *ARENA_APPEND(e->arena, &into->melting) = (struct melting_part){
+        melting_form_of(form->id), line.temperature, line.value, line.count, line.terms, least, most};
+}
+
 static const struct block_row ROWS[] = {
     READ_ONCE(WORD_SOLID_SOURCE, read_source),
     READ_QUANTITY(WORD_SOLID_MOLAR_VOLUME, &FORM_SOLID_VOLUME, struct solid_target, molar_volume),
     READ_ONCE(WORD_SOLID_VALID_TEMPERATURE, read_range),
     READ_ONCE(WORD_SOLID_SUBLIMATION, read_sublimation),
+    READ_ONCE(WORD_SOLID_MELTING_SOURCE, read_melting_source),
+    READ_EACH(WORD_SOLID_MELTING, read_melting),
 };
 static const struct block_form SOLID = BLOCK_FORM(BLOCK_SOLID, ROWS);
 
@@ -85,11 +135,20 @@ const struct case_solid *build_solid(struct elaboration *e, struct named *named)
         .at = block->at,
         .molar_volume = read.molar_volume,
         .spec = {read.form, read.line.temperature, read.line.value, read.line.count, read.line.terms,
-                 read.smallest_temperature, read.largest_temperature, read.molar_volume.value},
+                 read.smallest_temperature, read.largest_temperature, read.molar_volume.value, read.melting.count,
+                 read.melting.items},
+        .melting_source = read.melting_source,
     };
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? solid : NULL;
     return named->built;
+}
+
+void use_melting(struct elaboration *e, const struct case_component *component)
+{
+    if (component->solid != NULL) {
+        use_source(e, component->solid->melting_source);
+    }
 }
 
 void use_solid(struct elaboration *e, const struct case_component *component)

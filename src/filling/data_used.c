@@ -233,6 +233,16 @@ static bool any_sheet_tells_solids(const struct case_tree *tree, const struct ca
     return false;
 }
 
+static bool any_melting_is_shown(const struct case_tree *tree, const struct case_component *component)
+{
+    for (size_t i = 0; i < tree->sheet_count; i++) {
+        if (tree->sheets[i].show_melting && contains(tree->sheets[i].fluid, component)) {
+            return true;
+        }
+    }
+    return false;
+}
+
 /* What is known of it as a solid. */
 static void tell_solid(const struct telling *telling, const struct case_component *component)
 {
@@ -248,6 +258,16 @@ static void tell_solid(const struct telling *telling, const struct case_componen
     row->source = solid->source == NULL ? "given in this deck" : solid->source->key;
     row->remark = solid->source != NULL && solid->source->is_unverified ? "unverified" : NULL;
     warn_unverified(telling, row->name, solid->source);
+    if (solid->spec.melting_count > 0 && any_melting_is_shown(telling->tree, component)) {
+        const struct melting_part *parts = solid->spec.melting, *last = &parts[solid->spec.melting_count - 1];
+        struct data_row *line = add_row(telling, "melting-line",
+                                        arena_format(arena, "%zu part%s, %g to %g K", solid->spec.melting_count,
+                                                     solid->spec.melting_count == 1 ? "" : "s",
+                                                     parts[0].smallest_temperature, last->largest_temperature));
+        line->source = solid->melting_source == NULL ? "given in this deck" : solid->melting_source->key;
+        line->remark = solid->melting_source != NULL && solid->melting_source->is_unverified ? "unverified" : NULL;
+        warn_unverified(telling, line->name, solid->melting_source);
+    }
     tell_quantity(telling, "solid molar-volume", &solid->molar_volume, "m3/mol", true);
 }
 

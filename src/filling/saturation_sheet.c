@@ -1,6 +1,7 @@
 /* The sheet `saturation`: the boiling line of a pure gas by equal fugacity, method beside method, the classical
  * iteration written out where it is asked for, and the hand check of one point. */
 #include "filling/hand_check.h"
+#include "filling/melting_line.h"
 #include "filling/mixture_sheets.h"
 #include "filling/sheet.h"
 #include "filling/sublimation_line.h"
@@ -463,4 +464,5 @@ void answer_saturation(struct sheet_run *run)
             work_one_point(run, lines.methods[m], lines.points[m]);
         }
     }
+    tell_melting_line(run);
 }

@@ -48,6 +48,63 @@ double solid_sublimation_pressure(const struct solid_spec *solid, double tempera
     return solid->reducing_pressure * exp(sum.ln_p);
 }
 
+/* ---- the melting line -------------------------------------------------------------------------------------------- */
+
+double solid_melting_pressure(const struct melting_part *part, double temperature)
+{
+    const double theta = temperature / part->reducing_temperature;
+    double sum = 0.0;
+    for (size_t i = 0; i < part->count; i++) {
+        const double n = part->terms[i][0], t = part->terms[i][1];
+        sum += n * (part->form == MELTING_GAP_POWERS ? pow(theta - 1.0, t) : pow(theta, t) - 1.0);
+    }
+    return part->form == MELTING_SIMON ? part->reducing_pressure + sum : part->reducing_pressure * (1.0 + sum);
+}
+
+/* ---- temperatures of a pressure ---------------------------------------------------------------------------------- */
+
+static double pressure_of_line(const void *line, double temperature)
+{
+    double slope;
+    return solid_sublimation_pressure(line, temperature, &slope);
+}
+
+static double pressure_of_part(const void *part, double temperature)
+{
+    return solid_melting_pressure(part, temperature);
+}
+
+/* By bisection: the lines rise or fall from one end to the other. */
+static double temperature_between(double (*pressure_at)(const void *, double), const void *line, double cold,
+                                  double warm, double pressure)
+{
+    enum { MOST_HALVINGS = 200 };
+    const bool rises = pressure_at(line, warm) > pressure_at(line, cold);
+    const double least = pressure_at(line, rises ? cold : warm), most = pressure_at(line, rises ? warm : cold);
+    if (!(pressure >= least && pressure <= most)) {
+        return (double)NAN;
+    }
+    for (int i = 0; i < MOST_HALVINGS; i++) {
+        const double middle = 0.5 * (cold + warm);
+        if (!(middle > cold && middle < warm)) {
+            break;
+        }
+        *((pressure_at(line, middle) < pressure) == rises ? &cold : &warm) = middle;
+    }
+    return 0.5 * (cold + warm);
+}
+
+double solid_melting_temperature(const struct melting_part *part, double pressure)
+{
+    return temperature_between(pressure_of_part, part, part->smallest_temperature, part->largest_temperature, pressure);
+}
+
+double solid_sublimation_temperature(const struct solid_spec *solid, double pressure)
+{
+    return temperature_between(pressure_of_line, solid, solid->smallest_temperature, solid->largest_temperature,
+                               pressure);
+}
+
 bool solid_exists_at(const struct solid_spec *solid, double temperature)
 {
     return temperature <= solid->largest_temperature * (1.0 + SOLID_ABOVE_TRIPLE);

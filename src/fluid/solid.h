@@ -27,6 +27,14 @@ struct solid_state {
 /* The sublimation pressure (Pa) at T (K), and dln p/dT (1/K). */
 double solid_sublimation_pressure(const struct solid_spec *solid, double temperature, double *slope);
 
+/* The melting pressure (Pa) at T (K) by one part of the line. */
+double solid_melting_pressure(const struct melting_part *part, double temperature);
+
+/* The temperature (K) at which that part, or the sublimation line, has `pressure` (Pa), to the last digits; NaN where
+ * it has not between its ends. */
+double solid_melting_temperature(const struct melting_part *part, double pressure);
+double solid_sublimation_temperature(const struct solid_spec *solid, double pressure);
+
 /* Whether the substance can be a solid at this temperature at all, as far as the line says. */
 bool solid_exists_at(const struct solid_spec *solid, double temperature);
 

@@ -113,6 +113,20 @@ struct reference_spec {
  *   INVERSE_POWERS     ln(p / p_r) = sum n theta^-t */
 enum sublimation_form { REDUCED_SERIES, GAP_SERIES, POWER_DIFFERENCES, INVERSE_POWERS };
 
+/* A melting line, or a part of it, with theta = T / T_r:
+ *   MELTING_POWERS      p = p_r (1 + sum n (theta^t - 1))
+ *   MELTING_GAP_POWERS  p = p_r (1 + sum n (theta - 1)^t)
+ *   MELTING_SIMON       p = p_r + sum n (theta^t - 1), n in Pa */
+enum melting_form { MELTING_POWERS, MELTING_GAP_POWERS, MELTING_SIMON };
+
+struct melting_part {
+    enum melting_form form;
+    double reducing_temperature, reducing_pressure; /* K, Pa */
+    size_t count;
+    const double (*terms)[2];                         /* n, t */
+    double smallest_temperature, largest_temperature; /* K */
+};
+
 struct solid_spec {
     enum sublimation_form form;
     double reducing_temperature, reducing_pressure; /* K, Pa */
@@ -120,6 +134,8 @@ struct solid_spec {
     const double (*terms)[2];                         /* n, t */
     double smallest_temperature, largest_temperature; /* K, of the line; the latter is the triple point */
     double molar_volume;                              /* m3/mol */
+    size_t melting_count;                             /* 0: no melting line is known */
+    const struct melting_part *melting;
 };
 
 /* Parameters of a component that belong to one cubic equation alone. A member set to zero (or not given) is left out
