@@ -78,11 +78,22 @@ static double mass_of(const struct random_draw *draw, const double n[])
     return mass;
 }
 
+/* An amount may miss by what the steps allow: their tolerance, of all that was there. */
+static double slack_of(const struct random_draw *draw)
+{
+    double amount = 0.0;
+    for (size_t i = 0; i < draw->count; i++) {
+        amount += draw->n[i];
+    }
+    return 10.0 * draw->task.tolerance * amount;
+}
+
 static bool is_balanced(const struct random_draw *draw, const struct draw_state *at)
 {
+    const double slack = slack_of(draw);
     double drawn = 0.0;
     for (size_t i = 0; i < draw->count; i++) {
-        if (!(at->amounts[i] >= 0.0 && at->amounts[i] <= draw->n[i] * (1.0 + 1e-9) && at->drawn[i] >= 0.0)) {
+        if (!(at->amounts[i] >= 0.0 && at->amounts[i] <= draw->n[i] + slack && at->drawn[i] >= 0.0)) {
             return false;
         }
         drawn += at->drawn[i];

@@ -468,6 +468,12 @@ const struct case_charge *make_charge(struct elaboration *e, const char *name, c
 /* A statement that is a word and one name (`fluid propane`): the name, or NULL after a message. */
 const struct expression *read_one_name(struct elaboration *e, const struct statement *statement, const char *what);
 
+/* `stop-at` and `stop-when` of a draw-down sheet, and whether the component of the latter is one of the fluid's (false
+ * after a message): drawing.c. */
+void read_stop_at(struct elaboration *e, const struct statement *statement, struct case_sheet *sheet);
+void read_stop_when(struct elaboration *e, const struct statement *statement, struct case_sheet *sheet);
+bool check_limited(struct elaboration *e, const struct case_sheet *sheet);
+
 /* The lines of a preparation sheet: preparation.c. */
 struct addition_list {
     struct case_addition *items;

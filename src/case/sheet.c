@@ -225,39 +225,16 @@ static void read_draw(struct elaboration *e, const struct statement *statement, 
     }
 }
 
-/* `stop-at first-solid` */
-static void read_stop_at(struct elaboration *e, const struct statement *statement, void *target)
+static void read_stop_at_row(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
-    struct reading reading = read_items(e, statement);
-    const struct vocabulary_row *row = take_choice(&reading, BLOCK_STOP, "'first-liquid' or 'first-solid'");
-    if (row != NULL && finish_items(&reading)) {
-        into->sheet.drawing.stops_at_liquid = row->id == WORD_STOP_FIRST_LIQUID;
-        into->sheet.drawing.stops_at_solid = row->id == WORD_STOP_FIRST_SOLID;
-    }
+    read_stop_at(e, statement, &into->sheet);
 }
 
-/* `stop-when propane <= 40 %` */
-static void read_stop_when(struct elaboration *e, const struct statement *statement, void *target)
+static void read_stop_when_row(struct elaboration *e, const struct statement *statement, void *target)
 {
     struct sheet_target *into = target;
-    struct reading reading = read_items(e, statement);
-    const struct expression *name = take_name(&reading);
-    const struct item *relation = name == NULL ? NULL : take_item(&reading, ITEM_RELATION);
-    if (relation == NULL) {
-        report_missing(&reading, name == NULL ? "the name of a component" : "'<=' or '>=' and a fraction");
-        return;
-    }
-    struct quantity *limit = &into->sheet.drawing.limit;
-    if (read_value(e, &FORM_FRACTION, "stop-when", relation->value, &limit->value) && finish_items(&reading)) {
-        limit->given = true;
-        limit->origin = origin_of(e, name->at);
-        into->sheet.drawing.limited = name->name;
-        into->sheet.drawing.is_limit_from_above =
-            relation->relation == RELATION_AT_MOST || relation->relation == RELATION_LESS;
-        add_input(e, arena_format(e->arena, "stop-when %s", shortened(e, name->name)),
-                  si_number(e->arena, limit->value), &limit->origin);
-    }
+    read_stop_when(e, statement, &into->sheet);
 }
 
 /* What one kind of sheet can show; false after a message. */
@@ -372,8 +349,8 @@ static const struct block_row ROWS[] = {
     READ_ONCE(WORD_DRAW_DOWN_DRAW, read_draw),
     READ_QUANTITY(WORD_DRAW_DOWN_TEMPERATURE, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.temperature),
     READ_QUANTITY(WORD_DRAW_DOWN_LEAST_PRESSURE, &FORM_PRESSURE, struct sheet_target, sheet.drawing.least_pressure),
-    READ_ONCE(WORD_DRAW_DOWN_STOP_AT, read_stop_at),
-    READ_ONCE(WORD_DRAW_DOWN_STOP_WHEN, read_stop_when),
+    READ_ONCE(WORD_DRAW_DOWN_STOP_AT, read_stop_at_row),
+    READ_ONCE(WORD_DRAW_DOWN_STOP_WHEN, read_stop_when_row),
     READ_QUANTITY(WORD_DRAW_DOWN_RATE, NULL, struct sheet_target, sheet.drawing.rate),
     READ_QUANTITY(WORD_DRAW_DOWN_AMBIENT, &FORM_TEMPERATURE, struct sheet_target, sheet.drawing.ambient),
     READ_QUANTITY(WORD_DRAW_DOWN_AMBIENT_CONDUCTANCE, NULL, struct sheet_target, sheet.drawing.ambient_conductance),
@@ -718,22 +695,6 @@ static void use_solids(struct elaboration *e, struct case_sheet *sheet)
 static struct location place_of_fluid(const struct sheet_target *target)
 {
     return target->fluid != NULL ? target->fluid->at : target->charge->at;
-}
-
-/* The component whose fraction ends a drawing is one of the fluid's. */
-static bool check_limited(struct elaboration *e, const struct case_sheet *sheet)
-{
-    const char *name = sheet->drawing.limited;
-    for (size_t i = 0; name != NULL && i < sheet->fluid->count; i++) {
-        if (strcmp(sheet->fluid->components[i]->name, name) == 0) {
-            return true;
-        }
-    }
-    if (name != NULL) {
-        diagnose(e->out, CODE_E205, sheet->drawing.limit.origin.at, "'%s' is no component of '%s'", shortened(e, name),
-                 shortened(e, sheet->fluid->name));
-    }
-    return name == NULL;
 }
 
 static void complete_sheet(struct elaboration *e, struct sheet_target *target)
