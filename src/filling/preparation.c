@@ -193,7 +193,7 @@ static bool set_order(struct preparation *it)
     }
     for (size_t k = 0; k + 1 < it->parents; k++) {
         const struct recipe_nature *one = &natures[it->order[k]], *next = &natures[it->order[k + 1]];
-        is_parted = is_parted && !((one->is_fuel && next->is_oxidant) || (one->is_oxidant && next->is_fuel));
+        is_parted = is_parted && recipe_may_follow(one, next);
     }
     return is_parted;
 }

@@ -15,7 +15,7 @@
 /* Parts of the content that are looked at for what condenses as it is drawn. */
 static const double PARTS_LEFT[] = {1.0, 0.75, 0.5, 0.25};
 
-enum { MOST_INPUTS = 400, FRACTION_DIGITS = 6 };
+enum { FRACTION_DIGITS = 6 };
 
 /* Composition and inputs at work. */
 struct certificate {
@@ -32,15 +32,6 @@ struct certificate {
 };
 
 /* ---- the parts --------------------------------------------------------------------------------------------------- */
-
-static double parent_molar_mass(const struct preparation *it, size_t p)
-{
-    double molar_mass = 0.0;
-    for (size_t i = 0; i < it->count; i++) {
-        molar_mass += it->parent[p][i] * it->molar_masses[i];
-    }
-    return molar_mass;
-}
 
 /* Fractions on the basis they are written on, so that their uncertainties are of that basis. */
 static struct gravimetric_part part_of(const struct preparation *it, const struct case_fluid *fluid,
@@ -89,7 +80,7 @@ static void set_parts(struct certificate *of)
 static void add_input_of(struct certificate *of, struct gravimetric_input input, const char *name, struct look look,
                          struct location at)
 {
-    if (!(input.standard > 0.0) || of->equation.input_count >= MOST_INPUTS) {
+    if (!(input.standard > 0.0)) {
         return;
     }
     const size_t k = of->equation.input_count++;
@@ -242,7 +233,13 @@ static void add_readings(struct certificate *of, const struct filled_step steps[
     struct arena *arena = it->run->arena;
     double *slopes = arena_alloc(arena, it->parents * (it->parents + 1), sizeof *slopes);
     double *by_temperature = slopes + it->parents * it->parents;
-    if (!it->made->is_by_pressure || of->is_weighed || set_slopes(it, slopes, by_temperature) != ANSWER_OK) {
+    if (!it->made->is_by_pressure || of->is_weighed) {
+        return;
+    }
+    if (set_slopes(it, slopes, by_temperature) != ANSWER_OK) {
+        sheet_add_note(it->run->result, it->run->out,
+                       "U is without the part of pressures and temperatures read: their slopes were not found");
+        it->run->result->is_undecided = true;
         return;
     }
     for (size_t k = 0; k < it->parents; k++) {
@@ -264,14 +261,26 @@ static void add_readings(struct certificate *of, const struct filled_step steps[
     }
 }
 
+/* As many as there can be: two for each addition, each share of a parent, the heel with its shares, the molar masses.
+ */
+static size_t room_for_inputs(const struct preparation *it)
+{
+    size_t room = 1 + it->count + (it->made->heel == NULL ? 0 : it->made->heel->fluid->count);
+    for (size_t p = 0; p < it->parents; p++) {
+        room += 2 + it->made->additions[p].parent->count;
+    }
+    return room;
+}
+
 static void set_inputs(struct certificate *of, const struct filled_step steps[])
 {
     const struct preparation *it = of->it;
     struct arena *arena = it->run->arena;
-    of->inputs = arena_alloc(arena, MOST_INPUTS, sizeof *of->inputs);
-    of->names = arena_alloc(arena, MOST_INPUTS, sizeof *of->names);
-    of->looks = arena_alloc(arena, MOST_INPUTS, sizeof *of->looks);
-    of->lines = arena_alloc(arena, MOST_INPUTS, sizeof *of->lines);
+    const size_t room = room_for_inputs(it);
+    of->inputs = arena_alloc(arena, room, sizeof *of->inputs);
+    of->names = arena_alloc(arena, room, sizeof *of->names);
+    of->looks = arena_alloc(arena, room, sizeof *of->looks);
+    of->lines = arena_alloc(arena, room, sizeof *of->lines);
     of->equation.inputs = of->inputs;
     add_weighings(of);
     add_readings(of, steps);

@@ -99,13 +99,13 @@ enum answer follow_steps(const struct preparation *it, struct method_run *method
 
 /* ---- tables ------------------------------------------------------------------------------------------------------ */
 
-static double mass_of_part(const struct preparation *it, size_t p, double amount)
+double parent_molar_mass(const struct preparation *it, size_t p)
 {
     double molar_mass = 0.0;
     for (size_t i = 0; i < it->count; i++) {
         molar_mass += it->parent[p][i] * it->molar_masses[i];
     }
-    return amount * molar_mass;
+    return molar_mass;
 }
 
 struct look look_weighed(const struct sheet_run *run)
@@ -156,7 +156,7 @@ void tell_steps(const struct preparation *it, const struct method_run *method, c
     }
     for (size_t k = 0; k < it->parents; k++) {
         const struct case_addition *addition = &it->made->additions[it->order[k]];
-        const double mass = mass_of_part(it, it->order[k], it->amounts[it->order[k]]);
+        const double mass = it->amounts[it->order[k]] * parent_molar_mass(it, it->order[k]);
         struct cell *row = table_add_row(run->result, table);
         running += mass;
         cell_set_text(&row[STEP_ADDITION], addition->name);
@@ -285,26 +285,28 @@ void tell_ideal_recipe(const struct preparation *it, struct method_run *method, 
 {
     double *pressures = arena_alloc(it->run->arena, it->parents + it->count, sizeof *pressures);
     double *n = pressures + it->parents;
-    const enum answer answer = fill_by_ideal(it, method, steps, pressures, n);
-    tell_ideal_pressures(it, method, steps, pressures);
-    if (answer == ANSWER_OK) {
-        tell_ideal_fractions(it, method, n);
+    if (fill_by_ideal(it, method, steps, pressures, n) != ANSWER_OK) {
+        sheet_add_note(it->run->result, it->run->out, "%s: it has no answer for a fill by ideal partial pressures.",
+                       method->name);
+        return;
     }
+    tell_ideal_pressures(it, method, steps, pressures);
+    tell_ideal_fractions(it, method, n);
 }
 
 /* ---- every vessel ------------------------------------------------------------------------------------------------ */
 
-static void tell_vessel_masses(const struct preparation *it, const char *title, const char *vessel, double times)
+static void tell_vessel_masses(const struct preparation *it, const char *title, double times)
 {
     const struct sheet_run *run = it->run;
     struct table *table = sheet_add_table(run->result, run->out, title, NULL);
-    table_add_word_column(run->result, table, vessel);
+    table_add_word_column(run->result, table, "addition");
     table_add_column(run->result, table, "mass-to-add", look_weighed(run));
     double sum = 0.0;
     for (size_t k = 0; k < it->parents; k++) {
         const size_t p = it->order[k];
         struct cell *row = table_add_row(run->result, table);
-        const double mass = times * mass_of_part(it, p, it->amounts[p]);
+        const double mass = times * it->amounts[p] * parent_molar_mass(it, p);
         cell_set_text(&row[0], it->made->additions[p].name);
         cell_set(&row[1], mass);
         sum += mass;
@@ -320,13 +322,13 @@ void tell_all_vessels(const struct preparation *it)
     const struct sheet_run *run = it->run;
     if (it->made->together > 1) {
         tell_vessel_masses(it, arena_format(run->arena, "bundle of %zu, filled together", it->made->together),
-                           "addition", (double)it->made->together);
+                           (double)it->made->together);
     }
     for (size_t k = 0; k < it->made->further_count; k++) {
         const struct case_further *further = &it->made->further[k];
         const double ratio = further->vessel->water_capacity.value / it->volume;
         tell_vessel_masses(
             it, arena_format(run->arena, "%zu of vessel %s, together", further->number, further->vessel->name),
-            "addition", ratio * (double)further->number);
+            ratio * (double)further->number);
     }
 }

@@ -41,6 +41,9 @@ struct filled_step {
 enum answer filled_at(const struct preparation *it, struct method_run *method, double temperature, const double n[],
                       struct filled_state *out);
 
+/* kg/mol of a parent. */
+double parent_molar_mass(const struct preparation *it, size_t p);
+
 /* As the balance of a hall shows a mass. */
 struct look look_weighed(const struct sheet_run *run);
 

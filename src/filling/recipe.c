@@ -24,7 +24,7 @@ static double product_of(const double a[], const double b[], size_t count)
 /* One row for each component of the target but the rest,
  *   sum_p a_p (X_pi - x_i) = x_i H - h_i, by x_i and the amount of the whole,
  * and one for the mass, sum_p a_p M_p = m - m_heel; a in parts of the whole. */
-static size_t set_equations(const struct recipe_task *task, double scale, gsl_matrix *A, gsl_vector *b, bool is_square)
+static void set_equations(const struct recipe_task *task, double scale, gsl_matrix *A, gsl_vector *b, bool is_square)
 {
     double heel = 0.0;
     size_t row = 0;
@@ -46,8 +46,7 @@ static size_t set_equations(const struct recipe_task *task, double scale, gsl_ma
         gsl_matrix_set(A, row, p,
                        weight * product_of(task->parent[p], task->molar_masses, task->count) * scale / task->mass);
     }
-    gsl_vector_set(b, row++, weight * (1.0 - product_of(task->heel, task->molar_masses, task->count) / task->mass));
-    return row;
+    gsl_vector_set(b, row, weight * (1.0 - product_of(task->heel, task->molar_masses, task->count) / task->mass));
 }
 
 static bool is_independent(const gsl_matrix *QR, size_t parents)
@@ -121,9 +120,9 @@ static bool is_after(const struct recipe_nature *one, const struct recipe_nature
     return one->critical_temperature < other->critical_temperature;
 }
 
-static bool may_stand_together(const struct recipe_nature *one, const struct recipe_nature *other)
+bool recipe_may_follow(const struct recipe_nature *one, const struct recipe_nature *next)
 {
-    return !((one->is_fuel && other->is_oxidant) || (one->is_oxidant && other->is_fuel));
+    return !((one->is_fuel && next->is_oxidant) || (one->is_oxidant && next->is_fuel));
 }
 
 /* Moves the parent at `from` to stand at `to`, before those in between. */
@@ -144,7 +143,7 @@ bool recipe_order(const struct recipe_nature natures[], size_t count, size_t ord
         order[place] = i;
     }
     for (size_t i = 0; i + 1 < count; i++) {
-        if (may_stand_together(&natures[order[i]], &natures[order[i + 1]])) {
+        if (recipe_may_follow(&natures[order[i]], &natures[order[i + 1]])) {
             continue;
         }
         size_t k = i + 2;

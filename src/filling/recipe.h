@@ -34,6 +34,9 @@ struct recipe_nature {
     bool is_fuel, is_oxidant, is_balance;
 };
 
+/* A fuel and an oxidant never follow one another. */
+bool recipe_may_follow(const struct recipe_nature *one, const struct recipe_nature *next);
+
 /* Sets order[count]: the parents by falling critical temperature, the balance gas last; a fuel and an oxidant next to
  * one another are parted by the parent nearest behind that is neither. False where none is left to part them. */
 bool recipe_order(const struct recipe_nature natures[], size_t count, size_t order[]);
