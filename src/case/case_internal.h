@@ -359,7 +359,8 @@ const char *si_value_text(struct elaboration *e, const struct value *value);
 const char *si_number(struct arena *arena, double value);
 const char *base_unit(struct dimension dimension, struct arena *arena);
 
-/* Adds a line of the inputs when the place is in one of the user's own files. */
+/* Whether the place is in one of the user's own files; a line of the inputs is added only then. */
+bool is_input(const struct origin *origin);
 void add_input(struct elaboration *e, const char *name, const char *si, const struct origin *origin);
 void finish_inputs(struct elaboration *e);
 

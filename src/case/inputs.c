@@ -197,9 +197,14 @@ const char *si_value_text(struct elaboration *e, const struct value *value)
     return with_unit(e, value->si, value->sort, value->dimension);
 }
 
+bool is_input(const struct origin *origin)
+{
+    return origin->kind == ORIGIN_DECK && origin->at.file != NULL;
+}
+
 void add_input(struct elaboration *e, const char *name, const char *si, const struct origin *origin)
 {
-    if (origin->kind != ORIGIN_DECK || origin->at.file == NULL) {
+    if (!is_input(origin)) {
         return;
     }
     *ARENA_APPEND(e->arena, &e->inputs) =

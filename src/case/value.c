@@ -389,6 +389,8 @@ bool take_quantity(struct reading *reading, const struct quantity_form *form, co
         found.overridden = before;
     }
     *into = found;
-    add_input(reading->e, name, si_text(reading->e, form, found.value), &found.origin);
+    if (is_input(&found.origin)) { /* the library's many values are not worth their text */
+        add_input(reading->e, name, si_text(reading->e, form, found.value), &found.origin);
+    }
     return true;
 }

@@ -32,16 +32,43 @@ static void write_fixed(char text[NUMBER_BYTES], double value, int decimals)
     }
 }
 
+/* "-d.ddde+xx" becomes "-ddd.d", "-ddd000" or "-0.00dddd"; places that the digits do not reach are zeros. */
+static void write_without_power(char text[NUMBER_BYTES], long exponent)
+{
+    char digits[NUMBER_BYTES];
+    const bool is_negative = text[0] == '-';
+    const size_t dot = 1 + (size_t)is_negative, end = strcspn(text, "e");
+    const size_t after = end > dot ? end - dot - 1 : 0; /* of the point */
+    const size_t before_point = exponent < 0 ? 0 : (size_t)exponent + 1;
+    digits[0] = text[dot - 1];
+    memcpy(digits + 1, text + dot + 1, after);
+    const size_t count = 1 + after;
+    char *to = text + is_negative;
+    for (size_t k = 0; k < before_point; k++) {
+        *to++ = k < count ? digits[k] : '0';
+    }
+    if (exponent < 0) {
+        *to++ = '0';
+    }
+    if (count > before_point) {
+        *to++ = '.';
+    }
+    for (long k = exponent + 1; k < 0; k++) {
+        *to++ = '0';
+    }
+    for (size_t k = before_point; k < count; k++) {
+        *to++ = digits[k];
+    }
+    *to = '\0';
+}
+
 static void write_significant(char text[NUMBER_BYTES], double value, int digits)
 {
     snprintf(text, NUMBER_BYTES, "%.*e", at_most(digits, MOST_DIGITS) - 1, value);
     const long exponent = strtol(strchr(text, 'e') + 1, NULL, 10);
-    if (exponent < -MOST_LEADING_ZEROS || (exponent >= MOST_PLACES_FILLED && exponent >= digits)) {
-        return;
+    if (exponent >= -MOST_LEADING_ZEROS && (exponent < MOST_PLACES_FILLED || exponent < digits)) {
+        write_without_power(text, exponent);
     }
-    const long decimals = at_most(digits, MOST_DIGITS) - 1 - exponent;
-    /* Read back, so that the places the digits do not reach are zeros. */
-    snprintf(text, NUMBER_BYTES, "%.*f", decimals > 0 ? (int)decimals : 0, strtod(text, NULL));
 }
 
 /* A negative number that rounds to nothing must not keep its sign. */
