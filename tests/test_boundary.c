@@ -528,7 +528,6 @@ static void no_pair_is_missed_beside_the_cricondentherm(void **state)
     arena_free(arena);
 }
 
-/* Just inside a stable boundary the flash finds two phases, just outside one. */
 /* Lines traced from either end of one curve meet it twice; a point is told once all the same. */
 static void no_point_is_told_twice(void **state)
 {
@@ -562,6 +561,7 @@ static void no_point_is_told_twice(void **state)
     arena_free(arena);
 }
 
+/* Just inside a stable boundary the flash finds one phase more than just outside, on the side that the point says. */
 static void flashes_change_their_phases_at_the_boundary(void **state)
 {
     (void)state;
@@ -591,6 +591,7 @@ static void flashes_change_their_phases_at_the_boundary(void **state)
                 phases[side] = place.split->phase_count;
             }
             assert_int_not_equal(phases[0], phases[1]);
+            assert_true(list->point[i]->opens == (phases[1] > phases[0]));
             points++;
         }
     }

@@ -171,7 +171,7 @@ static bool is_trivial(const struct boundary_state *b)
 /* dX by the held unknown, from the Jacobian at the solution. */
 static bool set_slope(struct boundary_state *b, size_t held)
 {
-    if (b->settable == NULL) {
+    if (b->slope == NULL) {
         return true;
     }
     for (size_t a = 0; a < b->size; a++) {
@@ -249,6 +249,18 @@ static enum answer test_beside(struct boundary_state *b, const struct boundary_p
     return answer;
 }
 
+/* The incipient phase touches the tangent plane of the feed. Being a stationary point its distance moves with pressure
+ * as it would at constant composition: by the sum of w_i (d ln phi_i(w) / dp - d ln phi_i(z) / dp). */
+static bool gains_with_pressure(const struct equilibrium_workspace *ws)
+{
+    double slope = 0.0;
+    for (size_t a = 0; a < ws->active_count; a++) {
+        const size_t i = ws->active[a];
+        slope += ws->W[i] * (ws->trial->dln_phi_dp[i] - ws->reference->dln_phi_dp[i]);
+    }
+    return slope < 0.0;
+}
+
 enum answer boundary_report(struct boundary_state *b, struct boundary_point *out)
 {
     struct equilibrium_workspace *ws = b->ws;
@@ -259,6 +271,7 @@ enum answer boundary_report(struct boundary_state *b, struct boundary_point *out
     out->incipient_volume = b->incipient_volume;
     out->kind = b->incipient_volume < b->feed_volume ? BOUNDARY_DEW : BOUNDARY_BUBBLE;
     out->residual = b->residual;
+    out->opens = gains_with_pressure(ws);
     for (size_t i = 0; i < ws->count; i++) {
         out->incipient[i] = 0.0;
     }

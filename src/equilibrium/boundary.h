@@ -22,6 +22,7 @@ struct boundary_point {
     double residual;                      /* largest difference of ln f */
     bool is_stable; /* the tangent-plane test found nothing below the feed: else the boundary is a metastable one */
     double smallest_tpd;
+    bool opens; /* at this temperature the incipient phase gains on the feed with rising pressure: two phases above */
 };
 
 struct boundary_point *boundary_point_create(size_t count, struct arena *arena);

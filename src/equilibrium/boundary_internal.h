@@ -7,11 +7,11 @@
 /* Unknowns X: ln K_i of the components present, then ln T, then ln p. One of them is held at a value. */
 struct boundary_state {
     const struct fluid_at_t *at_t;
-    struct fluid_at_t *settable; /* the same, where the temperature may change; else NULL, and slopes are not wanted */
+    struct fluid_at_t *settable; /* the same, where the temperature may change; else NULL */
     struct equilibrium_workspace *ws;
     size_t size;                          /* active_count + 2 */
     double *X;                            /* [size] */
-    double *slope;                        /* [size], dX by the held unknown */
+    double *slope;                        /* [size], dX by the held unknown; NULL where it is not wanted */
     double residual;                      /* largest of the equations */
     double feed_volume, incipient_volume; /* m3/mol of the last evaluation */
     double expected_feed,
@@ -20,7 +20,7 @@ struct boundary_state {
     int iterations;
 };
 
-/* Prepares for the feed in ws. X and slope are the caller's, [count + 2]; the slope may be NULL without settable. */
+/* Prepares for the feed in ws. X and slope are the caller's, [count + 2]. */
 void boundary_begin(struct boundary_state *b, const struct fluid_at_t *at_t, struct fluid_at_t *settable,
                     struct equilibrium_workspace *ws, double *X, double *slope);
 

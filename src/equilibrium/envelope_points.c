@@ -42,6 +42,16 @@ static void interpolate_volumes(struct boundary_state *b, const struct envelope 
     b->expected_incipient = e->incipient_volume[k] * pow(e->incipient_volume[k + 1] / e->incipient_volume[k], part);
 }
 
+/* The line that point k of the envelope belongs to. */
+static const struct envelope_line *line_of(const struct envelope *e, size_t k)
+{
+    const struct envelope_line *line = e->line;
+    while (k >= line->first + line->count) {
+        line++;
+    }
+    return line;
+}
+
 /* `part` of the way from point k of the envelope to the next. */
 static void interpolate(struct boundary_state *b, const struct envelope *e, size_t k, double part)
 {
@@ -50,6 +60,39 @@ static void interpolate(struct boundary_state *b, const struct envelope *e, size
         b->X[c] = before[c] + part * (after[c] - before[c]);
     }
     interpolate_volumes(b, e, k, part);
+}
+
+/* Gaps between the points of a curve are no less than this part of the middle one's: what rounding leaves of closer
+ * points would bend it. */
+#define EVEN_ENOUGH 0.05
+
+/* Whether the points around k and k + 1 belong to their line, and unknown `a` changes one way from each to the next. */
+static bool has_neighbours(const struct envelope *e, size_t k, size_t a)
+{
+    const struct envelope_line *line = line_of(e, k);
+    if (k == line->first || k + 2 >= line->first + line->count) {
+        return false;
+    }
+    const double gap = envelope_point_at(e, k + 1)[a] - envelope_point_at(e, k)[a];
+    return (envelope_point_at(e, k)[a] - envelope_point_at(e, k - 1)[a]) / gap > EVEN_ENOUGH &&
+           (envelope_point_at(e, k + 2)[a] - envelope_point_at(e, k + 1)[a]) / gap > EVEN_ENOUGH;
+}
+
+/* The same by the cubic through these and their neighbours, told by unknown `a`. */
+static void interpolate_cubically(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value)
+{
+    const double *node[] = {envelope_point_at(e, k - 1), envelope_point_at(e, k), envelope_point_at(e, k + 1),
+                            envelope_point_at(e, k + 2)};
+    double weight[] = {1.0, 1.0, 1.0, 1.0};
+    for (size_t i = 0; i < 4; i++) {
+        for (size_t j = 0; j < 4; j++) {
+            weight[i] *= i == j ? 1.0 : (value - node[j][a]) / (node[i][a] - node[j][a]);
+        }
+    }
+    for (size_t c = 0; c < b->size; c++) {
+        b->X[c] = weight[0] * node[0][c] + weight[1] * node[1][c] + weight[2] * node[2][c] + weight[3] * node[3][c];
+    }
+    interpolate_volumes(b, e, k, (value - node[1][a]) / (node[2][a] - node[1][a]));
 }
 
 /* The unknown that changes most between the two points. */
@@ -200,16 +243,6 @@ static bool is_beside(const struct boundary_state *b, const struct envelope *e, 
     return true;
 }
 
-/* The line that point k of the envelope belongs to. */
-static const struct envelope_line *line_of(const struct envelope *e, size_t k)
-{
-    const struct envelope_line *line = e->line;
-    while (k >= line->first + line->count) {
-        line++;
-    }
-    return line;
-}
-
 /* Two points on either side of the critical point: the curve's error is then of the eighth order. The very closest are
  * passed over, for what rounding leaves of them is more than that. */
 static bool take_wide_curve(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value)
@@ -317,16 +350,30 @@ static enum answer solve_near_critical(struct boundary_state *b, const struct en
                                                          : solve_at_critical(b, held, before, after, a, value);
 }
 
+/* Newton's steps from between the points; nobody asks for the slope of what they find. */
+static enum answer solve_directly(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value)
+{
+    double *const slope = b->slope;
+    const double before = envelope_point_at(e, k)[a], after = envelope_point_at(e, k + 1)[a];
+    if (has_neighbours(e, k, a)) {
+        interpolate_cubically(b, e, k, a, value);
+    } else {
+        interpolate(b, e, k, (value - before) / (after - before));
+    }
+    b->X[a] = value;
+    b->slope = NULL;
+    const enum answer answer = boundary_solve(b, a, MOST_STEPS);
+    b->slope = slope;
+    return answer;
+}
+
 /* Between points k and k + 1 of the envelope unknown `a` passes `value`. */
 static enum answer solve_between(struct boundary_state *b, const struct envelope *e, size_t k, size_t a, double value,
                                  struct boundary_point *out)
 {
-    const double before = envelope_point_at(e, k)[a], after = envelope_point_at(e, k + 1)[a];
     enum answer answer = ANSWER_FAILED;
     if (!is_closely_across(b, envelope_point_at(e, k), envelope_point_at(e, k + 1))) {
-        interpolate(b, e, k, (value - before) / (after - before));
-        b->X[a] = value;
-        answer = boundary_solve(b, a, MOST_STEPS);
+        answer = solve_directly(b, e, k, a, value);
     }
     if (answer != ANSWER_OK || !is_beside(b, e, k)) {
         answer = solve_near_critical(b, e, k, a, value);

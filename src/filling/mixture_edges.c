@@ -22,8 +22,6 @@
 /* Parts of the densest state that the trials end at. */
 #define SHORT_OF_DENSEST 0.9995
 #define EDGE_TOLERANCE   1e-11 /* relative, of the molar volume */
-/* Molar volumes by this factor beside an edge lie clearly on one side of it. */
-#define BESIDE_EDGE 1.3
 /* A dew point below the thinnest pressure is estimated, and looked for within these parts of its volume: where the
  * whole is as good as ideal there, and where it is not quite. */
 #define AT_ESTIMATE     1e-8
@@ -174,8 +172,7 @@ static enum answer scan_edges(struct method_run *method, struct edge_list *list)
     return answer == ANSWER_NO_SUCH_ROOT ? ANSWER_OK : answer;
 }
 
-/* The stable points of the envelope, lowest pressure first: one phase ends at the first, begins again at the second,
- * and so on. They follow what the list holds. */
+/* The stable points of the envelope, lowest pressure first. They follow what the list holds. */
 static void append_points(const struct mixture_work *work, const struct boundary_list *points, struct edge_list *list)
 {
     for (size_t i = 0; i < points->count && list->count < MOST_EDGES; i++) {
@@ -184,7 +181,7 @@ static void append_points(const struct mixture_work *work, const struct boundary
             continue;
         }
         struct phase_edge *edge = &list->items[list->count];
-        edge->opens = list->count % 2 == 0;
+        edge->opens = point->opens;
         edge->other_is_lighter = point->kind == BOUNDARY_BUBBLE;
         edge->pressure = point->pressure;
         edge->molar_volume = point->feed_volume;
@@ -213,31 +210,23 @@ static void edges_of_points(struct method_run *method, const struct boundary_lis
     append_points(method->mixture, points, list);
 }
 
-/* Whether the fluid is one phase below, between and above the edges just where they say: a state of each stretch is
- * tested. */
+/* Whether one phase ends at the first edge, begins again at the second, and so on. Each edge, a stable point, says by
+ * itself on which side of it the second phase is; of each stretch between two a state is tested. */
 static bool agrees_with_stability(struct method_run *method, const struct edge_list *list)
 {
     struct edge_search search = {.method = method};
-    const double smallest = smallest_molar_volume(method) / SHORT_OF_DENSEST;
-    for (size_t i = 0; i <= list->count; i++) {
-        const double thinner = i == 0 ? BESIDE_EDGE * list->items[0].molar_volume : list->items[i - 1].molar_volume;
-        const double denser =
-            i == list->count ? list->items[i - 1].molar_volume / BESIDE_EDGE : list->items[i].molar_volume;
+    for (size_t i = 0; i < list->count; i++) {
+        const double denser = list->items[i].molar_volume;
         double side;
-        const double middle = sqrt(thinner * denser);
-        if (!(thinner > denser)) {
+        if (list->items[i].opens != (i % 2 == 0)) {
             return false;
         }
-        if (middle <= smallest) {
+        if (i == 0) {
             continue;
         }
-        if (stable_side(&search, middle, &side) != ANSWER_OK) {
-            if (i == 0) {
-                return false; /* that nothing condenses below the first dew point is never taken on trust */
-            }
-            continue;
-        }
-        if ((side > 0.0) != (i % 2 == 0)) {
+        const double thinner = list->items[i - 1].molar_volume;
+        if (!(thinner > denser) ||
+            (stable_side(&search, sqrt(thinner * denser), &side) == ANSWER_OK && (side > 0.0) != (i % 2 == 0))) {
             return false;
         }
     }
