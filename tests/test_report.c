@@ -51,6 +51,12 @@ static void numbers_are_shown_in_the_looks_unit_and_digits(void **state)
         {24790.4, {"1", {"1", 1.0, 0.0}, -3}, "24800"},
         {1.5e-7, {"1", {"1", 1.0, 0.0}, -3}, "1.50e-07"},
         {2.5e11, {"1", {"1", 1.0, 0.0}, -3}, "2.50e+11"},
+        {-1.25e-4, {"1", {"1", 1.0, 0.0}, -2}, "-0.00013"}, /* -1.25e-4 lies a hair further from zero as a double */
+        {9999999.6, {"1", {"1", 1.0, 0.0}, -7}, "1.000000e+07"},
+        {9999999.4, {"1", {"1", 1.0, 0.0}, -7}, "9999999"},
+        {7.0, {"1", {"1", 1.0, 0.0}, -1}, "7"},
+        {7345678.0, {"1", {"1", 1.0, 0.0}, -1}, "7000000"},
+        {-123456789.25, {"1", {"1", 1.0, 0.0}, -12}, "-123456789.250"},
         {1e308, {"1", {"1", 1.0, 0.0}, 2}, "1.000000000e+308"},
         {1.0, {"1", {"1", 1e-308, 0.0}, 17}, "1.000000000e+308"},
         {-1e308, {"1", {"1", 1e-308, 0.0}, 1}, PAGE_DASH},
@@ -314,6 +320,27 @@ static void the_listing_has_every_section_in_order(void **state)
     assert_int_equal(golden_wide_line(out.bytes, PAGE_WIDTH), 0);
 }
 
+/* What rounding leaves is not told digit by digit: it would change with the order of operations. */
+static void residuals_are_told_no_closer_than_rounding_lets_them(void **state)
+{
+    struct result *result = result_create(*state);
+    struct result_sheet *sheet = result_add_sheet(result, "saturation", NULL);
+    struct table *table = sheet_add_table(result, sheet, "equality of the fugacities", NULL);
+    table_add_residual_column(result, table, "difference");
+    const double residuals[] = {3.1e-15, 0.0, 4.56e-11, (double)NAN};
+    for (size_t i = 0; i < sizeof residuals / sizeof *residuals; i++) {
+        cell_set(table_add_row(result, table), residuals[i]);
+    }
+    struct text out = {.arena = *state};
+    report_listing(result, &out);
+    const char *rows = strstr(out.bytes, "difference");
+    assert_non_null(rows);
+    const char *first = strstr(rows, "< 1.0e-12"), *second = first == NULL ? NULL : strstr(first + 1, "< 1.0e-12");
+    assert_non_null(second);
+    assert_non_null(strstr(second, "4.6e-11"));
+    assert_null(strstr(rows, "e-15"));
+}
+
 static void an_empty_result_is_a_listing_too(void **state)
 {
     struct text out = {.arena = *state};
@@ -519,6 +546,7 @@ int main(void)
         cmocka_unit_test_setup_teardown(broken_bytes_and_control_characters_do_not_reach_the_page, begin, end),
         cmocka_unit_test_setup_teardown(wrapping_breaks_at_blanks_and_cuts_only_longer_words, begin, end),
         cmocka_unit_test_setup_teardown(the_listing_has_every_section_in_order, begin, end),
+        cmocka_unit_test_setup_teardown(residuals_are_told_no_closer_than_rounding_lets_them, begin, end),
         cmocka_unit_test_setup_teardown(an_empty_result_is_a_listing_too, begin, end),
         cmocka_unit_test_setup_teardown(no_line_is_wider_than_the_page_or_ends_in_a_blank, begin, end),
         cmocka_unit_test_setup_teardown(the_same_tree_gives_the_same_bytes, begin, end),

@@ -103,7 +103,7 @@ static struct table *begin_evidence(const struct sheet_run *run, const struct me
     table_add_column(result, table, "phases", look_ratio(0));
     table_add_column(result, table, "tangent-plane-distance", look_ratio(-3));
     table_add_column(result, table, "trial-phases", look_ratio(0));
-    table_add_column(result, table, "ln-fugacity-difference", look_ratio(-2));
+    table_add_residual_column(result, table, "ln-fugacity-difference");
     table_add_column(result, table, "gibbs-energy-gain", look_ratio(-4));
     return table;
 }

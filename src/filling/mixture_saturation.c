@@ -79,7 +79,7 @@ static struct table *begin_evidence(const struct sheet_run *run, const struct me
     struct table *table = sheet_add_table(result, run->out, "equality of the fugacities, and stability", method->name);
     table_add_column(result, table, "temperature", look_found_temperature(run));
     table_add_column(result, table, "pressure", look_significant(look_pressure(run), DIGITS));
-    table_add_column(result, table, "ln-fugacity-difference", look_ratio(-2));
+    table_add_residual_column(result, table, "ln-fugacity-difference");
     table_add_column(result, table, "tangent-plane-distance", look_ratio(-3));
     table_add_word_column(result, table, "whole-is");
     return table;

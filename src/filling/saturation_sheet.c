@@ -260,7 +260,7 @@ static void add_evidence_table(const struct sheet_run *run, const struct method_
     table_add_column(result, table, "vapour-compressibility-factor", look_ratio(7));
     table_add_column(result, table, "ln-fugacity-coefficient", look_ratio(8));
     table_add_column(result, table, "fugacity", significant_pressure(run));
-    table_add_column(result, table, "ln-fugacity-difference", look_ratio(-2));
+    table_add_residual_column(result, table, "ln-fugacity-difference");
     for (size_t i = 0; i < sweep_of(run)->count; i++) {
         const struct saturation *point = &points[i].saturation;
         if (points[i].answer != ANSWER_OK) {

@@ -10,7 +10,9 @@ static void set_cell(struct grid *grid, struct grid_cell *to, const struct colum
 {
     switch (cell->kind) {
     case CELL_NUMBER:
-        to->text = number_shown(grid->arena, &column->look, cell->number);
+        to->text = fabs(cell->number) < column->least
+                       ? arena_format(grid->arena, "< %s", number_shown(grid->arena, &column->look, column->least))
+                       : number_shown(grid->arena, &column->look, cell->number);
         to->is_number = isfinite(cell->number);
         break;
     case CELL_TEXT:

@@ -6,6 +6,10 @@
 #include <stdio.h>
 #include <string.h>
 
+/* Which of the last digits a residual has below this depends on the order of operations. */
+#define LEAST_RESIDUAL 1e-12
+enum { RESIDUAL_DIGITS = 2 };
+
 static const char *format_text(struct arena *arena, const char *format, va_list arguments)
     __attribute__((format(printf, 2, 0)));
 
@@ -168,6 +172,12 @@ void table_add_column(struct result *result, struct table *table, const char *na
     table->columns = arena_grow(result->arena, table->columns, &table->column_capacity, table->column_count + 1,
                                 sizeof *table->columns);
     table->columns[table->column_count++] = (struct column){.name = name, .look = look};
+}
+
+void table_add_residual_column(struct result *result, struct table *table, const char *name)
+{
+    table_add_column(result, table, name, (struct look){"1", {"1", 1.0, 0.0}, -RESIDUAL_DIGITS});
+    table->columns[table->column_count - 1].least = LEAST_RESIDUAL;
 }
 
 void table_add_word_column(struct result *result, struct table *table, const char *name)

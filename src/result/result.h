@@ -59,6 +59,7 @@ struct cell {
 struct column {
     const char *name; /* "temperature" */
     struct look look; /* si_unit NULL: a column of words */
+    double least;     /* SI: listings say of what is nearer to zero that it is less than this; 0: they tell it */
 };
 
 struct table {
@@ -258,6 +259,8 @@ struct requirement *sheet_add_requirement(struct result *result, struct result_s
 
 /* Columns first, then rows; table_add_row gives the row's cells, all CELL_EMPTY. */
 void table_add_column(struct result *result, struct table *table, const char *name, struct look look);
+/* What equations leave, dimensionless: in a listing never told more closely than rounding lets it be. */
+void table_add_residual_column(struct result *result, struct table *table, const char *name);
 void table_add_word_column(struct result *result, struct table *table, const char *name);
 struct cell *table_add_row(struct result *result, struct table *table);
 void cell_set(struct cell *cell, double number); /* a number that is not finite becomes CELL_EMPTY */
