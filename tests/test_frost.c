@@ -98,6 +98,110 @@ static void a_solid_is_in_equilibrium_with_its_vapour(void **state)
     arena_free(arena);
 }
 
+/* ---- above the triple point -------------------------------------------------------------------------------------- */
+
+/* Enthalpies of fusion at the triple point, J/mol: common handbook values, from memory. */
+static const struct {
+    const char *name;
+    double enthalpy_of_fusion;
+} MELTING[] = {
+    {"carbon-dioxide", 9020.0}, {"methane", 939.0}, {"argon", 1180.0}, {"nitrogen", 720.0}, {"ethylene", 3350.0}};
+
+/* One published line gives the heat of sublimation, the other, by Clapeyron's equation, that of fusion. The latter
+ * carries the error of the solid's volume, itself from memory, divided by its small step to the liquid's. */
+static void both_lines_know_of_one_solid(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    for (size_t k = 0; k < COUNT(MELTING); k++) {
+        const struct measured_mixture m = measured_mixture_create("multi-fluid", &MELTING[k].name, 1, arena);
+        const struct solid_spec *solid = m.spec->pure[0]->solid;
+        assert_non_null(solid->melting_from_triple);
+        const double triple = solid->largest_temperature, one = 1.0;
+        double slope;
+        const double p = solid_sublimation_pressure(solid, triple, &slope);
+        struct solid_state below, above;
+        struct phase *liquid = phase_create(1, arena);
+        assert_int_equal(fluid_set_t(m.at_t, m.fluid, triple * (1.0 - 1e-9)), ANSWER_OK);
+        assert_int_equal(solid_at(solid, m.at_t, p, &below), ANSWER_OK);
+        assert_int_equal(below.line, SOLID_SUBLIMES);
+        assert_int_equal(fluid_set_t(m.at_t, m.fluid, triple * (1.0 + 1e-4)), ANSWER_OK);
+        assert_int_equal(solid_at(solid, m.at_t, p, &above), ANSWER_OK);
+        assert_int_equal(above.line, SOLID_MELTS);
+        assert_int_equal(phase_tp(m.at_t, above.line_pressure, &one, BRANCH_LIQUID, PHASE_RESIDUAL, liquid), ANSWER_OK);
+        const double RT = m.fluid->gas_constant * triple;
+        const double fusion = RT * liquid->residual_enthalpy_rt - above.departure_enthalpy;
+        const double by_sublimation = RT * liquid->residual_enthalpy_rt - below.departure_enthalpy;
+        assert_near(above.ln_fugacity - below.ln_fugacity, 0.0, 3e-3, "a reference equation hardly steps");
+        assert_close(by_sublimation, MELTING[k].enthalpy_of_fusion, 0.03, MELTING[k].name);
+        assert_close(fusion, MELTING[k].enthalpy_of_fusion, 0.3, MELTING[k].name);
+    }
+    arena_free(arena);
+}
+
+/* Above the triple point too the departure enthalpy is the slope of ln f, and Poynting's factor that by pressure. */
+static void melting_solids_have_the_slopes_of_differences(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const char *const methods[] = {"multi-fluid", "peng-robinson", "lee-kesler"};
+    for (size_t k = 0; k < COUNT(MELTING) * COUNT(methods); k++) {
+        const char *name = MELTING[k / COUNT(methods)].name;
+        const struct measured_mixture m = measured_mixture_create(methods[k % COUNT(methods)], &name, 1, arena);
+        const struct solid_spec *solid = m.spec->pure[0]->solid;
+        for (double share = 1.005; share < 1.0 + MELTING_FOLLOWED; share += 0.0223) {
+            const double T = share * solid->largest_temperature, h = 1e-4 * T, p = 3e7;
+            struct solid_state at, above, below, pressed;
+            if (solid_line_at(solid, true, T + h) != SOLID_MELTS) {
+                continue;
+            }
+            assert_int_equal(fluid_set_t(m.at_t, m.fluid, T + h), ANSWER_OK);
+            assert_int_equal(solid_at(solid, m.at_t, p, &above), ANSWER_OK);
+            assert_int_equal(fluid_set_t(m.at_t, m.fluid, T - h), ANSWER_OK);
+            assert_int_equal(solid_at(solid, m.at_t, p, &below), ANSWER_OK);
+            assert_int_equal(fluid_set_t(m.at_t, m.fluid, T), ANSWER_OK);
+            assert_int_equal(solid_at(solid, m.at_t, p, &at), ANSWER_OK);
+            assert_int_equal(solid_at(solid, m.at_t, 2.0 * p, &pressed), ANSWER_OK);
+            const double RT = m.fluid->gas_constant * T;
+            assert_close(at.departure_enthalpy, -RT * T * (above.ln_fugacity - below.ln_fugacity) / (2.0 * h), 1e-5,
+                         name);
+            assert_near(pressed.ln_fugacity - at.ln_fugacity, p * solid->molar_volume / RT, 1e-12, name);
+        }
+    }
+    arena_free(arena);
+}
+
+/* The line that begins at the triple point and rises is followed, and not far; the melting line of ice falls, and the
+ * ices that melt above it are others. A method without liquids keeps the sublimation line, drawn out. */
+static void lines_are_followed_as_far_as_they_serve(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const struct {
+        const char *name;
+        double temperature;
+        bool knows_liquids;
+        enum solid_line line;
+    } cases[] = {
+        {"carbon-dioxide", 216.592, true, SOLID_SUBLIMES},
+        {"carbon-dioxide", 216.593, true, SOLID_MELTS},
+        {"carbon-dioxide", 231.7, true, SOLID_MELTS},
+        {"carbon-dioxide", 231.8, true, SOLID_NOT_KNOWN},
+        {"carbon-dioxide", 220.0, false, SOLID_SUBLIMES},
+        {"carbon-dioxide", 224.0, false, SOLID_NOT_KNOWN},
+        {"ethylene", 110.0, true, SOLID_MELTS},
+        {"ethylene", 110.5, true, SOLID_NOT_KNOWN},
+        {"water", 273.2, true, SOLID_SUBLIMES},
+        {"water", 290.0, true, SOLID_NOT_KNOWN},
+        {"nitrous-oxide", 183.0, true, SOLID_SUBLIMES}, /* its triple point is at 182.33 K */
+    };
+    for (size_t i = 0; i < COUNT(cases); i++) {
+        assert_int_equal(solid_line_at(solid_of(cases[i].name, arena), cases[i].knows_liquids, cases[i].temperature),
+                         cases[i].line);
+    }
+    arena_free(arena);
+}
+
 /* ---- frost of carbon dioxide in nitrogen ------------------------------------------------------------------------- */
 
 /* The mole fraction of carbon dioxide at which the gas has the solid's fugacity, by halving. */
@@ -281,6 +385,36 @@ static void frost_begins_at_equal_fugacities(void **state)
     arena_free(arena);
 }
 
+/* Pure carbon dioxide above its triple point: its vapour and its liquid are no solid up to the melting pressure of Span
+ * and Wagner 1996. Nitrogen in it, which the solid does not take up, lowers its fugacity: the liquid freezes later, at
+ * a higher pressure. */
+static void liquids_freeze_at_their_melting_pressure(void **state)
+{
+    (void)state;
+    struct arena *arena = arena_create(NULL);
+    static const char *const names[] = {"carbon-dioxide", "nitrogen"};
+    static const char *const methods[] = {"multi-fluid", "peng-robinson"};
+    static const double z[] = {0.97, 0.03}, pure[] = {1.0};
+    for (size_t k = 0; k < COUNT(methods); k++) {
+        struct blend *alone = arena_alloc(arena, 1, sizeof *alone), *mixed = arena_alloc(arena, 1, sizeof *mixed);
+        blend_set_up(alone, methods[k], names, pure, 1, arena);
+        blend_set_up(mixed, methods[k], names, z, 2, arena);
+        const struct melting_part *part = alone->fluid.components[0]->spec.solid->melting_from_triple;
+        for (double T = 217.0; T < 226.0; T += 3.1) {
+            struct frost_limit limit;
+            const double p_melt = solid_melting_pressure(part, T);
+            assert_int_equal(frost_limit_at(&alone->fluid, &alone->method, T, &limit), ANSWER_OK);
+            assert_true(limit.forms);
+            assert_close(limit.at.pressure, p_melt, 1e-7, methods[k]);
+            assert_int_equal(frost_limit_at(&mixed->fluid, &mixed->method, T, &limit), ANSWER_OK);
+            assert_true(limit.forms && limit.at.component == 0);
+            assert_true(limit.at.pressure > 1.1 * p_melt);
+            assert_true(isnan(limit.ideal_pressure));
+        }
+    }
+    arena_free(arena);
+}
+
 /* Warm enough there is no frost; a component of which no solid is known is named below its triple point only. */
 static void what_cannot_freeze_is_told(void **state)
 {
@@ -293,8 +427,8 @@ static void what_cannot_freeze_is_told(void **state)
     struct frost_limit limit;
     assert_int_equal(frost_limit_at(&blend->fluid, &blend->method, 300.0, &limit), ANSWER_OK);
     assert_false(limit.forms);
-    assert_false(frost_is_possible(&blend->fluid, 300.0));
-    assert_true(frost_is_possible(&blend->fluid, 200.0));
+    assert_false(frost_is_possible(&blend->fluid, &blend->method, 300.0));
+    assert_true(frost_is_possible(&blend->fluid, &blend->method, 200.0));
     assert_null(frost_unknown(&blend->fluid, 200.0));
     assert_ptr_equal(frost_unknown(&blend->fluid, 80.0), blend->fluid.components[2]);
     blend->fractions[2] = 0.0;
@@ -308,9 +442,13 @@ int main(void)
         cmocka_unit_test(dry_ice_has_its_measured_vapour_pressure),
         cmocka_unit_test(slopes_are_those_of_differences),
         cmocka_unit_test(a_solid_is_in_equilibrium_with_its_vapour),
+        cmocka_unit_test(both_lines_know_of_one_solid),
+        cmocka_unit_test(melting_solids_have_the_slopes_of_differences),
+        cmocka_unit_test(lines_are_followed_as_far_as_they_serve),
         cmocka_unit_test(frost_points_in_nitrogen_are_those_measured),
         cmocka_unit_test(compressed_carbon_dioxide_holds_the_water_measured),
         cmocka_unit_test(frost_begins_at_equal_fugacities),
+        cmocka_unit_test(liquids_freeze_at_their_melting_pressure),
         cmocka_unit_test(what_cannot_freeze_is_told),
         cmocka_unit_test(compressed_air_holds_more_water_than_its_partial_pressure),
     };

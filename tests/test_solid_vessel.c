@@ -1,5 +1,6 @@
 /* Solids in the closed vessel: equal fugacities and the balance of amounts, and by returning to the state it was made
  * from. */
+#include "equilibrium/saturation.h"
 #include "equilibrium/solid_vessel.h"
 #include "support/check.h"
 #include "support/sample_fluids.h"
@@ -10,6 +11,15 @@
 
 /* Span and Wagner, J. Phys. Chem. Ref. Data 25 (1996) 1509, eq. 3.12; the volume is that of 1512 kg/m3. */
 static const double DRY_ICE_TERMS[][2] = {{-14.740846, 1.0}, {2.4327015, 1.9}, {-5.3061778, 2.9}};
+/* Their eq. 3.10. */
+static const double MELTING_TERMS[][2] = {{1955.539, 1.0}, {2055.4593, 2.0}};
+static const struct melting_part DRY_ICE_MELTING = {.form = MELTING_GAP_POWERS,
+                                                    .reducing_temperature = 216.592,
+                                                    .reducing_pressure = 517950.0,
+                                                    .count = COUNT(MELTING_TERMS),
+                                                    .terms = MELTING_TERMS,
+                                                    .smallest_temperature = 216.592,
+                                                    .largest_temperature = 330.0};
 static const struct solid_spec DRY_ICE = {.form = GAP_SERIES,
                                           .reducing_temperature = 216.592,
                                           .reducing_pressure = 517950.0,
@@ -17,7 +27,10 @@ static const struct solid_spec DRY_ICE = {.form = GAP_SERIES,
                                           .terms = DRY_ICE_TERMS,
                                           .smallest_temperature = 150.0,
                                           .largest_temperature = 216.592,
-                                          .molar_volume = 29.1e-6};
+                                          .molar_volume = 29.1e-6,
+                                          .melting_count = 1,
+                                          .melting = &DRY_ICE_MELTING,
+                                          .melting_from_triple = &DRY_ICE_MELTING};
 
 struct bench {
     struct arena *arena;
@@ -43,6 +56,17 @@ static struct bench bench_create(const char *method, const enum sample_substance
     b.ws = equilibrium_workspace_create(count, b.arena);
     b.out = solid_vessel_create(count, b.arena);
     return b;
+}
+
+/* Of an invented substance, component 2: conditions of equilibrium ask for no real one. */
+static struct former invented_solid(double fugacity, double T)
+{
+    return (struct former){.component = 2,
+                           .line = SOLID_SUBLIMES,
+                           .line_pressure = fugacity,
+                           .ln_fugacity = log(fugacity),
+                           .molar_volume = 60e-6,
+                           .poynting = 60e-6 / (8.31446261815324 * T)};
 }
 
 static struct former dry_ice(const struct bench *b, size_t component, double T)
@@ -104,6 +128,8 @@ static const struct state STATES[] = {
     {"peng-robinson", 0.98, 210.0, 12000.0, true},     {"peng-robinson", 0.0004, 120.0, 9000.0, true},
     {"peng-robinson", 0.02, 110.0, 20000.0, true},     {"peng-robinson", 1e-6, 110.0, 15000.0, false},
     {"soave-redlich-kwong", 0.3, 180.0, 2000.0, true}, {"lee-kesler", 0.3, 190.0, 5000.0, true},
+    {"peng-robinson", 0.97, 219.0, 33000.0, true},     {"peng-robinson", 0.97, 219.0, 20000.0, false},
+    {"peng-robinson", 0.9, 225.0, 34000.0, true},
 };
 
 static void solids_and_fluid_have_one_fugacity(void **unused)
@@ -153,7 +179,7 @@ static void several_solids_come_and_go(void **unused)
     static const enum sample_substance gases[] = {NITROGEN, CARBON_DIOXIDE, PROPANE};
     const double T = 190.0, volume = 4e-4;
     const struct bench b = bench_create("peng-robinson", gases, 3, T);
-    const struct former formers[] = {dry_ice(&b, 1, T), {2, log(2e3), 60e-6, 60e-6 / (8.31446261815324 * T)}};
+    const struct former formers[] = {dry_ice(&b, 1, T), invented_solid(2e3, T)};
     static const double shares[][2] = {{0.3, 0.1}, {0.3, 1e-4}, {1e-3, 0.1}, {1e-3, 1e-4}, {0.05, 0.01}};
     bool seen[2][2] = {{false, false}, {false, false}};
     for (size_t k = 0; k < COUNT(shares); k++) {
@@ -174,7 +200,7 @@ static void every_state_of_two_solids_has_an_answer(void **unused)
     static const double volumes[] = {4e-3, 4e-4, 8e-5};
     const double T = 180.0;
     const struct bench b = bench_create("peng-robinson", gases, 3, T);
-    const struct former formers[] = {dry_ice(&b, 1, T), {2, log(1.5e3), 60e-6, 60e-6 / (8.31446261815324 * T)}};
+    const struct former formers[] = {dry_ice(&b, 1, T), invented_solid(1.5e3, T)};
     size_t unanswered = 0;
     for (size_t k = 0; k < COUNT(volumes); k++) {
         for (double x = 1e-7; x < 0.5; x *= 4.7) {
@@ -220,8 +246,8 @@ static void dry_ice_alone(void **unused)
     struct pure_solid_vessel v;
     assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 1e-3, 2.0, &former, &v), ANSWER_OK);
     assert_close(v.pressure, 101325.0, 2e-3, "the sublimation point, 194.686 K, CODATA and Span and Wagner");
-    assert_close(v.vapour_amount * v.vapour_volume + v.solid_amount * v.solid_volume, 1e-3, 1e-12, "filled");
-    assert_close(v.vapour_amount + v.solid_amount, 2.0, 1e-14, "the balance");
+    assert_close(v.fluid_amount * v.fluid_volume + v.solid_amount * v.solid_volume, 1e-3, 1e-12, "filled");
+    assert_close(v.fluid_amount + v.solid_amount, 2.0, 1e-14, "the balance");
     assert_near(v.residual, 0.0, 1e-11, "equal fugacity");
     assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 1e-3, 0.01, &former, &v), ANSWER_OK);
     assert_true(v.solid_amount <= 0.0 && v.pressure < 101325.0);
@@ -229,12 +255,43 @@ static void dry_ice_alone(void **unused)
     arena_free(b.arena);
 }
 
+/* Liquid pressed onto its solid stands at the melting pressure whatever the shares; less of it does not freeze. */
+static void liquid_over_its_solid(void **unused)
+{
+    (void)unused;
+    static const enum sample_substance gas[] = {CARBON_DIOXIDE};
+    const double T = 219.0, p_melt = solid_melting_pressure(&DRY_ICE_MELTING, T);
+    const struct bench b = bench_create("peng-robinson", gas, 1, T);
+    const struct former former = dry_ice(&b, 0, T);
+    struct pure_solid_vessel v;
+    assert_int_equal(former.line, SOLID_MELTS);
+    assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 30e-6, 1.0, &former, &v), ANSWER_OK);
+    assert_true(v.solid_amount > 0.0 && v.fluid_amount > 0.0);
+    assert_close(v.pressure, p_melt, 1e-9, "Span and Wagner 1996, eq. 3.10");
+    assert_close(v.fluid_amount * v.fluid_volume + v.solid_amount * v.solid_volume, 30e-6, 1e-12, "filled");
+    assert_close(v.fluid_amount + v.solid_amount, 1.0, 1e-14, "the balance");
+    assert_near(v.residual, 0.0, 1e-11, "equal fugacity");
+    assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 1.01 * v.fluid_volume, 1.0, &former, &v), ANSWER_OK);
+    assert_true(v.solid_amount <= 0.0 && v.pressure < p_melt && v.pressure > 0.0);
+    assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 1e-3, 1.0, &former, &v), ANSWER_OK);
+    assert_true(v.solid_amount <= 0.0);
+    struct saturation saturation;
+    assert_int_equal(saturation_at_t(b.at_t, &saturation), ANSWER_OK);
+    assert_close(v.pressure, saturation.pressure, 1e-10, "vapour and liquid, no solid");
+    assert_int_equal(pure_solid_vessel_at_tv(b.at_t, 29e-6, 1.0, &former, &v), ANSWER_OUT_OF_RANGE);
+    arena_free(b.arena);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(solids_and_fluid_have_one_fugacity), cmocka_unit_test(further_solid_changes_nothing_else),
-        cmocka_unit_test(several_solids_come_and_go),         cmocka_unit_test(every_state_of_two_solids_has_an_answer),
-        cmocka_unit_test(without_solids_it_is_the_fluid),     cmocka_unit_test(dry_ice_alone),
+        cmocka_unit_test(solids_and_fluid_have_one_fugacity),
+        cmocka_unit_test(further_solid_changes_nothing_else),
+        cmocka_unit_test(several_solids_come_and_go),
+        cmocka_unit_test(every_state_of_two_solids_has_an_answer),
+        cmocka_unit_test(without_solids_it_is_the_fluid),
+        cmocka_unit_test(dry_ice_alone),
+        cmocka_unit_test(liquid_over_its_solid),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

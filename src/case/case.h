@@ -385,7 +385,6 @@ struct case_sheet {
     struct optional iteration_at; /* K */
     enum listed_policy listed;
     bool asks_of_solids;   /* a rule or a requirement says `no solid` */
-    bool tells_solids;     /* so it is, or temperatures are swept at which a solid is told */
     const char *assessed;  /* NULL: none */
     const char *table_csv; /* NULL: none */
     size_t entry_count;    /* entries of the fluid that are in use */
@@ -471,6 +470,14 @@ bool case_is_same_place(struct location a, struct location b);
 
 /* Whether the sheet can depend on that value at all, as far as the names of blocks tell. */
 bool case_sheet_may_depend(const struct case_sheet *sheet, const struct case_spread *spread);
+
+/* Whether the sheet tells of the component as a solid: it asks for solids, or sweeps temperatures at which there is
+ * one. */
+bool case_sheet_tells_solid(const struct case_sheet *sheet, const struct case_component *component);
+
+/* Whether the component's melting line has a say in the sheet's answers: it is shown, or swept or asked temperatures
+ * lie beside its beginning. */
+bool case_sheet_melts(const struct case_sheet *sheet, const struct case_component *component);
 
 /* One library or deck component by name, for showing; NULL when there is none. */
 const struct case_component *case_find_component(const struct deck *deck, const char *name, struct arena *arena,

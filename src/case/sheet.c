@@ -649,29 +649,6 @@ static bool any_no_solid(const struct predicate *predicates, size_t count)
     return false;
 }
 
-/* A settled-pressure sheet tells the solids at rest at the temperatures it sweeps; a saturation sheet, of a pure gas,
- * the sublimation line. */
-static bool sweeps_below(const struct case_sheet *sheet, const struct case_component *component)
-{
-    if (sheet->kind == SHEET_DRAW_DOWN && sheet->drawing.rate.given && sheet->fluid->count == 1) {
-        return component->solid != NULL;
-    }
-    const bool tells =
-        sheet->kind == SHEET_SETTLED_PRESSURE || (sheet->kind == SHEET_SATURATION && sheet->fluid->count == 1);
-    if (!tells || component->solid == NULL) {
-        return false;
-    }
-    if (sheet->show_melting) {
-        return true;
-    }
-    for (size_t i = 0; i < sheet->temperatures.count; i++) {
-        if (sheet->temperatures.values[i] < component->solid->spec.largest_temperature) {
-            return true;
-        }
-    }
-    return false;
-}
-
 /* What is known of solids counts as used where a condition speaks of them, or a table tells them. */
 static void use_solids(struct elaboration *e, struct case_sheet *sheet)
 {
@@ -680,14 +657,13 @@ static void use_solids(struct elaboration *e, struct case_sheet *sheet)
         sheet->asks_of_solids =
             sheet->asks_of_solids || any_no_solid(sheet->rules[i]->predicates, sheet->rules[i]->predicate_count);
     }
-    sheet->tells_solids = sheet->asks_of_solids;
     for (size_t i = 0; i < sheet->fluid->count; i++) {
-        sheet->tells_solids = sheet->tells_solids || sweeps_below(sheet, sheet->fluid->components[i]);
-    }
-    for (size_t i = 0; sheet->tells_solids && i < sheet->fluid->count; i++) {
-        use_solid(e, sheet->fluid->components[i]);
-        if (sheet->show_melting) {
-            use_melting(e, sheet->fluid->components[i]);
+        const struct case_component *component = sheet->fluid->components[i];
+        if (case_sheet_tells_solid(sheet, component)) {
+            use_solid(e, component);
+        }
+        if (case_sheet_melts(sheet, component)) {
+            use_melting(e, component);
         }
     }
 }

@@ -1,6 +1,8 @@
 /* Solids: what is known of a substance below its triple point. */
 #include "case/case_internal.h"
 
+#include <math.h>
+
 static const struct quantity_form FORM_SOLID_VOLUME = {
     .measure = MEASURE_MOLAR_VOLUME, .reading = READ_NUMBER, .least = 0.0, .is_least_open = true, .most = 1e-3};
 
@@ -111,6 +113,29 @@ static const char *first_lack(const struct solid_target *read)
                                      : NULL;
 }
 
+/* How near to the triple temperature a melting line begins, and up to which pressure (Pa), little for such a line: what
+ * begins there at more is the line of another form of the solid. */
+#define AT_TRIPLE_TEMPERATURE 1e-3
+#define AT_TRIPLE_PRESSURE    1e6
+
+static bool is_at(double temperature, double triple)
+{
+    return fabs(temperature / triple - 1.0) <= AT_TRIPLE_TEMPERATURE;
+}
+
+static const struct melting_part *part_from_triple(const struct solid_target *read)
+{
+    for (size_t k = 0; k < read->melting.count; k++) {
+        const struct melting_part *part = &read->melting.items[k];
+        if (is_at(part->smallest_temperature, read->largest_temperature) &&
+            is_at(part->reducing_temperature, read->largest_temperature) &&
+            part->reducing_pressure < AT_TRIPLE_PRESSURE) {
+            return part;
+        }
+    }
+    return NULL;
+}
+
 const struct case_solid *build_solid(struct elaboration *e, struct named *named)
 {
     if (named->state != NOT_BUILT) {
@@ -134,14 +159,74 @@ const struct case_solid *build_solid(struct elaboration *e, struct named *named)
         .source = read.source,
         .at = block->at,
         .molar_volume = read.molar_volume,
-        .spec = {read.form, read.line.temperature, read.line.value, read.line.count, read.line.terms,
-                 read.smallest_temperature, read.largest_temperature, read.molar_volume.value, read.melting.count,
-                 read.melting.items},
+        .spec = {.form = read.form,
+                 .reducing_temperature = read.line.temperature,
+                 .reducing_pressure = read.line.value,
+                 .count = read.line.count,
+                 .terms = read.line.terms,
+                 .smallest_temperature = read.smallest_temperature,
+                 .largest_temperature = read.largest_temperature,
+                 .molar_volume = read.molar_volume.value,
+                 .melting_count = read.melting.count,
+                 .melting = read.melting.items,
+                 .melting_from_triple = part_from_triple(&read)},
         .melting_source = read.melting_source,
     };
     named->state = trouble_so_far(e) == before ? BUILT : FAILED;
     named->built = named->state == BUILT ? solid : NULL;
     return named->built;
+}
+
+static bool may_melt(const struct case_solid *solid, double from, double to)
+{
+    const struct melting_part *part = solid == NULL ? NULL : solid->spec.melting_from_triple;
+    const double triple = part == NULL ? 0.0 : solid->spec.largest_temperature;
+    return part != NULL && to > triple && from <= fmin(part->largest_temperature, triple * (1.0 + MELTING_FOLLOWED));
+}
+
+static bool asks_beside_melting(const struct predicate *predicate, const struct case_solid *solid)
+{
+    return predicate->kind == PREDICATE_NO_SOLID && predicate->has_temperature &&
+           may_melt(solid, predicate->from, predicate->to);
+}
+
+bool case_sheet_melts(const struct case_sheet *sheet, const struct case_component *component)
+{
+    const struct case_solid *solid = component->solid;
+    bool melts = sheet->show_melting && solid != NULL && solid->spec.melting_count > 0;
+    for (size_t i = 0; sheet->kind == SHEET_SETTLED_PRESSURE && i < sheet->temperatures.count; i++) {
+        const double temperature = sheet->temperatures.values[i];
+        melts = melts || may_melt(solid, temperature, temperature);
+    }
+    for (size_t i = 0; i < sheet->requirement_count; i++) {
+        melts = melts || asks_beside_melting(&sheet->requirements[i], solid);
+    }
+    for (size_t r = 0; r < sheet->rule_count; r++) {
+        for (size_t i = 0; i < sheet->rules[r]->predicate_count; i++) {
+            melts = melts || asks_beside_melting(&sheet->rules[r]->predicates[i], solid);
+        }
+    }
+    return melts;
+}
+
+/* A settled-pressure sheet tells the solids at rest at the temperatures it sweeps; a saturation sheet, of a pure gas,
+ * the sublimation line, and the melting line where it is asked for. */
+bool case_sheet_tells_solid(const struct case_sheet *sheet, const struct case_component *component)
+{
+    const bool is_pure = sheet->fluid->count == 1;
+    if (sheet->asks_of_solids || component->solid == NULL) {
+        return sheet->asks_of_solids;
+    }
+    if (sheet->kind == SHEET_DRAW_DOWN) {
+        return sheet->drawing.rate.given && is_pure;
+    }
+    bool tells = case_sheet_melts(sheet, component);
+    if (sheet->kind == SHEET_SETTLED_PRESSURE || (sheet->kind == SHEET_SATURATION && is_pure)) {
+        for (size_t i = 0; i < sheet->temperatures.count; i++) {
+            tells = tells || sheet->temperatures.values[i] < component->solid->spec.largest_temperature;
+        }
+    }
+    return tells;
 }
 
 void use_melting(struct elaboration *e, const struct case_component *component)

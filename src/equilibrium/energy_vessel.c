@@ -41,7 +41,8 @@ static enum answer solid_above_fluid(struct energy_vessel *vessel, double temper
     struct solid_state solid;
     enum answer answer = fluid_set_t(vessel->at_t, vessel->fluid, temperature);
     answer = answer == ANSWER_OK ? saturation_at_t(vessel->at_t, &saturation) : answer;
-    answer = answer == ANSWER_OK ? solid_at(vessel->solid, vessel->at_t, saturation.pressure, &solid) : answer;
+    answer =
+        answer == ANSWER_OK ? solid_by_sublimation(vessel->solid, vessel->at_t, saturation.pressure, &solid) : answer;
     if (answer == ANSWER_OK) {
         *above = solid.ln_fugacity - (saturation.ln_phi_vapour + log(saturation.pressure));
     }
@@ -144,7 +145,7 @@ static enum answer solid_energy(const struct energy_vessel *vessel, double press
     struct solid_state solid;
     struct caloric ideal;
     const double one = 1.0;
-    enum answer answer = solid_at(vessel->solid, vessel->at_t, pressure, &solid);
+    enum answer answer = solid_by_sublimation(vessel->solid, vessel->at_t, pressure, &solid);
     answer = answer == ANSWER_OK ? caloric_ideal(vessel->at_t, pressure, &one, &ideal) : answer;
     if (answer == ANSWER_OK) {
         *energy = ideal.enthalpy + solid.departure_enthalpy - pressure * solid.molar_volume;
@@ -167,14 +168,14 @@ static enum answer add_frozen(struct energy_vessel *vessel, double amount, struc
 {
     struct former former;
     struct pure_solid_vessel frozen;
-    enum answer answer = former_at(vessel->solid, vessel->at_t, 0, &former);
+    enum answer answer = former_by_sublimation(vessel->solid, vessel->at_t, 0, &former);
     answer =
         answer == ANSWER_OK ? pure_solid_vessel_at_tv(vessel->at_t, vessel->volume, amount, &former, &frozen) : answer;
     if (answer != ANSWER_OK) {
         return answer;
     }
     out->pressure = frozen.pressure;
-    answer = add_part(vessel, frozen.vapour_amount, frozen.vapour_volume, NULL, out);
+    answer = add_part(vessel, frozen.fluid_amount, frozen.fluid_volume, NULL, out);
     return answer == ANSWER_OK && frozen.solid_amount > 0.0 ? add_solid(vessel, frozen.solid_amount, out) : answer;
 }
 

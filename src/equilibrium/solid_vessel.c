@@ -7,6 +7,7 @@
  * its u reaches ln n_j, and comes when its component's fugacity in the fluid exceeds its own.
  */
 #include "equilibrium/solid_vessel.h"
+#include "equilibrium/closed_vessel.h"
 #include "equilibrium/linear.h"
 
 #include <math.h>
@@ -24,13 +25,37 @@ enum { MOST_STEPS = 60, MOST_ROUNDS = 4 * MOST_FORMERS, MOST_HALVINGS = 12 };
 #define MOST_CLIMB 0.9
 #define AIM        1e-12 /* steps go on to this while they help */
 
+static struct former former_of(const struct solid_state *unpressed, const struct fluid_at_t *pure, size_t component)
+{
+    return (struct former){
+        .component = component,
+        .line = unpressed->line,
+        .line_pressure = unpressed->line_pressure,
+        .ln_fugacity = unpressed->ln_fugacity,
+        .molar_volume = unpressed->molar_volume,
+        .poynting = unpressed->molar_volume / (pure->fluid->gas_constant * pure->temperature),
+    };
+}
+
 enum answer former_at(const struct solid_spec *solid, const struct fluid_at_t *pure, size_t component,
                       struct former *out)
 {
-    struct solid_state state;
-    const enum answer answer = solid_at(solid, pure, 0.0, &state);
-    *out = (struct former){component, state.ln_fugacity, state.molar_volume,
-                           state.molar_volume / (pure->fluid->gas_constant * pure->temperature)};
+    struct solid_state unpressed;
+    const enum answer answer = solid_at(solid, pure, 0.0, &unpressed);
+    if (answer == ANSWER_OK) {
+        *out = former_of(&unpressed, pure, component);
+    }
+    return answer;
+}
+
+enum answer former_by_sublimation(const struct solid_spec *solid, const struct fluid_at_t *pure, size_t component,
+                                  struct former *out)
+{
+    struct solid_state unpressed;
+    const enum answer answer = solid_by_sublimation(solid, pure, 0.0, &unpressed);
+    if (answer == ANSWER_OK) {
+        *out = former_of(&unpressed, pure, component);
+    }
     return answer;
 }
 
@@ -313,23 +338,24 @@ enum answer solid_vessel_at_tv(const struct fluid_at_t *at_t, double volume, con
 
 static const double ONE_MOLE = 1.0;
 
-/* The pressure at which vapour and solid have one fugacity; `vapour` is then evaluated there. */
-static enum answer equal_pressure(const struct fluid_at_t *at_t, const struct former *former, struct phase *vapour,
+/* The pressure at which solid and fluid have one fugacity; `fluid` is then evaluated there. */
+static enum answer equal_pressure(const struct fluid_at_t *at_t, const struct former *former, struct phase *fluid,
                                   double *pressure, double *gap)
 {
-    double p = exp(former->ln_fugacity);
+    const enum branch branch = former->line == SOLID_MELTS ? BRANCH_LIQUID : BRANCH_VAPOUR;
+    double p = former->line == SOLID_MELTS ? former->line_pressure : exp(former->ln_fugacity);
     for (int step = 0; step < MOST_STEPS; step++) {
-        const enum answer answer = phase_tp(at_t, p, &ONE_MOLE, BRANCH_VAPOUR, PHASE_LN_PHI, vapour);
+        const enum answer answer = phase_tp(at_t, p, &ONE_MOLE, branch, PHASE_LN_PHI, fluid);
         if (answer != ANSWER_OK) {
             return answer;
         }
-        *gap = log(p) + vapour->ln_phi[0] - former->ln_fugacity - former->poynting * p;
+        *gap = log(p) + fluid->ln_phi[0] - former->ln_fugacity - former->poynting * p;
         *pressure = p;
         if (fabs(*gap) <= AIM) {
             return ANSWER_OK;
         }
-        /* d gap / d ln p = p (v_vapour - v_solid) / (R T) */
-        p *= exp(-*gap / (vapour->Z - former->poynting * p));
+        /* d gap / d ln p = p (v_fluid - v_solid) / (R T) */
+        p *= exp(-*gap / (fluid->Z - former->poynting * p));
     }
     return fabs(*gap) <= SOLID_LN_F_TOLERANCE ? ANSWER_OK : ANSWER_FAILED;
 }
@@ -338,30 +364,36 @@ enum answer pure_solid_vessel_at_tv(const struct fluid_at_t *at_t, double volume
                                     const struct former *former, struct pure_solid_vessel *out)
 {
     struct pure_arrays arrays;
-    struct phase vapour;
-    phase_of_pure(&vapour, &arrays);
+    struct phase fluid;
+    struct vessel_contents contents;
+    phase_of_pure(&fluid, &arrays);
     if (!(volume > 0.0) || !(amount > 0.0) || at_t->fluid->count != 1) {
         return ANSWER_OUT_OF_RANGE;
     }
     *out = (struct pure_solid_vessel){.solid_volume = former->molar_volume};
-    enum answer answer = equal_pressure(at_t, former, &vapour, &out->pressure, &out->residual);
+    enum answer answer = equal_pressure(at_t, former, &fluid, &out->pressure, &out->residual);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    out->vapour_volume = vapour.volume;
-    out->phi = exp(vapour.ln_phi[0]);
+    out->fluid_volume = fluid.volume;
+    out->phi = exp(fluid.ln_phi[0]);
     if (volume <= amount * former->molar_volume) {
         return ANSWER_OUT_OF_RANGE;
     }
-    if (volume < amount * vapour.volume) {
-        out->vapour_amount = (volume - amount * former->molar_volume) / (vapour.volume - former->molar_volume);
-        out->solid_amount = amount - out->vapour_amount;
+    if (volume < amount * fluid.volume) {
+        out->fluid_amount = (volume - amount * former->molar_volume) / (fluid.volume - former->molar_volume);
+        out->solid_amount = amount - out->fluid_amount;
         return ANSWER_OK;
     }
     out->residual = 0.0;
-    out->vapour_amount = amount;
-    out->vapour_volume = volume / amount;
-    answer = phase_tv(at_t, out->vapour_volume, &ONE_MOLE, 0, &vapour);
-    out->pressure = vapour.pressure;
+    out->fluid_amount = amount;
+    out->fluid_volume = volume / amount;
+    if (former->line == SOLID_MELTS) {
+        answer = closed_vessel_at_tv(at_t, volume, amount, &contents);
+        out->pressure = contents.pressure;
+    } else {
+        answer = phase_tv(at_t, out->fluid_volume, &ONE_MOLE, 0, &fluid);
+        out->pressure = fluid.pressure;
+    }
     return answer;
 }

@@ -17,15 +17,19 @@ enum { MOST_FORMERS = 8 };
 /* A component that can be a solid, at one temperature: ln f = ln_fugacity + poynting p. */
 struct former {
     size_t component;
-    double ln_fugacity;  /* ln(f / Pa) of the solid, drawn out to p = 0 */
-    double molar_volume; /* m3/mol */
-    double poynting;     /* molar_volume / (R T), 1/Pa, with the gas constant of the pure fluid */
+    enum solid_line line;
+    double line_pressure; /* Pa */
+    double ln_fugacity;   /* ln(f / Pa) of the solid, drawn out to p = 0 */
+    double molar_volume;  /* m3/mol */
+    double poynting;      /* molar_volume / (R T), 1/Pa, with the gas constant of the pure fluid */
 };
 
 /* The former of `component`, of which `pure` is the fluid alone, by the same method and at the temperature wanted.
- * Answers as solid_at does. */
+ * Answers as solid_at does; the other as solid_by_sublimation. */
 enum answer former_at(const struct solid_spec *solid, const struct fluid_at_t *pure, size_t component,
                       struct former *out);
+enum answer former_by_sublimation(const struct solid_spec *solid, const struct fluid_at_t *pure, size_t component,
+                                  struct former *out);
 
 struct solid_vessel {
     struct mixture_vessel *fluid; /* what is left of the fluid, in what the solids leave of the volume */
@@ -47,17 +51,17 @@ enum answer solid_vessel_at_tv(const struct fluid_at_t *at_t, double volume, con
                                const struct former formers[], size_t former_count, struct equilibrium_workspace *ws,
                                struct solid_vessel *out);
 
-/* A pure substance below its triple point: vapour over its solid. */
+/* A pure substance with its solid: vapour over it below the triple point, liquid pressed onto it above. */
 struct pure_solid_vessel {
-    double pressure;                    /* Pa, where both have one fugacity */
-    double vapour_amount, solid_amount; /* mol; no solid: the vapour alone does not reach that pressure */
-    double vapour_volume, solid_volume; /* m3/mol; vapour_volume of the vapour that is there */
-    double phi;                         /* fugacity coefficient of the vapour at that pressure */
-    double residual;                    /* ln f_vapour - ln f_solid; 0 without a solid */
+    double pressure;                   /* Pa, where both have one fugacity; without a solid, of the fluid alone */
+    double fluid_amount, solid_amount; /* mol; no solid: the fluid alone does not reach that pressure */
+    double fluid_volume, solid_volume; /* m3/mol; fluid_volume of the fluid that is there */
+    double phi;                        /* fugacity coefficient of the fluid at that pressure */
+    double residual;                   /* ln f_fluid - ln f_solid; 0 without a solid */
 };
 
-/* `amount` mol in `volume` m3 at the temperature set, which must be below the triple point. ANSWER_NO_SUCH_ROOT where
- * the method has no vapour at that pressure, ANSWER_OUT_OF_RANGE where the solid alone overfills the vessel. */
+/* `amount` mol in `volume` m3 at the temperature set. ANSWER_NO_SUCH_ROOT where the method has no vapour, or liquid, at
+ * that pressure, ANSWER_OUT_OF_RANGE where the solid alone overfills the vessel. */
 enum answer pure_solid_vessel_at_tv(const struct fluid_at_t *at_t, double volume, double amount,
                                     const struct former *former, struct pure_solid_vessel *out);
 

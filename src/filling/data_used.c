@@ -220,23 +220,20 @@ static void tell_equation(const struct telling *telling, const struct case_compo
     warn_unverified(telling, row->name, source);
 }
 
-/* A sheet that only tells solids does so of those that are known. */
 static bool any_sheet_tells_solids(const struct case_tree *tree, const struct case_component *component)
 {
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        const bool is_told =
-            tree->sheets[i].asks_of_solids || (tree->sheets[i].tells_solids && component->solid != NULL);
-        if (is_told && contains(tree->sheets[i].fluid, component)) {
+        if (contains(tree->sheets[i].fluid, component) && case_sheet_tells_solid(&tree->sheets[i], component)) {
             return true;
         }
     }
     return false;
 }
 
-static bool any_melting_is_shown(const struct case_tree *tree, const struct case_component *component)
+static bool any_sheet_melts(const struct case_tree *tree, const struct case_component *component)
 {
     for (size_t i = 0; i < tree->sheet_count; i++) {
-        if (tree->sheets[i].show_melting && contains(tree->sheets[i].fluid, component)) {
+        if (case_sheet_melts(&tree->sheets[i], component) && contains(tree->sheets[i].fluid, component)) {
             return true;
         }
     }
@@ -258,7 +255,7 @@ static void tell_solid(const struct telling *telling, const struct case_componen
     row->source = solid->source == NULL ? "given in this deck" : solid->source->key;
     row->remark = solid->source != NULL && solid->source->is_unverified ? "unverified" : NULL;
     warn_unverified(telling, row->name, solid->source);
-    if (solid->spec.melting_count > 0 && any_melting_is_shown(telling->tree, component)) {
+    if (solid->spec.melting_count > 0 && any_sheet_melts(telling->tree, component)) {
         const struct melting_part *parts = solid->spec.melting, *last = &parts[solid->spec.melting_count - 1];
         struct data_row *line = add_row(telling, "melting-line",
                                         arena_format(arena, "%zu part%s, %g to %g K", solid->spec.melting_count,

@@ -51,7 +51,8 @@ static double triple_point_offset(const struct sheet_run *run, struct method_run
     return edges.high_pressure / solid_sublimation_pressure(solid, solid->largest_temperature, &slope) - 1.0;
 }
 
-static void add_row(const struct sheet_run *run, struct table *table, struct method_run *method, double temperature,
+/* Whether what freezes there is above its triple point. */
+static bool add_row(const struct sheet_run *run, struct table *table, struct method_run *method, double temperature,
                     const struct frost_limit *limit)
 {
     struct cell *row = table_add_row(run->result, table);
@@ -59,21 +60,26 @@ static void add_row(const struct sheet_run *run, struct table *table, struct met
     cell_set(&row[FROST_TEMPERATURE], temperature);
     if (!limit->forms) {
         cell_set_text(&row[FROST_COMPONENT], "none");
-        return;
+        return false;
     }
     cell_set(&row[FROST_PRESSURE], limit->at.pressure);
     cell_set(&row[FROST_DENSITY], method->molar_mass / limit->molar_volume);
     cell_set_text(&row[FROST_COMPONENT], run->sheet->fluid->components[limit->at.component]->name);
-    cell_set(&row[FROST_SUBLIMATION], limit->at.solid.sublimation_pressure);
+    if (limit->at.solid.line == SOLID_MELTS) {
+        return true; /* no rule of partial pressures to hold it against */
+    }
+    cell_set(&row[FROST_SUBLIMATION], limit->at.solid.line_pressure);
     cell_set(&row[FROST_IDEAL_PRESSURE], limit->ideal_pressure);
     cell_set(&row[FROST_ENHANCEMENT], limit->at.pressure / limit->ideal_pressure);
     const double offset = triple_point_offset(run, method, limit->at.component);
     if (isfinite(offset)) {
         cell_set(&row[FROST_OFFSET], offset);
     }
+    return false;
 }
 
-static void tell_meaning(const struct sheet_run *run)
+/* `melts`: a row of the table is above the triple point of what freezes. */
+static void tell_meaning(const struct sheet_run *run, bool melts)
 {
     sheet_add_note(
         run->result, run->out,
@@ -81,6 +87,11 @@ static void tell_meaning(const struct sheet_run *run)
         "f = p_sub phi(p_sub) exp(v (p - p_sub) / (R T)); ideal: where its partial pressure is the "
         "sublimation pressure; enhancement: the one pressure over the other; triple-point offset: of the method's "
         "vapour pressure there against the sublimation line");
+    if (melts) {
+        sheet_add_note(run->result, run->out,
+                       "above the triple point of what freezes, where no sublimation pressure is told, f is that of "
+                       "its liquid at the melting pressure: f = p_melt phi(p_melt) exp(v (p - p_melt) / (R T))");
+    }
 }
 
 /* ---- by hand ----------------------------------------------------------------------------------------------------- */
@@ -94,23 +105,16 @@ void hand_check_frost(const struct sheet_run *run, struct hand_check *check, str
     }
     const struct solid_state *solid = &limit.at.solid;
     const struct case_component *former = run->sheet->fluid->components[limit.at.component];
-    const double R = method->fluid->gas_constant, p_sub = solid->sublimation_pressure, v = solid->molar_volume;
-    const double x = method->mixture == NULL ? 1.0 : method->z[limit.at.component];
-    const double f = exp(solid->ln_fugacity);
     struct explanation numbers = {.count = 0};
     hand_check_line(run->result, check, "solid %s:", former->name);
-    hand_check_put(&numbers, "R", "gas constant", NULL, "J/mol/K", R);
+    hand_check_put(&numbers, "R", "gas constant", NULL, "J/mol/K", method->fluid->gas_constant);
     hand_check_put(&numbers, "T", "temperature", NULL, "K", temperature);
     hand_check_put(&numbers, "p", "pressure of the fluid", NULL, "Pa", limit.at.pressure);
-    hand_check_put(&numbers, "p_sub", "sublimation pressure", NULL, "Pa", p_sub);
-    hand_check_put(&numbers, "phi_sub", "of its vapour at p_sub", NULL, "1", exp(solid->ln_phi));
-    hand_check_put(&numbers, "v", "molar volume of the solid", NULL, "m3/mol", v);
-    hand_check_put(&numbers, "poynting", "Poynting factor", "exp(v * (p - p_sub) / (R * T))", "1", solid->poynting);
-    hand_check_put(&numbers, "f_solid", "fugacity of the solid", "p_sub * phi_sub * poynting", "Pa", f);
-    hand_check_put(&numbers, "x", "mole fraction in the fluid", NULL, "1", x);
-    hand_check_put(&numbers, "phi", "its fugacity coefficient in the fluid", NULL, "1",
-                   exp(limit.at.value) * f / (x * limit.at.pressure));
-    hand_check_put(&numbers, "f_fluid", "fugacity in the fluid", "x * p * phi", "Pa", exp(limit.at.value) * f);
+    hand_check_put_solid(&numbers, solid);
+    hand_check_put(&numbers, "x", "mole fraction in the fluid", NULL, "1", limit.at.x);
+    hand_check_put(&numbers, "phi", "its fugacity coefficient in the fluid", NULL, "1", exp(limit.at.ln_phi));
+    hand_check_put(&numbers, "f_fluid", "fugacity in the fluid", "x * p * phi", "Pa",
+                   limit.at.x * limit.at.pressure * exp(limit.at.ln_phi));
     hand_check_numbers(run, check, &numbers);
 }
 
@@ -121,6 +125,7 @@ static void tell_criterion(const struct permissible *sheet, size_t index)
     struct sheet_run *run = sheet->run;
     const char *written = sheet->criteria[index].predicate->written;
     struct table *table = NULL;
+    bool melts = false;
     for (size_t m = 0; m < run->method_count; m++) {
         const struct method_limits *of = &sheet->by_method[m];
         struct frost_limit limit;
@@ -134,13 +139,13 @@ static void tell_criterion(const struct permissible *sheet, size_t index)
                         : begin_table(run, arena_format(run->arena,
                                                         "frost limit of '%s', beside the rule of partial pressures",
                                                         written));
-            add_row(run, table, of->method, worst, &limit);
+            melts = add_row(run, table, of->method, worst, &limit) || melts;
         }
     }
     if (table == NULL) {
         return;
     }
-    tell_meaning(run);
+    tell_meaning(run, melts);
     struct frost_limit governing;
     const struct method_limits *of = &sheet->by_method[sheet->governing.given ? sheet->governing.index : 0];
     if (of->method != NULL && of->limits[index].answer == ANSWER_OK) {
@@ -170,6 +175,7 @@ void tell_frost_line(struct sheet_run *run)
 {
     const struct case_sheet *sheet = run->sheet;
     struct table *table = NULL;
+    bool melts = false;
     if (!sheet->asks_of_solids) {
         return;
     }
@@ -178,14 +184,16 @@ void tell_frost_line(struct sheet_run *run)
         for (size_t k = 0; method->fluid != NULL && k < sheet->temperatures.count; k++) {
             const double temperature = sheet->temperatures.values[k];
             struct frost_limit limit;
-            if (frost_unknown(sheet->fluid, temperature) == NULL && frost_is_possible(sheet->fluid, temperature) &&
-                frost_limit_at(sheet->fluid, method, temperature, &limit) == ANSWER_OK) {
+            if (frost_unknown(sheet->fluid, temperature) == NULL &&
+                frost_is_possible(sheet->fluid, method, temperature) &&
+                frost_limit_at(sheet->fluid, method, temperature, &limit) == ANSWER_OK &&
+                (limit.forms || limit.may_sublime)) {
                 table = table != NULL ? table : begin_table(run, "where the fluid freezes");
-                add_row(run, table, method, temperature, &limit);
+                melts = add_row(run, table, method, temperature, &limit) || melts;
             }
         }
     }
     if (table != NULL) {
-        tell_meaning(run);
+        tell_meaning(run, melts);
     }
 }

@@ -175,6 +175,21 @@ void hand_check_put(struct explanation *numbers, const char *symbol, const char 
     explanation_add(numbers, (struct explained_value){symbol, meaning, formula, unit, 0, value, false});
 }
 
+void hand_check_put_solid(struct explanation *numbers, const struct solid_state *solid)
+{
+    const bool melts = solid->line == SOLID_MELTS;
+    hand_check_put(numbers, melts ? "p_melt" : "p_sub", melts ? "melting pressure" : "sublimation pressure", NULL, "Pa",
+                   solid->line_pressure);
+    hand_check_put(numbers, melts ? "phi_melt" : "phi_sub",
+                   melts ? "of its liquid at p_melt" : "of its vapour at p_sub", NULL, "1", exp(solid->ln_phi));
+    hand_check_put(numbers, "v", "molar volume of the solid", NULL, "m3/mol", solid->molar_volume);
+    hand_check_put(numbers, "poynting", "Poynting factor",
+                   melts ? "exp(v * (p - p_melt) / (R * T))" : "exp(v * (p - p_sub) / (R * T))", "1", solid->poynting);
+    hand_check_put(numbers, "f_solid", "fugacity of the solid",
+                   melts ? "p_melt * phi_melt * poynting" : "p_sub * phi_sub * poynting", "Pa",
+                   exp(solid->ln_fugacity));
+}
+
 /* ---- the checks ------------------------------------------------------------------------------------------------ */
 
 void hand_check_pressure_shown(const struct sheet_run *run, struct hand_check *check, double pressure)

@@ -9,6 +9,7 @@
 
 #include "filling/sheet.h"
 #include "fluid/explanation.h"
+#include "fluid/solid.h"
 
 /* Mass, amount of substance and molar volume of `mass` kg in the sheet's vessel: n = m / M, v = V / n. */
 void hand_check_amount(const struct sheet_run *run, struct hand_check *check, double mass);
@@ -49,6 +50,9 @@ void hand_check_pressure_shown(const struct sheet_run *run, struct hand_check *c
 /* One more number; `formula` NULL: given. */
 void hand_check_put(struct explanation *numbers, const char *symbol, const char *meaning, const char *formula,
                     const char *unit, double value);
+
+/* The fugacity of a solid, f_solid, from the line it was taken from; R, T and p are there already. */
+void hand_check_put_solid(struct explanation *numbers, const struct solid_state *solid);
 
 /* A homogeneous phase of a mixture. */
 struct mixture_state {

@@ -265,7 +265,7 @@ static struct predicate_finding no_solid_at(const struct sheet_run *run, struct 
     if (unknown != NULL) {
         return solid_unknown(run, unknown, temperature);
     }
-    if (!frost_is_possible(fluid, temperature)) {
+    if (!frost_is_possible(fluid, method, temperature)) {
         decide(&finding, true, (double)INFINITY, "above the triple point", score);
         return finding;
     }

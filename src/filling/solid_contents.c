@@ -52,6 +52,14 @@ static struct freezer freezer_create(const struct sheet_run *run, struct method_
 
 /* ---- contents ---------------------------------------------------------------------------------------------------- */
 
+/* Above the triple point by its melting line only: the sublimation line drawn out serves gases under pressure. */
+static bool can_be_solid(const struct solid_spec *solid, const struct method_run *alone, double temperature)
+{
+    return temperature < solid->largest_temperature ||
+           (alone->fluid != NULL &&
+            solid_line_at(solid, (alone->fluid->ops->capabilities & CAN_LIQUID) != 0, temperature) == SOLID_MELTS);
+}
+
 /* The components present that can be solid; one that the method does not know as a solid there is left out. */
 static enum answer find_formers(const struct freezer *f, double temperature, struct former formers[], size_t *count)
 {
@@ -59,10 +67,10 @@ static enum answer find_formers(const struct freezer *f, double temperature, str
     *count = 0;
     for (size_t i = 0; i < spec->count; i++) {
         const struct solid_spec *solid = spec->pure[i]->solid;
-        if (solid == NULL || !(f->n[i] > 0.0) || temperature >= solid->largest_temperature) {
+        const struct method_run *alone = spec->count == 1 ? f->method : mixture_alone(f->method, i);
+        if (solid == NULL || !(f->n[i] > 0.0) || !can_be_solid(solid, alone, temperature)) {
             continue;
         }
-        const struct method_run *alone = spec->count == 1 ? f->method : mixture_alone(f->method, i);
         if (*count == MOST_FORMERS || alone->fluid == NULL) {
             return ANSWER_CANNOT;
         }
@@ -242,15 +250,10 @@ static void add_hand_check(const struct freezer *f, double temperature, const st
     hand_check_put(&numbers, "R", "gas constant", NULL, "J/mol/K", alone->fluid->gas_constant);
     hand_check_put(&numbers, "T", "temperature", NULL, "K", temperature);
     hand_check_put(&numbers, "p", "settled pressure, with solids", NULL, "Pa", p);
-    hand_check_put(&numbers, "p_sub", "sublimation pressure", NULL, "Pa", solid.sublimation_pressure);
-    hand_check_put(&numbers, "phi_sub", "of its vapour at p_sub", NULL, "1", exp(solid.ln_phi));
-    hand_check_put(&numbers, "v", "molar volume of the solid", NULL, "m3/mol", solid.molar_volume);
-    hand_check_put(&numbers, "poynting", "Poynting factor", "exp(v * (p - p_sub) / (R * T))", "1", solid.poynting);
-    hand_check_put(&numbers, "f_solid", "fugacity of the solid", "p_sub * phi_sub * poynting", "Pa",
-                   exp(solid.ln_fugacity));
-    hand_check_put(&numbers, "x", "mole fraction left in the gas", NULL, "1", x);
+    hand_check_put_solid(&numbers, &solid);
+    hand_check_put(&numbers, "x", "mole fraction left in the fluid", NULL, "1", x);
     hand_check_put(&numbers, "phi", "its fugacity coefficient there", NULL, "1", phi);
-    hand_check_put(&numbers, "f_gas", "fugacity in the gas", "x * p * phi", "Pa", x * p * phi);
+    hand_check_put(&numbers, "f_fluid", "fugacity in the fluid", "x * p * phi", "Pa", x * p * phi);
     hand_check_numbers(run, check, &numbers);
 }
 

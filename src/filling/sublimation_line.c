@@ -45,7 +45,7 @@ static void add_row(const struct sheet_run *run, struct table *table, const stru
     const double M = run->sheet->fluid->molar_mass, RT = method->fluid->gas_constant * temperature;
     struct cell *row = table_add_row(run->result, table);
     cell_set(&row[SUBLIMATION_TEMPERATURE], temperature);
-    cell_set(&row[SUBLIMATION_PRESSURE], solid->sublimation_pressure);
+    cell_set(&row[SUBLIMATION_PRESSURE], solid->line_pressure);
     cell_set(&row[SUBLIMATION_SOLID_DENSITY], M / solid->molar_volume);
     cell_set(&row[SUBLIMATION_VAPOUR_DENSITY], M / vapour->volume);
     cell_set(&row[SUBLIMATION_HEAT], (RT * vapour->residual_enthalpy_rt - solid->departure_enthalpy) / M);
@@ -67,7 +67,7 @@ static enum answer line_at(struct method_run *method, double temperature, struct
     const double one = 1.0, p_sub = solid_sublimation_pressure(spec, temperature, &slope);
     enum answer answer = fluid_set_t(method->at_t, method->fluid, temperature);
     if (answer == ANSWER_OK) {
-        answer = solid_at(spec, method->at_t, p_sub, solid);
+        answer = solid_by_sublimation(spec, method->at_t, p_sub, solid);
     }
     if (answer == ANSWER_OK) {
         answer = phase_tp(method->at_t, p_sub, &one, BRANCH_VAPOUR, PHASE_LN_PHI | PHASE_RESIDUAL, vapour);

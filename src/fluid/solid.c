@@ -50,15 +50,27 @@ double solid_sublimation_pressure(const struct solid_spec *solid, double tempera
 
 /* ---- the melting line -------------------------------------------------------------------------------------------- */
 
-double solid_melting_pressure(const struct melting_part *part, double temperature)
+/* The melting pressure (Pa) and its slope (Pa/K). */
+static double melting_pressure(const struct melting_part *part, double temperature, double *slope)
 {
     const double theta = temperature / part->reducing_temperature;
-    double sum = 0.0;
+    double sum = 0.0, by_theta = 0.0;
     for (size_t i = 0; i < part->count; i++) {
         const double n = part->terms[i][0], t = part->terms[i][1];
-        sum += n * (part->form == MELTING_GAP_POWERS ? pow(theta - 1.0, t) : pow(theta, t) - 1.0);
+        const bool is_gap = part->form == MELTING_GAP_POWERS;
+        const double base = is_gap ? theta - 1.0 : theta;
+        sum += n * (is_gap ? pow(base, t) : pow(base, t) - 1.0);
+        by_theta += n * t * pow(base, t - 1.0);
     }
-    return part->form == MELTING_SIMON ? part->reducing_pressure + sum : part->reducing_pressure * (1.0 + sum);
+    const double scale = part->form == MELTING_SIMON ? 1.0 : part->reducing_pressure;
+    *slope = scale * by_theta / part->reducing_temperature;
+    return part->reducing_pressure + scale * sum;
+}
+
+double solid_melting_pressure(const struct melting_part *part, double temperature)
+{
+    double slope;
+    return melting_pressure(part, temperature, &slope);
 }
 
 /* ---- temperatures of a pressure ---------------------------------------------------------------------------------- */
@@ -105,42 +117,74 @@ double solid_sublimation_temperature(const struct solid_spec *solid, double pres
                                pressure);
 }
 
-bool solid_exists_at(const struct solid_spec *solid, double temperature)
+/* ---- which line -------------------------------------------------------------------------------------------------- */
+
+enum solid_line solid_line_at(const struct solid_spec *solid, bool knows_liquids, double temperature)
 {
-    return temperature <= solid->largest_temperature * (1.0 + SOLID_ABOVE_TRIPLE);
+    const struct melting_part *part = knows_liquids ? solid->melting_from_triple : NULL;
+    const double triple = solid->largest_temperature;
+    if (temperature <= triple) {
+        return SOLID_SUBLIMES;
+    }
+    if (part == NULL) {
+        return temperature <= triple * (1.0 + SOLID_ABOVE_TRIPLE) ? SOLID_SUBLIMES : SOLID_NOT_KNOWN;
+    }
+    return temperature <= fmin(part->largest_temperature, triple * (1.0 + MELTING_FOLLOWED)) ? SOLID_MELTS
+                                                                                             : SOLID_NOT_KNOWN;
 }
 
 /* ---- its fugacity ------------------------------------------------------------------------------------------------ */
 
-enum answer solid_at(const struct solid_spec *solid, const struct fluid_at_t *pure, double pressure,
-                     struct solid_state *out)
+/* ln f by the line's pressure p_line, whose logarithm has that slope by temperature (1/K), and of which the fluid's
+ * `branch` is the other phase. */
+static enum answer solid_beside(const struct solid_spec *solid, const struct fluid_at_t *pure, enum branch branch,
+                                double p_line, double slope, double pressure, struct solid_state *out)
 {
     const double T = pure->temperature, one = 1.0;
-    if (!solid_exists_at(solid, T)) {
-        return ANSWER_OUT_OF_RANGE;
-    }
-    double slope;
-    const double p_sub = solid_sublimation_pressure(solid, T, &slope);
     const double RT = pure->fluid->gas_constant * T, v = solid->molar_volume;
     struct pure_arrays arrays;
-    struct phase vapour;
-    phase_of_pure(&vapour, &arrays);
+    struct phase fluid;
+    phase_of_pure(&fluid, &arrays);
     const enum answer answer =
-        phase_tp(pure, p_sub, &one, BRANCH_VAPOUR, PHASE_LN_PHI | PHASE_DLN_PHI_DT | PHASE_DLN_PHI_DP, &vapour);
+        phase_tp(pure, p_line, &one, branch, PHASE_LN_PHI | PHASE_DLN_PHI_DT | PHASE_DLN_PHI_DP, &fluid);
     if (answer != ANSWER_OK) {
         return answer;
     }
-    const double exponent = v * (pressure - p_sub) / RT;
-    /* dln f/dT = dln p_sub/dT (1 + p_sub dln phi/dp) + dln phi/dT - v (p - p_sub) / (R T^2) - v p_sub/(R T) dln
-     * p_sub/dT */
-    const double by_t = slope * (1.0 + p_sub * arrays.dln_phi_dp - v * p_sub / RT) + arrays.dln_phi_dt - exponent / T;
+    const double exponent = v * (pressure - p_line) / RT;
+    /* dln f/dT = dln p_line/dT (1 + p_line dln phi/dp) + dln phi/dT - v (p - p_line) / (R T^2) - v p_line/(R T) dln
+     * p_line/dT */
+    const double by_t = slope * (1.0 + p_line * arrays.dln_phi_dp - v * p_line / RT) + arrays.dln_phi_dt - exponent / T;
     *out = (struct solid_state){
-        .sublimation_pressure = p_sub,
+        .line = branch == BRANCH_LIQUID ? SOLID_MELTS : SOLID_SUBLIMES,
+        .line_pressure = p_line,
         .ln_phi = arrays.ln_phi,
         .poynting = exp(exponent),
-        .ln_fugacity = log(p_sub) + arrays.ln_phi + exponent,
+        .ln_fugacity = log(p_line) + arrays.ln_phi + exponent,
         .molar_volume = v,
         .departure_enthalpy = -RT * T * by_t,
     };
     return isfinite(out->ln_fugacity) ? ANSWER_OK : ANSWER_FAILED;
+}
+
+enum answer solid_by_sublimation(const struct solid_spec *solid, const struct fluid_at_t *pure, double pressure,
+                                 struct solid_state *out)
+{
+    double slope;
+    if (solid_line_at(solid, false, pure->temperature) != SOLID_SUBLIMES) {
+        return ANSWER_OUT_OF_RANGE;
+    }
+    const double p_sub = solid_sublimation_pressure(solid, pure->temperature, &slope);
+    return solid_beside(solid, pure, BRANCH_VAPOUR, p_sub, slope, pressure, out);
+}
+
+enum answer solid_at(const struct solid_spec *solid, const struct fluid_at_t *pure, double pressure,
+                     struct solid_state *out)
+{
+    const bool knows_liquids = (pure->fluid->ops->capabilities & CAN_LIQUID) != 0;
+    if (solid_line_at(solid, knows_liquids, pure->temperature) != SOLID_MELTS) {
+        return solid_by_sublimation(solid, pure, pressure, out);
+    }
+    double slope;
+    const double p_melt = melting_pressure(solid->melting_from_triple, pure->temperature, &slope);
+    return solid_beside(solid, pure, BRANCH_LIQUID, p_melt, slope / p_melt, pressure, out);
 }

@@ -136,7 +136,12 @@ struct solid_spec {
     double molar_volume;                              /* m3/mol */
     size_t melting_count;                             /* 0: no melting line is known */
     const struct melting_part *melting;
+    const struct melting_part *melting_from_triple; /* of them the one that rises from the triple point; NULL: none */
 };
+
+/* A melting line is followed no further than to this part above the triple temperature: it is then at more than gases
+ * are filled to. */
+#define MELTING_FOLLOWED 0.07
 
 /* Parameters of a component that belong to one cubic equation alone. A member set to zero (or not given) is left out
  * of the equation. Method words are those of fluid/methods.c. */
